@@ -1,0 +1,31 @@
+//! Black-oil and water properties: published correlations or a table.
+
+mod spec;
+
+pub use spec::FluidSpec;
+
+/// What the tank needs to know of the fluid, at the tank's temperature.
+///
+/// All pressures are psia. `rs_scf_stb` is the gas dissolved in the oil and never above
+/// [`rs_saturated`](Self::rs_saturated) of the same pressure.
+pub trait ReservoirFluid: Send + Sync {
+    /// Solution gas-oil ratio of saturated oil, scf/STB; without an upper cap (it goes on rising above
+    /// the initial bubble point, so that injected gas can dissolve).
+    fn rs_saturated(&self, pressure_psia: f64) -> f64;
+    /// Bubble point of oil that holds `rs_scf_stb`, psia: the inverse of [`rs_saturated`](Self::rs_saturated).
+    fn bubble_point_psia(&self, rs_scf_stb: f64) -> f64;
+    /// Oil formation volume factor, rb/STB: saturated when `rs` equals the saturated value, else undersaturated.
+    fn bo(&self, pressure_psia: f64, rs_scf_stb: f64) -> f64;
+    /// Oil viscosity, cp.
+    fn mu_o(&self, pressure_psia: f64, rs_scf_stb: f64) -> f64;
+    /// Gas formation volume factor, rb/scf.
+    fn bg(&self, pressure_psia: f64) -> f64;
+    /// Gas viscosity, cp.
+    fn mu_g(&self, pressure_psia: f64) -> f64;
+    /// Water formation volume factor, rb/STB.
+    fn bw(&self, pressure_psia: f64) -> f64;
+    /// Water viscosity, cp.
+    fn mu_w(&self, pressure_psia: f64) -> f64;
+    /// The pressures between which the model is used, psia.
+    fn pressure_range_psia(&self) -> (f64, f64);
+}

@@ -1,0 +1,391 @@
+//! A finished forecast, as plain data: what the reports read.
+
+use jiff::civil::Date;
+
+/// Why a well stopped.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum StopReason {
+    /// Inflow and tubing curve no longer meet.
+    NoCrossing,
+    /// The flowing-pressure floor leaves no stable rate.
+    MinimumFlowingPressure,
+    /// The rate fell below the stated minimum, or the target lies below the lowest stable rate.
+    RateLimit,
+    /// Water cut above the stated maximum.
+    WaterCutLimit,
+    /// Gas-oil ratio above the stated maximum.
+    GasOilRatioLimit,
+    /// Shut in by the schedule.
+    Scheduled,
+    /// The material balance has no solution any more.
+    BalanceHasNoSolution,
+}
+
+impl StopReason {
+    /// The fixed wording of result files.
+    pub fn text(self) -> &'static str {
+        match self {
+            Self::NoCrossing => "no crossing",
+            Self::MinimumFlowingPressure => "minimum flowing pressure",
+            Self::RateLimit => "rate limit",
+            Self::WaterCutLimit => "water-cut limit",
+            Self::GasOilRatioLimit => "gas-oil ratio limit",
+            Self::Scheduled => "scheduled",
+            Self::BalanceHasNoSolution => "balance has no solution",
+        }
+    }
+}
+
+/// The end of natural flow of one well.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct FlowEnd {
+    /// The calendar day that holds it.
+    pub date: Date,
+    /// Days from the start of the period.
+    pub days: f64,
+    /// Why.
+    pub reason: StopReason,
+    /// Instantaneous producing-day liquid rate just before, STB/d.
+    pub liquid_rate_stb_d: f64,
+    /// Instantaneous producing-day oil rate just before, STB/d.
+    pub oil_rate_stb_d: f64,
+    /// Flow margin found there, psi.
+    pub flow_margin_psi: f64,
+    /// Tank pressure there, psia.
+    pub reservoir_pressure_psia: f64,
+}
+
+/// What happened.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum EventKind {
+    /// A well came on stream.
+    WellStarted,
+    /// A target rate could no longer be held at line pressure.
+    PlateauLost,
+    /// A target rate could be held again.
+    TargetRegained,
+    /// Tank pressure fell through the bubble point.
+    BubblePointCrossedDown,
+    /// The last free gas of the oil zone dissolved.
+    BubblePointCrossedUp,
+    /// Free gas in the oil zone reached its critical saturation and begins to flow.
+    FreeGasMobile,
+    /// The right-most crossing disappeared while another stayed.
+    RateJump,
+    /// The well came up against its flowing-pressure floor.
+    FloorReached,
+    /// The well left its flowing-pressure floor.
+    FloorLeft,
+    /// Natural flow ended.
+    EndOfNaturalFlow(StopReason),
+    /// A dead well could flow again, but the scenario does not let it.
+    CouldFlowAgain,
+    /// A well flows again.
+    FlowsAgain,
+    /// Injection began.
+    InjectionStarted,
+    /// Injection ended.
+    InjectionEnded,
+    /// An injector came up against its rate or pressure limit.
+    InjectionLimited,
+    /// An injector left its limit.
+    InjectionLimitLeft,
+    /// A dated event of the scenario took effect.
+    Scheduled,
+}
+
+/// One dated happening.
+#[derive(Debug, Clone, PartialEq)]
+pub struct EventRecord {
+    /// The calendar day that holds it.
+    pub date: Date,
+    /// Days from the start of the period.
+    pub days: f64,
+    /// Well, injector, or "tank".
+    pub name: String,
+    /// What happened.
+    pub kind: EventKind,
+    /// Figures that go with it, or the text of the scenario's event.
+    pub note: String,
+}
+
+/// One reporting period.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Period {
+    /// First day.
+    pub start: Date,
+    /// The day after the last day of the calendar period (also when the run stopped inside it).
+    pub end: Date,
+    /// Days from the start of the forecast to the start of the period.
+    pub start_days: f64,
+    /// Days from the start of the forecast to `end`.
+    pub end_days: f64,
+    /// Days to the last instant simulated in this period: `end_days` unless the run stopped inside.
+    pub run_days: f64,
+}
+
+/// One well in one period. Rates divide by the whole calendar period unless they say producing-day.
+#[derive(Debug, Clone, Copy, PartialEq, Default)]
+pub struct WellRow {
+    /// Oil made in the period, STB.
+    pub oil_stb: f64,
+    /// Water made in the period, STB.
+    pub water_stb: f64,
+    /// Gas made in the period, scf.
+    pub gas_scf: f64,
+    /// Oil since the start of the forecast, STB.
+    pub oil_cum_stb: f64,
+    /// Water since the start of the forecast, STB.
+    pub water_cum_stb: f64,
+    /// Gas since the start of the forecast, scf.
+    pub gas_cum_scf: f64,
+    /// Days on stream in the period (uptime included).
+    pub flowing_days: f64,
+    /// Whether the well flows at the end of the period.
+    pub flowing: bool,
+    /// State at the end of the period; `None` where the well does not flow then (margin: `None` before its start).
+    pub flowing_pressure_psia: Option<f64>,
+    /// Wellhead pressure, psia: above line pressure while choked.
+    pub wellhead_pressure_psia: Option<f64>,
+    /// Producing-day liquid rate, STB/d.
+    pub liquid_rate_stb_d: Option<f64>,
+    /// Producing gas-oil ratio, scf/STB.
+    pub gor_scf_stb: Option<f64>,
+    /// Water cut, fraction of liquid.
+    pub water_cut: Option<f64>,
+    /// Flow margin at line pressure, psi; negative for a dead well.
+    pub flow_margin_psi: Option<f64>,
+}
+
+/// One injector in one period.
+#[derive(Debug, Clone, Copy, PartialEq, Default)]
+pub struct InjectorRow {
+    /// Water injected in the period, STB.
+    pub water_stb: f64,
+    /// Gas injected in the period, scf.
+    pub gas_scf: f64,
+    /// Water since the start of the forecast, STB.
+    pub water_cum_stb: f64,
+    /// Gas since the start of the forecast, scf.
+    pub gas_cum_scf: f64,
+    /// Volume asked for but not injected in the period because of a limit, STB or scf.
+    pub shortfall: f64,
+    /// Bottom-hole pressure at the end of the period, psia, where an injectivity is given and it injects.
+    pub bottomhole_pressure_psia: Option<f64>,
+}
+
+/// Drive indices: the shares of the withdrawal that each energy paid for; they sum to one.
+#[derive(Debug, Clone, Copy, PartialEq, Default)]
+pub struct DriveIndices {
+    /// Oil and dissolved-gas expansion.
+    pub depletion: f64,
+    /// Gas-cap expansion.
+    pub gas_cap: f64,
+    /// Rock and connate-water expansion.
+    pub rock_and_water: f64,
+    /// Aquifer influx.
+    pub aquifer: f64,
+    /// Injected volumes.
+    pub injection: f64,
+}
+
+/// The tank in one period.
+#[derive(Debug, Clone, Copy, PartialEq, Default)]
+pub struct TankRow {
+    /// Oil made in the period, STB.
+    pub oil_stb: f64,
+    /// Water made in the period, STB.
+    pub water_stb: f64,
+    /// Gas made in the period, scf.
+    pub gas_scf: f64,
+    /// Water injected in the period, STB.
+    pub injected_water_stb: f64,
+    /// Gas injected in the period, scf.
+    pub injected_gas_scf: f64,
+    /// Oil since the start of the forecast, STB.
+    pub oil_cum_stb: f64,
+    /// Water since the start of the forecast, STB.
+    pub water_cum_stb: f64,
+    /// Gas since the start of the forecast, scf.
+    pub gas_cum_scf: f64,
+    /// Pressure at the end of the period, psia.
+    pub pressure_psia: f64,
+    /// Current bubble point of the oil in the tank, psia.
+    pub bubble_point_psia: f64,
+    /// Oil saturation of the oil zone, fraction.
+    pub oil_saturation: f64,
+    /// Free-gas saturation of the oil zone, fraction.
+    pub gas_saturation: f64,
+    /// Water saturation, fraction.
+    pub water_saturation: f64,
+    /// Producing gas-oil ratio of all wells together at the end of the period, scf/STB; `None` when none flows.
+    pub gor_scf_stb: Option<f64>,
+    /// Water cut of all wells together at the end of the period; `None` when none flows.
+    pub water_cut: Option<f64>,
+    /// Injected over withdrawn reservoir volume in the period; `None` when nothing is withdrawn.
+    pub voidage_replacement: Option<f64>,
+    /// The same since the start of production; `None` when nothing was withdrawn.
+    pub voidage_replacement_cum: Option<f64>,
+    /// Relative residual of the Havlena-Odeh balance recomputed from the reported cumulatives.
+    pub balance_residual: f64,
+    /// Drive indices since the start of production; `None` before any withdrawal.
+    pub drive_indices: Option<DriveIndices>,
+}
+
+/// A measured test beside the model's rate at the same conditions.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct TestCheck {
+    /// Date of the test.
+    pub on: Option<Date>,
+    /// Reservoir pressure, psia.
+    pub reservoir_psia: f64,
+    /// Flowing pressure: measured, or computed with the well's own tubing, psia.
+    pub flowing_psia: f64,
+    /// Whether the flowing pressure was computed.
+    pub computed: bool,
+    /// Measured liquid rate, STB/d.
+    pub rate_stb_d: f64,
+    /// The model's liquid rate, STB/d.
+    pub model_rate_stb_d: f64,
+}
+
+/// Inflow and tubing curves of one well at one instant.
+#[derive(Debug, Clone, PartialEq)]
+pub struct CurveSet {
+    /// "start", "mid-life", "end of natural flow", or a date.
+    pub label: String,
+    /// The calendar day.
+    pub date: Date,
+    /// Days from the start of the period.
+    pub days: f64,
+    /// Reservoir pressure at the perforations, psia.
+    pub reservoir_psia: f64,
+    /// Liquid rate, STB/d; inflow pressure, psia; tubing pressure at line pressure, psia.
+    pub points: Vec<(f64, f64, f64)>,
+    /// Operating point: liquid rate, STB/d, and flowing pressure, psia.
+    pub operating_point: Option<(f64, f64)>,
+    /// Flow margin, psi.
+    pub flow_margin_psi: f64,
+}
+
+/// One well of a finished forecast.
+#[derive(Debug, Clone, PartialEq)]
+pub struct WellResult {
+    /// Name.
+    pub name: String,
+    /// A row per period.
+    pub rows: Vec<WellRow>,
+    /// The end of natural flow; `None` when it still flows at the end of the run or never flowed.
+    pub natural_flow_end: Option<FlowEnd>,
+    /// Whether it flows at the end of the run.
+    pub flowing_at_end: bool,
+    /// Days from the start at which the target was first lost; `None` without a target or when it was never lost.
+    pub plateau_end: Option<f64>,
+    /// Highest producing gas-oil ratio, scf/STB, over period ends.
+    pub peak_gor_scf_stb: f64,
+    /// Inflow equation in words and figures ("Fetkovich, C = 7.9e-4 STB/d/psi^2n, n = 0.85 fitted to 3 tests").
+    pub inflow_text: String,
+    /// Each test beside the model's rate.
+    pub tests: Vec<TestCheck>,
+    /// Curves at the start, at mid-life and at the end of natural flow (or of the run).
+    pub curves: Vec<CurveSet>,
+}
+
+/// One injector of a finished forecast.
+#[derive(Debug, Clone, PartialEq)]
+pub struct InjectorResult {
+    /// Name.
+    pub name: String,
+    /// A row per period.
+    pub rows: Vec<InjectorRow>,
+}
+
+/// Which weakness was seen.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
+pub enum DoubtKind {
+    /// A correlation or model is used outside its range.
+    OutsideRange,
+    /// A value that looks like a slip of the pen or of the unit.
+    UnlikelyValue,
+    /// A test that the model does not reproduce.
+    TestMismatch,
+    /// A fit that is weak or unphysical.
+    WeakFit,
+    /// A measured pressure that the computed state does not meet.
+    PressureMismatch,
+    /// A stop in the dip of the gas-oil ratio just below the bubble point.
+    EarlyEnd,
+    /// Flow near to sonic in the tubing.
+    NearSonic,
+    /// Injection held back by a limit.
+    InjectionShortfall,
+    /// Injection pressure near to the stated limit.
+    InjectionPressure,
+    /// Something that the model does not contain but the case suggests.
+    NotModelled,
+    /// A sanity check of the result failed or is near failing.
+    Sanity,
+}
+
+/// A named weakness of the data or the result.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct Doubt {
+    /// Which.
+    pub kind: DoubtKind,
+    /// Well, injector, "tank" or "fluid".
+    pub about: String,
+    /// What was seen.
+    pub seen: String,
+    /// The likely cause.
+    pub cause: String,
+    /// What to do.
+    pub advice: String,
+}
+
+/// The work done, to see slow-downs in review.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Default)]
+pub struct Work {
+    /// Accepted integrator steps.
+    pub steps: u64,
+    /// Right-hand sides evaluated.
+    pub right_hand_sides: u64,
+    /// Tubing traverses.
+    pub traverses: u64,
+    /// Material-balance closure solves.
+    pub closure_solves: u64,
+    /// Integrator segments (restarts).
+    pub segments: u64,
+}
+
+/// A finished forecast.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Forecast {
+    /// First day.
+    pub start: Date,
+    /// Days from the start at which the run stopped.
+    pub end_days: f64,
+    /// Why the run stopped ("period ended", "no well flows", "balance has no solution").
+    pub end_text: &'static str,
+    /// Oil initially in place, STB.
+    pub oil_in_place_stb: f64,
+    /// Oil made before the forecast began, STB.
+    pub produced_before_stb: f64,
+    /// Pressure at the start of the forecast, psia.
+    pub start_pressure_psia: f64,
+    /// Reporting periods up to the end of the run.
+    pub periods: Vec<Period>,
+    /// The tank, a row per period.
+    pub tank: Vec<TankRow>,
+    /// The wells.
+    pub wells: Vec<WellResult>,
+    /// The injectors.
+    pub injectors: Vec<InjectorResult>,
+    /// What happened, in order of time.
+    pub events: Vec<EventRecord>,
+    /// Doubts about data and result.
+    pub doubts: Vec<Doubt>,
+    /// Worst relative residual of the balance over periods.
+    pub balance_residual: f64,
+    /// Work done.
+    pub work: Work,
+}

@@ -1,0 +1,122 @@
+//! Everything a forecast needs, as plain checked data in oilfield units.
+
+use crate::fluid::FluidSpec;
+use crate::tank::TankSpec;
+use crate::well::WellSpec;
+use jiff::civil::Date;
+
+/// Length of a reporting period.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Every {
+    /// Calendar months.
+    Month,
+    /// Calendar quarters.
+    Quarter,
+    /// Calendar years.
+    Year,
+}
+
+/// The calendar of the forecast.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub struct PeriodSpec {
+    /// First day.
+    pub start: Date,
+    /// The day after the last.
+    pub end: Date,
+    /// Reporting period.
+    pub every: Every,
+}
+
+/// What an injector puts into the tank.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum InjectedFluid {
+    /// Water; surface volumes in STB.
+    Water,
+    /// Gas; surface volumes in scf.
+    Gas,
+}
+
+/// What sets an injector's rate.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum InjectionControl {
+    /// A constant surface rate, STB/d or scf/d.
+    Rate(f64),
+    /// A share of the tank's current total withdrawal at reservoir conditions.
+    VoidageReplacement(f64),
+}
+
+/// One injector, in oilfield units. Rates are calendar-day.
+#[derive(Debug, Clone, PartialEq)]
+pub struct InjectorSpec {
+    /// Name, unique in the scenario.
+    pub name: String,
+    /// Water or gas.
+    pub fluid: InjectedFluid,
+    /// First day; `None`: the start of the period.
+    pub start: Option<Date>,
+    /// Day from which it is shut; `None`: never.
+    pub end: Option<Date>,
+    /// What sets the rate.
+    pub control: InjectionControl,
+    /// Highest surface rate, STB/d or scf/d.
+    pub rate_limit: Option<f64>,
+    /// Part of the injected volume that supports the tank; the rest is lost.
+    pub effective_fraction: f64,
+    /// Highest bottom-hole pressure, psia, from the user's fracture figure.
+    pub bottomhole_limit_psia: Option<f64>,
+    /// Surface rate per pressure above the tank's, STB/d/psi or scf/d/psi.
+    pub injectivity: Option<f64>,
+}
+
+/// What a dated event changes: the whole new settings of what it names.
+#[derive(Debug, Clone, PartialEq)]
+pub enum Change {
+    /// Well of this index takes these settings.
+    Well(usize, Box<WellSpec>),
+    /// Injector of this index takes these settings.
+    Injector(usize, InjectorSpec),
+    /// The tank takes these relative permeabilities and this water model (its volumes cannot change).
+    Tank(Box<TankSpec>),
+}
+
+/// A dated event.
+#[derive(Debug, Clone, PartialEq)]
+pub struct ChangeSpec {
+    /// Acts from 00:00 of this day.
+    pub on: Date,
+    /// The name of the well or injector, or "tank".
+    pub name: String,
+    /// What it sets, as the user wrote it ("skin = -2.0").
+    pub text: String,
+    /// The new settings; they include those of earlier events on the same name.
+    pub change: Change,
+}
+
+/// How tightly the equations are solved.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Default)]
+pub enum Tolerance {
+    /// Holds the numbers stated in the documentation.
+    #[default]
+    Normal,
+    /// A hundred times tighter, to check the former.
+    Tight,
+}
+
+/// Everything a forecast needs: one case of a scenario, resolved.
+#[derive(Debug, Clone, PartialEq)]
+pub struct FieldSpec {
+    /// Calendar.
+    pub period: PeriodSpec,
+    /// Fluid.
+    pub fluid: FluidSpec,
+    /// Tank.
+    pub tank: TankSpec,
+    /// Producing wells.
+    pub wells: Vec<WellSpec>,
+    /// Injectors.
+    pub injectors: Vec<InjectorSpec>,
+    /// Dated events, sorted by date.
+    pub changes: Vec<ChangeSpec>,
+    /// Numerics.
+    pub tolerance: Tolerance,
+}

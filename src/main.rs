@@ -1,0 +1,5 @@
+//! The `wane` program: everything is in the library.
+
+fn main() -> std::process::ExitCode {
+    wane::cli::run()
+}

@@ -1,0 +1,1 @@
+//! CSV, JSON and pictures of a finished forecast.

@@ -1,0 +1,5 @@
+//! Relative permeability and compressibility of the rock.
+
+mod corey;
+
+pub use corey::{CoreySpec, RelativePermeability};

@@ -1,0 +1,1 @@
+//! The scenario file: parse, check, resolve cases, point at the offending line.

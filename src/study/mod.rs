@@ -1,0 +1,1 @@
+//! Compares cases (and, later, odds, levers and edge maps).

@@ -1,0 +1,54 @@
+//! The tank as the user states it.
+
+use crate::rock::CoreySpec;
+
+/// How the water that flows to the wells is computed.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum WaterModel {
+    /// None flows: the water in the tank is connate.
+    Connate,
+    /// Fractional flow at the tank's average saturation.
+    Average,
+}
+
+/// What the tank had made before the forecast begins; surface volumes.
+#[derive(Debug, Clone, Copy, Default, PartialEq)]
+pub struct ProducedSpec {
+    /// Oil, STB.
+    pub oil_stb: f64,
+    /// Gas, scf.
+    pub gas_scf: f64,
+    /// Water, STB.
+    pub water_stb: f64,
+    /// Water injected, STB (all of it; the effective fraction is the next field).
+    pub injected_water_stb: f64,
+    /// Gas injected, scf.
+    pub injected_gas_scf: f64,
+    /// Measured reservoir pressure at the start of the forecast, psia: compared, not imposed.
+    pub measured_pressure_psia: Option<f64>,
+}
+
+/// The tank as the user states it, in oilfield units.
+#[derive(Debug, Clone, PartialEq)]
+pub struct TankSpec {
+    /// Oil initially in place, STB.
+    pub oil_in_place_stb: f64,
+    /// Initial pressure at the datum, psia.
+    pub pressure_psia: f64,
+    /// Temperature, degF.
+    pub temperature_degf: f64,
+    /// Connate water saturation, fraction.
+    pub connate_water: f64,
+    /// Pore compressibility, 1/psi.
+    pub pore_compressibility_1_psi: f64,
+    /// Primary gas-cap volume over oil-zone volume at initial conditions.
+    pub gas_cap_ratio: f64,
+    /// True vertical depth at which the pressure is stated, ft; `None`: each well's perforations.
+    pub datum_tvd_ft: Option<f64>,
+    /// What the tank made before the forecast begins.
+    pub produced: Option<ProducedSpec>,
+    /// How water reaches the wells.
+    pub water_model: WaterModel,
+    /// Relative permeability.
+    pub relative_permeability: CoreySpec,
+}

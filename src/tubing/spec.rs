@@ -1,0 +1,38 @@
+//! The tubing of one well as the user states it.
+
+/// Which hydraulics model gives the pressure gradient.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum TubingMethod {
+    /// Hasan and Kabir (1988, 2010): drift flux with blended void fraction.
+    HasanKabir,
+    /// Hagedorn and Brown (1965) with the bubble-flow modification.
+    HagedornBrown,
+    /// Beggs and Brill (1973) with the corrections of Payne et al. (1979).
+    BeggsBrill,
+    /// Gas and liquid at one velocity.
+    NoSlip,
+}
+
+/// A stretch of tubing of one inside diameter, from the end of the stretch above it (or the wellhead) down.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct TubingSection {
+    /// Measured depth at which the stretch ends, ft; the last one reaches the perforations.
+    pub to_md_ft: f64,
+    /// Inside diameter, in.
+    pub diameter_in: f64,
+    /// Absolute roughness, in.
+    pub roughness_in: f64,
+}
+
+/// The tubing of one well as the user states it, in oilfield units.
+#[derive(Debug, Clone, PartialEq)]
+pub struct TubingSpec {
+    /// Hydraulics model.
+    pub method: TubingMethod,
+    /// Stretches from the wellhead down. The last `to_md_ft` may be infinite.
+    pub sections: Vec<TubingSection>,
+    /// Survey: measured and true vertical depth, ft, from the wellhead down; begins with (0, 0).
+    pub survey: Vec<(f64, f64)>,
+    /// Flowing temperature at the wellhead, degF.
+    pub wellhead_temperature_degf: f64,
+}

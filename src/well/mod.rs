@@ -1,0 +1,5 @@
+//! Where inflow and tubing meet: stable rate, flow margin.
+
+mod spec;
+
+pub use spec::WellSpec;

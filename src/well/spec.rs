@@ -1,0 +1,48 @@
+//! One producing well as the user states it.
+
+use crate::inflow::InflowSpec;
+use crate::tubing::TubingSpec;
+use jiff::civil::Date;
+
+/// One producing well as the user states it, in oilfield units.
+#[derive(Debug, Clone, PartialEq)]
+pub struct WellSpec {
+    /// Name, unique in the scenario.
+    pub name: String,
+    /// Pressure of the line into which the well flows, psia.
+    pub line_pressure_psia: f64,
+    /// Producing-day liquid rate to which the well is choked back, STB/d.
+    pub target_rate_stb_d: Option<f64>,
+    /// Fraction of the time on stream.
+    pub uptime: f64,
+    /// Measured depth of the perforations, ft; `None`: the end of the survey.
+    pub perforations_md_ft: Option<f64>,
+    /// This well's free gas against the tank's.
+    pub gor_factor: f64,
+    /// This well's water-oil ratio against the tank's.
+    pub water_factor: f64,
+    /// First day on stream; `None`: the start of the period.
+    pub start: Option<Date>,
+    /// Day from which it is shut in; `None`: never.
+    pub end: Option<Date>,
+    /// Whether a well that died comes back by itself when it can.
+    pub may_flow_again: bool,
+    /// Skin.
+    pub skin: f64,
+    /// Skin at the time of the tests that gave the coefficient.
+    pub skin_at_test: f64,
+    /// Drainage radius, ft, and wellbore radius, ft, when stated.
+    pub radii_ft: Option<(f64, f64)>,
+    /// Lowest allowed flowing pressure at the perforations, psia.
+    pub minimum_flowing_pressure_psia: Option<f64>,
+    /// Producing-day liquid rate below which the well is given up, STB/d.
+    pub minimum_rate_stb_d: Option<f64>,
+    /// Water cut above which the well is given up.
+    pub maximum_water_cut: Option<f64>,
+    /// Gas-oil ratio above which the well is given up, scf/STB.
+    pub maximum_gor_scf_stb: Option<f64>,
+    /// Inflow.
+    pub inflow: InflowSpec,
+    /// Tubing.
+    pub tubing: TubingSpec,
+}
