@@ -178,6 +178,13 @@ impl BlackOil {
         self.initial_bubble_point_psia
     }
 
+    /// Bubble point of oil that holds `rs_scf_stb` at any temperature, psia.
+    #[inline]
+    pub fn bubble_point_at_psia(&self, rs_scf_stb: f64, temperature_degf: f64) -> f64 {
+        let t = hold(temperature_degf, TEMPERATURE_RANGE_DEGF);
+        (self.standing.bubble_point_psia(rs_scf_stb, t) * self.inverse_tuning_factor).max(0.0)
+    }
+
     /// f of Rs_sat(p, T) = Standing's Rs(f p, T): the correlation's bubble point over the measured one.
     pub fn tuning_factor(&self) -> f64 {
         self.tuning_factor

@@ -248,9 +248,7 @@ impl Hydraulics for BeggsBrill {
             friction_psi_ft: pipe.friction_psi_ft(moody, no_slip_density, flow.mixture_velocity_ft_s()),
             kinetic: flow.kinetic(slip_density),
             holdup,
-            margin: laminar_margin(reynolds, laminar)
-                .min(map.margin(regime))
-                .min(exponent_margin(ln_y, branch)),
+            margin: laminar_margin(reynolds, laminar).min(map.margin(regime)).min(exponent_margin(ln_y, branch)),
         }
     }
 

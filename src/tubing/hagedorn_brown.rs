@@ -76,8 +76,8 @@ pub fn bubble_holdup(mixture_velocity_ft_s: f64, gas_velocity_ft_s: f64) -> f64 
 #[inline]
 pub fn holdup(flow: &Flow, pipe: &Pipe) -> (f64, f64) {
     let n = LnGroups::new(flow, pipe);
-    let ln_h = n.liquid_velocity - 0.575 * n.gas_velocity + 0.1 * (flow.pressure_psia.ln() - LN_PRESSURE_BASE)
-        - n.diameter;
+    let ln_h =
+        n.liquid_velocity - 0.575 * n.gas_velocity + 0.1 * (flow.pressure_psia.ln() - LN_PRESSURE_BASE) - n.diameter;
     let over_psi = holdup_over_psi(ln_h / LN_10 + log10_cnl(n.viscosity));
     let b = (n.gas_velocity + 0.38 * n.viscosity - 2.14 * n.diameter).exp();
     (over_psi, (over_psi * psi(b)).max(flow.no_slip_holdup).min(1.0))

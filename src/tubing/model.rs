@@ -50,8 +50,7 @@ impl Pipe {
     /// Friction gradient `f rho v^2/(2 gc d)`, psi/ft, with the Moody factor.
     #[inline]
     pub(crate) fn friction_psi_ft(&self, moody: f64, density_lb_ft3: f64, velocity_ft_s: f64) -> f64 {
-        moody * density_lb_ft3 * velocity_ft_s * velocity_ft_s
-            / (2.0 * GRAVITY_FT_S2 * IN2_PER_FT2 * self.diameter_ft)
+        moody * density_lb_ft3 * velocity_ft_s * velocity_ft_s / (2.0 * GRAVITY_FT_S2 * IN2_PER_FT2 * self.diameter_ft)
     }
 
     /// Gravity gradient along the pipe, psi/ft.
