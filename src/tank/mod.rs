@@ -98,7 +98,7 @@ impl Tank {
     ) -> Result<Self, Vec<Fault>> {
         let p_i = spec.pressure_psia;
         let (lowest, highest) = fluid.pressure_range_psia();
-        if !(p_i > lowest && p_i < highest) {
+        if !(lowest..=highest).contains(&p_i) {
             return Err(vec![
                 Fault::new("pressure", format!("{p_i:.1} psia is outside the range of the fluid model"))
                     .help(format!("the fluid model covers {lowest:.1} to {highest:.0} psia")),
