@@ -1,6 +1,8 @@
 //! Shared by the tests: reads the reference cases copied into `tests/data`.
 #![allow(dead_code, clippy::unwrap_used, missing_docs)]
 
+pub mod fields;
+
 use serde_json::Value;
 
 /// One case of a reference file, by its id.
