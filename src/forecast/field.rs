@@ -160,7 +160,8 @@ fn surroundings<'a>(spec: &FieldSpec, fluid: &'a BlackOil, tank: &'a Tank, start
         start,
         accuracy_psi: match spec.tolerance {
             Tolerance::Normal => 0.02,
-            Tolerance::Tight => 0.0002,
+            Tolerance::Tight => 2e-4,
+            Tolerance::Reference => 2e-6,
         },
     }
 }

@@ -71,6 +71,7 @@ impl<'a> Run<'a> {
         let (rtol, atol) = match field.spec.tolerance {
             Tolerance::Normal => (1e-7, 1e-9),
             Tolerance::Tight => (1e-9, 1e-11),
+            Tolerance::Reference => (1e-11, 1e-13),
         };
         Self {
             field,
