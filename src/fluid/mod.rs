@@ -2,13 +2,20 @@
 //!
 //! One file per published method. [`BlackOil`] joins the defaults; [`FluidTable`] takes a laboratory's rows.
 
+pub mod abdul_majeed;
+pub mod al_marhoun;
 pub mod baker_swerdloff;
+pub mod beal_standing;
 pub mod beggs_robinson;
 pub mod dranchuk_abou_kassem;
+pub mod glaso;
+pub mod hall_yarborough;
 pub mod lee_gonzalez_eakin;
 pub mod mccain;
 pub mod osif;
+pub mod petrosky_farshad;
 pub mod standing;
+pub mod standing_gas;
 pub mod sutton;
 pub mod vasquez_beggs;
 pub mod wichert_aziz;
