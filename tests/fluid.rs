@@ -123,6 +123,40 @@ fn the_oil_carries_the_mass_of_its_gas() {
     }
 }
 
+/// Gradients known by heart in the trade: gas 0.01875 g p/(z T) psi/ft, fresh water 0.433 psi/ft, 35 API oil 0.368 psi/ft.
+#[test]
+fn densities_give_the_gradients_of_the_trade() {
+    let fluid = BlackOil::new(&FluidSpec::new(35.0, 0.7, 400.0), 180.0).unwrap();
+    let s = fluid.in_situ(1500.0, 150.0, 400.0);
+    let gas_psi_ft = 0.018_75 * 0.7 * 1500.0 / (s.z * (150.0 + 459.67));
+    assert!((s.gas_density_lb_ft3 / 144.0 / gas_psi_ft - 1.0).abs() < 5e-4, "gas {}", s.gas_density_lb_ft3);
+    let water_psi_ft = fluid.standard_water_density_lb_ft3() / 144.0;
+    assert!((water_psi_ft - 0.433).abs() < 5e-4, "water {water_psi_ft}");
+    let oil_psi_ft = fluid.oil_specific_gravity() * 62.366 / 144.0;
+    assert!((oil_psi_ft - 0.368).abs() < 5e-4, "oil {oil_psi_ft}");
+}
+
+/// Separator conditions act on the Vasquez-Beggs group only: by hand, gs = 0.78 [1 + 5.912e-5*34*75 log10(64.7/114.7)].
+#[test]
+fn separator_conditions_correct_the_gas_gravity_of_the_compressibility() {
+    let plain = BlackOil::new(&osprey(), 190.0).unwrap();
+    let stated = BlackOil::new(&FluidSpec { separator: Some((64.7, 75.0)), ..osprey() }, 190.0).unwrap();
+    assert_eq!(plain.table_row(2000.0), stated.table_row(2000.0));
+    let gravity = 0.78 * (1.0 + 5.912e-5 * 34.0 * 75.0 * (64.7_f64 / 114.7).log10());
+    let shift = -1e-5 * 1180.0 * (gravity - 0.78) * (4000.0_f64 / 2650.0).ln();
+    let got = (plain.bo(4000.0, 620.0) / stated.bo(4000.0, 620.0)).ln();
+    assert!(shift > 1e-4 && (got - shift).abs() < 1e-12, "{got} against {shift}");
+}
+
+/// Osif takes grams per litre: 100,000 ppm of a brine of 66.914 lb/ft3 (McCain by hand) is 107.19 g/L.
+#[test]
+fn water_compressibility_is_osifs_at_the_salt_per_litre() {
+    let spec = FluidSpec { salinity_ppm: 100_000.0, ..FluidSpec::new(35.0, 0.7, 400.0) };
+    let compressibility = BlackOil::new(&spec, 220.0).unwrap().water_compressibility_1_psi(3000.0);
+    let by_hand = 1.0 / (7.033 * 3000.0 + 541.5 * 107.19 - 537.0 * 220.0 + 403_300.0);
+    assert!((compressibility / by_hand - 1.0).abs() < 1e-5, "{compressibility} against {by_hand}");
+}
+
 #[test]
 fn an_oil_whose_closure_would_have_several_roots_is_refused() {
     // A light oil with 1,900 scf/STB: Standing gives a bubble point near 5,500 psia, where dBo/dRs passes Bg.

@@ -4,6 +4,8 @@
 //! and reproduced by an independent calculation; "reference" cases are independent calculations or reference equations of
 //! state. Tolerances are the file's own: the printed digits of the source.
 
+#![allow(clippy::unwrap_used)]
+
 use serde_json::Value;
 use wane::fluid::{
     BlackOil, FluidSpec, abdul_majeed, al_marhoun, baker_swerdloff, beal_standing,
@@ -191,8 +193,8 @@ fn gas_volume_factor(c: &mut Case) {
     };
     let (p, t_degr) = (c.input("p_psia"), c.input("T_degR"));
     let t_degf = t_degr - 459.67;
-    let state = BlackOil::new(&spec, t_degf).unwrap().in_situ(p, t_degf, 500.0);
-    let row = BlackOil::new(&spec, t_degf).unwrap().table_row(p);
+    let fluid = BlackOil::new(&spec, t_degf).unwrap();
+    let (state, row) = (fluid.in_situ(p, t_degf, 500.0), fluid.table_row(p));
     c.compare("Bg_ft3_scf", state.bg_ft3_scf * c.input("z") / state.z);
     c.compare("Bg_rb_scf", row.bg_rb_scf * c.input("z") / row.z);
 }
@@ -260,6 +262,38 @@ fn wichert_aziz_corrects_the_published_sour_gas() {
         wichert_aziz::corrected(sutton::PseudoCritical { temperature_degr: 389.38, pressure_psia: 669.1 }, 0.10, 0.05);
     assert!((corrected.temperature_degr - 368.64).abs() < 0.01, "{corrected:?}");
     assert!((corrected.pressure_psia - 630.44).abs() < 0.05, "{corrected:?}");
+}
+
+/// The printed equation and constants of Dranchuk and Abou-Kassem (1975), written out again: z must satisfy it.
+#[test]
+fn the_compressibility_factor_satisfies_the_printed_equation() {
+    let a = [0.3265, -1.07, -0.5339, 0.015_69, -0.051_65, 0.5475, -0.7361, 0.1844, 0.1056, 0.6134, 0.721];
+    for i in 0..=100 {
+        let t = 1.05 + 1.95 * f64::from(i) / 100.0;
+        for j in 1..=300 {
+            let ppr = 0.1 * f64::from(j);
+            let z = dranchuk_abou_kassem::z_factor(ppr, t);
+            let r = 0.27 * ppr / (z * t);
+            let printed = 1.0
+                + (a[0] + a[1] / t + a[2] / t.powi(3) + a[3] / t.powi(4) + a[4] / t.powi(5)) * r
+                + (a[5] + a[6] / t + a[7] / t.powi(2)) * r.powi(2)
+                - a[8] * (a[6] / t + a[7] / t.powi(2)) * r.powi(5)
+                + a[9] * (1.0 + a[10] * r * r) * (r * r / t.powi(3)) * (-a[10] * r * r).exp();
+            // Rounding, magnified where the isotherm is flat (Tpr 1.05).
+            assert!((printed - z).abs() < 1e-12, "ppr {ppr}, Tpr {t}: {z} leaves {}", printed - z);
+        }
+    }
+}
+
+/// Outside the fit the factor is held at its border, and gas at no pressure is ideal.
+#[test]
+fn the_compressibility_factor_is_held_to_the_range_of_the_fit() {
+    let z = dranchuk_abou_kassem::z_factor;
+    assert_eq!(z(3.0, 0.8), z(3.0, 1.05));
+    assert_eq!(z(3.0, 5.0), z(3.0, 3.0));
+    assert_eq!(z(50.0, 1.5), z(30.0, 1.5));
+    assert_eq!(z(0.0, 1.5), 1.0);
+    assert!((z(1e-9, 1.5) - 1.0).abs() < 1e-8);
 }
 
 /// Without sour components the mixture is the hydrocarbon gas and the correction vanishes.

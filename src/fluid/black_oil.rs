@@ -3,9 +3,10 @@
 use super::beggs_robinson::BeggsRobinson;
 use super::dranchuk_abou_kassem::{Isotherm, MAXIMUM_PPR};
 use super::gas::Gas;
+use super::lee_gonzalez_eakin::LB_FT3_PER_G_CM3;
 use super::mccain::McCainWater;
 use super::standing::Standing;
-use super::{FluidSpec, ReservoirFluid, baker_swerdloff, checks, oil_specific_gravity, vasquez_beggs};
+use super::{FluidSpec, ReservoirFluid, baker_swerdloff, checks, oil_specific_gravity, osif, vasquez_beggs};
 use crate::fault::Fault;
 use crate::units::constants::{DEGF_TO_DEGR, FRESH_WATER_LB_FT3, FT3_PER_BBL};
 
@@ -37,7 +38,7 @@ pub struct BlackOil {
     beggs_robinson: BeggsRobinson,
     gas: Gas,
     water: McCainWater,
-    /// Mass of a barrel of stock-tank oil without gas, lb/5.614583 ft3, as lb/ft3.
+    /// Density of stock-tank oil, lb/ft3.
     oil_standard_density_lb_ft3: f64,
     /// Mass that a scf adds to a stock-tank barrel, lb/ft3 per scf/STB.
     gas_mass_lb_ft3: f64,
@@ -198,6 +199,13 @@ impl BlackOil {
         self.gas.standard_density_lb_scf
     }
 
+    /// Compressibility of the water by Osif at tank temperature, 1/psi: reported only, the volume factor is McCain's.
+    pub fn water_compressibility_1_psi(&self, pressure_psia: f64) -> f64 {
+        let density_g_l = 1e3 * self.water.standard_density_lb_ft3() / LB_FT3_PER_G_CM3;
+        let salt_g_l = 1e-6 * self.spec.salinity_ppm * density_g_l;
+        osif::compressibility_1_psi(self.held_pressure(pressure_psia), self.temperature_degf, salt_g_l)
+    }
+
     pub(super) fn gas(&self) -> &Gas {
         &self.gas
     }
@@ -233,12 +241,25 @@ impl BlackOil {
         let mut safe_psia = 0.0;
         while pressure_psia < self.maximum_pressure_psia {
             if !self.closure_falls_at(pressure_psia) {
-                return safe_psia;
+                return self.closure_limit_between(safe_psia, pressure_psia);
             }
             safe_psia = pressure_psia;
             pressure_psia += STEP_PSIA;
         }
         self.maximum_pressure_psia
+    }
+
+    /// Bisects the pressure at which Bg meets dBo/dRs.
+    fn closure_limit_between(&self, mut safe_psia: f64, mut unsafe_psia: f64) -> f64 {
+        for _ in 0..40 {
+            let middle_psia = 0.5 * (safe_psia + unsafe_psia);
+            if self.closure_falls_at(middle_psia) {
+                safe_psia = middle_psia;
+            } else {
+                unsafe_psia = middle_psia;
+            }
+        }
+        safe_psia
     }
 
     fn closure_falls_at(&self, pressure_psia: f64) -> bool {
