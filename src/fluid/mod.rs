@@ -25,11 +25,13 @@ mod checks;
 mod gas;
 mod range_notes;
 mod spec;
+mod state;
 mod table;
 
-pub use black_oil::{BlackOil, FluidRow, InSitu};
+pub use black_oil::BlackOil;
 pub use range_notes::RangeNote;
 pub use spec::FluidSpec;
+pub use state::{FluidRow, InSitu};
 pub use table::{FluidTable, FluidTableRow, TableWater};
 
 /// What the tank needs to know of the fluid, at the tank's temperature.
