@@ -25,7 +25,6 @@ struct Margin {
 /// Makes the forecast from its trace.
 pub(super) fn forecast(field: &Field, trace: Trace) -> Result<Forecast, RunError> {
     let spec = &field.spec;
-    eprintln!("DBG run {}", trace.memory.traverses.get());
     let mut rows = Rows::new(field, &trace);
     let mut list = periods(&spec.period);
     list.retain(|p| p.start_days < trace.end_days);
@@ -33,7 +32,6 @@ pub(super) fn forecast(field: &Field, trace: Trace) -> Result<Forecast, RunError
         period.run_days = period.end_days.min(trace.end_days);
         rows.add(period)?;
     }
-    eprintln!("DBG rows {}", trace.memory.traverses.get());
     let Rows { tank, wells, injectors, seen, .. } = rows;
     let results = spec
         .wells

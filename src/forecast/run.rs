@@ -203,7 +203,6 @@ impl<'a> Run<'a> {
                 return self.balance_gone(error);
             }
         };
-        eprintln!("DBG stretch to {} {}", stretch.to_days, self.trace.memory.traverses.get());
         let watch = match end {
             End::Watch(i) => Some(dynamics.watches[i]),
             _ => None,
