@@ -4,9 +4,7 @@ mod report_support;
 
 use report_support as made;
 use std::path::Path;
-use wane::report::{
-    Drawing, Provenance, UnitSystem, compare_picture, curves_picture, pressure_picture, rates_picture,
-};
+use wane::report::{Drawing, Provenance, UnitSystem, compare_picture, curves_picture, pressure_picture, rates_picture};
 
 fn keep(name: &str, drawing: &Drawing) {
     let folder = Path::new(env!("CARGO_TARGET_TMPDIR")).join("pictures");

@@ -78,7 +78,9 @@ pub(super) fn cell(value: f64) -> String {
 }
 
 /// Makes a CSV file in memory.
-pub(super) fn csv_bytes(fill: impl FnOnce(&mut csv::Writer<Vec<u8>>) -> csv::Result<()>) -> Result<Vec<u8>, ReportError> {
+pub(super) fn csv_bytes(
+    fill: impl FnOnce(&mut csv::Writer<Vec<u8>>) -> csv::Result<()>,
+) -> Result<Vec<u8>, ReportError> {
     let mut writer = csv::Writer::from_writer(Vec::new());
     fill(&mut writer)?;
     writer.into_inner().map_err(|e| ReportError::Csv(e.into_error().into()))

@@ -143,8 +143,12 @@ fn beside(name: &std::ffi::OsStr, what: &str) -> OsString {
 
 /// Makes `parent` and tells which folders were missing, outermost first.
 fn make_parents(parent: &Path) -> io::Result<Vec<PathBuf>> {
-    let mut missing: Vec<PathBuf> =
-        parent.ancestors().filter(|p| !p.as_os_str().is_empty()).take_while(|p| !p.exists()).map(Path::to_owned).collect();
+    let mut missing: Vec<PathBuf> = parent
+        .ancestors()
+        .filter(|p| !p.as_os_str().is_empty())
+        .take_while(|p| !p.exists())
+        .map(Path::to_owned)
+        .collect();
     missing.reverse();
     let mut made = Vec::new();
     for folder in missing {

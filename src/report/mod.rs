@@ -115,10 +115,7 @@ impl OutFile {
 /// # Errors
 /// When the picture cannot be drawn.
 pub fn picture_files(stem: &str, drawing: &Drawing) -> Result<[OutFile; 2], ReportError> {
-    Ok([
-        OutFile::new(format!("{stem}.svg"), drawing.to_svg()?),
-        OutFile::new(format!("{stem}.png"), drawing.to_png()?),
-    ])
+    Ok([OutFile::new(format!("{stem}.svg"), drawing.to_svg()?), OutFile::new(format!("{stem}.png"), drawing.to_png()?)])
 }
 
 /// Every file of one forecast except the manifest: tables, summary, pictures.

@@ -126,8 +126,7 @@ fn well(forecast: &Forecast, well: &WellResult, units: &Units) -> Json {
             ])
         })
         .collect();
-    let plateau_end =
-        well.plateau_end.map_or(Json::Null, |days| Json::text(day_at(forecast.start, days).to_string()));
+    let plateau_end = well.plateau_end.map_or(Json::Null, |days| Json::text(day_at(forecast.start, days).to_string()));
     Json::Object(vec![
         plain("name", well.name.as_str()),
         plain("natural_flow_end", end),

@@ -110,7 +110,11 @@ pub fn well(name: &str, periods: &[Period], plateau: f64, life: f64, wet: f64) -
 
 /// Parabolic curves whose gap closes.
 pub fn curves() -> Vec<CurveSet> {
-    let instants = [("start", 0.0, 3600.0, 900.0), ("mid-life", 1000.0, 2700.0, 700.0), ("end of natural flow", 2100.0, 1990.0, 0.0)];
+    let instants = [
+        ("start", 0.0, 3600.0, 900.0),
+        ("mid-life", 1000.0, 2700.0, 700.0),
+        ("end of natural flow", 2100.0, 1990.0, 0.0),
+    ];
     instants
         .into_iter()
         .map(|(label, t, reservoir, _)| {
@@ -167,7 +171,8 @@ pub fn forecast_of(wells: Vec<WellResult>, periods: Vec<Period>, injected_stb_d:
                 oil_cum_stb: sum(|r| r.oil_cum_stb),
                 water_cum_stb: sum(|r| r.water_cum_stb),
                 gas_cum_scf: sum(|r| r.gas_cum_scf),
-                pressure_psia: 3600.0 - 1800.0 * (p.run_days / 2600.0).powf(0.8) + injected_stb_d * 0.05 * (p.run_days / 2600.0),
+                pressure_psia: 3600.0 - 1800.0 * (p.run_days / 2600.0).powf(0.8)
+                    + injected_stb_d * 0.05 * (p.run_days / 2600.0),
                 bubble_point_psia: 2650.0,
                 oil_saturation: 0.75,
                 gas_saturation: 0.03,

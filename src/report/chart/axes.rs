@@ -27,6 +27,12 @@ impl Span {
         found.map(|(low, high)| Self::new(low, high))
     }
 
+    /// From zero to a tick above the highest value; fractions end at one.
+    pub fn from_zero(highest: f64, fraction: bool) -> Self {
+        let span = Self::new(0.0, highest * 1.04).rounded(true);
+        if fraction { Self::new(0.0, span.high.min(1.0)) } else { span }
+    }
+
     /// Widened to the next tick on both sides; `from_zero` keeps the lower end at zero.
     pub fn rounded(self, from_zero: bool) -> Self {
         let low = if from_zero { 0.0_f64.min(self.low) } else { self.low };

@@ -1,9 +1,10 @@
 //! `compare`: the cases of a scenario laid over each other.
 
+use super::Drawing;
 use super::axes::{Span, headings, legend};
+use super::rates::total_stretches;
 use super::style::{Look, look};
 use super::timeline::{Timeline, end_labels, stack};
-use super::Drawing;
 use crate::forecast::Forecast;
 use crate::report::Provenance;
 use crate::report::human;
@@ -43,7 +44,10 @@ pub fn compare_picture(cases: &[(&str, &Forecast)], provenance: &Provenance) -> 
     let end = cases.iter().filter_map(|(_, f)| f.periods.last()).map(|p| p.end_days).fold(1.0, f64::max);
     let start = cases.first().map_or_else(jiff::civil::Date::default, |(_, f)| f.start);
     let timeline = Timeline { start, days: Span::new(0.0, end) };
-    let ys: Vec<(Span, f64)> = panels_of.iter().map(|(_, zero, lines)| (span(lines, *zero), 1.0)).collect();
+    let ys: Vec<(Span, f64)> = panels_of
+        .iter()
+        .map(|(title, zero, lines)| (span(lines, *zero, title.starts_with("Water cut")), 1.0))
+        .collect();
     let panels = stack(&d, top + 26.0, height - 62.0, 110.0, timeline.days, &ys);
     for (i, ((title, _, lines), panel)) in panels_of.iter().zip(&panels).enumerate() {
         panel.draw_y(&mut d, title, 4, true);
@@ -76,19 +80,15 @@ fn case_look(index: usize) -> Look {
     Look { width: if index == 0 { 2.8 } else { 1.9 }, ..look(index) }
 }
 
-fn span(lines: &[Points], from_zero: bool) -> Span {
+fn span(lines: &[Points], from_zero: bool, fraction: bool) -> Span {
     let span = Span::of(lines.iter().flatten().map(|p| p.1)).unwrap_or(Span::new(0.0, 1.0));
-    if from_zero { Span::new(0.0, span.high).rounded(true) } else { span.rounded(false) }
+    if from_zero { Span::from_zero(span.high, fraction) } else { span.rounded(false) }
 }
 
 /// Steps of the period averages up to the end of the run.
 fn oil_rates(forecast: &Forecast) -> Points {
-    let rows = forecast.periods.iter().zip(&forecast.tank);
-    rows.flat_map(|(p, t)| {
-        let rate = t.oil_stb / (p.end_days - p.start_days);
-        [(p.start_days, rate), (p.end_days, rate)]
-    })
-    .collect()
+    let stretches = total_stretches(forecast, |t| t.oil_stb);
+    stretches.into_iter().flat_map(|(from, to, rate)| [(from, rate), (to, rate)]).collect()
 }
 
 fn pressures(forecast: &Forecast) -> Points {

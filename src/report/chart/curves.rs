@@ -19,10 +19,10 @@ const IN_A_ROW: usize = 3;
 pub fn curves_picture(well: &str, inflow: &str, curves: &[CurveSet], provenance: &Provenance) -> Drawing {
     let rows = curves.len().div_ceil(IN_A_ROW).max(1);
     let columns = curves.len().clamp(1, IN_A_ROW);
-    let mut d = Drawing::new(if columns == 1 { 720 } else { 1080 }, (150 + 430 * rows) as u32);
+    let mut d = Drawing::new(if columns == 1 { 720 } else { 1080 }, (150 + 425 * rows) as u32);
     let width = f64::from(d.size().0);
     headings(&mut d, &format!("{well} · {}", title(provenance)), inflow, &provenance.footer());
-    key(&mut d, 78.0);
+    key(&mut d, 76.0);
 
     let rate = label(provenance.units, Quantity::LiquidRate);
     let pressure = label(provenance.units, Quantity::Pressure);
@@ -31,7 +31,7 @@ pub fn curves_picture(well: &str, inflow: &str, curves: &[CurveSet], provenance:
     for (i, curve) in curves.iter().enumerate() {
         let (row, column) = (i / IN_A_ROW, i % IN_A_ROW);
         let left = 84.0 + column as f64 * (panel_width + 40.0);
-        let top = 150.0 + 430.0 * row as f64;
+        let top = 168.0 + 430.0 * row as f64;
         let panel = Panel { left, top, right: left + panel_width, bottom: top + 330.0, x, y };
         draw_instant(&mut d, &panel, curve, provenance, column == 0);
     }
@@ -76,7 +76,7 @@ fn draw_instant(d: &mut Drawing, panel: &Panel, curve: &CurveSet, provenance: &P
     panel.draw_x(d, &format!("Liquid rate, {}", rate.text), 4);
     panel.draw_frame(d);
     if first {
-        d.text((panel.left - 60.0, panel.top - 56.0), 13.0, Anchor::Left, INK, format!("Flowing pressure, {}", pressure.text));
+        d.text((24.0, panel.top - 56.0), 13.0, Anchor::Left, INK, format!("Flowing pressure, {}", pressure.text));
     }
     let heading = format!("{}, {}", capital(&curve.label), human::month(curve.date));
     d.text((panel.left, panel.top - 32.0), 13.5, Anchor::Left, INK, fitted(&heading, 13.5, width));
@@ -162,9 +162,9 @@ fn operating_point(
     }
     panel.draw_mark(d, point, Look { colour: INK, ..INFLOW_LOOK }, 4.5);
     let text = format!("{} {}{}", human::number(point.0, 0), rate.text, if choked { ", choked" } else { "" });
-    let half = super::paint::text_width(&text, 12.0) / 2.0;
-    let middle = x.clamp(panel.left + half + 4.0, panel.right - half).min(panel.left + width - half);
-    d.text((middle, (y - 15.0).max(panel.top + 8.0)), 12.0, Anchor::Middle, INK, text);
+    // Curves fall to the right: above the point on its right is room.
+    let left = (x + 9.0).min(panel.left + width - super::paint::text_width(&text, 12.0));
+    d.text((left, (y - 12.0).max(panel.top + 8.0)), 12.0, Anchor::Left, INK, text);
 }
 
 fn capital(text: &str) -> String {

@@ -24,11 +24,7 @@ pub fn fluid_picture(table: &FluidTable, provenance: &Provenance) -> Drawing {
         ("Oil volume factor, reservoir over stock tank".to_owned(), table.line(|r| r.bo_rb_stb), false),
         ("Oil viscosity, cp".to_owned(), table.line(|r| r.mu_o_cp), true),
         ("Gas deviation factor z".to_owned(), table.line(|r| r.z), false),
-        (
-            format!("Gas expansion, {}", expansion.text),
-            table.line(|r| expansion.of(1.0 / r.bg_rb_scf)),
-            true,
-        ),
+        (format!("Gas expansion, {}", expansion.text), table.line(|r| expansion.of(1.0 / r.bg_rb_scf)), true),
         ("Gas viscosity, cp".to_owned(), table.line(|r| r.mu_g_cp), true),
     ];
     let x = Span::of(table.rows.iter().map(|r| pressure.of(r.pressure_psia))).unwrap_or(Span::new(0.0, 1.0));

@@ -84,12 +84,12 @@ impl Drawing {
             let drawn = match shape {
                 Shape::Line { points, width, colour: [r, g, b] } => {
                     let stroke = (width * scale).round().max(1.0) as u32;
-                    let style = ShapeStyle { color: RGBColor(*r, *g, *b).to_rgba(), filled: false, stroke_width: stroke };
+                    let style =
+                        ShapeStyle { color: RGBColor(*r, *g, *b).to_rgba(), filled: false, stroke_width: stroke };
                     area.draw(&PathElement::new(points.iter().map(pixel).collect::<Vec<_>>(), style))
                 }
-                Shape::Area { points, colour: [r, g, b] } => {
-                    area.draw(&Polygon::new(points.iter().map(pixel).collect::<Vec<_>>(), RGBColor(*r, *g, *b).filled()))
-                }
+                Shape::Area { points, colour: [r, g, b] } => area
+                    .draw(&Polygon::new(points.iter().map(pixel).collect::<Vec<_>>(), RGBColor(*r, *g, *b).filled())),
                 Shape::Text { at, size, anchor, colour: [r, g, b], text } => {
                     let side = match anchor {
                         Anchor::Left => HPos::Left,
@@ -100,7 +100,8 @@ impl Drawing {
                     let style = TextStyle::from((FAMILY, size * scale).into_font())
                         .color(&ink)
                         .pos(Pos::new(side, VPos::Center));
-                    area.draw(&Text::new(text.as_str(), pixel(at), style))
+                    // The box that is centred reaches from the ascent to the descent, so that figures sit too high in it.
+                    area.draw(&Text::new(text.as_str(), pixel(&(at.0, at.1 + 0.09 * size)), style))
                 }
             };
             drawn.map_err(picture_error)?;

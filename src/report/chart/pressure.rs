@@ -1,8 +1,8 @@
 //! `pressure`: reservoir pressure, gas-oil ratio and water cut over time.
 
 use super::axes::{Span, headings, legend};
-use super::rates::{COMMON, ends_of_flow, timeline, title};
-use super::style::{Dash, Look, QUIET, look};
+use super::rates::{ends_of_flow, timeline, title};
+use super::style::{Dash, Look, QUIET, TANK, TOTAL, look};
 use super::timeline::{draw_moments, moments_height, stack};
 use super::{Anchor, Drawing};
 use crate::forecast::Forecast;
@@ -11,7 +11,7 @@ use crate::report::labels::{Label, Quantity, label};
 
 type Points = Vec<(f64, f64)>;
 
-const BUBBLE: Look = Look { colour: QUIET, width: 1.4, dash: Dash::Long, ..COMMON };
+const BUBBLE: Look = Look { colour: QUIET, width: 1.4, dash: Dash::Long, ..TANK };
 
 /// One panel.
 struct State {
@@ -28,11 +28,10 @@ pub fn pressure_picture(forecast: &Forecast, provenance: &Provenance) -> Drawing
     headings(&mut d, &title(provenance), "States at the end of each period", &provenance.footer());
 
     let timeline = timeline(forecast);
-    let mut entries = vec![
-        ("tank".to_owned(), COMMON, false),
-        ("bubble point of the oil in the tank".to_owned(), BUBBLE, false),
-    ];
+    let mut entries =
+        vec![("tank".to_owned(), TANK, false), ("bubble point of the oil in the tank".to_owned(), BUBBLE, false)];
     if forecast.wells.len() > 1 {
+        entries.push(("all wells".to_owned(), TOTAL, false));
         entries.extend(forecast.wells.iter().enumerate().map(|(i, w)| (w.name.clone(), look(i), false)));
     }
     let top = 64.0 + legend(&mut d, 64.0, &entries);
@@ -59,7 +58,11 @@ impl State {
     fn span(&self) -> Span {
         let values = self.lines.iter().flat_map(|(points, _)| points.iter().map(|p| p.1));
         let span = Span::of(values).unwrap_or(Span::new(0.0, 1.0));
-        if self.from_zero { Span::new(0.0, span.high).rounded(true) } else { span.rounded(false) }
+        if self.from_zero {
+            Span::from_zero(span.high, self.title.starts_with("Water cut"))
+        } else {
+            span.rounded(false)
+        }
     }
 }
 
@@ -83,17 +86,18 @@ fn states(forecast: &Forecast, provenance: &Provenance) -> Vec<State> {
     let mut tank_pressure = vec![(0.0, pressure.of(forecast.start_pressure_psia))];
     tank_pressure.extend(at_ends(forecast, pressure, tank(|t| Some(t.pressure_psia))));
     let bubble = at_ends(forecast, pressure, tank(|t| Some(t.bubble_point_psia)));
-    let mut gor_lines = vec![(at_ends(forecast, gor, tank(|t| t.gor_scf_stb)), COMMON)];
+    let all = if forecast.wells.len() > 1 { TOTAL } else { look(0) };
+    let mut gor_lines = vec![(at_ends(forecast, gor, tank(|t| t.gor_scf_stb)), all)];
     gor_lines.extend(wells(gor, |r| r.gor_scf_stb));
     let fraction = Label::fraction();
-    let mut water_lines = vec![(at_ends(forecast, fraction, tank(|t| t.water_cut)), COMMON)];
+    let mut water_lines = vec![(at_ends(forecast, fraction, tank(|t| t.water_cut)), all)];
     water_lines.extend(wells(fraction, |r| r.water_cut));
 
     let mut states = vec![
         State {
             title: format!("Reservoir pressure, {}", pressure.text),
             from_zero: false,
-            lines: vec![(bubble, BUBBLE), (tank_pressure, COMMON)],
+            lines: vec![(bubble, BUBBLE), (tank_pressure, TANK)],
         },
         State { title: format!("Producing gas-oil ratio, {}", gor.text), from_zero: true, lines: gor_lines },
     ];

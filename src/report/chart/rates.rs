@@ -1,20 +1,20 @@
 //! `rates`: oil, gas, water and injection rates over time, each well and the total.
 
+use super::Drawing;
 use super::axes::{Span, headings, legend};
 use super::style::{Look, TOTAL, look};
 use super::timeline::{Moment, Timeline, draw_moments, moments_height, stack};
-use super::{Drawing, style::INK};
-use crate::forecast::{Forecast, Period};
+use crate::forecast::{Forecast, InjectorRow, Period, TankRow, WellResult, WellRow};
 use crate::report::Provenance;
 use crate::report::human::{self, short_month};
 use crate::report::labels::{Quantity, label};
 
 const WIDTH: u32 = 960;
 
-/// One line of a panel: a volume for each period.
+/// One line of a panel: stretches of time, days from the start, with the mean rate in each.
 struct Series {
     look: Look,
-    volumes: Vec<f64>,
+    stretches: Vec<(f64, f64, f64)>,
 }
 
 /// One panel: its name, its unit and its lines.
@@ -29,7 +29,12 @@ pub fn rates_picture(forecast: &Forecast, provenance: &Provenance) -> Drawing {
     let streams = streams(forecast);
     let mut d = Drawing::new(WIDTH, (170 + 190 * streams.len().max(1)) as u32);
     let height = f64::from(d.size().1);
-    headings(&mut d, &title(provenance), "Calendar-day rates, averages over each period", &provenance.footer());
+    headings(
+        &mut d,
+        &title(provenance),
+        "Calendar-day rates, averages over each period or up to the end of flow inside it",
+        &provenance.footer(),
+    );
 
     let timeline = timeline(forecast);
     let mut top = 64.0;
@@ -38,23 +43,23 @@ pub fn rates_picture(forecast: &Forecast, provenance: &Provenance) -> Drawing {
     }
     let moments = ends_of_flow(forecast);
     let panels_of = |d: &Drawing, top: f64| {
-        let ys: Vec<(Span, f64)> = streams.iter().map(|s| (axis(s, forecast, provenance).0, 1.0)).collect();
+        let ys: Vec<(Span, f64)> = streams.iter().map(|s| (axis(s, provenance).0, 1.0)).collect();
         stack(d, top, height - 62.0, 36.0, timeline.days, &ys)
     };
     let strip = panels_of(&d, top).first().map_or(0.0, |p| moments_height(&moments, p));
     let panels = panels_of(&d, top + strip + 28.0);
     for (i, (stream, panel)) in streams.iter().zip(&panels).enumerate() {
-        let (_, factor, unit) = axis(stream, forecast, provenance);
+        let (_, factor, unit) = axis(stream, provenance);
         panel.draw_y(&mut d, &format!("{} rate, {unit}", stream.name), 4, true);
         timeline.draw(&mut d, panel, i + 1 == streams.len());
         panel.draw_frame(&mut d);
         for series in &stream.series {
-            panel.draw_line(&mut d, steps(&forecast.periods, &series.volumes, factor), series.look);
+            panel.draw_line(&mut d, series.steps(factor), series.look);
         }
     }
     draw_moments(&mut d, &panels, top, &moments);
     if let (Some(panel), Some(stream)) = (panels.first(), streams.first()) {
-        let (_, factor, _) = axis(stream, forecast, provenance);
+        let (_, factor, _) = axis(stream, provenance);
         for i in 0..forecast.wells.len() {
             if let Some((days, rate)) = last_rate(forecast, i) {
                 panel.draw_mark(&mut d, (days, rate * factor), look(i), 4.5);
@@ -102,23 +107,23 @@ fn legend_entries(forecast: &Forecast) -> Vec<(String, Look, bool)> {
 }
 
 fn streams(forecast: &Forecast) -> Vec<Stream> {
-    let wells = |pick: fn(&crate::forecast::WellRow) -> f64, total: fn(&crate::forecast::TankRow) -> f64| {
+    let wells = |pick: fn(&WellRow) -> f64, total: fn(&TankRow) -> f64| {
         let mut series = Vec::new();
         if forecast.wells.len() > 1 {
-            series.push(Series { look: TOTAL, volumes: forecast.tank.iter().map(total).collect() });
+            series.push(Series { look: TOTAL, stretches: total_stretches(forecast, total) });
         }
         for (i, well) in forecast.wells.iter().enumerate() {
-            series.push(Series { look: look(i), volumes: well.rows.iter().map(pick).collect() });
+            series.push(Series { look: look(i), stretches: well_stretches(forecast, well, pick) });
         }
         series
     };
-    let injectors = |pick: fn(&crate::forecast::InjectorRow) -> f64| {
+    let injectors = |pick: fn(&InjectorRow) -> f64| {
         let numbered = forecast.injectors.iter().enumerate();
         let series = numbered.map(|(i, injector)| Series {
             look: look(forecast.wells.len() + i),
-            volumes: injector.rows.iter().map(pick).collect(),
+            stretches: forecast.periods.iter().zip(&injector.rows).map(|(p, r)| mean(p, p.run_days, pick(r))).collect(),
         });
-        series.filter(|s| s.volumes.iter().any(|&v| v > 0.0)).collect::<Vec<_>>()
+        series.filter(Series::flows).collect::<Vec<_>>()
     };
     let all = [
         Stream { name: "Oil", quantity: Quantity::LiquidRate, series: wells(|r| r.oil_stb, |t| t.oil_stb) },
@@ -128,27 +133,50 @@ fn streams(forecast: &Forecast) -> Vec<Stream> {
         Stream { name: "Injected gas", quantity: Quantity::GasRate, series: injectors(|r| r.gas_scf) },
     ];
     // A stream that never flows gets no panel; oil always has one.
-    let flows = |s: &Stream| s.name == "Oil" || s.series.iter().any(|s| s.volumes.iter().any(|&v| v > 0.0));
-    all.into_iter().filter(flows).collect()
+    all.into_iter().filter(|s| s.name == "Oil" || s.series.iter().any(Series::flows)).collect()
+}
+
+impl Series {
+    fn flows(&self) -> bool {
+        self.stretches.iter().any(|s| s.2 > 0.0)
+    }
+
+    /// A staircase, broken where there is no rate.
+    fn steps(&self, factor: f64) -> impl Iterator<Item = (f64, f64)> + '_ {
+        self.stretches.iter().flat_map(move |&(from, to, rate)| [(from, rate * factor), (to, rate * factor)])
+    }
+}
+
+/// The mean rate from the start of `period` to `until`.
+fn mean(period: &Period, until: f64, volume: f64) -> (f64, f64, f64) {
+    let length = until - period.start_days;
+    (period.start_days, until, if length > 0.0 { volume / length } else { f64::NAN })
+}
+
+/// The tank's mean rates; the last period counts up to the end of the run.
+pub(super) fn total_stretches(forecast: &Forecast, pick: fn(&TankRow) -> f64) -> Vec<(f64, f64, f64)> {
+    forecast.periods.iter().zip(&forecast.tank).map(|(p, t)| mean(p, p.run_days.min(p.end_days), pick(t))).collect()
+}
+
+/// A well's mean rates; the period in which it ends counts up to its end, and periods without flow are gaps.
+fn well_stretches(forecast: &Forecast, well: &WellResult, pick: fn(&WellRow) -> f64) -> Vec<(f64, f64, f64)> {
+    let end = well.natural_flow_end.map_or(f64::INFINITY, |end| end.days);
+    let rows = forecast.periods.iter().zip(&well.rows);
+    rows.map(|(p, r)| {
+        let run = p.run_days.min(p.end_days);
+        let until = if end > p.start_days { run.min(end) } else { run };
+        mean(p, until, if r.flowing_days > 0.0 { pick(r) } else { f64::NAN })
+    })
+    .collect()
 }
 
 /// The scale of a stream, the factor from oilfield units to it, and its unit in words.
-fn axis(stream: &Stream, forecast: &Forecast, provenance: &Provenance) -> (Span, f64, String) {
+fn axis(stream: &Stream, provenance: &Provenance) -> (Span, f64, String) {
     let unit = label(provenance.units, stream.quantity);
-    let rates = stream.series.iter().flat_map(|s| {
-        s.volumes.iter().zip(&forecast.periods).map(|(v, p)| unit.of(*v) / (p.end_days - p.start_days))
-    });
+    let rates = stream.series.iter().flat_map(|s| s.stretches.iter().map(|s| unit.of(s.2)));
     let highest = Span::of(rates).map_or(1.0, |s| s.high);
     let (divisor, word) = human::scale(highest);
-    (Span::new(0.0, highest / divisor).rounded(true), unit.of(1.0) / divisor, format!("{word}{}", unit.text))
-}
-
-/// Period averages as a staircase.
-fn steps<'a>(periods: &'a [Period], volumes: &'a [f64], factor: f64) -> impl Iterator<Item = (f64, f64)> + 'a {
-    periods.iter().zip(volumes).flat_map(move |(p, v)| {
-        let rate = v / (p.end_days - p.start_days) * factor;
-        [(p.start_days, rate), (p.end_days, rate)]
-    })
+    (Span::from_zero(highest / divisor, false), unit.of(1.0) / divisor, format!("{word}{}", unit.text))
 }
 
 /// Where a well's line ends: its oil rate at the end of natural flow, as a calendar-day rate.
@@ -159,6 +187,3 @@ fn last_rate(forecast: &Forecast, index: usize) -> Option<(f64, f64)> {
     let uptime = before.map_or(1.0, |(r, p)| (r.flowing_days / (p.end_days - p.start_days)).min(1.0));
     Some((end.days, end.oil_rate_stb_d * uptime))
 }
-
-/// The colour of what is common to all wells.
-pub(super) const COMMON: Look = Look { colour: INK, ..TOTAL };

@@ -63,5 +63,8 @@ pub(super) fn look(index: usize) -> Look {
     Look { colour: COLOURS[index % COLOURS.len()], width: 1.8, dash: DASHES[dash], mark: MARKS[index % MARKS.len()] }
 }
 
-/// The look of a total over all wells.
-pub(super) const TOTAL: Look = Look { colour: INK, width: 3.0, dash: Dash::Solid, mark: Mark::Disc };
+/// The look of a total over all wells: broad and pale, so that the wells' own lines stay visible on it.
+pub(super) const TOTAL: Look = Look { colour: [172, 180, 188], width: 5.0, dash: Dash::Solid, mark: Mark::Disc };
+
+/// The look of what only the tank has.
+pub(super) const TANK: Look = Look { colour: INK, width: 2.6, dash: Dash::Solid, mark: Mark::Disc };
