@@ -29,7 +29,7 @@ pub struct FluidRow {
 
 /// The fluid's properties at tank temperature.
 #[derive(Debug, Clone, PartialEq)]
-pub struct FluidTable {
+pub struct FluidSheet {
     /// Temperature, degF.
     pub temperature_degf: f64,
     /// Initial bubble point, psia.
@@ -38,7 +38,7 @@ pub struct FluidTable {
     pub rows: Vec<FluidRow>,
 }
 
-impl FluidTable {
+impl FluidSheet {
     pub(super) fn line(&self, pick: impl Fn(&FluidRow) -> f64) -> Vec<f64> {
         self.rows.iter().map(pick).collect()
     }
@@ -64,8 +64,8 @@ impl FluidTable {
 ///
 /// # Errors
 /// When the CSV writer fails.
-pub fn fluid_csv(table: &FluidTable, units: UnitSystem) -> Result<Vec<u8>, ReportError> {
-    let columns = FluidTable::columns(units);
+pub fn fluid_csv(table: &FluidSheet, units: UnitSystem) -> Result<Vec<u8>, ReportError> {
+    let columns = FluidSheet::columns(units);
     csv_bytes(|w| {
         w.write_record(columns.iter().map(|(stem, unit, _)| match unit.suffix {
             "" => (*stem).to_owned(),

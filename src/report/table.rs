@@ -200,7 +200,7 @@ fn tank_values(forecast: &Forecast, index: usize, tank: &TankRow) -> Values {
 }
 
 /// Oil made, with what was made before the forecast, over the oil initially in place.
-pub(super) fn recovery(forecast: &Forecast, oil_cum_stb: f64) -> f64 {
+pub fn recovery(forecast: &Forecast, oil_cum_stb: f64) -> f64 {
     (forecast.produced_before_stb + oil_cum_stb) / forecast.oil_in_place_stb
 }
 

@@ -4,10 +4,10 @@ use super::axes::{Panel, Span, headings};
 use super::style::{Dash, Look, Mark, QUIET, look};
 use super::{Anchor, Drawing, axes};
 use crate::report::labels::{Quantity, label};
-use crate::report::{FluidTable, Provenance};
+use crate::report::{FluidSheet, Provenance};
 
 /// Solution gas-oil ratio, volume factors and viscosities against pressure.
-pub fn fluid_picture(table: &FluidTable, provenance: &Provenance) -> Drawing {
+pub fn fluid_picture(table: &FluidSheet, provenance: &Provenance) -> Drawing {
     let mut d = Drawing::new(1080, 790);
     let pressure = label(provenance.units, Quantity::Pressure);
     let degrees = label(provenance.units, Quantity::Temperature);
