@@ -6,6 +6,7 @@
 
 pub mod cli;
 pub mod fault;
+pub mod roots;
 pub mod fluid;
 pub mod forecast;
 pub mod inflow;

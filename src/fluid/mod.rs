@@ -1,8 +1,29 @@
 //! Black-oil and water properties: published correlations or a table.
+//!
+//! One file per published method. [`BlackOil`] joins the defaults; [`FluidTable`] takes a laboratory's rows.
 
+pub mod baker_swerdloff;
+pub mod beggs_robinson;
+pub mod dranchuk_abou_kassem;
+pub mod lee_gonzalez_eakin;
+pub mod mccain;
+pub mod osif;
+pub mod standing;
+pub mod sutton;
+pub mod vasquez_beggs;
+pub mod wichert_aziz;
+
+mod black_oil;
+mod checks;
+mod gas;
+mod range_notes;
 mod spec;
+mod table;
 
+pub use black_oil::{BlackOil, FluidRow, InSitu};
+pub use range_notes::RangeNote;
 pub use spec::FluidSpec;
+pub use table::{FluidTable, FluidTableRow, TableWater};
 
 /// What the tank needs to know of the fluid, at the tank's temperature.
 ///
@@ -28,4 +49,9 @@ pub trait ReservoirFluid: Send + Sync {
     fn mu_w(&self, pressure_psia: f64) -> f64;
     /// The pressures between which the model is used, psia.
     fn pressure_range_psia(&self) -> (f64, f64);
+}
+
+/// Specific gravity (water = 1) of oil of a gravity in degrees API: 141.5/(131.5 + API).
+pub fn oil_specific_gravity(oil_gravity_api: f64) -> f64 {
+    141.5 / (131.5 + oil_gravity_api)
 }

@@ -1,7 +1,19 @@
 //! The time-stepping engine: calendar, limits, injectors, events, end of natural flow.
 
+mod calendar;
+mod curves;
+mod doubts;
+mod dynamics;
+mod field;
+mod integrate;
 mod result;
+mod rows;
+mod run;
 mod spec;
 
+pub use calendar::{date_at, days_between};
+pub use curves::{WellCurves, curves_on};
+pub use field::{Field, RunError};
 pub use result::*;
+pub use run::run;
 pub use spec::*;

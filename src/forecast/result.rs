@@ -1,5 +1,6 @@
 //! A finished forecast, as plain data: what the reports read.
 
+pub use crate::well::TestCheck;
 use jiff::civil::Date;
 
 /// Why a well stopped.
@@ -230,23 +231,6 @@ pub struct TankRow {
     pub balance_residual: f64,
     /// Drive indices since the start of production; `None` before any withdrawal.
     pub drive_indices: Option<DriveIndices>,
-}
-
-/// A measured test beside the model's rate at the same conditions.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub struct TestCheck {
-    /// Date of the test.
-    pub on: Option<Date>,
-    /// Reservoir pressure, psia.
-    pub reservoir_psia: f64,
-    /// Flowing pressure: measured, or computed with the well's own tubing, psia.
-    pub flowing_psia: f64,
-    /// Whether the flowing pressure was computed.
-    pub computed: bool,
-    /// Measured liquid rate, STB/d.
-    pub rate_stb_d: f64,
-    /// The model's liquid rate, STB/d.
-    pub model_rate_stb_d: f64,
 }
 
 /// Inflow and tubing curves of one well at one instant.

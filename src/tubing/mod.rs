@@ -1,5 +1,21 @@
 //! Pressure traverse: path, temperature, hydraulics.
+//!
+//! One file per hydraulics model behind one narrow trait ([`model::Hydraulics`]); a new model is a new file, a
+//! variant of [`TubingMethod`] and a line where the traverse chooses.
 
+pub mod beggs_brill;
+pub mod friction;
+pub mod groups;
+pub mod hagedorn_brown;
+pub mod hasan_kabir;
+pub mod liquid;
+pub mod model;
+pub mod no_slip;
+
+mod march;
+mod path;
 mod spec;
+mod traverse;
 
 pub use spec::{TubingMethod, TubingSection, TubingSpec};
+pub use traverse::{Stream, Traverse, TraversePoint, Tubing};

@@ -13,6 +13,21 @@ pub enum TubingMethod {
     NoSlip,
 }
 
+impl TubingMethod {
+    /// Every method.
+    pub const ALL: [Self; 4] = [Self::HasanKabir, Self::HagedornBrown, Self::BeggsBrill, Self::NoSlip];
+
+    /// Its name in scenario files and results.
+    pub const fn name(self) -> &'static str {
+        match self {
+            Self::HasanKabir => "hasan-kabir",
+            Self::HagedornBrown => "hagedorn-brown",
+            Self::BeggsBrill => "beggs-brill",
+            Self::NoSlip => "no-slip",
+        }
+    }
+}
+
 /// A stretch of tubing of one inside diameter, from the end of the stretch above it (or the wellhead) down.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct TubingSection {

@@ -1,0 +1,396 @@
+//! The fluid of published correlations, tuned through its measured bubble point.
+
+use super::beggs_robinson::BeggsRobinson;
+use super::dranchuk_abou_kassem::{Isotherm, MAXIMUM_PPR};
+use super::gas::Gas;
+use super::mccain::McCainWater;
+use super::standing::Standing;
+use super::{FluidSpec, ReservoirFluid, baker_swerdloff, checks, oil_specific_gravity, vasquez_beggs};
+use crate::fault::Fault;
+use crate::units::constants::{DEGF_TO_DEGR, FRESH_WATER_LB_FT3, FT3_PER_BBL};
+
+/// The lowest and highest pressures of the model, psia (the upper one falls where z leaves its fit).
+const PRESSURE_RANGE_PSIA: (f64, f64) = (14.696, 15_000.0);
+/// Properties below this pressure, psia, are those at it: a caller's trial step never meets a pole.
+const PRESSURE_FLOOR_PSIA: f64 = 0.5;
+/// Temperatures are held to this range, degF.
+const TEMPERATURE_RANGE_DEGF: (f64, f64) = (32.0, 500.0);
+/// The oil above a bubble point lower than this, psia, is compressed from here: A ln(p/pb) has no limit at zero.
+const LEAST_BUBBLE_POINT_PSIA: f64 = 14.696;
+
+/// Black oil, gas and water by the default correlations (Standing, Vasquez-Beggs above the bubble point, Beggs-Robinson, Sutton,
+/// Wichert-Aziz, Dranchuk-Abou-Kassem, Lee-Gonzalez-Eakin, McCain, Baker-Swerdloff).
+///
+/// As a [`ReservoirFluid`] it answers at tank temperature; [`in_situ`](Self::in_situ) answers at any pressure and temperature.
+#[derive(Debug, Clone)]
+pub struct BlackOil {
+    spec: FluidSpec,
+    temperature_degf: f64,
+    tuning_factor: f64,
+    inverse_tuning_factor: f64,
+    initial_bubble_point_psia: f64,
+    maximum_pressure_psia: f64,
+    oil_specific_gravity: f64,
+    /// Gas gravity of the Vasquez-Beggs equations: corrected to a 100 psig separator when its conditions are stated.
+    separator_gas_gravity: f64,
+    standing: Standing,
+    beggs_robinson: BeggsRobinson,
+    gas: Gas,
+    water: McCainWater,
+    /// Mass of a barrel of stock-tank oil without gas, lb/5.614583 ft3, as lb/ft3.
+    oil_standard_density_lb_ft3: f64,
+    /// Mass that a scf adds to a stock-tank barrel, lb/ft3 per scf/STB.
+    gas_mass_lb_ft3: f64,
+    tank: AtTank,
+}
+
+/// What depends only on the tank's temperature.
+#[derive(Debug, Clone, Copy)]
+struct AtTank {
+    temperature_degr: f64,
+    isotherm: Isotherm,
+    ln_dead_cp: f64,
+    ln_temperature: f64,
+}
+
+/// Properties at one pressure and temperature in the tubing.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct InSitu {
+    /// Gas dissolved in the oil, scf/STB.
+    pub rs_scf_stb: f64,
+    /// Oil volume factor, rb/STB.
+    pub bo_rb_stb: f64,
+    /// Oil density, lb/ft3.
+    pub oil_density_lb_ft3: f64,
+    /// Oil viscosity, cp.
+    pub mu_o_cp: f64,
+    /// Gas volume factor, ft3/scf.
+    pub bg_ft3_scf: f64,
+    /// Gas density, lb/ft3.
+    pub gas_density_lb_ft3: f64,
+    /// Gas viscosity, cp.
+    pub mu_g_cp: f64,
+    /// Water volume factor, rb/STB.
+    pub bw_rb_stb: f64,
+    /// Water density, lb/ft3.
+    pub water_density_lb_ft3: f64,
+    /// Water viscosity, cp.
+    pub mu_w_cp: f64,
+    /// Tension between oil and gas, dyn/cm.
+    pub sigma_oil_gas_dyn_cm: f64,
+    /// Tension between water and gas, dyn/cm.
+    pub sigma_water_gas_dyn_cm: f64,
+    /// Compressibility factor of the gas.
+    pub z: f64,
+}
+
+/// One row of the fluid's property table at tank temperature.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct FluidRow {
+    /// Pressure, psia.
+    pub pressure_psia: f64,
+    /// Gas dissolved in the oil, scf/STB.
+    pub rs_scf_stb: f64,
+    /// Oil volume factor, rb/STB.
+    pub bo_rb_stb: f64,
+    /// Oil viscosity, cp.
+    pub mu_o_cp: f64,
+    /// Compressibility factor of the gas.
+    pub z: f64,
+    /// Gas volume factor, rb/scf.
+    pub bg_rb_scf: f64,
+    /// Gas viscosity, cp.
+    pub mu_g_cp: f64,
+    /// Water volume factor, rb/STB.
+    pub bw_rb_stb: f64,
+    /// Water viscosity, cp.
+    pub mu_w_cp: f64,
+}
+
+impl BlackOil {
+    /// Checks the fluid and prepares the correlations.
+    ///
+    /// # Errors
+    /// All impossible values, keyed relative to the `[fluid]` table (`temperature` for the tank's), or a closure of the volume
+    /// balance that would have several roots (see [`closure_is_monotone`](Self::closure_is_monotone)).
+    pub fn new(spec: &FluidSpec, tank_temperature_degf: f64) -> Result<Self, Vec<Fault>> {
+        let faults = checks::of_spec(spec, tank_temperature_degf);
+        if !faults.is_empty() {
+            return Err(faults);
+        }
+        let standing = Standing::new(spec.oil_gravity_api, spec.gas_gravity);
+        let gas = Gas::new(spec);
+        let maximum_pressure_psia = PRESSURE_RANGE_PSIA.1.min(MAXIMUM_PPR * gas.pseudo_critical.pressure_psia);
+        let correlated_psia = standing.bubble_point_psia(spec.solution_gor_scf_stb, tank_temperature_degf);
+        let initial_bubble_point_psia = spec.bubble_point_psia.unwrap_or(correlated_psia);
+        let faults = checks::of_bubble_point(spec, correlated_psia, (PRESSURE_RANGE_PSIA.0, maximum_pressure_psia));
+        if !faults.is_empty() {
+            return Err(faults);
+        }
+        let tuning_factor = correlated_psia / initial_bubble_point_psia;
+        let oil_specific_gravity = oil_specific_gravity(spec.oil_gravity_api);
+        let beggs_robinson = BeggsRobinson::new(spec.oil_gravity_api);
+        let temperature_degr = tank_temperature_degf + DEGF_TO_DEGR;
+        let ln_temperature = tank_temperature_degf.ln();
+        let fluid = Self {
+            spec: spec.clone(),
+            temperature_degf: tank_temperature_degf,
+            tuning_factor,
+            inverse_tuning_factor: 1.0 / tuning_factor,
+            initial_bubble_point_psia,
+            maximum_pressure_psia,
+            oil_specific_gravity,
+            separator_gas_gravity: match spec.separator {
+                Some((psia, degf)) => {
+                    vasquez_beggs::separator_gas_gravity(spec.gas_gravity, spec.oil_gravity_api, psia, degf)
+                }
+                None => spec.gas_gravity,
+            },
+            standing,
+            beggs_robinson,
+            gas,
+            water: McCainWater::new(spec.salinity_ppm),
+            oil_standard_density_lb_ft3: oil_specific_gravity * FRESH_WATER_LB_FT3,
+            gas_mass_lb_ft3: gas.standard_density_lb_scf / FT3_PER_BBL,
+            tank: AtTank {
+                temperature_degr,
+                isotherm: Isotherm::new(gas.reduced_temperature(temperature_degr)),
+                ln_dead_cp: beggs_robinson.dead_cp(ln_temperature).ln(),
+                ln_temperature,
+            },
+        };
+        fluid.closure_is_monotone().map_err(|fault| vec![fault])?;
+        Ok(fluid)
+    }
+
+    /// The fluid as stated.
+    pub fn spec(&self) -> &FluidSpec {
+        &self.spec
+    }
+
+    /// The tank's temperature, degF.
+    pub fn tank_temperature_degf(&self) -> f64 {
+        self.temperature_degf
+    }
+
+    /// Bubble point of the initial oil at tank temperature, psia: measured, or the correlation's.
+    pub fn initial_bubble_point_psia(&self) -> f64 {
+        self.initial_bubble_point_psia
+    }
+
+    /// Bubble point of oil that holds `rs_scf_stb` at any temperature, psia.
+    #[inline]
+    pub fn bubble_point_at_psia(&self, rs_scf_stb: f64, temperature_degf: f64) -> f64 {
+        let t = hold(temperature_degf, TEMPERATURE_RANGE_DEGF);
+        (self.standing.bubble_point_psia(rs_scf_stb, t) * self.inverse_tuning_factor).max(0.0)
+    }
+
+    /// f of Rs_sat(p, T) = Standing's Rs(f p, T): the correlation's bubble point over the measured one.
+    pub fn tuning_factor(&self) -> f64 {
+        self.tuning_factor
+    }
+
+    /// Oil gravity, water = 1.
+    pub fn oil_specific_gravity(&self) -> f64 {
+        self.oil_specific_gravity
+    }
+
+    /// Density of the water at standard conditions, lb/ft3.
+    pub fn standard_water_density_lb_ft3(&self) -> f64 {
+        self.water.standard_density_lb_ft3()
+    }
+
+    /// Density of the gas at standard conditions, lb/scf.
+    pub fn standard_gas_density_lb_scf(&self) -> f64 {
+        self.gas.standard_density_lb_scf
+    }
+
+    pub(super) fn gas(&self) -> &Gas {
+        &self.gas
+    }
+
+    /// Is Bg above dBo/dRs everywhere below the initial bubble point?
+    ///
+    /// Where it is not, gas that comes out of solution takes less room than the oil gives up, the volume balance rises with
+    /// pressure and has several roots.
+    ///
+    /// # Errors
+    /// A fault at `bubble_point` that names the pressure.
+    pub fn closure_is_monotone(&self) -> Result<(), Fault> {
+        let limit_psia = self.closure_limit_psia();
+        if limit_psia >= self.initial_bubble_point_psia {
+            return Ok(());
+        }
+        Err(Fault::new(
+            "bubble_point",
+            format!(
+                "the bubble point of {:.0} psia is too high for these correlations: from {limit_psia:.0} psia on, gas that \
+                 comes out of solution takes less room than the oil loses, so that the volume balance has several solutions",
+                self.initial_bubble_point_psia
+            ),
+        )
+        .help("check solution_gor, bubble_point and the gravities; a near-critical fluid needs a lab table"))
+    }
+
+    /// The highest pressure, psia, up to which Bg > dBo/dRs on the saturated line at tank temperature; the top of the model's
+    /// range when it holds throughout.
+    pub fn closure_limit_psia(&self) -> f64 {
+        const STEP_PSIA: f64 = 25.0;
+        let mut pressure_psia = PRESSURE_RANGE_PSIA.0;
+        let mut safe_psia = 0.0;
+        while pressure_psia < self.maximum_pressure_psia {
+            if !self.closure_falls_at(pressure_psia) {
+                return safe_psia;
+            }
+            safe_psia = pressure_psia;
+            pressure_psia += STEP_PSIA;
+        }
+        self.maximum_pressure_psia
+    }
+
+    fn closure_falls_at(&self, pressure_psia: f64) -> bool {
+        let rs_scf_stb = self.rs_saturated(pressure_psia);
+        self.bg(pressure_psia) > self.standing.dbo_drs_rb_scf(rs_scf_stb, self.temperature_degf)
+    }
+
+    /// The property table's row at tank temperature: saturated below and undersaturated above the initial bubble point.
+    pub fn table_row(&self, pressure_psia: f64) -> FluidRow {
+        let rs_scf_stb = self.rs_saturated(pressure_psia).min(self.spec.solution_gor_scf_stb);
+        let pressure_psia = self.held_pressure(pressure_psia);
+        let gas = self.gas.on_isotherm(&self.tank.isotherm, pressure_psia, self.tank.temperature_degr);
+        FluidRow {
+            pressure_psia,
+            rs_scf_stb,
+            bo_rb_stb: self.bo(pressure_psia, rs_scf_stb),
+            mu_o_cp: self.mu_o(pressure_psia, rs_scf_stb),
+            z: gas.z,
+            bg_rb_scf: gas.bg_ft3_scf / FT3_PER_BBL,
+            mu_g_cp: self.gas.viscosity_cp(self.tank.temperature_degr, gas.density_lb_ft3),
+            bw_rb_stb: self.bw(pressure_psia),
+            mu_w_cp: self.mu_w(pressure_psia),
+        }
+    }
+
+    /// Properties at any pressure and temperature, with the dissolved gas capped by the producing gas-oil ratio.
+    ///
+    /// Above the pressure where the cap binds the oil is undersaturated. Everything is continuous there. Pressure and temperature
+    /// outside the model's range are held to it.
+    pub fn in_situ(&self, pressure_psia: f64, temperature_degf: f64, gor_limit_scf_stb: f64) -> InSitu {
+        let p = self.held_pressure(pressure_psia);
+        let t = hold(temperature_degf, TEMPERATURE_RANGE_DEGF);
+        let temperature_degr = t + DEGF_TO_DEGR;
+        let (ln_p, ln_t) = (p.ln(), t.ln());
+
+        let gas = self.gas.at(p, temperature_degr);
+        let rs_saturated = self.standing.rs_scf_stb(self.tuning_factor * p, t);
+        let cap = gor_limit_scf_stb.max(0.0);
+        let undersaturated = rs_saturated > cap;
+        let rs = if undersaturated { cap } else { rs_saturated };
+        let mut bo = self.standing.bo_rb_stb(rs, t);
+        let mut mu_o = BeggsRobinson::live_cp(self.beggs_robinson.dead_cp(ln_t).ln(), rs);
+        if undersaturated {
+            let above = self.above_bubble_point(p, ln_p, rs, t);
+            bo *= above.volume_ratio;
+            mu_o *= above.viscosity_ratio;
+        }
+        let bw = McCainWater::bw_rb_stb(p, t);
+        InSitu {
+            rs_scf_stb: rs,
+            bo_rb_stb: bo,
+            oil_density_lb_ft3: (self.oil_standard_density_lb_ft3 + self.gas_mass_lb_ft3 * rs) / bo,
+            mu_o_cp: mu_o,
+            bg_ft3_scf: gas.bg_ft3_scf,
+            gas_density_lb_ft3: gas.density_lb_ft3,
+            mu_g_cp: self.gas.viscosity_cp(temperature_degr, gas.density_lb_ft3),
+            bw_rb_stb: bw,
+            water_density_lb_ft3: self.water.standard_density_lb_ft3() / bw,
+            mu_w_cp: self.water.viscosity_cp(p, ln_t),
+            sigma_oil_gas_dyn_cm: baker_swerdloff::oil_gas_dyn_cm(self.spec.oil_gravity_api, t, ln_p),
+            sigma_water_gas_dyn_cm: baker_swerdloff::water_gas_dyn_cm(t, ln_p),
+            z: gas.z,
+        }
+    }
+
+    /// What oil that holds `rs_scf_stb` does between its bubble point and `pressure_psia`.
+    #[inline]
+    fn above_bubble_point(&self, p: f64, ln_p: f64, rs_scf_stb: f64, temperature_degf: f64) -> AboveBubblePoint {
+        let bubble_point_psia = (self.standing.bubble_point_psia(rs_scf_stb, temperature_degf)
+            * self.inverse_tuning_factor)
+            .max(LEAST_BUBBLE_POINT_PSIA);
+        if p <= bubble_point_psia {
+            return AboveBubblePoint { volume_ratio: 1.0, viscosity_ratio: 1.0 };
+        }
+        let ln_ratio = ln_p - bubble_point_psia.ln();
+        let group = vasquez_beggs::compressibility_group(
+            rs_scf_stb,
+            temperature_degf,
+            self.spec.oil_gravity_api,
+            self.separator_gas_gravity,
+        );
+        AboveBubblePoint {
+            volume_ratio: vasquez_beggs::undersaturated_volume_ratio(group, p, bubble_point_psia, ln_ratio),
+            viscosity_ratio: vasquez_beggs::undersaturated_viscosity_ratio(p, ln_p, ln_ratio),
+        }
+    }
+
+    #[inline]
+    fn held_pressure(&self, pressure_psia: f64) -> f64 {
+        hold(pressure_psia, (PRESSURE_FLOOR_PSIA, self.maximum_pressure_psia))
+    }
+}
+
+struct AboveBubblePoint {
+    volume_ratio: f64,
+    viscosity_ratio: f64,
+}
+
+/// Like `clamp`, but a NaN becomes the lower end.
+#[inline]
+fn hold(value: f64, (low, high): (f64, f64)) -> f64 {
+    value.max(low).min(high)
+}
+
+impl ReservoirFluid for BlackOil {
+    fn rs_saturated(&self, pressure_psia: f64) -> f64 {
+        self.standing.rs_scf_stb(self.tuning_factor * self.held_pressure(pressure_psia), self.temperature_degf)
+    }
+
+    fn bubble_point_psia(&self, rs_scf_stb: f64) -> f64 {
+        (self.standing.bubble_point_psia(rs_scf_stb, self.temperature_degf) * self.inverse_tuning_factor).max(0.0)
+    }
+
+    fn bo(&self, pressure_psia: f64, rs_scf_stb: f64) -> f64 {
+        let p = self.held_pressure(pressure_psia);
+        let saturated = self.standing.bo_rb_stb(rs_scf_stb, self.temperature_degf);
+        saturated * self.above_bubble_point(p, p.ln(), rs_scf_stb, self.temperature_degf).volume_ratio
+    }
+
+    fn mu_o(&self, pressure_psia: f64, rs_scf_stb: f64) -> f64 {
+        let p = self.held_pressure(pressure_psia);
+        let saturated = BeggsRobinson::live_cp(self.tank.ln_dead_cp, rs_scf_stb);
+        saturated * self.above_bubble_point(p, p.ln(), rs_scf_stb, self.temperature_degf).viscosity_ratio
+    }
+
+    fn bg(&self, pressure_psia: f64) -> f64 {
+        let p = self.held_pressure(pressure_psia);
+        self.gas.on_isotherm(&self.tank.isotherm, p, self.tank.temperature_degr).bg_ft3_scf / FT3_PER_BBL
+    }
+
+    fn mu_g(&self, pressure_psia: f64) -> f64 {
+        let p = self.held_pressure(pressure_psia);
+        let gas = self.gas.on_isotherm(&self.tank.isotherm, p, self.tank.temperature_degr);
+        self.gas.viscosity_cp(self.tank.temperature_degr, gas.density_lb_ft3)
+    }
+
+    fn bw(&self, pressure_psia: f64) -> f64 {
+        McCainWater::bw_rb_stb(self.held_pressure(pressure_psia), self.temperature_degf)
+    }
+
+    fn mu_w(&self, pressure_psia: f64) -> f64 {
+        self.water.viscosity_cp(self.held_pressure(pressure_psia), self.tank.ln_temperature)
+    }
+
+    fn pressure_range_psia(&self) -> (f64, f64) {
+        (PRESSURE_RANGE_PSIA.0, self.maximum_pressure_psia)
+    }
+}

@@ -1,0 +1,131 @@
+//! Inflow and tubing curves at chosen instants.
+
+use super::calendar::{date_at, days_between};
+use super::dynamics::{Dynamics, Mode};
+use super::field::{Field, RunError};
+use super::rows::piece_at;
+use super::run::{Trace, trace};
+use super::{CurveSet, FieldSpec};
+use crate::tubing::{TraversePoint, TubingMethod};
+use crate::well::WellNow;
+use jiff::civil::Date;
+
+/// Rates of a curve drawn for people.
+const POINTS: usize = 80;
+
+/// Curves of one well on a date, with one tubing method.
+#[derive(Debug, Clone)]
+pub struct WellCurves {
+    /// Name of the well.
+    pub well: String,
+    /// Tubing method.
+    pub method: &'static str,
+    /// The curves.
+    pub curve: CurveSet,
+    /// The traverse at the operating point at line pressure; empty where the well does not flow.
+    pub profile: Vec<TraversePoint>,
+}
+
+/// Curves of every well on a date. `rates_stb_d` picks the liquid rates, in that order; empty: a choice that shows both
+/// crossings. With `all_models` every tubing method follows the well's own.
+///
+/// # Errors
+/// [`RunError`]; a date outside the run is an input fault of the key `on`.
+pub fn curves_on(spec: &FieldSpec, on: Date, rates_stb_d: &[f64], all_models: bool) -> Result<Vec<WellCurves>, RunError> {
+    let field = Field::new(spec)?;
+    let run = trace(&field)?;
+    let days = days_between(spec.period.start, on);
+    if days < 0.0 || days > run.end_days.max(1e-9) {
+        let last = date_at(spec.period.start, run.end_days);
+        return Err(RunError::Input(vec![
+            crate::fault::Fault::new("on", format!("{on} is outside the forecast"))
+                .help(format!("the forecast runs from {} to {last}", spec.period.start)),
+        ]));
+    }
+    let mut list = Vec::new();
+    for w in 0..spec.wells.len() {
+        let own = field.setup.wells[w].tubing.method();
+        let others = TubingMethod::ALL.into_iter().filter(|m| *m != own && all_models);
+        for method in std::iter::once(own).chain(others) {
+            list.extend(at(&field, &run, w, days, on.to_string(), rates_stb_d, Some(method))?);
+        }
+    }
+    Ok(list)
+}
+
+/// Curves at the start, at mid-life and at the end of natural flow (or of the run).
+pub(super) fn life_curves(field: &Field, run: &Trace, w: usize) -> Result<Vec<CurveSet>, RunError> {
+    let Some(start) = run.first_flow[w] else { return Ok(Vec::new()) };
+    let (end, label) = run.flow_ends[w].map_or((run.end_days, "end of the forecast"), |e| (e.days, "end of natural flow"));
+    let days = [(start, "start"), (0.5 * (start + end), "mid-life"), (end, label)];
+    let mut list = Vec::new();
+    for (t, label) in days {
+        list.extend(at(field, run, w, t, label.to_owned(), &[], None)?.map(|c| c.curve));
+    }
+    Ok(list)
+}
+
+fn at(
+    field: &Field,
+    run: &Trace,
+    w: usize,
+    days: f64,
+    label: String,
+    rates: &[f64],
+    method: Option<TubingMethod>,
+) -> Result<Option<WellCurves>, RunError> {
+    let Some(piece) = piece_at(&run.pieces, days) else { return Ok(None) };
+    let dynamics = Dynamics::new(field, &piece.setup, &piece.modes, &run.memory);
+    let y = piece.stretch.at(days);
+    let tank = dynamics.tank(y.as_slice()).map_err(|source| RunError::TooMuchInjected { days, source })?;
+    let own = dynamics.well_now(w, &tank);
+    let mut other = piece.setup.wells[w].clone();
+    let now = match method {
+        Some(method) if method != other.tubing.method() => {
+            other.tubing = other.tubing.with_method(method);
+            own.with_well(&other)
+        }
+        _ => own,
+    };
+    let land = now.survey();
+    let is_own = method.is_none_or(|m| m == piece.setup.wells[w].tubing.method());
+    let operating_rate = match piece.modes.wells[w] {
+        Mode::Waiting | Mode::Stopped(_) => None,
+        // At the end of natural flow the curves touch at the top of the hump.
+        Mode::Line { .. } => Some(land.right_crossing_stb_d.unwrap_or(land.top_rate_stb_d)),
+        Mode::Target | Mode::Floor if is_own => Some(dynamics.rate(w, &now)),
+        Mode::Target | Mode::Floor => land.right_crossing_stb_d,
+    };
+    let points = if rates.is_empty() {
+        points(&now)
+    } else {
+        rates.iter().map(|&q| (q, now.curve.flowing_psia(q), now.tubing_psia(q))).collect()
+    };
+    let profile = operating_rate.map_or_else(Vec::new, |q| now.profile(q));
+    Ok(Some(WellCurves {
+        well: piece.setup.wells[w].spec.name.clone(),
+        method: now.method().name(),
+        curve: CurveSet {
+            label,
+            date: date_at(field.spec.period.start, days),
+            days,
+            reservoir_psia: now.curve.reservoir_psia(),
+            points,
+            operating_point: operating_rate.map(|q| (q, now.curve.flowing_psia(q))),
+            flow_margin_psi: land.margin_psi,
+        },
+        profile,
+    }))
+}
+
+fn points(now: &WellNow) -> Vec<(f64, f64, f64)> {
+    let open = now.curve.open_flow_stb_d();
+    (0..POINTS)
+        .map(|i| {
+            let s = i as f64 / (POINTS - 1) as f64;
+            // Closer at low rates, where the tubing curve turns.
+            let q = open * (0.004 + 0.995 * s * s.sqrt());
+            (q, now.curve.flowing_psia(q), now.tubing_psia(q))
+        })
+        .collect()
+}

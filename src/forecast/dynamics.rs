@@ -1,0 +1,449 @@
+//! The right-hand side of one stretch and its watches: state -> tank -> wells -> rates.
+
+use super::field::{Field, Setup, injected_fvf, injection_limit};
+use super::integrate::Problem;
+use super::{InjectedFluid, InjectionControl, StopReason};
+use crate::roots::brent;
+use crate::tank::{ClosureError, Cumulatives, TankState};
+use crate::well::{WellNow, oil_gradient_psi_ft, right_crossing, top_near};
+use std::cell::{Cell, RefCell};
+
+/// Height in psi by which the target (or floor) must be out of reach before it is taken up again, so that modes never flicker.
+const REGAIN_PSI: f64 = 0.01;
+/// Flow margin at which a dead well may flow again, psi.
+pub(super) const FLOW_AGAIN_PSI: f64 = 1.0;
+/// Height to which crossings are resolved, psi: some hundred times finer than the integrator's tolerance needs.
+const CROSSING_PSI: f64 = 1e-7;
+/// Free-gas excess that counts as a change of side at the bubble point, scf/STB.
+const BUBBLE_POINT_SLACK_SCF_STB: f64 = 1e-6;
+/// The same for the critical gas saturation.
+const CRITICAL_GAS_SLACK: f64 = 1e-9;
+/// Relative slack of an injection limit.
+const LIMIT_SLACK: f64 = 1e-6;
+
+/// What a well does.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(super) enum Mode {
+    /// Has yet to start.
+    Waiting,
+    /// Choked back to its target.
+    Target,
+    /// On its flowing-pressure floor.
+    Floor,
+    /// At line pressure, on the hump of `h` between these parts of open flow.
+    Line {
+        /// Left end over open flow.
+        low: f64,
+        /// Right end over open flow.
+        high: f64,
+    },
+    /// Stopped for this reason.
+    Stopped(StopReason),
+}
+
+impl Mode {
+    pub fn flows(self) -> bool {
+        matches!(self, Self::Target | Self::Floor | Self::Line { .. })
+    }
+}
+
+/// What one watch stands for.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(super) enum Watch {
+    CapLost(usize),
+    TargetAbove(usize),
+    FloorAbove(usize),
+    MarginGone(usize),
+    RightHump(usize),
+    MinimumRate(usize),
+    WaterCut(usize),
+    GasOilRatio(usize),
+    FlowAgain(usize),
+    BubblePoint,
+    CriticalGas,
+    InjectorLimit(usize),
+}
+
+/// Discrete state of a stretch.
+#[derive(Debug, Clone)]
+pub(super) struct Modes {
+    pub wells: Vec<Mode>,
+    /// Dead wells whose return is still to be noted.
+    pub watch_return: Vec<bool>,
+    pub injecting: Vec<bool>,
+    pub limited: Vec<bool>,
+    pub saturated: bool,
+    pub gas_mobile: bool,
+}
+
+/// Where a well was found last.
+#[derive(Debug, Clone, Copy, Default)]
+pub(super) struct Spot {
+    pub rate_stb_d: f64,
+    pub slope: f64,
+    pub top_rate_stb_d: f64,
+}
+
+/// Offsets into the scaled state vector.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Layout {
+    pub wells: usize,
+    pub injectors: usize,
+}
+
+impl Layout {
+    pub fn len(self) -> usize {
+        3 * self.wells + 2 * self.injectors + 2
+    }
+    pub fn oil(self, w: usize) -> usize {
+        w
+    }
+    pub fn gas(self, w: usize) -> usize {
+        self.wells + w
+    }
+    pub fn water(self, w: usize) -> usize {
+        2 * self.wells + w
+    }
+    pub fn injected(self, i: usize) -> usize {
+        3 * self.wells + i
+    }
+    pub fn asked(self, i: usize) -> usize {
+        3 * self.wells + self.injectors + i
+    }
+    pub fn effective_water(self) -> usize {
+        3 * self.wells + 2 * self.injectors
+    }
+    pub fn effective_gas(self) -> usize {
+        3 * self.wells + 2 * self.injectors + 1
+    }
+}
+
+/// Counters and warm starts that live through the whole run.
+#[derive(Debug, Default)]
+pub(super) struct Memory {
+    pub pressure_psia: Cell<f64>,
+    pub spots: RefCell<Vec<Spot>>,
+    pub traverses: Cell<u64>,
+    pub closures: Cell<u64>,
+}
+
+/// One stretch.
+pub(super) struct Dynamics<'a> {
+    pub field: &'a Field,
+    pub setup: &'a Setup,
+    pub modes: &'a Modes,
+    pub memory: &'a Memory,
+    pub watches: Vec<Watch>,
+}
+
+impl<'a> Dynamics<'a> {
+    pub fn new(field: &'a Field, setup: &'a Setup, modes: &'a Modes, memory: &'a Memory) -> Self {
+        let mut watches = vec![Watch::BubblePoint];
+        if setup.tank.relative_permeability().critical_gas() > 0.0 {
+            watches.push(Watch::CriticalGas);
+        }
+        for (w, mode) in modes.wells.iter().enumerate() {
+            let spec = &setup.wells[w].spec;
+            match mode {
+                Mode::Waiting => {}
+                Mode::Stopped(_) => {
+                    if modes.watch_return[w] {
+                        watches.push(Watch::FlowAgain(w));
+                    }
+                }
+                Mode::Target | Mode::Floor => watches.push(Watch::CapLost(w)),
+                Mode::Line { .. } => watches.extend([Watch::MarginGone(w), Watch::RightHump(w)]),
+            }
+            if mode.flows() {
+                if spec.target_rate_stb_d.is_some() && *mode != Mode::Target {
+                    watches.push(Watch::TargetAbove(w));
+                }
+                if spec.minimum_flowing_pressure_psia.is_some() && *mode != Mode::Floor {
+                    watches.push(Watch::FloorAbove(w));
+                }
+                if spec.minimum_rate_stb_d.is_some() {
+                    watches.push(Watch::MinimumRate(w));
+                }
+                if spec.maximum_water_cut.is_some() {
+                    watches.push(Watch::WaterCut(w));
+                }
+                if spec.maximum_gor_scf_stb.is_some() {
+                    watches.push(Watch::GasOilRatio(w));
+                }
+            }
+        }
+        watches.extend((0..setup.injectors.len()).filter(|&i| modes.injecting[i]).map(Watch::InjectorLimit));
+        Self { field, setup, modes, memory, watches }
+    }
+
+    pub fn layout(&self) -> Layout {
+        Layout { wells: self.setup.wells.len(), injectors: self.setup.injectors.len() }
+    }
+
+    /// Cumulative volumes of the whole tank since the start, from the scaled state.
+    pub fn cumulatives(&self, y: &[f64]) -> Cumulatives {
+        let (layout, initial) = (self.layout(), self.setup.tank.initial());
+        let sum = |at: fn(Layout, usize) -> usize| (0..layout.wells).map(|w| y[at(layout, w)]).sum::<f64>();
+        Cumulatives {
+            oil_stb: sum(Layout::oil) * initial.oil_stb,
+            gas_scf: sum(Layout::gas) * initial.gas_scf,
+            water_stb: sum(Layout::water) * initial.oil_stb,
+            injected_water_stb: y[layout.effective_water()] * initial.oil_stb,
+            injected_gas_scf: y[layout.effective_gas()] * initial.gas_scf,
+        }
+    }
+
+    /// Scale of an injector's volumes in the state vector.
+    pub fn injected_scale(&self, i: usize) -> f64 {
+        let initial = self.setup.tank.initial();
+        match self.setup.injectors[i].fluid {
+            InjectedFluid::Water => initial.oil_stb,
+            InjectedFluid::Gas => initial.gas_scf,
+        }
+    }
+
+    /// The tank at a state.
+    pub fn tank(&self, y: &[f64]) -> Result<TankState, ClosureError> {
+        self.memory.closures.set(self.memory.closures.get() + 1);
+        let tank = &self.setup.tank;
+        let state = tank.state(&tank.inventory(&self.cumulatives(y)), self.memory.pressure_psia.get())?;
+        self.memory.pressure_psia.set(state.pressure_psia);
+        Ok(state)
+    }
+
+    /// A well facing a tank state.
+    pub fn well_now(&self, w: usize, tank: &TankState) -> WellNow<'_> {
+        let spec = &self.field.spec;
+        let gradient = spec.tank.datum_tvd_ft.map_or(0.0, |_| {
+            oil_gradient_psi_ft(&self.field.fluid, tank.pressure_psia, spec.tank.temperature_degf, tank.rs_scf_stb)
+        });
+        self.setup.wells[w].now(&self.field.fluid, tank, gradient, &self.memory.traverses)
+    }
+
+    /// The rate that the flowing-pressure floor allows, STB/d.
+    fn floor_rate(&self, w: usize, now: &WellNow) -> f64 {
+        self.setup.wells[w].spec.minimum_flowing_pressure_psia.map_or(f64::INFINITY, |p| now.curve.rate_stb_d(p))
+    }
+
+    /// Producing-day liquid rate in the present mode, STB/d.
+    pub fn rate(&self, w: usize, now: &WellNow) -> f64 {
+        let spec = &self.setup.wells[w].spec;
+        match self.modes.wells[w] {
+            Mode::Waiting | Mode::Stopped(_) => 0.0,
+            Mode::Target => spec.target_rate_stb_d.unwrap_or(0.0).min(0.999_999 * now.curve.open_flow_stb_d()),
+            Mode::Floor => self.floor_rate(w, now),
+            Mode::Line { low, high } => {
+                let cap = self.floor_rate(w, now).min(spec.target_rate_stb_d.unwrap_or(f64::INFINITY));
+                self.line_rate(w, now, low, high).min(cap)
+            }
+        }
+    }
+
+    /// Right-most crossing on the present hump; the top of the hump where the curves have parted, so that the integrator can
+    /// step over the end of natural flow and find it between two valid states.
+    fn line_rate(&self, w: usize, now: &WellNow, low: f64, high: f64) -> f64 {
+        let open = now.curve.open_flow_stb_d();
+        let bounds = (low * open, high * open);
+        let spot = self.memory.spots.borrow()[w];
+        let height = |q: f64| now.height_psi(q);
+        if let Some((rate, slope)) = right_crossing(height, spot.rate_stb_d, spot.slope, CROSSING_PSI, bounds) {
+            self.remember(w, |s| (s.rate_stb_d, s.slope) = (rate, slope));
+            return rate;
+        }
+        let guess = if spot.top_rate_stb_d > 0.0 { spot.top_rate_stb_d } else { 0.3 * open };
+        let (top_rate, top) = top_near(height, guess, bounds.0, bounds.1.min(0.9999 * open));
+        if top <= 0.0 {
+            self.remember(w, |s| s.top_rate_stb_d = top_rate);
+            return top_rate;
+        }
+        let right = (bounds.1, height(bounds.1));
+        let rate = if right.1 >= 0.0 {
+            right.0
+        } else {
+            brent(height, (top_rate, top), right, 1e-11 * open)
+        };
+        let nudge = 1e-4 * rate;
+        let slope = (height(rate + nudge) - height(rate - nudge)) / (2.0 * nudge);
+        self.remember(w, |s| *s = Spot { rate_stb_d: rate, slope, top_rate_stb_d: top_rate });
+        rate
+    }
+
+    pub fn remember(&self, w: usize, change: impl FnOnce(&mut Spot)) {
+        change(&mut self.memory.spots.borrow_mut()[w]);
+    }
+
+    /// Top of the hump on which the well flows, rate and height.
+    pub fn top(&self, w: usize, now: &WellNow, low: f64, high: f64) -> (f64, f64) {
+        let open = now.curve.open_flow_stb_d();
+        let spot = self.memory.spots.borrow()[w];
+        let guess = if spot.top_rate_stb_d > 0.0 { spot.top_rate_stb_d } else { 0.3 * open };
+        let top = top_near(|q| now.height_psi(q), guess, low * open, (high * open).min(0.9999 * open));
+        self.remember(w, |s| s.top_rate_stb_d = top.0);
+        top
+    }
+
+    /// Asked and allowed surface rate of an injector, STB/d or scf/d.
+    pub fn injection(&self, i: usize, tank: &TankState, withdrawal_rb_d: f64) -> (f64, f64) {
+        if !self.modes.injecting[i] {
+            return (0.0, 0.0);
+        }
+        let injector = &self.setup.injectors[i];
+        let asked = match injector.control {
+            InjectionControl::Rate(rate) => rate,
+            InjectionControl::VoidageReplacement(part) => part * withdrawal_rb_d / injected_fvf(injector.fluid, tank),
+        };
+        (asked, asked.min(injection_limit(injector, tank.pressure_psia)))
+    }
+
+    /// Calendar-average oil, gas and water rates of one well.
+    fn well_rates(&self, w: usize, tank: &TankState) -> (f64, f64, f64) {
+        if !self.modes.wells[w].flows() {
+            return (0.0, 0.0, 0.0);
+        }
+        let now = self.well_now(w, tank);
+        let liquid = self.rate(w, &now) * self.setup.wells[w].spec.uptime;
+        let oil = liquid * (1.0 - now.water_cut);
+        (oil, oil * now.gor_scf_stb, liquid * now.water_cut)
+    }
+
+    /// Total calendar-average withdrawal at reservoir conditions, rb/d.
+    pub fn withdrawal_rb_d(&self, tank: &TankState) -> f64 {
+        (0..self.setup.wells.len())
+            .map(|w| {
+                let (oil, gas, water) = self.well_rates(w, tank);
+                tank.voidage_rb(oil, gas, water)
+            })
+            .sum()
+    }
+
+    fn watch(&self, watch: Watch, tank: &TankState) -> f64 {
+        let spec = |w: usize| &self.setup.wells[w].spec;
+        match watch {
+            Watch::BubblePoint => {
+                let side = if self.modes.saturated { 1.0 } else { -1.0 };
+                side * tank.excess_gas_scf_stb + BUBBLE_POINT_SLACK_SCF_STB
+            }
+            Watch::CriticalGas => {
+                let above = tank.gas_saturation - self.setup.tank.relative_permeability().critical_gas();
+                (if self.modes.gas_mobile { above } else { -above }) + CRITICAL_GAS_SLACK
+            }
+            Watch::InjectorLimit(i) => {
+                let (asked, _) = self.injection(i, tank, self.withdrawal_rb_d(tank));
+                let limit = injection_limit(&self.setup.injectors[i], tank.pressure_psia);
+                if limit.is_infinite() {
+                    return 1.0;
+                }
+                let scale = asked.max(limit).max(1e-9);
+                let spare = (limit - asked) / scale;
+                (if self.modes.limited[i] { -spare } else { spare }) + LIMIT_SLACK
+            }
+            Watch::CapLost(w) => {
+                let now = self.well_now(w, tank);
+                match self.modes.wells[w] {
+                    // Beyond open flow the inflow curve has no pressure to offer: go on with its slope so that the zero is crossed.
+                    Mode::Target => {
+                        let target = spec(w).target_rate_stb_d.unwrap_or(0.0);
+                        let beyond = (target - now.curve.open_flow_stb_d()).max(0.0);
+                        now.height_psi(target) - beyond
+                    }
+                    _ => {
+                        let rate = self.floor_rate(w, &now);
+                        if rate > 0.0 { now.height_psi(rate) } else { -1.0 }
+                    }
+                }
+            }
+            Watch::TargetAbove(w) => {
+                let now = self.well_now(w, tank);
+                let target = spec(w).target_rate_stb_d.unwrap_or(f64::INFINITY);
+                match self.modes.wells[w] {
+                    Mode::Floor => target - self.floor_rate(w, &now) + 1e-6 * target,
+                    _ => REGAIN_PSI - now.height_psi(target),
+                }
+            }
+            Watch::FloorAbove(w) => {
+                let now = self.well_now(w, tank);
+                let floor = spec(w).minimum_flowing_pressure_psia.unwrap_or(0.0);
+                match self.modes.wells[w] {
+                    Mode::Target => now.curve.flowing_psia(spec(w).target_rate_stb_d.unwrap_or(0.0)) - floor + 1e-6,
+                    _ => REGAIN_PSI - now.height_psi(self.floor_rate(w, &now)),
+                }
+            }
+            Watch::MarginGone(w) => {
+                let now = self.well_now(w, tank);
+                match self.modes.wells[w] {
+                    Mode::Line { low, high } => self.top(w, &now, low, high).1,
+                    _ => 1.0,
+                }
+            }
+            Watch::RightHump(w) => self.right_hump(w, tank),
+            Watch::MinimumRate(w) => {
+                let now = self.well_now(w, tank);
+                self.rate(w, &now) - spec(w).minimum_rate_stb_d.unwrap_or(0.0)
+            }
+            Watch::WaterCut(w) => spec(w).maximum_water_cut.unwrap_or(1.0) - self.well_now(w, tank).water_cut,
+            Watch::GasOilRatio(w) => {
+                let limit = spec(w).maximum_gor_scf_stb.unwrap_or(f64::INFINITY);
+                (limit - self.well_now(w, tank).gor_scf_stb) / limit
+            }
+            Watch::FlowAgain(w) => FLOW_AGAIN_PSI - self.well_now(w, tank).survey().margin_psi,
+        }
+    }
+
+    /// Positive while no other hump reaches above zero to the right of the one on which the well flows.
+    fn right_hump(&self, w: usize, tank: &TankState) -> f64 {
+        const LOOKS: usize = 6;
+        let now = self.well_now(w, tank);
+        // Beyond a target or floor the well does not go, so nothing there matters.
+        let cap = self.floor_rate(w, &now).min(self.setup.wells[w].spec.target_rate_stb_d.unwrap_or(f64::INFINITY));
+        let (rate, open) = (self.rate(w, &now), now.curve.open_flow_stb_d().min(cap));
+        if !(rate > 0.0 && rate < open) {
+            return 1.0;
+        }
+        let highest = (1..=LOOKS)
+            .map(|k| now.height_psi(rate + (open - rate) * k as f64 / (LOOKS + 1) as f64))
+            .fold(f64::NEG_INFINITY, f64::max);
+        REGAIN_PSI - highest
+    }
+}
+
+impl Problem for Dynamics<'_> {
+    type Error = ClosureError;
+
+    fn derivative(&self, _t_days: f64, y: &[f64], dy: &mut [f64]) -> Result<(), ClosureError> {
+        let tank = self.tank(y)?;
+        let (layout, initial) = (self.layout(), self.setup.tank.initial());
+        dy.fill(0.0);
+        let mut withdrawal = 0.0;
+        for w in 0..layout.wells {
+            let (oil, gas, water) = self.well_rates(w, &tank);
+            dy[layout.oil(w)] = oil / initial.oil_stb;
+            dy[layout.gas(w)] = gas / initial.gas_scf;
+            dy[layout.water(w)] = water / initial.oil_stb;
+            withdrawal += tank.voidage_rb(oil, gas, water);
+        }
+        for i in 0..layout.injectors {
+            let (asked, rate) = self.injection(i, &tank, withdrawal);
+            let (injector, scale) = (&self.setup.injectors[i], self.injected_scale(i));
+            dy[layout.injected(i)] = rate / scale;
+            dy[layout.asked(i)] = asked / scale;
+            let total = match injector.fluid {
+                InjectedFluid::Water => layout.effective_water(),
+                InjectedFluid::Gas => layout.effective_gas(),
+            };
+            dy[total] += rate * injector.effective_fraction / scale;
+        }
+        Ok(())
+    }
+
+    fn watch_count(&self) -> usize {
+        self.watches.len()
+    }
+
+    fn watches(&self, _t_days: f64, y: &[f64], out: &mut [f64]) -> Result<(), ClosureError> {
+        let tank = self.tank(y)?;
+        for (value, watch) in out.iter_mut().zip(&self.watches) {
+            *value = self.watch(*watch, &tank);
+        }
+        Ok(())
+    }
+}

@@ -1,0 +1,187 @@
+//! A field, prepared to run: fluid, tank, wells, injectors.
+
+use super::{Change, FieldSpec, InjectedFluid, InjectorSpec, Tolerance};
+use crate::fault::Fault;
+use crate::fluid::BlackOil;
+use crate::rock::RelativePermeability;
+use crate::tank::{ClosureError, Tank, TankSpec, TankState};
+use crate::well::{Surroundings, WellModel};
+use std::sync::Arc;
+
+/// Why a forecast could not be run.
+#[derive(Debug, Clone, thiserror::Error)]
+pub enum RunError {
+    /// The input cannot be: each fault with the key it belongs to.
+    #[error("{}", list(.0))]
+    Input(Vec<Fault>),
+    /// The balance gave no pressure at the start.
+    #[error("at the start of the forecast, {0}")]
+    Start(ClosureError),
+    /// The integrator gave up.
+    #[error("the integration stopped {days:.2} days after the start: {reason}")]
+    Integration {
+        /// Days from the start.
+        days: f64,
+        /// What the integrator said.
+        reason: String,
+    },
+    /// Too many switches at one instant.
+    #[error("the wells switch back and forth {days:.2} days after the start: {what}")]
+    Flicker {
+        /// Days from the start.
+        days: f64,
+        /// The last switch.
+        what: String,
+    },
+    /// More was injected than the tank can take.
+    #[error("{days:.1} days after the start, {source}")]
+    TooMuchInjected {
+        /// Days from the start.
+        days: f64,
+        /// The closure's own words.
+        source: ClosureError,
+    },
+}
+
+fn list(faults: &[Fault]) -> String {
+    faults.iter().map(ToString::to_string).collect::<Vec<_>>().join("\n")
+}
+
+/// What may change at a dated event.
+#[derive(Debug, Clone)]
+pub(super) struct Setup {
+    pub wells: Vec<WellModel>,
+    pub injectors: Vec<InjectorSpec>,
+    pub tank: Tank,
+}
+
+/// A field, prepared to run.
+#[derive(Debug, Clone)]
+pub struct Field {
+    pub(super) spec: FieldSpec,
+    pub(super) fluid: BlackOil,
+    pub(super) setup: Arc<Setup>,
+    pub(super) start: TankState,
+}
+
+impl Field {
+    /// Prepares fluid, tank, wells and injectors and solves the state at the start.
+    ///
+    /// # Errors
+    /// [`RunError::Input`] with every fault found, keys as in the scenario file.
+    pub fn new(spec: &FieldSpec) -> Result<Self, RunError> {
+        let fluid = BlackOil::new(&spec.fluid, spec.tank.temperature_degf).map_err(|f| RunError::Input(under(f, "fluid")))?;
+        let pb = fluid.initial_bubble_point_psia();
+        let p_i = spec.tank.pressure_psia;
+        // A hair of rounding between "bubble point" and "pressure" written alike in other units is no fault.
+        if pb > p_i * (1.0 + 1e-6) {
+            return Err(RunError::Input(vec![
+                Fault::new("tank.pressure", format!("the initial pressure {p_i:.1} psia is below the bubble point {pb:.1} psia"))
+                    .help("oil cannot hold that much gas at this pressure; state a measured bubble point, or less solution gas"),
+            ]));
+        }
+        if spec.tank.gas_cap_ratio > 0.0 && pb < p_i * (1.0 - 1e-3) {
+            return Err(RunError::Input(vec![
+                Fault::new("tank.gas_cap_ratio", format!("a gas cap needs the bubble point ({pb:.1} psia) at the initial pressure ({p_i:.1} psia)"))
+                    .help("state bubble_point equal to the pressure at the gas-oil contact"),
+            ]));
+        }
+        let rel_perm = RelativePermeability::corey(&spec.tank.relative_permeability, spec.tank.connate_water);
+        let tank = Tank::new(&spec.tank, Arc::new(fluid.clone()), rel_perm, spec.fluid.solution_gor_scf_stb)
+            .map_err(|f| RunError::Input(under(f, "tank")))?;
+        let start = tank.state(&tank.start(), p_i).map_err(|error| match error {
+            ClosureError::NoRoot { .. } | ClosureError::AboveRange { .. } if spec.tank.produced.is_some() => {
+                RunError::Input(vec![Fault::new("tank.produced", format!("with these volumes {error}"))])
+            }
+            other => RunError::Start(other),
+        })?;
+        let mut faults = Vec::new();
+        let mut wells = Vec::new();
+        let around = surroundings(spec, &fluid, &tank, &start);
+        for (i, well) in spec.wells.iter().enumerate() {
+            match WellModel::new(well, &around) {
+                Ok(model) => wells.push(model),
+                Err(found) => faults.extend(under(found, &format!("well[{i}]"))),
+            }
+        }
+        if !faults.is_empty() {
+            return Err(RunError::Input(faults));
+        }
+        let setup = Arc::new(Setup { wells, injectors: spec.injectors.clone(), tank });
+        Ok(Self { spec: spec.clone(), fluid, setup, start })
+    }
+
+    /// The tank's state at the start of the forecast.
+    pub fn start(&self) -> &TankState {
+        &self.start
+    }
+
+    /// The wells as they are at the start of the forecast.
+    pub fn wells(&self) -> &[WellModel] {
+        &self.setup.wells
+    }
+
+    /// The tank.
+    pub fn tank(&self) -> &Tank {
+        &self.setup.tank
+    }
+
+    /// The fluid.
+    pub fn fluid(&self) -> &BlackOil {
+        &self.fluid
+    }
+
+    /// The setup after a dated event.
+    pub(super) fn changed(&self, setup: &Setup, change: &Change) -> Result<Setup, RunError> {
+        let mut next = setup.clone();
+        match change {
+            Change::Well(i, spec) => {
+                let around = surroundings(&self.spec, &self.fluid, &self.setup.tank, &self.start);
+                next.wells[*i] =
+                    setup.wells[*i].changed(spec, &around).map_err(|f| RunError::Input(under(f, &format!("well[{i}]"))))?;
+            }
+            Change::Injector(i, spec) => next.injectors[*i] = spec.clone(),
+            Change::Tank(spec) => next.tank.set_flow(flow(spec), spec.water_model),
+        }
+        Ok(next)
+    }
+}
+
+fn flow(spec: &TankSpec) -> RelativePermeability {
+    RelativePermeability::corey(&spec.relative_permeability, spec.connate_water)
+}
+
+fn surroundings<'a>(spec: &FieldSpec, fluid: &'a BlackOil, tank: &'a Tank, start: &'a TankState) -> Surroundings<'a> {
+    Surroundings {
+        fluid,
+        tank,
+        temperature_degf: spec.tank.temperature_degf,
+        datum_tvd_ft: spec.tank.datum_tvd_ft,
+        start,
+        accuracy_psi: match spec.tolerance {
+            Tolerance::Normal => 0.02,
+            Tolerance::Tight => 0.0002,
+        },
+    }
+}
+
+fn under(faults: Vec<Fault>, prefix: &str) -> Vec<Fault> {
+    faults.into_iter().map(|f| f.under(prefix)).collect()
+}
+
+/// Rate limits of an injector at a tank pressure: the highest surface rate, STB/d or scf/d.
+pub(super) fn injection_limit(injector: &InjectorSpec, tank_psia: f64) -> f64 {
+    let pressure = match (injector.bottomhole_limit_psia, injector.injectivity) {
+        (Some(limit), Some(injectivity)) => (injectivity * (limit - tank_psia)).max(0.0),
+        _ => f64::INFINITY,
+    };
+    injector.rate_limit.unwrap_or(f64::INFINITY).min(pressure)
+}
+
+/// Reservoir volume of one surface unit, rb/STB or rb/scf.
+pub(super) fn injected_fvf(fluid: InjectedFluid, state: &TankState) -> f64 {
+    match fluid {
+        InjectedFluid::Water => state.bw_rb_stb,
+        InjectedFluid::Gas => state.bg_rb_scf,
+    }
+}

@@ -1,0 +1,320 @@
+//! The finished forecast, read from the trace: period rows, curves, doubts.
+
+use super::calendar::periods;
+use super::curves::life_curves;
+use super::doubts::{Seen, about_result};
+use super::dynamics::{Dynamics, Mode};
+use super::field::{Field, RunError};
+use super::run::{Piece, Trace, work};
+use super::{
+    DriveIndices, Forecast, InjectedFluid, InjectorResult, InjectorRow, Period, TankRow, WellResult, WellRow,
+};
+use crate::tank::{Cumulatives, TankState};
+use crate::well::{Landscape, top_near};
+
+/// Rows between two looks over all rates; in between the top of the margin is followed.
+const ROWS_PER_LOOK: usize = 12;
+
+/// Where a well's margin was found last.
+#[derive(Clone, Copy, Default)]
+struct Margin {
+    rate_stb_d: f64,
+    age: usize,
+}
+
+/// Makes the forecast from its trace.
+pub(super) fn forecast(field: &Field, trace: Trace) -> Result<Forecast, RunError> {
+    let spec = &field.spec;
+    let mut rows = Rows::new(field, &trace);
+    let mut list = periods(&spec.period);
+    list.retain(|p| p.start_days < trace.end_days);
+    for period in &mut list {
+        period.run_days = period.end_days.min(trace.end_days);
+        rows.add(period)?;
+    }
+    let Rows { tank, wells, injectors, seen, .. } = rows;
+    let results = spec
+        .wells
+        .iter()
+        .enumerate()
+        .map(|(w, well)| {
+            let model = &field.setup.wells[w];
+            let rows: Vec<WellRow> = wells[w].clone();
+            Ok(WellResult {
+                name: well.name.clone(),
+                natural_flow_end: trace.flow_ends[w],
+                flowing_at_end: trace.pieces.last().is_some_and(|p| {
+                    p.modes.wells[w].flows() && trace.flow_ends[w].is_none_or(|e| e.days < trace.end_days)
+                }) && trace.flow_ends[w].is_none(),
+                plateau_end: trace.plateau_ends[w],
+                peak_gor_scf_stb: rows.iter().filter_map(|r| r.gor_scf_stb).fold(0.0, f64::max),
+                inflow_text: model.inflow_text(),
+                tests: model.tests.clone(),
+                curves: life_curves(field, &trace, w)?,
+                rows,
+            })
+        })
+        .collect::<Result<Vec<_>, RunError>>()?;
+    let injector_results = spec
+        .injectors
+        .iter()
+        .zip(injectors)
+        .map(|(i, rows)| InjectorResult { name: i.name.clone(), rows })
+        .collect();
+    let mut forecast = Forecast {
+        start: spec.period.start,
+        end_days: trace.end_days,
+        end_text: trace.end_text,
+        oil_in_place_stb: spec.tank.oil_in_place_stb,
+        produced_before_stb: spec.tank.produced.map_or(0.0, |p| p.oil_stb),
+        start_pressure_psia: field.start.pressure_psia,
+        balance_residual: tank.iter().map(|r| r.balance_residual.abs()).fold(0.0, f64::max),
+        work: work(&trace),
+        periods: list,
+        tank,
+        wells: results,
+        injectors: injector_results,
+        events: trace.events,
+        doubts: Vec::new(),
+    };
+    forecast.doubts = about_result(field, &forecast, &seen);
+    Ok(forecast)
+}
+
+/// The state at an instant: the later of two touching pieces never hides what held at the end of a period.
+pub(super) fn piece_at(pieces: &[Piece], t_days: f64) -> Option<&Piece> {
+    let i = pieces.partition_point(|p| p.stretch.to_days < t_days - 1e-9);
+    pieces.get(i).or_else(|| pieces.last())
+}
+
+struct Rows<'a> {
+    field: &'a Field,
+    trace: &'a Trace,
+    tank: Vec<TankRow>,
+    wells: Vec<Vec<WellRow>>,
+    injectors: Vec<Vec<InjectorRow>>,
+    margins: Vec<Margin>,
+    voidage_before: (f64, f64),
+    last: Cumulatives,
+    seen: Seen,
+}
+
+impl<'a> Rows<'a> {
+    fn new(field: &'a Field, trace: &'a Trace) -> Self {
+        let (wells, injectors) = (field.spec.wells.len(), field.spec.injectors.len());
+        trace.memory.pressure_psia.set(field.start.pressure_psia);
+        // Start from the same warm starts whatever the run did last.
+        for spot in trace.memory.spots.borrow_mut().iter_mut() {
+            *spot = super::dynamics::Spot::default();
+        }
+        Self {
+            field,
+            trace,
+            tank: Vec::new(),
+            wells: vec![Vec::new(); wells],
+            injectors: vec![Vec::new(); injectors],
+            margins: vec![Margin::default(); wells],
+            voidage_before: (0.0, 0.0),
+            last: Cumulatives::default(),
+            seen: Seen::new(wells, injectors),
+        }
+    }
+
+    fn add(&mut self, period: &Period) -> Result<(), RunError> {
+        let Some(piece) = piece_at(&self.trace.pieces, period.run_days) else { return Ok(()) };
+        let dynamics = Dynamics::new(self.field, &piece.setup, &piece.modes, &self.trace.memory);
+        let y = piece.stretch.at(period.run_days);
+        let y = y.as_slice();
+        let index = self.tank.len();
+        let tank = dynamics.tank(y).map_err(|source| RunError::TooMuchInjected { days: period.run_days, source })?;
+        let mut flows = (0.0, 0.0, 0.0);
+        for w in 0..self.wells.len() {
+            let row = self.well_row(w, period, piece, &dynamics, &tank, y);
+            if let (Some(rate), Some(cut), Some(gor)) = (row.liquid_rate_stb_d, row.water_cut, row.gor_scf_stb) {
+                let liquid = rate * piece.setup.wells[w].spec.uptime;
+                let oil = liquid * (1.0 - cut);
+                flows = (flows.0 + oil, flows.1 + oil * gor, flows.2 + liquid * cut);
+            }
+            self.wells[w].push(row);
+        }
+        let withdrawal = tank.voidage_rb(flows.0, flows.1, flows.2);
+        for i in 0..self.injectors.len() {
+            let row = self.injector_row(i, &dynamics, &tank, y, withdrawal, index);
+            self.injectors[i].push(row);
+        }
+        self.tank_row(&dynamics, &tank, y, flows, index);
+        Ok(())
+    }
+
+    fn well_row(
+        &mut self,
+        w: usize,
+        period: &Period,
+        piece: &Piece,
+        dynamics: &Dynamics,
+        tank: &TankState,
+        y: &[f64],
+    ) -> WellRow {
+        let (layout, initial) = (dynamics.layout(), self.field.tank().initial());
+        let before = self.wells[w].last().copied().unwrap_or_default();
+        let oil_cum = y[layout.oil(w)] * initial.oil_stb;
+        let water_cum = y[layout.water(w)] * initial.oil_stb;
+        let gas_cum = y[layout.gas(w)] * initial.gas_scf;
+        let mut row = WellRow {
+            oil_stb: oil_cum - before.oil_cum_stb,
+            water_stb: water_cum - before.water_cum_stb,
+            gas_scf: gas_cum - before.gas_cum_scf,
+            oil_cum_stb: oil_cum,
+            water_cum_stb: water_cum,
+            gas_cum_scf: gas_cum,
+            flowing_days: self.flowing_days(w, period),
+            ..WellRow::default()
+        };
+        let mode = piece.modes.wells[w];
+        if mode == Mode::Waiting {
+            return row;
+        }
+        let now = dynamics.well_now(w, tank);
+        row.flow_margin_psi = Some(self.margin(w, &now));
+        // A well that stopped at the very end of this period no longer flows at its end.
+        let stopped_here = self.trace.flow_ends[w].is_some_and(|e| (e.days - period.run_days).abs() < 1e-6);
+        if mode.flows() && !stopped_here {
+            let rate = dynamics.rate(w, &now);
+            let flowing_psia = now.curve.flowing_psia(rate);
+            row.flowing = true;
+            row.liquid_rate_stb_d = Some(rate);
+            row.flowing_pressure_psia = Some(flowing_psia);
+            row.gor_scf_stb = Some(now.gor_scf_stb);
+            row.water_cut = Some(now.water_cut);
+            row.wellhead_pressure_psia = Some(match mode {
+                Mode::Line { .. } => piece.setup.wells[w].spec.line_pressure_psia,
+                _ => now.wellhead_psia(rate, flowing_psia),
+            });
+            self.seen.well(w, self.wells[w].len(), now.near_sonic(rate));
+        }
+        row
+    }
+
+    /// The flow margin: followed from the row before, looked for over all rates once a year and where it is new.
+    fn margin(&mut self, w: usize, now: &crate::well::WellNow) -> f64 {
+        let open = now.curve.open_flow_stb_d();
+        if open <= 0.0 {
+            return -now.tubing_psia(0.0);
+        }
+        let known = &mut self.margins[w];
+        if known.rate_stb_d <= 0.0 || known.rate_stb_d >= open || known.age >= ROWS_PER_LOOK {
+            let Landscape { margin_psi, margin_rate_stb_d, .. } = now.survey();
+            *known = Margin { rate_stb_d: margin_rate_stb_d, age: 1 };
+            return margin_psi;
+        }
+        let (rate, margin) = top_near(|q| now.height_psi(q), known.rate_stb_d, 0.005 * open, 0.999 * open);
+        *known = Margin { rate_stb_d: rate, age: known.age + 1 };
+        margin
+    }
+
+    fn flowing_days(&self, w: usize, period: &Period) -> f64 {
+        self.trace
+            .pieces
+            .iter()
+            .filter(|p| p.modes.wells[w].flows())
+            .map(|p| {
+                let overlap = p.stretch.to_days.min(period.run_days) - p.stretch.from_days.max(period.start_days);
+                overlap.max(0.0) * p.setup.wells[w].spec.uptime
+            })
+            .sum()
+    }
+
+    fn injector_row(
+        &mut self,
+        i: usize,
+        dynamics: &Dynamics,
+        tank: &TankState,
+        y: &[f64],
+        withdrawal_rb_d: f64,
+        index: usize,
+    ) -> InjectorRow {
+        let (layout, scale) = (dynamics.layout(), dynamics.injected_scale(i));
+        let injector = &dynamics.setup.injectors[i];
+        let before = self.injectors[i].last().copied().unwrap_or_default();
+        let total = y[layout.injected(i)] * scale;
+        let asked = y[layout.asked(i)] * scale;
+        let asked_before = self.seen.asked[i];
+        self.seen.asked[i] = asked;
+        let (injected_before, mut row) = match injector.fluid {
+            InjectedFluid::Water => (before.water_cum_stb, InjectorRow { water_cum_stb: total, ..InjectorRow::default() }),
+            InjectedFluid::Gas => (before.gas_cum_scf, InjectorRow { gas_cum_scf: total, ..InjectorRow::default() }),
+        };
+        let volume = total - injected_before;
+        match injector.fluid {
+            InjectedFluid::Water => row.water_stb = volume,
+            InjectedFluid::Gas => row.gas_scf = volume,
+        }
+        // Below the slack at which a limit counts as one, the difference is rounding.
+        let short = (asked - asked_before) - volume;
+        row.shortfall = if short > 2e-6 * (asked - asked_before).abs() { short } else { 0.0 };
+        let (_, rate) = dynamics.injection(i, tank, withdrawal_rb_d);
+        if let (Some(injectivity), true) = (injector.injectivity, rate > 0.0) {
+            let pressure = tank.pressure_psia + rate / injectivity;
+            row.bottomhole_pressure_psia = Some(pressure);
+            self.seen.injector(i, index, pressure, injector.bottomhole_limit_psia);
+        }
+        row
+    }
+
+    fn tank_row(
+        &mut self,
+        dynamics: &Dynamics,
+        tank: &TankState,
+        y: &[f64],
+        (oil, gas, water): (f64, f64, f64),
+        index: usize,
+    ) {
+        let total = dynamics.cumulatives(y);
+        let balance = self.field.tank().balance(&total, tank);
+        let before = self.last;
+        self.last = total;
+        let (injected_water_stb, injected_gas_scf) = self
+            .injectors
+            .iter()
+            .filter_map(|rows| rows.last())
+            .fold((0.0, 0.0), |sum, row| (sum.0 + row.water_stb, sum.1 + row.gas_scf));
+        // Voidage replacement of the period, at the pressure of its end; injected volumes as injected.
+        let withdrawn = tank.voidage_rb(
+            total.oil_stb - before.oil_stb,
+            total.gas_scf - before.gas_scf,
+            total.water_stb - before.water_stb,
+        );
+        let injected = injected_water_stb * tank.bw_rb_stb + injected_gas_scf * tank.bg_rb_scf;
+        self.voidage_before.0 += withdrawn;
+        self.voidage_before.1 += injected;
+        self.tank.push(TankRow {
+            oil_stb: total.oil_stb - before.oil_stb,
+            water_stb: total.water_stb - before.water_stb,
+            gas_scf: total.gas_scf - before.gas_scf,
+            injected_water_stb,
+            injected_gas_scf,
+            oil_cum_stb: total.oil_stb,
+            water_cum_stb: total.water_stb,
+            gas_cum_scf: total.gas_scf,
+            pressure_psia: tank.pressure_psia,
+            bubble_point_psia: tank.bubble_point_psia,
+            oil_saturation: tank.oil_saturation,
+            gas_saturation: tank.gas_saturation,
+            water_saturation: tank.water_saturation,
+            gor_scf_stb: (oil > 0.0).then(|| gas / oil),
+            water_cut: (oil + water > 0.0).then(|| water / (oil + water)),
+            voidage_replacement: (withdrawn > 0.0).then(|| injected / withdrawn),
+            voidage_replacement_cum: (self.voidage_before.0 > 0.0)
+                .then(|| self.voidage_before.1 / self.voidage_before.0),
+            balance_residual: balance.map_or(0.0, |b| b.residual()),
+            drive_indices: balance.map(|b| DriveIndices {
+                depletion: b.depletion,
+                gas_cap: b.gas_cap,
+                rock_and_water: b.rock_and_water,
+                aquifer: 0.0,
+                injection: b.injection,
+            }),
+        });
+        self.seen.tank(index, tank);
+    }
+}

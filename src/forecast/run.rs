@@ -1,0 +1,602 @@
+//! The driver: scheduled changes, stretches between them, mode switches, the end of natural flow.
+
+use super::calendar::{date_at, days_between};
+use super::dynamics::{Dynamics, Layout, Memory, Mode, Modes, Spot, Watch};
+use super::field::{Field, RunError, Setup, injection_limit};
+use super::integrate::{Effort, End, Settings, State, Stretch, integrate};
+use super::{
+    Change, EventKind, EventRecord, FieldSpec, FlowEnd, Forecast, StopReason, Tolerance, Work,
+};
+use crate::tank::{ClosureError, TankState};
+use crate::well::{Crossing, crossings};
+use jiff::civil::Date;
+use std::sync::Arc;
+
+/// Switches at one instant after which the run is given up.
+const MOST_SWITCHES_AT_ONCE: usize = 40;
+
+/// A stretch with the settings and modes that held in it.
+pub(super) struct Piece {
+    pub stretch: Stretch,
+    pub setup: Arc<Setup>,
+    pub modes: Modes,
+}
+
+/// Everything the run left behind, for the rows to be made from.
+pub(super) struct Trace {
+    pub pieces: Vec<Piece>,
+    pub events: Vec<EventRecord>,
+    pub flow_ends: Vec<Option<FlowEnd>>,
+    pub plateau_ends: Vec<Option<f64>>,
+    pub first_flow: Vec<Option<f64>>,
+    pub memory: Memory,
+    pub effort: Effort,
+    pub end_days: f64,
+    pub end_text: &'static str,
+}
+
+/// Runs the forecast.
+///
+/// # Errors
+/// [`RunError`]; a balance that runs out is no error but the reason of the wells' stop.
+pub fn run(spec: &FieldSpec) -> Result<Forecast, RunError> {
+    let field = Field::new(spec)?;
+    let trace = Run::new(&field).go()?;
+    super::rows::forecast(&field, trace)
+}
+
+/// Integrates and keeps the trace only.
+pub(super) fn trace(field: &Field) -> Result<Trace, RunError> {
+    Run::new(field).go()
+}
+
+struct Run<'a> {
+    field: &'a Field,
+    setup: Arc<Setup>,
+    modes: Modes,
+    t: f64,
+    y: State,
+    trace: Trace,
+    switches_here: usize,
+    settings: Settings,
+}
+
+impl<'a> Run<'a> {
+    fn new(field: &'a Field) -> Self {
+        let setup = Arc::clone(&field.setup);
+        let (wells, injectors) = (setup.wells.len(), setup.injectors.len());
+        let memory = Memory::default();
+        memory.pressure_psia.set(field.start.pressure_psia);
+        *memory.spots.borrow_mut() = vec![Spot::default(); wells];
+        let (rtol, atol) = match field.spec.tolerance {
+            Tolerance::Normal => (1e-7, 1e-9),
+            Tolerance::Tight => (1e-9, 1e-11),
+        };
+        Self {
+            field,
+            setup,
+            modes: Modes {
+                wells: vec![Mode::Waiting; wells],
+                watch_return: vec![false; wells],
+                injecting: vec![false; injectors],
+                limited: vec![false; injectors],
+                saturated: field.start.excess_gas_scf_stb >= 0.0,
+                gas_mobile: field.start.gas_saturation > field.tank().relative_permeability().critical_gas(),
+            },
+            t: 0.0,
+            y: State::zeros(Layout { wells, injectors }.len()),
+            trace: Trace {
+                pieces: Vec::new(),
+                events: Vec::new(),
+                flow_ends: vec![None; wells],
+                plateau_ends: vec![None; wells],
+                first_flow: vec![None; wells],
+                memory,
+                effort: Effort::default(),
+                end_days: 0.0,
+                end_text: "period ended",
+            },
+            switches_here: 0,
+            settings: Settings { rtol, atol, longest_step_days: 122.0, first_step_days: 1.0 },
+        }
+    }
+
+    fn day(&self, date: Date) -> f64 {
+        days_between(self.field.spec.period.start, date)
+    }
+
+    fn event(&mut self, name: &str, kind: EventKind, note: String) {
+        self.trace.events.push(EventRecord {
+            date: date_at(self.field.spec.period.start, self.t),
+            days: self.t,
+            name: name.to_owned(),
+            kind,
+            note,
+        });
+    }
+
+    /// All days on which something is scheduled, and the last day.
+    fn marks(&self) -> Vec<f64> {
+        let spec = &self.field.spec;
+        let end = self.day(spec.period.end);
+        let mut dates: Vec<Date> = spec.changes.iter().map(|c| c.on).collect();
+        let changed_wells = spec.changes.iter().filter_map(|c| match &c.change {
+            Change::Well(_, w) => Some(w.as_ref()),
+            _ => None,
+        });
+        for well in spec.wells.iter().chain(changed_wells) {
+            dates.extend(well.start.iter().chain(&well.end));
+        }
+        let changed_injectors = spec.changes.iter().filter_map(|c| match &c.change {
+            Change::Injector(_, i) => Some(i),
+            _ => None,
+        });
+        for injector in spec.injectors.iter().chain(changed_injectors) {
+            dates.extend(injector.start.iter().chain(&injector.end));
+        }
+        let mut days: Vec<f64> = dates.into_iter().map(|d| self.day(d)).filter(|d| *d > 0.0 && *d < end).collect();
+        days.push(end);
+        days.sort_by(f64::total_cmp);
+        days.dedup();
+        days
+    }
+
+    fn go(mut self) -> Result<Trace, RunError> {
+        let marks = self.marks();
+        self.scheduled()?;
+        let end = marks.last().copied().unwrap_or(0.0);
+        for mark in marks {
+            while self.t < mark {
+                if self.finished(end) {
+                    self.trace.end_days = self.t;
+                    return Ok(self.trace);
+                }
+                if !self.stretch_to(mark)? {
+                    self.trace.end_days = self.t;
+                    self.trace.end_text = "balance has no solution";
+                    return Ok(self.trace);
+                }
+            }
+            if self.t < end {
+                self.scheduled()?;
+            }
+        }
+        self.trace.end_days = self.t;
+        Ok(self.trace)
+    }
+
+    /// Whether nothing more can happen before the period ends.
+    fn finished(&mut self, end: f64) -> bool {
+        let period_start = self.field.spec.period.start;
+        let window_ahead = |w: usize| {
+            let spec = &self.setup.wells[w].spec;
+            spec.start.is_some_and(|d| days_between(period_start, d) > self.t && days_between(period_start, d) < end)
+        };
+        let alive = self.modes.wells.iter().enumerate().any(|(w, mode)| match mode {
+            Mode::Waiting => window_ahead(w),
+            Mode::Stopped(_) => self.setup.wells[w].spec.may_flow_again && self.modes.watch_return[w],
+            _ => true,
+        });
+        let events_ahead =
+            self.field.spec.changes.iter().any(|c| self.day(c.on) > self.t && matches!(c.change, Change::Well(..)));
+        if alive || events_ahead {
+            return false;
+        }
+        self.trace.end_text = "no well flows any more";
+        true
+    }
+
+    /// One stretch up to `mark` or its first event. False when the balance has run out.
+    fn stretch_to(&mut self, mark: f64) -> Result<bool, RunError> {
+        if mark - self.t < 1e-6 {
+            self.t = mark;
+            return Ok(true);
+        }
+        let setup = Arc::clone(&self.setup);
+        let modes = self.modes.clone();
+        let dynamics = Dynamics::new(self.field, &setup, &modes, &self.trace.memory);
+        let outcome = integrate(&dynamics, self.t, &self.y, mark, &self.settings, &mut self.trace.effort);
+        let (stretch, end) = match outcome {
+            Ok(found) => found,
+            Err(error) => {
+                return self.balance_gone(error);
+            }
+        };
+        let watch = match end {
+            End::Watch(i) => Some(dynamics.watches[i]),
+            _ => None,
+        };
+        let progress = stretch.to_days - self.t;
+        self.switches_here = if progress > 1e-6 { 0 } else { self.switches_here + 1 };
+        self.t = stretch.to_days;
+        self.y = stretch.at(stretch.to_days);
+        self.trace.pieces.push(Piece { stretch, setup, modes });
+        match end {
+            End::Reached => {
+                if (self.t - mark).abs() < 1e-6 {
+                    self.t = mark;
+                }
+            }
+            End::Watch(_) => {
+                if let Some(watch) = watch {
+                    self.switch(watch)?;
+                }
+            }
+            End::Failed(error) => return self.balance_gone(error),
+            End::GaveUp(reason) => return Err(RunError::Integration { days: self.t, reason }),
+        }
+        if self.switches_here > MOST_SWITCHES_AT_ONCE {
+            return Err(RunError::Flicker { days: self.t, what: format!("{watch:?}") });
+        }
+        Ok(true)
+    }
+
+    fn balance_gone(&mut self, error: ClosureError) -> Result<bool, RunError> {
+        if let ClosureError::AboveRange { .. } | ClosureError::NotANumber = error {
+            return Err(RunError::TooMuchInjected { days: self.t, source: error });
+        }
+        for w in 0..self.modes.wells.len() {
+            if self.modes.wells[w].flows() {
+                self.stop(w, StopReason::BalanceHasNoSolution)?;
+            }
+        }
+        Ok(false)
+    }
+
+    fn tank_now(&self) -> Result<TankState, RunError> {
+        let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
+        dynamics.tank(self.y.as_slice()).map_err(|source| RunError::TooMuchInjected { days: self.t, source })
+    }
+
+    /// Applies everything scheduled for this instant.
+    fn scheduled(&mut self) -> Result<(), RunError> {
+        let mut named = vec![false; self.setup.wells.len()];
+        let changes: Vec<_> =
+            self.field.spec.changes.iter().filter(|c| self.day(c.on) == self.t || (self.t == 0.0 && self.day(c.on) < 0.0)).collect();
+        for change in changes {
+            self.setup = Arc::new(self.field.changed(&self.setup, &change.change)?);
+            self.event(&change.name, EventKind::Scheduled, change.text.clone());
+            if let Change::Well(w, _) = change.change {
+                named[w] = true;
+            }
+        }
+        for i in 0..self.setup.injectors.len() {
+            let spec = &self.setup.injectors[i];
+            let on = spec.start.is_none_or(|d| self.day(d) <= self.t) && spec.end.is_none_or(|d| self.t < self.day(d));
+            if on != self.modes.injecting[i] {
+                self.modes.injecting[i] = on;
+                self.modes.limited[i] = false;
+                let name = spec.name.clone();
+                let kind = if on { EventKind::InjectionStarted } else { EventKind::InjectionEnded };
+                self.event(&name, kind, String::new());
+            }
+        }
+        for (w, named) in named.into_iter().enumerate() {
+            let spec = &self.setup.wells[w].spec;
+            let started = spec.start.is_none_or(|d| self.day(d) <= self.t);
+            let ended = spec.end.is_some_and(|d| self.day(d) <= self.t);
+            let mode = self.modes.wells[w];
+            if ended {
+                if mode.flows() {
+                    self.stop(w, StopReason::Scheduled)?;
+                } else if mode == Mode::Waiting {
+                    self.modes.wells[w] = Mode::Stopped(StopReason::Scheduled);
+                }
+            } else if started {
+                let shut = mode == Mode::Stopped(StopReason::Scheduled);
+                if mode == Mode::Waiting || shut || named {
+                    self.place(w, true)?;
+                }
+            }
+        }
+        self.check_limits()
+    }
+
+    /// Finds out which injectors are held back from the start.
+    fn check_limits(&mut self) -> Result<(), RunError> {
+        let tank = self.tank_now()?;
+        for i in 0..self.setup.injectors.len() {
+            if !self.modes.injecting[i] {
+                continue;
+            }
+            let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
+            let (asked, _) = dynamics.injection(i, &tank, dynamics.withdrawal_rb_d(&tank));
+            let limited = asked > injection_limit(&self.setup.injectors[i], tank.pressure_psia);
+            self.set_limited(i, limited, &tank);
+        }
+        Ok(())
+    }
+
+    fn set_limited(&mut self, i: usize, limited: bool, tank: &TankState) {
+        if self.modes.limited[i] == limited {
+            return;
+        }
+        self.modes.limited[i] = limited;
+        let name = self.setup.injectors[i].name.clone();
+        let kind = if limited { EventKind::InjectionLimited } else { EventKind::InjectionLimitLeft };
+        self.event(&name, kind, format!("tank pressure {:.0} psia", tank.pressure_psia));
+    }
+
+    /// Ends a well's natural flow.
+    fn stop(&mut self, w: usize, reason: StopReason) -> Result<(), RunError> {
+        if self.modes.wells[w].flows() {
+            let end = self.flow_end(w, reason)?;
+            self.trace.flow_ends[w] = Some(end);
+            let note = format!(
+                "{:.0} STB/d liquid, {:.0} STB/d oil, tank at {:.0} psia",
+                end.liquid_rate_stb_d, end.oil_rate_stb_d, end.reservoir_pressure_psia
+            );
+            let name = self.setup.wells[w].spec.name.clone();
+            self.event(&name, EventKind::EndOfNaturalFlow(reason), note);
+        }
+        self.modes.wells[w] = Mode::Stopped(reason);
+        self.modes.watch_return[w] = matches!(reason, StopReason::NoCrossing | StopReason::MinimumFlowingPressure);
+        Ok(())
+    }
+
+    fn flow_end(&self, w: usize, reason: StopReason) -> Result<FlowEnd, RunError> {
+        let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
+        // When the balance has run out the last state that it gave stands in.
+        let tank = dynamics.tank(self.y.as_slice()).unwrap_or(self.field.start);
+        let now = dynamics.well_now(w, &tank);
+        let rate = dynamics.rate(w, &now);
+        let margin = now.survey().margin_psi;
+        Ok(FlowEnd {
+            date: date_at(self.field.spec.period.start, self.t),
+            days: self.t,
+            reason,
+            liquid_rate_stb_d: rate,
+            oil_rate_stb_d: rate * (1.0 - now.water_cut),
+            flow_margin_psi: margin,
+            reservoir_pressure_psia: tank.pressure_psia,
+        })
+    }
+
+    /// Looks at a well from scratch and puts it where it belongs. `starting`: it did not flow before.
+    fn place(&mut self, w: usize, starting: bool) -> Result<(), RunError> {
+        let tank = self.tank_now()?;
+        let before = self.modes.wells[w];
+        let (found, spot) = {
+            let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
+            placement(&self.setup, &dynamics, w, &tank)
+        };
+        self.trace.memory.spots.borrow_mut()[w] = spot;
+        let name = self.setup.wells[w].spec.name.clone();
+        match found {
+            Err(reason) if before.flows() => self.stop(w, reason),
+            Err(reason) => {
+                // A dead well tested again by an event that did not help keeps its first end.
+                if self.trace.flow_ends[w].is_none() {
+                    self.trace.flow_ends[w] = Some(FlowEnd {
+                        liquid_rate_stb_d: 0.0,
+                        oil_rate_stb_d: 0.0,
+                        ..self.flow_end(w, reason)?
+                    });
+                    self.event(&name, EventKind::EndOfNaturalFlow(reason), "it did not come to flow".to_owned());
+                    self.modes.wells[w] = Mode::Stopped(reason);
+                    self.modes.watch_return[w] =
+                        matches!(reason, StopReason::NoCrossing | StopReason::MinimumFlowingPressure);
+                }
+                Ok(())
+            }
+            Ok(mode) => {
+                self.modes.wells[w] = mode;
+                self.modes.watch_return[w] = false;
+                if starting && !before.flows() {
+                    let kind = if before == Mode::Waiting { EventKind::WellStarted } else { EventKind::FlowsAgain };
+                    self.event(&name, kind, String::new());
+                    self.trace.flow_ends[w] = None;
+                    self.trace.first_flow[w].get_or_insert(self.t);
+                }
+                let target = self.setup.wells[w].spec.target_rate_stb_d;
+                if target.is_some() && mode != Mode::Target && (before == Mode::Target || !before.flows()) {
+                    self.plateau_lost(w);
+                }
+                Ok(())
+            }
+        }
+    }
+
+    fn plateau_lost(&mut self, w: usize) {
+        if self.trace.plateau_ends[w].is_none() {
+            self.trace.plateau_ends[w] = Some(self.t);
+        }
+        let name = self.setup.wells[w].spec.name.clone();
+        self.event(&name, EventKind::PlateauLost, String::new());
+    }
+
+    /// Acts on a watch that reached zero.
+    fn switch(&mut self, watch: Watch) -> Result<(), RunError> {
+        let tank = self.tank_now()?;
+        let name = |w: usize| self.setup.wells[w].spec.name.clone();
+        match watch {
+            Watch::BubblePoint => {
+                self.modes.saturated = !self.modes.saturated;
+                let kind = if self.modes.saturated {
+                    EventKind::BubblePointCrossedDown
+                } else {
+                    EventKind::BubblePointCrossedUp
+                };
+                self.event("tank", kind, format!("{:.1} psia", tank.pressure_psia));
+            }
+            Watch::CriticalGas => {
+                self.modes.gas_mobile = !self.modes.gas_mobile;
+                if self.modes.gas_mobile {
+                    self.event("tank", EventKind::FreeGasMobile, format!("{:.1} psia", tank.pressure_psia));
+                }
+            }
+            Watch::InjectorLimit(i) => self.set_limited(i, !self.modes.limited[i], &tank),
+            Watch::TargetAbove(w) => {
+                let name = name(w);
+                self.modes.wells[w] = Mode::Target;
+                self.event(&name, EventKind::TargetRegained, String::new());
+            }
+            Watch::FloorAbove(w) => {
+                let name = name(w);
+                if self.modes.wells[w] == Mode::Target {
+                    self.plateau_lost(w);
+                }
+                self.modes.wells[w] = Mode::Floor;
+                self.event(&name, EventKind::FloorReached, String::new());
+            }
+            Watch::CapLost(w) => self.cap_lost(w, &tank)?,
+            Watch::MarginGone(w) | Watch::RightHump(w) => {
+                let name = name(w);
+                let before = self.modes.wells[w];
+                let margin = {
+                    let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
+                    dynamics.well_now(w, &tank).survey().margin_psi
+                };
+                // The same hump, found again at a height of rounding: it is gone.
+                if matches!(watch, Watch::MarginGone(_)) && margin < 1e-3 {
+                    self.stop(w, StopReason::NoCrossing)?;
+                } else {
+                    self.place(w, false)?;
+                    if self.modes.wells[w].flows() && self.modes.wells[w] != before {
+                        self.event(&name, EventKind::RateJump, String::new());
+                    }
+                }
+            }
+            Watch::MinimumRate(w) => self.stop(w, StopReason::RateLimit)?,
+            Watch::WaterCut(w) => self.stop(w, StopReason::WaterCutLimit)?,
+            Watch::GasOilRatio(w) => self.stop(w, StopReason::GasOilRatioLimit)?,
+            Watch::FlowAgain(w) => {
+                if self.setup.wells[w].spec.may_flow_again {
+                    self.place(w, true)?;
+                } else {
+                    let name = name(w);
+                    self.modes.watch_return[w] = false;
+                    self.event(&name, EventKind::CouldFlowAgain, "flow margin back at 1 psi".to_owned());
+                }
+            }
+        }
+        Ok(())
+    }
+
+    /// The target, or the floor's rate, can no longer be held: `h` has come down to zero there.
+    fn cap_lost(&mut self, w: usize, tank: &TankState) -> Result<(), RunError> {
+        let was = self.modes.wells[w];
+        let (next, spot) = {
+            let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
+            let now = dynamics.well_now(w, tank);
+            let cap = dynamics.rate(w, &now);
+            let nudge = 1e-4 * cap;
+            let slope = (now.height_psi(cap + nudge) - now.height_psi(cap - nudge)) / (2.0 * nudge);
+            if slope < 0.0 {
+                // The stable crossing comes in from the right: the well declines along it.
+                let land = now.survey();
+                let open = now.curve.open_flow_stb_d();
+                let (low, high) = (land.hump_stb_d.0.min(0.999 * cap), land.hump_stb_d.1.max(1.001 * cap));
+                let top = if land.top_rate_stb_d < cap { land.top_rate_stb_d } else { 0.9 * cap };
+                let mode = Mode::Line { low: low / open, high: (high / open).min(1.0) };
+                (Ok(mode), Spot { rate_stb_d: cap, slope, top_rate_stb_d: top })
+            } else {
+                let limit = if was == Mode::Floor { StopReason::MinimumFlowingPressure } else { StopReason::RateLimit };
+                match stable_below(&now, 0.999_999 * cap) {
+                    Some((mode, spot)) => (Ok(mode), spot),
+                    None if now.survey().margin_psi <= 1e-3 => (Err(StopReason::NoCrossing), Spot::default()),
+                    None => (Err(limit), Spot::default()),
+                }
+            }
+        };
+        match next {
+            Err(reason) => self.stop(w, reason),
+            Ok(mode) => {
+                self.trace.memory.spots.borrow_mut()[w] = spot;
+                self.modes.wells[w] = mode;
+                if was == Mode::Target {
+                    self.plateau_lost(w);
+                } else {
+                    let name = self.setup.wells[w].spec.name.clone();
+                    self.event(&name, EventKind::FloorLeft, String::new());
+                }
+                Ok(())
+            }
+        }
+    }
+}
+
+/// The right-most stable crossing below a cap, as a mode.
+fn stable_below(now: &crate::well::WellNow, cap_stb_d: f64) -> Option<(Mode, Spot)> {
+    let open = now.curve.open_flow_stb_d();
+    let all = crossings(|q| now.height_psi(q), open);
+    let i = all.iter().rposition(|c: &Crossing| c.stable && c.rate_stb_d <= cap_stb_d)?;
+    let rate = all[i].rate_stb_d;
+    let low = if i > 0 { all[i - 1].rate_stb_d } else { 0.0 };
+    let high = all.get(i + 1).map_or(open, |c| c.rate_stb_d);
+    let nudge = 1e-4 * rate;
+    let slope = (now.height_psi(rate + nudge) - now.height_psi(rate - nudge)) / (2.0 * nudge);
+    // The hump reaches from the middle of the dip on its left to the middle of the one on its right.
+    let low = if i > 1 { 0.5 * (low + all[i - 2].rate_stb_d) } else { 0.0 };
+    let high = if high < open { 0.5 * (rate + high) } else { open };
+    Some((
+        Mode::Line { low: low / open, high: high / open },
+        Spot { rate_stb_d: rate, slope, top_rate_stb_d: 0.5 * (rate + low.max(0.5 * rate)) },
+    ))
+}
+
+/// Where a well belongs at a tank state: a flowing mode, or the reason why it does not flow.
+fn placement(
+    setup: &Setup,
+    dynamics: &Dynamics,
+    w: usize,
+    tank: &TankState,
+) -> (Result<Mode, StopReason>, Spot) {
+    let spec = &setup.wells[w].spec;
+    let now = dynamics.well_now(w, tank);
+    let open = now.curve.open_flow_stb_d();
+    if open <= 0.0 {
+        return (Err(StopReason::NoCrossing), Spot::default());
+    }
+    let land = now.survey();
+    if land.margin_psi <= 0.0 {
+        return (Err(StopReason::NoCrossing), Spot::default());
+    }
+    if spec.maximum_water_cut.is_some_and(|limit| now.water_cut >= limit) {
+        return (Err(StopReason::WaterCutLimit), Spot::default());
+    }
+    if spec.maximum_gor_scf_stb.is_some_and(|limit| now.gor_scf_stb >= limit) {
+        return (Err(StopReason::GasOilRatioLimit), Spot::default());
+    }
+    let floor = spec.minimum_flowing_pressure_psia.map_or(f64::INFINITY, |p| now.curve.rate_stb_d(p));
+    let target = spec.target_rate_stb_d.unwrap_or(f64::INFINITY);
+    let (cap, capped, limit) = if target <= floor {
+        (target, Mode::Target, StopReason::RateLimit)
+    } else {
+        (floor, Mode::Floor, StopReason::MinimumFlowingPressure)
+    };
+    let top = Spot { rate_stb_d: 0.0, slope: 0.0, top_rate_stb_d: land.top_rate_stb_d };
+    let (mode, spot, rate) = if cap <= 0.0 {
+        return (Err(limit), top);
+    } else if cap < open && now.height_psi(cap) >= 0.0 {
+        (capped, top, cap)
+    } else {
+        match land.right_crossing_stb_d {
+            Some(rate) if rate <= cap => {
+                let nudge = 1e-4 * rate;
+                let slope = (now.height_psi(rate + nudge) - now.height_psi(rate - nudge)) / (2.0 * nudge);
+                let mode = Mode::Line { low: land.hump_stb_d.0 / open, high: land.hump_stb_d.1 / open };
+                (mode, Spot { rate_stb_d: rate, slope, ..top }, rate)
+            }
+            _ => match stable_below(&now, cap) {
+                Some((mode, spot)) => (mode, spot, spot.rate_stb_d),
+                None => return (Err(limit), top),
+            },
+        }
+    };
+    if spec.minimum_rate_stb_d.is_some_and(|least| rate < least) {
+        return (Err(StopReason::RateLimit), spot);
+    }
+    (Ok(mode), spot)
+}
+
+/// Work of a trace, for the results.
+pub(super) fn work(trace: &Trace) -> Work {
+    Work {
+        steps: trace.effort.steps,
+        right_hand_sides: trace.effort.right_hand_sides,
+        traverses: trace.memory.traverses.get(),
+        closure_solves: trace.memory.closures.get(),
+        segments: trace.pieces.len() as u64,
+    }
+}

@@ -1,0 +1,263 @@
+//! Beggs and Brill (1973) with the corrections of Payne et al. (1979).
+//!
+//! Flow map on lam and NFr = vm^2/(g d): L1 = 316 lam^0.302, L2 = 0.0009252 lam^-2.4684, L3 = 0.10 lam^-1.4516,
+//! L4 = 0.5 lam^-6.738. Holdup `HL(0) = a lam^b/NFr^c`, not below lam; inclination
+//! `psi = 1 + C [sin(1.8 th) - sin^3(1.8 th)/3]`, `C = (1 - lam) ln(e lam^f NLv^g NFr^h)`, not below 0; HL = HL(0) psi,
+//! times 0.924 uphill and 0.685 downhill (Payne), within lam (uphill) and 1. Transition flow interpolates the
+//! corrected holdups of segregated and intermittent flow with A = (L3 - NFr)/(L3 - L2).
+//! Friction `fn e^S rho_n vm^2/(2 gc d)` with the rough-pipe Moody factor at the no-slip Reynolds number,
+//! y = lam/HL^2, `S = ln y/[-0.0523 + 3.182 ln y - 0.8725 (ln y)^2 + 0.01853 (ln y)^4]`, S = ln(2.2 y - 1.2) for
+//! 1 < y < 1.2, at most 7. `Ek = rho_s vm vSg/(gc p)`.
+//!
+//! # Limitation
+//! Fitted to air and water in 1 to 1.5 in. acrylic pipe. The holdup jumps at the borders of the map. Segregated flow
+//! is tested first. The factor of horizontal pipe is taken as that of uphill flow.
+//!
+//! # Source
+//! Beggs and Brill, J. Pet. Tech. (May 1973) 607, with the revised flow map; Payne et al., J. Pet. Tech. (Sept. 1979)
+//! 1198.
+
+use super::groups::LnGroups;
+use super::model::{Branch, Flow, Gradient, Hydraulics, Pipe, laminar_bit, laminar_margin};
+use super::no_slip;
+use crate::units::constants::GRAVITY_FT_S2;
+
+/// The regimes of the flow map.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Regime {
+    /// Stratified, wavy, annular.
+    Segregated,
+    /// Between segregated and intermittent.
+    Transition,
+    /// Plug and slug.
+    Intermittent,
+    /// Bubble and mist.
+    Distributed,
+}
+
+/// The model.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub struct BeggsBrill {
+    /// Whether the holdup is corrected after Payne et al. (1979).
+    pub payne: bool,
+}
+
+// Branch bits: the regime in two of them, the branch of S in two more.
+const REGIME_SHIFT: u16 = 2;
+const S_WINDOW: u16 = 16;
+const S_BELOW_ONE: u16 = 32;
+
+const LN_0_01: f64 = -4.605_170_185_988_091;
+const LN_0_4: f64 = -0.916_290_731_874_155;
+
+/// Logarithms of the no-slip holdup, the Froude number and the borders of the flow map.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Map {
+    /// ln lam.
+    pub ln_no_slip_holdup: f64,
+    /// ln NFr.
+    pub ln_froude: f64,
+    /// ln L1 to ln L4.
+    pub ln_limits: [f64; 4],
+}
+
+impl Map {
+    /// Where the flow lies.
+    #[inline]
+    pub fn new(flow: &Flow, pipe: &Pipe) -> Self {
+        let velocity = flow.mixture_velocity_ft_s();
+        let ln_lam = flow.no_slip_holdup.ln();
+        Self {
+            ln_no_slip_holdup: ln_lam,
+            // A column at rest stays finite.
+            ln_froude: (velocity * velocity / (GRAVITY_FT_S2 * pipe.diameter_ft)).max(1e-24).ln(),
+            ln_limits: [
+                5.755_742_213_586_912 + 0.302 * ln_lam,
+                -6.985_500_627_606_99 - 2.4684 * ln_lam,
+                -2.302_585_092_994_045_5 - 1.4516 * ln_lam,
+                -std::f64::consts::LN_2 - 6.738 * ln_lam,
+            ],
+        }
+    }
+
+    /// How far the flow is inside a regime: positive inside.
+    #[inline]
+    pub fn margin(&self, regime: Regime) -> f64 {
+        let n = self.ln_froude;
+        let [l1, l2, l3, l4] = self.ln_limits;
+        let above_0_01 = self.ln_no_slip_holdup - LN_0_01;
+        let above_0_4 = self.ln_no_slip_holdup - LN_0_4;
+        match regime {
+            Regime::Segregated => (-above_0_01).min(l1 - n).max(above_0_01.min(l2 - n)),
+            Regime::Transition => above_0_01.min(n - l2).min(l3 - n),
+            Regime::Intermittent => {
+                let few = above_0_01.min(-above_0_4).min(n - l3).min(l1 - n);
+                few.max(above_0_4.min(n - l3).min(l4 - n))
+            }
+            Regime::Distributed => (-above_0_4).min(n - l1).max(above_0_4.min(n - l4)),
+        }
+    }
+
+    /// The regime; segregated flow is tested first.
+    #[inline]
+    pub fn regime(&self) -> Regime {
+        [Regime::Segregated, Regime::Transition, Regime::Intermittent]
+            .into_iter()
+            .find(|&regime| self.margin(regime) >= 0.0)
+            .unwrap_or(Regime::Distributed)
+    }
+
+    /// HL(0) of segregated, intermittent or distributed flow, not below the no-slip holdup.
+    #[inline]
+    pub fn horizontal_holdup(&self, regime: Regime) -> f64 {
+        let (ln_a, b, c) = match regime {
+            Regime::Segregated | Regime::Transition => (-0.020_202_707_317_519_466, 0.4846, 0.0868),
+            Regime::Intermittent => (-0.168_418_651_624_963_15, 0.5351, 0.0173),
+            Regime::Distributed => (0.062_974_799_161_388_39, 0.5824, 0.0609),
+        };
+        let ln_holdup = ln_a + b * self.ln_no_slip_holdup - c * self.ln_froude;
+        ln_holdup.max(self.ln_no_slip_holdup).exp()
+    }
+
+    /// The coefficient C of the inclination correction; `ln_nlv` is the logarithm of the liquid velocity number.
+    #[inline]
+    pub fn inclination(&self, regime: Regime, ln_nlv: f64, uphill: bool, no_slip_holdup: f64) -> f64 {
+        let (ln_e, f, g, h) = match (uphill, regime) {
+            (true, Regime::Distributed) => return 0.0,
+            (true, Regime::Segregated | Regime::Transition) => (-4.509_860_006_183_766, -3.768, 3.539, -1.614),
+            (true, Regime::Intermittent) => (1.085_189_268_335_969_8, 0.305, -0.4473, 0.0978),
+            (false, _) => (1.547_562_508_716_013_2, -0.3692, 0.1244, -0.5056),
+        };
+        let ln = ln_e + f * self.ln_no_slip_holdup + g * ln_nlv + h * self.ln_froude;
+        ((1.0 - no_slip_holdup) * ln).max(0.0)
+    }
+}
+
+/// The exponent S of the two-phase friction factor. The window 1 < y < 1.2 is the caller's choice: it holds the
+/// branch.
+#[inline]
+pub fn friction_exponent(ln_y: f64, window: bool) -> f64 {
+    if window {
+        return (2.2 * ln_y.exp() - 1.2).max(1e-9).ln();
+    }
+    let denominator = -0.0523 + ln_y * (3.182 + ln_y * (-0.8725 + 0.018_53 * ln_y * ln_y));
+    let s = ln_y / denominator;
+    // 0/0 only exactly at the pole, where the fit means nothing.
+    if s < 7.0 { s } else { 7.0 }
+}
+
+/// HL(0), psi and HL of one regime.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Holdup {
+    /// HL(0).
+    pub horizontal: f64,
+    /// C.
+    pub inclination: f64,
+    /// psi.
+    pub factor: f64,
+    /// HL, corrected and limited.
+    pub inclined: f64,
+}
+
+impl BeggsBrill {
+    /// The holdup in one regime other than transition.
+    #[inline]
+    pub fn holdup(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe) -> Holdup {
+        let uphill = pipe.sin_inclination >= 0.0;
+        let lam = flow.no_slip_holdup;
+        let horizontal = map.horizontal_holdup(regime);
+        let inclination = map.inclination(regime, LnGroups::liquid_velocity_number(flow), uphill, lam);
+        let factor = 1.0 + inclination * pipe.beggs_brill_factor;
+        let payne = match (self.payne, uphill) {
+            (false, _) => 1.0,
+            (true, true) => 0.924,
+            (true, false) => 0.685,
+        };
+        let floor = if uphill { lam } else { 1e-6 };
+        Holdup { horizontal, inclination, factor, inclined: (horizontal * factor * payne).max(floor).min(1.0) }
+    }
+
+    /// HL of any regime.
+    #[inline]
+    fn inclined(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe) -> f64 {
+        if regime != Regime::Transition {
+            return self.holdup(map, regime, flow, pipe).inclined;
+        }
+        let [_, l2, l3, _] = map.ln_limits;
+        let weight = (l3.exp() - map.ln_froude.exp()) / (l3.exp() - l2.exp());
+        let segregated = self.holdup(map, Regime::Segregated, flow, pipe).inclined;
+        let intermittent = self.holdup(map, Regime::Intermittent, flow, pipe).inclined;
+        (weight * segregated + (1.0 - weight) * intermittent).clamp(1e-6, 1.0)
+    }
+}
+
+/// How far ln y is inside its branch of S.
+#[inline]
+fn exponent_margin(ln_y: f64, branch: Branch) -> f64 {
+    const LN_1_2: f64 = 0.182_321_556_793_954_6;
+    if branch.has(S_BELOW_ONE) {
+        -ln_y
+    } else if branch.has(S_WINDOW) {
+        ln_y.min(LN_1_2 - ln_y)
+    } else {
+        ln_y - LN_1_2
+    }
+}
+
+#[inline]
+fn regime_of(branch: Branch) -> Regime {
+    match (branch.0 >> REGIME_SHIFT) & 3 {
+        0 => Regime::Segregated,
+        1 => Regime::Transition,
+        2 => Regime::Intermittent,
+        _ => Regime::Distributed,
+    }
+}
+
+impl Hydraulics for BeggsBrill {
+    fn branch(&self, flow: &Flow, pipe: &Pipe) -> Branch {
+        let map = Map::new(flow, pipe);
+        let regime = map.regime();
+        let holdup = self.inclined(&map, regime, flow, pipe);
+        let y = flow.no_slip_holdup / (holdup * holdup);
+        let exponent = if y <= 1.0 {
+            S_BELOW_ONE
+        } else if y < 1.2 {
+            S_WINDOW
+        } else {
+            0
+        };
+        let reynolds = no_slip::reynolds(flow, pipe, flow.no_slip_density_lb_ft3());
+        Branch(((regime as u16) << REGIME_SHIFT) | exponent | laminar_bit(reynolds))
+    }
+
+    #[inline]
+    fn gradient(&self, flow: &Flow, pipe: &Pipe, branch: Branch) -> Gradient {
+        let map = Map::new(flow, pipe);
+        let regime = regime_of(branch);
+        let holdup = self.inclined(&map, regime, flow, pipe);
+        let slip_density = flow.density_at_holdup_lb_ft3(holdup);
+        let no_slip_density = flow.no_slip_density_lb_ft3();
+        let reynolds = no_slip::reynolds(flow, pipe, no_slip_density);
+        let laminar = branch.has(Branch::LAMINAR);
+        let ln_y = map.ln_no_slip_holdup - 2.0 * holdup.ln();
+        let exponent = friction_exponent(ln_y, branch.has(S_WINDOW));
+        let moody = pipe.roughness.moody(reynolds, laminar) * exponent.exp();
+        Gradient {
+            gravity_psi_ft: pipe.gravity_psi_ft(slip_density),
+            friction_psi_ft: pipe.friction_psi_ft(moody, no_slip_density, flow.mixture_velocity_ft_s()),
+            kinetic: flow.kinetic(slip_density),
+            holdup,
+            margin: laminar_margin(reynolds, laminar).min(map.margin(regime)).min(exponent_margin(ln_y, branch)),
+        }
+    }
+
+    fn pattern(&self, flow: &Flow, pipe: &Pipe) -> &'static str {
+        match Map::new(flow, pipe).regime() {
+            Regime::Segregated => "segregated",
+            Regime::Transition => "transition",
+            Regime::Intermittent => "intermittent",
+            Regime::Distributed => "distributed",
+        }
+    }
+}

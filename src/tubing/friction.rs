@@ -1,0 +1,56 @@
+//! Moody friction factor of a rough pipe.
+//!
+//! Turbulent flow after Colebrook (1939), `1/sqrt(f) = -2 log10(eps/(3.7 d) + 2.51/(Re sqrt(f)))`, started from
+//! Haaland (1983) and improved by two Newton steps: within 1e-8 of the exact solution for Re from 2,100 to 1e8 and
+//! eps/d up to 0.05, and as smooth as the equation itself. Laminar flow `f = 64/Re` below Re 2,100: the factor
+//! jumps there (as 64/Re and Colebrook do), which the traverse treats as a switch of the flow regime.
+
+use std::f64::consts::LN_10;
+
+/// Reynolds number at which laminar flow gives way to turbulent flow.
+pub const LAMINAR_REYNOLDS: f64 = 2100.0;
+
+/// The roughness of one pipe, prepared for repeated use.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Roughness {
+    /// eps/(3.7 d).
+    colebrook: f64,
+    /// (eps/(3.7 d))^1.11.
+    haaland: f64,
+}
+
+impl Roughness {
+    /// Prepares the roughness relative to the diameter.
+    pub fn new(relative: f64) -> Self {
+        let colebrook = relative / 3.7;
+        Self { colebrook, haaland: colebrook.powf(1.11) }
+    }
+
+    /// Moody factor of turbulent flow, Colebrook (1939).
+    #[inline]
+    pub fn turbulent(&self, reynolds: f64) -> f64 {
+        let scale = -2.0 / LN_10;
+        let viscous = 2.51 / reynolds;
+        // Haaland (1983), within 1.4 % of Colebrook.
+        let mut x = 0.9 * scale * (6.9 / reynolds + self.haaland).ln();
+        for _ in 0..2 {
+            let argument = self.colebrook + viscous * x;
+            let residual = x - scale * argument.ln();
+            x -= residual / (1.0 - scale * viscous / argument);
+        }
+        1.0 / (x * x)
+    }
+
+    /// Moody factor of laminar (64/Re) or turbulent flow, as the caller has found the flow to be.
+    #[inline]
+    pub fn moody(&self, reynolds: f64, laminar: bool) -> f64 {
+        // The lower bound serves a column at rest: no velocity, no friction, whatever the factor.
+        if laminar { 64.0 / reynolds.max(1e-9) } else { self.turbulent(reynolds.max(100.0)) }
+    }
+}
+
+/// Moody factor at the fully rough limit, `1/sqrt(f) = 1.74 - 2 log10(2 eps/d)` (Nikuradse 1933).
+pub fn fully_rough(relative_roughness: f64) -> f64 {
+    let root = 1.74 - 2.0 * (2.0 * relative_roughness).log10();
+    1.0 / (root * root)
+}

@@ -1,0 +1,385 @@
+//! Integration of the pressure along the path.
+//!
+//! `dp/dL` is integrated by the 5(4) pair of Dormand and Prince (1980), the fifth order carried on. The result feeds
+//! a root finder inside an integrator, so it must depend smoothly on rate, water cut, gas-oil ratio and wellhead
+//! pressure, which ordinary step control spoils. Here every step is a *continuous* function of what came before:
+//!
+//! - the next step follows from the last error without thresholds; a step cut short by the end of a stretch counts
+//!   in proportion to its length, so that a vanishing last step changes nothing;
+//! - a step whose error is too large is repeated at `h (tolerance/error)^(1/5)`, which is the same step at the
+//!   threshold itself;
+//! - the branch of the model (flow pattern, laminar or turbulent, gas or no gas) is held within a step, and its end
+//!   is located on the cubic Hermite interpolant, then corrected on the step that ends there. Stepping over one
+//!   would cost 0.2 to 10 psi.
+
+use super::liquid;
+use super::model::{Branch, Flow, Gradient, Hydraulics};
+use super::path::Stretch;
+use super::traverse::Stream;
+use crate::fluid::BlackOil;
+use crate::units::constants::FT3_PER_BBL;
+
+/// Largest change of pressure in a step, relative to the pressure.
+const STEP_RELATIVE: f64 = 0.5;
+/// First step: change of pressure relative to the pressure.
+const FIRST_STEP_RELATIVE: f64 = 0.12;
+/// Error at which a step aims, in units of the one at which it is repeated.
+const AIM: f64 = 0.3;
+/// Error below which the next step grows no further, in the same units.
+const LEAST_ERROR: f64 = 0.01;
+/// Tolerance of one step's error estimate relative to the accuracy asked of the whole traverse.
+const STEP_SHARE: f64 = 0.25;
+/// A branch that ends this soon after its begin, ft, is left unwatched for a while: the flow would chatter.
+const LEAST_BRANCH_FT: f64 = 1e-4;
+/// First stretch to be left unwatched, ft; it doubles each time.
+const UNWATCHED_FT: f64 = 1.0;
+/// Steps after which the rest of a stretch is taken in one.
+const MOST_STEPS: u32 = 4000;
+/// The march upwards gives up below this pressure, psia.
+const LEAST_PRESSURE_PSIA: f64 = 1.0;
+/// No fluid property is asked for below this pressure, psia.
+const PROPERTY_FLOOR_PSIA: f64 = 0.5;
+
+/// One model, one fluid, one stream.
+pub(crate) struct March<'a, M> {
+    model: &'a M,
+    fluid: &'a BlackOil,
+    rate_stb_s: f64,
+    oil_fraction: f64,
+    water_fraction: f64,
+    gor_scf_stb: f64,
+    tolerance_psi: f64,
+}
+
+/// Where the march stands.
+pub(crate) struct Progress {
+    pub md_ft: f64,
+    pub pressure_psia: f64,
+    /// Largest kinetic term met at the ends of steps.
+    pub kinetic: f64,
+    /// Length wished for the next step, ft; 0: none yet.
+    wish_ft: f64,
+    unwatched_ft: f64,
+    steps: u32,
+}
+
+impl Progress {
+    pub fn new(md_ft: f64, pressure_psia: f64) -> Self {
+        Self { md_ft, pressure_psia, kinetic: 0.0, wish_ft: 0.0, unwatched_ft: UNWATCHED_FT, steps: 0 }
+    }
+}
+
+/// The right-hand side at one point.
+#[derive(Clone, Copy)]
+struct Slope {
+    psi_ft: f64,
+    margin: f64,
+    kinetic: f64,
+}
+
+/// One attempted step.
+struct Step {
+    pressure_psia: f64,
+    end: Slope,
+    error_psi: f64,
+    least_margin: f64,
+}
+
+impl<'a, M: Hydraulics> March<'a, M> {
+    pub fn new(model: &'a M, fluid: &'a BlackOil, stream: &Stream, accuracy_psi: f64) -> Self {
+        let water_fraction = held(stream.water_cut, 1.0);
+        Self {
+            model,
+            fluid,
+            rate_stb_s: held(stream.liquid_rate_stb_d, 1e8) / 86_400.0,
+            oil_fraction: 1.0 - water_fraction,
+            water_fraction,
+            gor_scf_stb: held(stream.gor_scf_stb, 1e8),
+            tolerance_psi: accuracy_psi * STEP_SHARE,
+        }
+    }
+
+    /// The flow at a point, and its pressure relative to the bubble point less one.
+    #[inline]
+    fn flow(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> (Flow, f64) {
+        let pressure_psia = pressure_psia.max(PROPERTY_FLOOR_PSIA);
+        let temperature_degf = stretch.temperature_degf(md_ft);
+        let fluid = self.fluid.in_situ(pressure_psia, temperature_degf, self.gor_scf_stb);
+        // Volumes in ft3 per STB of liquid.
+        let oil = FT3_PER_BBL * self.oil_fraction * fluid.bo_rb_stb;
+        let water = FT3_PER_BBL * self.water_fraction * fluid.bw_rb_stb;
+        let gas = self.oil_fraction * (self.gor_scf_stb - fluid.rs_scf_stb).max(0.0) * fluid.bg_ft3_scf;
+        let liquid = oil + water;
+        let oil_share = oil / liquid;
+        let water_share = 1.0 - oil_share;
+        let velocity = self.rate_stb_s / stretch.area_ft2;
+        let above = if self.oil_fraction > 0.0 {
+            let bubble_point_psia = self.fluid.bubble_point_at_psia(self.gor_scf_stb, temperature_degf);
+            (pressure_psia / bubble_point_psia.max(1e-3) - 1.0).min(1.0)
+        } else {
+            1.0
+        };
+        let flow = Flow {
+            liquid_velocity_ft_s: velocity * liquid,
+            gas_velocity_ft_s: velocity * gas,
+            no_slip_holdup: liquid / (liquid + gas),
+            liquid_density_lb_ft3: oil_share * fluid.oil_density_lb_ft3 + water_share * fluid.water_density_lb_ft3,
+            gas_density_lb_ft3: fluid.gas_density_lb_ft3,
+            liquid_viscosity_cp: oil_share * fluid.mu_o_cp + water_share * fluid.mu_w_cp,
+            gas_viscosity_cp: fluid.mu_g_cp,
+            tension_dyn_cm: oil_share * fluid.sigma_oil_gas_dyn_cm + water_share * fluid.sigma_water_gas_dyn_cm,
+            pressure_psia,
+        };
+        (flow, above)
+    }
+
+    fn choose(&self, flow: &Flow, above: f64, stretch: &Stretch) -> Branch {
+        if above >= 0.0 { liquid::branch(flow, &stretch.pipe) } else { self.model.branch(flow, &stretch.pipe) }
+    }
+
+    fn branch(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> Branch {
+        let (flow, above) = self.flow(stretch, md_ft, pressure_psia);
+        self.choose(&flow, above, stretch)
+    }
+
+    #[inline]
+    fn gradient(&self, flow: &Flow, above: f64, stretch: &Stretch, branch: Branch) -> Gradient {
+        let (mut gradient, phase_margin) = if branch.has(Branch::SINGLE_PHASE) {
+            (liquid::gradient(flow, &stretch.pipe, branch), above)
+        } else {
+            (self.model.gradient(flow, &stretch.pipe, branch), -above)
+        };
+        gradient.margin = gradient.margin.min(phase_margin);
+        gradient
+    }
+
+    #[inline]
+    fn slope(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64, branch: Branch) -> Slope {
+        let (flow, above) = self.flow(stretch, md_ft, pressure_psia);
+        let gradient = self.gradient(&flow, above, stretch, branch);
+        Slope { psi_ft: gradient.total_psi_ft(), margin: gradient.margin, kinetic: gradient.kinetic }
+    }
+
+    /// Flow, gradient and name of the pattern at a point.
+    pub fn describe(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> (Flow, Gradient, &'static str) {
+        let (flow, above) = self.flow(stretch, md_ft, pressure_psia);
+        let branch = self.choose(&flow, above, stretch);
+        let pattern = if above >= 0.0 { "liquid" } else { self.model.pattern(&flow, &stretch.pipe) };
+        (flow, self.gradient(&flow, above, stretch, branch), pattern)
+    }
+
+    /// One step of Dormand and Prince's pair on one branch; `h` is negative on the way up.
+    #[inline]
+    fn step(&self, stretch: &Stretch, md: f64, p: f64, k1: f64, h: f64, branch: Branch) -> Step {
+        let mut least_margin = f64::INFINITY;
+        let mut stage = |c: f64, slope: f64| {
+            let at = self.slope(stretch, md + c * h, p + h * slope, branch);
+            least_margin = least_margin.min(at.margin);
+            at
+        };
+        let k2 = stage(0.2, k1 / 5.0).psi_ft;
+        let k3 = stage(0.3, 3.0 / 40.0 * k1 + 9.0 / 40.0 * k2).psi_ft;
+        let k4 = stage(0.8, 44.0 / 45.0 * k1 - 56.0 / 15.0 * k2 + 32.0 / 9.0 * k3).psi_ft;
+        let k5 = stage(
+            8.0 / 9.0,
+            19372.0 / 6561.0 * k1 - 25360.0 / 2187.0 * k2 + 64448.0 / 6561.0 * k3 - 212.0 / 729.0 * k4,
+        )
+        .psi_ft;
+        let k6 = stage(
+            1.0,
+            9017.0 / 3168.0 * k1 - 355.0 / 33.0 * k2 + 46732.0 / 5247.0 * k3 + 49.0 / 176.0 * k4
+                - 5103.0 / 18656.0 * k5,
+        )
+        .psi_ft;
+        let mean =
+            35.0 / 384.0 * k1 + 500.0 / 1113.0 * k3 + 125.0 / 192.0 * k4 - 2187.0 / 6784.0 * k5 + 11.0 / 84.0 * k6;
+        let end = stage(1.0, mean);
+        let error = 71.0 / 57600.0 * k1 - 71.0 / 16695.0 * k3 + 71.0 / 1920.0 * k4 - 17253.0 / 339_200.0 * k5
+            + 22.0 / 525.0 * k6
+            - end.psi_ft / 40.0;
+        Step { pressure_psia: p + h * mean, end, error_psi: (h * error).abs(), least_margin }
+    }
+
+    /// Marches to `end_md_ft` within a stretch, downwards or upwards. False: the pressure ran out on the way up.
+    pub fn advance(&self, stretch: &Stretch, progress: &mut Progress, end_md_ft: f64) -> bool {
+        let direction = (end_md_ft - progress.md_ft).signum();
+        let mut branch = self.branch(stretch, progress.md_ft, progress.pressure_psia);
+        let mut start = self.slope(stretch, progress.md_ft, progress.pressure_psia, branch);
+        loop {
+            progress.kinetic = progress.kinetic.max(start.kinetic);
+            if progress.pressure_psia < LEAST_PRESSURE_PSIA {
+                return false;
+            }
+            let (md, p) = (progress.md_ft, progress.pressure_psia);
+            let rest = (end_md_ft - md) * direction;
+            if rest <= 1e-9 {
+                return true;
+            }
+            let pressure_length = p / start.psi_ft.max(1e-12);
+            if progress.wish_ft == 0.0 {
+                progress.wish_ft = FIRST_STEP_RELATIVE * pressure_length;
+            }
+            let mut wish = progress.wish_ft.min(STEP_RELATIVE * pressure_length);
+            progress.steps += 1;
+            if progress.steps > MOST_STEPS {
+                wish = rest;
+            }
+            let mut length = wish.min(rest);
+            let mut step = self.step(stretch, md, p, start.psi_ft, direction * length, branch);
+            let mut switched = false;
+            if step.least_margin < 0.0
+                && let Some(part) = self.switch(stretch, (md, p, start), &step, direction * length, branch)
+            {
+                if part * length < LEAST_BRANCH_FT {
+                    self.unwatched(stretch, progress, end_md_ft, &mut branch, &mut start);
+                    continue;
+                }
+                switched = part < 1.0;
+                length *= part;
+                step = self.step(stretch, md, p, start.psi_ft, direction * length, branch);
+            }
+            for _ in 0..6 {
+                if step.error_psi <= self.tolerance_psi || progress.steps > MOST_STEPS {
+                    break;
+                }
+                let factor = fifth_root(self.tolerance_psi / step.error_psi).max(0.2);
+                wish *= factor;
+                length *= factor;
+                switched = false;
+                step = self.step(stretch, md, p, start.psi_ft, direction * length, branch);
+            }
+            progress.wish_ft = self.next_wish(wish, length, step.error_psi);
+            if length >= rest {
+                progress.md_ft = end_md_ft;
+            } else {
+                progress.md_ft = md + direction * length;
+            }
+            progress.pressure_psia = step.pressure_psia;
+            let from = start;
+            start = step.end;
+            if switched {
+                self.correct(stretch, progress, (md, p, from), &step, direction * length, branch);
+                let ahead = direction * 0.01_f64.min(rest);
+                branch = self.branch(stretch, progress.md_ft + ahead, progress.pressure_psia + start.psi_ft * ahead);
+                start = self.slope(stretch, progress.md_ft, progress.pressure_psia, branch);
+            }
+        }
+    }
+
+    /// The wish for the next step after one of `length`, which may have been cut short of its own wish.
+    fn next_wish(&self, wish: f64, length: f64, error_psi: f64) -> f64 {
+        let relative = error_psi / self.tolerance_psi;
+        let error = (relative * relative + LEAST_ERROR * LEAST_ERROR).sqrt();
+        let weight = length / wish;
+        // Geometric mean of the old wish and the best length, by how much of the wish was tried.
+        let best = weight * fifth_root(AIM / error);
+        if best > 0.0 { wish * best.powf(weight) } else { wish }
+    }
+
+    /// The part of a step after which its branch ends; `None`: it does not.
+    fn switch(&self, stretch: &Stretch, from: (f64, f64, Slope), step: &Step, h: f64, branch: Branch) -> Option<f64> {
+        let (md, p, start) = from;
+        let margin = |x: f64| {
+            let pressure = hermite(x, h, (p, start.psi_ft), (step.pressure_psia, step.end.psi_ft));
+            self.slope(stretch, md + x * h, pressure, branch).margin
+        };
+        let (mut inside, mut inside_margin) = (0.0, start.margin);
+        let mut beyond = None;
+        for x in [0.25, 0.5, 0.75, 1.0] {
+            let at = if x == 1.0 { step.end.margin } else { margin(x) };
+            if at < 0.0 {
+                beyond = Some((x, at));
+                break;
+            }
+            (inside, inside_margin) = (x, at);
+        }
+        let (mut beyond, mut beyond_margin) = beyond?;
+        if inside_margin <= 0.0 {
+            return Some(inside);
+        }
+        // False position with the correction of Illinois.
+        let mut last_side = 0;
+        for _ in 0..40 {
+            if (beyond - inside) * h.abs() < 1e-7 {
+                break;
+            }
+            let x = inside + (beyond - inside) * inside_margin / (inside_margin - beyond_margin);
+            let at = margin(x);
+            if at.abs() < 1e-10 {
+                return Some(x);
+            }
+            if at > 0.0 {
+                (inside, inside_margin) = (x, at);
+                if last_side == 1 {
+                    beyond_margin *= 0.5;
+                }
+                last_side = 1;
+            } else {
+                (beyond, beyond_margin) = (x, at);
+                if last_side == -1 {
+                    inside_margin *= 0.5;
+                }
+                last_side = -1;
+            }
+        }
+        Some(0.5 * (inside + beyond))
+    }
+
+    /// Moves the end of a step that was to end on a border onto it, by a secant on the margin.
+    fn correct(
+        &self,
+        stretch: &Stretch,
+        progress: &mut Progress,
+        from: (f64, f64, Slope),
+        step: &Step,
+        h: f64,
+        branch: Branch,
+    ) {
+        let (md, p, start) = from;
+        let back = -0.02 * h;
+        let pressure = hermite(0.98, h, (p, start.psi_ft), (step.pressure_psia, step.end.psi_ft));
+        let before = self.slope(stretch, md + 0.98 * h, pressure, branch);
+        let shift = step.end.margin * back / (step.end.margin - before.margin);
+        if shift.abs() <= 0.02 * h.abs() {
+            let bend = (before.psi_ft - step.end.psi_ft) / back;
+            progress.md_ft -= shift;
+            progress.pressure_psia -= shift * (step.end.psi_ft - 0.5 * shift * bend);
+        }
+    }
+
+    /// Goes on for a while on the branch that would end at once, then chooses anew.
+    fn unwatched(
+        &self,
+        stretch: &Stretch,
+        progress: &mut Progress,
+        end_md_ft: f64,
+        branch: &mut Branch,
+        start: &mut Slope,
+    ) {
+        let rest = end_md_ft - progress.md_ft;
+        let h = rest.signum() * progress.unwatched_ft.min(rest.abs());
+        progress.unwatched_ft *= 2.0;
+        let step = self.step(stretch, progress.md_ft, progress.pressure_psia, start.psi_ft, h, *branch);
+        progress.md_ft = if h == rest { end_md_ft } else { progress.md_ft + h };
+        progress.pressure_psia = step.pressure_psia;
+        *branch = self.branch(stretch, progress.md_ft, progress.pressure_psia);
+        *start = self.slope(stretch, progress.md_ft, progress.pressure_psia, *branch);
+    }
+}
+
+/// A value held between 0 and `most`; not `clamp`, since a NaN becomes 0 here.
+fn held(value: f64, most: f64) -> f64 {
+    if value > 0.0 { value.min(most) } else { 0.0 }
+}
+
+#[inline]
+fn fifth_root(x: f64) -> f64 {
+    x.powf(0.2)
+}
+
+/// Cubic Hermite interpolant at the part `x` of a step of length `h` between two values and slopes.
+#[inline]
+fn hermite(x: f64, h: f64, (p0, f0): (f64, f64), (p1, f1): (f64, f64)) -> f64 {
+    let rise = p1 - p0;
+    p0 + x * (rise + (1.0 - x) * ((1.0 - x) * (h * f0 - rise) + x * (rise - h * f1)))
+}

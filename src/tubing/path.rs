@@ -1,0 +1,231 @@
+//! The path of the tubing: survey and sections made into stretches of one diameter, inclination and temperature slope.
+
+use super::TubingSpec;
+use super::model::Pipe;
+use crate::fault::Fault;
+
+/// Temperatures at which the surface tension correlations turn a corner, degF (Baker-Swerdloff: oil between 68 and
+/// 100, water between 74 and 280). Integration stops there, since it wants smooth functions.
+const TENSION_CORNERS_DEGF: [f64; 4] = [68.0, 74.0, 100.0, 280.0];
+
+/// Stretches shorter than this are joined to their neighbour, ft.
+const LEAST_STRETCH_FT: f64 = 1e-6;
+
+/// A straight stretch of pipe of one diameter.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(crate) struct Stretch {
+    pub top_md_ft: f64,
+    pub bottom_md_ft: f64,
+    pub top_tvd_ft: f64,
+    pub top_temperature_degf: f64,
+    /// Temperature rise per foot of measured depth.
+    pub temperature_slope_degf_ft: f64,
+    pub pipe: Pipe,
+    /// Cross-section, ft2.
+    pub area_ft2: f64,
+}
+
+impl Stretch {
+    #[inline]
+    pub fn temperature_degf(&self, md_ft: f64) -> f64 {
+        self.top_temperature_degf + self.temperature_slope_degf_ft * (md_ft - self.top_md_ft)
+    }
+
+    pub fn tvd_ft(&self, md_ft: f64) -> f64 {
+        self.top_tvd_ft + self.pipe.sin_inclination * (md_ft - self.top_md_ft)
+    }
+}
+
+/// The whole path, from the wellhead to the perforations.
+#[derive(Debug, Clone, PartialEq)]
+pub(crate) struct Path {
+    pub stretches: Vec<Stretch>,
+    pub perforations_md_ft: f64,
+    pub perforations_tvd_ft: f64,
+}
+
+impl Path {
+    /// Checks the tubing and cuts it into stretches.
+    pub fn new(
+        spec: &TubingSpec,
+        perforations_md_ft: Option<f64>,
+        bottom_temperature_degf: f64,
+    ) -> Result<Self, Vec<Fault>> {
+        let mut faults = survey_faults(&spec.survey);
+        let survey_is_good = faults.is_empty();
+        let end_md_ft = spec.survey.last().map_or(0.0, |&(md_ft, _)| md_ft);
+        let bottom_md_ft = perforations_md_ft.unwrap_or(end_md_ft);
+        if survey_is_good {
+            faults.extend(perforation_fault(bottom_md_ft, end_md_ft));
+        }
+        faults.extend(section_faults(spec, survey_is_good.then_some(bottom_md_ft)));
+        for (key, value) in
+            [("wellhead_temperature", spec.wellhead_temperature_degf), ("bottom_temperature", bottom_temperature_degf)]
+        {
+            if !(value > 0.0 && value < 700.0) {
+                faults.push(
+                    Fault::new(key, format!("{value} degF is no temperature of a flowing well"))
+                        .help("between 0 and 700 degF"),
+                );
+            }
+        }
+        if faults.is_empty() { Ok(cut(spec, bottom_md_ft, bottom_temperature_degf)) } else { Err(faults) }
+    }
+}
+
+fn survey_faults(survey: &[(f64, f64)]) -> Vec<Fault> {
+    let fault = |message: String, help: &str| vec![Fault::new("survey", message).help(help)];
+    if survey.len() < 2 {
+        return fault(
+            format!("a survey needs two points or more, this one has {}", survey.len()),
+            "from [\"0 ft\", \"0 ft\"] at the wellhead to the perforations",
+        );
+    }
+    if survey.iter().any(|&(md_ft, tvd_ft)| !md_ft.is_finite() || !tvd_ft.is_finite() || md_ft.abs() > 1e5) {
+        return fault("a depth is not a number, or beyond 100,000 ft".into(), "pairs of measured and vertical depth");
+    }
+    if survey[0] != (0.0, 0.0) {
+        return fault(
+            format!("begins at {} ft measured, {} ft vertical", survey[0].0, survey[0].1),
+            "begin with [\"0 ft\", \"0 ft\"] at the wellhead",
+        );
+    }
+    for (i, pair) in survey.windows(2).enumerate() {
+        let (length_ft, height_ft) = (pair[1].0 - pair[0].0, pair[1].1 - pair[0].1);
+        let (md_ft, tvd_ft) = pair[1];
+        let point = i + 2;
+        if length_ft <= 0.0 {
+            return fault(
+                format!("measured depth goes backwards at point {point}: {md_ft} ft after {} ft", pair[0].0),
+                "measured depths must rise",
+            );
+        }
+        if height_ft < 0.0 {
+            return fault(
+                format!("vertical depth goes backwards at point {point}: {tvd_ft} ft after {} ft", pair[0].1),
+                "flow that runs downhill towards the wellhead is outside the models",
+            );
+        }
+        // A little slack for rounded tables.
+        if height_ft > length_ft * 1.001 + 0.01 {
+            return fault(
+                format!("vertical depth grows by {height_ft} ft over {length_ft} ft of pipe up to point {point}"),
+                "each pair is [measured, vertical]; are they exchanged?",
+            );
+        }
+    }
+    Vec::new()
+}
+
+fn perforation_fault(bottom_md_ft: f64, end_md_ft: f64) -> Option<Fault> {
+    if bottom_md_ft.is_nan() || bottom_md_ft < 1.0 {
+        return Some(Fault::new("perforations", format!("{bottom_md_ft} ft is no depth of perforations")));
+    }
+    // The slack of rounded tables again.
+    (bottom_md_ft > end_md_ft + 0.01).then(|| {
+        Fault::new("perforations", format!("{bottom_md_ft} ft lies below the end of the survey at {end_md_ft} ft"))
+            .help("measured depth; extend the survey down to it")
+    })
+}
+
+fn section_faults(spec: &TubingSpec, bottom_md_ft: Option<f64>) -> Vec<Fault> {
+    if spec.sections.is_empty() {
+        return vec![Fault::new("diameter", "no diameter is given").help("diameter = \"2.441 in\", or sections")];
+    }
+    // One stretch without an end was stated as plain diameter and roughness.
+    let plain = spec.sections.len() == 1 && spec.sections[0].to_md_ft.is_infinite();
+    let key = |i: usize, name: &str| if plain { name.to_owned() } else { format!("sections[{i}].{name}") };
+    let mut faults = Vec::new();
+    let mut above_ft = 0.0;
+    for (i, section) in spec.sections.iter().enumerate() {
+        let (diameter_in, roughness_in) = (section.diameter_in, section.roughness_in);
+        if !(0.25..=30.0).contains(&diameter_in) {
+            faults.push(
+                Fault::new(key(i, "diameter"), format!("{diameter_in} in is no inside diameter of tubing"))
+                    .help("between 0.25 and 30 in"),
+            );
+        } else if !(0.0..=0.05 * diameter_in).contains(&roughness_in) {
+            faults.push(
+                Fault::new(key(i, "roughness"), format!("{roughness_in} in is outside the friction factor's range"))
+                    .help("between 0 and 5 % of the diameter; 0.0006 in is usual"),
+            );
+        }
+        if section.to_md_ft.is_nan() || section.to_md_ft <= above_ft {
+            faults.push(
+                Fault::new(
+                    key(i, "to"),
+                    format!("ends at {} ft, above its own top at {above_ft} ft", section.to_md_ft),
+                )
+                .help("sections run from the wellhead down"),
+            );
+        }
+        above_ft = section.to_md_ft;
+    }
+    if let Some(bottom_md_ft) = bottom_md_ft
+        && above_ft < bottom_md_ft - 0.01
+    {
+        faults.push(
+            Fault::new(
+                key(spec.sections.len() - 1, "to"),
+                format!("the last section ends at {above_ft} ft, above the perforations at {bottom_md_ft} ft"),
+            )
+            .help("the last section reaches the perforations; it may have no end"),
+        );
+    }
+    faults
+}
+
+/// Vertical depth at a measured depth.
+fn tvd_at(survey: &[(f64, f64)], md_ft: f64) -> f64 {
+    let pair = survey.windows(2).find(|pair| md_ft <= pair[1].0).unwrap_or(&survey[survey.len() - 2..]);
+    let fraction = (md_ft - pair[0].0) / (pair[1].0 - pair[0].0);
+    pair[0].1 + fraction * (pair[1].1 - pair[0].1)
+}
+
+fn cut(spec: &TubingSpec, bottom_md_ft: f64, bottom_temperature_degf: f64) -> Path {
+    let survey = &spec.survey;
+    let bottom_tvd_ft = tvd_at(survey, bottom_md_ft);
+    let rise_degf = bottom_temperature_degf - spec.wellhead_temperature_degf;
+    // Linear against vertical depth; a path without any depth has the wellhead's temperature throughout.
+    let slope_degf_ft = if bottom_tvd_ft > 0.0 { rise_degf / bottom_tvd_ft } else { 0.0 };
+    let temperature_at = |tvd_ft: f64| spec.wellhead_temperature_degf + slope_degf_ft * tvd_ft;
+
+    let mut ends: Vec<f64> = survey.iter().map(|&(md_ft, _)| md_ft).collect();
+    ends.extend(spec.sections.iter().map(|section| section.to_md_ft));
+    for pair in survey.windows(2) {
+        let (top_degf, bottom_degf) = (temperature_at(pair[0].1), temperature_at(pair[1].1));
+        for corner_degf in TENSION_CORNERS_DEGF {
+            let fraction = (corner_degf - top_degf) / (bottom_degf - top_degf);
+            if fraction > 0.0 && fraction < 1.0 {
+                ends.push(pair[0].0 + fraction * (pair[1].0 - pair[0].0));
+            }
+        }
+    }
+    ends.retain(|&md_ft| md_ft > LEAST_STRETCH_FT && md_ft < bottom_md_ft - LEAST_STRETCH_FT);
+    ends.push(bottom_md_ft);
+    ends.sort_by(f64::total_cmp);
+    ends.dedup_by(|below, above| *below - *above < LEAST_STRETCH_FT);
+
+    let mut stretches = Vec::with_capacity(ends.len());
+    let (mut top_md_ft, mut top_tvd_ft) = (0.0, 0.0);
+    for end_md_ft in ends {
+        let end_tvd_ft = tvd_at(survey, end_md_ft);
+        let length_ft = end_md_ft - top_md_ft;
+        let middle_ft = top_md_ft + 0.5 * length_ft;
+        let section = spec.sections.iter().find(|section| middle_ft < section.to_md_ft);
+        if let Some(section) = section.or(spec.sections.last()) {
+            let pipe = Pipe::new(section.diameter_in, section.roughness_in, (end_tvd_ft - top_tvd_ft) / length_ft);
+            stretches.push(Stretch {
+                top_md_ft,
+                bottom_md_ft: end_md_ft,
+                top_tvd_ft,
+                top_temperature_degf: temperature_at(top_tvd_ft),
+                temperature_slope_degf_ft: slope_degf_ft * (end_tvd_ft - top_tvd_ft) / length_ft,
+                pipe,
+                area_ft2: 0.25 * std::f64::consts::PI * pipe.diameter_ft * pipe.diameter_ft,
+            });
+        }
+        (top_md_ft, top_tvd_ft) = (end_md_ft, end_tvd_ft);
+    }
+    Path { stretches, perforations_md_ft: bottom_md_ft, perforations_tvd_ft: bottom_tvd_ft }
+}

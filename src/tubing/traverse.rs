@@ -1,0 +1,218 @@
+//! The pressure traverse of one well.
+
+use super::beggs_brill::BeggsBrill;
+use super::hagedorn_brown::HagedornBrown;
+use super::hasan_kabir::HasanKabir;
+use super::march::{March, Progress};
+use super::model::{Hydraulics, KINETIC_LIMIT};
+use super::no_slip::NoSlip;
+use super::path::Path;
+use super::{TubingMethod, TubingSpec};
+use crate::fault::Fault;
+use crate::fluid::BlackOil;
+
+/// What flows, at stock-tank conditions.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Stream {
+    /// Oil and water, STB/d.
+    pub liquid_rate_stb_d: f64,
+    /// Water's share of the liquid.
+    pub water_cut: f64,
+    /// Producing gas-oil ratio, scf per STB of oil.
+    pub gor_scf_stb: f64,
+}
+
+/// Where a traverse arrives.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Traverse {
+    /// Pressure at the perforations, psia.
+    pub pressure_psia: f64,
+    /// Whether the kinetic term met its limit on the way: the flow comes so near to sonic velocity that no model
+    /// here describes it.
+    pub near_sonic: bool,
+}
+
+/// One point of a traverse.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct TraversePoint {
+    /// Measured depth, ft.
+    pub md_ft: f64,
+    /// True vertical depth, ft.
+    pub tvd_ft: f64,
+    /// Pressure, psia.
+    pub pressure_psia: f64,
+    /// Temperature, degF.
+    pub temperature_degf: f64,
+    /// Flow pattern in the model's own words; "liquid" where all gas is dissolved.
+    pub pattern: &'static str,
+    /// Liquid holdup.
+    pub holdup: f64,
+    /// Superficial velocity of liquid, ft/s.
+    pub liquid_velocity_ft_s: f64,
+    /// Superficial velocity of gas, ft/s.
+    pub gas_velocity_ft_s: f64,
+    /// Weight of the mixture along the pipe, psi/ft of pipe.
+    pub gravity_psi_ft: f64,
+    /// Friction, psi/ft of pipe.
+    pub friction_psi_ft: f64,
+}
+
+/// The tubing of one well, checked and prepared.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Tubing {
+    path: Path,
+    method: TubingMethod,
+    accuracy_psi: f64,
+}
+
+/// Calls `$body` with `$model` bound to the model of a method.
+macro_rules! with_model {
+    ($method:expr, $model:ident => $body:expr) => {
+        match $method {
+            TubingMethod::HasanKabir => {
+                let $model = &HasanKabir;
+                $body
+            }
+            TubingMethod::HagedornBrown => {
+                let $model = &HagedornBrown;
+                $body
+            }
+            TubingMethod::BeggsBrill => {
+                let $model = &BeggsBrill { payne: true };
+                $body
+            }
+            TubingMethod::NoSlip => {
+                let $model = &NoSlip;
+                $body
+            }
+        }
+    };
+}
+
+/// Points of a profile between wellhead and perforations, besides the ends of stretches.
+const PROFILE_INTERVALS: u32 = 60;
+
+impl Tubing {
+    /// Checks the tubing and prepares the path down to the perforations (by default the end of the survey), where the
+    /// temperature reaches `bottom_temperature_degf`. `accuracy_psi` is the error allowed in a computed pressure.
+    ///
+    /// # Errors
+    /// Every impossible value, keyed relative to `[well.tubing]`, except `perforations`, which is the well's.
+    pub fn new(
+        spec: &TubingSpec,
+        perforations_md_ft: Option<f64>,
+        bottom_temperature_degf: f64,
+        accuracy_psi: f64,
+    ) -> Result<Self, Vec<Fault>> {
+        let path = Path::new(spec, perforations_md_ft, bottom_temperature_degf)?;
+        Ok(Self { path, method: spec.method, accuracy_psi: accuracy_psi.max(1e-9).min(1.0) })
+    }
+
+    /// Pressure at the perforations that lifts the stream to a wellhead pressure: the march down. Always finite; a
+    /// rate of zero gives the column at rest.
+    pub fn flowing_pressure(&self, fluid: &BlackOil, stream: &Stream, wellhead_psia: f64) -> Traverse {
+        with_model!(self.method, model => self.down(model, fluid, stream, wellhead_psia))
+    }
+
+    /// Wellhead pressure that a flowing pressure leaves: the march up. `None` when it cannot reach the surface.
+    pub fn wellhead_pressure(&self, fluid: &BlackOil, stream: &Stream, flowing_psia: f64) -> Option<f64> {
+        with_model!(self.method, model => self.up(model, fluid, stream, flowing_psia))
+    }
+
+    /// The traverse in detail, from the wellhead down.
+    pub fn profile(&self, fluid: &BlackOil, stream: &Stream, wellhead_psia: f64) -> Vec<TraversePoint> {
+        with_model!(self.method, model => self.points(model, fluid, stream, wellhead_psia))
+    }
+
+    /// Measured depth of the perforations, ft.
+    pub fn perforations_md_ft(&self) -> f64 {
+        self.path.perforations_md_ft
+    }
+
+    /// Vertical depth of the perforations, ft.
+    pub fn perforations_tvd_ft(&self) -> f64 {
+        self.path.perforations_tvd_ft
+    }
+
+    /// The hydraulics model.
+    pub fn method(&self) -> TubingMethod {
+        self.method
+    }
+
+    /// The same tubing with another hydraulics model.
+    #[must_use]
+    pub fn with_method(&self, method: TubingMethod) -> Self {
+        Self { method, ..self.clone() }
+    }
+
+    fn down<M: Hydraulics>(&self, model: &M, fluid: &BlackOil, stream: &Stream, wellhead_psia: f64) -> Traverse {
+        let march = March::new(model, fluid, stream, self.accuracy_psi);
+        let mut progress = Progress::new(0.0, held(wellhead_psia));
+        for stretch in &self.path.stretches {
+            march.advance(stretch, &mut progress, stretch.bottom_md_ft);
+        }
+        Traverse { pressure_psia: progress.pressure_psia, near_sonic: progress.kinetic > KINETIC_LIMIT }
+    }
+
+    fn up<M: Hydraulics>(&self, model: &M, fluid: &BlackOil, stream: &Stream, flowing_psia: f64) -> Option<f64> {
+        let march = March::new(model, fluid, stream, self.accuracy_psi);
+        let mut progress = Progress::new(self.path.perforations_md_ft, held(flowing_psia));
+        for stretch in self.path.stretches.iter().rev() {
+            if !march.advance(stretch, &mut progress, stretch.top_md_ft) {
+                return None;
+            }
+        }
+        Some(progress.pressure_psia)
+    }
+
+    fn points<M: Hydraulics>(
+        &self,
+        model: &M,
+        fluid: &BlackOil,
+        stream: &Stream,
+        wellhead_psia: f64,
+    ) -> Vec<TraversePoint> {
+        let march = March::new(model, fluid, stream, self.accuracy_psi);
+        let mut progress = Progress::new(0.0, held(wellhead_psia));
+        let spacing_ft = self.path.perforations_md_ft / f64::from(PROFILE_INTERVALS);
+        let mut points = Vec::new();
+        for stretch in &self.path.stretches {
+            if points.is_empty() {
+                points.push(point(&march, stretch, &progress));
+            }
+            let steps = ((stretch.bottom_md_ft - stretch.top_md_ft) / spacing_ft).ceil().max(1.0);
+            for i in 1..=steps as u32 {
+                let part = f64::from(i) / steps;
+                let end_md_ft = if part >= 1.0 {
+                    stretch.bottom_md_ft
+                } else {
+                    stretch.top_md_ft + part * (stretch.bottom_md_ft - stretch.top_md_ft)
+                };
+                march.advance(stretch, &mut progress, end_md_ft);
+                points.push(point(&march, stretch, &progress));
+            }
+        }
+        points
+    }
+}
+
+/// A pressure within what the traverse can start from.
+fn held(pressure_psia: f64) -> f64 {
+    pressure_psia.max(1.0).min(1e6)
+}
+
+fn point<M: Hydraulics>(march: &March<'_, M>, stretch: &super::path::Stretch, progress: &Progress) -> TraversePoint {
+    let (flow, gradient, pattern) = march.describe(stretch, progress.md_ft, progress.pressure_psia);
+    TraversePoint {
+        md_ft: progress.md_ft,
+        tvd_ft: stretch.tvd_ft(progress.md_ft),
+        pressure_psia: progress.pressure_psia,
+        temperature_degf: stretch.temperature_degf(progress.md_ft),
+        pattern,
+        holdup: gradient.holdup,
+        liquid_velocity_ft_s: flow.liquid_velocity_ft_s,
+        gas_velocity_ft_s: flow.gas_velocity_ft_s,
+        gravity_psi_ft: gradient.gravity_psi_ft,
+        friction_psi_ft: gradient.friction_psi_ft,
+    }
+}

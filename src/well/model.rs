@@ -1,0 +1,342 @@
+//! A well, prepared: its tubing, its inflow fitted to the tests, and how both look at one instant.
+
+use super::WellSpec;
+use super::meeting::{Landscape, survey};
+use crate::fault::Fault;
+use crate::fluid::BlackOil;
+use crate::inflow::{
+    Coefficient, Conditions, Fit, Inflow, InflowCurve, InflowMethod, Measured, RateBasis, Shape, TestPoint, fit_tests,
+};
+use crate::tank::{Tank, TankState};
+use crate::tubing::{Stream, TraversePoint, Tubing, TubingMethod};
+use jiff::civil::Date;
+use std::cell::Cell;
+
+/// A measured test beside the model's rate at the same conditions.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct TestCheck {
+    /// Date of the test.
+    pub on: Option<Date>,
+    /// Reservoir pressure at the perforations, psia.
+    pub reservoir_psia: f64,
+    /// Flowing pressure: measured, or computed with the well's own tubing, psia.
+    pub flowing_psia: f64,
+    /// Whether the flowing pressure was computed.
+    pub computed: bool,
+    /// Measured liquid rate, STB/d.
+    pub rate_stb_d: f64,
+    /// The model's liquid rate, STB/d.
+    pub model_rate_stb_d: f64,
+}
+
+/// A well, prepared.
+#[derive(Debug, Clone)]
+pub struct WellModel {
+    /// As the user stated it.
+    pub spec: WellSpec,
+    /// Its tubing.
+    pub tubing: Tubing,
+    /// Its inflow.
+    pub inflow: Inflow,
+    /// How the coefficient was fitted, when it was.
+    pub fit: Option<Fit>,
+    /// Its tests beside the model's rates.
+    pub tests: Vec<TestCheck>,
+    skin_factor: f64,
+    depth_below_datum_ft: f64,
+}
+
+/// What a well needs to know of the tank to be prepared.
+#[derive(Debug, Clone, Copy)]
+pub struct Surroundings<'a> {
+    /// Fluid.
+    pub fluid: &'a BlackOil,
+    /// Tank.
+    pub tank: &'a Tank,
+    /// Tank temperature, degF.
+    pub temperature_degf: f64,
+    /// Datum of the tank's pressure, ft true vertical depth.
+    pub datum_tvd_ft: Option<f64>,
+    /// The tank at the start of the forecast.
+    pub start: &'a TankState,
+    /// Accuracy of the tubing's pressure, psi.
+    pub accuracy_psi: f64,
+}
+
+/// ln(0.472 re/rw), or 7.0 where no radii are given (a common-practice figure).
+pub fn drainage_term(radii_ft: Option<(f64, f64)>) -> f64 {
+    radii_ft.map_or(7.0, |(drainage, wellbore)| (0.472 * drainage / wellbore).ln())
+}
+
+/// Pressure gradient of the reservoir's oil, psi/ft.
+pub fn oil_gradient_psi_ft(fluid: &BlackOil, pressure_psia: f64, temperature_degf: f64, rs_scf_stb: f64) -> f64 {
+    fluid.in_situ(pressure_psia, temperature_degf, rs_scf_stb).oil_density_lb_ft3 / 144.0
+}
+
+impl WellModel {
+    /// Prepares the tubing and fits the inflow.
+    ///
+    /// # Errors
+    /// Faults with keys of the `[[well]]` table.
+    pub fn new(spec: &WellSpec, around: &Surroundings) -> Result<Self, Vec<Fault>> {
+        let tubing = Tubing::new(&spec.tubing, spec.perforations_md_ft, around.temperature_degf, around.accuracy_psi)
+            .map_err(|faults| {
+                faults.into_iter().map(|f| if f.key == "perforations" { f } else { f.under("tubing") }).collect::<Vec<_>>()
+            })?;
+        let depth_below_datum_ft = around.datum_tvd_ft.map_or(0.0, |datum| tubing.perforations_tvd_ft() - datum);
+        let (inflow, fit, points) = fit_inflow(spec, &tubing, depth_below_datum_ft, around)?;
+        let mut well = Self {
+            spec: spec.clone(),
+            tubing,
+            inflow,
+            fit,
+            tests: Vec::new(),
+            skin_factor: 1.0,
+            depth_below_datum_ft,
+        };
+        well.tests = well.check_tests(&points, around);
+        well.skin_factor = skin_factor(spec);
+        Ok(well)
+    }
+
+    /// The same well under new settings. Tests are fitted again only where the settings of the inflow changed, so that an
+    /// event that swaps the tubing does not reinterpret old separator tests.
+    ///
+    /// # Errors
+    /// As [`new`](Self::new).
+    pub fn changed(&self, spec: &WellSpec, around: &Surroundings) -> Result<Self, Vec<Fault>> {
+        let mut well = Self::new(spec, around)?;
+        if spec.inflow == self.spec.inflow {
+            well.inflow = self.inflow.clone();
+            well.fit = self.fit;
+            well.tests = self.tests.clone();
+        }
+        Ok(well)
+    }
+
+    fn check_tests(&self, points: &[TestPoint], around: &Surroundings) -> Vec<TestCheck> {
+        let Coefficient::Tests(tests) = &self.spec.inflow.coefficient else { return Vec::new() };
+        tests
+            .iter()
+            .zip(points)
+            .map(|(test, point)| {
+                let then = Conditions {
+                    reservoir_psia: point.reservoir_psia,
+                    bubble_point_psia: around.fluid.initial_bubble_point_psia(),
+                    oil_mobility_1_cp: reference_mobility(point.reservoir_psia, around),
+                    water_cut: test.water_cut,
+                };
+                TestCheck {
+                    on: test.on,
+                    reservoir_psia: point.reservoir_psia,
+                    flowing_psia: point.flowing_psia,
+                    computed: matches!(test.measured, Measured::Separator { .. }),
+                    rate_stb_d: test.rate_stb_d,
+                    model_rate_stb_d: self.inflow.curve(&then, 1.0).rate_stb_d(point.flowing_psia),
+                }
+            })
+            .collect()
+    }
+
+    /// The inflow equation in words and figures.
+    pub fn inflow_text(&self) -> String {
+        let at = self.inflow.reference_psia;
+        let basis = match self.inflow.basis {
+            RateBasis::Liquid => "liquid",
+            RateBasis::Oil => "oil",
+        };
+        let origin = match &self.fit {
+            Some(fit) if fit.n_fitted => format!("fitted to {} tests", self.tests.len()),
+            Some(_) if self.tests.len() == 1 => "from a single test".to_owned(),
+            Some(_) => format!("fitted to {} tests", self.tests.len()),
+            None => "as given".to_owned(),
+        };
+        let c = self.inflow.coefficient;
+        match self.inflow.shape {
+            Shape::Straight => format!("straight line, J = {c:.4} STB/d/psi ({basis}) at {at:.0} psia, {origin}"),
+            Shape::Vogel => format!("Vogel, J = {c:.4} STB/d/psi ({basis}) at {at:.0} psia, {origin}"),
+            Shape::Fetkovich { n } => {
+                format!("Fetkovich, C = {c:.4e} STB/d/psi^2n ({basis}), n = {n:.3} at {at:.0} psia, {origin}")
+            }
+        }
+    }
+
+    /// The well as it faces the tank's present state. `gradient_psi_ft` is the reservoir oil's.
+    pub fn now<'a>(&'a self, fluid: &'a BlackOil, tank: &TankState, gradient_psi_ft: f64, traverses: &'a Cell<u64>) -> WellNow<'a> {
+        let gor = tank.rs_scf_stb + tank.free_gor_scf_stb * self.spec.gor_factor;
+        let wor = tank.water_oil_ratio * self.spec.water_factor;
+        let water_cut = wor / (1.0 + wor);
+        let conditions = Conditions {
+            reservoir_psia: tank.pressure_psia + gradient_psi_ft * self.depth_below_datum_ft,
+            bubble_point_psia: tank.bubble_point_psia,
+            oil_mobility_1_cp: tank.oil_mobility_1_cp,
+            water_cut,
+        };
+        let curve = self.inflow.curve(&conditions, self.skin_factor);
+        WellNow { well: self, fluid, curve, gor_scf_stb: gor, water_cut, traverses }
+    }
+}
+
+/// `(r + s_test)/(r + s)`: pseudo-steady radial flow with and without the present skin.
+fn skin_factor(spec: &WellSpec) -> f64 {
+    let r = drainage_term(spec.radii_ft);
+    (r + spec.skin_at_test) / (r + spec.skin)
+}
+
+/// kro/(mu_o*Bo) that goes with a coefficient found at this reservoir pressure: undisturbed oil above the bubble point, the
+/// saturations at the start of the forecast below it (those at the time of the test are not known).
+fn reference_mobility(reservoir_psia: f64, around: &Surroundings) -> f64 {
+    let undisturbed = around.tank.undisturbed_mobility_1_cp(reservoir_psia);
+    if reservoir_psia >= around.fluid.initial_bubble_point_psia() {
+        undisturbed
+    } else {
+        let start = around.start;
+        start.oil_mobility_1_cp * undisturbed / around.tank.undisturbed_mobility_1_cp(start.pressure_psia)
+    }
+}
+
+fn fit_inflow(
+    spec: &WellSpec,
+    tubing: &Tubing,
+    depth_below_datum_ft: f64,
+    around: &Surroundings,
+) -> Result<(Inflow, Option<Fit>, Vec<TestPoint>), Vec<Fault>> {
+    let inflow = &spec.inflow;
+    let bubble_point = around.fluid.initial_bubble_point_psia();
+    let at_perforations = |datum_psia: f64| {
+        let rs = around.fluid.spec().solution_gor_scf_stb;
+        datum_psia + depth_below_datum_ft * oil_gradient_psi_ft(around.fluid, datum_psia, around.temperature_degf, rs)
+    };
+    let n = inflow.exponent.unwrap_or(1.0);
+    let given_shape = match inflow.method {
+        InflowMethod::Straight => Shape::Straight,
+        InflowMethod::Vogel => Shape::Vogel,
+        InflowMethod::Fetkovich => Shape::Fetkovich { n },
+    };
+    let carried = |shape: Shape, coefficient: f64, reservoir_psia: f64| Inflow {
+        shape,
+        future: inflow.future,
+        basis: inflow.basis,
+        coefficient,
+        reference_psia: reservoir_psia.min(bubble_point),
+        reference_mobility_1_cp: reference_mobility(reservoir_psia, around),
+    };
+    // J of the general form to the method's own coefficient.
+    let from_j = |j: f64, pe: f64| match given_shape {
+        Shape::Fetkovich { n } => j / (2.0 * pe.powf(2.0 * n - 1.0)),
+        Shape::Straight | Shape::Vogel => j,
+    };
+    let given = |coefficient: f64, datum_psia: f64| (carried(given_shape, coefficient, at_perforations(datum_psia)), None, Vec::new());
+    match &inflow.coefficient {
+        Coefficient::ProductivityIndex { j_stb_d_psi, reservoir_psia } => {
+            Ok(given(from_j(*j_stb_d_psi, at_perforations(*reservoir_psia).min(bubble_point)), *reservoir_psia))
+        }
+        Coefficient::OpenFlow { rate_stb_d, reservoir_psia } => {
+            let pr = at_perforations(*reservoir_psia);
+            let pe = pr.min(bubble_point);
+            Ok(given(from_j(rate_stb_d / given_shape.drawdown(pr, pe, 0.0), pe), *reservoir_psia))
+        }
+        Coefficient::Fetkovich { c, reservoir_psia } => Ok(given(*c, *reservoir_psia)),
+        Coefficient::Tests(tests) => {
+            let mut faults = Vec::new();
+            let mut points = Vec::new();
+            for (i, test) in tests.iter().enumerate() {
+                let reservoir_psia = at_perforations(test.reservoir_psia);
+                let flowing_psia = match test.measured {
+                    Measured::Gauged { flowing_psia } => flowing_psia,
+                    Measured::Separator { wellhead_psia, gor_scf_stb } => {
+                        let stream = Stream { liquid_rate_stb_d: test.rate_stb_d, water_cut: test.water_cut, gor_scf_stb };
+                        tubing.flowing_pressure(around.fluid, &stream, wellhead_psia).pressure_psia
+                    }
+                };
+                if flowing_psia >= reservoir_psia {
+                    faults.push(
+                        Fault::new(
+                            format!("inflow.test[{i}]"),
+                            format!("flowing pressure {flowing_psia:.0} psia at the perforations is not below the reservoir's {reservoir_psia:.0} psia"),
+                        )
+                        .help("check the wellhead pressure, the rate, the gas-oil ratio and the tubing of this test"),
+                    );
+                }
+                let rate_stb_d = match inflow.basis {
+                    RateBasis::Liquid => test.rate_stb_d,
+                    RateBasis::Oil => test.rate_stb_d * (1.0 - test.water_cut),
+                };
+                points.push(TestPoint { reservoir_psia, effective_psia: reservoir_psia.min(bubble_point), flowing_psia, rate_stb_d });
+            }
+            if !faults.is_empty() {
+                return Err(faults);
+            }
+            let fit = fit_tests(inflow.method, inflow.exponent, &points)
+                .map_err(|message| vec![Fault::new("inflow.test", message)])?;
+            Ok((carried(fit.shape, fit.coefficient, points[0].reservoir_psia), Some(fit), points))
+        }
+    }
+}
+
+/// A well facing the tank's present state.
+#[derive(Debug, Clone, Copy)]
+pub struct WellNow<'a> {
+    well: &'a WellModel,
+    fluid: &'a BlackOil,
+    /// Its inflow curve now.
+    pub curve: InflowCurve,
+    /// Its producing gas-oil ratio, scf/STB.
+    pub gor_scf_stb: f64,
+    /// Its water cut.
+    pub water_cut: f64,
+    traverses: &'a Cell<u64>,
+}
+
+impl<'a> WellNow<'a> {
+    /// The same inflow and stream in another tubing.
+    pub fn with_well(self, well: &'a WellModel) -> Self {
+        Self { well, ..self }
+    }
+
+    /// The tubing's method.
+    pub fn method(&self) -> TubingMethod {
+        self.well.tubing.method()
+    }
+
+    /// The traverse at line pressure.
+    pub fn profile(&self, liquid_rate_stb_d: f64) -> Vec<TraversePoint> {
+        self.well.tubing.profile(self.fluid, &self.stream(liquid_rate_stb_d), self.well.spec.line_pressure_psia)
+    }
+
+    /// The stream at a liquid rate.
+    pub fn stream(&self, liquid_rate_stb_d: f64) -> Stream {
+        Stream { liquid_rate_stb_d, water_cut: self.water_cut, gor_scf_stb: self.gor_scf_stb }
+    }
+
+    /// Flowing pressure that the tubing asks for at line pressure, psia.
+    pub fn tubing_psia(&self, liquid_rate_stb_d: f64) -> f64 {
+        self.traverses.set(self.traverses.get() + 1);
+        self.well.tubing.flowing_pressure(self.fluid, &self.stream(liquid_rate_stb_d), self.well.spec.line_pressure_psia).pressure_psia
+    }
+
+    /// Height of the inflow curve above the tubing curve at line pressure, psi.
+    pub fn height_psi(&self, liquid_rate_stb_d: f64) -> f64 {
+        self.curve.flowing_psia(liquid_rate_stb_d) - self.tubing_psia(liquid_rate_stb_d)
+    }
+
+    /// The landscape of heights over all rates.
+    pub fn survey(&self) -> Landscape {
+        survey(|q| self.height_psi(q), self.curve.open_flow_stb_d())
+    }
+
+    /// Whether the flow comes near to sonic speed somewhere in the tubing at this rate.
+    pub fn near_sonic(&self, liquid_rate_stb_d: f64) -> bool {
+        self.traverses.set(self.traverses.get() + 1);
+        self.well.tubing.flowing_pressure(self.fluid, &self.stream(liquid_rate_stb_d), self.well.spec.line_pressure_psia).near_sonic
+    }
+
+    /// Wellhead pressure of the choked well, psia; line pressure where the march up does not reach the surface.
+    pub fn wellhead_psia(&self, liquid_rate_stb_d: f64, flowing_psia: f64) -> f64 {
+        self.traverses.set(self.traverses.get() + 1);
+        self.well
+            .tubing
+            .wellhead_pressure(self.fluid, &self.stream(liquid_rate_stb_d), flowing_psia)
+            .unwrap_or(self.well.spec.line_pressure_psia)
+    }
+}

@@ -1,0 +1,36 @@
+//! Shared by the tests: reads the reference cases copied into `tests/data`.
+#![allow(dead_code, clippy::unwrap_used, missing_docs)]
+
+pub mod fields;
+
+use serde_json::Value;
+
+/// One case of a reference file, by its id.
+pub fn case(file: &str, id: &str) -> Value {
+    let path = format!("{}/tests/data/{file}", env!("CARGO_MANIFEST_DIR"));
+    let all: Value = serde_json::from_str(&std::fs::read_to_string(path).unwrap()).unwrap();
+    all.as_array().unwrap().iter().find(|c| c["id"] == id).unwrap_or_else(|| panic!("no case {id}")).clone()
+}
+
+/// A list of numbers.
+pub fn numbers(value: &Value) -> Vec<f64> {
+    value.as_array().unwrap().iter().map(|v| v.as_f64().unwrap()).collect()
+}
+
+/// Rows of numbers; null becomes NaN.
+pub fn rows(value: &Value) -> Vec<Vec<f64>> {
+    value
+        .as_array()
+        .unwrap()
+        .iter()
+        .map(|r| r.as_array().unwrap().iter().map(|v| v.as_f64().unwrap_or(f64::NAN)).collect())
+        .collect()
+}
+
+/// Asserts that two numbers agree within a relative tolerance.
+pub fn near(found: f64, expected: f64, relative: f64, what: &str) {
+    assert!(
+        (found - expected).abs() <= relative * expected.abs() + 1e-300,
+        "{what}: found {found}, expected {expected} within {relative} relative"
+    );
+}
