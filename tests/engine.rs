@@ -17,8 +17,19 @@ fn smoke() {
     }
     for (i, p) in f.periods.iter().enumerate().step_by(6) {
         let r = &f.wells[0].rows[i];
-        println!("{} p {:.0} q {:?} pwf {:?} gor {:?} margin {:?} sg {:.3}", p.start, f.tank[i].pressure_psia, r.liquid_rate_stb_d, r.flowing_pressure_psia, r.gor_scf_stb, r.flow_margin_psi, f.tank[i].gas_saturation);
+        println!(
+            "{} p {:.0} q {:?} pwf {:?} gor {:?} margin {:?} sg {:.3}",
+            p.start,
+            f.tank[i].pressure_psia,
+            r.liquid_rate_stb_d,
+            r.flowing_pressure_psia,
+            r.gor_scf_stb,
+            r.flow_margin_psi,
+            f.tank[i].gas_saturation
+        );
     }
     println!("{:#?}", f.wells[0].natural_flow_end);
-    for d in &f.doubts { println!("{d:?}"); }
+    for d in &f.doubts {
+        println!("{d:?}");
+    }
 }

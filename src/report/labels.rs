@@ -41,6 +41,8 @@ pub enum Quantity {
     LiquidVolumeFactor,
     /// Viscosity.
     Viscosity,
+    /// Velocity.
+    Velocity,
 }
 
 /// How one dimension is written.
@@ -67,7 +69,7 @@ impl Label {
 
     /// `stem` with the unit behind it.
     pub fn column(&self, stem: &str) -> String {
-        format!("{stem}_{}", self.suffix)
+        if self.suffix.is_empty() { stem.to_owned() } else { format!("{stem}_{}", self.suffix) }
     }
 }
 
@@ -95,6 +97,8 @@ pub fn label(units: UnitSystem, quantity: Quantity) -> Label {
         (UnitSystem::Field, Q::Expansion) => field("scf_rb", "scf in a reservoir barrel"),
         (UnitSystem::Field, Q::GasVolumeFactor) => field("rb_scf", "rb/scf"),
         (UnitSystem::Field, Q::LiquidVolumeFactor) => field("rb_stb", "rb/STB"),
+        (UnitSystem::Field, Q::Velocity) => field("ft_s", "ft/s"),
+        (UnitSystem::Metric, Q::Velocity) => metric("m_s", "m/s", M_PER_FT),
         (_, Q::Viscosity) => field("cp", "cp"),
         (UnitSystem::Metric, Q::Expansion) => metric("sm3_rm3", "Sm³ in a reservoir m³", M3_PER_FT3 / M3_PER_STB),
         (UnitSystem::Metric, Q::GasVolumeFactor) => metric("rm3_sm3", "rm³/Sm³", M3_PER_STB / M3_PER_FT3),

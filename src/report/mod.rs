@@ -15,10 +15,12 @@ mod summary;
 mod table;
 mod words;
 
-pub use chart::{Drawing, compare_picture, curves_picture, fluid_picture, pressure_picture, rates_picture};
+pub use chart::{
+    Drawing, compare_picture, curves_picture, fluid_picture, pressure_picture, rates_picture, traverse_picture,
+};
 pub use compare_files::{compare_csv, compare_json};
 pub use csv_files::{events_csv, profile_csv, yearly_csv};
-pub use curve_files::{FluidRow, FluidSheet, fluid_csv};
+pub use curve_files::{FluidSheet, curves_csv, fluid_csv, traverse_csv};
 pub use labels::UnitSystem;
 pub use sanity::sanity;
 pub use summary::summary_json;

@@ -244,15 +244,5 @@ pub fn forecast() -> Forecast {
 pub fn short_forecast() -> Forecast {
     let periods = months(84, 1500.5);
     let wells = vec![well("OP-1", &periods, 1800.0, 1500.5, 0.0)];
-    let mut forecast = forecast_of(wells, periods, 0.0);
-    forecast.wells[0].natural_flow_end = Some(FlowEnd {
-        date: date(2031, 2, 9),
-        days: 1500.5,
-        reason: StopReason::NoCrossing,
-        liquid_rate_stb_d: 800.0,
-        oil_rate_stb_d: 800.0,
-        flow_margin_psi: 0.001,
-        reservoir_pressure_psia: 2100.0,
-    });
-    forecast
+    forecast_of(wells, periods, 0.0)
 }

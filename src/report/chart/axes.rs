@@ -33,6 +33,11 @@ impl Span {
         if fraction { Self::new(0.0, span.high.min(1.0)) } else { span }
     }
 
+    /// The same range running the other way, for an axis that grows downwards.
+    pub fn turned(self) -> Self {
+        Self { low: self.high, high: self.low }
+    }
+
     /// Widened to the next tick on both sides; `from_zero` keeps the lower end at zero.
     pub fn rounded(self, from_zero: bool) -> Self {
         let low = if from_zero { 0.0_f64.min(self.low) } else { self.low };
@@ -52,6 +57,7 @@ fn tick_step(span: Span, count: usize) -> f64 {
 
 /// Round values in `span`, and the decimals they need.
 pub(super) fn ticks(span: Span, count: usize) -> (Vec<f64>, usize) {
+    let span = Span { low: span.low.min(span.high), high: span.low.max(span.high) };
     let step = tick_step(span, count);
     let decimals = (-(step.log10() + 1e-9).floor()).clamp(0.0, 6.0) as usize;
     let first = (span.low / step - 1e-6).ceil();
@@ -151,8 +157,8 @@ impl Panel {
     fn clip(&self, a: (f64, f64), b: (f64, f64)) -> Option<((f64, f64), (f64, f64))> {
         let (dx, dy) = (b.0 - a.0, b.1 - a.1);
         let (mut from, mut to) = (0.0_f64, 1.0_f64);
-        let edges =
-            [(-dx, a.0 - self.x.low), (dx, self.x.high - a.0), (-dy, a.1 - self.y.low), (dy, self.y.high - a.1)];
+        let (bottom, top) = (self.y.low.min(self.y.high), self.y.low.max(self.y.high));
+        let edges = [(-dx, a.0 - self.x.low), (dx, self.x.high - a.0), (-dy, a.1 - bottom), (dy, top - a.1)];
         for (p, q) in edges {
             if p == 0.0 {
                 if q < 0.0 {

@@ -10,12 +10,14 @@ mod pressure;
 mod rates;
 mod style;
 mod timeline;
+mod traverse;
 
 pub use cases::compare_picture;
 pub use curves::curves_picture;
 pub use fluid::fluid_picture;
 pub use pressure::pressure_picture;
 pub use rates::rates_picture;
+pub use traverse::traverse_picture;
 
 /// An sRGB colour.
 pub(crate) type Colour = [u8; 3];
