@@ -1,1 +1,36 @@
 //! The scenario file: parse, check, resolve cases, point at the offending line.
+//!
+//! The file becomes a tree in which everything knows its place ([`Document`]); overrides of a case and of the
+//! command line change the tree; then one pass reads it by the list of keys in [`schema`] and notes *every* problem.
+
+mod checks;
+mod document;
+mod doubts;
+mod events;
+mod guess;
+mod load;
+mod overrides;
+mod problem;
+mod read_tank;
+mod read_wells;
+mod reader;
+mod resolve;
+pub mod schema;
+mod survey;
+mod tree;
+
+pub use document::{Document, FluidScenario, Scenario};
+pub use doubts::data_doubts;
+pub use load::LoadError;
+pub use problem::{Location, Problem, Problems};
+pub use reader::FileUsed;
+
+/// A commented scenario that runs, for `wane new`.
+pub fn starter() -> &'static str {
+    include_str!("starter.toml")
+}
+
+/// Lower-case hexadecimal digits.
+fn hex(bytes: &[u8]) -> String {
+    bytes.iter().map(|byte| format!("{byte:02x}")).collect()
+}

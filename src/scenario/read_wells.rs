@@ -1,0 +1,283 @@
+//! Wells and injectors: from the tree to plain data.
+
+use super::problem::Problem;
+use super::reader::{Reader, Section};
+use super::schema::{LATER_FUTURE_RULES, LATER_TUBING_METHODS};
+use super::survey;
+use crate::forecast::{InjectedFluid, InjectionControl, InjectorSpec};
+use crate::inflow::{Coefficient, FutureRule, InflowMethod, InflowSpec, InflowTest, Measured, RateBasis};
+use crate::tubing::{TubingMethod, TubingSection, TubingSpec};
+use crate::units::parse_flow_coefficient;
+use crate::well::WellSpec;
+
+/// Keys of which exactly one may be there; an override that sets one removes the others.
+pub(super) const EXCLUSIVE: &[(&str, &[&str])] = &[
+    ("injector", &["rate", "voidage_replacement"]),
+    ("well.tubing", &["diameter", "sections"]),
+    ("well.inflow", &["test", "productivity_index", "open_flow", "coefficient"]),
+];
+
+/// Notes when none or several of the alternatives are there.
+fn exactly_one(reader: &mut Reader, section: &Section<'_>, what: &str, keys: &[&str]) {
+    if !section.is_there() {
+        return;
+    }
+    let there: Vec<&str> = keys.iter().copied().filter(|key| section.has(key)).collect();
+    match there.as_slice() {
+        [_] => {}
+        [] => reader.note(
+            Problem::new(section.at(""), format!("{what} is not given"))
+                .label(format!("one of {} is expected", keys.join(", "))),
+        ),
+        [first, second, ..] => reader.note(
+            Problem::new(section.at(second), format!("`{first}` and `{second}` exclude each other"))
+                .label(format!("only one of {} is expected", keys.join(", "))),
+        ),
+    }
+}
+
+fn both_or_none(reader: &mut Reader, section: &Section<'_>, keys: [&str; 2]) {
+    for (one, other) in [(keys[0], keys[1]), (keys[1], keys[0])] {
+        if section.has(one) && !section.has(other) {
+            reader.note(
+                Problem::new(section.at(one), format!("`{one}` stands alone"))
+                    .label(format!("`{other}` is expected beside it")),
+            );
+        }
+    }
+}
+
+/// One well; `tank_pressure_psia` is that to which a stated coefficient belongs unless it says otherwise.
+pub(super) fn well(reader: &mut Reader, section: &Section<'_>, tank_pressure_psia: f64) -> WellSpec {
+    both_or_none(reader, section, ["drainage_radius", "wellbore_radius"]);
+    let drainage_radius_ft = reader.optional_quantity(section, "drainage_radius");
+    let wellbore_radius_ft = reader.optional_quantity(section, "wellbore_radius");
+    let spec = WellSpec {
+        name: reader.name(section).unwrap_or_default(),
+        line_pressure_psia: reader.quantity(section, "line_pressure"),
+        target_rate_stb_d: reader.optional_quantity(section, "target_rate"),
+        uptime: reader.number(section, "uptime"),
+        perforations_md_ft: reader.optional_quantity(section, "perforations"),
+        gor_factor: reader.number(section, "gor_factor"),
+        water_factor: reader.number(section, "water_factor"),
+        start: reader.day(section, "start"),
+        end: reader.day(section, "end"),
+        may_flow_again: reader.flag(section, "may_flow_again").unwrap_or(false),
+        skin: reader.number(section, "skin"),
+        skin_at_test: reader.number(section, "skin_at_test"),
+        radii_ft: drainage_radius_ft.zip(wellbore_radius_ft),
+        minimum_flowing_pressure_psia: reader.optional_quantity(section, "minimum_flowing_pressure"),
+        minimum_rate_stb_d: reader.optional_quantity(section, "minimum_rate"),
+        maximum_water_cut: reader.optional_number(section, "maximum_water_cut"),
+        maximum_gor_scf_stb: reader.optional_quantity(section, "maximum_gor"),
+        inflow: inflow(reader, section, tank_pressure_psia),
+        tubing: tubing(reader, section),
+    };
+    reader.finish(section);
+    spec
+}
+
+fn inflow(reader: &mut Reader, well: &Section<'_>, tank_pressure_psia: f64) -> InflowSpec {
+    let section = reader.section(well, "inflow");
+    let method = match reader.choice(&section, "method", &[]) {
+        Some("straight") => InflowMethod::Straight,
+        Some("vogel") => InflowMethod::Vogel,
+        _ => InflowMethod::Fetkovich,
+    };
+    let future = match reader.choice(&section, "future", LATER_FUTURE_RULES) {
+        Some("mobility") => FutureRule::Mobility,
+        _ => FutureRule::Pressure,
+    };
+    let basis = match reader.choice(&section, "basis", &[]) {
+        Some("oil") => RateBasis::Oil,
+        _ => RateBasis::Liquid,
+    };
+    let exponent = reader.optional_number(&section, "exponent");
+    exactly_one(reader, &section, "the inflow's coefficient", EXCLUSIVE[2].1);
+    if section.has("exponent") && method != InflowMethod::Fetkovich {
+        reader.note(
+            Problem::new(section.at("exponent"), "`exponent` belongs to the method fetkovich alone")
+                .label("not used by this method"),
+        );
+    }
+    let reservoir_psia = reader.optional_quantity(&section, "reservoir").unwrap_or(tank_pressure_psia);
+    let tests: Vec<InflowTest> = if section.has("test") {
+        reader.sections(&section, "test").iter().map(|test| inflow_test(reader, test)).collect()
+    } else {
+        Vec::new()
+    };
+    if section.has("test") && section.has("reservoir") {
+        reader.note(
+            Problem::new(section.at("reservoir"), "each test states its own reservoir pressure")
+                .label("belongs to a stated coefficient alone"),
+        );
+    }
+    let index = reader.optional_quantity(&section, "productivity_index");
+    let open_flow = reader.optional_quantity(&section, "open_flow");
+    let c = flow_coefficient(reader, &section, method, exponent);
+    let coefficient = if let Some(j_stb_d_psi) = index {
+        Coefficient::ProductivityIndex { j_stb_d_psi, reservoir_psia }
+    } else if let Some(rate_stb_d) = open_flow {
+        Coefficient::OpenFlow { rate_stb_d, reservoir_psia }
+    } else if let Some(c) = c {
+        Coefficient::Fetkovich { c, reservoir_psia }
+    } else {
+        Coefficient::Tests(tests)
+    };
+    reader.finish(&section);
+    InflowSpec { method, future, basis, exponent, coefficient }
+}
+
+fn flow_coefficient(
+    reader: &mut Reader,
+    section: &Section<'_>,
+    method: InflowMethod,
+    exponent: Option<f64>,
+) -> Option<f64> {
+    let entry = section.get("coefficient")?;
+    let at = entry.node.at.clone();
+    let example = "0.00079 STB/d/psi^2n";
+    if method != InflowMethod::Fetkovich {
+        reader.note(
+            Problem::new(at, "`coefficient` belongs to the method fetkovich alone")
+                .label("not used by this method")
+                .help("state productivity_index or open_flow"),
+        );
+        return Some(f64::NAN);
+    }
+    let Some(text) = entry.node.text() else {
+        reader.note(
+            Problem::new(at, "`well.inflow.coefficient` has no unit")
+                .label(format!("a flow coefficient is expected, like \"{example}\"")),
+        );
+        return Some(f64::NAN);
+    };
+    let Some(exponent) = exponent else {
+        reader.note(
+            Problem::new(at, "the unit of `coefficient` depends on the exponent n, which is not given")
+                .label("`exponent` is expected beside it"),
+        );
+        return Some(f64::NAN);
+    };
+    match parse_flow_coefficient(text, exponent) {
+        Ok(c) if c > 0.0 && c.is_finite() => return Some(c),
+        Ok(_) if exponent.is_nan() => {}
+        Ok(_) => reader.note(
+            Problem::new(at, "`well.inflow.coefficient` must be above 0")
+                .label("a positive flow coefficient is expected"),
+        ),
+        Err(error) => {
+            let mut problem = Problem::new(at, format!("`well.inflow.coefficient`: {}", error.message))
+                .label("a flow coefficient is expected");
+            problem.help = error.help;
+            reader.note(problem);
+        }
+    }
+    Some(f64::NAN)
+}
+
+fn inflow_test(reader: &mut Reader, section: &Section<'_>) -> InflowTest {
+    exactly_one(reader, section, "the test's pressure", &["flowing", "wellhead"]);
+    let flowing_psia = reader.optional_quantity(section, "flowing");
+    let wellhead_psia = reader.optional_quantity(section, "wellhead");
+    let gor_scf_stb = reader.optional_quantity(section, "gor");
+    if section.has("wellhead") && !section.has("gor") {
+        reader.note(
+            Problem::new(
+                section.at("wellhead"),
+                "a separator test needs its gas-oil ratio to compute the flowing pressure",
+            )
+            .label("`gor` is expected beside it"),
+        );
+    }
+    let measured = match (flowing_psia, wellhead_psia) {
+        (None, Some(wellhead_psia)) => {
+            Measured::Separator { wellhead_psia, gor_scf_stb: gor_scf_stb.unwrap_or(f64::NAN) }
+        }
+        (flowing_psia, _) => Measured::Gauged { flowing_psia: flowing_psia.unwrap_or(f64::NAN) },
+    };
+    let test = InflowTest {
+        on: reader.day(section, "on"),
+        reservoir_psia: reader.quantity(section, "reservoir"),
+        rate_stb_d: reader.quantity(section, "rate"),
+        water_cut: reader.number(section, "water_cut"),
+        measured,
+    };
+    reader.finish(section);
+    test
+}
+
+fn tubing(reader: &mut Reader, well: &Section<'_>) -> TubingSpec {
+    let section = reader.section(well, "tubing");
+    let method = match reader.choice(&section, "method", LATER_TUBING_METHODS) {
+        Some("hagedorn-brown") => TubingMethod::HagedornBrown,
+        Some("beggs-brill") => TubingMethod::BeggsBrill,
+        Some("no-slip") => TubingMethod::NoSlip,
+        _ => TubingMethod::HasanKabir,
+    };
+    exactly_one(reader, &section, "the tubing's inside diameter", EXCLUSIVE[1].1);
+    let roughness_in = reader.quantity(&section, "roughness");
+    let sections = match reader.optional_quantity(&section, "diameter") {
+        Some(diameter_in) => vec![TubingSection { to_md_ft: f64::INFINITY, diameter_in, roughness_in }],
+        None if section.has("sections") => tubing_sections(reader, &section, roughness_in),
+        None => Vec::new(),
+    };
+    let spec = TubingSpec {
+        method,
+        sections,
+        survey: survey::read(reader, &section),
+        wellhead_temperature_degf: reader.quantity(&section, "wellhead_temperature"),
+    };
+    reader.finish(&section);
+    spec
+}
+
+fn tubing_sections(reader: &mut Reader, tubing: &Section<'_>, roughness_in: f64) -> Vec<TubingSection> {
+    let stretches = reader.sections(tubing, "sections");
+    let last = stretches.len().saturating_sub(1);
+    let mut out = Vec::with_capacity(stretches.len());
+    for (i, stretch) in stretches.iter().enumerate() {
+        let to_md_ft = reader.optional_quantity(stretch, "to");
+        if to_md_ft.is_none() && i < last {
+            reader.note(
+                Problem::new(stretch.at("to"), "this stretch of tubing does not say where it ends")
+                    .label("`to` is expected in all but the last"),
+            );
+        }
+        out.push(TubingSection {
+            to_md_ft: to_md_ft.unwrap_or(if i < last { f64::NAN } else { f64::INFINITY }),
+            diameter_in: reader.quantity(stretch, "diameter"),
+            roughness_in: reader.optional_quantity(stretch, "roughness").unwrap_or(roughness_in),
+        });
+        reader.finish(stretch);
+    }
+    out
+}
+
+/// One injector.
+pub(super) fn injector(reader: &mut Reader, section: &Section<'_>) -> InjectorSpec {
+    let fluid = match reader.choice(section, "fluid", &[]) {
+        Some("gas") => InjectedFluid::Gas,
+        _ => InjectedFluid::Water,
+    };
+    let gas = fluid == InjectedFluid::Gas;
+    exactly_one(reader, section, "what sets the injector's rate", EXCLUSIVE[0].1);
+    let rate = reader.injected_quantity(section, "rate", gas);
+    let share = reader.optional_number(section, "voidage_replacement");
+    let spec = InjectorSpec {
+        name: reader.name(section).unwrap_or_default(),
+        fluid,
+        start: reader.day(section, "start"),
+        end: reader.day(section, "end"),
+        control: match (rate, share) {
+            (Some(rate), _) => InjectionControl::Rate(rate),
+            (None, share) => InjectionControl::VoidageReplacement(share.unwrap_or(f64::NAN)),
+        },
+        rate_limit: reader.injected_quantity(section, "rate_limit", gas),
+        effective_fraction: reader.number(section, "effective_fraction"),
+        bottomhole_limit_psia: reader.optional_quantity(section, "bottomhole_limit"),
+        injectivity: reader.injected_quantity(section, "injectivity", gas),
+    };
+    reader.finish(section);
+    spec
+}

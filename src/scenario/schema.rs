@@ -1,0 +1,283 @@
+//! Every key of the scenario file: what it holds, whether it must be there, what it may be.
+//!
+//! Reading, checking and the reference in `docs/scenario.md` all go by this one list.
+
+use crate::units::Dimension;
+
+/// One key.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Key {
+    /// Dotted path; members of a list have no index ("well.inflow.test.rate").
+    pub path: &'static str,
+    /// What it holds.
+    pub kind: Kind,
+    /// Whether it must be there.
+    pub need: Need,
+    /// What it means, in few words.
+    pub about: &'static str,
+}
+
+/// Whether a key must be there.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum Need {
+    /// It must.
+    Required,
+    /// It need not; `about` says what then happens.
+    Optional,
+    /// It need not: this value, written as in a scenario, takes its place.
+    Default(&'static str),
+}
+
+/// What a key holds.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum Kind {
+    /// Any text.
+    Text,
+    /// A name: no dot, not empty, not "tank".
+    Name,
+    /// `true` or `false`.
+    Flag,
+    /// A date.
+    Day,
+    /// One of these words.
+    Choice(&'static [&'static str]),
+    /// A bare number.
+    Number(Limits),
+    /// A fraction: 0.22 or "22 %".
+    Fraction(Limits),
+    /// A number with its unit; limits are in the program's unit.
+    Quantity(Dimension, Limits),
+    /// As `Quantity`, of the first dimension for water and of the second for gas.
+    Injected(Dimension, Dimension, Limits),
+    /// Fetkovich's coefficient.
+    FlowCoefficient,
+    /// Pairs of measured and vertical depth, or the path of a file.
+    Survey,
+    /// A table of further keys.
+    Table,
+    /// A list of tables of further keys.
+    Tables,
+    /// Overrides: paths and values.
+    Overrides,
+}
+
+/// Between what a value must lie.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Limits {
+    /// Lowest.
+    pub low: f64,
+    /// Whether the lowest itself is allowed.
+    pub low_allowed: bool,
+    /// Highest, always allowed.
+    pub high: f64,
+}
+
+impl Limits {
+    /// Whether the value is allowed; NaN never is.
+    pub fn allow(&self, value: f64) -> bool {
+        (value > self.low || (self.low_allowed && value == self.low)) && value <= self.high
+    }
+}
+
+const fn above(low: f64, high: f64) -> Limits {
+    Limits { low, low_allowed: false, high }
+}
+
+const fn from(low: f64, high: f64) -> Limits {
+    Limits { low, low_allowed: true, high }
+}
+
+/// What comes with a later version: refused with that word, not as unknown.
+pub const LATER: &[(&str, &str)] = &[
+    ("history", "measured history"),
+    ("odds", "the uncertainty study"),
+    ("fluid.table", "a laboratory table in place of correlations"),
+    ("tank.aquifer", "an aquifer"),
+    ("well.flowing_survey", "flowing surveys"),
+    ("well.choke", "a wellhead choke"),
+];
+
+/// Water models that come with a later version.
+pub const LATER_WATER_MODELS: &[&str] = &["displacement", "trend"];
+/// Tubing methods that come with a later version.
+pub const LATER_TUBING_METHODS: &[&str] =
+    &["drift-flux", "ansari", "mukherjee-brill", "gray", "orkiszewski", "poettmann-carpenter"];
+/// Rules for future inflow that come with a later version.
+pub const LATER_FUTURE_RULES: &[&str] = &["cubic"];
+
+/// Pressures inside the ground, psia.
+const PRESSURE: Limits = above(0.0, 30_000.0);
+/// Depths, ft.
+const DEPTH: Limits = above(0.0, 50_000.0);
+/// Liquid volumes, STB; gas volumes, scf. Ten times the largest fields on Earth.
+const LIQUID: Limits = above(0.0, 1.0e12);
+const LIQUID_OR_NONE: Limits = from(0.0, 1.0e12);
+const GAS_OR_NONE: Limits = from(0.0, 1.0e16);
+/// Liquid rates of one well, STB/d.
+const RATE: Limits = above(0.0, 1.0e6);
+/// Gas-oil ratios, scf/STB.
+const GOR: Limits = above(0.0, 1.0e6);
+const FRACTION: Limits = from(0.0, 1.0);
+const DIAMETER: Limits = above(0.0, 30.0);
+const ROUGHNESS: Limits = from(0.0, 0.5);
+const SKIN: Limits = from(-20.0, 1000.0);
+const EXPONENT: Limits = from(0.5, 10.0);
+const END: Limits = above(0.0, 1.0);
+
+use Dimension as D;
+use Kind::{
+    Choice, Day, Flag, FlowCoefficient, Fraction, Injected, Name, Number, Overrides, Quantity, Survey, Tables, Text,
+};
+use Need::{Default, Optional, Required};
+
+const fn key(path: &'static str, kind: Kind, need: Need, about: &'static str) -> Key {
+    Key { path, kind, need, about }
+}
+
+/// All keys, in the order of the reference.
+#[rustfmt::skip]
+pub const KEYS: &[Key] = &[
+    key("title", Text, Optional, "Shown on every result; otherwise the file's name"),
+    key("units", Choice(&["field", "metric"]), Default("\"field\""), "In what results are written; inputs carry their own units"),
+    key("atmospheric_pressure", Quantity(D::Pressure, above(5.0, 20.0)), Default("\"14.696 psia\""), "Turns gauge pressures into absolute ones; itself absolute"),
+
+    key("standard", Kind::Table, Optional, "Standard conditions of all surface volumes"),
+    key("standard.pressure", Quantity(D::Pressure, from(13.0, 16.0)), Default("\"14.696 psia\""), "Standard pressure"),
+    key("standard.temperature", Quantity(D::Temperature, from(32.0, 80.0)), Default("\"60 degF\""), "Standard temperature"),
+
+    key("period", Kind::Table, Required, "The calendar of the forecast"),
+    key("period.start", Day, Required, "First day"),
+    key("period.end", Day, Required, "The day after the last"),
+    key("period.every", Choice(&["month", "quarter", "year"]), Default("\"month\""), "Reporting period"),
+
+    key("fluid", Kind::Table, Required, "Oil, gas and water"),
+    key("fluid.oil_gravity", Quantity(D::OilGravity, above(0.0, 100.0)), Required, "Stock-tank oil gravity"),
+    key("fluid.gas_gravity", Number(from(0.5, 2.0)), Required, "Gas gravity, air = 1"),
+    key("fluid.solution_gor", Quantity(D::GasOilRatio, above(0.0, 20_000.0)), Required, "Solution gas-oil ratio at and above the bubble point"),
+    key("fluid.bubble_point", Quantity(D::Pressure, PRESSURE), Optional, "Measured, at tank temperature; the correlation is tuned through it. Without it the correlation's own serves"),
+    key("fluid.salinity", Quantity(D::Salinity, from(0.0, 350_000.0)), Default("\"0 ppm\""), "Dissolved solids of the water, by mass"),
+    key("fluid.h2s", Fraction(FRACTION), Default("0.0"), "Mole fraction of hydrogen sulphide in the gas"),
+    key("fluid.co2", Fraction(FRACTION), Default("0.0"), "Mole fraction of carbon dioxide in the gas"),
+    key("fluid.separator_pressure", Quantity(D::Pressure, above(0.0, 5_000.0)), Optional, "With separator_temperature: corrects the gas gravity in the Vasquez-Beggs correlations"),
+    key("fluid.separator_temperature", Quantity(D::Temperature, from(0.0, 400.0)), Optional, "Goes with separator_pressure"),
+
+    key("tank", Kind::Table, Required, "The reservoir compartment"),
+    key("tank.oil_in_place", Quantity(D::LiquidVolume, LIQUID), Required, "Oil initially in place"),
+    key("tank.pressure", Quantity(D::Pressure, PRESSURE), Required, "Initial pressure at the datum"),
+    key("tank.temperature", Quantity(D::Temperature, from(32.0, 600.0)), Required, "Temperature"),
+    key("tank.connate_water", Fraction(Limits { low: 0.0, low_allowed: true, high: 0.95 }), Required, "Connate water saturation"),
+    key("tank.pore_compressibility", Quantity(D::Compressibility, from(0.0, 1.0e-3)), Required, "Pore compressibility"),
+    key("tank.gas_cap_ratio", Number(from(0.0, 20.0)), Default("0.0"), "Primary gas cap over oil zone, by initial volume"),
+    key("tank.datum", Quantity(D::Length, from(0.0, 50_000.0)), Optional, "True vertical depth at which pressures are stated; otherwise each well's perforations"),
+
+    key("tank.produced", Kind::Table, Optional, "What the tank made before period.start"),
+    key("tank.produced.oil", Quantity(D::LiquidVolume, LIQUID_OR_NONE), Default("\"0 STB\""), "Oil"),
+    key("tank.produced.gas", Quantity(D::GasVolume, GAS_OR_NONE), Default("\"0 scf\""), "Gas"),
+    key("tank.produced.water", Quantity(D::LiquidVolume, LIQUID_OR_NONE), Default("\"0 STB\""), "Water"),
+    key("tank.produced.injected_water", Quantity(D::LiquidVolume, LIQUID_OR_NONE), Default("\"0 STB\""), "Water injected, the part that supports the tank"),
+    key("tank.produced.injected_gas", Quantity(D::GasVolume, GAS_OR_NONE), Default("\"0 scf\""), "Gas injected, the part that supports the tank"),
+    key("tank.produced.measured_pressure", Quantity(D::Pressure, PRESSURE), Optional, "Measured at period.start: compared with the computed one, not imposed"),
+
+    key("tank.water", Kind::Table, Optional, "Water that flows to the wells"),
+    key("tank.water.model", Choice(&["connate", "average"]), Optional, "connate: none flows; average: fractional flow at the tank's average saturation. Must be stated when water is injected, otherwise connate"),
+
+    key("tank.relative_permeability", Kind::Table, Optional, "Corey curves"),
+    key("tank.relative_permeability.critical_gas", Fraction(FRACTION), Default("0.05"), "Gas saturation up to which free gas does not flow"),
+    key("tank.relative_permeability.residual_oil_to_gas", Fraction(FRACTION), Default("0.25"), "Oil left behind by gas"),
+    key("tank.relative_permeability.residual_oil_to_water", Fraction(FRACTION), Default("0.28"), "Oil left behind by water"),
+    key("tank.relative_permeability.oil_end", Fraction(END), Default("0.9"), "Oil relative permeability at connate water"),
+    key("tank.relative_permeability.gas_end", Fraction(END), Default("0.7"), "Gas relative permeability at residual oil"),
+    key("tank.relative_permeability.water_end", Fraction(END), Default("0.35"), "Water relative permeability at residual oil"),
+    key("tank.relative_permeability.oil_exponent", Number(EXPONENT), Default("2.5"), "Exponent of the oil curves"),
+    key("tank.relative_permeability.gas_exponent", Number(EXPONENT), Default("2.0"), "Exponent of the gas curve"),
+    key("tank.relative_permeability.water_exponent", Number(EXPONENT), Default("3.0"), "Exponent of the water curve"),
+
+    key("injector", Tables, Optional, "Injectors"),
+    key("injector.name", Name, Required, "Unique among wells and injectors"),
+    key("injector.fluid", Choice(&["water", "gas"]), Required, "What is injected"),
+    key("injector.start", Day, Optional, "First day; otherwise the start of the period"),
+    key("injector.end", Day, Optional, "Day from which it is shut; otherwise never"),
+    key("injector.rate", Injected(D::LiquidRate, D::GasRate, from(0.0, 1.0e10)), Optional, "Surface rate; this or voidage_replacement"),
+    key("injector.voidage_replacement", Number(from(0.0, 5.0)), Optional, "Share of the tank's current withdrawal; this or rate"),
+    key("injector.rate_limit", Injected(D::LiquidRate, D::GasRate, above(0.0, 1.0e10)), Optional, "Highest surface rate; otherwise none"),
+    key("injector.effective_fraction", Fraction(above(0.0, 1.0)), Default("1.0"), "Part of the injected volume that supports the tank; the rest is lost"),
+    key("injector.bottomhole_limit", Quantity(D::Pressure, PRESSURE), Optional, "Highest bottom-hole pressure, from the fracture figure; acts through injectivity"),
+    key("injector.injectivity", Injected(D::ProductivityIndex, D::GasInjectivity, above(0.0, 1.0e8)), Optional, "Surface rate per pressure above the tank's"),
+
+    key("well", Tables, Required, "Producing wells"),
+    key("well.name", Name, Required, "Unique among wells and injectors"),
+    key("well.line_pressure", Quantity(D::Pressure, PRESSURE), Required, "Pressure of the line into which the well flows"),
+    key("well.target_rate", Quantity(D::LiquidRate, RATE), Optional, "Producing-day liquid rate to which it is choked back while it can; otherwise wide open"),
+    key("well.uptime", Fraction(above(0.0, 1.0)), Default("1.0"), "Fraction of the time on stream"),
+    key("well.perforations", Quantity(D::Length, DEPTH), Optional, "Measured depth; otherwise the end of the survey"),
+    key("well.gor_factor", Number(from(0.0, 100.0)), Default("1.0"), "This well's free gas against the tank's"),
+    key("well.water_factor", Number(from(0.0, 100.0)), Default("1.0"), "This well's water-oil ratio against the tank's"),
+    key("well.start", Day, Optional, "First day on stream; otherwise the start of the period"),
+    key("well.end", Day, Optional, "Day from which it is shut in; otherwise never"),
+    key("well.may_flow_again", Flag, Default("false"), "Whether a well that died comes back by itself when it can"),
+    key("well.skin", Number(SKIN), Default("0.0"), "Skin"),
+    key("well.skin_at_test", Number(SKIN), Default("0.0"), "Skin to which the inflow coefficient belongs"),
+    key("well.drainage_radius", Quantity(D::Length, above(0.0, 50_000.0)), Optional, "With wellbore_radius: r = ln(0.472 re/rw) of the skin equation; otherwise r = 7.0"),
+    key("well.wellbore_radius", Quantity(D::Length, above(0.0, 5.0)), Optional, "Goes with drainage_radius"),
+    key("well.minimum_flowing_pressure", Quantity(D::Pressure, PRESSURE), Optional, "Lowest allowed flowing pressure at the perforations"),
+    key("well.minimum_rate", Quantity(D::LiquidRate, RATE), Optional, "Producing-day liquid rate below which it is given up"),
+    key("well.maximum_water_cut", Fraction(above(0.0, 1.0)), Optional, "Water cut above which it is given up"),
+    key("well.maximum_gor", Quantity(D::GasOilRatio, GOR), Optional, "Gas-oil ratio above which it is given up"),
+
+    key("well.inflow", Kind::Table, Required, "Inflow"),
+    key("well.inflow.method", Choice(&["straight", "vogel", "fetkovich"]), Default("\"fetkovich\""), "Shape of the curve below the bubble point"),
+    key("well.inflow.future", Choice(&["pressure", "mobility"]), Default("\"pressure\""), "How the coefficient is carried to future pressures"),
+    key("well.inflow.basis", Choice(&["liquid", "oil"]), Default("\"liquid\""), "Which rate the coefficient belongs to"),
+    key("well.inflow.exponent", Number(from(0.3, 1.5)), Optional, "Fetkovich's n; otherwise fitted, or 1 where it cannot be"),
+    key("well.inflow.test", Tables, Optional, "Measured points: one of test, productivity_index, open_flow, coefficient"),
+    key("well.inflow.productivity_index", Quantity(D::ProductivityIndex, above(0.0, 10_000.0)), Optional, "Above the bubble point (at any pressure for straight)"),
+    key("well.inflow.open_flow", Quantity(D::LiquidRate, RATE), Optional, "Absolute open flow"),
+    key("well.inflow.coefficient", FlowCoefficient, Optional, "Fetkovich's C; needs exponent"),
+    key("well.inflow.reservoir", Quantity(D::Pressure, PRESSURE), Optional, "Reservoir pressure to which the stated coefficient belongs; otherwise the tank's initial pressure"),
+    key("well.inflow.test.on", Day, Optional, "Date of the test"),
+    key("well.inflow.test.reservoir", Quantity(D::Pressure, PRESSURE), Required, "Reservoir pressure at the time, at the tank's datum"),
+    key("well.inflow.test.flowing", Quantity(D::Pressure, PRESSURE), Optional, "Gauged flowing pressure at the perforations; this or wellhead"),
+    key("well.inflow.test.wellhead", Quantity(D::Pressure, PRESSURE), Optional, "Flowing wellhead pressure of a separator test; needs gor"),
+    key("well.inflow.test.rate", Quantity(D::LiquidRate, RATE), Required, "Producing-day liquid rate"),
+    key("well.inflow.test.gor", Quantity(D::GasOilRatio, GOR), Optional, "Producing gas-oil ratio; not used beside a gauged pressure"),
+    key("well.inflow.test.water_cut", Fraction(Limits { low: 0.0, low_allowed: true, high: 0.999 }), Default("0.0"), "Water fraction of the liquid"),
+
+    key("well.tubing", Kind::Table, Required, "Tubing"),
+    key("well.tubing.method", Choice(&["hasan-kabir", "hagedorn-brown", "beggs-brill", "no-slip"]), Default("\"hasan-kabir\""), "Hydraulics model"),
+    key("well.tubing.diameter", Quantity(D::Diameter, DIAMETER), Optional, "Inside diameter; this or sections"),
+    key("well.tubing.sections", Tables, Optional, "Stretches of different diameter, from the wellhead down"),
+    key("well.tubing.sections.to", Quantity(D::Length, DEPTH), Optional, "Measured depth at which the stretch ends; only the last may leave it out"),
+    key("well.tubing.sections.diameter", Quantity(D::Diameter, DIAMETER), Required, "Inside diameter"),
+    key("well.tubing.sections.roughness", Quantity(D::Diameter, ROUGHNESS), Optional, "Absolute roughness; otherwise the tubing's"),
+    key("well.tubing.roughness", Quantity(D::Diameter, ROUGHNESS), Default("\"0.0006 in\""), "Absolute roughness"),
+    key("well.tubing.survey", Survey, Required, "Pairs of measured and true vertical depth from [0, 0] down, or the path of a CSV file"),
+    key("well.tubing.wellhead_temperature", Quantity(D::Temperature, from(-40.0, 500.0)), Required, "Flowing temperature at the wellhead"),
+
+    key("event", Tables, Optional, "Dated changes; a case may hold its own"),
+    key("event.on", Day, Required, "Acts from 00:00 of this day"),
+    key("event.well", Text, Optional, "Name of the well that changes; exactly one of well, injector, tank"),
+    key("event.injector", Text, Optional, "Name of the injector that changes"),
+    key("event.tank", Flag, Optional, "true: the tank changes"),
+    key("event.set", Overrides, Required, "New values; keys are relative to what is named"),
+
+    key("case", Tables, Optional, "Named sets of overrides"),
+    key("case.name", Text, Required, "Unique among cases"),
+    key("case.set", Overrides, Optional, "Values by dotted path: \"table.key\" or \"list.NAME.key\""),
+    key("case.event", Tables, Optional, "Events of this case alone, added to the scenario's; same keys as event"),
+
+    key("numerics", Kind::Table, Optional, "How the equations are solved"),
+    key("numerics.tolerance", Choice(&["normal", "tight"]), Default("\"normal\""), "tight: a hundred times tighter, to check the former"),
+];
+
+/// The key of a path without indices.
+pub fn find(path: &str) -> Option<&'static Key> {
+    KEYS.iter().find(|key| key.path == path)
+}
+
+/// The keys directly below a path; the top level for an empty one.
+pub fn children(path: &str) -> impl Iterator<Item = (&'static str, &'static Key)> + use<'_> {
+    KEYS.iter().filter_map(move |key| {
+        let (parent, name) = key.path.rsplit_once('.').unwrap_or(("", key.path));
+        (parent == path).then_some((name, key))
+    })
+}
