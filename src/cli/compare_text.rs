@@ -2,7 +2,7 @@
 
 use super::screen::{Screen, Side};
 use crate::report::human::{number, short_month, span, volume};
-use crate::report::labels::{Quantity, label};
+use crate::report::labels::{Dimension, label};
 use crate::report::{CAUTION, Provenance};
 use crate::study::{CaseRow, Comparison, Shift};
 
@@ -16,7 +16,11 @@ pub fn compare_text(comparison: &Comparison, provenance: &Provenance, folder: Op
     volumes(&mut s, &rows, provenance);
     if let Some(folder) = folder {
         s.line("");
-        s.paragraph(0, 2, &format!("Results: {folder} (compare.csv, compare.json, compare.svg, a folder for each case)"));
+        s.paragraph(
+            0,
+            2,
+            &format!("Results: {folder} (compare.csv, compare.json, compare.svg, a folder for each case)"),
+        );
     }
     s.line("");
     s.quiet(CAUTION);
@@ -26,7 +30,11 @@ pub fn compare_text(comparison: &Comparison, provenance: &Provenance, folder: Op
 /// "+9.4 months", "at least +2.1 years".
 fn shift_text(shift: Shift) -> String {
     let signed = |days: f64| {
-        if days.abs() < 0.005 { "0 days".to_owned() } else { format!("{}{}", if days > 0.0 { "+" } else { "" }, span(days)) }
+        if days.abs() < 0.005 {
+            "0 days".to_owned()
+        } else {
+            format!("{}{}", if days > 0.0 { "+" } else { "" }, span(days))
+        }
     };
     match shift {
         Shift::Days(days) => signed(days),
@@ -37,7 +45,8 @@ fn shift_text(shift: Shift) -> String {
 }
 
 fn ends(s: &mut Screen, rows: &[CaseRow], provenance: &Provenance) {
-    let (rate, liquid) = (label(provenance.units, Quantity::LiquidRate), label(provenance.units, Quantity::Liquid));
+    let (rate, liquid) =
+        (label(provenance.units, Dimension::LiquidRate), label(provenance.units, Dimension::LiquidVolume));
     s.heading("End of natural flow");
     let mut cells = Vec::new();
     for case in rows {
@@ -68,8 +77,10 @@ fn ends(s: &mut Screen, rows: &[CaseRow], provenance: &Provenance) {
 }
 
 fn volumes(s: &mut Screen, rows: &[CaseRow], provenance: &Provenance) {
-    let (liquid, gas) = (label(provenance.units, Quantity::Liquid), label(provenance.units, Quantity::Gas));
-    let (pressure, ratio) = (label(provenance.units, Quantity::Pressure), label(provenance.units, Quantity::GasOilRatio));
+    let (liquid, gas) =
+        (label(provenance.units, Dimension::LiquidVolume), label(provenance.units, Dimension::GasVolume));
+    let (pressure, ratio) =
+        (label(provenance.units, Dimension::Pressure), label(provenance.units, Dimension::GasOilRatio));
     s.heading("Tank at the end of the run");
     let water = rows.iter().any(|r| r.injected_water_stb > 0.0);
     let gas_in = rows.iter().any(|r| r.injected_gas_scf > 0.0);

@@ -3,7 +3,7 @@
 use super::screen::{Screen, Side};
 use crate::forecast::{Doubt, Forecast, WellResult, date_at};
 use crate::report::human::{month, number, short, span, volume};
-use crate::report::labels::{Quantity, UnitSystem, label};
+use crate::report::labels::{Dimension, UnitSystem, label};
 use crate::report::{CAUTION, Provenance, doubt_text, recovery, sanity};
 
 /// The summary of a forecast for people; `folder` is where the files are.
@@ -40,7 +40,7 @@ fn last_day(forecast: &Forecast) -> jiff::civil::Date {
 }
 
 fn ends(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
-    let rate = label(units, Quantity::LiquidRate);
+    let rate = label(units, Dimension::LiquidRate);
     s.heading("End of natural flow");
     let name = forecast.wells.iter().map(|w| w.name.chars().count()).max().unwrap_or(0).min(24);
     for well in &forecast.wells {
@@ -67,7 +67,7 @@ fn ends(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
 }
 
 fn wells(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
-    let (liquid, gor) = (label(units, Quantity::Liquid), label(units, Quantity::GasOilRatio));
+    let (liquid, gor) = (label(units, Dimension::LiquidVolume), label(units, Dimension::GasOilRatio));
     s.heading("Wells");
     let plateau = |well: &WellResult| {
         well.plateau_end.map_or_else(|| "-".to_owned(), |days| month(date_at(forecast.start, days)))
@@ -97,8 +97,8 @@ fn wells(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
 }
 
 fn tank(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
-    let (liquid, gas) = (label(units, Quantity::Liquid), label(units, Quantity::Gas));
-    let pressure = label(units, Quantity::Pressure);
+    let (liquid, gas) = (label(units, Dimension::LiquidVolume), label(units, Dimension::GasVolume));
+    let pressure = label(units, Dimension::Pressure);
     s.heading("Tank");
     let Some(last) = forecast.tank.last() else { return };
     let mut pairs = vec![
@@ -151,7 +151,7 @@ fn tank(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
 }
 
 fn tests(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
-    let (rate, pressure) = (label(units, Quantity::LiquidRate), label(units, Quantity::Pressure));
+    let (rate, pressure) = (label(units, Dimension::LiquidRate), label(units, Dimension::Pressure));
     if forecast.wells.iter().all(|w| w.inflow_text.is_empty()) {
         return;
     }

@@ -2,7 +2,7 @@
 
 use super::csv_files::{cell, csv_bytes};
 use super::json::Json;
-use super::labels::{Quantity, UnitSystem, label};
+use super::labels::{Dimension, UnitSystem, label};
 use super::{Provenance, ReportError};
 use crate::study::{CaseRow, Comparison, Shift, WellShift};
 
@@ -23,11 +23,11 @@ fn bound(shift: Shift) -> (Option<f64>, &'static str) {
 /// # Errors
 /// When the CSV writer fails.
 pub fn compare_csv(comparison: &Comparison, units: UnitSystem) -> Result<Vec<u8>, ReportError> {
-    let liquid = label(units, Quantity::Liquid);
-    let gas = label(units, Quantity::Gas);
-    let rate = label(units, Quantity::LiquidRate);
-    let pressure = label(units, Quantity::Pressure);
-    let ratio = label(units, Quantity::GasOilRatio);
+    let liquid = label(units, Dimension::LiquidVolume);
+    let gas = label(units, Dimension::GasVolume);
+    let rate = label(units, Dimension::LiquidRate);
+    let pressure = label(units, Dimension::Pressure);
+    let ratio = label(units, Dimension::GasOilRatio);
     csv_bytes(|w| {
         w.write_record([
             "case",
@@ -109,10 +109,10 @@ pub fn compare_json(comparison: &Comparison, provenance: &Provenance) -> Result<
 }
 
 fn case_json(case: &CaseRow, units: UnitSystem) -> Json {
-    let liquid = label(units, Quantity::Liquid);
-    let gas = label(units, Quantity::Gas);
-    let pressure = label(units, Quantity::Pressure);
-    let ratio = label(units, Quantity::GasOilRatio);
+    let liquid = label(units, Dimension::LiquidVolume);
+    let gas = label(units, Dimension::GasVolume);
+    let pressure = label(units, Dimension::Pressure);
+    let ratio = label(units, Dimension::GasOilRatio);
     Json::object([
         ("case".to_owned(), case.name.as_str().into()),
         ("end_days".to_owned(), case.end_days.into()),
@@ -132,8 +132,8 @@ fn case_json(case: &CaseRow, units: UnitSystem) -> Json {
 }
 
 fn well_json(well: &WellShift, units: UnitSystem) -> Json {
-    let liquid = label(units, Quantity::Liquid);
-    let rate = label(units, Quantity::LiquidRate);
+    let liquid = label(units, Dimension::LiquidVolume);
+    let rate = label(units, Dimension::LiquidRate);
     let (shift, bound) = bound(well.shift);
     let end = well.end.map_or(Json::Null, |end| {
         Json::object([

@@ -1,6 +1,6 @@
 //! `profile.csv`, `yearly.csv`, `events.csv`.
 
-use super::labels::{Quantity, UnitSystem, label};
+use super::labels::{Dimension, UnitSystem, label};
 use super::table::{Row, Values, by_period, by_year};
 use super::{ReportError, event_text};
 use crate::forecast::{EventKind, Forecast};
@@ -9,19 +9,19 @@ type Pick = fn(&Values) -> Option<f64>;
 
 /// The columns of the profile after `period_start, period_end, name`, in their order. Names are fixed:
 /// other programs read them.
-const COLUMNS: &[(&str, Option<Quantity>, Pick)] = {
-    use Quantity as Q;
+const COLUMNS: &[(&str, Option<Dimension>, Pick)] = {
+    use Dimension as Q;
     &[
-        ("oil", Some(Q::Liquid), |v| v.oil_stb),
-        ("water", Some(Q::Liquid), |v| v.water_stb),
-        ("gas", Some(Q::Gas), |v| v.gas_scf),
-        ("injected_water", Some(Q::Liquid), |v| v.injected_water_stb),
-        ("injected_gas", Some(Q::Gas), |v| v.injected_gas_scf),
-        ("oil_cum", Some(Q::Liquid), |v| v.oil_cum_stb),
-        ("water_cum", Some(Q::Liquid), |v| v.water_cum_stb),
-        ("gas_cum", Some(Q::Gas), |v| v.gas_cum_scf),
-        ("injected_water_cum", Some(Q::Liquid), |v| v.injected_water_cum_stb),
-        ("injected_gas_cum", Some(Q::Gas), |v| v.injected_gas_cum_scf),
+        ("oil", Some(Q::LiquidVolume), |v| v.oil_stb),
+        ("water", Some(Q::LiquidVolume), |v| v.water_stb),
+        ("gas", Some(Q::GasVolume), |v| v.gas_scf),
+        ("injected_water", Some(Q::LiquidVolume), |v| v.injected_water_stb),
+        ("injected_gas", Some(Q::GasVolume), |v| v.injected_gas_scf),
+        ("oil_cum", Some(Q::LiquidVolume), |v| v.oil_cum_stb),
+        ("water_cum", Some(Q::LiquidVolume), |v| v.water_cum_stb),
+        ("gas_cum", Some(Q::GasVolume), |v| v.gas_cum_scf),
+        ("injected_water_cum", Some(Q::LiquidVolume), |v| v.injected_water_cum_stb),
+        ("injected_gas_cum", Some(Q::GasVolume), |v| v.injected_gas_cum_scf),
         ("oil_rate", Some(Q::LiquidRate), |v| v.calendar_rate(v.oil_stb)),
         ("water_rate", Some(Q::LiquidRate), |v| v.calendar_rate(v.water_stb)),
         ("gas_rate", Some(Q::GasRate), |v| v.calendar_rate(v.gas_scf)),
@@ -43,8 +43,8 @@ const COLUMNS: &[(&str, Option<Quantity>, Pick)] = {
         ("flow_margin", Some(Q::PressureDifference), |v| v.flow_margin_psi),
         ("end_liquid_rate", Some(Q::LiquidRate), |v| v.end_liquid_rate_stb_d),
         ("bottomhole_pressure", Some(Q::Pressure), |v| v.bottomhole_pressure_psia),
-        ("water_shortfall", Some(Q::Liquid), |v| v.water_shortfall_stb),
-        ("gas_shortfall", Some(Q::Gas), |v| v.gas_shortfall_scf),
+        ("water_shortfall", Some(Q::LiquidVolume), |v| v.water_shortfall_stb),
+        ("gas_shortfall", Some(Q::GasVolume), |v| v.gas_shortfall_scf),
         ("bubble_point", Some(Q::Pressure), |v| v.bubble_point_psia),
         ("oil_saturation", None, |v| v.oil_saturation),
         ("gas_saturation", None, |v| v.gas_saturation),
@@ -91,8 +91,8 @@ fn profile_bytes<'a>(rows: impl Iterator<Item = Row<'a>>, units: UnitSystem) -> 
         for fixed in ["period_start", "period_end", "name"] {
             w.write_field(fixed)?;
         }
-        for (stem, quantity, _) in COLUMNS {
-            w.write_field(quantity.map_or_else(|| (*stem).to_owned(), |q| label(units, q).column(stem)))?;
+        for (stem, dimension, _) in COLUMNS {
+            w.write_field(dimension.map_or_else(|| (*stem).to_owned(), |q| label(units, q).column(stem)))?;
         }
         w.write_field("flowing")?;
         w.write_record(None::<&[u8]>)?;
@@ -100,8 +100,8 @@ fn profile_bytes<'a>(rows: impl Iterator<Item = Row<'a>>, units: UnitSystem) -> 
             w.write_field(row.start.to_string())?;
             w.write_field(row.end.to_string())?;
             w.write_field(row.name)?;
-            for (_, quantity, pick) in COLUMNS {
-                let value = pick(&row.values).map(|v| quantity.map_or(v, |q| label(units, q).of(v)));
+            for (_, dimension, pick) in COLUMNS {
+                let value = pick(&row.values).map(|v| dimension.map_or(v, |q| label(units, q).of(v)));
                 w.write_field(value.map_or_else(String::new, cell))?;
             }
             w.write_field(row.flowing.map_or("", |f| if f { "yes" } else { "no" }))?;

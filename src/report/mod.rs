@@ -20,10 +20,10 @@ pub use chart::{
 };
 pub use compare_files::{compare_csv, compare_json};
 pub use csv_files::{events_csv, profile_csv, yearly_csv};
-pub use curve_files::{FluidSheet, curves_csv, fluid_csv, traverse_csv};
+pub use curve_files::{FluidSheet, curves_csv, curves_json, fluid_csv, fluid_json, traverse_csv};
 pub use labels::UnitSystem;
 pub use sanity::sanity;
-pub use summary::summary_json;
+pub use summary::{doubts_json, summary_json};
 pub use table::recovery;
 pub use words::{doubt_text, event_text};
 
@@ -60,10 +60,7 @@ impl Provenance {
     }
 
     fn entries(&self) -> Vec<(String, Json)> {
-        let units = match self.units {
-            UnitSystem::Field => "field",
-            UnitSystem::Metric => "metric",
-        };
+        let units = self.units.name();
         let entries = [
             ("program", "wane"),
             ("version", &self.version),

@@ -2,7 +2,7 @@
 
 use super::human::day_at;
 use super::json::Json;
-use super::labels::{Label, Quantity, label};
+use super::labels::{Dimension, Label, label};
 use super::table::recovery;
 use super::{Provenance, ReportError, sanity};
 use crate::forecast::{Doubt, Forecast, InjectorResult, WellResult};
@@ -33,14 +33,14 @@ fn plain(key: &str, value: impl Into<Json>) -> (String, Json) {
     (key.to_owned(), value.into())
 }
 
-pub(crate) fn summary(forecast: &Forecast, provenance: &Provenance) -> Json {
+fn summary(forecast: &Forecast, provenance: &Provenance) -> Json {
     let units = Units {
-        liquid: label(provenance.units, Quantity::Liquid),
-        gas: label(provenance.units, Quantity::Gas),
-        liquid_rate: label(provenance.units, Quantity::LiquidRate),
-        pressure: label(provenance.units, Quantity::Pressure),
-        difference: label(provenance.units, Quantity::PressureDifference),
-        gor: label(provenance.units, Quantity::GasOilRatio),
+        liquid: label(provenance.units, Dimension::LiquidVolume),
+        gas: label(provenance.units, Dimension::GasVolume),
+        liquid_rate: label(provenance.units, Dimension::LiquidRate),
+        pressure: label(provenance.units, Dimension::Pressure),
+        difference: label(provenance.units, Dimension::PressureDifference),
+        gor: label(provenance.units, Dimension::GasOilRatio),
     };
     let mut entries = provenance.entries();
     entries.extend([
@@ -154,7 +154,7 @@ fn injector(injector: &InjectorResult, units: &Units) -> Json {
     ])
 }
 
-pub(crate) fn doubt(doubt: &Doubt) -> Json {
+fn doubt(doubt: &Doubt) -> Json {
     Json::object([
         ("kind", super::doubt_text(doubt.kind).into()),
         ("about", doubt.about.as_str().into()),
@@ -162,4 +162,14 @@ pub(crate) fn doubt(doubt: &Doubt) -> Json {
         ("cause", doubt.cause.as_str().into()),
         ("advice", doubt.advice.as_str().into()),
     ])
+}
+
+/// The doubts about a scenario's data as JSON.
+///
+/// # Errors
+/// When the JSON writer fails.
+pub fn doubts_json(doubts: &[Doubt], provenance: &Provenance) -> Result<Vec<u8>, ReportError> {
+    let mut entries = provenance.entries();
+    entries.push(plain("doubts", Json::List(doubts.iter().map(doubt).collect())));
+    Ok(Json::Object(entries).to_bytes()?)
 }

@@ -8,14 +8,14 @@ use super::timeline::{Timeline, end_labels, stack};
 use crate::forecast::Forecast;
 use crate::report::Provenance;
 use crate::report::human;
-use crate::report::labels::{Quantity, label};
+use crate::report::labels::{Dimension, label};
 
 type Points = Vec<(f64, f64)>;
 
 /// Oil rate, reservoir pressure and water cut of several cases, each with its name.
 pub fn compare_picture(cases: &[(&str, &Forecast)], provenance: &Provenance) -> Drawing {
-    let pressure = label(provenance.units, Quantity::Pressure);
-    let rate = label(provenance.units, Quantity::LiquidRate);
+    let pressure = label(provenance.units, Dimension::Pressure);
+    let rate = label(provenance.units, Dimension::LiquidRate);
     let highest = Span::of(cases.iter().flat_map(|(_, f)| oil_rates(f)).map(|p| rate.of(p.1))).map_or(1.0, |s| s.high);
     let (divisor, word) = human::scale(highest);
     let mut panels_of = vec![

@@ -8,7 +8,7 @@ use super::{Anchor, Drawing};
 use crate::forecast::CurveSet;
 use crate::report::Provenance;
 use crate::report::human;
-use crate::report::labels::{Label, Quantity, label};
+use crate::report::labels::{Dimension, Label, label};
 
 const INFLOW_LOOK: Look = Look { colour: INFLOW, width: 2.2, dash: Dash::Solid, mark: Mark::Disc };
 const TUBING_LOOK: Look = Look { colour: TUBING, width: 2.2, dash: Dash::Long, mark: Mark::Disc };
@@ -24,8 +24,8 @@ pub fn curves_picture(well: &str, inflow: &str, curves: &[CurveSet], provenance:
     headings(&mut d, &format!("{well} · {}", title(provenance)), inflow, &provenance.footer());
     key(&mut d, 76.0);
 
-    let rate = label(provenance.units, Quantity::LiquidRate);
-    let pressure = label(provenance.units, Quantity::Pressure);
+    let rate = label(provenance.units, Dimension::LiquidRate);
+    let pressure = label(provenance.units, Dimension::Pressure);
     let (x, y) = spans(curves, rate, pressure);
     let panel_width = (width - 84.0 - 28.0 - 40.0 * (columns - 1) as f64) / columns as f64;
     for (i, curve) in curves.iter().enumerate() {
@@ -60,9 +60,9 @@ fn spans(curves: &[CurveSet], rate: Label, pressure: Label) -> (Span, Span) {
 }
 
 fn draw_instant(d: &mut Drawing, panel: &Panel, curve: &CurveSet, provenance: &Provenance, first: bool) {
-    let rate = label(provenance.units, Quantity::LiquidRate);
-    let pressure = label(provenance.units, Quantity::Pressure);
-    let difference = label(provenance.units, Quantity::PressureDifference);
+    let rate = label(provenance.units, Dimension::LiquidRate);
+    let pressure = label(provenance.units, Dimension::Pressure);
+    let difference = label(provenance.units, Dimension::PressureDifference);
     let width = panel.right - panel.left;
     let points: Vec<(f64, f64, f64)> = curve
         .points

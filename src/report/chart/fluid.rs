@@ -3,28 +3,29 @@
 use super::axes::{Panel, Span, headings};
 use super::style::{Dash, Look, Mark, QUIET, look};
 use super::{Anchor, Drawing, axes};
-use crate::report::labels::{Quantity, label};
+use crate::report::labels::{Dimension, label};
 use crate::report::{FluidSheet, Provenance};
 
 /// Solution gas-oil ratio, volume factors and viscosities against pressure.
 pub fn fluid_picture(table: &FluidSheet, provenance: &Provenance) -> Drawing {
     let mut d = Drawing::new(1080, 790);
-    let pressure = label(provenance.units, Quantity::Pressure);
-    let degrees = label(provenance.units, Quantity::Temperature);
+    let pressure = label(provenance.units, Dimension::Pressure);
+    let degrees = label(provenance.units, Dimension::Temperature);
     let subtitle = format!(
         "At tank temperature, {} {}: saturated below, undersaturated above the bubble point (dashed)",
         crate::report::human::number(degrees.of(table.temperature_degf), 1),
         degrees.text
     );
     headings(&mut d, &provenance.title, &subtitle, &provenance.footer());
-    let gor = label(provenance.units, Quantity::GasOilRatio);
-    let expansion = label(provenance.units, Quantity::Expansion);
+    let gor = label(provenance.units, Dimension::GasOilRatio);
+    let volume = label(provenance.units, Dimension::GasVolumeFactor);
+    let (above, below) = volume.text.split_once('/').unwrap_or(("", ""));
     let panels = [
         (format!("Solution gas-oil ratio, {}", gor.text), table.line(|r| gor.of(r.rs_scf_stb)), true),
         ("Oil volume factor, reservoir over stock tank".to_owned(), table.line(|r| r.bo_rb_stb), false),
         ("Oil viscosity, cp".to_owned(), table.line(|r| r.mu_o_cp), true),
         ("Gas deviation factor z".to_owned(), table.line(|r| r.z), false),
-        (format!("Gas expansion, {}", expansion.text), table.line(|r| expansion.of(1.0 / r.bg_rb_scf)), true),
+        (format!("Gas expansion, {below}/{above}"), table.line(|r| 1.0 / volume.of(r.bg_rb_scf)), true),
         ("Gas viscosity, cp".to_owned(), table.line(|r| r.mu_g_cp), true),
     ];
     let x = Span::of(table.rows.iter().map(|r| pressure.of(r.pressure_psia))).unwrap_or(Span::new(0.0, 1.0));

@@ -7,7 +7,7 @@ use super::timeline::{draw_moments, moments_height, stack};
 use super::{Anchor, Drawing};
 use crate::forecast::Forecast;
 use crate::report::Provenance;
-use crate::report::labels::{Label, Quantity, label};
+use crate::report::labels::{Dimension, Label, label};
 
 type Points = Vec<(f64, f64)>;
 
@@ -73,8 +73,8 @@ fn at_ends(forecast: &Forecast, unit: Label, value: impl Fn(usize) -> Option<f64
 }
 
 fn states(forecast: &Forecast, provenance: &Provenance) -> Vec<State> {
-    let pressure = label(provenance.units, Quantity::Pressure);
-    let gor = label(provenance.units, Quantity::GasOilRatio);
+    let pressure = label(provenance.units, Dimension::Pressure);
+    let gor = label(provenance.units, Dimension::GasOilRatio);
     let tank = |pick: fn(&crate::forecast::TankRow) -> Option<f64>| move |i: usize| forecast.tank.get(i).and_then(pick);
     let wells = |unit: Label, pick: fn(&crate::forecast::WellRow) -> Option<f64>| {
         let several = forecast.wells.len() > 1;

@@ -7,7 +7,7 @@ use super::timeline::{Moment, Timeline, draw_moments, moments_height, stack};
 use crate::forecast::{Forecast, InjectorRow, Period, TankRow, WellResult, WellRow};
 use crate::report::Provenance;
 use crate::report::human::{self, short_month};
-use crate::report::labels::{Quantity, label};
+use crate::report::labels::{Dimension, label};
 
 const WIDTH: u32 = 960;
 
@@ -20,7 +20,7 @@ struct Series {
 /// One panel: its name, its unit and its lines.
 struct Stream {
     name: &'static str,
-    quantity: Quantity,
+    dimension: Dimension,
     series: Vec<Series>,
 }
 
@@ -126,11 +126,11 @@ fn streams(forecast: &Forecast) -> Vec<Stream> {
         series.filter(Series::flows).collect::<Vec<_>>()
     };
     let all = [
-        Stream { name: "Oil", quantity: Quantity::LiquidRate, series: wells(|r| r.oil_stb, |t| t.oil_stb) },
-        Stream { name: "Gas", quantity: Quantity::GasRate, series: wells(|r| r.gas_scf, |t| t.gas_scf) },
-        Stream { name: "Water", quantity: Quantity::LiquidRate, series: wells(|r| r.water_stb, |t| t.water_stb) },
-        Stream { name: "Injected water", quantity: Quantity::LiquidRate, series: injectors(|r| r.water_stb) },
-        Stream { name: "Injected gas", quantity: Quantity::GasRate, series: injectors(|r| r.gas_scf) },
+        Stream { name: "Oil", dimension: Dimension::LiquidRate, series: wells(|r| r.oil_stb, |t| t.oil_stb) },
+        Stream { name: "Gas", dimension: Dimension::GasRate, series: wells(|r| r.gas_scf, |t| t.gas_scf) },
+        Stream { name: "Water", dimension: Dimension::LiquidRate, series: wells(|r| r.water_stb, |t| t.water_stb) },
+        Stream { name: "Injected water", dimension: Dimension::LiquidRate, series: injectors(|r| r.water_stb) },
+        Stream { name: "Injected gas", dimension: Dimension::GasRate, series: injectors(|r| r.gas_scf) },
     ];
     // A stream that never flows gets no panel; oil always has one.
     all.into_iter().filter(|s| s.name == "Oil" || s.series.iter().any(Series::flows)).collect()
@@ -172,7 +172,7 @@ fn well_stretches(forecast: &Forecast, well: &WellResult, pick: fn(&WellRow) -> 
 
 /// The scale of a stream, the factor from oilfield units to it, and its unit in words.
 fn axis(stream: &Stream, provenance: &Provenance) -> (Span, f64, String) {
-    let unit = label(provenance.units, stream.quantity);
+    let unit = label(provenance.units, stream.dimension);
     let rates = stream.series.iter().flat_map(|s| s.stretches.iter().map(|s| unit.of(s.2)));
     let highest = Span::of(rates).map_or(1.0, |s| s.high);
     let (divisor, word) = human::scale(highest);

@@ -7,12 +7,12 @@ use super::{Anchor, Drawing, style::INK};
 use crate::forecast::WellCurves;
 use crate::report::Provenance;
 use crate::report::human;
-use crate::report::labels::{Quantity, label};
+use crate::report::labels::{Dimension, label};
 
 /// The pressure in the tubing of one well from the wellhead down, a line for each tubing method.
 pub fn traverse_picture(well: &str, curves: &[&WellCurves], provenance: &Provenance) -> Drawing {
-    let (pressure, depth) = (label(provenance.units, Quantity::Pressure), label(provenance.units, Quantity::Depth));
-    let rate = label(provenance.units, Quantity::LiquidRate);
+    let (pressure, depth) = (label(provenance.units, Dimension::Pressure), label(provenance.units, Dimension::Length));
+    let rate = label(provenance.units, Dimension::LiquidRate);
     let mut d = Drawing::new(720, 720);
     let when = curves.first().map_or_else(String::new, |c| human::month(c.curve.date));
     let subtitle = format!("Pressure in the tubing at line pressure, {when}");
