@@ -6,12 +6,12 @@
 
 pub mod cli;
 pub mod fault;
-pub mod roots;
 pub mod fluid;
 pub mod forecast;
 pub mod inflow;
 pub mod report;
 pub mod rock;
+pub mod roots;
 pub mod scenario;
 pub mod study;
 pub mod tank;

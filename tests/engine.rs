@@ -156,7 +156,10 @@ fn an_injector_stays_below_its_limit_and_reports_what_it_could_not_inject() {
     let rows = &f.injectors[0].rows;
     assert_eq!(rows[11].water_cum_stb, 0.0, "nothing before the start");
     assert!(rows[12].water_stb > 0.0);
-    assert!(rows.iter().filter_map(|r| r.bottomhole_pressure_psia).all(|p| p <= 4000.0 * (1.0 + 1e-9)), "limit exceeded");
+    assert!(
+        rows.iter().filter_map(|r| r.bottomhole_pressure_psia).all(|p| p <= 4000.0 * (1.0 + 1e-9)),
+        "limit exceeded"
+    );
     near(rows.last().unwrap().water_cum_stb, rows[23].water_cum_stb, 1e-12, "nothing after the end");
     assert!(rows.iter().map(|r| r.shortfall).sum::<f64>() > 0.0, "shortfall is reported");
     assert!(f.events.iter().any(|e| e.kind == EventKind::InjectionLimited));

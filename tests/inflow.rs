@@ -4,9 +4,7 @@
 mod common;
 
 use common::{case, near, numbers};
-use wane::inflow::{
-    Conditions, FutureRule, Inflow, InflowCurve, InflowMethod, RateBasis, Shape, TestPoint, fit_tests,
-};
+use wane::inflow::{Conditions, FutureRule, Inflow, InflowCurve, InflowMethod, RateBasis, Shape, TestPoint, fit_tests};
 
 fn curve(shape: Shape, j: f64, pr: f64, pb: f64) -> InflowCurve {
     InflowCurve::new(shape, j, pr, pr.min(pb))
@@ -91,7 +89,12 @@ fn fetkovich_example_and_its_future() {
     let later = inflow.curve(&now, 1.0);
     near(later.open_flow_stb_d(), future["expected"]["qmax_future_stb_d"].as_f64().unwrap(), 5e-3, "future open flow");
     // Open flow falls as (p2/p1)^(2n+1), Fetkovich (1973).
-    near(later.open_flow_stb_d() / found.open_flow_stb_d(), (2000.0_f64 / 3600.0).powf(2.0 * 0.854 + 1.0), 1e-12, "power law");
+    near(
+        later.open_flow_stb_d() / found.open_flow_stb_d(),
+        (2000.0_f64 / 3600.0).powf(2.0 * 0.854 + 1.0),
+        1e-12,
+        "power law",
+    );
 }
 
 /// Guo, Lyons and Ghalambor (2007), two-point Fetkovich test and Vogel from the first point (from memory).
@@ -135,7 +138,8 @@ fn synthetic_tests_are_recovered() {
 
     let straddling: Vec<TestPoint> = [3200.0, 2800.0, 1900.0]
         .map(|pwf: f64| {
-            let q = if pwf >= 2650.0 { 3600.0 - pwf } else { 950.0 + (2650.0_f64.powi(2) - pwf * pwf) / (2.0 * 2650.0) };
+            let q =
+                if pwf >= 2650.0 { 3600.0 - pwf } else { 950.0 + (2650.0_f64.powi(2) - pwf * pwf) / (2.0 * 2650.0) };
             point(3600.0, 2650.0, pwf, 1.7 * q)
         })
         .into();
@@ -167,8 +171,16 @@ fn open_flow_of_the_future() {
             reference_mobility_1_cp: 0.5,
         };
         let at = |p: f64| {
-            let now = Conditions { reservoir_psia: p, bubble_point_psia: p, oil_mobility_1_cp: 0.5 * p / 3000.0, water_cut: 0.0 };
-            (inflow.curve(&now, 1.0).open_flow_stb_d(), Inflow { future: FutureRule::Mobility, ..inflow.clone() }.curve(&now, 1.0).open_flow_stb_d())
+            let now = Conditions {
+                reservoir_psia: p,
+                bubble_point_psia: p,
+                oil_mobility_1_cp: 0.5 * p / 3000.0,
+                water_cut: 0.0,
+            };
+            (
+                inflow.curve(&now, 1.0).open_flow_stb_d(),
+                Inflow { future: FutureRule::Mobility, ..inflow.clone() }.curve(&now, 1.0).open_flow_stb_d(),
+            )
         };
         near(at(2400.0).0 / at(3000.0).0, left, 1e-3, "open flow left");
         // With a mobility that is linear in pressure both rules coincide (practice row 20).
@@ -181,9 +193,7 @@ fn open_flow_of_the_future() {
 fn future_by_mobility_example_of_standing() {
     let c = case("inflow.json", "future_standing_1971");
     let i = |k: &str| c["inputs"][k].as_f64().unwrap();
-    let mobility = |when: &str| {
-        i(&format!("kro_{when}")) / (i(&format!("mu_o_{when}_cp")) * i(&format!("Bo_{when}")))
-    };
+    let mobility = |when: &str| i(&format!("kro_{when}")) / (i(&format!("mu_o_{when}_cp")) * i(&format!("Bo_{when}")));
     let inflow = Inflow {
         shape: Shape::Vogel,
         future: FutureRule::Mobility,
@@ -194,7 +204,8 @@ fn future_by_mobility_example_of_standing() {
     };
     let at = |when: &str| {
         let p = i(&format!("pr_{when}_psig"));
-        let now = Conditions { reservoir_psia: p, bubble_point_psia: p, oil_mobility_1_cp: mobility(when), water_cut: 0.0 };
+        let now =
+            Conditions { reservoir_psia: p, bubble_point_psia: p, oil_mobility_1_cp: mobility(when), water_cut: 0.0 };
         inflow.curve(&now, 1.0).open_flow_stb_d()
     };
     near(at("present"), c["expected"]["qmax_present"].as_f64().unwrap(), 2e-3, "present open flow");
@@ -216,5 +227,10 @@ fn the_cubic_rule_is_fetkovichs_with_n_of_one() {
         reference_mobility_1_cp: 1.0,
     };
     let now = Conditions { reservoir_psia: p1, bubble_point_psia: p1, oil_mobility_1_cp: 1.0, water_cut: 0.0 };
-    near(inflow.curve(&now, 1.0).open_flow_stb_d(), c["expected"]["qmax_future_stb_d"].as_f64().unwrap(), 1e-3, "future open flow");
+    near(
+        inflow.curve(&now, 1.0).open_flow_stb_d(),
+        c["expected"]["qmax_future_stb_d"].as_f64().unwrap(),
+        1e-3,
+        "future open flow",
+    );
 }

@@ -169,8 +169,7 @@ fn a_dip_inside_a_long_step_is_found() {
         }
     }
     let settings = Settings { rtol: 1e-7, atol: 1e-9, longest_step_days: 122.0, first_step_days: 1.0 };
-    let (stretch, end) =
-        integrate(&Dip, 0.0, &State::zeros(1), 5000.0, &settings, &mut Effort::default()).unwrap();
+    let (stretch, end) = integrate(&Dip, 0.0, &State::zeros(1), 5000.0, &settings, &mut Effort::default()).unwrap();
     assert!(matches!(end, End::Watch(0)), "{end:?}");
     assert!((stretch.to_days - (700.0 - 30.0)).abs() < 1e-5, "found at {}", stretch.to_days);
 }

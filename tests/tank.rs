@@ -265,7 +265,8 @@ fn depletion_from_above_the_bubble_point_meets_the_reference() {
 fn a_quarter_of_the_voidage_replaced_by_water_meets_the_reference() {
     let c = case("material_balance.json", "depletion_water_injection_vrr25");
     let tank =
-        Tank::new(&tank_spec(1.0, 3330.0, 0.2), undersaturated_table(&c, 0.0, 3330.0), critical_gas_curves(), 510.0).unwrap();
+        Tank::new(&tank_spec(1.0, 3330.0, 0.2), undersaturated_table(&c, 0.0, 3330.0), critical_gas_curves(), 510.0)
+            .unwrap();
     let expected = rows(&c["expected"]["rows"]);
     let pressures: Vec<f64> = expected.iter().map(|r| r[0]).collect();
     for (found, row) in deplete(&tank, &pressures, 0.0, 0.25).iter().zip(&expected) {
@@ -325,7 +326,13 @@ fn undersaturated_exercise_of_dake() {
         mu_o_cp: 0.5,
         mu_g_cp: (p < 4000.0).then_some(0.02),
     });
-    let saturated = FluidTableRow { pressure_psia: 3000.0, bo_rb_stb: 1.2222, rs_scf_stb: 450.0, bg_rb_scf: Some(0.00096), ..rows[0] };
+    let saturated = FluidTableRow {
+        pressure_psia: 3000.0,
+        bo_rb_stb: 1.2222,
+        rs_scf_stb: 450.0,
+        bg_rb_scf: Some(0.00096),
+        ..rows[0]
+    };
     let water = TableWater { bw_rb_stb: 1.0, reference_psia: 4000.0, compressibility_1_psi: 3e-6, mu_w_cp: 0.5 };
     let fluid = Arc::new(FluidTable::new(&[saturated, rows[0], rows[1]], water).unwrap());
     let mut spec = tank_spec(1.0, 4000.0, 0.2);
@@ -357,7 +364,12 @@ fn voidage_of_the_water_injection_exercise() {
         oil_mobility_1_cp: 1.0,
     };
     let q = i("q_oil_stb_d");
-    near(state.voidage_rb(q, q * i("R_scf_stb"), 0.0), c["expected"]["voidage_rb_d_rounded_in_book"].as_f64().unwrap(), 0.006, "voidage");
+    near(
+        state.voidage_rb(q, q * i("R_scf_stb"), 0.0),
+        c["expected"]["voidage_rb_d_rounded_in_book"].as_f64().unwrap(),
+        0.006,
+        "voidage",
+    );
 }
 
 /// Common practice (Arps; Craft and Hawkins): solution-gas drive recovers 5 to 30 %; the GOR dips, peaks inside and falls.
@@ -384,10 +396,8 @@ fn a_tank_that_has_produced_starts_from_its_computed_state() {
     let tank = Tank::new(&spec, fluid.clone(), critical_gas_curves(), 510.0).unwrap();
     let taken = Cumulatives { oil_stb: 0.1, gas_scf: 55.0, ..Cumulatives::default() };
     let whole = tank.state(&tank.inventory(&taken), 3000.0).unwrap();
-    let later = TankSpec {
-        produced: Some(ProducedSpec { oil_stb: 0.06, gas_scf: 30.0, ..ProducedSpec::default() }),
-        ..spec
-    };
+    let later =
+        TankSpec { produced: Some(ProducedSpec { oil_stb: 0.06, gas_scf: 30.0, ..ProducedSpec::default() }), ..spec };
     let tank = Tank::new(&later, fluid, critical_gas_curves(), 510.0).unwrap();
     let rest = Cumulatives { oil_stb: 0.04, gas_scf: 25.0, ..Cumulatives::default() };
     let split = tank.state(&tank.inventory(&rest), 3000.0).unwrap();

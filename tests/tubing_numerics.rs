@@ -5,7 +5,8 @@ use wane::tubing::{Stream, Tubing, TubingMethod, TubingSection, TubingSpec};
 
 /// An invented oil: 34 API, gas 0.78, 620 scf/STB, bubble point 2,650 psia at 190 degF.
 fn medium_oil() -> BlackOil {
-    let spec = FluidSpec { bubble_point_psia: Some(2650.0), salinity_ppm: 35_000.0, ..FluidSpec::new(34.0, 0.78, 620.0) };
+    let spec =
+        FluidSpec { bubble_point_psia: Some(2650.0), salinity_ppm: 35_000.0, ..FluidSpec::new(34.0, 0.78, 620.0) };
     BlackOil::new(&spec, 190.0).expect("a sound fluid")
 }
 
@@ -87,7 +88,11 @@ fn default_accuracy_is_kept_over_a_spread_of_wells() {
                 }
             }
         }
-        println!("{}: worst {worst:.5} psi, mean {:.1e}, {over}/{count} above 0.002: {at}", method.name(), sum / count as f64);
+        println!(
+            "{}: worst {worst:.5} psi, mean {:.1e}, {over}/{count} above 0.002: {at}",
+            method.name(),
+            sum / count as f64
+        );
         failures.extend((worst > 0.02).then(|| format!("{}: {worst} psi at {at}", method.name())));
     }
     assert!(failures.is_empty(), "{failures:#?}");

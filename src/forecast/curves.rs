@@ -31,7 +31,12 @@ pub struct WellCurves {
 ///
 /// # Errors
 /// [`RunError`]; a date outside the run is an input fault of the key `on`.
-pub fn curves_on(spec: &FieldSpec, on: Date, rates_stb_d: &[f64], all_models: bool) -> Result<Vec<WellCurves>, RunError> {
+pub fn curves_on(
+    spec: &FieldSpec,
+    on: Date,
+    rates_stb_d: &[f64],
+    all_models: bool,
+) -> Result<Vec<WellCurves>, RunError> {
     let field = Field::new(spec)?;
     let run = trace(&field)?;
     let days = days_between(spec.period.start, on);
@@ -56,7 +61,8 @@ pub fn curves_on(spec: &FieldSpec, on: Date, rates_stb_d: &[f64], all_models: bo
 /// Curves at the start, at mid-life and at the end of natural flow (or of the run).
 pub(super) fn life_curves(field: &Field, run: &Trace, w: usize) -> Result<Vec<CurveSet>, RunError> {
     let Some(start) = run.first_flow[w] else { return Ok(Vec::new()) };
-    let (end, label) = run.flow_ends[w].map_or((run.end_days, "end of the forecast"), |e| (e.days, "end of natural flow"));
+    let (end, label) =
+        run.flow_ends[w].map_or((run.end_days, "end of the forecast"), |e| (e.days, "end of natural flow"));
     let days = [(start, "start"), (0.5 * (start + end), "mid-life"), (end, label)];
     let mut list = Vec::new();
     for (t, label) in days {

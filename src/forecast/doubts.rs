@@ -226,7 +226,11 @@ fn injector(field: &Field, forecast: &Forecast, seen: &Seen, i: usize, doubts: &
         doubts.push(doubt(
             DoubtKind::InjectionShortfall,
             &spec.name,
-            format!("{:.1} % of the volume asked for is not injected: {}", 100.0 * short / (short + injected), months(forecast, &when)),
+            format!(
+                "{:.1} % of the volume asked for is not injected: {}",
+                100.0 * short / (short + injected),
+                months(forecast, &when)
+            ),
             "the rate, injectivity or bottom-hole limit holds it back; the limit was not exceeded",
             "add an injector, improve the injectivity, or ask for less",
         ));
@@ -254,7 +258,10 @@ fn injector(field: &Field, forecast: &Forecast, seen: &Seen, i: usize, doubts: &
 }
 
 fn sanity(field: &Field, forecast: &Forecast, doubts: &mut Vec<Doubt>) {
-    let recovery = forecast.tank.last().map_or(0.0, |t| (forecast.produced_before_stb + t.oil_cum_stb) / forecast.oil_in_place_stb);
+    let recovery = forecast
+        .tank
+        .last()
+        .map_or(0.0, |t| (forecast.produced_before_stb + t.oil_cum_stb) / forecast.oil_in_place_stb);
     if field.spec.injectors.is_empty() && field.spec.tank.gas_cap_ratio <= 0.0 && recovery > HIGH_DEPLETION_RECOVERY {
         doubts.push(doubt(
             DoubtKind::Sanity,

@@ -259,11 +259,7 @@ impl<'a> Dynamics<'a> {
             return top_rate;
         }
         let right = (bounds.1, height(bounds.1));
-        let rate = if right.1 >= 0.0 {
-            right.0
-        } else {
-            brent(height, (top_rate, top), right, 1e-11 * open)
-        };
+        let rate = if right.1 >= 0.0 { right.0 } else { brent(height, (top_rate, top), right, 1e-11 * open) };
         let nudge = 1e-4 * rate;
         let slope = (height(rate + nudge) - height(rate - nudge)) / (2.0 * nudge);
         self.remember(w, |s| *s = Spot { rate_stb_d: rate, slope, top_rate_stb_d: top_rate });

@@ -70,7 +70,8 @@ impl Field {
     /// # Errors
     /// [`RunError::Input`] with every fault found, keys as in the scenario file.
     pub fn new(spec: &FieldSpec) -> Result<Self, RunError> {
-        let fluid = BlackOil::new(&spec.fluid, spec.tank.temperature_degf).map_err(|f| RunError::Input(under(f, "fluid")))?;
+        let fluid = BlackOil::new(&spec.fluid, spec.tank.temperature_degf)
+            .map_err(|f| RunError::Input(f.into_iter().map(fluid_key).collect()))?;
         let pb = fluid.initial_bubble_point_psia();
         let p_i = spec.tank.pressure_psia;
         // A hair of rounding between "bubble point" and "pressure" written alike in other units is no fault.
@@ -82,8 +83,11 @@ impl Field {
         }
         if spec.tank.gas_cap_ratio > 0.0 && pb < p_i * (1.0 - 1e-3) {
             return Err(RunError::Input(vec![
-                Fault::new("tank.gas_cap_ratio", format!("a gas cap needs the bubble point ({pb:.1} psia) at the initial pressure ({p_i:.1} psia)"))
-                    .help("state bubble_point equal to the pressure at the gas-oil contact"),
+                Fault::new(
+                    "tank.gas_cap_ratio",
+                    format!("a gas cap needs the bubble point ({pb:.1} psia) at the initial pressure ({p_i:.1} psia)"),
+                )
+                .help("state bubble_point equal to the pressure at the gas-oil contact"),
             ]));
         }
         let rel_perm = RelativePermeability::corey(&spec.tank.relative_permeability, spec.tank.connate_water);
@@ -137,14 +141,26 @@ impl Field {
         match change {
             Change::Well(i, spec) => {
                 let around = surroundings(&self.spec, &self.fluid, &self.setup.tank, &self.start);
-                next.wells[*i] =
-                    setup.wells[*i].changed(spec, &around).map_err(|f| RunError::Input(under(f, &format!("well[{i}]"))))?;
+                next.wells[*i] = setup.wells[*i]
+                    .changed(spec, &around)
+                    .map_err(|f| RunError::Input(under(f, &format!("well[{i}]"))))?;
             }
             Change::Injector(i, spec) => next.injectors[*i] = spec.clone(),
             Change::Tank(spec) => next.tank.set_flow(flow(spec), spec.water_model),
         }
         Ok(next)
     }
+}
+
+/// The key of the scenario file at which a fault of the fluid is mended.
+fn fluid_key(fault: Fault) -> Fault {
+    let table = match fault.key.as_str() {
+        "temperature" => "tank",
+        "standard_pressure" | "standard_temperature" => "standard",
+        _ => "fluid",
+    };
+    let key = fault.key.trim_start_matches("standard_").to_owned();
+    Fault { key, ..fault }.under(table)
 }
 
 fn flow(spec: &TankSpec) -> RelativePermeability {

@@ -6,9 +6,7 @@ use super::doubts::{Seen, about_result};
 use super::dynamics::{Dynamics, Mode};
 use super::field::{Field, RunError};
 use super::run::{Piece, Trace, work};
-use super::{
-    DriveIndices, Forecast, InjectedFluid, InjectorResult, InjectorRow, Period, TankRow, WellResult, WellRow,
-};
+use super::{DriveIndices, Forecast, InjectedFluid, InjectorResult, InjectorRow, Period, TankRow, WellResult, WellRow};
 use crate::tank::{Cumulatives, TankState};
 use crate::well::{Landscape, top_near};
 
@@ -55,12 +53,8 @@ pub(super) fn forecast(field: &Field, trace: Trace) -> Result<Forecast, RunError
             })
         })
         .collect::<Result<Vec<_>, RunError>>()?;
-    let injector_results = spec
-        .injectors
-        .iter()
-        .zip(injectors)
-        .map(|(i, rows)| InjectorResult { name: i.name.clone(), rows })
-        .collect();
+    let injector_results =
+        spec.injectors.iter().zip(injectors).map(|(i, rows)| InjectorResult { name: i.name.clone(), rows }).collect();
     let mut forecast = Forecast {
         start: spec.period.start,
         end_days: trace.end_days,
@@ -241,7 +235,9 @@ impl<'a> Rows<'a> {
         let asked_before = self.seen.asked[i];
         self.seen.asked[i] = asked;
         let (injected_before, mut row) = match injector.fluid {
-            InjectedFluid::Water => (before.water_cum_stb, InjectorRow { water_cum_stb: total, ..InjectorRow::default() }),
+            InjectedFluid::Water => {
+                (before.water_cum_stb, InjectorRow { water_cum_stb: total, ..InjectorRow::default() })
+            }
             InjectedFluid::Gas => (before.gas_cum_scf, InjectorRow { gas_cum_scf: total, ..InjectorRow::default() }),
         };
         let volume = total - injected_before;

@@ -4,9 +4,7 @@ use super::calendar::{date_at, days_between};
 use super::dynamics::{Dynamics, Layout, Memory, Mode, Modes, Spot, Watch};
 use super::field::{Field, RunError, Setup, injection_limit};
 use super::integrate::{Effort, End, Settings, State, Stretch, integrate};
-use super::{
-    Change, EventKind, EventRecord, FieldSpec, FlowEnd, Forecast, StopReason, Tolerance, Work,
-};
+use super::{Change, EventKind, EventRecord, FieldSpec, FlowEnd, Forecast, StopReason, Tolerance, Work};
 use crate::tank::{ClosureError, TankState};
 use crate::well::{Crossing, crossings};
 use jiff::civil::Date;
@@ -252,8 +250,13 @@ impl<'a> Run<'a> {
     /// Applies everything scheduled for this instant.
     fn scheduled(&mut self) -> Result<(), RunError> {
         let mut named = vec![false; self.setup.wells.len()];
-        let changes: Vec<_> =
-            self.field.spec.changes.iter().filter(|c| self.day(c.on) == self.t || (self.t == 0.0 && self.day(c.on) < 0.0)).collect();
+        let changes: Vec<_> = self
+            .field
+            .spec
+            .changes
+            .iter()
+            .filter(|c| self.day(c.on) == self.t || (self.t == 0.0 && self.day(c.on) < 0.0))
+            .collect();
         for change in changes {
             self.setup = Arc::new(self.field.changed(&self.setup, &change.change)?);
             self.event(&change.name, EventKind::Scheduled, change.text.clone());
@@ -368,11 +371,8 @@ impl<'a> Run<'a> {
             Err(reason) => {
                 // A dead well tested again by an event that did not help keeps its first end.
                 if self.trace.flow_ends[w].is_none() {
-                    self.trace.flow_ends[w] = Some(FlowEnd {
-                        liquid_rate_stb_d: 0.0,
-                        oil_rate_stb_d: 0.0,
-                        ..self.flow_end(w, reason)?
-                    });
+                    self.trace.flow_ends[w] =
+                        Some(FlowEnd { liquid_rate_stb_d: 0.0, oil_rate_stb_d: 0.0, ..self.flow_end(w, reason)? });
                     self.event(&name, EventKind::EndOfNaturalFlow(reason), "it did not come to flow".to_owned());
                     self.modes.wells[w] = Mode::Stopped(reason);
                     self.modes.watch_return[w] =
@@ -537,12 +537,7 @@ fn stable_below(now: &crate::well::WellNow, cap_stb_d: f64) -> Option<(Mode, Spo
 }
 
 /// Where a well belongs at a tank state: a flowing mode, or the reason why it does not flow.
-fn placement(
-    setup: &Setup,
-    dynamics: &Dynamics,
-    w: usize,
-    tank: &TankState,
-) -> (Result<Mode, StopReason>, Spot) {
+fn placement(setup: &Setup, dynamics: &Dynamics, w: usize, tank: &TankState) -> (Result<Mode, StopReason>, Spot) {
     let spec = &setup.wells[w].spec;
     let now = dynamics.well_now(w, tank);
     let open = now.curve.open_flow_stb_d();

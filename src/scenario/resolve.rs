@@ -9,7 +9,7 @@ use super::reader::{FileUsed, Reader};
 use super::section::Section;
 use super::tree::{self, Node, Table};
 use crate::fault::Fault;
-use crate::forecast::{Change, ChangeSpec, Every, FieldSpec, InjectedFluid, PeriodSpec};
+use crate::forecast::{Change, ChangeSpec, Every, Field, FieldSpec, InjectedFluid, PeriodSpec, RunError};
 use crate::units::UnitSystem;
 use jiff::civil::Date;
 use std::path::Path;
@@ -193,6 +193,10 @@ pub(super) fn problem_of(fault: &Fault, root: &Table) -> Problem {
 ///
 /// Filled when those layers are joined: `fluid::BlackOil::new`, `tubing::Tubing::new`; keys are full paths
 /// ("well[0].tubing.survey", "change[2].tubing.diameter" for the new settings of a dated event).
-pub(super) fn physics_faults(_field: &FieldSpec) -> Vec<Fault> {
-    Vec::new()
+pub(super) fn physics_faults(field: &FieldSpec) -> Vec<Fault> {
+    match Field::new(field) {
+        Ok(_) => Vec::new(),
+        Err(RunError::Input(faults)) => faults,
+        Err(other) => vec![Fault::new("tank", other.to_string())],
+    }
 }

@@ -58,8 +58,7 @@ impl Tank {
     pub fn balance(&self, since_start: &Cumulatives, state: &TankState) -> Option<Balance> {
         let b = &self.before;
         let (np, gp) = (b.oil_stb + since_start.oil_stb, b.gas_scf + since_start.gas_scf);
-        let (wp, wi) =
-            (b.water_stb + since_start.water_stb, b.injected_water_stb + since_start.injected_water_stb);
+        let (wp, wi) = (b.water_stb + since_start.water_stb, b.injected_water_stb + since_start.injected_water_stb);
         let gi = b.injected_gas_scf + since_start.injected_gas_scf;
         let (p, p_i) = (state.pressure_psia, self.initial_pressure_psia);
         let (bo, bg, bw, rs) = (state.bo_rb_stb, state.bg_rb_scf, state.bw_rb_stb, state.rs_scf_stb);

@@ -50,7 +50,9 @@ pub enum ClosureError {
         lowest_psia: f64,
     },
     /// More has been injected than fits below the highest pressure that the fluid model covers.
-    #[error("the material balance asks for more than {highest_psia:.0} psia, where the fluid model ends: too much is injected")]
+    #[error(
+        "the material balance asks for more than {highest_psia:.0} psia, where the fluid model ends: too much is injected"
+    )]
     AboveRange {
         /// Highest pressure tried, psia.
         highest_psia: f64,
@@ -148,7 +150,10 @@ impl Tank {
                 ]);
             }
             if tank.start.water_stb < 0.0 {
-                return Err(vec![Fault::new("produced.water", "more water was produced than is in place and was injected")]);
+                return Err(vec![Fault::new(
+                    "produced.water",
+                    "more water was produced than is in place and was injected",
+                )]);
             }
         }
         Ok(tank)
@@ -269,7 +274,11 @@ impl Tank {
             // A secant estimate of the distance, overshot a little to close the bracket at once.
             let slope = (there.1 - here.1) / (there.0 - here.0);
             let distance = (there.1 / slope).abs();
-            step = if distance.is_finite() { (1.05 * distance + 1e-6).clamp(1e-4, 20.0 * step + 50.0) } else { 4.0 * step };
+            step = if distance.is_finite() {
+                (1.05 * distance + 1e-6).clamp(1e-4, 20.0 * step + 50.0)
+            } else {
+                4.0 * step
+            };
             here = there;
         }
     }

@@ -80,11 +80,12 @@ impl Tank {
             WaterModel::Average => self.rel_perm.kro(so, sg, sw),
         };
         let oil_mobility = kro / (mu_o * bo);
-        let free_gor =
-            capped_ratio(self.rel_perm.krg(sg) / (mu_g * bg), oil_mobility, HIGHEST_FREE_GOR_SCF_STB);
+        let free_gor = capped_ratio(self.rel_perm.krg(sg) / (mu_g * bg), oil_mobility, HIGHEST_FREE_GOR_SCF_STB);
         let water_oil_ratio = match self.water_model {
             WaterModel::Connate => 0.0,
-            WaterModel::Average => capped_ratio(self.rel_perm.krw(sw) / (fluid.mu_w(p) * bw), oil_mobility, HIGHEST_WOR),
+            WaterModel::Average => {
+                capped_ratio(self.rel_perm.krw(sw) / (fluid.mu_w(p) * bw), oil_mobility, HIGHEST_WOR)
+            }
         };
         Ok(TankState {
             pressure_psia: p,

@@ -93,11 +93,8 @@ pub fn survey(mut h: impl FnMut(f64) -> f64, open_flow_stb_d: f64) -> Landscape 
     let humps = look.humps();
     let (_, margin_rate, margin) =
         humps.iter().copied().fold((0, 0.0, f64::NEG_INFINITY), |a, b| if b.2 > a.2 { b } else { a });
-    let chosen = humps
-        .iter()
-        .rposition(|x| x.2 > 0.0)
-        .or_else(|| humps.iter().position(|x| x.2 >= margin))
-        .unwrap_or(0);
+    let chosen =
+        humps.iter().rposition(|x| x.2 > 0.0).or_else(|| humps.iter().position(|x| x.2 >= margin)).unwrap_or(0);
     let (index, top_rate, top) = humps.get(chosen).copied().unwrap_or((0, look.points[0].0, look.points[0].1));
     let right_crossing_stb_d = (top > 0.0).then(|| {
         // The first point beyond the top at which h is no longer positive; open flow itself always is such a point.
@@ -113,7 +110,8 @@ pub fn survey(mut h: impl FnMut(f64) -> f64, open_flow_stb_d: f64) -> Landscape 
         if outside.1 > 0.0 { outside.0 } else { brent(&mut h, inside, outside, RATE_WIDTH * open_flow_stb_d) }
     });
     let valley = |from: usize, to: usize| {
-        let lowest = look.points[from..=to].iter().copied().fold((0.0, f64::INFINITY), |a, b| if b.1 < a.1 { b } else { a });
+        let lowest =
+            look.points[from..=to].iter().copied().fold((0.0, f64::INFINITY), |a, b| if b.1 < a.1 { b } else { a });
         lowest.0
     };
     let low = if chosen > 0 { valley(humps[chosen - 1].0, index) } else { 0.0 };
@@ -139,10 +137,7 @@ pub fn crossings(mut h: impl FnMut(f64) -> f64, open_flow_stb_d: f64) -> Vec<Cro
     for pair in points.windows(2) {
         let (a, b) = (pair[0], pair[1]);
         if (a.1 > 0.0) != (b.1 > 0.0) {
-            found.push(Crossing {
-                rate_stb_d: brent(&mut h, a, b, RATE_WIDTH * open_flow_stb_d),
-                stable: a.1 > 0.0,
-            });
+            found.push(Crossing { rate_stb_d: brent(&mut h, a, b, RATE_WIDTH * open_flow_stb_d), stable: a.1 > 0.0 });
         }
     }
     found

@@ -81,19 +81,12 @@ impl WellModel {
     pub fn new(spec: &WellSpec, around: &Surroundings) -> Result<Self, Vec<Fault>> {
         let tubing = Tubing::new(&spec.tubing, spec.perforations_md_ft, around.temperature_degf, around.accuracy_psi)
             .map_err(|faults| {
-                faults.into_iter().map(|f| if f.key == "perforations" { f } else { f.under("tubing") }).collect::<Vec<_>>()
-            })?;
+            faults.into_iter().map(|f| if f.key == "perforations" { f } else { f.under("tubing") }).collect::<Vec<_>>()
+        })?;
         let depth_below_datum_ft = around.datum_tvd_ft.map_or(0.0, |datum| tubing.perforations_tvd_ft() - datum);
         let (inflow, fit, points) = fit_inflow(spec, &tubing, depth_below_datum_ft, around)?;
-        let mut well = Self {
-            spec: spec.clone(),
-            tubing,
-            inflow,
-            fit,
-            tests: Vec::new(),
-            skin_factor: 1.0,
-            depth_below_datum_ft,
-        };
+        let mut well =
+            Self { spec: spec.clone(), tubing, inflow, fit, tests: Vec::new(), skin_factor: 1.0, depth_below_datum_ft };
         well.tests = well.check_tests(&points, around);
         well.skin_factor = skin_factor(spec);
         Ok(well)
@@ -162,7 +155,13 @@ impl WellModel {
     }
 
     /// The well as it faces the tank's present state. `gradient_psi_ft` is the reservoir oil's.
-    pub fn now<'a>(&'a self, fluid: &'a BlackOil, tank: &TankState, gradient_psi_ft: f64, traverses: &'a Cell<u64>) -> WellNow<'a> {
+    pub fn now<'a>(
+        &'a self,
+        fluid: &'a BlackOil,
+        tank: &TankState,
+        gradient_psi_ft: f64,
+        traverses: &'a Cell<u64>,
+    ) -> WellNow<'a> {
         let gor = tank.rs_scf_stb + tank.free_gor_scf_stb * self.spec.gor_factor;
         let wor = tank.water_oil_ratio * self.spec.water_factor;
         let water_cut = wor / (1.0 + wor);
@@ -226,7 +225,9 @@ fn fit_inflow(
         Shape::Fetkovich { n } => j / (2.0 * pe.powf(2.0 * n - 1.0)),
         Shape::Straight | Shape::Vogel => j,
     };
-    let given = |coefficient: f64, datum_psia: f64| (carried(given_shape, coefficient, at_perforations(datum_psia)), None, Vec::new());
+    let given = |coefficient: f64, datum_psia: f64| {
+        (carried(given_shape, coefficient, at_perforations(datum_psia)), None, Vec::new())
+    };
     match &inflow.coefficient {
         Coefficient::ProductivityIndex { j_stb_d_psi, reservoir_psia } => {
             Ok(given(from_j(*j_stb_d_psi, at_perforations(*reservoir_psia).min(bubble_point)), *reservoir_psia))
@@ -245,7 +246,8 @@ fn fit_inflow(
                 let flowing_psia = match test.measured {
                     Measured::Gauged { flowing_psia } => flowing_psia,
                     Measured::Separator { wellhead_psia, gor_scf_stb } => {
-                        let stream = Stream { liquid_rate_stb_d: test.rate_stb_d, water_cut: test.water_cut, gor_scf_stb };
+                        let stream =
+                            Stream { liquid_rate_stb_d: test.rate_stb_d, water_cut: test.water_cut, gor_scf_stb };
                         tubing.flowing_pressure(around.fluid, &stream, wellhead_psia).pressure_psia
                     }
                 };
@@ -262,7 +264,12 @@ fn fit_inflow(
                     RateBasis::Liquid => test.rate_stb_d,
                     RateBasis::Oil => test.rate_stb_d * (1.0 - test.water_cut),
                 };
-                points.push(TestPoint { reservoir_psia, effective_psia: reservoir_psia.min(bubble_point), flowing_psia, rate_stb_d });
+                points.push(TestPoint {
+                    reservoir_psia,
+                    effective_psia: reservoir_psia.min(bubble_point),
+                    flowing_psia,
+                    rate_stb_d,
+                });
             }
             if !faults.is_empty() {
                 return Err(faults);
@@ -312,7 +319,10 @@ impl<'a> WellNow<'a> {
     /// Flowing pressure that the tubing asks for at line pressure, psia.
     pub fn tubing_psia(&self, liquid_rate_stb_d: f64) -> f64 {
         self.traverses.set(self.traverses.get() + 1);
-        self.well.tubing.flowing_pressure(self.fluid, &self.stream(liquid_rate_stb_d), self.well.spec.line_pressure_psia).pressure_psia
+        self.well
+            .tubing
+            .flowing_pressure(self.fluid, &self.stream(liquid_rate_stb_d), self.well.spec.line_pressure_psia)
+            .pressure_psia
     }
 
     /// Height of the inflow curve above the tubing curve at line pressure, psi.
@@ -328,7 +338,10 @@ impl<'a> WellNow<'a> {
     /// Whether the flow comes near to sonic speed somewhere in the tubing at this rate.
     pub fn near_sonic(&self, liquid_rate_stb_d: f64) -> bool {
         self.traverses.set(self.traverses.get() + 1);
-        self.well.tubing.flowing_pressure(self.fluid, &self.stream(liquid_rate_stb_d), self.well.spec.line_pressure_psia).near_sonic
+        self.well
+            .tubing
+            .flowing_pressure(self.fluid, &self.stream(liquid_rate_stb_d), self.well.spec.line_pressure_psia)
+            .near_sonic
     }
 
     /// Wellhead pressure of the choked well, psia; line pressure where the march up does not reach the surface.

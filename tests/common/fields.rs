@@ -14,7 +14,11 @@ use wane::well::WellSpec;
 pub fn one_well() -> FieldSpec {
     FieldSpec {
         period: PeriodSpec { start: date(2027, 1, 1), end: date(2042, 1, 1), every: Every::Month },
-        fluid: FluidSpec { bubble_point_psia: Some(2650.0), salinity_ppm: 35_000.0, ..FluidSpec::new(34.0, 0.78, 620.0) },
+        fluid: FluidSpec {
+            bubble_point_psia: Some(2650.0),
+            salinity_ppm: 35_000.0,
+            ..FluidSpec::new(34.0, 0.78, 620.0)
+        },
         tank: TankSpec {
             oil_in_place_stb: 20e6,
             pressure_psia: 3800.0,

@@ -1,0 +1,225 @@
+//! What `forecast` prints: the answers on one screen.
+
+use super::screen::{Screen, Side};
+use crate::forecast::{Doubt, Forecast, WellResult, date_at};
+use crate::report::human::{month, number, short, span, volume};
+use crate::report::labels::{Dimension, UnitSystem, label};
+use crate::report::{CAUTION, Provenance, doubt_text, recovery, sanity};
+
+/// The summary of a forecast for people; `folder` is where the files are.
+pub fn forecast_text(forecast: &Forecast, provenance: &Provenance, folder: Option<&str>) -> String {
+    let mut s = Screen::default();
+    match &provenance.case {
+        Some(case) => s.title(&format!("{} · case {case}", provenance.title)),
+        None => s.title(&provenance.title),
+    }
+    let end = month(last_day(forecast));
+    let ended = match forecast.end_text {
+        "period ended" => String::new(),
+        why => format!(" ({why})"),
+    };
+    s.paragraph(0, 0, &format!("{} to {end}{ended} · {}", month(forecast.start), provenance.scenario_name));
+    ends(&mut s, forecast, provenance.units);
+    wells(&mut s, forecast, provenance.units);
+    tank(&mut s, forecast, provenance.units);
+    tests(&mut s, forecast, provenance.units);
+    doubts(&mut s, &forecast.doubts);
+    failed(&mut s, &sanity(forecast));
+    if let Some(folder) = folder {
+        s.line("");
+        s.paragraph(0, 2, &format!("Results: {folder} (profile.csv, yearly.csv, events.csv, summary.json, pictures)"));
+    }
+    s.line("");
+    s.quiet(CAUTION);
+    s.finish()
+}
+
+/// The last day of the run: an end at midnight belongs to the day before.
+fn last_day(forecast: &Forecast) -> jiff::civil::Date {
+    date_at(forecast.start, (forecast.end_days - 0.01).max(0.0))
+}
+
+fn ends(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
+    let rate = label(units, Dimension::LiquidRate);
+    s.heading("End of natural flow");
+    let name = forecast.wells.iter().map(|w| w.name.chars().count()).max().unwrap_or(0).min(24);
+    for well in &forecast.wells {
+        let text = match (well.natural_flow_end, well.flowing_at_end) {
+            (Some(end), false) => format!(
+                "{}: {}, at {} {} of oil, {} after the start",
+                month(end.date),
+                end.reason.text(),
+                number(rate.of(end.oil_rate_stb_d), 0),
+                rate.text,
+                span(end.days)
+            ),
+            (Some(end), true) => format!(
+                "flows at the end of the forecast ({}), after an end in {} ({})",
+                month(last_day(forecast)),
+                month(end.date),
+                end.reason.text()
+            ),
+            (None, true) => format!("still flows at the end of the forecast ({})", month(last_day(forecast))),
+            (None, false) => "never flowed".to_owned(),
+        };
+        s.paragraph(2, name + 3, &format!("{:<name$}   {text}", well.name));
+    }
+}
+
+fn wells(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
+    let (liquid, gor) = (label(units, Dimension::LiquidVolume), label(units, Dimension::GasOilRatio));
+    s.heading("Wells");
+    let plateau = |well: &WellResult| {
+        well.plateau_end.map_or_else(|| "-".to_owned(), |days| month(date_at(forecast.start, days)))
+    };
+    let rows: Vec<Vec<String>> = forecast
+        .wells
+        .iter()
+        .map(|well| {
+            let last = well.rows.last().copied().unwrap_or_default();
+            vec![
+                well.name.clone(),
+                plateau(well),
+                volume(liquid.of(last.oil_cum_stb), liquid.text),
+                volume(liquid.of(last.water_cum_stb), liquid.text),
+                format!("{} {}", number(gor.of(well.peak_gor_scf_stb), 0), gor.text),
+            ]
+        })
+        .collect();
+    let header = [
+        ("well", Side::Left),
+        ("target held until", Side::Left),
+        ("oil made", Side::Right),
+        ("water made", Side::Right),
+        ("peak gas-oil ratio", Side::Right),
+    ];
+    s.table(&header, &rows);
+}
+
+fn tank(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
+    let (liquid, gas) = (label(units, Dimension::LiquidVolume), label(units, Dimension::GasVolume));
+    let pressure = label(units, Dimension::Pressure);
+    s.heading("Tank");
+    let Some(last) = forecast.tank.last() else { return };
+    let mut pairs = vec![
+        (
+            "pressure",
+            format!(
+                "{} {} at the start, {} {} at the end",
+                number(pressure.of(forecast.start_pressure_psia), 0),
+                pressure.text,
+                number(pressure.of(last.pressure_psia), 0),
+                pressure.text
+            ),
+        ),
+        (
+            "oil made",
+            format!(
+                "{}; recovery {} % of {}",
+                volume(liquid.of(last.oil_cum_stb), liquid.text),
+                number(100.0 * recovery(forecast, last.oil_cum_stb), 1),
+                volume(liquid.of(forecast.oil_in_place_stb), liquid.text)
+            ),
+        ),
+    ];
+    let injected = |pick: fn(&crate::forecast::InjectorRow) -> f64| -> f64 {
+        forecast.injectors.iter().filter_map(|i| i.rows.last()).map(pick).sum()
+    };
+    let (water, gas_in) = (injected(|r| r.water_cum_stb), injected(|r| r.gas_cum_scf));
+    if water > 0.0 {
+        pairs.push(("water injected", volume(liquid.of(water), liquid.text)));
+    }
+    if gas_in > 0.0 {
+        pairs.push(("gas injected", volume(gas.of(gas_in), gas.text)));
+    }
+    let replaced = last.voidage_replacement_cum.map_or_else(|| "-".to_owned(), |v| number(v, 3));
+    pairs.push(("voidage replaced", format!("{replaced} of all that was withdrawn")));
+    if let Some(d) = last.drive_indices {
+        let shares = [
+            ("depletion", d.depletion),
+            ("gas cap", d.gas_cap),
+            ("rock and water", d.rock_and_water),
+            ("aquifer", d.aquifer),
+            ("injection", d.injection),
+        ];
+        let shown = shares.iter().filter(|(_, share)| share.abs() >= 5e-4);
+        let text: Vec<String> = shown.map(|(name, share)| format!("{name} {} %", number(100.0 * share, 1))).collect();
+        pairs.push(("drive", text.join(", ")));
+    }
+    pairs.push(("balance residual", format!("{:.1e}", forecast.balance_residual)));
+    s.pairs(&pairs);
+}
+
+fn tests(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
+    let (rate, pressure) = (label(units, Dimension::LiquidRate), label(units, Dimension::Pressure));
+    if forecast.wells.iter().all(|w| w.inflow_text.is_empty()) {
+        return;
+    }
+    s.heading("Inflow");
+    for well in &forecast.wells {
+        s.paragraph(2, 2, &format!("{}: {}", well.name, well.inflow_text));
+    }
+    let mut rows = Vec::new();
+    for well in &forecast.wells {
+        for test in &well.tests {
+            let miss = 100.0 * (test.model_rate_stb_d / test.rate_stb_d - 1.0);
+            let computed = if test.computed { " computed" } else { "" };
+            rows.push(vec![
+                well.name.clone(),
+                test.on.map_or_else(|| "-".to_owned(), month),
+                format!("{} {}", number(pressure.of(test.reservoir_psia), 0), pressure.text),
+                format!("{} {}{computed}", number(pressure.of(test.flowing_psia), 0), pressure.text),
+                format!("{} {}", short(rate.of(test.rate_stb_d)), rate.text),
+                format!("{} {}", short(rate.of(test.model_rate_stb_d)), rate.text),
+                if miss.is_finite() { format!("{miss:+.1} %") } else { "-".to_owned() },
+            ]);
+        }
+    }
+    if !rows.is_empty() {
+        let header = [
+            ("test", Side::Left),
+            ("when", Side::Left),
+            ("reservoir", Side::Right),
+            ("flowing", Side::Right),
+            ("measured", Side::Right),
+            ("model", Side::Right),
+            ("miss", Side::Right),
+        ];
+        s.table(&header, &rows);
+    }
+}
+
+/// The list of doubts, each with its cause and what to do.
+pub fn doubts(s: &mut Screen, doubts: &[Doubt]) {
+    if doubts.is_empty() {
+        return;
+    }
+    s.heading(if doubts.len() == 1 { "One doubt" } else { "Doubts" });
+    for doubt in doubts {
+        let text = format!(
+            "{}: {} Likely cause: {} What to do: {}",
+            doubt.about,
+            sentence(&doubt.seen),
+            sentence(&doubt.cause),
+            sentence(&doubt.advice)
+        );
+        s.warning(&format!("{}.", doubt_text(doubt.kind)), &text);
+    }
+}
+
+/// What failed.
+pub fn failed(s: &mut Screen, failed: &[String]) {
+    if failed.is_empty() {
+        return;
+    }
+    s.heading("Failed checks: do not use these results");
+    for text in failed {
+        s.failure("!", text);
+    }
+}
+
+/// With a full stop at the end.
+fn sentence(text: &str) -> String {
+    let text = text.trim();
+    if text.is_empty() || text.ends_with(['.', '!', '?']) { text.to_owned() } else { format!("{text}.") }
+}

@@ -1,0 +1,108 @@
+//! `pressure`: reservoir pressure, gas-oil ratio and water cut over time.
+
+use super::axes::{Span, headings, legend};
+use super::rates::{ends_of_flow, timeline, title};
+use super::style::{Dash, Look, QUIET, TANK, TOTAL, look};
+use super::timeline::{draw_moments, moments_height, stack};
+use super::{Anchor, Drawing};
+use crate::forecast::Forecast;
+use crate::report::Provenance;
+use crate::report::labels::{Dimension, Label, label};
+
+type Points = Vec<(f64, f64)>;
+
+const BUBBLE: Look = Look { colour: QUIET, width: 1.4, dash: Dash::Long, ..TANK };
+
+/// One panel.
+struct State {
+    title: String,
+    from_zero: bool,
+    lines: Vec<(Points, Look)>,
+}
+
+/// Pressure, gas-oil ratio and water cut of a forecast, at the ends of the periods.
+pub fn pressure_picture(forecast: &Forecast, provenance: &Provenance) -> Drawing {
+    let states = states(forecast, provenance);
+    let mut d = Drawing::new(960, (170 + 195 * states.len().max(1)) as u32);
+    let height = f64::from(d.size().1);
+    headings(&mut d, &title(provenance), "States at the end of each period", &provenance.footer());
+
+    let timeline = timeline(forecast);
+    let mut entries =
+        vec![("tank".to_owned(), TANK, false), ("bubble point of the oil in the tank".to_owned(), BUBBLE, false)];
+    if forecast.wells.len() > 1 {
+        entries.push(("all wells".to_owned(), TOTAL, false));
+        entries.extend(forecast.wells.iter().enumerate().map(|(i, w)| (w.name.clone(), look(i), false)));
+    }
+    let top = 64.0 + legend(&mut d, 64.0, &entries);
+    let moments = ends_of_flow(forecast);
+    let ys: Vec<(Span, f64)> = states.iter().map(|s| (s.span(), 1.0)).collect();
+    let strip = stack(&d, top, height, 36.0, timeline.days, &ys).first().map_or(0.0, |p| moments_height(&moments, p));
+    let panels = stack(&d, top + strip + 28.0, height - 62.0, 36.0, timeline.days, &ys);
+    for (i, (state, panel)) in states.iter().zip(&panels).enumerate() {
+        panel.draw_y(&mut d, &state.title, 4, true);
+        timeline.draw(&mut d, panel, i + 1 == states.len());
+        panel.draw_frame(&mut d);
+        for (points, look) in &state.lines {
+            panel.draw_line(&mut d, points.iter().copied(), *look);
+        }
+    }
+    draw_moments(&mut d, &panels, top, &moments);
+    if states.len() == 2 {
+        d.text((936.0, height - 14.0), 10.5, Anchor::Right, QUIET, "no water is produced");
+    }
+    d
+}
+
+impl State {
+    fn span(&self) -> Span {
+        let values = self.lines.iter().flat_map(|(points, _)| points.iter().map(|p| p.1));
+        let span = Span::of(values).unwrap_or(Span::new(0.0, 1.0));
+        if self.from_zero {
+            Span::from_zero(span.high, self.title.starts_with("Water cut"))
+        } else {
+            span.rounded(false)
+        }
+    }
+}
+
+/// Values at the ends of periods, or at the end of the run inside the last; gaps are not finite.
+fn at_ends(forecast: &Forecast, unit: Label, value: impl Fn(usize) -> Option<f64>) -> Points {
+    let periods = forecast.periods.iter().enumerate();
+    periods.map(|(i, p)| (p.run_days.min(p.end_days), value(i).map_or(f64::NAN, |v| unit.of(v)))).collect()
+}
+
+fn states(forecast: &Forecast, provenance: &Provenance) -> Vec<State> {
+    let pressure = label(provenance.units, Dimension::Pressure);
+    let gor = label(provenance.units, Dimension::GasOilRatio);
+    let tank = |pick: fn(&crate::forecast::TankRow) -> Option<f64>| move |i: usize| forecast.tank.get(i).and_then(pick);
+    let wells = |unit: Label, pick: fn(&crate::forecast::WellRow) -> Option<f64>| {
+        let several = forecast.wells.len() > 1;
+        let numbered = forecast.wells.iter().enumerate().filter(move |_| several);
+        numbered
+            .map(|(w, well)| (at_ends(forecast, unit, |i| well.rows.get(i).and_then(pick)), look(w)))
+            .collect::<Vec<_>>()
+    };
+    let mut tank_pressure = vec![(0.0, pressure.of(forecast.start_pressure_psia))];
+    tank_pressure.extend(at_ends(forecast, pressure, tank(|t| Some(t.pressure_psia))));
+    let bubble = at_ends(forecast, pressure, tank(|t| Some(t.bubble_point_psia)));
+    let all = if forecast.wells.len() > 1 { TOTAL } else { look(0) };
+    let mut gor_lines = vec![(at_ends(forecast, gor, tank(|t| t.gor_scf_stb)), all)];
+    gor_lines.extend(wells(gor, |r| r.gor_scf_stb));
+    let fraction = Label::fraction();
+    let mut water_lines = vec![(at_ends(forecast, fraction, tank(|t| t.water_cut)), all)];
+    water_lines.extend(wells(fraction, |r| r.water_cut));
+
+    let mut states = vec![
+        State {
+            title: format!("Reservoir pressure, {}", pressure.text),
+            from_zero: false,
+            lines: vec![(bubble, BUBBLE), (tank_pressure, TANK)],
+        },
+        State { title: format!("Producing gas-oil ratio, {}", gor.text), from_zero: true, lines: gor_lines },
+    ];
+    if forecast.wells.iter().any(|w| w.rows.iter().any(|r| r.water_stb > 0.0)) {
+        states.push(State { title: "Water cut, fraction of liquid".to_owned(), from_zero: true, lines: water_lines });
+    }
+    states
+}

@@ -1,0 +1,189 @@
+//! `rates`: oil, gas, water and injection rates over time, each well and the total.
+
+use super::Drawing;
+use super::axes::{Span, headings, legend};
+use super::style::{Look, TOTAL, look};
+use super::timeline::{Moment, Timeline, draw_moments, moments_height, stack};
+use crate::forecast::{Forecast, InjectorRow, Period, TankRow, WellResult, WellRow};
+use crate::report::Provenance;
+use crate::report::human::{self, short_month};
+use crate::report::labels::{Dimension, label};
+
+const WIDTH: u32 = 960;
+
+/// One line of a panel: stretches of time, days from the start, with the mean rate in each.
+struct Series {
+    look: Look,
+    stretches: Vec<(f64, f64, f64)>,
+}
+
+/// One panel: its name, its unit and its lines.
+struct Stream {
+    name: &'static str,
+    dimension: Dimension,
+    series: Vec<Series>,
+}
+
+/// The rates of a forecast as a picture: averages over the calendar period, drawn as steps.
+pub fn rates_picture(forecast: &Forecast, provenance: &Provenance) -> Drawing {
+    let streams = streams(forecast);
+    let mut d = Drawing::new(WIDTH, (170 + 190 * streams.len().max(1)) as u32);
+    let height = f64::from(d.size().1);
+    headings(
+        &mut d,
+        &title(provenance),
+        "Calendar-day rates, averages over each period or up to the end of flow inside it",
+        &provenance.footer(),
+    );
+
+    let timeline = timeline(forecast);
+    let mut top = 64.0;
+    if forecast.wells.len() > 1 || !forecast.injectors.is_empty() {
+        top += legend(&mut d, top, &legend_entries(forecast));
+    }
+    let moments = ends_of_flow(forecast);
+    let panels_of = |d: &Drawing, top: f64| {
+        let ys: Vec<(Span, f64)> = streams.iter().map(|s| (axis(s, provenance).0, 1.0)).collect();
+        stack(d, top, height - 62.0, 36.0, timeline.days, &ys)
+    };
+    let strip = panels_of(&d, top).first().map_or(0.0, |p| moments_height(&moments, p));
+    let panels = panels_of(&d, top + strip + 28.0);
+    for (i, (stream, panel)) in streams.iter().zip(&panels).enumerate() {
+        let (_, factor, unit) = axis(stream, provenance);
+        panel.draw_y(&mut d, &format!("{} rate, {unit}", stream.name), 4, true);
+        timeline.draw(&mut d, panel, i + 1 == streams.len());
+        panel.draw_frame(&mut d);
+        for series in &stream.series {
+            panel.draw_line(&mut d, series.steps(factor), series.look);
+        }
+    }
+    draw_moments(&mut d, &panels, top, &moments);
+    if let (Some(panel), Some(stream)) = (panels.first(), streams.first()) {
+        let (_, factor, _) = axis(stream, provenance);
+        for i in 0..forecast.wells.len() {
+            if let Some((days, rate)) = last_rate(forecast, i) {
+                panel.draw_mark(&mut d, (days, rate * factor), look(i), 4.5);
+            }
+        }
+    }
+    d
+}
+
+/// Title and case.
+pub(super) fn title(provenance: &Provenance) -> String {
+    match &provenance.case {
+        Some(case) => format!("{} · case {case}", provenance.title),
+        None => provenance.title.clone(),
+    }
+}
+
+pub(super) fn timeline(forecast: &Forecast) -> Timeline {
+    let end = forecast.periods.last().map_or(forecast.end_days, |p| p.end_days);
+    Timeline { start: forecast.start, days: Span::new(0.0, end) }
+}
+
+pub(super) fn ends_of_flow(forecast: &Forecast) -> Vec<Moment> {
+    let ends = forecast.wells.iter().enumerate().filter_map(|(i, w)| w.natural_flow_end.map(|end| (i, w, end)));
+    ends.map(|(i, w, end)| Moment {
+        days: end.days,
+        text: format!("{} ends {}", w.name, short_month(end.date)),
+        look: look(i),
+    })
+    .collect()
+}
+
+fn legend_entries(forecast: &Forecast) -> Vec<(String, Look, bool)> {
+    let mut entries: Vec<(String, Look, bool)> = Vec::new();
+    if forecast.wells.len() > 1 {
+        entries.push(("all wells".to_owned(), TOTAL, false));
+    }
+    for (i, well) in forecast.wells.iter().enumerate() {
+        entries.push((well.name.clone(), look(i), well.natural_flow_end.is_some()));
+    }
+    for (i, injector) in forecast.injectors.iter().enumerate() {
+        entries.push((format!("injector {}", injector.name), look(forecast.wells.len() + i), false));
+    }
+    entries
+}
+
+fn streams(forecast: &Forecast) -> Vec<Stream> {
+    let wells = |pick: fn(&WellRow) -> f64, total: fn(&TankRow) -> f64| {
+        let mut series = Vec::new();
+        if forecast.wells.len() > 1 {
+            series.push(Series { look: TOTAL, stretches: total_stretches(forecast, total) });
+        }
+        for (i, well) in forecast.wells.iter().enumerate() {
+            series.push(Series { look: look(i), stretches: well_stretches(forecast, well, pick) });
+        }
+        series
+    };
+    let injectors = |pick: fn(&InjectorRow) -> f64| {
+        let numbered = forecast.injectors.iter().enumerate();
+        let series = numbered.map(|(i, injector)| Series {
+            look: look(forecast.wells.len() + i),
+            stretches: forecast.periods.iter().zip(&injector.rows).map(|(p, r)| mean(p, p.run_days, pick(r))).collect(),
+        });
+        series.filter(Series::flows).collect::<Vec<_>>()
+    };
+    let all = [
+        Stream { name: "Oil", dimension: Dimension::LiquidRate, series: wells(|r| r.oil_stb, |t| t.oil_stb) },
+        Stream { name: "Gas", dimension: Dimension::GasRate, series: wells(|r| r.gas_scf, |t| t.gas_scf) },
+        Stream { name: "Water", dimension: Dimension::LiquidRate, series: wells(|r| r.water_stb, |t| t.water_stb) },
+        Stream { name: "Injected water", dimension: Dimension::LiquidRate, series: injectors(|r| r.water_stb) },
+        Stream { name: "Injected gas", dimension: Dimension::GasRate, series: injectors(|r| r.gas_scf) },
+    ];
+    // A stream that never flows gets no panel; oil always has one.
+    all.into_iter().filter(|s| s.name == "Oil" || s.series.iter().any(Series::flows)).collect()
+}
+
+impl Series {
+    fn flows(&self) -> bool {
+        self.stretches.iter().any(|s| s.2 > 0.0)
+    }
+
+    /// A staircase, broken where there is no rate.
+    fn steps(&self, factor: f64) -> impl Iterator<Item = (f64, f64)> + '_ {
+        self.stretches.iter().flat_map(move |&(from, to, rate)| [(from, rate * factor), (to, rate * factor)])
+    }
+}
+
+/// The mean rate from the start of `period` to `until`.
+fn mean(period: &Period, until: f64, volume: f64) -> (f64, f64, f64) {
+    let length = until - period.start_days;
+    (period.start_days, until, if length > 0.0 { volume / length } else { f64::NAN })
+}
+
+/// The tank's mean rates; the last period counts up to the end of the run.
+pub(super) fn total_stretches(forecast: &Forecast, pick: fn(&TankRow) -> f64) -> Vec<(f64, f64, f64)> {
+    forecast.periods.iter().zip(&forecast.tank).map(|(p, t)| mean(p, p.run_days.min(p.end_days), pick(t))).collect()
+}
+
+/// A well's mean rates; the period in which it ends counts up to its end, and periods without flow are gaps.
+fn well_stretches(forecast: &Forecast, well: &WellResult, pick: fn(&WellRow) -> f64) -> Vec<(f64, f64, f64)> {
+    let end = well.natural_flow_end.map_or(f64::INFINITY, |end| end.days);
+    let rows = forecast.periods.iter().zip(&well.rows);
+    rows.map(|(p, r)| {
+        let run = p.run_days.min(p.end_days);
+        let until = if end > p.start_days { run.min(end) } else { run };
+        mean(p, until, if r.flowing_days > 0.0 { pick(r) } else { f64::NAN })
+    })
+    .collect()
+}
+
+/// The scale of a stream, the factor from oilfield units to it, and its unit in words.
+fn axis(stream: &Stream, provenance: &Provenance) -> (Span, f64, String) {
+    let unit = label(provenance.units, stream.dimension);
+    let rates = stream.series.iter().flat_map(|s| s.stretches.iter().map(|s| unit.of(s.2)));
+    let highest = Span::of(rates).map_or(1.0, |s| s.high);
+    let (divisor, word) = human::scale(highest);
+    (Span::from_zero(highest / divisor, false), unit.of(1.0) / divisor, format!("{word}{}", unit.text))
+}
+
+/// Where a well's line ends: its oil rate at the end of natural flow, as a calendar-day rate.
+fn last_rate(forecast: &Forecast, index: usize) -> Option<(f64, f64)> {
+    let well = forecast.wells.get(index)?;
+    let end = well.natural_flow_end?;
+    let before = well.rows.iter().zip(&forecast.periods).rfind(|(r, p)| p.end_days <= end.days && r.flowing_days > 0.0);
+    let uptime = before.map_or(1.0, |(r, p)| (r.flowing_days / (p.end_days - p.start_days)).min(1.0));
+    Some((end.days, end.oil_rate_stb_d * uptime))
+}
