@@ -320,6 +320,10 @@ fn hold(value: f64, (low, high): (f64, f64)) -> f64 {
 }
 
 impl ReservoirFluid for BlackOil {
+    fn closure_limit_psia(&self) -> f64 {
+        Self::closure_limit_psia(self)
+    }
+
     fn rs_saturated(&self, pressure_psia: f64) -> f64 {
         self.standing.rs_scf_stb(self.tuning_factor * self.held_pressure(pressure_psia), self.temperature_degf)
     }

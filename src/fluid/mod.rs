@@ -58,6 +58,11 @@ pub trait ReservoirFluid: Send + Sync {
     fn mu_w(&self, pressure_psia: f64) -> f64;
     /// The pressures between which the model is used, psia.
     fn pressure_range_psia(&self) -> (f64, f64);
+    /// Highest pressure up to which the volume of saturated oil and its gas falls with pressure, psia. Beyond it the balance
+    /// of a tank with free gas may have several roots.
+    fn closure_limit_psia(&self) -> f64 {
+        f64::INFINITY
+    }
 }
 
 /// Specific gravity (water = 1) of oil of a gravity in degrees API: 141.5/(131.5 + API).

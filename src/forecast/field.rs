@@ -135,6 +135,22 @@ impl Field {
         &self.fluid
     }
 
+    /// Faults of the settings that dated events bring, keys under "change[i]".
+    pub fn change_faults(&self) -> Vec<Fault> {
+        let check = |(i, change): (usize, &super::ChangeSpec)| match self.changed(&self.setup, &change.change) {
+            Err(RunError::Input(faults)) => faults
+                .into_iter()
+                .map(|f| {
+                    // The change holds the whole well: its path replaces that of the well.
+                    let key = f.key.split_once("].").map_or(f.key.clone(), |(_, key)| key.to_owned());
+                    Fault { key, ..f }.under(&format!("change[{i}]"))
+                })
+                .collect(),
+            _ => Vec::new(),
+        };
+        self.spec.changes.iter().enumerate().flat_map(check).collect()
+    }
+
     /// The setup after a dated event.
     pub(super) fn changed(&self, setup: &Setup, change: &Change) -> Result<Setup, RunError> {
         let mut next = setup.clone();

@@ -231,7 +231,7 @@ impl<'a> Run<'a> {
     }
 
     fn balance_gone(&mut self, error: ClosureError) -> Result<bool, RunError> {
-        if let ClosureError::AboveRange { .. } | ClosureError::NotANumber = error {
+        if !matches!(error, ClosureError::NoRoot { .. }) {
             return Err(RunError::TooMuchInjected { days: self.t, source: error });
         }
         for w in 0..self.modes.wells.len() {

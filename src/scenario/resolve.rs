@@ -191,11 +191,10 @@ pub(super) fn problem_of(fault: &Fault, root: &Table) -> Problem {
 
 /// Faults that the layers of the physics find when they are built from these data.
 ///
-/// Filled when those layers are joined: `fluid::BlackOil::new`, `tubing::Tubing::new`; keys are full paths
-/// ("well[0].tubing.survey", "change[2].tubing.diameter" for the new settings of a dated event).
+/// Keys are full paths ("well[0].tubing.survey", "change[2].tubing.diameter" for the new settings of a dated event).
 pub(super) fn physics_faults(field: &FieldSpec) -> Vec<Fault> {
     match Field::new(field) {
-        Ok(_) => Vec::new(),
+        Ok(built) => built.change_faults(),
         Err(RunError::Input(faults)) => faults,
         Err(other) => vec![Fault::new("tank", other.to_string())],
     }
