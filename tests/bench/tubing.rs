@@ -8,7 +8,8 @@ fn main() {
 }
 
 fn fluid() -> BlackOil {
-    let spec = FluidSpec { bubble_point_psia: Some(2650.0), salinity_ppm: 35_000.0, ..FluidSpec::new(34.0, 0.78, 620.0) };
+    let spec =
+        FluidSpec { bubble_point_psia: Some(2650.0), salinity_ppm: 35_000.0, ..FluidSpec::new(34.0, 0.78, 620.0) };
     BlackOil::new(&spec, 190.0).unwrap_or_else(|faults| panic!("{faults:?}"))
 }
 
