@@ -222,11 +222,7 @@ impl Reader {
             }
         };
         match parse(text, dimension, self.atmospheric_pressure_psia) {
-            Ok(value) => {
-                let digits =
-                    |x: f64| if x == 0.0 || (1e-3..1e7).contains(&x.abs()) { format!("{x}") } else { format!("{x:e}") };
-                self.within(node, name, value, limits, &|x| format!("{} {unit}", digits(x)))
-            }
+            Ok(value) => self.within(node, name, value, limits, unit),
             Err(QuantityError { message, help }) => {
                 let mut problem = Problem::new(node.at.clone(), format!("`{name}`: {message}"))
                     .label(format!("{} is expected", dimension.with_article()));
@@ -237,20 +233,20 @@ impl Reader {
         }
     }
 
-    fn within(&mut self, node: &Node, name: &str, value: f64, limits: Limits, show: &dyn Fn(f64) -> String) -> f64 {
+    fn within(&mut self, node: &Node, name: &str, value: f64, limits: Limits, unit: &str) -> f64 {
         if limits.allow(value) {
             return value;
         }
-        let low = if limits.low_allowed { "at least" } else { "above" };
-        let range = format!("{low} {} and at most {}", show(limits.low), show(limits.high));
-        let message = if value.is_finite() {
-            let beyond = if value > limits.high { "too large" } else { "too small" };
-            let beyond = if value < 0.0 && limits.low >= 0.0 { "negative" } else { beyond };
-            format!("`{name}` is {beyond}")
-        } else {
+        let message = if !value.is_finite() {
             format!("`{name}` is not a finite number")
+        } else if value < 0.0 && limits.low >= 0.0 {
+            format!("`{name}` is negative")
+        } else if value > limits.high {
+            format!("`{name}` is too large")
+        } else {
+            format!("`{name}` is too small")
         };
-        self.note(Problem::new(node.at.clone(), message).label(format!("it must be {range}")));
+        self.note(Problem::new(node.at.clone(), message).label(format!("it must be {}", limits.text(unit))));
         f64::NAN
     }
 
@@ -306,7 +302,7 @@ impl Reader {
             }
         };
         let before = self.problems.len();
-        let checked = self.within(node, rule.path, value, limits, &|x| format!("{x}"));
+        let checked = self.within(node, rule.path, value, limits, "");
         if fraction
             && value > 1.0
             && value <= 100.0
