@@ -268,11 +268,12 @@ impl<'a, M: Hydraulics> March<'a, M> {
                 self.unwatched(stretch, progress, end_md_ft, &mut branch, &mut start);
                 continue;
             }
-            for _ in 0..6 {
+            // Harder with every repetition, and no change at the threshold.
+            for repetition in 1..=6 {
                 if step.error_psi <= self.tolerance_psi || progress.steps > MOST_STEPS {
                     break;
                 }
-                let factor = fifth_root(self.tolerance_psi / step.error_psi).max(0.2);
+                let factor = fifth_root(self.tolerance_psi / step.error_psi).powi(repetition).max(0.2);
                 wish *= factor;
                 length *= factor;
                 switched = false;
