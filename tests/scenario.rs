@@ -298,3 +298,18 @@ fn a_fluid_needs_nothing_else() {
     assert_eq!((fluid.fluid.gas_gravity, fluid.temperature_degf, fluid.pressure_psia), (0.8, 190.0, None));
     assert!(document.resolve_fluid(&["fluid.gas_gravity=8".to_owned()]).is_err());
 }
+
+#[test]
+fn a_tank_that_took_water_must_say_how_it_flows() {
+    let start = REFERENCE.find("[[injector]]").unwrap();
+    let end = REFERENCE.find("[[well]]").unwrap();
+    let text = format!("{}{}", &REFERENCE[..start], &REFERENCE[end..])
+        .replace("\"injector.OI-1.voidage_replacement\"", "\"well.OP-1.skin\"");
+    let text = text.replace("[tank.water]\nmodel = \"average\"", "[tank.water]\n#");
+    let document = Document::parse("t.toml", &text).unwrap();
+    assert_eq!(document.resolve(None, &[]).unwrap().field.tank.water_model, WaterModel::Connate);
+    assert!(document.resolve(None, &["tank.produced.injected_water=0 STB".to_owned()]).is_ok());
+    let problems =
+        document.resolve(None, &["tank.produced.injected_water=2 MMSTB".to_owned()]).map(|_| ()).unwrap_err();
+    assert!(problems.to_string().contains("`tank.water.model` does not say"), "{problems}");
+}
