@@ -126,7 +126,7 @@ pub(super) fn tank(tank: &TankSpec, fluid: &FluidSpec, atmospheric_pressure_psia
     out
 }
 
-/// One well; `path` is where it stands ("well[0]").
+/// One well; `path` is where it stands (`well[0]`).
 pub(super) fn well(
     path: &str,
     well: &WellSpec,

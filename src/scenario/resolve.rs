@@ -191,7 +191,7 @@ pub(super) fn problem_of(fault: &Fault, root: &Table) -> Problem {
 /// Faults that the layers of the physics find when they are built from these data.
 ///
 /// Filled when those layers are joined: `fluid::BlackOil::new`, `tubing::Tubing::new`; keys are full paths
-/// ("well[0].tubing.survey", "change[2].tubing.diameter" for the new settings of a dated event).
+/// (`well[0].tubing.survey`, `change[2].tubing.diameter` for the new settings of a dated event).
 pub(super) fn physics_faults(_field: &FieldSpec) -> Vec<Fault> {
     Vec::new()
 }
