@@ -363,6 +363,58 @@ fn faults_in_settings_point_into_the_setting() {
 }
 
 #[test]
+fn clashes_of_several_values_are_found() {
+    let document = Document::parse("good.toml", GOOD).unwrap();
+    let test =
+        |what: &str| format!("well.OP-1.inflow.test=[{{ reservoir = \"3600 psia\", rate = \"796 STB/d\", {what} }}]");
+    let (swapped, vacuum) =
+        (test("wellhead = \"3700 psia\", gor = \"620 scf/STB\""), test("wellhead = \"4 psia\", gor = \"620 scf/STB\""));
+    let low = test("flowing = \"4 psia\"");
+    let cases: Vec<(Vec<&str>, &str)> = vec![
+        (vec!["fluid.h2s=0.6", "fluid.co2=0.5"], "leave no hydrocarbon gas"),
+        (vec!["fluid.separator_pressure=100 psia"], "`fluid.separator_pressure` stands alone"),
+        (vec!["fluid.separator_temperature=100 degF"], "`fluid.separator_temperature` stands alone"),
+        (vec!["tank.produced.oil=43 MMSTB"], "more oil was produced than there was in place"),
+        (vec!["tank.produced.gas=27 Bscf"], "more gas was produced than there was in solution"),
+        (vec!["tank.relative_permeability.critical_gas=0.6"], "critical gas leave no mobile oil"),
+        (vec!["well.OP-1.drainage_radius=2 ft", "well.OP-1.wellbore_radius=1 ft"], "hardly larger than the wellbore's"),
+        // r = ln(0.472 * 1000 / 0.354) = 7.195 by hand, so -6.3 is too low and -6.1 is not.
+        (
+            vec!["well.OP-1.drainage_radius=1000 ft", "well.OP-1.wellbore_radius=0.354 ft", "well.OP-1.skin=-6.3"],
+            "above -6.20",
+        ),
+        (vec!["well.OP-1.skin_at_test=-6"], "a skin of -6 makes the inflow infinite or negative"),
+        (vec![&swapped], "the wellhead pressure is not below the reservoir pressure"),
+        (vec![&vacuum], "the wellhead pressure lies below atmospheric pressure"),
+        (vec![&low], "the flowing pressure lies below atmospheric pressure"),
+        (vec!["well.OP-1.inflow.reservoir=3000 psia"], "each test states its own reservoir pressure"),
+        (
+            vec!["well.OP-1.inflow.method=vogel", "well.OP-1.inflow.exponent=0.9"],
+            "belongs to the method fetkovich alone",
+        ),
+        (vec!["well.OP-1.inflow.coefficient=0.001 STB/d/psi^2n"], "depends on the exponent n, which is not given"),
+        (vec!["well.OP-1.inflow.exponent=0.9", "well.OP-1.inflow.coefficient=-0.001 STB/d/psi^2n"], "must be above 0"),
+        (vec!["well.OP-1.tubing.survey=[[\"0 ft\",\"0 ft\"],[\"8700 ft\",\"0 ft\"]]"], "the survey never goes down"),
+        (
+            vec!["injector.OI-1.rate=5000 STB/d", "injector.OI-1.rate_limit=4000 STB/d"],
+            "above the injector's own rate_limit",
+        ),
+        (vec!["injector.OI-1.bottomhole_limit=9 psia"], "the limit lies below atmospheric pressure"),
+        (vec!["injector.OI-1.end=2028-01-01"], "it ends on 2028-01-01 but starts on 2029-01-01"),
+        (vec!["injector.OI-1.start=2050-01-01"], "it starts after the forecast has ended"),
+    ];
+    for (sets, words) in cases {
+        let sets: Vec<String> = sets.into_iter().map(str::to_owned).collect();
+        let problems = document.resolve(None, &sets).map(|_| ()).expect_err(words);
+        assert_eq!(problems.list.len(), 1, "{problems}");
+        assert!(said(&problems.list[0]).contains(words), "{words}\n{problems}");
+        assert!(matches!(problems.list[0].at, Location::Setting { .. }), "{problems}");
+    }
+    let sets = ["well.OP-1.drainage_radius=1000 ft", "well.OP-1.wellbore_radius=0.354 ft", "well.OP-1.skin=-6.1"];
+    assert!(document.resolve(None, &sets.map(str::to_owned)).is_ok());
+}
+
+#[test]
 fn a_case_that_does_not_exist_is_answered_with_those_that_do() {
     let document = Document::parse("good.toml", GOOD).unwrap();
     let problems = document.resolve(Some("no injektion"), &[]).map(|_| ()).expect_err("no such case");
