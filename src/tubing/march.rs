@@ -34,6 +34,9 @@ const BEND_SHARE: f64 = 1e-4;
 const LEAST_BRANCH_FT: f64 = 1e-4;
 /// First stretch to be left unwatched, ft; it doubles each time.
 const UNWATCHED_FT: f64 = 1.0;
+/// How often a step is repeated, and by how much its bar rises each time.
+const MOST_REPETITIONS: u32 = 4;
+const BAR_RISE: f64 = 6.0;
 /// Steps after which the rest of a stretch is taken in one.
 const MOST_STEPS: u32 = 4000;
 /// The march upwards gives up below this pressure, psia.
@@ -268,16 +271,19 @@ impl<'a, M: Hydraulics> March<'a, M> {
                 self.unwatched(stretch, progress, end_md_ft, &mut branch, &mut start);
                 continue;
             }
-            // Harder with every repetition, and no change at the threshold.
-            for repetition in 1..=6 {
-                if step.error_psi <= self.tolerance_psi || progress.steps > MOST_STEPS {
+            // The bar rises with every repetition: where the error does not fall with the step, a chain of repetitions
+            // would magnify the smallest change of its beginning.
+            let mut bar = self.tolerance_psi;
+            for _ in 0..MOST_REPETITIONS {
+                if step.error_psi <= bar || progress.steps > MOST_STEPS {
                     break;
                 }
-                let factor = fifth_root(self.tolerance_psi / step.error_psi).powi(repetition).max(0.2);
+                let factor = (bar / step.error_psi).sqrt().sqrt().max(0.2);
                 wish *= factor;
                 length *= factor;
                 switched = false;
                 step = self.step(stretch, md, p, start, direction * length, branch);
+                bar *= BAR_RISE;
             }
             progress.wish_ft = self.next_wish(wish, length, step.error_psi);
             if length >= rest {
