@@ -6,6 +6,7 @@ pub mod constants;
 mod output;
 mod quantity;
 mod table;
+mod text;
 
 pub use output::{OutputUnit, UnitSystem};
 pub use quantity::{QuantityError, parse, parse_flow_coefficient, parse_number};
