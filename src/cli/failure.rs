@@ -1,9 +1,11 @@
 //! How a command fails: what is printed on standard error, and with which exit status.
 
+use crate::fault::Fault;
 use crate::forecast::RunError;
 use crate::report::ReportError;
 use crate::report::folder::FolderError;
 use crate::scenario::{LoadError, Problems, Scenario};
+use crate::units::UnitSystem;
 use std::io::{self, Write};
 use std::process::ExitCode;
 
@@ -41,11 +43,11 @@ impl Failure {
     pub fn of_run(error: RunError, scenario: &Scenario, case: Option<&str>) -> Self {
         let RunError::Input(faults) = error else {
             let which = case.map_or_else(String::new, |case| format!("case {case}: "));
-            return Self::Run(format!("{which}{error}"));
+            return Self::Run(format!("{which}{}", scenario.units.tell(&error.to_string())));
         };
         let mut all: Option<Problems> = None;
         for fault in &faults {
-            let found = scenario.problem_at(fault);
+            let found = scenario.problem_at(&told(fault, scenario.units));
             match &mut all {
                 None => all = Some(found),
                 Some(so_far) => so_far.list.extend(found.list),
@@ -56,6 +58,10 @@ impl Failure {
             None => Self::Run("the input cannot be run".to_owned()),
         }
     }
+}
+
+fn told(fault: &Fault, units: UnitSystem) -> Fault {
+    Fault { message: units.tell(&fault.message), help: fault.help.as_deref().map(|h| units.tell(h)), ..fault.clone() }
 }
 
 /// A file name or a value from a file may hold control characters, which would garble a terminal.

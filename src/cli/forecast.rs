@@ -4,10 +4,11 @@ use super::args::ForecastArgs;
 use super::context::{provenance, scenario_copy, shown, target};
 use super::failure::Failure;
 use super::{Done, forecast_text, output};
-use crate::forecast::{Forecast, RunError};
+use crate::forecast::{EventKind, Forecast, RunError};
 use crate::report::folder::ResultFolder;
 use crate::report::{forecast_files, sanity, summary_json};
 use crate::scenario::{Document, Scenario, data_doubts};
+use crate::units::UnitSystem;
 
 pub fn run(args: &ForecastArgs) -> Result<Done, Failure> {
     let file = &args.common.file;
@@ -43,7 +44,22 @@ pub fn run_one(scenario: &Scenario) -> Result<Forecast, RunError> {
     let mut doubts = data_doubts(scenario);
     doubts.extend(forecast.doubts.iter().filter(|d| !doubts.contains(d)).cloned().collect::<Vec<_>>());
     forecast.doubts = doubts;
+    tell(&mut forecast, scenario.units);
     Ok(forecast)
+}
+
+/// Puts the sentences of the engine, which speaks oilfield units, into the scenario's units.
+fn tell(forecast: &mut Forecast, units: UnitSystem) {
+    for doubt in &mut forecast.doubts {
+        doubt.seen = units.tell(&doubt.seen);
+    }
+    for well in &mut forecast.wells {
+        well.inflow_text = units.tell(&well.inflow_text);
+    }
+    // The text of a scheduled event is the user's own.
+    for event in forecast.events.iter_mut().filter(|e| e.kind != EventKind::Scheduled) {
+        event.note = units.tell(&event.note);
+    }
 }
 
 /// Failed checks on standard error, where the summary does not show them.

@@ -1,5 +1,6 @@
 //! A finished forecast, as plain data: what the reports read.
 
+use super::InjectedFluid;
 pub use crate::well::TestCheck;
 use jiff::civil::Date;
 
@@ -280,6 +281,8 @@ pub struct WellResult {
 pub struct InjectorResult {
     /// Name.
     pub name: String,
+    /// Water or gas.
+    pub fluid: InjectedFluid,
     /// A row per period.
     pub rows: Vec<InjectorRow>,
 }
@@ -346,6 +349,8 @@ pub struct Work {
 pub struct Forecast {
     /// First day.
     pub start: Date,
+    /// The day after the last of the forecast period, whether or not the run came so far.
+    pub period_end: Date,
     /// Days from the start at which the run stopped.
     pub end_days: f64,
     /// Why the run stopped ("period ended", "no well flows", "balance has no solution").

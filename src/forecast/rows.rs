@@ -54,10 +54,15 @@ pub(super) fn forecast(field: &Field, trace: &Trace) -> Result<Forecast, RunErro
             })
         })
         .collect::<Result<Vec<_>, RunError>>()?;
-    let injector_results =
-        spec.injectors.iter().zip(injectors).map(|(i, rows)| InjectorResult { name: i.name.clone(), rows }).collect();
+    let injector_results = spec
+        .injectors
+        .iter()
+        .zip(injectors)
+        .map(|(i, rows)| InjectorResult { name: i.name.clone(), fluid: i.fluid, rows })
+        .collect();
     let mut forecast = Forecast {
         start: spec.period.start,
+        period_end: spec.period.end,
         end_days: trace.end_days,
         end_text: trace.end_text,
         oil_in_place_stb: spec.tank.oil_in_place_stb,

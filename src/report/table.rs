@@ -1,7 +1,7 @@
 //! The profile as rows: one per period and well, injector and tank; the same rows by calendar year.
 
 use super::human::days_between;
-use crate::forecast::{DriveIndices, Forecast, Period, TankRow};
+use crate::forecast::{DriveIndices, Forecast, InjectedFluid, Period, TankRow};
 use jiff::civil::{Date, date};
 
 /// What stands in a row. `None` is an empty cell: not applicable.
@@ -149,7 +149,7 @@ pub(super) fn row(forecast: &Forecast, index: usize, subject: Subject) -> Option
             let injector = forecast.injectors.get(i)?;
             let r = injector.rows.get(index)?;
             // The fluid shows in what was injected; one that never injected anything counts as water.
-            let gas = injector.rows.iter().any(|row| row.gas_cum_scf > 0.0);
+            let gas = injector.fluid == InjectedFluid::Gas;
             let values = Values {
                 injected_water_stb: (!gas).then_some(r.water_stb),
                 injected_gas_scf: gas.then_some(r.gas_scf),
@@ -240,11 +240,11 @@ pub(super) fn by_year(forecast: &Forecast) -> Vec<Row<'_>> {
     rows
 }
 
-/// The day after the year: that of the last period, or New Year where the run stopped earlier, since rates
-/// divide by the whole year.
+/// The day after the year: that of the last period, or New Year (the end of the forecast period, if earlier) where the
+/// run stopped before, since rates divide by the whole year.
 fn year_end(forecast: &Forecast, periods: &[Period]) -> Date {
     let Some(last) = periods.last() else { return forecast.start };
     let is_last = forecast.periods.last().is_some_and(|p| p.start == last.start);
     let stopped_early = is_last && forecast.end_text != "period ended";
-    if stopped_early { date(last.start.year() + 1, 1, 1).max(last.end) } else { last.end }
+    if stopped_early { date(last.start.year() + 1, 1, 1).min(forecast.period_end).max(last.end) } else { last.end }
 }

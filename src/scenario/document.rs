@@ -167,7 +167,7 @@ impl Document {
             return Err(Problems::new(&self.name, &self.text, sets, problems));
         }
         let field = resolved.field;
-        let faults = resolve::physics_faults(&field);
+        let faults = resolve::physics_faults(&field, resolved.units);
         if !faults.is_empty() {
             return Err(places.problems_at(&faults));
         }

@@ -191,10 +191,12 @@ pub(super) fn problem_of(fault: &Fault, root: &Table) -> Problem {
 /// Faults that the layers of the physics find when they are built from these data.
 ///
 /// Keys are full paths (`well[0].tubing.survey`, `change[2].tubing.diameter` for the new settings of a dated event).
-pub(super) fn physics_faults(field: &FieldSpec) -> Vec<Fault> {
-    match Field::new(field) {
+pub(super) fn physics_faults(field: &FieldSpec, units: UnitSystem) -> Vec<Fault> {
+    let faults = match Field::new(field) {
         Ok(built) => built.change_faults(),
         Err(RunError::Input(faults)) => faults,
         Err(other) => vec![Fault::new("tank", other.to_string())],
-    }
+    };
+    let told = |text: &str| units.tell(text);
+    faults.into_iter().map(|f| Fault { message: told(&f.message), help: f.help.as_deref().map(told), ..f }).collect()
 }

@@ -93,7 +93,7 @@ mod tests {
         // C is per psi to the power 2n: 1e-3 * 0.158987 / 0.0689476^2 with n = 1.
         assert_eq!(
             metric.tell("C = 1.0000e-3 STB/d/psi^2n (liquid), n = 1.000 at 2650 psia"),
-            "C = 3.3445e-2 Sm³/d/bar^2n (liquid), n = 1.000 at 182.7 bara"
+            "C = 3.3444e-2 Sm³/d/bar^2n (liquid), n = 1.000 at 182.7 bara"
         );
         assert_eq!(UnitSystem::Field.tell("280 STB/d"), "280 STB/d");
         assert_eq!(metric.tell("nothing to tell: 12 apples"), "nothing to tell: 12 apples");

@@ -211,6 +211,7 @@ pub fn forecast_of(wells: Vec<WellResult>, periods: Vec<Period>, injected_stb_d:
     ];
     Forecast {
         start: date(2027, 1, 1),
+        period_end: date(2042, 1, 1),
         end_days: stop,
         end_text: if stop < whole { "no well flows" } else { "period ended" },
         oil_in_place_stb: 42e6,
@@ -219,7 +220,7 @@ pub fn forecast_of(wells: Vec<WellResult>, periods: Vec<Period>, injected_stb_d:
         periods,
         tank,
         wells,
-        injectors: vec![InjectorResult { name: "OI-1".to_owned(), rows: injector }],
+        injectors: vec![InjectorResult { name: "OI-1".to_owned(), fluid: InjectedFluid::Water, rows: injector }],
         events,
         doubts: vec![Doubt {
             kind: DoubtKind::TestMismatch,
