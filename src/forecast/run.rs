@@ -82,9 +82,9 @@ impl<'a> Run<'a> {
         *memory.spots.borrow_mut() = vec![Spot::default(); wells];
         let layout = Layout { wells, injectors };
         let (rtol, atol) = match field.spec.tolerance {
-            Tolerance::Normal => (1e-6, 1e-8),
-            Tolerance::Tight => (1e-8, 1e-10),
-            Tolerance::Reference => (1e-10, 1e-12),
+            Tolerance::Normal => (2e-7, 2e-9),
+            Tolerance::Tight => (2e-9, 2e-11),
+            Tolerance::Reference => (2e-11, 2e-13),
         };
         // The integrator's error norm is a mean over components: idle ones must not loosen it.
         let share = (2.0 / layout.len() as f64).sqrt();
@@ -114,7 +114,7 @@ impl<'a> Run<'a> {
                 end_text: "period ended",
             },
             switches_here: 0,
-            settings: Settings { rtol, atol, longest_step_days: 250.0, first_step_days: 1.0 },
+            settings: Settings { rtol, atol, longest_step_days: 180.0, first_step_days: 1.0 },
         }
     }
 

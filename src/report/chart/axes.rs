@@ -170,7 +170,7 @@ impl Panel {
                 to = to.min(q / p);
             }
         }
-        (from <= to).then(|| ((a.0 + from * dx, a.1 + from * dy), (a.0 + to * dx, a.1 + to * dy)))
+        (from <= to).then_some(((a.0 + from * dx, a.1 + from * dy), (a.0 + to * dx, a.1 + to * dy)))
     }
 
     /// A marker at a point inside the panel.
