@@ -22,11 +22,11 @@ use crate::units::constants::FT3_PER_BBL;
 /// Largest change of pressure in a step, relative to the pressure.
 const STEP_RELATIVE: f64 = 0.35;
 /// First step: change of pressure relative to the pressure.
-const FIRST_STEP_RELATIVE: f64 = 0.12;
+const FIRST_STEP_RELATIVE: f64 = 0.15;
 /// Error at which a step aims, in units of the one at which it is repeated.
-const AIM: f64 = 0.3;
+const AIM: f64 = 0.4;
 /// Error below which the next step grows no further, in the same units.
-const LEAST_ERROR: f64 = 0.01;
+const LEAST_ERROR: f64 = 0.001;
 /// Tolerance of one step's error estimate relative to the accuracy asked of the whole traverse.
 const STEP_SHARE: f64 = 0.002;
 const BEND_SHARE: f64 = 1e-4;
@@ -52,6 +52,7 @@ pub(crate) struct March<'a, M> {
     oil_fraction: f64,
     water_fraction: f64,
     gor_scf_stb: f64,
+    per_gor_stb_scf: f64,
     tolerance_psi: f64,
 }
 
@@ -95,13 +96,15 @@ struct Step {
 impl<'a, M: Hydraulics> March<'a, M> {
     pub fn new(model: &'a M, fluid: &'a BlackOil, stream: &Stream, accuracy_psi: f64) -> Self {
         let water_fraction = held(stream.water_cut, 1.0);
+        let gor_scf_stb = held(stream.gor_scf_stb, 1e8);
         Self {
             model,
             fluid,
             rate_stb_s: held(stream.liquid_rate_stb_d, 1e8) / 86_400.0,
             oil_fraction: 1.0 - water_fraction,
             water_fraction,
-            gor_scf_stb: held(stream.gor_scf_stb, 1e8),
+            gor_scf_stb,
+            per_gor_stb_scf: 1.0 / gor_scf_stb.max(1e-300),
             tolerance_psi: accuracy_psi * STEP_SHARE,
         }
     }
@@ -117,14 +120,14 @@ impl<'a, M: Hydraulics> March<'a, M> {
         let water = FT3_PER_BBL * self.water_fraction * fluid.bw_rb_stb;
         let gas = self.oil_fraction * (self.gor_scf_stb - fluid.rs_scf_stb).max(0.0) * fluid.bg_ft3_scf;
         let liquid = oil + water;
-        let oil_share = oil / liquid;
+        let oil_share = if self.water_fraction == 0.0 { 1.0 } else { oil / liquid };
         let water_share = 1.0 - oil_share;
-        let velocity = self.rate_stb_s / stretch.area_ft2;
+        let velocity = self.rate_stb_s * stretch.per_area_1_ft2;
         // Below the bubble point the gas still dissolved tells as much, and costs nothing.
         let above = if self.oil_fraction == 0.0 {
             1.0
         } else if fluid.rs_scf_stb < self.gor_scf_stb {
-            fluid.rs_scf_stb / self.gor_scf_stb - 1.0
+            fluid.rs_scf_stb * self.per_gor_stb_scf - 1.0
         } else {
             let bubble_point_psia = self.fluid.bubble_point_at_psia(self.gor_scf_stb, temperature_degf);
             (pressure_psia / bubble_point_psia.max(1e-3) - 1.0).clamp(0.0, 1.0)
@@ -163,10 +166,22 @@ impl<'a, M: Hydraulics> March<'a, M> {
         gradient
     }
 
+    /// The branch at a point and the slope on it.
+    fn begin(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> (Branch, Slope) {
+        let (flow, above) = self.flow(stretch, md_ft, pressure_psia);
+        let branch = self.choose(&flow, above, stretch);
+        (branch, self.slope_of(&flow, above, stretch, branch))
+    }
+
     #[inline]
     fn slope(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64, branch: Branch) -> Slope {
         let (flow, above) = self.flow(stretch, md_ft, pressure_psia);
-        let gradient = self.gradient(&flow, above, stretch, branch);
+        self.slope_of(&flow, above, stretch, branch)
+    }
+
+    #[inline]
+    fn slope_of(&self, flow: &Flow, above: f64, stretch: &Stretch, branch: Branch) -> Slope {
+        let gradient = self.gradient(flow, above, stretch, branch);
         Slope {
             psi_ft: gradient.total_psi_ft(),
             margin: gradient.margin,
@@ -225,8 +240,7 @@ impl<'a, M: Hydraulics> March<'a, M> {
     /// Marches to `end_md_ft` within a stretch, downwards or upwards. False: the pressure ran out on the way up.
     pub fn advance(&self, stretch: &Stretch, progress: &mut Progress, end_md_ft: f64) -> bool {
         let direction = (end_md_ft - progress.md_ft).signum();
-        let mut branch = self.branch(stretch, progress.md_ft, progress.pressure_psia);
-        let mut start = self.slope(stretch, progress.md_ft, progress.pressure_psia, branch);
+        let (mut branch, mut start) = self.begin(stretch, progress.md_ft, progress.pressure_psia);
         loop {
             progress.kinetic = progress.kinetic.max(start.kinetic);
             if progress.pressure_psia < LEAST_PRESSURE_PSIA {
@@ -395,8 +409,7 @@ impl<'a, M: Hydraulics> March<'a, M> {
         let step = self.step(stretch, progress.md_ft, progress.pressure_psia, *start, h, *branch);
         progress.md_ft = if h == rest { end_md_ft } else { progress.md_ft + h };
         progress.pressure_psia = step.pressure_psia;
-        *branch = self.branch(stretch, progress.md_ft, progress.pressure_psia);
-        *start = self.slope(stretch, progress.md_ft, progress.pressure_psia, *branch);
+        (*branch, *start) = self.begin(stretch, progress.md_ft, progress.pressure_psia);
     }
 }
 
