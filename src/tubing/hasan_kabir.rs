@@ -137,7 +137,7 @@ fn state(flow: &Flow, pipe: &Pipe, branch: Branch) -> State {
         if branch.has(DROPLETS) {
             void.annular = smooth_step((held - WEIGHT.low) / (WEIGHT.high - WEIGHT.low)) * blend(above_droplets);
             void.fraction = gas / ((C0 - (C0 - 1.0) * void.annular) * mixture + drift * (1.0 - void.annular));
-            course = course.min(course_of(above_droplets));
+            course = course.min(2.0 * course_of(above_droplets));
             margin = margin.min(above_droplets);
         } else {
             margin = margin.min(-above_droplets);
@@ -150,7 +150,7 @@ fn state(flow: &Flow, pipe: &Pipe, branch: Branch) -> State {
     State { void, margin, course, in_slug, above_bubbly }
 }
 
-/// Near the onset of a transition steps go by its distance.
+/// Near the onset of a transition steps go by its distance (twice as far where droplets begin, a milder bend).
 #[inline]
 fn course_of(above: f64) -> f64 {
     COURSE * above.max(0.0) + LEAST_COURSE

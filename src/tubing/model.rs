@@ -120,7 +120,7 @@ impl Flow {
 }
 
 /// Which branch of its piecewise formulas a model is on: a bit set whose meaning is the model's own, apart from
-/// the two lowest bits.
+/// the two lowest bits and the highest.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub struct Branch(pub u16);
 
@@ -129,6 +129,8 @@ impl Branch {
     pub const SINGLE_PHASE: u16 = 1;
     /// Reynolds number below 2,100.
     pub const LAMINAR: u16 = 2;
+    /// Kinetic term held at its limit; set and used by the march, not by the models.
+    pub const NEAR_SONIC: u16 = 0x8000;
 
     /// Whether a bit is set.
     #[inline]
