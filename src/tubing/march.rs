@@ -39,7 +39,7 @@ const UNWATCHED: f64 = 2e-4;
 const LOOK_AHEAD: f64 = 1e-6;
 /// How often a step is repeated, and by how much its bar rises each time.
 const MOST_REPETITIONS: u32 = 4;
-const BAR_RISE: f64 = 6.0;
+const BAR_RISE: f64 = 4.0;
 /// Steps after which the rest of a stretch is taken in one.
 const MOST_STEPS: u32 = 4000;
 /// The march upwards gives up below this pressure, psia.
