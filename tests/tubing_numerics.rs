@@ -220,7 +220,7 @@ fn the_flowing_pressure_is_smooth() {
         println!("{}: worst {worst:.1e} psi, {rough} of {all} sweeps above 1e-4", method.name());
         // The aim is 1e-4 psi. The steps of the default model follow transitions that no polynomial fits, so that a
         // repeated step may stand out a little more; the others are far smoother.
-        let most = if method == TubingMethod::HasanKabir { 5e-4 } else { 1e-5 };
+        let most = if method == TubingMethod::HasanKabir { 5e-4 } else { 1e-4 };
         assert!(worst < most && rough <= 1, "{}: {worst} psi, {rough} of {all} sweeps", method.name());
     }
 }

@@ -247,7 +247,7 @@ fn grid_point(number: &dyn Fn(&str) -> f64) -> (Flow, Pipe) {
         number("mul_Pa_s") * 1e3,
         number("mug_Pa_s") * 1e3,
         number("sigma_N_m") * 1e3,
-        number("P_Pa") / 6894.757_293,
+        number("P_Pa") / 6_894.757_293,
     );
     (flow, pipe)
 }
@@ -307,7 +307,7 @@ fn beggs_brill_horizontal_smooth_documentation_example() {
     let vsl = m * (1.0 - x) / (rhol * area) / 0.3048;
     let vsg = m * x / (rhog * area) / 0.3048;
     let at = (
-        flow(vsl, vsg, rhol / LB_FT3, rhog / LB_FT3, 0.18, 0.014, 48.7, 1e7 / 6894.757_293),
+        flow(vsl, vsg, rhol / LB_FT3, rhog / LB_FT3, 0.18, 0.014, 48.7, 1e7 / 6_894.757_293),
         Pipe::new(d / 0.0254, 0.0, 0.0),
     );
     let found = gradient(&BeggsBrill { payne: false }, &at).total_psi_ft() * 22_620.59;

@@ -30,13 +30,14 @@ impl Roughness {
     #[inline]
     pub fn turbulent(&self, reynolds: f64) -> f64 {
         let scale = -2.0 / LN_10;
-        let viscous = 2.51 / reynolds;
+        let inverse = 1.0 / reynolds;
+        let viscous = 2.51 * inverse;
         // Haaland (1983), within 1.4 % of Colebrook.
-        let mut x = 0.9 * scale * (6.9 / reynolds + self.haaland).ln();
+        let mut x = 0.9 * scale * (6.9 * inverse + self.haaland).ln();
         for _ in 0..2 {
             let argument = self.colebrook + viscous * x;
-            let residual = x - scale * argument.ln();
-            x -= residual / (1.0 - scale * viscous / argument);
+            // Newton's step (x - scale ln a)/(1 - scale viscous/a), with one division.
+            x -= (x - scale * argument.ln()) * argument / (argument - scale * viscous);
         }
         1.0 / (x * x)
     }

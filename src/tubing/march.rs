@@ -13,7 +13,7 @@
 //!   would cost 0.2 to 10 psi.
 
 use super::liquid;
-use super::model::{Branch, Flow, Gradient, Hydraulics};
+use super::model::{Branch, Flow, Gradient, Hydraulics, KINETIC_LIMIT};
 use super::path::Stretch;
 use super::traverse::Stream;
 use crate::fluid::BlackOil;
@@ -22,25 +22,30 @@ use crate::units::constants::FT3_PER_BBL;
 /// Largest change of pressure in a step, relative to the pressure.
 const STEP_RELATIVE: f64 = 0.35;
 /// First step: change of pressure relative to the pressure.
-const FIRST_STEP_RELATIVE: f64 = 0.12;
+const FIRST_STEP_RELATIVE: f64 = 0.15;
 /// Error at which a step aims, in units of the one at which it is repeated.
-const AIM: f64 = 0.3;
+const AIM: f64 = 0.4;
 /// Error below which the next step grows no further, in the same units.
-const LEAST_ERROR: f64 = 0.01;
+const LEAST_ERROR: f64 = 0.001;
 /// Tolerance of one step's error estimate relative to the accuracy asked of the whole traverse.
 const STEP_SHARE: f64 = 0.002;
 const BEND_SHARE: f64 = 1e-4;
-/// A branch that ends this soon after its begin, ft, is left unwatched for a while: the flow would chatter.
-const LEAST_BRANCH_FT: f64 = 1e-4;
-/// First stretch to be left unwatched, ft; it doubles each time.
-const UNWATCHED_FT: f64 = 1.0;
+/// A branch that ends this soon after its begin is left unwatched for a while: the flow would chatter. As a change of
+/// pressure relative to the pressure, like the two below.
+const LEAST_BRANCH: f64 = 1e-8;
+/// First stretch to be left unwatched; it doubles each time.
+const UNWATCHED: f64 = 2e-4;
+/// Beyond a border the next branch is chosen this change of pressure ahead, relative to the pressure.
+const LOOK_AHEAD: f64 = 1e-6;
 /// How often a step is repeated, and by how much its bar rises each time.
 const MOST_REPETITIONS: u32 = 4;
-const BAR_RISE: f64 = 6.0;
+const BAR_RISE: f64 = 4.0;
 /// Steps after which the rest of a stretch is taken in one.
 const MOST_STEPS: u32 = 4000;
 /// The march upwards gives up below this pressure, psia.
 const LEAST_PRESSURE_PSIA: f64 = 1.0;
+/// The kinetic term of a trial that runs beyond the limit.
+const KINETIC_BEYOND: f64 = 0.95;
 /// No fluid property is asked for below this pressure, psia.
 const PROPERTY_FLOOR_PSIA: f64 = 0.5;
 
@@ -52,6 +57,7 @@ pub(crate) struct March<'a, M> {
     oil_fraction: f64,
     water_fraction: f64,
     gor_scf_stb: f64,
+    per_gor_stb_scf: f64,
     tolerance_psi: f64,
 }
 
@@ -63,13 +69,13 @@ pub(crate) struct Progress {
     pub kinetic: f64,
     /// Length wished for the next step, ft; 0: none yet.
     wish_ft: f64,
-    unwatched_ft: f64,
+    unwatched: f64,
     pub(crate) steps: u32,
 }
 
 impl Progress {
     pub fn new(md_ft: f64, pressure_psia: f64) -> Self {
-        Self { md_ft, pressure_psia, kinetic: 0.0, wish_ft: 0.0, unwatched_ft: UNWATCHED_FT, steps: 0 }
+        Self { md_ft, pressure_psia, kinetic: 0.0, wish_ft: 0.0, unwatched: UNWATCHED, steps: 0 }
     }
 }
 
@@ -95,13 +101,15 @@ struct Step {
 impl<'a, M: Hydraulics> March<'a, M> {
     pub fn new(model: &'a M, fluid: &'a BlackOil, stream: &Stream, accuracy_psi: f64) -> Self {
         let water_fraction = held(stream.water_cut, 1.0);
+        let gor_scf_stb = held(stream.gor_scf_stb, 1e8);
         Self {
             model,
             fluid,
             rate_stb_s: held(stream.liquid_rate_stb_d, 1e8) / 86_400.0,
             oil_fraction: 1.0 - water_fraction,
             water_fraction,
-            gor_scf_stb: held(stream.gor_scf_stb, 1e8),
+            gor_scf_stb,
+            per_gor_stb_scf: 1.0 / gor_scf_stb.max(1e-300),
             tolerance_psi: accuracy_psi * STEP_SHARE,
         }
     }
@@ -117,14 +125,14 @@ impl<'a, M: Hydraulics> March<'a, M> {
         let water = FT3_PER_BBL * self.water_fraction * fluid.bw_rb_stb;
         let gas = self.oil_fraction * (self.gor_scf_stb - fluid.rs_scf_stb).max(0.0) * fluid.bg_ft3_scf;
         let liquid = oil + water;
-        let oil_share = oil / liquid;
+        let oil_share = if self.water_fraction == 0.0 { 1.0 } else { oil / liquid };
         let water_share = 1.0 - oil_share;
-        let velocity = self.rate_stb_s / stretch.area_ft2;
+        let velocity = self.rate_stb_s * stretch.per_area_1_ft2;
         // Below the bubble point the gas still dissolved tells as much, and costs nothing.
         let above = if self.oil_fraction == 0.0 {
             1.0
         } else if fluid.rs_scf_stb < self.gor_scf_stb {
-            fluid.rs_scf_stb / self.gor_scf_stb - 1.0
+            fluid.rs_scf_stb * self.per_gor_stb_scf - 1.0
         } else {
             let bubble_point_psia = self.fluid.bubble_point_at_psia(self.gor_scf_stb, temperature_degf);
             (pressure_psia / bubble_point_psia.max(1e-3) - 1.0).clamp(0.0, 1.0)
@@ -144,7 +152,12 @@ impl<'a, M: Hydraulics> March<'a, M> {
     }
 
     fn choose(&self, flow: &Flow, above: f64, stretch: &Stretch) -> Branch {
-        if above >= 0.0 { liquid::branch(flow, &stretch.pipe) } else { self.model.branch(flow, &stretch.pipe) }
+        if above >= 0.0 {
+            return liquid::branch(flow, &stretch.pipe);
+        }
+        let branch = self.model.branch(flow, &stretch.pipe);
+        let near_sonic = self.model.gradient(flow, &stretch.pipe, branch).kinetic > KINETIC_LIMIT;
+        Branch(branch.0 | if near_sonic { Branch::NEAR_SONIC } else { 0 })
     }
 
     fn branch(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> Branch {
@@ -163,13 +176,31 @@ impl<'a, M: Hydraulics> March<'a, M> {
         gradient
     }
 
+    /// The branch at a point and the slope on it.
+    fn begin(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> (Branch, Slope) {
+        let (flow, above) = self.flow(stretch, md_ft, pressure_psia);
+        let branch = self.choose(&flow, above, stretch);
+        (branch, self.slope_of(&flow, above, stretch, branch))
+    }
+
     #[inline]
     fn slope(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64, branch: Branch) -> Slope {
         let (flow, above) = self.flow(stretch, md_ft, pressure_psia);
-        let gradient = self.gradient(&flow, above, stretch, branch);
+        self.slope_of(&flow, above, stretch, branch)
+    }
+
+    #[inline]
+    fn slope_of(&self, flow: &Flow, above: f64, stretch: &Stretch, branch: Branch) -> Slope {
+        let gradient = self.gradient(flow, above, stretch, branch);
+        // Where the kinetic term is held begins and ends like any other branch; a stage just beyond stays finite.
+        let (held, kinetic_margin) = if branch.has(Branch::NEAR_SONIC) {
+            (KINETIC_LIMIT, gradient.kinetic - KINETIC_LIMIT)
+        } else {
+            (gradient.kinetic.min(KINETIC_BEYOND), KINETIC_LIMIT - gradient.kinetic)
+        };
         Slope {
-            psi_ft: gradient.total_psi_ft(),
-            margin: gradient.margin,
+            psi_ft: (gradient.gravity_psi_ft + gradient.friction_psi_ft) / (1.0 - held),
+            margin: gradient.margin.min(kinetic_margin),
             kinetic: gradient.kinetic,
             course: gradient.course,
         }
@@ -225,8 +256,7 @@ impl<'a, M: Hydraulics> March<'a, M> {
     /// Marches to `end_md_ft` within a stretch, downwards or upwards. False: the pressure ran out on the way up.
     pub fn advance(&self, stretch: &Stretch, progress: &mut Progress, end_md_ft: f64) -> bool {
         let direction = (end_md_ft - progress.md_ft).signum();
-        let mut branch = self.branch(stretch, progress.md_ft, progress.pressure_psia);
-        let mut start = self.slope(stretch, progress.md_ft, progress.pressure_psia, branch);
+        let (mut branch, mut start) = self.begin(stretch, progress.md_ft, progress.pressure_psia);
         loop {
             progress.kinetic = progress.kinetic.max(start.kinetic);
             if progress.pressure_psia < LEAST_PRESSURE_PSIA {
@@ -255,7 +285,7 @@ impl<'a, M: Hydraulics> March<'a, M> {
                     break;
                 }
                 let Some(part) = self.switch(stretch, (md, p, start), &step, direction * length, branch) else { break };
-                if part * length < LEAST_BRANCH_FT {
+                if part * length < LEAST_BRANCH * pressure_length {
                     length = 0.0;
                     break;
                 }
@@ -295,7 +325,7 @@ impl<'a, M: Hydraulics> March<'a, M> {
             start = step.end;
             if switched {
                 (progress.md_ft, progress.pressure_psia) = at_border;
-                let ahead = direction * 0.01_f64.min(rest);
+                let ahead = direction * (LOOK_AHEAD * pressure_length).min(rest);
                 branch = self.branch(stretch, progress.md_ft + ahead, progress.pressure_psia + start.psi_ft * ahead);
                 start = self.slope(stretch, progress.md_ft, progress.pressure_psia, branch);
             }
@@ -321,7 +351,11 @@ impl<'a, M: Hydraulics> March<'a, M> {
         };
         let (mut inside, mut inside_margin) = (0.0, start.margin);
         let mut beyond = None;
-        for x in [0.25, 0.4, 0.5, 0.6, 0.75, 1.0] {
+        for x in [1.0 / 64.0, 0.25, 0.4, 0.5, 0.6, 0.75, 1.0] {
+            // A branch begins on its own border, where rounding decides the sign: the first look is a little inside.
+            if x < 0.1 && inside_margin > 0.0 {
+                continue;
+            }
             let at = if x == 1.0 { step.end.margin } else { margin(x) };
             if at < 0.0 {
                 beyond = Some((x, at));
@@ -390,13 +424,13 @@ impl<'a, M: Hydraulics> March<'a, M> {
         start: &mut Slope,
     ) {
         let rest = end_md_ft - progress.md_ft;
-        let h = rest.signum() * progress.unwatched_ft.min(rest.abs());
-        progress.unwatched_ft *= 2.0;
+        let pressure_length = progress.pressure_psia / start.psi_ft.max(1e-12);
+        let h = rest.signum() * (progress.unwatched * pressure_length).min(rest.abs());
+        progress.unwatched *= 2.0;
         let step = self.step(stretch, progress.md_ft, progress.pressure_psia, *start, h, *branch);
         progress.md_ft = if h == rest { end_md_ft } else { progress.md_ft + h };
         progress.pressure_psia = step.pressure_psia;
-        *branch = self.branch(stretch, progress.md_ft, progress.pressure_psia);
-        *start = self.slope(stretch, progress.md_ft, progress.pressure_psia, *branch);
+        (*branch, *start) = self.begin(stretch, progress.md_ft, progress.pressure_psia);
     }
 }
 

@@ -25,6 +25,8 @@ pub struct Pipe {
     pub long_bubble_factor: f64,
     /// sin(1.8 th) - sin(1.8 th)^3/3 of Beggs and Brill.
     pub beggs_brill_factor: f64,
+    /// 1/(2 gc d 144), the constant of the friction gradient.
+    friction_constant: f64,
     /// Natural logarithm of the diameter in ft.
     pub ln_diameter: f64,
 }
@@ -43,6 +45,7 @@ impl Pipe {
             cos_inclination: cos,
             long_bubble_factor: sin.max(0.0).sqrt() * (1.0 + cos).powf(1.2),
             beggs_brill_factor: reduced - reduced.powi(3) / 3.0,
+            friction_constant: 1.0 / (2.0 * GRAVITY_FT_S2 * IN2_PER_FT2 * diameter_ft),
             ln_diameter: diameter_ft.ln(),
         }
     }
@@ -50,13 +53,13 @@ impl Pipe {
     /// Friction gradient `f rho v^2/(2 gc d)`, psi/ft, with the Moody factor.
     #[inline]
     pub(crate) fn friction_psi_ft(&self, moody: f64, density_lb_ft3: f64, velocity_ft_s: f64) -> f64 {
-        moody * density_lb_ft3 * velocity_ft_s * velocity_ft_s / (2.0 * GRAVITY_FT_S2 * IN2_PER_FT2 * self.diameter_ft)
+        moody * density_lb_ft3 * velocity_ft_s * velocity_ft_s * self.friction_constant
     }
 
     /// Gravity gradient along the pipe, psi/ft.
     #[inline]
     pub(crate) fn gravity_psi_ft(&self, density_lb_ft3: f64) -> f64 {
-        density_lb_ft3 * self.sin_inclination / IN2_PER_FT2
+        density_lb_ft3 * self.sin_inclination * (1.0 / IN2_PER_FT2)
     }
 
     /// Reynolds number.
@@ -111,13 +114,13 @@ impl Flow {
     /// The kinetic term Ek = rho vm vSg/(gc p), with the mixture density that the model uses.
     #[inline]
     pub fn kinetic(&self, density_lb_ft3: f64) -> f64 {
-        density_lb_ft3 * self.mixture_velocity_ft_s() * self.gas_velocity_ft_s
-            / (GRAVITY_FT_S2 * IN2_PER_FT2 * self.pressure_psia)
+        density_lb_ft3 * self.mixture_velocity_ft_s() * self.gas_velocity_ft_s * (1.0 / (GRAVITY_FT_S2 * IN2_PER_FT2))
+            / self.pressure_psia
     }
 }
 
 /// Which branch of its piecewise formulas a model is on: a bit set whose meaning is the model's own, apart from
-/// the two lowest bits.
+/// the two lowest bits and the highest.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub struct Branch(pub u16);
 
@@ -126,6 +129,8 @@ impl Branch {
     pub const SINGLE_PHASE: u16 = 1;
     /// Reynolds number below 2,100.
     pub const LAMINAR: u16 = 2;
+    /// Kinetic term held at its limit; set and used by the march, not by the models.
+    pub const NEAR_SONIC: u16 = 0x8000;
 
     /// Whether a bit is set.
     #[inline]
@@ -183,7 +188,7 @@ pub trait Hydraulics {
 /// order of one.
 #[inline]
 pub(crate) fn laminar_margin(reynolds: f64, laminar: bool) -> f64 {
-    let above = (reynolds / LAMINAR_REYNOLDS - 1.0).min(1.0);
+    let above = (reynolds * (1.0 / LAMINAR_REYNOLDS) - 1.0).min(1.0);
     if laminar { -above } else { above }
 }
 

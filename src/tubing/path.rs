@@ -21,8 +21,8 @@ pub(crate) struct Stretch {
     /// Temperature rise per foot of measured depth.
     pub temperature_slope_degf_ft: f64,
     pub pipe: Pipe,
-    /// Cross-section, ft2.
-    pub area_ft2: f64,
+    /// Reciprocal of the cross-section, 1/ft2.
+    pub per_area_1_ft2: f64,
 }
 
 impl Stretch {
@@ -222,7 +222,7 @@ fn cut(spec: &TubingSpec, bottom_md_ft: f64, bottom_temperature_degf: f64) -> Pa
                 top_temperature_degf: temperature_at(top_tvd_ft),
                 temperature_slope_degf_ft: slope_degf_ft * (end_tvd_ft - top_tvd_ft) / length_ft,
                 pipe,
-                area_ft2: 0.25 * std::f64::consts::PI * pipe.diameter_ft * pipe.diameter_ft,
+                per_area_1_ft2: 4.0 / (std::f64::consts::PI * pipe.diameter_ft * pipe.diameter_ft),
             });
         }
         (top_md_ft, top_tvd_ft) = (end_md_ft, end_tvd_ft);
