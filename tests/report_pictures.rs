@@ -1,4 +1,5 @@
 //! Pictures of results made by hand. They are written to cargo's folder for test files, to be looked at.
+#![allow(clippy::unwrap_used)]
 
 mod report_support;
 

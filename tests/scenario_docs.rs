@@ -1,4 +1,5 @@
 //! The reference in docs/scenario.md and the program agree, key by key, unit by unit, example by example.
+#![allow(clippy::unwrap_used)]
 
 use std::collections::BTreeSet;
 use wane::rock::CoreySpec;

@@ -1,4 +1,5 @@
 //! A scenario that states every key: each arrives in its own field, nothing is swapped, dropped or replaced.
+#![allow(clippy::unwrap_used)]
 
 use std::collections::BTreeSet;
 use wane::fluid::FluidSpec;

@@ -1,4 +1,5 @@
 //! Random text and random damage: the reader never panics, and every refusal points somewhere.
+#![allow(clippy::unwrap_used)]
 
 use proptest::prelude::*;
 use wane::scenario::{Document, Problems};

@@ -1,4 +1,5 @@
 //! The scenarios that ship with the program: each resolves in every case, and its first comment tells its story.
+#![allow(clippy::unwrap_used)]
 
 use std::path::Path;
 use wane::scenario::{Document, data_doubts};

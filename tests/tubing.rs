@@ -1,4 +1,5 @@
 //! The tubing as the other layers use it: limits, closed forms, round trips, faults, random wells.
+#![allow(clippy::unwrap_used)]
 
 use proptest::prelude::*;
 use wane::fluid::{BlackOil, FluidSpec};

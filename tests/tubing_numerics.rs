@@ -1,4 +1,5 @@
 //! The traverse as a numerical method: accuracy, smoothness, limits.
+#![allow(clippy::unwrap_used)]
 
 use wane::fluid::{BlackOil, FluidSpec};
 use wane::tubing::beggs_brill::BeggsBrill;

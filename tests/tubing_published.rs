@@ -3,6 +3,7 @@
 //! `tests/data/flow.json` says of every case where its numbers come from: seen in a publication, remembered from the
 //! named publication, computed by the library `fluids` 1.3.1, an exact identity, or (marked below as regression)
 //! recomputed from the published equations, which is no evidence beyond a second implementation.
+#![allow(clippy::unwrap_used)]
 
 use std::fs::File;
 use std::io::BufReader;

@@ -1,6 +1,7 @@
 //! Fluid properties at a point: `cargo bench --bench fluid`.
 //!
 //! Every figure is for a batch of 1,000 different points (pressure and temperature as along a tubing); divide by 1,000.
+#![allow(clippy::unwrap_used)]
 
 use divan::{Bencher, black_box};
 use wane::fluid::{BlackOil, FluidSpec, ReservoirFluid, dranchuk_abou_kassem};

@@ -1,4 +1,5 @@
 //! One traverse of 8,000 ft.
+#![allow(clippy::unwrap_used)]
 
 use wane::fluid::{BlackOil, FluidSpec};
 use wane::tubing::{Stream, Tubing, TubingMethod, TubingSection, TubingSpec};
