@@ -135,7 +135,7 @@ impl Field {
         &self.fluid
     }
 
-    /// Faults of the settings that dated events bring, keys under "change[i]".
+    /// Faults of the settings that dated events bring, keys under `change[i]`.
     pub fn change_faults(&self) -> Vec<Fault> {
         let check = |(i, change): (usize, &super::ChangeSpec)| match self.changed(&self.setup, &change.change) {
             Err(RunError::Input(faults)) => faults
