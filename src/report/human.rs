@@ -83,15 +83,16 @@ pub fn short(value: f64) -> String {
 
 /// A volume in words: "1.234 million STB", "12.3 thousand STB", "640 STB".
 pub fn volume(value: f64, unit: &str) -> String {
-    let size = value.abs();
-    if size >= 1e9 {
-        format!("{} billion {unit}", number(value / 1e9, 3))
-    } else if size >= 1e6 {
-        format!("{} million {unit}", number(value / 1e6, 3))
-    } else if size >= 1e4 {
-        format!("{} thousand {unit}", number(value / 1e3, 1))
-    } else {
-        format!("{} {unit}", number(value, 0))
+    format!("{} {unit}", words(value))
+}
+
+/// A large number in words: "1.234 million", "12.3 thousand", "640".
+pub fn words(value: f64) -> String {
+    match value.abs() {
+        size if size >= 1e9 => format!("{} billion", number(value / 1e9, 3)),
+        size if size >= 1e6 => format!("{} million", number(value / 1e6, 3)),
+        size if size >= 1e4 => format!("{} thousand", number(value / 1e3, 1)),
+        _ => number(value, 0),
     }
 }
 

@@ -75,8 +75,12 @@ impl Provenance {
 
     /// The small line below a picture.
     fn footer(&self) -> String {
+        self.footer_of(self.case_name())
+    }
+
+    fn footer_of(&self, case: &str) -> String {
         let digest = self.sha256.get(..12).unwrap_or(&self.sha256);
-        format!("wane {} · {} · SHA-256 {digest} · case {}", self.version, self.scenario_name, self.case_name())
+        format!("wane {} · {} · SHA-256 {digest} · case {case}", self.version, self.scenario_name)
     }
 }
 

@@ -97,11 +97,15 @@ fn margin_text(curve: &CurveSet, difference: Label) -> String {
     if !margin.is_finite() {
         return "no margin".to_owned();
     }
-    if curve.flow_margin_psi.abs() < 0.05 {
-        return "the curves only touch".to_owned();
+    let size = human::number(margin.abs(), if margin.abs() < 10.0 { 2 } else { 0 });
+    // Less than this is the thickness of a line.
+    if curve.flow_margin_psi.abs() < 0.5 && curve.operating_point.is_some() {
+        "the curves only touch".to_owned()
+    } else if margin < 0.0 {
+        format!("no crossing, {size} {} short", difference.text)
+    } else {
+        format!("margin {size} {}", difference.text)
     }
-    let decimals = if margin.abs() < 10.0 { 2 } else { 0 };
-    format!("margin {} {}", human::number(margin, decimals), difference.text)
 }
 
 /// Fills where the inflow curve stands above the tubing curve.

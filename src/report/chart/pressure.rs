@@ -1,10 +1,10 @@
 //! `pressure`: reservoir pressure, gas-oil ratio and water cut over time.
 
+use super::Drawing;
 use super::axes::{Span, headings, legend};
-use super::rates::{ends_of_flow, timeline, title};
+use super::rates::{NO_WATER, ends_of_flow, timeline, title, water_shows};
 use super::style::{Dash, Look, QUIET, TANK, TOTAL, look};
 use super::timeline::{draw_moments, moments_height, stack};
-use super::{Anchor, Drawing};
 use crate::forecast::Forecast;
 use crate::report::Provenance;
 use crate::report::labels::{Dimension, Label, label};
@@ -25,7 +25,9 @@ pub fn pressure_picture(forecast: &Forecast, provenance: &Provenance) -> Drawing
     let states = states(forecast, provenance);
     let mut d = Drawing::new(960, (170 + 195 * states.len().max(1)) as u32);
     let height = f64::from(d.size().1);
-    headings(&mut d, &title(provenance), "States at the end of each period", &provenance.footer());
+    let no_water = if water_shows(forecast) { String::new() } else { format!("; {NO_WATER}") };
+    let subtitle = format!("States at the end of each period{no_water}");
+    headings(&mut d, &title(provenance), &subtitle, &provenance.footer());
 
     let timeline = timeline(forecast);
     let mut entries =
@@ -48,9 +50,6 @@ pub fn pressure_picture(forecast: &Forecast, provenance: &Provenance) -> Drawing
         }
     }
     draw_moments(&mut d, &panels, top, &moments);
-    if states.len() == 2 {
-        d.text((936.0, height - 14.0), 10.5, Anchor::Right, QUIET, "no water is produced");
-    }
     d
 }
 
@@ -101,7 +100,7 @@ fn states(forecast: &Forecast, provenance: &Provenance) -> Vec<State> {
         },
         State { title: format!("Producing gas-oil ratio, {}", gor.text), from_zero: true, lines: gor_lines },
     ];
-    if forecast.wells.iter().any(|w| w.rows.iter().any(|r| r.water_stb > 0.0)) {
+    if water_shows(forecast) {
         states.push(State { title: "Water cut, fraction of liquid".to_owned(), from_zero: true, lines: water_lines });
     }
     states

@@ -4,7 +4,7 @@ use super::Drawing;
 use super::axes::{Span, headings, legend};
 use super::style::{Look, TOTAL, look};
 use super::timeline::{Moment, Timeline, draw_moments, moments_height, stack};
-use crate::forecast::{Forecast, InjectorRow, Period, TankRow, WellResult, WellRow};
+use crate::forecast::{EventKind, EventRecord, Forecast, InjectorRow, Period, TankRow, WellResult, WellRow};
 use crate::report::Provenance;
 use crate::report::human::{self, short_month};
 use crate::report::labels::{Dimension, label};
@@ -29,12 +29,9 @@ pub fn rates_picture(forecast: &Forecast, provenance: &Provenance) -> Drawing {
     let streams = streams(forecast);
     let mut d = Drawing::new(WIDTH, (170 + 190 * streams.len().max(1)) as u32);
     let height = f64::from(d.size().1);
-    headings(
-        &mut d,
-        &title(provenance),
-        "Calendar-day rates, averages over each period or up to the end of flow inside it",
-        &provenance.footer(),
-    );
+    let no_water = if water_shows(forecast) { String::new() } else { format!("; {NO_WATER}") };
+    let subtitle = format!("Calendar-day rates, averages over the part of each period with flow{no_water}");
+    headings(&mut d, &title(provenance), &subtitle, &provenance.footer());
 
     let timeline = timeline(forecast);
     let mut top = 64.0;
@@ -82,14 +79,19 @@ pub(super) fn timeline(forecast: &Forecast) -> Timeline {
     Timeline { start: forecast.start, days: Span::new(0.0, end) }
 }
 
+/// Every end of natural flow, also of wells that came back.
 pub(super) fn ends_of_flow(forecast: &Forecast) -> Vec<Moment> {
-    let ends = forecast.wells.iter().enumerate().filter_map(|(i, w)| w.natural_flow_end.map(|end| (i, w, end)));
-    ends.map(|(i, w, end)| Moment {
-        days: end.days,
-        text: format!("{} ends {}", w.name, short_month(end.date)),
-        look: look(i),
-    })
-    .collect()
+    let mut moments = Vec::new();
+    for (i, well) in forecast.wells.iter().enumerate() {
+        let is_end = |e: &&EventRecord| matches!(e.kind, EventKind::EndOfNaturalFlow(_)) && e.name == well.name;
+        let mut ends: Vec<_> = forecast.events.iter().filter(is_end).map(|e| (e.days, e.date)).collect();
+        if ends.is_empty() {
+            ends.extend(well.natural_flow_end.map(|end| (end.days, end.date)));
+        }
+        let text = |date| format!("{} ends {}", well.name, short_month(date));
+        moments.extend(ends.into_iter().map(|(days, date)| Moment { days, text: text(date), look: look(i) }));
+    }
+    moments
 }
 
 fn legend_entries(forecast: &Forecast) -> Vec<(String, Look, bool)> {
@@ -133,8 +135,21 @@ fn streams(forecast: &Forecast) -> Vec<Stream> {
         Stream { name: "Injected gas", dimension: Dimension::GasRate, series: injectors(|r| r.gas_scf) },
     ];
     // A stream that never flows gets no panel; oil always has one.
-    all.into_iter().filter(|s| s.name == "Oil" || s.series.iter().any(Series::flows)).collect()
+    let shown = |s: &Stream| match s.name {
+        "Oil" => true,
+        "Water" => water_shows(forecast),
+        _ => s.series.iter().any(Series::flows),
+    };
+    all.into_iter().filter(shown).collect()
 }
+
+/// Whether water ever exceeds a thousandth of a period's liquid; less is the connate water's own expansion.
+pub(super) fn water_shows(forecast: &Forecast) -> bool {
+    forecast.tank.iter().any(|t| t.water_stb > 1e-3 * (t.oil_stb + t.water_stb))
+}
+
+/// What is said where the water has no panel.
+pub(super) const NO_WATER: &str = "water stays below 0.1 % of the liquid";
 
 impl Series {
     fn flows(&self) -> bool {
@@ -158,14 +173,38 @@ pub(super) fn total_stretches(forecast: &Forecast, pick: fn(&TankRow) -> f64) ->
     forecast.periods.iter().zip(&forecast.tank).map(|(p, t)| mean(p, p.run_days.min(p.end_days), pick(t))).collect()
 }
 
-/// A well's mean rates; the period in which it ends counts up to its end, and periods without flow are gaps.
+/// When a well flows, days from the start, as the events tell.
+fn flow_intervals(forecast: &Forecast, name: &str) -> Vec<(f64, f64)> {
+    let mut list = Vec::new();
+    let mut since = None;
+    for event in forecast.events.iter().filter(|e| e.name == name) {
+        match event.kind {
+            EventKind::WellStarted | EventKind::FlowsAgain => {
+                since.get_or_insert(event.days);
+            }
+            EventKind::EndOfNaturalFlow(_) => list.push((since.take().unwrap_or(0.0), event.days)),
+            _ => {}
+        }
+    }
+    list.extend(since.map(|from| (from, f64::INFINITY)));
+    list
+}
+
+/// A well's mean rates over the part of each period in which it flows; periods without flow are gaps.
 fn well_stretches(forecast: &Forecast, well: &WellResult, pick: fn(&WellRow) -> f64) -> Vec<(f64, f64, f64)> {
-    let end = well.natural_flow_end.map_or(f64::INFINITY, |end| end.days);
+    let intervals = flow_intervals(forecast, &well.name);
     let rows = forecast.periods.iter().zip(&well.rows);
     rows.map(|(p, r)| {
         let run = p.run_days.min(p.end_days);
-        let until = if end > p.start_days { run.min(end) } else { run };
-        mean(p, until, if r.flowing_days > 0.0 { pick(r) } else { f64::NAN })
+        if r.flowing_days <= 0.0 {
+            return (p.start_days, run, f64::NAN);
+        }
+        let inside = intervals.iter().filter(|(from, to)| *from < run && *to > p.start_days);
+        let hull = inside.fold(None, |hull: Option<(f64, f64)>, (from, to)| {
+            Some(hull.map_or((*from, *to), |(a, b)| (a.min(*from), b.max(*to))))
+        });
+        let (from, to) = hull.map_or((p.start_days, run), |(a, b)| (a.max(p.start_days), b.min(run)));
+        (from, to, if to > from { pick(r) / (to - from) } else { f64::NAN })
     })
     .collect()
 }
