@@ -120,10 +120,10 @@ fn volumes(s: &mut Screen, rows: &[CaseRow], provenance: &Provenance) {
     let header: Vec<(&str, Side)> = header.iter().map(|(text, side)| (text.as_str(), *side)).collect();
     s.table(&header, &cells);
     if water {
-        s.quiet("  per extra: water injected above the base for each extra volume of oil");
+        s.quiet("  per extra: volumes of water injected above the base for each volume of oil above it");
     }
     if gas_in {
-        s.quiet(&format!("  per extra: gas injected above the base for each extra volume of oil, {}", ratio.text));
+        s.quiet(&format!("  per extra: gas injected above the base for each volume of oil above it, {}", ratio.text));
     }
 }
 

@@ -7,7 +7,7 @@ use super::screen::{Screen, Side};
 use super::{Done, output};
 use crate::fluid::{BlackOil, ReservoirFluid};
 use crate::report::folder::ResultFolder;
-use crate::report::human::{number, short};
+use crate::report::human::{number, significant};
 use crate::report::labels::label;
 use crate::report::{FluidSheet, OutFile, Provenance, fluid_csv, fluid_json, fluid_picture, picture_files};
 use crate::scenario::{Document, FluidScenario};
@@ -137,11 +137,8 @@ fn text(sheet: &FluidSheet, provenance: &Provenance, folder: Option<String>) -> 
             columns
                 .iter()
                 .map(|(stem, unit, pick)| match *stem {
-                    "pressure" => number(unit.of(pick(row)), 1),
-                    "rs" => number(unit.of(pick(row)), 1),
-                    "bg" => format!("{:.5}", unit.of(pick(row))),
-                    "mu_g" => format!("{:.5}", unit.of(pick(row))),
-                    _ => short(unit.of(pick(row))),
+                    "pressure" | "rs" => number(unit.of(pick(row)), 1),
+                    _ => significant(unit.of(pick(row))),
                 })
                 .collect(),
         );

@@ -54,10 +54,13 @@ fn ends(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
                 format!("{} {}", number(rate.of(end.oil_rate_stb_d), 0), rate.text),
                 span(end.days),
             ],
-            (_, true) => {
-                let until = format!("still flows at the end of the forecast ({})", month(last_day(forecast)));
-                vec![well.name.clone(), until, String::new(), String::new(), String::new()]
-            }
+            (_, true) => vec![
+                well.name.clone(),
+                month(last_day(forecast)),
+                "still flows at the end of the forecast".to_owned(),
+                String::new(),
+                String::new(),
+            ],
             (None, false) => vec![well.name.clone(), "never flowed".to_owned(), dash(), dash(), dash()],
         })
         .collect();
@@ -66,13 +69,9 @@ fn ends(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
         ("flows until", Side::Left),
         ("reason", Side::Left),
         ("oil rate then", Side::Right),
-        ("after the start", Side::Right),
+        ("after", Side::Right),
     ];
-    if rows.iter().all(|row| row.iter().skip(2).all(String::is_empty)) {
-        s.table(&header[..2], &rows.into_iter().map(|row| row[..2].to_vec()).collect::<Vec<_>>());
-    } else {
-        s.table(&header, &rows);
-    }
+    s.table(&header, &rows);
     for well in &forecast.wells {
         for text in interruptions(forecast, &well.name) {
             s.paragraph(2, 2, &text);

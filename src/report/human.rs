@@ -81,6 +81,15 @@ pub fn short(value: f64) -> String {
     }
 }
 
+/// Five significant digits, without an exponent down to a millionth.
+pub fn significant(value: f64) -> String {
+    if value == 0.0 || !value.is_finite() || value.abs() < 1e-6 {
+        return short(value);
+    }
+    let decimals = (4.0 - value.abs().log10().floor()).clamp(0.0, 10.0) as usize;
+    number(value, decimals)
+}
+
 /// A volume in words: "1.234 million STB", "12.3 thousand STB", "640 STB".
 pub fn volume(value: f64, unit: &str) -> String {
     format!("{} {unit}", words(value))

@@ -75,12 +75,14 @@ impl Provenance {
 
     /// The small line below a picture.
     fn footer(&self) -> String {
-        self.footer_of(self.case_name())
+        self.footer_of(&format!("case {}", self.case_name()))
     }
 
-    fn footer_of(&self, case: &str) -> String {
+    /// The same with other words at its end.
+    fn footer_of(&self, last: &str) -> String {
         let digest = self.sha256.get(..12).unwrap_or(&self.sha256);
-        format!("wane {} · {} · SHA-256 {digest} · case {case}", self.version, self.scenario_name)
+        let line = format!("wane {} · {} · SHA-256 {digest}", self.version, self.scenario_name);
+        if last.is_empty() { line } else { format!("{line} · {last}") }
     }
 }
 

@@ -37,7 +37,7 @@ pub fn compare_picture(cases: &[(&str, &Forecast)], provenance: &Provenance) -> 
 
     let mut d = Drawing::new(1040, (150 + 215 * panels_of.len()) as u32);
     let height = f64::from(d.size().1);
-    headings(&mut d, &provenance.title, "Cases compared", &provenance.footer_of("all"));
+    headings(&mut d, &provenance.title, "Cases compared", &provenance.footer_of("all cases"));
     let entries: Vec<(String, Look, bool)> =
         cases.iter().enumerate().map(|(i, (name, _))| ((*name).to_owned(), case_look(i), false)).collect();
     let top = 64.0 + legend(&mut d, 64.0, &entries);

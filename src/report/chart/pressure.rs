@@ -84,7 +84,13 @@ fn states(forecast: &Forecast, provenance: &Provenance) -> Vec<State> {
     };
     let mut tank_pressure = vec![(0.0, pressure.of(forecast.start_pressure_psia))];
     tank_pressure.extend(at_ends(forecast, pressure, tank(|t| Some(t.pressure_psia))));
-    let bubble = at_ends(forecast, pressure, tank(|t| Some(t.bubble_point_psia)));
+    let mut bubble = at_ends(forecast, pressure, tank(|t| Some(t.bubble_point_psia)));
+    // Oil that starts above its bubble point keeps the same one until it is reached.
+    if let (Some(first), Some(tank)) = (bubble.first().copied(), forecast.tank.first())
+        && tank.pressure_psia > tank.bubble_point_psia
+    {
+        bubble.insert(0, (0.0, first.1));
+    }
     let all = if forecast.wells.len() > 1 { TOTAL } else { look(0) };
     let mut gor_lines = vec![(at_ends(forecast, gor, tank(|t| t.gor_scf_stb)), all)];
     gor_lines.extend(wells(gor, |r| r.gor_scf_stb));

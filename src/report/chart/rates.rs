@@ -168,9 +168,15 @@ fn mean(period: &Period, until: f64, volume: f64) -> (f64, f64, f64) {
     (period.start_days, until, if length > 0.0 { volume / length } else { f64::NAN })
 }
 
-/// The tank's mean rates; the last period counts up to the end of the run.
+/// The tank's mean rates over the part of each period in which any well flows; periods without flow are gaps.
 pub(super) fn total_stretches(forecast: &Forecast, pick: fn(&TankRow) -> f64) -> Vec<(f64, f64, f64)> {
-    forecast.periods.iter().zip(&forecast.tank).map(|(p, t)| mean(p, p.run_days.min(p.end_days), pick(t))).collect()
+    let intervals: Vec<_> = forecast.wells.iter().flat_map(|w| flow_intervals(forecast, &w.name)).collect();
+    let rows = forecast.periods.iter().zip(&forecast.tank);
+    rows.map(|(p, t)| {
+        let flows = t.oil_stb + t.water_stb > 0.0;
+        flowing_mean(p, &intervals, if flows { pick(t) } else { f64::NAN })
+    })
+    .collect()
 }
 
 /// When a well flows, days from the start, as the events tell.
@@ -194,19 +200,18 @@ fn flow_intervals(forecast: &Forecast, name: &str) -> Vec<(f64, f64)> {
 fn well_stretches(forecast: &Forecast, well: &WellResult, pick: fn(&WellRow) -> f64) -> Vec<(f64, f64, f64)> {
     let intervals = flow_intervals(forecast, &well.name);
     let rows = forecast.periods.iter().zip(&well.rows);
-    rows.map(|(p, r)| {
-        let run = p.run_days.min(p.end_days);
-        if r.flowing_days <= 0.0 {
-            return (p.start_days, run, f64::NAN);
-        }
-        let inside = intervals.iter().filter(|(from, to)| *from < run && *to > p.start_days);
-        let hull = inside.fold(None, |hull: Option<(f64, f64)>, (from, to)| {
-            Some(hull.map_or((*from, *to), |(a, b)| (a.min(*from), b.max(*to))))
-        });
-        let (from, to) = hull.map_or((p.start_days, run), |(a, b)| (a.max(p.start_days), b.min(run)));
-        (from, to, if to > from { pick(r) / (to - from) } else { f64::NAN })
-    })
-    .collect()
+    rows.map(|(p, r)| flowing_mean(p, &intervals, if r.flowing_days > 0.0 { pick(r) } else { f64::NAN })).collect()
+}
+
+/// The mean rate of a volume over the part of a period between the first and the last flow in it.
+fn flowing_mean(period: &Period, intervals: &[(f64, f64)], volume: f64) -> (f64, f64, f64) {
+    let run = period.run_days.min(period.end_days);
+    let inside = intervals.iter().filter(|(from, to)| *from < run && *to > period.start_days);
+    let hull = inside.fold(None, |hull: Option<(f64, f64)>, (from, to)| {
+        Some(hull.map_or((*from, *to), |(a, b)| (a.min(*from), b.max(*to))))
+    });
+    let (from, to) = hull.map_or((period.start_days, run), |(a, b)| (a.max(period.start_days), b.min(run)));
+    (from, to, if to > from { volume / (to - from) } else { f64::NAN })
 }
 
 /// The scale of a stream, the factor from oilfield units to it, and its unit in words.
