@@ -9,10 +9,10 @@ use wane::tank::WaterModel;
 use wane::tubing::TubingMethod;
 use wane::units::UnitSystem;
 
-const OSPREY: &str = include_str!("data/osprey.toml");
+const REFERENCE: &str = include_str!("data/reference.toml");
 
-fn osprey() -> Document {
-    Document::parse("osprey.toml", OSPREY).unwrap_or_else(|problems| panic!("{problems}"))
+fn reference() -> Document {
+    Document::parse("reference.toml", REFERENCE).unwrap_or_else(|problems| panic!("{problems}"))
 }
 
 fn date(text: &str) -> jiff::civil::Date {
@@ -21,8 +21,8 @@ fn date(text: &str) -> jiff::civil::Date {
 
 #[test]
 fn the_example_of_the_reference_resolves_to_what_it_says() {
-    let scenario = osprey().resolve(None, &[]).unwrap_or_else(|problems| panic!("{problems}"));
-    assert_eq!(scenario.title, "Osprey flank");
+    let scenario = reference().resolve(None, &[]).unwrap_or_else(|problems| panic!("{problems}"));
+    assert_eq!(scenario.title, "Quillmere flank");
     assert_eq!(scenario.units, UnitSystem::Field);
     let field = &scenario.field;
     assert_eq!((field.period.start, field.period.end), (date("2027-01-01"), date("2042-01-01")));
@@ -60,7 +60,7 @@ fn the_example_of_the_reference_resolves_to_what_it_says() {
 
 #[test]
 fn a_case_changes_what_it_sets() {
-    let document = osprey();
+    let document = reference();
     assert_eq!(document.case_names(), ["no injection"]);
     let scenario = document.resolve(Some("no injection"), &[]).unwrap_or_else(|problems| panic!("{problems}"));
     assert_eq!(scenario.field.injectors[0].control, InjectionControl::VoidageReplacement(0.0));

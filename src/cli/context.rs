@@ -68,6 +68,7 @@ fn settings(scenario: &Scenario) -> Vec<(String, String)> {
     let tolerance = match field.tolerance {
         Tolerance::Normal => "normal",
         Tolerance::Tight => "tight",
+        Tolerance::Reference => "reference",
     };
     add("numerics.tolerance".to_owned(), tolerance.to_owned());
     add("atmospheric_pressure_psia".to_owned(), scenario.atmospheric_pressure_psia.to_string());

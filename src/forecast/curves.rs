@@ -129,8 +129,8 @@ fn points(now: &WellNow) -> Vec<(f64, f64, f64)> {
     (0..POINTS)
         .map(|i| {
             let s = i as f64 / (POINTS - 1) as f64;
-            // Closer at low rates, where the tubing curve turns.
-            let q = open * (0.004 + 0.995 * s * s.sqrt());
+            // Closer at low rates, where the tubing curve turns, and at open flow, where the inflow curve plunges.
+            let q = open * (0.002 + 0.998 * s * s * (3.0 - 2.0 * s));
             (q, now.curve.flowing_psia(q), now.tubing_psia(q))
         })
         .collect()

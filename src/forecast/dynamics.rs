@@ -14,6 +14,8 @@ const REGAIN_PSI: f64 = 0.01;
 pub(super) const FLOW_AGAIN_PSI: f64 = 1.0;
 /// Height to which crossings are resolved, psi: some hundred times finer than the integrator's tolerance needs.
 const CROSSING_PSI: f64 = 1e-7;
+/// Height that shows without further search that natural flow is not about to end, psi.
+const CLEAR_MARGIN_PSI: f64 = 25.0;
 /// Free-gas excess that counts as a change of side at the bubble point, scf/STB.
 const BUBBLE_POINT_SLACK_SCF_STB: f64 = 1e-6;
 /// The same for the critical gas saturation.
@@ -312,7 +314,7 @@ impl<'a> Dynamics<'a> {
             .sum()
     }
 
-    fn watch(&self, watch: Watch, tank: &TankState) -> f64 {
+    fn margin_of(&self, watch: Watch, tank: &TankState) -> f64 {
         let spec = |w: usize| &self.setup.wells[w].spec;
         match watch {
             Watch::BubblePoint => {
@@ -367,7 +369,12 @@ impl<'a> Dynamics<'a> {
             Watch::MarginGone(w) => {
                 let now = self.well_now(w, tank);
                 match self.modes.wells[w] {
-                    Mode::Line { low, high } => self.top(w, &now, low, high).1,
+                    Mode::Line { low, high } => {
+                        // A rate at which the curves stand well apart answers the question without looking for the best one.
+                        let known = self.memory.spots.borrow()[w].top_rate_stb_d;
+                        let there = if known > 0.0 { now.height_psi(known) } else { 0.0 };
+                        if there > CLEAR_MARGIN_PSI { there } else { self.top(w, &now, low, high).1 }
+                    }
                     _ => 1.0,
                 }
             }
@@ -438,8 +445,12 @@ impl Problem for Dynamics<'_> {
     fn watches(&self, _t_days: f64, y: &[f64], out: &mut [f64]) -> Result<(), ClosureError> {
         let tank = self.tank(y)?;
         for (value, watch) in out.iter_mut().zip(&self.watches) {
-            *value = self.watch(*watch, &tank);
+            *value = self.margin_of(*watch, &tank);
         }
         Ok(())
+    }
+
+    fn watch(&self, index: usize, _t_days: f64, y: &[f64]) -> Result<f64, ClosureError> {
+        Ok(self.margin_of(self.watches[index], &self.tank(y)?))
     }
 }

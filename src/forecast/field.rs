@@ -70,8 +70,8 @@ impl Field {
     /// # Errors
     /// [`RunError::Input`] with every fault found, keys as in the scenario file.
     pub fn new(spec: &FieldSpec) -> Result<Self, RunError> {
-        let fluid =
-            BlackOil::new(&spec.fluid, spec.tank.temperature_degf).map_err(|f| RunError::Input(under(f, "fluid")))?;
+        let fluid = BlackOil::new(&spec.fluid, spec.tank.temperature_degf)
+            .map_err(|f| RunError::Input(f.into_iter().map(fluid_key).collect()))?;
         let pb = fluid.initial_bubble_point_psia();
         let p_i = spec.tank.pressure_psia;
         // A hair of rounding between "bubble point" and "pressure" written alike in other units is no fault.
@@ -135,6 +135,22 @@ impl Field {
         &self.fluid
     }
 
+    /// Faults of the settings that dated events bring, keys under "change[i]".
+    pub fn change_faults(&self) -> Vec<Fault> {
+        let check = |(i, change): (usize, &super::ChangeSpec)| match self.changed(&self.setup, &change.change) {
+            Err(RunError::Input(faults)) => faults
+                .into_iter()
+                .map(|f| {
+                    // The change holds the whole well: its path replaces that of the well.
+                    let key = f.key.split_once("].").map_or(f.key.clone(), |(_, key)| key.to_owned());
+                    Fault { key, ..f }.under(&format!("change[{i}]"))
+                })
+                .collect(),
+            _ => Vec::new(),
+        };
+        self.spec.changes.iter().enumerate().flat_map(check).collect()
+    }
+
     /// The setup after a dated event.
     pub(super) fn changed(&self, setup: &Setup, change: &Change) -> Result<Setup, RunError> {
         let mut next = setup.clone();
@@ -152,6 +168,17 @@ impl Field {
     }
 }
 
+/// The key of the scenario file at which a fault of the fluid is mended.
+fn fluid_key(fault: Fault) -> Fault {
+    let table = match fault.key.as_str() {
+        "temperature" => "tank",
+        "standard_pressure" | "standard_temperature" => "standard",
+        _ => "fluid",
+    };
+    let key = fault.key.trim_start_matches("standard_").to_owned();
+    Fault { key, ..fault }.under(table)
+}
+
 fn flow(spec: &TankSpec) -> RelativePermeability {
     RelativePermeability::corey(&spec.relative_permeability, spec.connate_water)
 }
@@ -165,7 +192,8 @@ fn surroundings<'a>(spec: &FieldSpec, fluid: &'a BlackOil, tank: &'a Tank, start
         start,
         accuracy_psi: match spec.tolerance {
             Tolerance::Normal => 0.02,
-            Tolerance::Tight => 0.0002,
+            Tolerance::Tight => 2e-4,
+            Tolerance::Reference => 2e-6,
         },
     }
 }

@@ -37,6 +37,11 @@ pub trait Problem {
     /// # Errors
     /// Where the physics has no answer.
     fn watches(&self, t_days: f64, y: &[f64], out: &mut [f64]) -> Result<(), Self::Error>;
+    /// One of the watches.
+    ///
+    /// # Errors
+    /// Where the physics has no answer.
+    fn watch(&self, index: usize, t_days: f64, y: &[f64]) -> Result<f64, Self::Error>;
 }
 
 /// Tolerances and step limits.
@@ -119,7 +124,8 @@ impl<P: Problem> System<f64, State> for Rhs<'_, P> {
         self.notes.borrow_mut().right_hand_sides += 1;
         if let Err(error) = self.problem.derivative(self.from_days + tau, y.as_slice(), dy.as_mut_slice()) {
             dy.fill(f64::NAN);
-            self.notes.borrow_mut().failure = Some(error);
+            // The first failure of a trial tells why; later stages only see its NaN.
+            self.notes.borrow_mut().failure.get_or_insert(error);
         }
     }
 
@@ -266,11 +272,10 @@ fn locate<P: Problem>(problem: &P, stretch: &Stretch, marks: &[Mark]) -> Result<
             let t = if a <= 0.0 {
                 pair[0].0
             } else {
-                let mut values = vec![0.0; pair[0].1.len()];
                 let mut failure = None;
                 let t = brent(
-                    |t| match problem.watches(t, stretch.at(t).as_slice(), &mut values) {
-                        Ok(()) => values[i],
+                    |t| match problem.watch(i, t, stretch.at(t).as_slice()) {
+                        Ok(value) => value,
                         Err(error) => {
                             failure = Some(error);
                             -1.0

@@ -5,7 +5,7 @@ mod curves;
 mod doubts;
 mod dynamics;
 mod field;
-mod integrate;
+pub mod integrate;
 mod result;
 mod rows;
 mod run;

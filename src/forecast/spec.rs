@@ -100,6 +100,8 @@ pub enum Tolerance {
     Normal,
     /// A hundred times tighter, to check the former.
     Tight,
+    /// A hundred times tighter again, to check the one before; only from code.
+    Reference,
 }
 
 /// Everything a forecast needs: one case of a scenario, resolved.

@@ -73,8 +73,15 @@ pub(super) fn tank(tank: &TankSpec, fluid: &FluidSpec, atmospheric_pressure_psia
             );
         } else if tank.gas_cap_ratio > 0.0 && bubble_point_psia < tank.pressure_psia - SAME_PRESSURE_PSI {
             out.push(
-                Fault::new("fluid.bubble_point|tank.gas_cap_ratio|tank.pressure", format!("there is a gas cap, but the bubble point ({bubble_point_psia:.1} psia) is not the initial pressure ({:.1} psia)", tank.pressure_psia))
-                    .help("oil in contact with a gas cap is saturated: make them equal, or set tank.gas_cap_ratio to 0"),
+                Fault::new(
+                    "fluid.bubble_point|tank.gas_cap_ratio|tank.pressure",
+                    format!(
+                        "there is a gas cap, but the bubble point ({bubble_point_psia:.1} psia) is not the initial \
+                         pressure ({:.1} psia)",
+                        tank.pressure_psia
+                    ),
+                )
+                .help("oil in contact with a gas cap is saturated: make them equal, or set tank.gas_cap_ratio to 0"),
             );
         }
     }
@@ -82,7 +89,8 @@ pub(super) fn tank(tank: &TankSpec, fluid: &FluidSpec, atmospheric_pressure_psia
     if tank.connate_water + kr.residual_oil_to_gas + kr.critical_gas >= 1.0 {
         out.push(
             Fault::new(
-                "tank.relative_permeability.residual_oil_to_gas|tank.connate_water|tank.relative_permeability.critical_gas",
+                "tank.relative_permeability.residual_oil_to_gas|tank.connate_water\
+                 |tank.relative_permeability.critical_gas",
                 "connate water, residual oil to gas and critical gas leave no mobile oil",
             )
             .help(format!("{} + {} + {} must be below 1", tank.connate_water, kr.residual_oil_to_gas, kr.critical_gas)),
@@ -129,8 +137,15 @@ pub(super) fn well(
     let mut out = dates(well.start, well.end, period);
     if well.line_pressure_psia < atmospheric_pressure_psia - SAME_PRESSURE_PSI {
         out.push(
-            Fault::new("line_pressure", format!("the line pressure ({:.2} psia) lies below atmospheric pressure ({atmospheric_pressure_psia:.2} psia)", well.line_pressure_psia))
-                .help("was a gauge pressure meant? write psig or barg"),
+            Fault::new(
+                "line_pressure",
+                format!(
+                    "the line pressure ({:.2} psia) lies below atmospheric pressure \
+                     ({atmospheric_pressure_psia:.2} psia)",
+                    well.line_pressure_psia
+                ),
+            )
+            .help("was a gauge pressure meant? write psig or barg"),
         );
     }
     if well.line_pressure_psia >= tank.pressure_psia {
@@ -217,8 +232,15 @@ fn inflow(well: &WellSpec, atmospheric_pressure_psia: f64) -> Vec<Fault> {
             Measured::Gauged { flowing_psia } => {
                 if flowing_psia >= test.reservoir_psia {
                     out.push(
-                        Fault::new(format!("test[{i}].flowing"), format!("the flowing pressure ({flowing_psia:.1} psia) is not below the reservoir pressure ({:.1} psia)", test.reservoir_psia))
-                            .help("a well flows by the difference: check for swapped values, or gauge against absolute"),
+                        Fault::new(
+                            format!("test[{i}].flowing"),
+                            format!(
+                                "the flowing pressure ({flowing_psia:.1} psia) is not below the reservoir pressure \
+                                 ({:.1} psia)",
+                                test.reservoir_psia
+                            ),
+                        )
+                        .help("a well flows by the difference: check for swapped values, or gauge against absolute"),
                     );
                 }
                 if flowing_psia < atmospheric_pressure_psia - SAME_PRESSURE_PSI {

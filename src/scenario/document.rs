@@ -4,8 +4,9 @@ use super::load::{LoadError, read_text};
 use super::overrides::{self, Override, unknown_name};
 use super::problem::{Location, Problem, Problems};
 use super::read_tank;
-use super::reader::{FileUsed, Reader, Section, shorten};
+use super::reader::{FileUsed, Reader, shorten};
 use super::resolve::{self, problem_of, resolve};
+use super::section::Section;
 use super::tree::{self, Node, Table};
 use super::{checks, hex};
 use crate::fault::Fault;
@@ -295,6 +296,11 @@ impl Scenario {
     /// settings of a dated event.
     pub fn problem_at(&self, fault: &Fault) -> Problems {
         self.places.problems_at(std::slice::from_ref(fault))
+    }
+
+    /// Whether the file, case or settings say anything at this path.
+    pub(super) fn states(&self, path: &str) -> bool {
+        tree::locate_exactly(&self.places.root, path)
     }
 }
 

@@ -2,7 +2,8 @@
 
 use super::overrides::{self, Override, unknown_name};
 use super::problem::{Location, Problem};
-use super::reader::{Reader, Section};
+use super::reader::Reader;
+use super::section::Section;
 use super::tree::{Node, Table, Value};
 use jiff::civil::Date;
 

@@ -12,7 +12,7 @@ const LARGEST_BYTES: u64 = 16 << 20;
 #[derive(Debug, thiserror::Error)]
 pub enum LoadError {
     /// There is no such file.
-    #[error("there is no file {path}{}", near.as_ref().map_or(String::new(), |near| format!(" (did you mean {near}?)")))]
+    #[error("there is no file {path}{}", hint(near))]
     Missing {
         /// The path as given.
         path: String,
@@ -20,7 +20,7 @@ pub enum LoadError {
         near: Option<String>,
     },
     /// It is a directory.
-    #[error("{path} is a directory, a scenario file is expected{}", inside.as_ref().map_or(String::new(), |inside| format!(" (did you mean {inside}?)")))]
+    #[error("{path} is a directory, a scenario file is expected{}", hint(inside))]
     Directory {
         /// The path as given.
         path: String,
@@ -48,7 +48,7 @@ pub enum LoadError {
         path: String,
     },
     /// It holds bytes that no text has.
-    #[error("{path} is not a text file: byte {offset} is zero{}", if *utf16 { " (it looks like UTF-16: save it as UTF-8)" } else { "" })]
+    #[error("{path} is not a text file: byte {offset} is zero{}", if *utf16 { " (UTF-16? save it as UTF-8)" } else { "" })]
     Binary {
         /// The path as given.
         path: String,
@@ -126,6 +126,10 @@ pub(super) fn read_text(file: &Path) -> Result<String, LoadError> {
         return Err(LoadError::Empty { path });
     }
     Ok(text)
+}
+
+fn hint(near: &Option<String>) -> String {
+    near.as_ref().map_or_else(String::new, |near| format!(" (did you mean {near}?)"))
 }
 
 fn names_in(folder: &Path) -> Vec<String> {

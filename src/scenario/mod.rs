@@ -6,6 +6,7 @@
 mod checks;
 mod document;
 mod doubts;
+mod doubts_wells;
 mod events;
 mod guess;
 mod load;
@@ -14,8 +15,10 @@ mod problem;
 mod read_tank;
 mod read_wells;
 mod reader;
+mod reader_words;
 mod resolve;
 pub mod schema;
+mod section;
 mod survey;
 mod tree;
 

@@ -1,8 +1,9 @@
 //! Fluid, tank, calendar: from the tree to plain data.
 
 use super::problem::Problem;
-use super::reader::{Reader, Section};
+use super::reader::Reader;
 use super::schema::LATER_WATER_MODELS;
+use super::section::Section;
 use crate::fluid::FluidSpec;
 use crate::forecast::{Every, PeriodSpec, Tolerance};
 use crate::rock::CoreySpec;
@@ -129,11 +130,11 @@ fn water_model(reader: &mut Reader, tank: &Section<'_>, water_injected: bool) ->
     reader.finish(&section);
     if water_injected && !section.has("model") && tank.is_there() {
         reader.note(
-            Problem::new(section.at("model"), "water is injected, but `tank.water.model` does not say how it reaches the wells")
+            Problem::new(section.at("model"), "water is injected, but `tank.water.model` does not say how it flows")
                 .label("[tank.water] model is expected")
                 .help(
-                    "model = \"average\" lets water flow at the tank's average saturation, model = \"connate\" keeps it \
-                     away from the wells; the displacement model, which will be the default here, comes with a later version",
+                    "\"average\" lets water flow at the tank's average saturation, \"connate\" keeps it away from the \
+                     wells; \"displacement\", which will be the default here, comes with a later version",
                 ),
         );
     }

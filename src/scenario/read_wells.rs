@@ -1,8 +1,9 @@
 //! Wells and injectors: from the tree to plain data.
 
 use super::problem::Problem;
-use super::reader::{Reader, Section};
+use super::reader::Reader;
 use super::schema::{LATER_FUTURE_RULES, LATER_TUBING_METHODS};
+use super::section::Section;
 use super::survey;
 use crate::forecast::{InjectedFluid, InjectionControl, InjectorSpec};
 use crate::inflow::{Coefficient, FutureRule, InflowMethod, InflowSpec, InflowTest, Measured, RateBasis};

@@ -5,10 +5,11 @@ use super::events::{self, EventRead};
 use super::problem::{Location, Problem};
 use super::read_tank;
 use super::read_wells;
-use super::reader::{FileUsed, Reader, Section};
+use super::reader::{FileUsed, Reader};
+use super::section::Section;
 use super::tree::{self, Node, Table};
 use crate::fault::Fault;
-use crate::forecast::{Change, ChangeSpec, Every, FieldSpec, InjectedFluid, PeriodSpec};
+use crate::forecast::{Change, ChangeSpec, Every, Field, FieldSpec, InjectedFluid, PeriodSpec, RunError};
 use crate::units::UnitSystem;
 use jiff::civil::Date;
 use std::path::Path;
@@ -190,8 +191,11 @@ pub(super) fn problem_of(fault: &Fault, root: &Table) -> Problem {
 
 /// Faults that the layers of the physics find when they are built from these data.
 ///
-/// Filled when those layers are joined: `fluid::BlackOil::new`, `tubing::Tubing::new`; keys are full paths
-/// ("well[0].tubing.survey", "change[2].tubing.diameter" for the new settings of a dated event).
-pub(super) fn physics_faults(_field: &FieldSpec) -> Vec<Fault> {
-    Vec::new()
+/// Keys are full paths ("well[0].tubing.survey", "change[2].tubing.diameter" for the new settings of a dated event).
+pub(super) fn physics_faults(field: &FieldSpec) -> Vec<Fault> {
+    match Field::new(field) {
+        Ok(built) => built.change_faults(),
+        Err(RunError::Input(faults)) => faults,
+        Err(other) => vec![Fault::new("tank", other.to_string())],
+    }
 }

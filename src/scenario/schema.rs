@@ -2,7 +2,7 @@
 //!
 //! Reading, checking and the reference in `docs/scenario.md` all go by this one list.
 
-use crate::units::Dimension;
+use crate::units::{Dimension, units_of};
 
 /// One key.
 #[derive(Debug, Clone, PartialEq)]
@@ -15,6 +15,41 @@ pub struct Key {
     pub need: Need,
     /// What it means, in few words.
     pub about: &'static str,
+}
+
+impl Key {
+    /// The row of this key in `docs/scenario.md`.
+    pub fn row(&self) -> String {
+        let holds = match self.kind {
+            Kind::Text => "text".to_owned(),
+            Kind::Name => "name".to_owned(),
+            Kind::Flag => "true or false".to_owned(),
+            Kind::Day => "date".to_owned(),
+            Kind::Choice(words) => words.join(", "),
+            Kind::Number(limits) => format!("number, {}", limits.text("")),
+            Kind::Fraction(limits) => format!("fraction, {}", limits.text("")),
+            Kind::Quantity(dimension, limits) => {
+                let unit = units_of(dimension).next().map_or("", |unit| unit.name);
+                let what = dimension.with_article().trim_start_matches("an ").trim_start_matches("a ");
+                format!("{what}, {}", limits.text(unit))
+            }
+            Kind::Injected(..) if self.path.ends_with("injectivity") => {
+                "liquid (water) or gas rate per pressure".to_owned()
+            }
+            Kind::Injected(..) => "liquid rate (water) or gas rate (gas)".to_owned(),
+            Kind::FlowCoefficient => "rate per pressure^2n".to_owned(),
+            Kind::Survey => "list of pairs, or a path".to_owned(),
+            Kind::Table => "table".to_owned(),
+            Kind::Tables => "list of tables".to_owned(),
+            Kind::Overrides => "paths with values".to_owned(),
+        };
+        let need = match self.need {
+            Need::Required => "required".to_owned(),
+            Need::Optional => "none".to_owned(),
+            Need::Default(text) => format!("`{text}`"),
+        };
+        format!("| `{}` | {holds} | {need} | {} |", self.path, self.about)
+    }
 }
 
 /// Whether a key must be there.
@@ -73,6 +108,14 @@ pub struct Limits {
 }
 
 impl Limits {
+    /// In words: "above 0 and at most 30000 psia".
+    pub fn text(&self, unit: &str) -> String {
+        let show = |x: f64| if x == 0.0 || (1e-3..1e7).contains(&x.abs()) { format!("{x}") } else { format!("{x:e}") };
+        let low = if self.low_allowed { "at least" } else { "above" };
+        let unit = if unit.is_empty() { String::new() } else { format!(" {unit}") };
+        format!("{low} {} and at most {}{unit}", show(self.low), show(self.high))
+    }
+
     /// Whether the value is allowed; NaN never is.
     pub fn allow(&self, value: f64) -> bool {
         (value > self.low || (self.low_allowed && value == self.low)) && value <= self.high

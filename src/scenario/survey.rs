@@ -1,8 +1,9 @@
 //! The survey: pairs of measured and true vertical depth, in the scenario or in a CSV file beside it.
 
 use super::problem::{Location, Problem};
-use super::reader::{FileUsed, Reader, Section, shorten};
+use super::reader::{FileUsed, Reader, shorten};
 use super::schema::Limits;
+use super::section::Section;
 use super::tree::{Node, Value};
 use crate::units::{Dimension, parse, parse_number};
 use sha2::{Digest, Sha256};

@@ -57,6 +57,14 @@ pub enum ClosureError {
         /// Highest pressure tried, psia.
         highest_psia: f64,
     },
+    /// Free gas at a pressure where this fluid model's balance may have several roots.
+    #[error("the tank holds free gas at {pressure_psia:.0} psia; above {limit_psia:.0} psia the balance of this fluid model has several roots")]
+    SeveralRoots {
+        /// Pressure found, psia.
+        pressure_psia: f64,
+        /// Where the model's closure ceases to fall with pressure, psia.
+        limit_psia: f64,
+    },
     /// The inventories are not numbers.
     #[error("the volumes in the tank are not numbers")]
     NotANumber,
@@ -78,6 +86,7 @@ pub struct Tank {
     initial: Inventory,
     start: Inventory,
     initial_rs_scf_stb: f64,
+    closure_limit_psia: f64,
     before: Cumulatives,
 }
 
@@ -118,6 +127,7 @@ impl Tank {
         let mut tank = Self {
             cap_gas_scf: m * oil_zone_rb / fluid.bg(p_i),
             cap_volume_rb: m * oil_zone_rb,
+            closure_limit_psia: fluid.closure_limit_psia(),
             fluid,
             rel_perm,
             water_model: spec.water_model,

@@ -59,6 +59,10 @@ impl Tank {
         let fluid = self.fluid.as_ref();
         let rs = self.rs(inventory, p);
         let excess = inventory.gas_scf / inventory.oil_stb - fluid.rs_saturated(p);
+        let limit = self.closure_limit_psia;
+        if excess > 0.0 && p > limit {
+            return Err(ClosureError::SeveralRoots { pressure_psia: p, limit_psia: limit });
+        }
         let (bo, bg, bw) = (fluid.bo(p, rs), fluid.bg(p), fluid.bw(p));
         let pore = self.pore_volume_rb(p);
         let residual = self.rel_perm.residual_oil_to_gas();

@@ -42,11 +42,24 @@ pub struct BeggsBrill {
     pub payne: bool,
 }
 
-// Branch bits: the regime in two of them, the branch of S in two more.
+// Branch bits: the regime in two of them, the branch of S in two more, then four for the limits that act on the
+// holdup of the regime, and four for those of the other regime of transition flow.
 const REGIME_SHIFT: u16 = 2;
 const S_WINDOW: u16 = 16;
 const S_BELOW_ONE: u16 = 32;
+const LIMITS_SHIFT: u16 = 6;
+const OTHER_LIMITS_SHIFT: u16 = 10;
+/// HL(0) is the no-slip holdup.
+const HORIZONTAL_FLOOR: u16 = 1;
+/// C is zero.
+const NO_INCLINATION: u16 = 2;
+/// HL is at its lower limit.
+const FLOOR: u16 = 4;
+/// HL is 1.
+const CEILING: u16 = 8;
 
+/// Keeps logarithms finite.
+const LEAST_HOLDUP: f64 = 1e-6;
 const LN_0_01: f64 = -4.605_170_185_988_091;
 const LN_0_4: f64 = -0.916_290_731_874_155;
 
@@ -107,29 +120,29 @@ impl Map {
             .unwrap_or(Regime::Distributed)
     }
 
-    /// HL(0) of segregated, intermittent or distributed flow, not below the no-slip holdup.
+    /// ln HL(0) of segregated, intermittent or distributed flow, before its floor at the no-slip holdup.
     #[inline]
-    pub fn horizontal_holdup(&self, regime: Regime) -> f64 {
+    fn ln_horizontal_holdup(&self, regime: Regime) -> f64 {
         let (ln_a, b, c) = match regime {
             Regime::Segregated | Regime::Transition => (-0.020_202_707_317_519_466, 0.4846, 0.0868),
             Regime::Intermittent => (-0.168_418_651_624_963_15, 0.5351, 0.0173),
             Regime::Distributed => (0.062_974_799_161_388_39, 0.5824, 0.0609),
         };
-        let ln_holdup = ln_a + b * self.ln_no_slip_holdup - c * self.ln_froude;
-        ln_holdup.max(self.ln_no_slip_holdup).exp()
+        ln_a + b * self.ln_no_slip_holdup - c * self.ln_froude
     }
 
-    /// The coefficient C of the inclination correction; `ln_nlv` is the logarithm of the liquid velocity number.
+    /// The coefficient C of the inclination correction, before its floor at zero; `ln_nlv` is the logarithm of the
+    /// liquid velocity number.
     #[inline]
-    pub fn inclination(&self, regime: Regime, ln_nlv: f64, uphill: bool, no_slip_holdup: f64) -> f64 {
+    fn inclination(&self, regime: Regime, ln_nlv: f64, uphill: bool, no_slip_holdup: f64) -> f64 {
         let (ln_e, f, g, h) = match (uphill, regime) {
-            (true, Regime::Distributed) => return 0.0,
+            (true, Regime::Distributed) => return -1.0,
             (true, Regime::Segregated | Regime::Transition) => (-4.509_860_006_183_766, -3.768, 3.539, -1.614),
-            (true, Regime::Intermittent) => (1.085_189_268_335_969_8, 0.305, -0.4473, 0.0978),
+            (true, Regime::Intermittent) => (1.085_189_268_335_969, 0.305, -0.4473, 0.0978),
             (false, _) => (1.547_562_508_716_013_2, -0.3692, 0.1244, -0.5056),
         };
         let ln = ln_e + f * self.ln_no_slip_holdup + g * ln_nlv + h * self.ln_froude;
-        ((1.0 - no_slip_holdup) * ln).max(0.0)
+        (1.0 - no_slip_holdup) * ln
     }
 }
 
@@ -146,48 +159,111 @@ pub fn friction_exponent(ln_y: f64, window: bool) -> f64 {
     if s < 7.0 { s } else { 7.0 }
 }
 
-/// HL(0), psi and HL of one regime.
+/// HL(0), C, psi and HL of one regime.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Holdup {
-    /// HL(0).
+    /// HL(0), not below the no-slip holdup.
     pub horizontal: f64,
-    /// C.
+    /// C, not below zero.
     pub inclination: f64,
     /// psi.
     pub factor: f64,
     /// HL, corrected and limited.
     pub inclined: f64,
+    /// How far the flow is from the border where another set of limits acts.
+    margin: f64,
 }
 
 impl BeggsBrill {
     /// The holdup in one regime other than transition.
-    #[inline]
     pub fn holdup(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe) -> Holdup {
+        self.limited(map, regime, flow, pipe, self.limits(map, regime, flow, pipe))
+    }
+
+    /// Which limits act on the holdup of a regime.
+    fn limits(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe) -> u16 {
+        let mut limits = 0;
+        if map.ln_horizontal_holdup(regime) < map.ln_no_slip_holdup {
+            limits |= HORIZONTAL_FLOOR;
+        }
+        let ln_nlv = LnGroups::liquid_velocity_number(flow);
+        if map.inclination(regime, ln_nlv, pipe.sin_inclination >= 0.0, flow.no_slip_holdup) <= 0.0 {
+            limits |= NO_INCLINATION;
+        }
+        let free = self.limited(map, regime, flow, pipe, limits).inclined;
+        if free < self.floor(flow, pipe) {
+            limits |= FLOOR;
+        } else if free > 1.0 {
+            limits |= CEILING;
+        }
+        limits
+    }
+
+    #[inline]
+    fn floor(&self, flow: &Flow, pipe: &Pipe) -> f64 {
+        if pipe.sin_inclination >= 0.0 { flow.no_slip_holdup } else { LEAST_HOLDUP }
+    }
+
+    /// The holdup in one regime other than transition, with a given set of limits.
+    #[inline]
+    fn limited(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe, limits: u16) -> Holdup {
         let uphill = pipe.sin_inclination >= 0.0;
-        let lam = flow.no_slip_holdup;
-        let horizontal = map.horizontal_holdup(regime);
-        let inclination = map.inclination(regime, LnGroups::liquid_velocity_number(flow), uphill, lam);
+        let ln_horizontal = map.ln_horizontal_holdup(regime);
+        let above_no_slip = ln_horizontal - map.ln_no_slip_holdup;
+        let (horizontal, horizontal_margin) = if limits & HORIZONTAL_FLOOR != 0 {
+            (flow.no_slip_holdup, -above_no_slip)
+        } else {
+            (ln_horizontal.exp(), above_no_slip)
+        };
+        let ln_nlv = LnGroups::liquid_velocity_number(flow);
+        let coefficient = map.inclination(regime, ln_nlv, uphill, flow.no_slip_holdup);
+        let (inclination, inclination_margin) =
+            if limits & NO_INCLINATION != 0 { (0.0, -coefficient) } else { (coefficient, coefficient) };
         let factor = 1.0 + inclination * pipe.beggs_brill_factor;
         let payne = match (self.payne, uphill) {
             (false, _) => 1.0,
             (true, true) => 0.924,
             (true, false) => 0.685,
         };
-        let floor = if uphill { lam } else { 1e-6 };
-        Holdup { horizontal, inclination, factor, inclined: (horizontal * factor * payne).max(floor).min(1.0) }
+        let free = horizontal * factor * payne;
+        let floor = self.floor(flow, pipe);
+        let (inclined, limit_margin) = if limits & FLOOR != 0 {
+            (floor, floor - free)
+        } else if limits & CEILING != 0 {
+            (1.0, free - 1.0)
+        } else {
+            (free, (free - floor).min(1.0 - free))
+        };
+        let margin = horizontal_margin.min(inclination_margin).min(limit_margin);
+        Holdup { horizontal, inclination, factor, inclined, margin }
     }
 
-    /// HL of any regime.
-    #[inline]
-    fn inclined(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe) -> f64 {
-        if regime != Regime::Transition {
-            return self.holdup(map, regime, flow, pipe).inclined;
+    /// The bits of the limits of a regime; of both regimes in transition flow.
+    fn limit_bits(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe) -> u16 {
+        if regime == Regime::Transition {
+            (self.limits(map, Regime::Segregated, flow, pipe) << LIMITS_SHIFT)
+                | (self.limits(map, Regime::Intermittent, flow, pipe) << OTHER_LIMITS_SHIFT)
+        } else {
+            self.limits(map, regime, flow, pipe) << LIMITS_SHIFT
         }
+    }
+
+    /// HL of any regime and the margin of its limits.
+    #[inline]
+    fn inclined(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe, branch: Branch) -> (f64, f64) {
+        let limits = (branch.0 >> LIMITS_SHIFT) & 15;
+        if regime != Regime::Transition {
+            let holdup = self.limited(map, regime, flow, pipe, limits);
+            return (holdup.inclined, holdup.margin);
+        }
+        let other_limits = (branch.0 >> OTHER_LIMITS_SHIFT) & 15;
         let [_, l2, l3, _] = map.ln_limits;
         let weight = (l3.exp() - map.ln_froude.exp()) / (l3.exp() - l2.exp());
-        let segregated = self.holdup(map, Regime::Segregated, flow, pipe).inclined;
-        let intermittent = self.holdup(map, Regime::Intermittent, flow, pipe).inclined;
-        (weight * segregated + (1.0 - weight) * intermittent).clamp(1e-6, 1.0)
+        let segregated = self.limited(map, Regime::Segregated, flow, pipe, limits);
+        let intermittent = self.limited(map, Regime::Intermittent, flow, pipe, other_limits);
+        let holdup = weight * segregated.inclined + (1.0 - weight) * intermittent.inclined;
+        // Beyond the borders of the branch the weights leave 0 to 1.
+        (holdup.max(LEAST_HOLDUP), segregated.margin.min(intermittent.margin))
     }
 }
 
@@ -218,7 +294,8 @@ impl Hydraulics for BeggsBrill {
     fn branch(&self, flow: &Flow, pipe: &Pipe) -> Branch {
         let map = Map::new(flow, pipe);
         let regime = map.regime();
-        let holdup = self.inclined(&map, regime, flow, pipe);
+        let limits = self.limit_bits(&map, regime, flow, pipe);
+        let (holdup, _) = self.inclined(&map, regime, flow, pipe, Branch(limits));
         let y = flow.no_slip_holdup / (holdup * holdup);
         let exponent = if y <= 1.0 {
             S_BELOW_ONE
@@ -228,14 +305,14 @@ impl Hydraulics for BeggsBrill {
             0
         };
         let reynolds = no_slip::reynolds(flow, pipe, flow.no_slip_density_lb_ft3());
-        Branch(((regime as u16) << REGIME_SHIFT) | exponent | laminar_bit(reynolds))
+        Branch(limits | ((regime as u16) << REGIME_SHIFT) | exponent | laminar_bit(reynolds))
     }
 
     #[inline]
     fn gradient(&self, flow: &Flow, pipe: &Pipe, branch: Branch) -> Gradient {
         let map = Map::new(flow, pipe);
         let regime = regime_of(branch);
-        let holdup = self.inclined(&map, regime, flow, pipe);
+        let (holdup, limits_margin) = self.inclined(&map, regime, flow, pipe, branch);
         let slip_density = flow.density_at_holdup_lb_ft3(holdup);
         let no_slip_density = flow.no_slip_density_lb_ft3();
         let reynolds = no_slip::reynolds(flow, pipe, no_slip_density);
@@ -248,7 +325,10 @@ impl Hydraulics for BeggsBrill {
             friction_psi_ft: pipe.friction_psi_ft(moody, no_slip_density, flow.mixture_velocity_ft_s()),
             kinetic: flow.kinetic(slip_density),
             holdup,
-            margin: laminar_margin(reynolds, laminar).min(map.margin(regime)).min(exponent_margin(ln_y, branch)),
+            margin: laminar_margin(reynolds, laminar)
+                .min(map.margin(regime))
+                .min(exponent_margin(ln_y, branch))
+                .min(limits_margin),
         }
     }
 

@@ -13,7 +13,7 @@
 //!
 //! # Limitation
 //! Fitted to vertical 1 to 1.5 in. tubing of 1,500 ft, 10 to 110 cp. NL is held in 0.002 to 0.4 inside the CNL fit,
-//! H in 3e-6 to 6e-3, B below 0.09; psi is 1 for B up to 0.01 and never below. The holdup jumps where bubble flow
+//! H in 3e-6 to 6e-3, B below 0.09; psi is 1 up to where its fit exceeds 1 (B = 0.0123). The holdup jumps where bubble flow
 //! ends. In deviated pipe only the gravity term changes.
 //!
 //! # Source
@@ -21,42 +21,61 @@
 //! fits of Guo, Lyons and Ghalambor (2007).
 
 use super::groups::LnGroups;
-use super::model::{Branch, Flow, Gradient, Hydraulics, Pipe, laminar_bit, laminar_margin};
+use super::model::{Branch, Flow, Gradient, Hydraulics, Pipe, Range, laminar_bit, laminar_margin};
 use std::f64::consts::LN_10;
 
 /// Slip velocity of bubble flow, ft/s.
 const BUBBLE_SLIP_FT_S: f64 = 0.8;
-const BUBBLE: u16 = 4;
 const LN_PRESSURE_BASE: f64 = 2.687_847_493_784_690_6; // 14.7 psia
+
+// Branch bits: bubble flow, the sides of three fitted ranges, the floor and the ceiling of the holdup.
+const BUBBLE: u16 = 4;
+const FLOOR: u16 = 8;
+const CEILING: u16 = 16;
+/// ln NL within 0.002 and 0.4, the range of the chart: beyond it the quartic turns over.
+const VISCOSITY: Range = Range { low: -6.214_608_098_422_191, high: -0.916_290_731_874_155, shift: 5 };
+/// ln H within 3e-6 and 6e-3.
+const CORRELATING: Range = Range { low: -12.716_898_269_296_165, high: -5.115_995_809_754_082, shift: 7 };
+/// ln B from where the fit of psi rises above 1 (B = 0.0123) to 0.09.
+const SECONDARY: Range = Range { low: -4.398_143_709_447_593, high: -2.407_945_608_651_872, shift: 9 };
 
 /// The model.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub struct HagedornBrown;
 
-/// log10 of CNL from the natural logarithm of NL.
+/// CNL from the natural logarithm of NL, which is held to the range of the chart.
 #[inline]
-pub fn log10_cnl(ln_viscosity_number: f64) -> f64 {
-    // NL within 0.002 and 0.4, the range of the chart: beyond it the quartic turns over.
-    let x = (ln_viscosity_number / LN_10).clamp(-2.698_970_004_336_019, -0.397_940_008_672_037_6) + 3.0;
+pub fn cnl(ln_viscosity_number: f64) -> f64 {
+    (LN_10 * log10_cnl(ln_viscosity_number.clamp(VISCOSITY.low, VISCOSITY.high))).exp()
+}
+
+#[inline]
+fn log10_cnl(ln_viscosity_number: f64) -> f64 {
+    let x = ln_viscosity_number / LN_10 + 3.0;
     -2.698_51 + x * (0.158_41 + x * (-0.551 + x * (0.547_85 - x * 0.121_95)))
 }
 
-/// HL/psi from log10 of the correlating group H.
+/// HL/psi from the natural logarithm of the correlating group H, which is held to its range.
 #[inline]
-pub fn holdup_over_psi(log10_h: f64) -> f64 {
-    // H within 3e-6 and 6e-3.
-    let x = log10_h.clamp(-5.522_878_745_280_338, -2.221_848_749_616_356) + 6.0;
-    (-0.103_07 + x * (0.617_77 + x * (-0.632_95 + x * (0.295_98 - x * 0.0401)))).clamp(0.0, 1.0)
+pub fn holdup_over_psi(ln_h: f64) -> f64 {
+    fitted_holdup(ln_h.clamp(CORRELATING.low, CORRELATING.high))
 }
 
-/// psi from the secondary group B.
+#[inline]
+fn fitted_holdup(ln_h: f64) -> f64 {
+    let x = ln_h / LN_10 + 6.0;
+    -0.103_07 + x * (0.617_77 + x * (-0.632_95 + x * (0.295_98 - x * 0.0401)))
+}
+
+/// psi from the secondary group B: the fit from where it exceeds 1 to B = 0.09.
 #[inline]
 pub fn psi(b: f64) -> f64 {
-    if b <= 0.01 {
-        return 1.0;
-    }
-    let b = b.min(0.09);
-    (0.911_63 + b * (-4.821_76 + b * (1232.25 + b * (-22_253.6 + b * 116_174.3)))).max(1.0)
+    fitted_psi(b.clamp(0.01, 0.09)).max(1.0)
+}
+
+#[inline]
+fn fitted_psi(b: f64) -> f64 {
+    0.911_63 + b * (-4.821_76 + b * (1232.25 + b * (-22_253.6 + b * 116_174.3)))
 }
 
 /// The gas fraction of the flow below which it is bubble flow.
@@ -72,44 +91,28 @@ pub fn bubble_holdup(mixture_velocity_ft_s: f64, gas_velocity_ft_s: f64) -> f64 
     1.0 - 0.5 * (ratio - (ratio * ratio - 4.0 * gas_velocity_ft_s / BUBBLE_SLIP_FT_S).max(0.0).sqrt())
 }
 
-/// HL/psi and the holdup of slug flow and above, before and after the no-slip floor.
+/// The correlating groups, as logarithms: NL, H without CNL, B.
 #[inline]
-pub fn holdup(flow: &Flow, pipe: &Pipe) -> (f64, f64) {
+fn correlating(flow: &Flow, pipe: &Pipe) -> [f64; 3] {
     let n = LnGroups::new(flow, pipe);
-    let ln_h =
-        n.liquid_velocity - 0.575 * n.gas_velocity + 0.1 * (flow.pressure_psia.ln() - LN_PRESSURE_BASE) - n.diameter;
-    let over_psi = holdup_over_psi(ln_h / LN_10 + log10_cnl(n.viscosity));
-    let b = (n.gas_velocity + 0.38 * n.viscosity - 2.14 * n.diameter).exp();
-    (over_psi, (over_psi * psi(b)).max(flow.no_slip_holdup).min(1.0))
+    let pressure = 0.1 * (flow.pressure_psia.ln() - LN_PRESSURE_BASE);
+    [
+        n.viscosity,
+        n.liquid_velocity - 0.575 * n.gas_velocity + pressure - n.diameter,
+        n.gas_velocity + 0.38 * n.viscosity - 2.14 * n.diameter,
+    ]
 }
 
-/// Everything that depends on whether the flow is bubble flow.
+/// Everything that depends on the branch.
 struct State {
+    /// HL/psi; 1 in bubble flow.
+    over_psi: f64,
+    /// Holdup before floor and ceiling.
+    correlated: f64,
     holdup: f64,
     density_lb_ft3: f64,
     reynolds: f64,
-}
-
-#[inline]
-fn state(flow: &Flow, pipe: &Pipe, bubble: bool) -> State {
-    let velocity = flow.mixture_velocity_ft_s();
-    if bubble {
-        let holdup = bubble_holdup(velocity, flow.gas_velocity_ft_s);
-        let liquid = flow.liquid_velocity_ft_s / holdup;
-        State {
-            holdup,
-            density_lb_ft3: flow.density_at_holdup_lb_ft3(holdup),
-            reynolds: pipe.reynolds(flow.liquid_density_lb_ft3, liquid, flow.liquid_viscosity_cp),
-        }
-    } else {
-        let (_, holdup) = holdup(flow, pipe);
-        let ln_viscosity = holdup * flow.liquid_viscosity_cp.ln() + (1.0 - holdup) * flow.gas_viscosity_cp.ln();
-        State {
-            holdup,
-            density_lb_ft3: flow.density_at_holdup_lb_ft3(holdup),
-            reynolds: pipe.reynolds(flow.no_slip_density_lb_ft3(), velocity, ln_viscosity.exp()),
-        }
-    }
+    margin: f64,
 }
 
 /// How far the flow is inside bubble flow.
@@ -118,17 +121,84 @@ fn bubble_margin(flow: &Flow, pipe: &Pipe) -> f64 {
     bubble_limit(flow.mixture_velocity_ft_s(), pipe.diameter_ft) - (1.0 - flow.no_slip_holdup)
 }
 
+#[inline]
+fn in_bubble_flow(flow: &Flow, pipe: &Pipe) -> State {
+    let holdup = bubble_holdup(flow.mixture_velocity_ft_s(), flow.gas_velocity_ft_s);
+    let liquid = flow.liquid_velocity_ft_s / holdup;
+    State {
+        over_psi: 1.0,
+        correlated: holdup,
+        holdup,
+        density_lb_ft3: flow.density_at_holdup_lb_ft3(holdup),
+        reynolds: pipe.reynolds(flow.liquid_density_lb_ft3, liquid, flow.liquid_viscosity_cp),
+        margin: bubble_margin(flow, pipe),
+    }
+}
+
+#[inline]
+fn above_bubble_flow(flow: &Flow, pipe: &Pipe, branch: Branch) -> State {
+    let [nl, h, b] = correlating(flow, pipe);
+    let (nl, nl_margin) = VISCOSITY.hold(nl, branch);
+    let (h, h_margin) = CORRELATING.hold(h + LN_10 * log10_cnl(nl), branch);
+    let (b, b_margin) = SECONDARY.hold(b, branch);
+    let over_psi = fitted_holdup(h);
+    let correlated = over_psi * fitted_psi(b.exp());
+    let above_floor = correlated - flow.no_slip_holdup;
+    let (holdup, holdup_margin) = if branch.has(FLOOR) {
+        (flow.no_slip_holdup, -above_floor)
+    } else if branch.has(CEILING) {
+        (1.0, correlated - 1.0)
+    } else {
+        (correlated, above_floor.min(1.0 - correlated))
+    };
+    let ln_viscosity = holdup * flow.liquid_viscosity_cp.ln() + (1.0 - holdup) * flow.gas_viscosity_cp.ln();
+    State {
+        over_psi,
+        correlated,
+        holdup,
+        density_lb_ft3: flow.density_at_holdup_lb_ft3(holdup),
+        reynolds: pipe.reynolds(flow.no_slip_density_lb_ft3(), flow.mixture_velocity_ft_s(), ln_viscosity.exp()),
+        margin: nl_margin.min(h_margin).min(b_margin).min(holdup_margin).min(-bubble_margin(flow, pipe)),
+    }
+}
+
+/// HL/psi and the holdup of slug flow and above, floor and ceiling included.
+pub fn slug_holdup(flow: &Flow, pipe: &Pipe) -> (f64, f64) {
+    let state = above_bubble_flow(flow, pipe, slug_branch(flow, pipe));
+    (state.over_psi, state.holdup)
+}
+
+fn slug_branch(flow: &Flow, pipe: &Pipe) -> Branch {
+    let [nl, h, b] = correlating(flow, pipe);
+    let nl_bits = VISCOSITY.bits(nl);
+    let (held, _) = VISCOSITY.hold(nl, Branch(nl_bits));
+    let ranges = nl_bits | CORRELATING.bits(h + LN_10 * log10_cnl(held)) | SECONDARY.bits(b);
+    let state = above_bubble_flow(flow, pipe, Branch(ranges));
+    let limit = if state.correlated < flow.no_slip_holdup {
+        FLOOR
+    } else if state.correlated > 1.0 {
+        CEILING
+    } else {
+        0
+    };
+    let state = above_bubble_flow(flow, pipe, Branch(ranges | limit));
+    Branch(ranges | limit | laminar_bit(state.reynolds))
+}
+
 impl Hydraulics for HagedornBrown {
     fn branch(&self, flow: &Flow, pipe: &Pipe) -> Branch {
-        let bubble = bubble_margin(flow, pipe) > 0.0;
-        Branch(if bubble { BUBBLE } else { 0 } | laminar_bit(state(flow, pipe, bubble).reynolds))
+        if bubble_margin(flow, pipe) > 0.0 {
+            Branch(BUBBLE | laminar_bit(in_bubble_flow(flow, pipe).reynolds))
+        } else {
+            slug_branch(flow, pipe)
+        }
     }
 
     #[inline]
     fn gradient(&self, flow: &Flow, pipe: &Pipe, branch: Branch) -> Gradient {
         let bubble = branch.has(BUBBLE);
         let laminar = branch.has(Branch::LAMINAR);
-        let state = state(flow, pipe, bubble);
+        let state = if bubble { in_bubble_flow(flow, pipe) } else { above_bubble_flow(flow, pipe, branch) };
         let moody = pipe.roughness.moody(state.reynolds, laminar);
         let friction_psi_ft = if bubble {
             let liquid = flow.liquid_velocity_ft_s / state.holdup;
@@ -137,13 +207,12 @@ impl Hydraulics for HagedornBrown {
             let no_slip = flow.no_slip_density_lb_ft3();
             pipe.friction_psi_ft(moody, no_slip * no_slip / state.density_lb_ft3, flow.mixture_velocity_ft_s())
         };
-        let inside = bubble_margin(flow, pipe);
         Gradient {
             gravity_psi_ft: pipe.gravity_psi_ft(state.density_lb_ft3),
             friction_psi_ft,
             kinetic: flow.kinetic(state.density_lb_ft3),
             holdup: state.holdup,
-            margin: laminar_margin(state.reynolds, laminar).min(if bubble { inside } else { -inside }),
+            margin: laminar_margin(state.reynolds, laminar).min(state.margin),
         }
     }
 

@@ -20,7 +20,7 @@ use crate::fluid::BlackOil;
 use crate::units::constants::FT3_PER_BBL;
 
 /// Largest change of pressure in a step, relative to the pressure.
-const STEP_RELATIVE: f64 = 0.5;
+const STEP_RELATIVE: f64 = 0.35;
 /// First step: change of pressure relative to the pressure.
 const FIRST_STEP_RELATIVE: f64 = 0.12;
 /// Error at which a step aims, in units of the one at which it is repeated.
@@ -28,7 +28,7 @@ const AIM: f64 = 0.3;
 /// Error below which the next step grows no further, in the same units.
 const LEAST_ERROR: f64 = 0.01;
 /// Tolerance of one step's error estimate relative to the accuracy asked of the whole traverse.
-const STEP_SHARE: f64 = 0.25;
+const STEP_SHARE: f64 = 0.001;
 /// A branch that ends this soon after its begin, ft, is left unwatched for a while: the flow would chatter.
 const LEAST_BRANCH_FT: f64 = 1e-4;
 /// First stretch to be left unwatched, ft; it doubles each time.
@@ -60,7 +60,7 @@ pub(crate) struct Progress {
     /// Length wished for the next step, ft; 0: none yet.
     wish_ft: f64,
     unwatched_ft: f64,
-    steps: u32,
+    pub(crate) steps: u32,
 }
 
 impl Progress {
@@ -83,6 +83,8 @@ struct Step {
     end: Slope,
     error_psi: f64,
     least_margin: f64,
+    /// Whether the margin may be lower between the stages than at any of them.
+    valley: bool,
 }
 
 impl<'a, M: Hydraulics> March<'a, M> {
@@ -99,7 +101,7 @@ impl<'a, M: Hydraulics> March<'a, M> {
         }
     }
 
-    /// The flow at a point, and its pressure relative to the bubble point less one.
+    /// The flow at a point, and how far it is above (positive) or below its bubble point, relatively.
     #[inline]
     fn flow(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> (Flow, f64) {
         let pressure_psia = pressure_psia.max(PROPERTY_FLOOR_PSIA);
@@ -113,11 +115,14 @@ impl<'a, M: Hydraulics> March<'a, M> {
         let oil_share = oil / liquid;
         let water_share = 1.0 - oil_share;
         let velocity = self.rate_stb_s / stretch.area_ft2;
-        let above = if self.oil_fraction > 0.0 {
-            let bubble_point_psia = self.fluid.bubble_point_at_psia(self.gor_scf_stb, temperature_degf);
-            (pressure_psia / bubble_point_psia.max(1e-3) - 1.0).min(1.0)
-        } else {
+        // Below the bubble point the gas still dissolved tells as much, and costs nothing.
+        let above = if self.oil_fraction == 0.0 {
             1.0
+        } else if fluid.rs_scf_stb < self.gor_scf_stb {
+            fluid.rs_scf_stb / self.gor_scf_stb - 1.0
+        } else {
+            let bubble_point_psia = self.fluid.bubble_point_at_psia(self.gor_scf_stb, temperature_degf);
+            (pressure_psia / bubble_point_psia.max(1e-3) - 1.0).clamp(0.0, 1.0)
         };
         let flow = Flow {
             liquid_velocity_ft_s: velocity * liquid,
@@ -170,7 +175,8 @@ impl<'a, M: Hydraulics> March<'a, M> {
 
     /// One step of Dormand and Prince's pair on one branch; `h` is negative on the way up.
     #[inline]
-    fn step(&self, stretch: &Stretch, md: f64, p: f64, k1: f64, h: f64, branch: Branch) -> Step {
+    fn step(&self, stretch: &Stretch, md: f64, p: f64, start: Slope, h: f64, branch: Branch) -> Step {
+        let k1 = start.psi_ft;
         let mut least_margin = f64::INFINITY;
         let mut stage = |c: f64, slope: f64| {
             let at = self.slope(stretch, md + c * h, p + h * slope, branch);
@@ -178,8 +184,10 @@ impl<'a, M: Hydraulics> March<'a, M> {
             at
         };
         let k2 = stage(0.2, k1 / 5.0).psi_ft;
-        let k3 = stage(0.3, 3.0 / 40.0 * k1 + 9.0 / 40.0 * k2).psi_ft;
-        let k4 = stage(0.8, 44.0 / 45.0 * k1 - 56.0 / 15.0 * k2 + 32.0 / 9.0 * k3).psi_ft;
+        let third = stage(0.3, 3.0 / 40.0 * k1 + 9.0 / 40.0 * k2);
+        let k3 = third.psi_ft;
+        let fourth = stage(0.8, 44.0 / 45.0 * k1 - 56.0 / 15.0 * k2 + 32.0 / 9.0 * k3);
+        let k4 = fourth.psi_ft;
         let k5 = stage(
             8.0 / 9.0,
             19372.0 / 6561.0 * k1 - 25360.0 / 2187.0 * k2 + 64448.0 / 6561.0 * k3 - 212.0 / 729.0 * k4,
@@ -197,7 +205,8 @@ impl<'a, M: Hydraulics> March<'a, M> {
         let error = 71.0 / 57600.0 * k1 - 71.0 / 16695.0 * k3 + 71.0 / 1920.0 * k4 - 17253.0 / 339_200.0 * k5
             + 22.0 / 525.0 * k6
             - end.psi_ft / 40.0;
-        Step { pressure_psia: p + h * mean, end, error_psi: (h * error).abs(), least_margin }
+        let valley = third.margin < start.margin && fourth.margin < end.margin;
+        Step { pressure_psia: p + h * mean, end, error_psi: (h * error).abs(), least_margin, valley }
     }
 
     /// Marches to `end_md_ft` within a stretch, downwards or upwards. False: the pressure ran out on the way up.
@@ -225,18 +234,29 @@ impl<'a, M: Hydraulics> March<'a, M> {
                 wish = rest;
             }
             let mut length = wish.min(rest);
-            let mut step = self.step(stretch, md, p, start.psi_ft, direction * length, branch);
+            let mut step = self.step(stretch, md, p, start, direction * length, branch);
             let mut switched = false;
-            if step.least_margin < 0.0
-                && let Some(part) = self.switch(stretch, (md, p, start), &step, direction * length, branch)
-            {
-                if part * length < LEAST_BRANCH_FT {
-                    self.unwatched(stretch, progress, end_md_ft, &mut branch, &mut start);
-                    continue;
+            let mut at_border = (0.0, 0.0);
+            for _ in 0..5 {
+                if step.least_margin >= 0.0 && !step.valley {
+                    break;
                 }
-                switched = part < 1.0;
+                let Some(part) = self.switch(stretch, (md, p, start), &step, direction * length, branch) else { break };
+                if part * length < LEAST_BRANCH_FT {
+                    length = 0.0;
+                    break;
+                }
                 length *= part;
-                step = self.step(stretch, md, p, start.psi_ft, direction * length, branch);
+                step = self.step(stretch, md, p, start, direction * length, branch);
+                if let Some(end) = self.corrected(stretch, (md, p, start), &step, direction * length, branch) {
+                    switched = true;
+                    at_border = end;
+                    break;
+                }
+            }
+            if length == 0.0 {
+                self.unwatched(stretch, progress, end_md_ft, &mut branch, &mut start);
+                continue;
             }
             for _ in 0..6 {
                 if step.error_psi <= self.tolerance_psi || progress.steps > MOST_STEPS {
@@ -246,7 +266,7 @@ impl<'a, M: Hydraulics> March<'a, M> {
                 wish *= factor;
                 length *= factor;
                 switched = false;
-                step = self.step(stretch, md, p, start.psi_ft, direction * length, branch);
+                step = self.step(stretch, md, p, start, direction * length, branch);
             }
             progress.wish_ft = self.next_wish(wish, length, step.error_psi);
             if length >= rest {
@@ -255,10 +275,9 @@ impl<'a, M: Hydraulics> March<'a, M> {
                 progress.md_ft = md + direction * length;
             }
             progress.pressure_psia = step.pressure_psia;
-            let from = start;
             start = step.end;
             if switched {
-                self.correct(stretch, progress, (md, p, from), &step, direction * length, branch);
+                (progress.md_ft, progress.pressure_psia) = at_border;
                 let ahead = direction * 0.01_f64.min(rest);
                 branch = self.branch(stretch, progress.md_ft + ahead, progress.pressure_psia + start.psi_ft * ahead);
                 start = self.slope(stretch, progress.md_ft, progress.pressure_psia, branch);
@@ -285,7 +304,7 @@ impl<'a, M: Hydraulics> March<'a, M> {
         };
         let (mut inside, mut inside_margin) = (0.0, start.margin);
         let mut beyond = None;
-        for x in [0.25, 0.5, 0.75, 1.0] {
+        for x in [0.25, 0.4, 0.5, 0.6, 0.75, 1.0] {
             let at = if x == 1.0 { step.end.margin } else { margin(x) };
             if at < 0.0 {
                 beyond = Some((x, at));
@@ -325,26 +344,23 @@ impl<'a, M: Hydraulics> March<'a, M> {
         Some(0.5 * (inside + beyond))
     }
 
-    /// Moves the end of a step that was to end on a border onto it, by a secant on the margin.
-    fn correct(
+    /// The border near the end of a step that was to end on it, by a secant on the margin; `None` when the step missed it.
+    fn corrected(
         &self,
         stretch: &Stretch,
-        progress: &mut Progress,
         from: (f64, f64, Slope),
         step: &Step,
         h: f64,
         branch: Branch,
-    ) {
+    ) -> Option<(f64, f64)> {
         let (md, p, start) = from;
         let back = -0.02 * h;
         let pressure = hermite(0.98, h, (p, start.psi_ft), (step.pressure_psia, step.end.psi_ft));
         let before = self.slope(stretch, md + 0.98 * h, pressure, branch);
-        let shift = step.end.margin * back / (step.end.margin - before.margin);
-        if shift.abs() <= 0.02 * h.abs() {
-            let bend = (before.psi_ft - step.end.psi_ft) / back;
-            progress.md_ft -= shift;
-            progress.pressure_psia -= shift * (step.end.psi_ft - 0.5 * shift * bend);
-        }
+        let shift = -step.end.margin * back / (before.margin - step.end.margin);
+        let bend = (before.psi_ft - step.end.psi_ft) / back;
+        let at = (md + h + shift, step.pressure_psia + shift * (step.end.psi_ft + 0.5 * shift * bend));
+        (shift.abs() <= 0.02 * h.abs()).then_some(at)
     }
 
     /// Goes on for a while on the branch that would end at once, then chooses anew.
@@ -359,7 +375,7 @@ impl<'a, M: Hydraulics> March<'a, M> {
         let rest = end_md_ft - progress.md_ft;
         let h = rest.signum() * progress.unwatched_ft.min(rest.abs());
         progress.unwatched_ft *= 2.0;
-        let step = self.step(stretch, progress.md_ft, progress.pressure_psia, start.psi_ft, h, *branch);
+        let step = self.step(stretch, progress.md_ft, progress.pressure_psia, *start, h, *branch);
         progress.md_ft = if h == rest { end_md_ft } else { progress.md_ft + h };
         progress.pressure_psia = step.pressure_psia;
         *branch = self.branch(stretch, progress.md_ft, progress.pressure_psia);

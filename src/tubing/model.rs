@@ -189,3 +189,38 @@ pub(crate) fn laminar_margin(reynolds: f64, laminar: bool) -> f64 {
 pub(crate) fn laminar_bit(reynolds: f64) -> u16 {
     if reynolds < LAMINAR_REYNOLDS { Branch::LAMINAR } else { 0 }
 }
+
+/// A value that a fit holds to a range: which side of it the value lies on is part of the branch, since the corner
+/// there would spoil a step across it.
+#[derive(Clone, Copy)]
+pub(crate) struct Range {
+    pub low: f64,
+    pub high: f64,
+    /// Position of its two bits in the branch.
+    pub shift: u16,
+}
+
+impl Range {
+    /// The two bits of a value: within, below, above.
+    #[inline]
+    pub fn bits(self, x: f64) -> u16 {
+        let code = if x < self.low {
+            1
+        } else if x > self.high {
+            2
+        } else {
+            0
+        };
+        code << self.shift
+    }
+
+    /// The value to use on a branch, and the margin to its border.
+    #[inline]
+    pub fn hold(self, x: f64, branch: Branch) -> (f64, f64) {
+        match (branch.0 >> self.shift) & 3 {
+            1 => (self.low, self.low - x),
+            2 => (self.high, x - self.high),
+            _ => (x, (x - self.low).min(self.high - x)),
+        }
+    }
+}

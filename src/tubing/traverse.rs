@@ -105,7 +105,11 @@ impl Tubing {
         accuracy_psi: f64,
     ) -> Result<Self, Vec<Fault>> {
         let path = Path::new(spec, perforations_md_ft, bottom_temperature_degf)?;
-        Ok(Self { path, method: spec.method, accuracy_psi: accuracy_psi.max(1e-9).min(1.0) })
+        Ok(Self {
+            path,
+            method: spec.method,
+            accuracy_psi: if accuracy_psi > 1e-9 { accuracy_psi.min(1.0) } else { 1e-9 },
+        })
     }
 
     /// Pressure at the perforations that lifts the stream to a wellhead pressure: the march down. Always finite; a
@@ -122,6 +126,11 @@ impl Tubing {
     /// The traverse in detail, from the wellhead down.
     pub fn profile(&self, fluid: &BlackOil, stream: &Stream, wellhead_psia: f64) -> Vec<TraversePoint> {
         with_model!(self.method, model => self.points(model, fluid, stream, wellhead_psia))
+    }
+
+    /// Steps that [`flowing_pressure`](Self::flowing_pressure) takes: a measure of its work.
+    pub fn steps(&self, fluid: &BlackOil, stream: &Stream, wellhead_psia: f64) -> u32 {
+        with_model!(self.method, model => self.march_down(model, fluid, stream, wellhead_psia).steps)
     }
 
     /// Measured depth of the perforations, ft.
@@ -146,12 +155,17 @@ impl Tubing {
     }
 
     fn down<M: Hydraulics>(&self, model: &M, fluid: &BlackOil, stream: &Stream, wellhead_psia: f64) -> Traverse {
+        let end = self.march_down(model, fluid, stream, wellhead_psia);
+        Traverse { pressure_psia: end.pressure_psia, near_sonic: end.kinetic > KINETIC_LIMIT }
+    }
+
+    fn march_down<M: Hydraulics>(&self, model: &M, fluid: &BlackOil, stream: &Stream, wellhead_psia: f64) -> Progress {
         let march = March::new(model, fluid, stream, self.accuracy_psi);
         let mut progress = Progress::new(0.0, held(wellhead_psia));
         for stretch in &self.path.stretches {
             march.advance(stretch, &mut progress, stretch.bottom_md_ft);
         }
-        Traverse { pressure_psia: progress.pressure_psia, near_sonic: progress.kinetic > KINETIC_LIMIT }
+        progress
     }
 
     fn up<M: Hydraulics>(&self, model: &M, fluid: &BlackOil, stream: &Stream, flowing_psia: f64) -> Option<f64> {
@@ -198,7 +212,7 @@ impl Tubing {
 
 /// A pressure within what the traverse can start from.
 fn held(pressure_psia: f64) -> f64 {
-    pressure_psia.max(1.0).min(1e6)
+    if pressure_psia > 1.0 { pressure_psia.min(1e6) } else { 1.0 }
 }
 
 fn point<M: Hydraulics>(march: &March<'_, M>, stretch: &super::path::Stretch, progress: &Progress) -> TraversePoint {

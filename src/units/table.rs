@@ -319,7 +319,7 @@ fn build() -> Vec<Unit> {
         shifted("K", 1.8, -459.67, &["degk", "kelvin"]),
         shifted("degR", 1.0, -459.67, &["rankine"]),
 
-        linear(LiquidVolume, "STB", 1.0, &["bbl", "stockbarrels", "sbbl"]),
+        linear(LiquidVolume, "STB", 1.0, &["bbl", "sbbl"]),
         linear(LiquidVolume, "MSTB", 1.0e3, &["kstb", "mbbl", "kbbl"]),
         linear(LiquidVolume, "MMSTB", 1.0e6, &["mmbbl", "mlnstb", "mlnbbl"]),
         linear(LiquidVolume, "Sm3", M3_BBL, &["m3", "scm"]),
