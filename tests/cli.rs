@@ -1,4 +1,5 @@
 //! The program from outside: exit status, messages, files.
+#![allow(clippy::unwrap_used)]
 
 use std::collections::BTreeMap;
 use std::fs;

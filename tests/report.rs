@@ -1,4 +1,5 @@
 //! Exporters on results made by hand: names, numbers, sums.
+#![allow(clippy::unwrap_used)]
 
 mod report_support;
 

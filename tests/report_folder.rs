@@ -1,4 +1,5 @@
 //! The result folder: all or nothing, and nobody else's files.
+#![allow(clippy::unwrap_used)]
 
 mod report_support;
 

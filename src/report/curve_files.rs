@@ -8,6 +8,9 @@ use crate::fluid::FluidRow;
 use crate::forecast::WellCurves;
 use crate::tubing::TraversePoint;
 
+/// Name, unit and value of a column.
+pub type Column<Row> = (&'static str, Label, fn(&Row) -> f64);
+
 /// The fluid's properties at tank temperature.
 #[derive(Debug, Clone, PartialEq)]
 pub struct FluidSheet {
@@ -25,7 +28,7 @@ impl FluidSheet {
     }
 
     /// Name, unit and value of each column.
-    pub fn columns(units: UnitSystem) -> [(&'static str, Label, fn(&FluidRow) -> f64); 9] {
+    pub fn columns(units: UnitSystem) -> [Column<FluidRow>; 9] {
         let unit = |dimension| label(units, dimension);
         [
             ("pressure", unit(Dimension::Pressure), |r| r.pressure_psia),
@@ -93,7 +96,7 @@ pub fn curves_csv(curves: &[WellCurves], units: UnitSystem, with_method: bool) -
 /// When the CSV writer fails.
 pub fn traverse_csv(curves: &[WellCurves], units: UnitSystem) -> Result<Vec<u8>, ReportError> {
     let unit = |dimension| label(units, dimension);
-    let columns: [(&str, Label, fn(&TraversePoint) -> f64); 9] = [
+    let columns: [Column<TraversePoint>; 9] = [
         ("measured_depth", unit(Dimension::Length), |p| p.md_ft),
         ("vertical_depth", unit(Dimension::Length), |p| p.tvd_ft),
         ("pressure", unit(Dimension::Pressure), |p| p.pressure_psia),

@@ -58,7 +58,9 @@ pub enum ClosureError {
         highest_psia: f64,
     },
     /// Free gas at a pressure where this fluid model's balance may have several roots.
-    #[error("the tank holds free gas at {pressure_psia:.0} psia; above {limit_psia:.0} psia the balance of this fluid model has several roots")]
+    #[error(
+        "the tank holds free gas at {pressure_psia:.0} psia; above {limit_psia:.0} psia the balance of this fluid model has several roots"
+    )]
     SeveralRoots {
         /// Pressure found, psia.
         pressure_psia: f64,

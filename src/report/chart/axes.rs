@@ -170,7 +170,7 @@ impl Panel {
                 to = to.min(q / p);
             }
         }
-        (from <= to).then(|| ((a.0 + from * dx, a.1 + from * dy), (a.0 + to * dx, a.1 + to * dy)))
+        (from <= to).then_some(((a.0 + from * dx, a.1 + from * dy), (a.0 + to * dx, a.1 + to * dy)))
     }
 
     /// A marker at a point inside the panel.
@@ -246,6 +246,11 @@ fn outline(at: (f64, f64), mark: Mark, r: f64) -> Vec<(f64, f64)> {
         Mark::Diamond => &[(0.0, -1.25), (1.25, 0.0), (0.0, 1.25), (-1.25, 0.0)],
     };
     corners.iter().map(|(x, y)| (at.0 + r * x, at.1 + r * y)).collect()
+}
+
+/// Height that [`legend`] takes in a picture of this width.
+pub(super) fn legend_height(width: u32, entries: &[(String, Look, bool)]) -> f64 {
+    legend(&mut Drawing::new(width, 100), 0.0, entries)
 }
 
 /// Title, subtitle and the small line at the bottom.

@@ -1,13 +1,15 @@
 //! `pressure`: reservoir pressure, gas-oil ratio and water cut over time.
 
 use super::Drawing;
-use super::axes::{Span, headings, legend};
+use super::axes::{Span, headings, legend, legend_height};
 use super::rates::{NO_WATER, ends_of_flow, timeline, title, water_shows};
 use super::style::{Dash, Look, QUIET, TANK, TOTAL, look};
 use super::timeline::{draw_moments, moments_height, stack};
 use crate::forecast::Forecast;
 use crate::report::Provenance;
 use crate::report::labels::{Dimension, Label, label};
+
+const WIDTH: u32 = 960;
 
 type Points = Vec<(f64, f64)>;
 
@@ -23,12 +25,6 @@ struct State {
 /// Pressure, gas-oil ratio and water cut of a forecast, at the ends of the periods.
 pub fn pressure_picture(forecast: &Forecast, provenance: &Provenance) -> Drawing {
     let states = states(forecast, provenance);
-    let mut d = Drawing::new(960, (170 + 195 * states.len().max(1)) as u32);
-    let height = f64::from(d.size().1);
-    let no_water = if water_shows(forecast) { String::new() } else { format!("; {NO_WATER}") };
-    let subtitle = format!("States at the end of each period{no_water}");
-    headings(&mut d, &title(provenance), &subtitle, &provenance.footer());
-
     let timeline = timeline(forecast);
     let mut entries =
         vec![("tank".to_owned(), TANK, false), ("bubble point of the oil in the tank".to_owned(), BUBBLE, false)];
@@ -36,10 +32,18 @@ pub fn pressure_picture(forecast: &Forecast, provenance: &Provenance) -> Drawing
         entries.push(("all wells".to_owned(), TOTAL, false));
         entries.extend(forecast.wells.iter().enumerate().map(|(i, w)| (w.name.clone(), look(i), false)));
     }
-    let top = 64.0 + legend(&mut d, 64.0, &entries);
     let moments = ends_of_flow(forecast);
+    let top = 64.0 + legend_height(WIDTH, &entries);
+    let strip = moments_height(WIDTH, 36.0, timeline.days, &moments);
+    let height = top + strip + 28.0 + 195.0 * states.len() as f64 + 18.0;
+
+    let mut d = Drawing::new(WIDTH, height as u32);
+    let height = f64::from(d.size().1);
+    let no_water = if water_shows(forecast) { String::new() } else { format!("; {NO_WATER}") };
+    let subtitle = format!("States at the end of each period{no_water}");
+    headings(&mut d, &title(provenance), &subtitle, &provenance.footer());
+    legend(&mut d, 64.0, &entries);
     let ys: Vec<(Span, f64)> = states.iter().map(|s| (s.span(), 1.0)).collect();
-    let strip = stack(&d, top, height, 36.0, timeline.days, &ys).first().map_or(0.0, |p| moments_height(&moments, p));
     let panels = stack(&d, top + strip + 28.0, height - 62.0, 36.0, timeline.days, &ys);
     for (i, (state, panel)) in states.iter().zip(&panels).enumerate() {
         panel.draw_y(&mut d, &state.title, 4, true);

@@ -1,7 +1,7 @@
 //! `rates`: oil, gas, water and injection rates over time, each well and the total.
 
 use super::Drawing;
-use super::axes::{Span, headings, legend};
+use super::axes::{Span, headings, legend, legend_height};
 use super::style::{Look, TOTAL, look};
 use super::timeline::{Moment, Timeline, draw_moments, moments_height, stack};
 use crate::forecast::{EventKind, EventRecord, Forecast, InjectorRow, Period, TankRow, WellResult, WellRow};
@@ -27,24 +27,24 @@ struct Stream {
 /// The rates of a forecast as a picture: averages over the calendar period, drawn as steps.
 pub fn rates_picture(forecast: &Forecast, provenance: &Provenance) -> Drawing {
     let streams = streams(forecast);
-    let mut d = Drawing::new(WIDTH, (170 + 190 * streams.len().max(1)) as u32);
+    let timeline = timeline(forecast);
+    let several = forecast.wells.len() > 1 || !forecast.injectors.is_empty();
+    let entries = if several { legend_entries(forecast) } else { Vec::new() };
+    let moments = ends_of_flow(forecast);
+    let top = 64.0 + if several { legend_height(WIDTH, &entries) } else { 0.0 };
+    let strip = moments_height(WIDTH, 36.0, timeline.days, &moments);
+    let height = top + strip + 28.0 + 190.0 * streams.len().max(1) as f64 + 18.0;
+
+    let mut d = Drawing::new(WIDTH, height as u32);
     let height = f64::from(d.size().1);
     let no_water = if water_shows(forecast) { String::new() } else { format!("; {NO_WATER}") };
     let subtitle = format!("Calendar-day rates, averages over the part of each period with flow{no_water}");
     headings(&mut d, &title(provenance), &subtitle, &provenance.footer());
-
-    let timeline = timeline(forecast);
-    let mut top = 64.0;
-    if forecast.wells.len() > 1 || !forecast.injectors.is_empty() {
-        top += legend(&mut d, top, &legend_entries(forecast));
+    if several {
+        legend(&mut d, 64.0, &entries);
     }
-    let moments = ends_of_flow(forecast);
-    let panels_of = |d: &Drawing, top: f64| {
-        let ys: Vec<(Span, f64)> = streams.iter().map(|s| (axis(s, provenance).0, 1.0)).collect();
-        stack(d, top, height - 62.0, 36.0, timeline.days, &ys)
-    };
-    let strip = panels_of(&d, top).first().map_or(0.0, |p| moments_height(&moments, p));
-    let panels = panels_of(&d, top + strip + 28.0);
+    let ys: Vec<(Span, f64)> = streams.iter().map(|s| (axis(s, provenance).0, 1.0)).collect();
+    let panels = stack(&d, top + strip + 28.0, height - 62.0, 36.0, timeline.days, &ys);
     for (i, (stream, panel)) in streams.iter().zip(&panels).enumerate() {
         let (_, factor, unit) = axis(stream, provenance);
         panel.draw_y(&mut d, &format!("{} rate, {unit}", stream.name), 4, true);
@@ -84,12 +84,14 @@ pub(super) fn ends_of_flow(forecast: &Forecast) -> Vec<Moment> {
     let mut moments = Vec::new();
     for (i, well) in forecast.wells.iter().enumerate() {
         let is_end = |e: &&EventRecord| matches!(e.kind, EventKind::EndOfNaturalFlow(_)) && e.name == well.name;
+        let last = timeline(forecast).days.high;
         let mut ends: Vec<_> = forecast.events.iter().filter(is_end).map(|e| (e.days, e.date)).collect();
         if ends.is_empty() {
             ends.extend(well.natural_flow_end.map(|end| (end.days, end.date)));
         }
         let text = |date| format!("{} ends {}", well.name, short_month(date));
-        moments.extend(ends.into_iter().map(|(days, date)| Moment { days, text: text(date), look: look(i) }));
+        let inside = ends.into_iter().filter(|(days, _)| (0.0..=last).contains(days));
+        moments.extend(inside.map(|(days, date)| Moment { days, text: text(date), look: look(i) }));
     }
     moments
 }

@@ -106,9 +106,10 @@ fn rows_of(moments: &[Moment], panel: &Panel) -> (usize, Vec<(usize, f64)>) {
     (ends.len(), placed)
 }
 
-/// Height of the strip of labels above the panels.
-pub(super) fn moments_height(moments: &[Moment], panel: &Panel) -> f64 {
-    rows_of(moments, panel).0 as f64 * 17.0
+/// Height of the strip of labels above the panels of a picture of this width.
+pub(super) fn moments_height(width: u32, right: f64, x: Span, moments: &[Moment]) -> f64 {
+    let panels = stack(&Drawing::new(width, 100), 0.0, 100.0, right, x, &[(Span::new(0.0, 1.0), 1.0)]);
+    panels.first().map_or(0.0, |panel| rows_of(moments, panel).0 as f64 * 17.0)
 }
 
 /// A thin line through all panels at each moment, and its label above the first.
