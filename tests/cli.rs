@@ -242,7 +242,7 @@ fn the_fluid_table_has_the_fixed_columns_and_the_asked_pressures() {
     let first: Vec<f64> = lines[1..].iter().map(|l| l.split(',').next().unwrap().parse().unwrap()).collect();
     // 1 bar = 14.5037738 psi; the standard atmosphere of the program is 14.696 psia.
     assert_eq!(first[0], 3000.0);
-    assert!((first[1] - 1450.377_38).abs() < 1e-4 && (first[2] - 514.696).abs() < 1e-9, "{first:?}");
+    assert!((first[1] - 1_450.377_38).abs() < 1e-4 && (first[2] - 514.696).abs() < 1e-9, "{first:?}");
     refused(dir.path(), &["fluid", "demo/scenario.toml", "--at", "2500 psi"], 2, "--at \"2500 psi\"");
     refused(dir.path(), &["fluid", "demo/scenario.toml", "--at", "90000 psia"], 2, "fluid model");
     let output = wane(dir.path(), &["fluid", "demo/scenario.toml", "-o", "f"]);

@@ -172,7 +172,7 @@ fn mean(period: &Period, until: f64, volume: f64) -> (f64, f64, f64) {
 
 /// The tank's mean rates over the part of each period in which any well flows; periods without flow are gaps.
 pub(super) fn total_stretches(forecast: &Forecast, pick: fn(&TankRow) -> f64) -> Vec<(f64, f64, f64)> {
-    let intervals: Vec<_> = forecast.wells.iter().flat_map(|w| flow_intervals(forecast, &w.name)).collect();
+    let intervals: Vec<_> = forecast.wells.iter().flat_map(|w| flow_intervals(forecast, w)).collect();
     let rows = forecast.periods.iter().zip(&forecast.tank);
     rows.map(|(p, t)| {
         let flows = t.oil_stb + t.water_stb > 0.0;
@@ -181,11 +181,11 @@ pub(super) fn total_stretches(forecast: &Forecast, pick: fn(&TankRow) -> f64) ->
     .collect()
 }
 
-/// When a well flows, days from the start, as the events tell.
-fn flow_intervals(forecast: &Forecast, name: &str) -> Vec<(f64, f64)> {
+/// When a well flows, days from the start, as the events tell; without any, up to its end.
+fn flow_intervals(forecast: &Forecast, well: &WellResult) -> Vec<(f64, f64)> {
     let mut list = Vec::new();
     let mut since = None;
-    for event in forecast.events.iter().filter(|e| e.name == name) {
+    for event in forecast.events.iter().filter(|e| e.name == well.name) {
         match event.kind {
             EventKind::WellStarted | EventKind::FlowsAgain => {
                 since.get_or_insert(event.days);
@@ -195,12 +195,15 @@ fn flow_intervals(forecast: &Forecast, name: &str) -> Vec<(f64, f64)> {
         }
     }
     list.extend(since.map(|from| (from, f64::INFINITY)));
+    if list.is_empty() && well.rows.iter().any(|r| r.flowing_days > 0.0) {
+        list.push((0.0, well.natural_flow_end.map_or(f64::INFINITY, |end| end.days)));
+    }
     list
 }
 
 /// A well's mean rates over the part of each period in which it flows; periods without flow are gaps.
 fn well_stretches(forecast: &Forecast, well: &WellResult, pick: fn(&WellRow) -> f64) -> Vec<(f64, f64, f64)> {
-    let intervals = flow_intervals(forecast, &well.name);
+    let intervals = flow_intervals(forecast, well);
     let rows = forecast.periods.iter().zip(&well.rows);
     rows.map(|(p, r)| flowing_mean(p, &intervals, if r.flowing_days > 0.0 { pick(r) } else { f64::NAN })).collect()
 }
