@@ -205,11 +205,11 @@ fn a_target_is_held_by_choking_and_lost_once() {
 fn dated_events_act_on_their_day() {
     let mut spec = one_well();
     let mut changed = spec.wells[0].clone();
-    changed.skin = 8.0;
+    changed.skin = 2.0;
     spec.changes = vec![ChangeSpec {
         on: date(2028, 7, 17),
         name: "OP-1".to_owned(),
-        text: "skin = 8.0".to_owned(),
+        text: "skin = 2.0".to_owned(),
         change: Change::Well(0, Box::new(changed)),
     }];
     let damaged = holds(&spec);

@@ -39,7 +39,7 @@ pub fn run(args: &ForecastArgs) -> Result<Done, Failure> {
 
 /// Runs a scenario; the doubts about its data come before those about the result.
 pub fn run_one(scenario: &Scenario) -> Result<Forecast, RunError> {
-    let mut forecast = crate::forecast::run(&scenario.field)?;
+    let mut forecast = crate::forecast::run_with_curves(&scenario.field)?;
     let mut doubts = data_doubts(scenario);
     doubts.extend(forecast.doubts.iter().filter(|d| !doubts.contains(d)).cloned().collect::<Vec<_>>());
     forecast.doubts = doubts;

@@ -2,18 +2,16 @@
 
 use super::field::{Field, Setup, injected_fvf, injection_limit};
 use super::integrate::Problem;
-use super::{InjectedFluid, InjectionControl, StopReason};
+use super::{InjectedFluid, InjectionControl, StopReason, Tolerance};
 use crate::roots::brent;
 use crate::tank::{ClosureError, Cumulatives, TankState};
-use crate::well::{WellNow, oil_gradient_psi_ft, right_crossing, top_near};
+use crate::well::{Gauge, WellNow, oil_gradient_psi_ft, right_crossing, top_near};
 use std::cell::{Cell, RefCell};
 
 /// Height in psi by which the target (or floor) must be out of reach before it is taken up again, so that modes never flicker.
 const REGAIN_PSI: f64 = 0.01;
 /// Flow margin at which a dead well may flow again, psi.
 pub(super) const FLOW_AGAIN_PSI: f64 = 1.0;
-/// Height to which crossings are resolved, psi: some hundred times finer than the integrator's tolerance needs.
-const CROSSING_PSI: f64 = 1e-7;
 /// Height that shows without further search that natural flow is not about to end, psi.
 const CLEAR_MARGIN_PSI: f64 = 25.0;
 /// Free-gas excess that counts as a change of side at the bubble point, scf/STB.
@@ -84,6 +82,9 @@ pub(super) struct Spot {
     pub rate_stb_d: f64,
     pub slope: f64,
     pub top_rate_stb_d: f64,
+    /// Tank pressure at which the rate was found, psia, and the change of rate with it, STB/d/psi.
+    pub pressure_psia: f64,
+    pub per_pressure: f64,
 }
 
 /// Offsets into the scaled state vector.
@@ -125,7 +126,7 @@ impl Layout {
 pub(super) struct Memory {
     pub pressure_psia: Cell<f64>,
     pub spots: RefCell<Vec<Spot>>,
-    pub traverses: Cell<u64>,
+    pub gauge: Gauge,
     pub closures: Cell<u64>,
 }
 
@@ -219,7 +220,7 @@ impl<'a> Dynamics<'a> {
         let gradient = spec.tank.datum_tvd_ft.map_or(0.0, |_| {
             oil_gradient_psi_ft(&self.field.fluid, tank.pressure_psia, spec.tank.temperature_degf, tank.rs_scf_stb)
         });
-        self.setup.wells[w].now(&self.field.fluid, tank, gradient, &self.memory.traverses)
+        self.setup.wells[w].now(&self.field.fluid, tank, gradient, &self.memory.gauge)
     }
 
     /// The rate that the flowing-pressure floor allows, STB/d.
@@ -248,8 +249,17 @@ impl<'a> Dynamics<'a> {
         let bounds = (low * open, high * open);
         let spot = self.memory.spots.borrow()[w];
         let height = |q: f64| now.height_psi(q);
-        if let Some((rate, slope)) = right_crossing(height, spot.rate_stb_d, spot.slope, CROSSING_PSI, bounds) {
-            self.remember(w, |s| (s.rate_stb_d, s.slope) = (rate, slope));
+        let reservoir = now.curve.reservoir_psia();
+        // The rate moves with the pressure much as it did last time.
+        let moved = reservoir - spot.pressure_psia;
+        let start = spot.rate_stb_d + (spot.per_pressure * moved).clamp(-0.05 * spot.rate_stb_d, 0.05 * spot.rate_stb_d);
+        if let Some((rate, slope)) = right_crossing(height, start, spot.slope, self.crossing_psi(), bounds) {
+            self.remember(w, |s| {
+                if moved.abs() > 1e-3 {
+                    s.per_pressure = (rate - s.rate_stb_d) / moved;
+                }
+                (s.rate_stb_d, s.slope, s.pressure_psia) = (rate, slope, reservoir);
+            });
             return rate;
         }
         let guess = if spot.top_rate_stb_d > 0.0 { spot.top_rate_stb_d } else { 0.3 * open };
@@ -262,8 +272,18 @@ impl<'a> Dynamics<'a> {
         let rate = if right.1 >= 0.0 { right.0 } else { brent(height, (top_rate, top), right, 1e-11 * open) };
         let nudge = 1e-4 * rate;
         let slope = (height(rate + nudge) - height(rate - nudge)) / (2.0 * nudge);
-        self.remember(w, |s| *s = Spot { rate_stb_d: rate, slope, top_rate_stb_d: top_rate });
+        self.remember(w, |s| {
+            *s = Spot { rate_stb_d: rate, slope, top_rate_stb_d: top_rate, pressure_psia: now.curve.reservoir_psia(), per_pressure: 0.0 };
+        });
         rate
+    }
+
+    /// Height to which crossings are resolved, psi: some hundred times finer than the integrator's tolerance needs.
+    fn crossing_psi(&self) -> f64 {
+        match self.field.spec.tolerance {
+            Tolerance::Normal => 2e-6,
+            Tolerance::Tight | Tolerance::Reference => 1e-7,
+        }
     }
 
     pub fn remember(&self, w: usize, change: impl FnOnce(&mut Spot)) {
@@ -394,7 +414,7 @@ impl<'a> Dynamics<'a> {
 
     /// Positive while no other hump reaches above zero to the right of the one on which the well flows.
     fn right_hump(&self, w: usize, tank: &TankState) -> f64 {
-        const LOOKS: usize = 6;
+        const LOOKS: usize = 2;
         let now = self.well_now(w, tank);
         // Beyond a target or floor the well does not go, so nothing there matters.
         let cap = self.floor_rate(w, &now).min(self.setup.wells[w].spec.target_rate_stb_d.unwrap_or(f64::INFINITY));

@@ -15,5 +15,5 @@ pub use calendar::{date_at, days_between};
 pub use curves::{WellCurves, curves_on};
 pub use field::{Field, RunError};
 pub use result::*;
-pub use run::run;
+pub use run::{run, run_with_curves};
 pub use spec::*;

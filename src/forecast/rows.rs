@@ -1,17 +1,18 @@
 //! The finished forecast, read from the trace: period rows, curves, doubts.
 
 use super::calendar::periods;
-use super::curves::life_curves;
 use super::doubts::{Seen, about_result};
 use super::dynamics::{Dynamics, Mode};
 use super::field::{Field, RunError};
 use super::run::{Piece, Trace, work};
 use super::{DriveIndices, Forecast, InjectedFluid, InjectorResult, InjectorRow, Period, TankRow, WellResult, WellRow};
 use crate::tank::{Cumulatives, TankState};
-use crate::well::{Landscape, top_near};
+use crate::well::{Landscape, follow_top};
 
-/// Rows between two looks over all rates; in between the top of the margin is followed.
+/// Rows between two looks at other rates; in between the top of the margin is followed.
 const ROWS_PER_LOOK: usize = 12;
+/// Those other rates, as parts of open flow.
+const LOOKS: [f64; 7] = [0.02, 0.05, 0.1, 0.2, 0.35, 0.55, 0.8];
 
 /// Where a well's margin was found last.
 #[derive(Clone, Copy, Default)]
@@ -21,9 +22,9 @@ struct Margin {
 }
 
 /// Makes the forecast from its trace.
-pub(super) fn forecast(field: &Field, trace: Trace) -> Result<Forecast, RunError> {
+pub(super) fn forecast(field: &Field, trace: &Trace) -> Result<Forecast, RunError> {
     let spec = &field.spec;
-    let mut rows = Rows::new(field, &trace);
+    let mut rows = Rows::new(field, trace);
     let mut list = periods(&spec.period);
     list.retain(|p| p.start_days < trace.end_days);
     for period in &mut list {
@@ -48,7 +49,7 @@ pub(super) fn forecast(field: &Field, trace: Trace) -> Result<Forecast, RunError
                 peak_gor_scf_stb: rows.iter().filter_map(|r| r.gor_scf_stb).fold(0.0, f64::max),
                 inflow_text: model.inflow_text(),
                 tests: model.tests.clone(),
-                curves: life_curves(field, &trace, w)?,
+                curves: Vec::new(),
                 rows,
             })
         })
@@ -63,12 +64,12 @@ pub(super) fn forecast(field: &Field, trace: Trace) -> Result<Forecast, RunError
         produced_before_stb: spec.tank.produced.map_or(0.0, |p| p.oil_stb),
         start_pressure_psia: field.start.pressure_psia,
         balance_residual: tank.iter().map(|r| r.balance_residual.abs()).fold(0.0, f64::max),
-        work: work(&trace),
+        work: work(trace),
         periods: list,
         tank,
         wells: results,
         injectors: injector_results,
-        events: trace.events,
+        events: trace.events.clone(),
         doubts: Vec::new(),
     };
     forecast.doubts = about_result(field, &forecast, &seen);
@@ -184,26 +185,34 @@ impl<'a> Rows<'a> {
                 Mode::Line { .. } => piece.setup.wells[w].spec.line_pressure_psia,
                 _ => now.wellhead_psia(rate, flowing_psia),
             });
-            self.seen.well(w, self.wells[w].len(), now.near_sonic(rate));
+            if !matches!(mode, Mode::Line { .. }) {
+                now.tubing_psia(rate);
+            }
+            self.seen.well(w, self.wells[w].len(), self.trace.memory.gauge.near_sonic.get());
         }
         row
     }
 
-    /// The flow margin: followed from the row before, looked for over all rates once a year and where it is new.
+    /// The flow margin: followed from the row before, held against other rates once a year, looked for over all rates where it is new.
     fn margin(&mut self, w: usize, now: &crate::well::WellNow) -> f64 {
         let open = now.curve.open_flow_stb_d();
         if open <= 0.0 {
             return -now.tubing_psia(0.0);
         }
         let known = &mut self.margins[w];
-        if known.rate_stb_d <= 0.0 || known.rate_stb_d >= open || known.age >= ROWS_PER_LOOK {
-            let Landscape { margin_psi, margin_rate_stb_d, .. } = now.survey();
-            *known = Margin { rate_stb_d: margin_rate_stb_d, age: 1 };
-            return margin_psi;
+        let lost = known.rate_stb_d <= 0.0 || known.rate_stb_d >= open;
+        if !lost {
+            let (rate, margin) = follow_top(|q| now.height_psi(q), known.rate_stb_d, 0.005 * open, 0.999 * open);
+            *known = Margin { rate_stb_d: rate, age: known.age + 1 };
+            let elsewhere = |part: f64| now.height_psi(part * open);
+            if known.age < ROWS_PER_LOOK || !LOOKS.into_iter().any(|part| elsewhere(part) > margin) {
+                known.age %= ROWS_PER_LOOK;
+                return margin;
+            }
         }
-        let (rate, margin) = top_near(|q| now.height_psi(q), known.rate_stb_d, 0.005 * open, 0.999 * open);
-        *known = Margin { rate_stb_d: rate, age: known.age + 1 };
-        margin
+        let Landscape { margin_psi, margin_rate_stb_d, .. } = now.survey();
+        *known = Margin { rate_stb_d: margin_rate_stb_d, age: 1 };
+        margin_psi
     }
 
     fn flowing_days(&self, w: usize, period: &Period) -> f64 {

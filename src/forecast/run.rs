@@ -39,8 +39,22 @@ pub(super) struct Trace {
 /// [`RunError`]; a balance that runs out is no error but the reason of the wells' stop.
 pub fn run(spec: &FieldSpec) -> Result<Forecast, RunError> {
     let field = Field::new(spec)?;
-    let trace = Run::new(&field).go()?;
-    super::rows::forecast(&field, trace)
+    let trace = trace(&field)?;
+    super::rows::forecast(&field, &trace)
+}
+
+/// Runs the forecast and adds each well's curves at the start, at mid-life and at the end of its natural flow.
+///
+/// # Errors
+/// As [`run`].
+pub fn run_with_curves(spec: &FieldSpec) -> Result<Forecast, RunError> {
+    let field = Field::new(spec)?;
+    let trace = trace(&field)?;
+    let mut forecast = super::rows::forecast(&field, &trace)?;
+    for (w, well) in forecast.wells.iter_mut().enumerate() {
+        well.curves = super::curves::life_curves(&field, &trace, w)?;
+    }
+    Ok(forecast)
 }
 
 /// Integrates and keeps the trace only.
@@ -68,9 +82,9 @@ impl<'a> Run<'a> {
         *memory.spots.borrow_mut() = vec![Spot::default(); wells];
         let layout = Layout { wells, injectors };
         let (rtol, atol) = match field.spec.tolerance {
-            Tolerance::Normal => (1e-7, 1e-9),
-            Tolerance::Tight => (1e-9, 1e-11),
-            Tolerance::Reference => (1e-11, 1e-13),
+            Tolerance::Normal => (1e-6, 1e-8),
+            Tolerance::Tight => (1e-8, 1e-10),
+            Tolerance::Reference => (1e-10, 1e-12),
         };
         // The integrator's error norm is a mean over components: idle ones must not loosen it.
         let share = (2.0 / layout.len() as f64).sqrt();
@@ -100,7 +114,7 @@ impl<'a> Run<'a> {
                 end_text: "period ended",
             },
             switches_here: 0,
-            settings: Settings { rtol, atol, longest_step_days: 122.0, first_step_days: 1.0 },
+            settings: Settings { rtol, atol, longest_step_days: 250.0, first_step_days: 1.0 },
         }
     }
 
@@ -494,7 +508,7 @@ impl<'a> Run<'a> {
                 let (low, high) = (land.hump_stb_d.0.min(0.999 * cap), land.hump_stb_d.1.max(1.001 * cap));
                 let top = if land.top_rate_stb_d < cap { land.top_rate_stb_d } else { 0.9 * cap };
                 let mode = Mode::Line { low: low / open, high: (high / open).min(1.0) };
-                (Ok(mode), Spot { rate_stb_d: cap, slope, top_rate_stb_d: top })
+                (Ok(mode), Spot { rate_stb_d: cap, slope, top_rate_stb_d: top, ..Spot::default() })
             } else {
                 let limit = if was == Mode::Floor { StopReason::MinimumFlowingPressure } else { StopReason::RateLimit };
                 match stable_below(&now, 0.999_999 * cap) {
@@ -536,7 +550,7 @@ fn stable_below(now: &crate::well::WellNow, cap_stb_d: f64) -> Option<(Mode, Spo
     let high = if high < open { 0.5 * (rate + high) } else { open };
     Some((
         Mode::Line { low: low / open, high: high / open },
-        Spot { rate_stb_d: rate, slope, top_rate_stb_d: 0.5 * (rate + low.max(0.5 * rate)) },
+        Spot { rate_stb_d: rate, slope, top_rate_stb_d: 0.5 * (rate + low.max(0.5 * rate)), ..Spot::default() },
     ))
 }
 
@@ -565,7 +579,7 @@ fn placement(setup: &Setup, dynamics: &Dynamics, w: usize, tank: &TankState) -> 
     } else {
         (floor, Mode::Floor, StopReason::MinimumFlowingPressure)
     };
-    let top = Spot { rate_stb_d: 0.0, slope: 0.0, top_rate_stb_d: land.top_rate_stb_d };
+    let top = Spot { top_rate_stb_d: land.top_rate_stb_d, ..Spot::default() };
     let (mode, spot, rate) = if cap <= 0.0 {
         return (Err(limit), top);
     } else if cap < open && now.height_psi(cap) >= 0.0 {
@@ -595,7 +609,7 @@ pub(super) fn work(trace: &Trace) -> Work {
     Work {
         steps: trace.effort.steps,
         right_hand_sides: trace.effort.right_hand_sides,
-        traverses: trace.memory.traverses.get(),
+        traverses: trace.memory.gauge.traverses.get(),
         closure_solves: trace.memory.closures.get(),
         segments: trace.pieces.len() as u64,
     }

@@ -325,6 +325,7 @@ impl Hydraulics for BeggsBrill {
             friction_psi_ft: pipe.friction_psi_ft(moody, no_slip_density, flow.mixture_velocity_ft_s()),
             kinetic: flow.kinetic(slip_density),
             holdup,
+            course: f64::INFINITY,
             margin: laminar_margin(reynolds, laminar)
                 .min(map.margin(regime))
                 .min(exponent_margin(ln_y, branch))

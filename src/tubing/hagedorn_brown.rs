@@ -212,6 +212,7 @@ impl Hydraulics for HagedornBrown {
             friction_psi_ft,
             kinetic: flow.kinetic(state.density_lb_ft3),
             holdup: state.holdup,
+            course: f64::INFINITY,
             margin: laminar_margin(state.reynolds, laminar).min(state.margin),
         }
     }

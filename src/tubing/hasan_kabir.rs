@@ -25,11 +25,23 @@
 //! Hasan and Kabir, SPE Production Engineering (1988) 263 and 474 (mechanistic model, deviated wells); Hasan, Kabir
 //! and Sayarpour, J. Pet. Sci. Eng. 71 (2010) 114 (blended void fraction). Constants from memory of the papers.
 
-use super::model::{Branch, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe, laminar_bit, laminar_margin};
+use super::model::{Branch, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe, Range, laminar_bit, laminar_margin};
 use crate::units::constants::GRAVITY_FT_S2;
 
 /// Distribution coefficient of bubbly and slug flow.
 const C0: f64 = 1.2;
+
+// Branch bits. All transitions are smooth, yet they begin at a point where no power series holds.
+/// Above the end of bubbly flow.
+const SLUG: u16 = 4;
+/// Above the droplet criterion.
+const DROPLETS: u16 = 8;
+/// Void fraction of slug flow between which the droplet criterion gains weight.
+const WEIGHT: Range = Range { low: 0.6, high: 0.8, shift: 4 };
+
+/// Relative change of pressure allowed in a step per relative distance from the onset of a transition, and at it.
+const COURSE: f64 = 0.35;
+const LEAST_COURSE: f64 = 0.02;
 
 /// The default model.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -83,27 +95,78 @@ pub struct Void {
 }
 
 /// The void fraction.
-#[inline]
 pub fn void(flow: &Flow, pipe: &Pipe) -> Void {
-    let gas = flow.gas_velocity_ft_s;
-    let mixture = flow.mixture_velocity_ft_s();
-    let small = small_bubble_ft_s(flow);
-    let bubbly_end = (C0 * flow.liquid_velocity_ft_s + small) / (4.0 - C0) * pipe.sin_inclination.max(0.0);
-    let slug = blend(gas, bubbly_end);
-    let drift = if slug > 0.0 { small + (long_bubble_ft_s(flow, pipe) - small) * slug } else { small };
-    let in_slug = gas / (C0 * mixture + drift);
-    let weight = smooth_step((in_slug - 0.6) / 0.2);
-    let annular = if weight > 0.0 { weight * blend(gas, droplet_ft_s(flow)) } else { 0.0 };
-    let fraction = gas / ((C0 - (C0 - 1.0) * annular) * mixture + drift * (1.0 - annular));
-    // At rest gas / 0 cannot occur: small bubbles rise. Only a fluid without density difference leaves 0/0.
-    let fraction = if fraction >= 0.0 { fraction.min(1.0 - flow.no_slip_holdup) } else { 0.0 };
-    Void { fraction, slug, annular }
+    state(flow, pipe, void_branch(flow, pipe)).void
 }
 
-/// exp(-0.1 onset/(velocity - onset)): zero with all its derivatives at the onset, one far above it.
+/// Everything that depends on the branch.
+struct State {
+    void: Void,
+    margin: f64,
+    course: f64,
+    /// Bits that the flow itself would choose.
+    in_slug: f64,
+    above_bubbly: f64,
+}
+
 #[inline]
-fn blend(velocity: f64, onset: f64) -> f64 {
-    if velocity > onset { (-0.1 * onset / (velocity - onset)).exp() } else { 0.0 }
+fn state(flow: &Flow, pipe: &Pipe, branch: Branch) -> State {
+    let gas = flow.gas_velocity_ft_s;
+    let mixture = flow.mixture_velocity_ft_s();
+    let liquid = flow.liquid_density_lb_ft3;
+    // The two rise velocities share what costs time.
+    let buoyancy = GRAVITY_FT_S2 * density_difference(flow) / liquid;
+    let small = 1.53 * quarter_power(buoyancy * tension_lbm_s2(flow) / liquid);
+    let bubbly_end = (C0 * flow.liquid_velocity_ft_s + small) / (4.0 - C0) * pipe.sin_inclination.max(0.0);
+    // In horizontal pipe bubbly flow ends at once.
+    let above_bubbly = gas / bubbly_end.max(1e-9) - 1.0;
+    let (mut slug, mut drift, mut margin, mut course) = (0.0, small, -above_bubbly, f64::INFINITY);
+    if branch.has(SLUG) {
+        slug = blend(above_bubbly);
+        let long = 0.35 * (buoyancy * pipe.diameter_ft).sqrt() * pipe.long_bubble_factor;
+        drift = small + (long - small) * slug;
+        (margin, course) = (above_bubbly, course_of(above_bubbly));
+    }
+    let in_slug = gas / (C0 * mixture + drift);
+    let (held, weight_margin) = WEIGHT.hold(in_slug, branch);
+    margin = margin.min(weight_margin);
+    let mut void = Void { fraction: in_slug, slug, annular: 0.0 };
+    if !WEIGHT.is_below(branch) {
+        let above_droplets = gas / droplet_ft_s(flow) - 1.0;
+        if branch.has(DROPLETS) {
+            void.annular = smooth_step((held - WEIGHT.low) / (WEIGHT.high - WEIGHT.low)) * blend(above_droplets);
+            void.fraction = gas / ((C0 - (C0 - 1.0) * void.annular) * mixture + drift * (1.0 - void.annular));
+            course = course.min(course_of(above_droplets));
+            margin = margin.min(above_droplets);
+        } else {
+            margin = margin.min(-above_droplets);
+        }
+    }
+    // At rest gas/0 cannot occur, since small bubbles rise. Only a fluid without density difference leaves 0/0.
+    if void.fraction.is_nan() {
+        void.fraction = 0.0;
+    }
+    State { void, margin, course, in_slug, above_bubbly }
+}
+
+/// Near the onset of a transition steps go by its distance.
+#[inline]
+fn course_of(above: f64) -> f64 {
+    COURSE * above.max(0.0) + LEAST_COURSE
+}
+
+fn void_branch(flow: &Flow, pipe: &Pipe) -> Branch {
+    let slug = if state(flow, pipe, Branch(0)).above_bubbly > 0.0 { SLUG } else { 0 };
+    let weight = WEIGHT.bits(state(flow, pipe, Branch(slug)).in_slug);
+    let droplets = if flow.gas_velocity_ft_s > droplet_ft_s(flow) { DROPLETS } else { 0 };
+    let branch = Branch(slug | weight);
+    if WEIGHT.is_below(branch) { branch } else { Branch(slug | weight | droplets) }
+}
+
+/// exp(-0.1/x) of the relative distance above an onset: zero with all its derivatives at the onset, one far above.
+#[inline]
+fn blend(above: f64) -> f64 {
+    if above > 0.0 { (-0.1 / above).exp() } else { 0.0 }
 }
 
 /// Cubic step from 0 to 1.
@@ -123,13 +186,15 @@ fn viscosity_cp(flow: &Flow) -> f64 {
 
 impl Hydraulics for HasanKabir {
     fn branch(&self, flow: &Flow, pipe: &Pipe) -> Branch {
-        let density = flow.density_at_holdup_lb_ft3(1.0 - void(flow, pipe).fraction);
-        Branch(laminar_bit(pipe.reynolds(density, flow.mixture_velocity_ft_s(), viscosity_cp(flow))))
+        let branch = void_branch(flow, pipe);
+        let density = flow.density_at_holdup_lb_ft3(1.0 - state(flow, pipe, branch).void.fraction);
+        Branch(branch.0 | laminar_bit(pipe.reynolds(density, flow.mixture_velocity_ft_s(), viscosity_cp(flow))))
     }
 
     #[inline]
     fn gradient(&self, flow: &Flow, pipe: &Pipe, branch: Branch) -> Gradient {
-        let holdup = 1.0 - void(flow, pipe).fraction;
+        let state = state(flow, pipe, branch);
+        let holdup = 1.0 - state.void.fraction;
         let density = flow.density_at_holdup_lb_ft3(holdup);
         let velocity = flow.mixture_velocity_ft_s();
         let reynolds = pipe.reynolds(density, velocity, viscosity_cp(flow));
@@ -140,7 +205,8 @@ impl Hydraulics for HasanKabir {
             friction_psi_ft: pipe.friction_psi_ft(moody, density, velocity),
             kinetic: flow.kinetic(density),
             holdup,
-            margin: laminar_margin(reynolds, laminar),
+            margin: laminar_margin(reynolds, laminar).min(state.margin),
+            course: state.course,
         }
     }
 

@@ -21,6 +21,7 @@ pub fn gradient(flow: &Flow, pipe: &Pipe, branch: Branch) -> Gradient {
         friction_psi_ft: pipe.friction_psi_ft(moody, flow.liquid_density_lb_ft3, flow.liquid_velocity_ft_s),
         kinetic: 0.0,
         holdup: 1.0,
+        course: f64::INFINITY,
         margin: laminar_margin(reynolds, laminar),
     }
 }

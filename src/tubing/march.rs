@@ -28,7 +28,8 @@ const AIM: f64 = 0.3;
 /// Error below which the next step grows no further, in the same units.
 const LEAST_ERROR: f64 = 0.01;
 /// Tolerance of one step's error estimate relative to the accuracy asked of the whole traverse.
-const STEP_SHARE: f64 = 0.001;
+const STEP_SHARE: f64 = 0.002;
+const BEND_SHARE: f64 = 1e-4;
 /// A branch that ends this soon after its begin, ft, is left unwatched for a while: the flow would chatter.
 const LEAST_BRANCH_FT: f64 = 1e-4;
 /// First stretch to be left unwatched, ft; it doubles each time.
@@ -75,6 +76,7 @@ struct Slope {
     psi_ft: f64,
     margin: f64,
     kinetic: f64,
+    course: f64,
 }
 
 /// One attempted step.
@@ -162,7 +164,12 @@ impl<'a, M: Hydraulics> March<'a, M> {
     fn slope(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64, branch: Branch) -> Slope {
         let (flow, above) = self.flow(stretch, md_ft, pressure_psia);
         let gradient = self.gradient(&flow, above, stretch, branch);
-        Slope { psi_ft: gradient.total_psi_ft(), margin: gradient.margin, kinetic: gradient.kinetic }
+        Slope {
+            psi_ft: gradient.total_psi_ft(),
+            margin: gradient.margin,
+            kinetic: gradient.kinetic,
+            course: gradient.course,
+        }
     }
 
     /// Flow, gradient and name of the pattern at a point.
@@ -205,6 +212,9 @@ impl<'a, M: Hydraulics> March<'a, M> {
         let error = 71.0 / 57600.0 * k1 - 71.0 / 16695.0 * k3 + 71.0 / 1920.0 * k4 - 17253.0 / 339_200.0 * k5
             + 22.0 / 525.0 * k6
             - end.psi_ft / 40.0;
+        // The fourth difference, which `error` measures, may vanish by chance; the third then still tells of a bend.
+        let third_difference = -k1 / 0.24 + third.psi_ft / 0.105 - fourth.psi_ft / 0.08 + end.psi_ft / 0.14;
+        let error = error.hypot(BEND_SHARE * third_difference);
         let valley = third.margin < start.margin && fourth.margin < end.margin;
         Step { pressure_psia: p + h * mean, end, error_psi: (h * error).abs(), least_margin, valley }
     }
@@ -228,7 +238,7 @@ impl<'a, M: Hydraulics> March<'a, M> {
             if progress.wish_ft == 0.0 {
                 progress.wish_ft = FIRST_STEP_RELATIVE * pressure_length;
             }
-            let mut wish = progress.wish_ft.min(STEP_RELATIVE * pressure_length);
+            let mut wish = progress.wish_ft.min(start.course.min(STEP_RELATIVE) * pressure_length);
             progress.steps += 1;
             if progress.steps > MOST_STEPS {
                 wish = rest;
@@ -258,11 +268,12 @@ impl<'a, M: Hydraulics> March<'a, M> {
                 self.unwatched(stretch, progress, end_md_ft, &mut branch, &mut start);
                 continue;
             }
-            for _ in 0..6 {
+            // Harder with every repetition, and no change at the threshold.
+            for repetition in 1..=6 {
                 if step.error_psi <= self.tolerance_psi || progress.steps > MOST_STEPS {
                     break;
                 }
-                let factor = fifth_root(self.tolerance_psi / step.error_psi).max(0.2);
+                let factor = fifth_root(self.tolerance_psi / step.error_psi).powi(repetition).max(0.2);
                 wish *= factor;
                 length *= factor;
                 switched = false;

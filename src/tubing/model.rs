@@ -148,6 +148,9 @@ pub struct Gradient {
     /// How far inside its branch the flow is: positive inside, zero on the border, negative beyond it; continuous,
     /// of the order of a relative distance. It is by its sign change that the traverse finds the switches.
     pub margin: f64,
+    /// The relative change of pressure over which the gradient may be expected to change its course; infinite where
+    /// nothing but the fluid bends it.
+    pub course: f64,
 }
 
 /// Ek at which the kinetic term is held (convention 4.8(13)).
@@ -212,6 +215,12 @@ impl Range {
             0
         };
         code << self.shift
+    }
+
+    /// Whether a branch is the one below the range.
+    #[inline]
+    pub fn is_below(self, branch: Branch) -> bool {
+        (branch.0 >> self.shift) & 3 == 1
     }
 
     /// The value to use on a branch, and the margin to its border.

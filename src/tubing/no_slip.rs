@@ -40,6 +40,7 @@ impl Hydraulics for NoSlip {
             friction_psi_ft: pipe.friction_psi_ft(moody, density, flow.mixture_velocity_ft_s()),
             kinetic: flow.kinetic(density),
             holdup: flow.no_slip_holdup,
+            course: f64::INFINITY,
             margin: laminar_margin(reynolds, laminar),
         }
     }

@@ -160,7 +160,7 @@ impl WellModel {
         fluid: &'a BlackOil,
         tank: &TankState,
         gradient_psi_ft: f64,
-        traverses: &'a Cell<u64>,
+        gauge: &'a Gauge,
     ) -> WellNow<'a> {
         let gor = tank.rs_scf_stb + tank.free_gor_scf_stb * self.spec.gor_factor;
         let wor = tank.water_oil_ratio * self.spec.water_factor;
@@ -172,7 +172,7 @@ impl WellModel {
             water_cut,
         };
         let curve = self.inflow.curve(&conditions, self.skin_factor);
-        WellNow { well: self, fluid, curve, gor_scf_stb: gor, water_cut, traverses }
+        WellNow { well: self, fluid, curve, gor_scf_stb: gor, water_cut, gauge }
     }
 }
 
@@ -281,6 +281,15 @@ fn fit_inflow(
     }
 }
 
+/// What the traverses of a run leave behind: their number, and whether the last one came near to sonic speed.
+#[derive(Debug, Default)]
+pub struct Gauge {
+    /// Traverses so far.
+    pub traverses: Cell<u64>,
+    /// Whether the kinetic term was held at its limit in the last one.
+    pub near_sonic: Cell<bool>,
+}
+
 /// A well facing the tank's present state.
 #[derive(Debug, Clone, Copy)]
 pub struct WellNow<'a> {
@@ -292,7 +301,7 @@ pub struct WellNow<'a> {
     pub gor_scf_stb: f64,
     /// Its water cut.
     pub water_cut: f64,
-    traverses: &'a Cell<u64>,
+    gauge: &'a Gauge,
 }
 
 impl<'a> WellNow<'a> {
@@ -318,11 +327,12 @@ impl<'a> WellNow<'a> {
 
     /// Flowing pressure that the tubing asks for at line pressure, psia.
     pub fn tubing_psia(&self, liquid_rate_stb_d: f64) -> f64 {
-        self.traverses.set(self.traverses.get() + 1);
-        self.well
-            .tubing
-            .flowing_pressure(self.fluid, &self.stream(liquid_rate_stb_d), self.well.spec.line_pressure_psia)
-            .pressure_psia
+        self.gauge.traverses.set(self.gauge.traverses.get() + 1);
+        let well = self.well;
+        let found =
+            well.tubing.flowing_pressure(self.fluid, &self.stream(liquid_rate_stb_d), well.spec.line_pressure_psia);
+        self.gauge.near_sonic.set(found.near_sonic);
+        found.pressure_psia
     }
 
     /// Height of the inflow curve above the tubing curve at line pressure, psi.
@@ -335,18 +345,9 @@ impl<'a> WellNow<'a> {
         survey(|q| self.height_psi(q), self.curve.open_flow_stb_d())
     }
 
-    /// Whether the flow comes near to sonic speed somewhere in the tubing at this rate.
-    pub fn near_sonic(&self, liquid_rate_stb_d: f64) -> bool {
-        self.traverses.set(self.traverses.get() + 1);
-        self.well
-            .tubing
-            .flowing_pressure(self.fluid, &self.stream(liquid_rate_stb_d), self.well.spec.line_pressure_psia)
-            .near_sonic
-    }
-
     /// Wellhead pressure of the choked well, psia; line pressure where the march up does not reach the surface.
     pub fn wellhead_psia(&self, liquid_rate_stb_d: f64, flowing_psia: f64) -> f64 {
-        self.traverses.set(self.traverses.get() + 1);
+        self.gauge.traverses.set(self.gauge.traverses.get() + 1);
         self.well
             .tubing
             .wellhead_pressure(self.fluid, &self.stream(liquid_rate_stb_d), flowing_psia)
