@@ -202,7 +202,7 @@ fn tests(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
                 format!("{} {}{computed}", number(pressure.of(test.flowing_psia), 0), pressure.text),
                 format!("{} {}", short(rate.of(test.rate_stb_d)), rate.text),
                 format!("{} {}", short(rate.of(test.model_rate_stb_d)), rate.text),
-                if miss.is_finite() { format!("{miss:+.1} %") } else { "-".to_owned() },
+                percent(miss),
             ]);
         }
     }
@@ -218,6 +218,13 @@ fn tests(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
         ];
         s.table(&header, &rows);
     }
+}
+
+/// "+1.2 %"; what rounds to zero has no sign.
+fn percent(value: f64) -> String {
+    let text = number(value, 1);
+    let plus = if value > 0.0 && text != "0.0" { "+" } else { "" };
+    if value.is_finite() { format!("{plus}{text} %") } else { text }
 }
 
 /// The list of doubts, each with its cause and what to do.

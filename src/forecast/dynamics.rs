@@ -252,7 +252,8 @@ impl<'a> Dynamics<'a> {
         let reservoir = now.curve.reservoir_psia();
         // The rate moves with the pressure much as it did last time.
         let moved = reservoir - spot.pressure_psia;
-        let start = spot.rate_stb_d + (spot.per_pressure * moved).clamp(-0.05 * spot.rate_stb_d, 0.05 * spot.rate_stb_d);
+        let start =
+            spot.rate_stb_d + (spot.per_pressure * moved).clamp(-0.05 * spot.rate_stb_d, 0.05 * spot.rate_stb_d);
         if let Some((rate, slope)) = right_crossing(height, start, spot.slope, self.crossing_psi(), bounds) {
             self.remember(w, |s| {
                 if moved.abs() > 1e-3 {
@@ -273,7 +274,13 @@ impl<'a> Dynamics<'a> {
         let nudge = 1e-4 * rate;
         let slope = (height(rate + nudge) - height(rate - nudge)) / (2.0 * nudge);
         self.remember(w, |s| {
-            *s = Spot { rate_stb_d: rate, slope, top_rate_stb_d: top_rate, pressure_psia: now.curve.reservoir_psia(), per_pressure: 0.0 };
+            *s = Spot {
+                rate_stb_d: rate,
+                slope,
+                top_rate_stb_d: top_rate,
+                pressure_psia: now.curve.reservoir_psia(),
+                per_pressure: 0.0,
+            };
         });
         rate
     }

@@ -4,7 +4,8 @@ use super::axes::{Panel, Span, dashed};
 use super::paint::text_width;
 use super::style::{Dash, GRID, Look, QUIET};
 use super::{Anchor, Drawing};
-use crate::report::human::{self, days_between};
+use crate::forecast::{date_at, days_between};
+use crate::report::human;
 use jiff::civil::{Date, date};
 
 /// A marked instant: the end of natural flow of a well.
@@ -32,7 +33,7 @@ fn date_ticks(timeline: Timeline) -> Vec<(f64, String)> {
         l if l > 240.0 => 3,
         _ => 1,
     };
-    let first = human::day_at(timeline.start, timeline.days.low);
+    let first = date_at(timeline.start, timeline.days.low);
     let mut month = i32::from(first.year()) * 12 + i32::from(first.month()) - 1;
     month -= month.rem_euclid(months);
     let mut out = Vec::new();
