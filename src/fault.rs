@@ -4,7 +4,7 @@
 /// lines, only which key is at fault. The `scenario` layer turns `key` into a line and a column.
 #[derive(Debug, Clone, PartialEq, Eq)]
 pub struct Fault {
-    /// Dotted path of the key, relative to whoever was asked ("diameter", "inflow.test[1].flowing").
+    /// Dotted path of the key, relative to whoever was asked (`diameter`, `inflow.test[1].flowing`).
     pub key: String,
     /// What was found and why it cannot be.
     pub message: String,

@@ -45,6 +45,127 @@ fn factors_follow_from_the_definitions() {
     near("Sm3/d/bar", read("1 Sm3/d/bar", D::ProductivityIndex), index, barrel);
 }
 
+/// Every unit but those of temperature and oil gravity, which have tests of their own, in units of the SI.
+#[test]
+fn every_factor_is_that_of_the_definition() {
+    use Dimension as D;
+    let (foot, inch, pound) = (0.3048_f64, 0.0254_f64, 0.453_592_37_f64);
+    let psi = pound * 9.806_65 / (inch * inch);
+    let (cubic_foot, day, year) = (foot.powi(3), 86_400.0, 365.2425 * 86_400.0);
+    // 9702 cubic inches.
+    let barrel = 9702.0 * inch.powi(3);
+    let kilo = 1.0e3;
+    let table: Vec<(D, Vec<(&str, f64)>)> = vec![
+        (
+            D::Pressure,
+            vec![
+                ("psia", psi),
+                ("psig", psi),
+                ("bar", 1e5),
+                ("barg", 1e5),
+                ("kPa", 1e3),
+                ("kPag", 1e3),
+                ("MPa", 1e6),
+                ("MPag", 1e6),
+                ("atm", 101_325.0),
+                ("kgf/cm2", 98_066.5),
+            ],
+        ),
+        (D::PressureDifference, vec![("psi", psi), ("bar", 1e5), ("kPa", 1e3), ("MPa", 1e6)]),
+        (D::Length, vec![("ft", foot), ("m", 1.0), ("km", kilo), ("in", inch)]),
+        (D::Diameter, vec![("in", inch), ("mm", 1e-3), ("cm", 1e-2), ("m", 1.0), ("ft", foot), ("um", 1e-6)]),
+        (
+            D::LiquidVolume,
+            vec![
+                ("STB", barrel),
+                ("MSTB", 1e3 * barrel),
+                ("MMSTB", 1e6 * barrel),
+                ("Sm3", 1.0),
+                ("thousand Sm3", 1e3),
+                ("million Sm3", 1e6),
+            ],
+        ),
+        (
+            D::GasVolume,
+            vec![
+                ("scf", cubic_foot),
+                ("Mscf", 1e3 * cubic_foot),
+                ("MMscf", 1e6 * cubic_foot),
+                ("Bscf", 1e9 * cubic_foot),
+                ("Sm3", 1.0),
+                ("thousand Sm3", 1e3),
+                ("million Sm3", 1e6),
+            ],
+        ),
+        (
+            D::LiquidRate,
+            vec![
+                ("STB/d", barrel / day),
+                ("MSTB/d", 1e3 * barrel / day),
+                ("Sm3/d", 1.0 / day),
+                ("thousand Sm3/d", 1e3 / day),
+            ],
+        ),
+        (
+            D::GasRate,
+            vec![
+                ("scf/d", cubic_foot / day),
+                ("Mscf/d", 1e3 * cubic_foot / day),
+                ("MMscf/d", 1e6 * cubic_foot / day),
+                ("Sm3/d", 1.0 / day),
+                ("thousand Sm3/d", 1e3 / day),
+                ("million Sm3/d", 1e6 / day),
+            ],
+        ),
+        (
+            D::GasOilRatio,
+            vec![("scf/STB", cubic_foot / barrel), ("Mscf/STB", 1e3 * cubic_foot / barrel), ("Sm3/Sm3", 1.0)],
+        ),
+        (D::Viscosity, vec![("cp", 1e-3), ("mPa.s", 1e-3), ("Pa.s", 1.0)]),
+        (D::Compressibility, vec![("1/psi", 1.0 / psi), ("1/bar", 1e-5), ("1/kPa", 1e-3), ("1/MPa", 1e-6)]),
+        (D::PressureGradient, vec![("psi/ft", psi / foot), ("kPa/m", 1e3), ("bar/m", 1e5), ("bar/10m", 1e4)]),
+        (
+            D::ProductivityIndex,
+            vec![
+                ("STB/d/psi", barrel / day / psi),
+                ("Sm3/d/bar", 1e-5 / day),
+                ("Sm3/d/kPa", 1e-3 / day),
+                ("Sm3/d/MPa", 1e-6 / day),
+            ],
+        ),
+        (
+            D::GasInjectivity,
+            vec![
+                ("scf/d/psi", cubic_foot / day / psi),
+                ("Mscf/d/psi", 1e3 * cubic_foot / day / psi),
+                ("MMscf/d/psi", 1e6 * cubic_foot / day / psi),
+                ("Sm3/d/bar", 1e-5 / day),
+                ("thousand Sm3/d/bar", 1e-2 / day),
+            ],
+        ),
+        (D::Permeability, vec![("mD", 1.0), ("D", 1e3)]),
+        (D::Density, vec![("lb/ft3", pound / cubic_foot), ("kg/m3", 1.0), ("g/cm3", 1e3)]),
+        (D::Salinity, vec![("ppm", 1e-6), ("%", 1e-2), ("g/kg", 1e-3)]),
+        (D::Time, vec![("days", day), ("months", year / 12.0), ("years", year), ("hours", 3600.0)]),
+        (D::Velocity, vec![("ft/s", foot), ("m/s", 1.0)]),
+        (D::LiquidVolumeFactor, vec![("rb/STB", 1.0), ("rm3/Sm3", 1.0)]),
+        (D::GasVolumeFactor, vec![("rb/scf", barrel / cubic_foot), ("rm3/Sm3", 1.0)]),
+    ];
+    let mut checked = 0;
+    for (dimension, rows) in table {
+        let own = rows[0].1;
+        assert_eq!(units_of(dimension).count(), rows.len(), "{dimension:?}: a unit has no definition here");
+        for (name, si) in rows {
+            // One unit more, so that the zero of gauge units falls out. 1e-7 because of the program's barrel.
+            let one = read(&format!("2 {name}"), dimension) - read(&format!("1 {name}"), dimension);
+            near(name, one, si / own, 1.0e-7);
+            checked += 1;
+        }
+    }
+    let others = units_of(D::Temperature).count() + units_of(D::OilGravity).count();
+    assert_eq!(checked + others, units().len());
+}
+
 #[test]
 fn temperatures_meet_at_the_fixed_points() {
     // Ice and steam points at 32 and 212 degF, absolute zero at -459.67 degF (NIST SP 811 B.9).

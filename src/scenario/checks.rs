@@ -126,7 +126,7 @@ pub(super) fn tank(tank: &TankSpec, fluid: &FluidSpec, atmospheric_pressure_psia
     out
 }
 
-/// One well; `path` is where it stands ("well[0]").
+/// One well; `path` is where it stands (`well[0]`).
 pub(super) fn well(
     path: &str,
     well: &WellSpec,
@@ -281,6 +281,9 @@ fn inflow(well: &WellSpec, atmospheric_pressure_psia: f64) -> Vec<Fault> {
 fn tubing(well: &WellSpec, tank: &TankSpec) -> Vec<Fault> {
     let mut out = Vec::new();
     let survey = &well.tubing.survey;
+    if survey.iter().any(|(measured_ft, vertical_ft)| measured_ft.is_nan() || vertical_ft.is_nan()) {
+        return out;
+    }
     if let Some(&(measured_ft, vertical_ft)) = survey.first()
         && (measured_ft > DEPTH_ROUNDING_FT || vertical_ft > DEPTH_ROUNDING_FT)
     {

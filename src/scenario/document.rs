@@ -292,7 +292,7 @@ impl Document {
 impl Scenario {
     /// Turns a fault that a layer of the physics found into a problem with its place in the file or setting.
     ///
-    /// The longest part of the fault's path that exists decides; "change[2].tubing.diameter" speaks of the new
+    /// The longest part of the fault's path that exists decides; `change[2].tubing.diameter` speaks of the new
     /// settings of a dated event.
     pub fn problem_at(&self, fault: &Fault) -> Problems {
         self.places.problems_at(std::slice::from_ref(fault))

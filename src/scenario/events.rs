@@ -88,11 +88,7 @@ fn read_one(reader: &mut Reader, section: &Section<'_>) -> Option<EventRead> {
 }
 
 fn read_set(reader: &mut Reader, section: &Section<'_>) -> Option<Vec<Override>> {
-    let Some(entry) = section.get("set") else {
-        reader
-            .note(Problem::new(section.at("set"), "the event sets nothing").label("set = { key = value } is expected"));
-        return None;
-    };
+    let entry = reader.look(section, "set", "{ skin = -2.0 }").0?;
     let set = entry.node.table().map(overrides::of_table);
     match set {
         Some(set) if !set.is_empty() => Some(set),
@@ -154,7 +150,11 @@ pub(super) fn apply(event: &EventRead, root: &mut Table, reader: &mut Reader) ->
     }
     let names: Vec<String> = root.tables(event.list).iter().filter_map(|node| node.name().map(str::to_owned)).collect();
     let Some(index) = root.tables(event.list).iter().position(|node| node.name() == Some(event.name.as_str())) else {
-        reader.note(unknown_name(event.list, &event.name, &names, event.name_at.clone()));
+        // Where a name is missing or wrong, which is noted, it may have been this one.
+        let misshapen = root.get(event.list).is_some_and(|entry| entry.node.list().is_none());
+        if names.len() == root.tables(event.list).len() && !misshapen {
+            reader.note(unknown_name(event.list, &event.name, &names, event.name_at.clone()));
+        }
         return None;
     };
     let Value::List(items) = &mut root.get_mut(event.list)?.node.value else { return None };

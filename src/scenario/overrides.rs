@@ -133,6 +133,7 @@ fn put(table: &mut Table, schema_path: &str, path: &[String], one: &Override) ->
     match &mut entry.node.value {
         Value::Table(inner) => put(inner, &here, rest, one),
         Value::List(items) if matches!(here.as_str(), "well" | "injector") => {
+            let count = items.len();
             let names: Vec<String> = items.iter().filter_map(|item| item.name().map(str::to_owned)).collect();
             match items.iter_mut().find(|item| item.name() == Some(rest[0].as_str())) {
                 Some(Node { value: Value::Table(_), .. }) if rest.len() == 1 => {
@@ -140,6 +141,8 @@ fn put(table: &mut Table, schema_path: &str, path: &[String], one: &Override) ->
                         .label(format!("{here}.{}.key is expected", shorten(&rest[0]))))
                 }
                 Some(Node { value: Value::Table(inner), .. }) => put(inner, &here, &rest[1..], one),
+                // Where a name is missing or wrong, which is noted, it may have been this one.
+                _ if names.len() < count => Ok(()),
                 _ => Err(no_such_member(&here, &rest[0], &names, one)),
             }
         }
@@ -147,6 +150,8 @@ fn put(table: &mut Table, schema_path: &str, path: &[String], one: &Override) ->
             one.path_at.clone(),
             format!("the members of `{here}` have no names: only the whole list can be replaced"),
         )),
+        // A list that is none is noted when it is read.
+        _ if kind == Some(Kind::Tables) => Ok(()),
         _ => Err(too_deep(&here, one)),
     }
 }

@@ -91,6 +91,8 @@ pub(super) fn fluid(reader: &mut Reader, root: &Section<'_>) -> FluidSpec {
 
 /// The tank; `water_injected`: whether the scenario injects water, so that the water model must be stated.
 pub(super) fn tank(reader: &mut Reader, section: &Section<'_>, water_injected: bool) -> TankSpec {
+    let produced = produced(reader, section);
+    let water_injected = water_injected || produced.is_some_and(|produced| produced.injected_water_stb > 0.0);
     let spec = TankSpec {
         oil_in_place_stb: reader.quantity(section, "oil_in_place"),
         pressure_psia: reader.quantity(section, "pressure"),
@@ -99,7 +101,7 @@ pub(super) fn tank(reader: &mut Reader, section: &Section<'_>, water_injected: b
         pore_compressibility_1_psi: reader.quantity(section, "pore_compressibility"),
         gas_cap_ratio: reader.number(section, "gas_cap_ratio"),
         datum_tvd_ft: reader.optional_quantity(section, "datum"),
-        produced: produced(reader, section),
+        produced,
         water_model: water_model(reader, section, water_injected),
         relative_permeability: relative_permeability(reader, section),
     };

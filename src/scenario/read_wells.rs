@@ -5,6 +5,7 @@ use super::reader::Reader;
 use super::schema::{LATER_FUTURE_RULES, LATER_TUBING_METHODS};
 use super::section::Section;
 use super::survey;
+use super::tree::Value;
 use crate::forecast::{InjectedFluid, InjectionControl, InjectorSpec};
 use crate::inflow::{Coefficient, FutureRule, InflowMethod, InflowSpec, InflowTest, Measured, RateBasis};
 use crate::tubing::{TubingMethod, TubingSection, TubingSpec};
@@ -147,8 +148,12 @@ fn flow_coefficient(
         return Some(f64::NAN);
     }
     let Some(text) = entry.node.text() else {
+        let what = match entry.node.value {
+            Value::Number(_) => "has no unit".to_owned(),
+            ref other => format!("is {}", other.kind()),
+        };
         reader.note(
-            Problem::new(at, "`well.inflow.coefficient` has no unit")
+            Problem::new(at, format!("`well.inflow.coefficient` {what}"))
                 .label(format!("a flow coefficient is expected, like \"{example}\"")),
         );
         return Some(f64::NAN);

@@ -89,12 +89,11 @@ pub(super) fn resolve(root: &Table, case: Option<&Node>, folder: &Path, text: &s
     Resolved { units, atmospheric_pressure_psia, field, files: reader.files, changed, problems: reader.problems }
 }
 
-/// Whether water is or was injected, as far as the tree tells.
+/// Whether there is a water injector, as far as the tree tells.
 fn injects_water(root: &Table) -> bool {
-    let injector = root.tables("injector").iter().any(|node| {
+    root.tables("injector").iter().any(|node| {
         node.table().and_then(|table| table.get("fluid")).and_then(|entry| entry.node.text()) == Some("water")
-    });
-    injector || tree::locate_exactly(root, "tank.produced.injected_water")
+    })
 }
 
 /// A start that has passed is no start any more.
@@ -191,7 +190,7 @@ pub(super) fn problem_of(fault: &Fault, root: &Table) -> Problem {
 
 /// Faults that the layers of the physics find when they are built from these data.
 ///
-/// Keys are full paths ("well[0].tubing.survey", "change[2].tubing.diameter" for the new settings of a dated event).
+/// Keys are full paths (`well[0].tubing.survey`, `change[2].tubing.diameter` for the new settings of a dated event).
 pub(super) fn physics_faults(field: &FieldSpec) -> Vec<Fault> {
     match Field::new(field) {
         Ok(built) => built.change_faults(),

@@ -16,12 +16,8 @@ const MOST_POINTS: usize = 100_000;
 /// Measured and vertical depths, ft; NaN where one is wrong.
 pub(super) fn read(reader: &mut Reader, tubing: &Section<'_>) -> Vec<(f64, f64)> {
     let label = "expected: [ [\"0 ft\", \"0 ft\"], [\"8600 ft\", \"8150 ft\"] ] or the path of a CSV file";
-    let Some(entry) = tubing.get("survey") else {
-        if tubing.is_there() {
-            reader.note(Problem::new(tubing.at("survey"), "`well.tubing.survey` is missing").label(label));
-        }
-        return Vec::new();
-    };
+    let example = "[[\"0 ft\", \"0 ft\"], [\"8600 ft\", \"8150 ft\"]]";
+    let Some(entry) = reader.look(tubing, "survey", example).0 else { return Vec::new() };
     match &entry.node.value {
         Value::Text(path) => from_file(reader, path, &entry.node.at),
         Value::List(rows) => {

@@ -150,7 +150,7 @@ fn integer_value(integer: &DeInteger<'_>) -> f64 {
 
 /// Where the value at a dotted path was written, or, when it is not there, the nearest table above it.
 ///
-/// Segments are keys, names of list members ("well.OP-1.skin") or indices ("well[0].skin").
+/// Segments are keys, names of list members ("well.OP-1.skin") or indices (`well[0].skin`).
 pub(super) fn locate(root: &Table, path: &str) -> Option<Location> {
     walk(root, path).0
 }
@@ -187,7 +187,7 @@ enum Segment<'p> {
     Index(usize),
 }
 
-/// "well[0].tubing" as well, 0, tubing.
+/// `well[0].tubing` as well, 0, tubing.
 fn segments(path: &str) -> impl Iterator<Item = Segment<'_>> {
     path.split('.').flat_map(|part| {
         let (key, rest) = part.split_at(part.find('[').unwrap_or(part.len()));

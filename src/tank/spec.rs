@@ -20,9 +20,9 @@ pub struct ProducedSpec {
     pub gas_scf: f64,
     /// Water, STB.
     pub water_stb: f64,
-    /// Water injected, STB (all of it; the effective fraction is the next field).
+    /// Water injected that supports the tank, STB: without what was lost elsewhere.
     pub injected_water_stb: f64,
-    /// Gas injected, scf.
+    /// Gas injected that supports the tank, scf.
     pub injected_gas_scf: f64,
     /// Measured reservoir pressure at the start of the forecast, psia: compared, not imposed.
     pub measured_pressure_psia: Option<f64>,

@@ -173,7 +173,7 @@ pub enum Scale {
 pub struct Unit {
     /// As the program writes it.
     pub name: &'static str,
-    /// Other spellings, in the reduced form that [`reduce`] makes.
+    /// Other spellings, in lower case without blanks, carets and dots.
     pub aliases: &'static [&'static str],
     /// What it measures.
     pub dimension: Dimension,
@@ -200,7 +200,7 @@ impl Unit {
         }
     }
 
-    /// Whether the user may have meant this unit; `reduced` comes from [`reduce`].
+    /// Whether the user may have meant this unit; `reduced` comes from `reduce`.
     pub(super) fn answers_to(&self, reduced: &str) -> bool {
         reduce(self.name) == reduced || self.aliases.contains(&reduced)
     }

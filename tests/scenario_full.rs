@@ -1,0 +1,250 @@
+//! A scenario that states every key: each arrives in its own field, nothing is swapped, dropped or replaced.
+
+use std::collections::BTreeSet;
+use wane::fluid::FluidSpec;
+use wane::forecast::{Change, Every, FieldSpec, InjectedFluid, InjectionControl, InjectorSpec, PeriodSpec, Tolerance};
+use wane::inflow::{Coefficient, FutureRule, InflowMethod, InflowSpec, InflowTest, Measured, RateBasis};
+use wane::rock::CoreySpec;
+use wane::scenario::{Document, schema};
+use wane::tank::{ProducedSpec, TankSpec, WaterModel};
+use wane::tubing::{TubingMethod, TubingSection, TubingSpec};
+use wane::units::UnitSystem;
+use wane::well::WellSpec;
+
+const FULL: &str = include_str!("data/full.toml");
+
+fn date(year: i16, month: i8, day: i8) -> jiff::civil::Date {
+    jiff::civil::date(year, month, day)
+}
+
+fn resolve() -> FieldSpec {
+    let document = Document::parse("full.toml", FULL).unwrap_or_else(|problems| panic!("{problems}"));
+    let scenario = document.resolve(None, &[]).unwrap_or_else(|problems| panic!("{problems}"));
+    assert_eq!((scenario.title.as_str(), scenario.units), ("Everything", UnitSystem::Metric));
+    assert_eq!(scenario.atmospheric_pressure_psia, 14.5);
+    scenario.field
+}
+
+#[test]
+fn the_scenario_states_every_key() {
+    let mut stated = BTreeSet::new();
+    let mut table = "";
+    for line in FULL.lines() {
+        let header = line.trim_start_matches('[').split(']').next().unwrap_or("");
+        if line.starts_with('[') {
+            table = header;
+            stated.insert(header.to_owned());
+        }
+        for key in
+            line.replace(['{', ','], "\n").lines().filter_map(|part| part.split_once('=')).map(|(key, _)| key.trim())
+        {
+            let dot = if table.is_empty() { "" } else { "." };
+            stated.insert(format!("{table}{dot}{key}"));
+        }
+    }
+    for key in schema::KEYS {
+        // Keys of the members of a list stand under the list in the reference, beside it in this simple search.
+        let beside = key.path.replace(".test.", ".").replace(".sections.", ".");
+        assert!(stated.contains(key.path) || stated.contains(&beside), "{} is not stated", key.path);
+    }
+}
+
+#[test]
+fn calendar_fluid_and_tank_arrive() {
+    let field = resolve();
+    let period = PeriodSpec { start: date(2027, 4, 1), end: date(2037, 4, 1), every: Every::Quarter };
+    assert_eq!((field.period, field.tolerance), (period, Tolerance::Tight));
+    let fluid = FluidSpec {
+        oil_gravity_api: 31.0,
+        gas_gravity: 0.81,
+        solution_gor_scf_stb: 510.0,
+        bubble_point_psia: Some(2310.0),
+        salinity_ppm: 41_000.0,
+        h2s_fraction: 0.01,
+        co2_fraction: 0.02,
+        separator: Some((114.0, 85.0)),
+        standard_pressure_psia: 14.73,
+        standard_temperature_degr: 518.67,
+    };
+    assert_eq!(field.fluid, fluid);
+    let tank = TankSpec {
+        oil_in_place_stb: 21.0e6,
+        pressure_psia: 3120.0,
+        temperature_degf: 171.0,
+        connate_water: 0.19,
+        pore_compressibility_1_psi: 5.0e-6,
+        gas_cap_ratio: 0.0,
+        datum_tvd_ft: Some(7020.0),
+        produced: Some(ProducedSpec {
+            oil_stb: 1.1e6,
+            gas_scf: 640.0e6,
+            water_stb: 12.0e3,
+            injected_water_stb: 300.0e3,
+            injected_gas_scf: 5.0e6,
+            measured_pressure_psia: Some(2480.0),
+        }),
+        water_model: WaterModel::Average,
+        relative_permeability: CoreySpec {
+            critical_gas: 0.03,
+            residual_oil_to_gas: 0.21,
+            residual_oil_to_water: 0.24,
+            oil_end: 0.85,
+            gas_end: 0.65,
+            water_end: 0.31,
+            oil_exponent: 2.1,
+            gas_exponent: 1.9,
+            water_exponent: 2.7,
+        },
+    };
+    assert_eq!(field.tank, tank);
+}
+
+#[test]
+fn injectors_arrive() {
+    let water = InjectorSpec {
+        name: "W".to_owned(),
+        fluid: InjectedFluid::Water,
+        start: Some(date(2028, 2, 3)),
+        end: Some(date(2035, 2, 3)),
+        control: InjectionControl::Rate(1500.0),
+        rate_limit: Some(1700.0),
+        effective_fraction: 0.85,
+        bottomhole_limit_psia: Some(4400.0),
+        injectivity: Some(9.0),
+    };
+    let gas = InjectorSpec {
+        name: "G".to_owned(),
+        fluid: InjectedFluid::Gas,
+        start: None,
+        end: None,
+        control: InjectionControl::VoidageReplacement(0.4),
+        rate_limit: None,
+        effective_fraction: 1.0,
+        bottomhole_limit_psia: None,
+        injectivity: None,
+    };
+    assert_eq!(resolve().injectors, [water, gas]);
+}
+
+#[test]
+fn the_first_well_arrives() {
+    let well = WellSpec {
+        name: "A".to_owned(),
+        line_pressure_psia: 205.0,
+        target_rate_stb_d: Some(850.0),
+        uptime: 0.91,
+        perforations_md_ft: Some(7380.0),
+        gor_factor: 1.2,
+        water_factor: 0.8,
+        start: Some(date(2027, 6, 1)),
+        end: Some(date(2036, 6, 1)),
+        may_flow_again: true,
+        skin: 1.5,
+        skin_at_test: 0.5,
+        radii_ft: Some((1200.0, 4.25 / 12.0)),
+        minimum_flowing_pressure_psia: Some(900.0),
+        minimum_rate_stb_d: Some(45.0),
+        maximum_water_cut: Some(0.87),
+        maximum_gor_scf_stb: Some(4200.0),
+        inflow: InflowSpec {
+            method: InflowMethod::Fetkovich,
+            future: FutureRule::Mobility,
+            basis: RateBasis::Oil,
+            exponent: Some(0.88),
+            coefficient: Coefficient::Tests(vec![
+                InflowTest {
+                    on: Some(date(2026, 5, 4)),
+                    reservoir_psia: 2600.0,
+                    rate_stb_d: 410.0,
+                    water_cut: 0.01,
+                    measured: Measured::Gauged { flowing_psia: 2210.0 },
+                },
+                InflowTest {
+                    on: Some(date(2026, 5, 6)),
+                    reservoir_psia: 2600.0,
+                    rate_stb_d: 640.0,
+                    water_cut: 0.0,
+                    measured: Measured::Separator { wellhead_psia: 330.0, gor_scf_stb: 515.0 },
+                },
+            ]),
+        },
+        tubing: TubingSpec {
+            method: TubingMethod::BeggsBrill,
+            sections: vec![
+                TubingSection { to_md_ft: 5000.0, diameter_in: 2.992, roughness_in: 0.001 },
+                TubingSection { to_md_ft: f64::INFINITY, diameter_in: 2.441, roughness_in: 0.002 },
+            ],
+            survey: vec![(0.0, 0.0), (3000.0, 2990.0), (7400.0, 7050.0)],
+            wellhead_temperature_degf: 102.0,
+        },
+    };
+    let mut found = resolve().wells.remove(0);
+    // 4.25 in / 12 by two roads.
+    let (drainage_ft, wellbore_ft) = found.radii_ft.unwrap_or((f64::NAN, f64::NAN));
+    assert!((wellbore_ft - 4.25 / 12.0).abs() < 1.0e-15);
+    found.radii_ft = Some((drainage_ft, 4.25 / 12.0));
+    assert_eq!(found, well);
+}
+
+#[test]
+fn the_other_wells_have_their_defaults_and_methods() {
+    let wells = resolve().wells;
+    let [_, b, c, d] = wells.as_slice() else { panic!("four wells") };
+    assert_eq!((b.inflow.method, b.tubing.method), (InflowMethod::Vogel, TubingMethod::HagedornBrown));
+    assert_eq!((c.inflow.method, c.tubing.method), (InflowMethod::Straight, TubingMethod::NoSlip));
+    assert_eq!((d.inflow.method, d.tubing.method), (InflowMethod::Fetkovich, TubingMethod::HasanKabir));
+    let index = Coefficient::ProductivityIndex { j_stb_d_psi: 1.7, reservoir_psia: 3000.0 };
+    let open_flow = Coefficient::OpenFlow { rate_stb_d: 1300.0, reservoir_psia: 3120.0 };
+    let c_given = Coefficient::Fetkovich { c: 0.0011, reservoir_psia: 3120.0 };
+    assert_eq!([&b.inflow.coefficient, &c.inflow.coefficient, &d.inflow.coefficient], [&index, &open_flow, &c_given]);
+    for (well, diameter_in) in [(b, 1.995), (c, 2.1), (d, 2.2)] {
+        let section = TubingSection { to_md_ft: f64::INFINITY, diameter_in, roughness_in: 0.0006 };
+        assert_eq!(well.tubing.sections, [section]);
+        assert_eq!(
+            (well.uptime, well.gor_factor, well.water_factor, well.skin, well.skin_at_test),
+            (1.0, 1.0, 1.0, 0.0, 0.0)
+        );
+        assert_eq!((well.target_rate_stb_d, well.perforations_md_ft, well.radii_ft), (None, None, None));
+        assert_eq!((well.start, well.end, well.may_flow_again), (None, None, false));
+        assert_eq!((well.minimum_flowing_pressure_psia, well.minimum_rate_stb_d), (None, None));
+        assert_eq!((well.maximum_water_cut, well.maximum_gor_scf_stb), (None, None));
+        assert_eq!((well.inflow.future, well.inflow.basis), (FutureRule::Pressure, RateBasis::Liquid));
+    }
+}
+
+#[test]
+fn events_arrive_in_whole_settings() {
+    let field = resolve();
+    let [well, injector, tank] = field.changes.as_slice() else { panic!("three changes") };
+    assert_eq!((well.on, well.name.as_str()), (date(2029, 1, 1), "D"));
+    let new = WellSpec { skin: 2.0, ..field.wells[3].clone() };
+    assert_eq!(well.change, Change::Well(3, Box::new(new)));
+    assert_eq!((injector.on, injector.name.as_str()), (date(2030, 1, 1), "W"));
+    let new = InjectorSpec { rate_limit: Some(1600.0), ..field.injectors[0].clone() };
+    assert_eq!(injector.change, Change::Injector(0, new));
+    assert_eq!((tank.on, tank.name.as_str()), (date(2031, 1, 1), "tank"));
+    let new = TankSpec { water_model: WaterModel::Connate, ..field.tank.clone() };
+    assert_eq!(tank.change, Change::Tank(Box::new(new)));
+}
+
+#[test]
+fn every_word_of_a_choice_is_understood() {
+    let document = Document::parse("full.toml", FULL).unwrap_or_else(|problems| panic!("{problems}"));
+    let with = |set: &str| document.resolve(None, &[set.to_owned()]).unwrap_or_else(|problems| panic!("{problems}"));
+    assert_eq!(with("period.every=month").field.period.every, Every::Month);
+    assert_eq!(with("period.every=year").field.period.every, Every::Year);
+    assert_eq!(with("numerics.tolerance=normal").field.tolerance, Tolerance::Normal);
+    assert_eq!(with("units=field").units, UnitSystem::Field);
+    assert_eq!(with("well.A.tubing.method=hasan-kabir").field.wells[0].tubing.method, TubingMethod::HasanKabir);
+    assert_eq!(with("well.A.inflow.future=pressure").field.wells[0].inflow.future, FutureRule::Pressure);
+    assert_eq!(with("well.A.inflow.basis=liquid").field.wells[0].inflow.basis, RateBasis::Liquid);
+    assert_eq!(with("tank.water.model=connate").field.tank.water_model, WaterModel::Connate);
+}
+
+#[test]
+fn tests_replace_a_stated_coefficient_and_what_belongs_to_it() {
+    let document = Document::parse("full.toml", FULL).unwrap_or_else(|problems| panic!("{problems}"));
+    let test = "well.B.inflow.test=[{ reservoir = \"2900 psia\", flowing = \"2200 psia\", rate = \"700 STB/d\" }]";
+    let scenario = document.resolve(None, &[test.to_owned()]).unwrap_or_else(|problems| panic!("{problems}"));
+    assert!(matches!(&scenario.field.wells[1].inflow.coefficient, Coefficient::Tests(tests) if tests.len() == 1));
+}
