@@ -11,7 +11,12 @@ pub fn compare_text(comparison: &Comparison, provenance: &Provenance, folder: Op
     let rows = comparison.rows();
     let mut s = Screen::default();
     s.title(&provenance.title);
-    s.paragraph(0, 0, &format!("{} cases of {}, each against base", rows.len(), provenance.scenario_name));
+    if rows.len() < 2 {
+        let text = format!("{} has no [[case]] to compare: only the scenario as it stands", provenance.scenario_name);
+        s.paragraph(0, 0, &text);
+    } else {
+        s.paragraph(0, 0, &format!("{} cases of {}, each against base", rows.len() - 1, provenance.scenario_name));
+    }
     ends(&mut s, &rows, provenance);
     volumes(&mut s, &rows, provenance);
     if let Some(folder) = folder {
