@@ -107,7 +107,7 @@ pub struct CurvesArgs {
     #[command(flatten)]
     pub common: Common,
     /// Date of the curves: 2031-06-01
-    #[arg(long, value_name = "DATE")]
+    #[arg(long, value_name = "DATE", value_parser = date)]
     pub on: Date,
     /// Use this case of the scenario
     #[arg(long, value_name = "NAME")]
@@ -124,6 +124,10 @@ pub struct CurvesArgs {
     /// Write curves, traverses and their pictures into this folder
     #[arg(short, long, value_name = "DIR")]
     pub output: Option<PathBuf>,
+}
+
+fn date(text: &str) -> Result<Date, String> {
+    text.parse().map_err(|_| "a date like 2031-06-01 is expected".to_owned())
 }
 
 #[cfg(test)]

@@ -1,7 +1,7 @@
 //! What `compare` prints: every case beside the base.
 
 use super::screen::{Screen, Side};
-use crate::report::human::{number, short_month, span, volume};
+use crate::report::human::{number, short_month, span, words};
 use crate::report::labels::{Dimension, label};
 use crate::report::{CAUTION, Provenance};
 use crate::study::{CaseRow, Comparison, Shift};
@@ -11,7 +11,12 @@ pub fn compare_text(comparison: &Comparison, provenance: &Provenance, folder: Op
     let rows = comparison.rows();
     let mut s = Screen::default();
     s.title(&provenance.title);
-    s.paragraph(0, 0, &format!("{} cases of {}, each against base", rows.len(), provenance.scenario_name));
+    if rows.len() < 2 {
+        let text = format!("{} has no [[case]] to compare: only the scenario as it stands", provenance.scenario_name);
+        s.paragraph(0, 0, &text);
+    } else {
+        s.paragraph(0, 0, &format!("{} cases of {}, each against base", rows.len() - 1, provenance.scenario_name));
+    }
     ends(&mut s, &rows, provenance);
     volumes(&mut s, &rows, provenance);
     if let Some(folder) = folder {
@@ -52,26 +57,25 @@ fn ends(s: &mut Screen, rows: &[CaseRow], provenance: &Provenance) {
     for case in rows {
         for well in &case.wells {
             let (when, why, at) = match well.end {
-                Some(end) => (
-                    short_month(end.date),
-                    end.reason.text().to_owned(),
-                    format!("{} {}", number(rate.of(end.oil_rate_stb_d), 0), rate.text),
-                ),
+                Some(end) => {
+                    (short_month(end.date), end.reason.text().to_owned(), number(rate.of(end.oil_rate_stb_d), 0))
+                }
                 None if well.flowing_at_end => ("still flows".to_owned(), "-".to_owned(), "-".to_owned()),
                 None => ("never flowed".to_owned(), "-".to_owned(), "-".to_owned()),
             };
-            let extra = well.oil_increment_stb.map_or_else(|| "-".to_owned(), |v| plus(liquid.of(v), liquid.text));
+            let extra = well.oil_increment_stb.map_or_else(|| "-".to_owned(), |v| plus(liquid.of(v)));
             cells.push(vec![case.name.clone(), well.name.clone(), when, shift_text(well.shift), why, at, extra]);
         }
     }
+    let (rate_name, oil_name) = (format!("oil, {}", rate.text), format!("extra oil, {}", liquid.text));
     let header = [
         ("case", Side::Left),
         ("well", Side::Left),
         ("flows until", Side::Left),
         ("shift", Side::Right),
         ("reason", Side::Left),
-        ("oil rate then", Side::Right),
-        ("extra oil", Side::Right),
+        (rate_name.as_str(), Side::Right),
+        (oil_name.as_str(), Side::Right),
     ];
     s.table(&header, &cells);
 }
@@ -81,48 +85,53 @@ fn volumes(s: &mut Screen, rows: &[CaseRow], provenance: &Provenance) {
         (label(provenance.units, Dimension::LiquidVolume), label(provenance.units, Dimension::GasVolume));
     let (pressure, ratio) =
         (label(provenance.units, Dimension::Pressure), label(provenance.units, Dimension::GasOilRatio));
-    s.heading("Tank at the end of the run");
+    s.heading("Tank at the end of each run");
     let water = rows.iter().any(|r| r.injected_water_stb > 0.0);
     let gas_in = rows.iter().any(|r| r.injected_gas_scf > 0.0);
-    let mut header = vec![("case", Side::Left), ("oil made", Side::Right), ("extra oil", Side::Right)];
+    let mut header = vec![
+        ("case".to_owned(), Side::Left),
+        (format!("oil, {}", liquid.text), Side::Right),
+        ("extra oil".to_owned(), Side::Right),
+    ];
     if water {
-        header.extend([("water injected", Side::Right), ("per extra", Side::Right)]);
+        header.push((format!("water in, {}", liquid.text), Side::Right));
+        header.push(("per extra".to_owned(), Side::Right));
     }
     if gas_in {
-        header.extend([("gas injected", Side::Right), ("per extra", Side::Right)]);
+        header.push((format!("gas in, {}", gas.text), Side::Right));
+        header.push(("per extra".to_owned(), Side::Right));
     }
-    header.extend([("pressure", Side::Right), ("water cut", Side::Right)]);
+    header.push((pressure.text.to_owned(), Side::Right));
+    header.push(("water cut".to_owned(), Side::Right));
     let dash = |text: Option<String>| text.unwrap_or_else(|| "-".to_owned());
     let cells: Vec<Vec<String>> = rows
         .iter()
         .map(|case| {
-            let mut row = vec![
-                case.name.clone(),
-                volume(liquid.of(case.oil_cum_stb), liquid.text),
-                plus(liquid.of(case.oil_increment_stb), liquid.text),
-            ];
+            let mut row =
+                vec![case.name.clone(), words(liquid.of(case.oil_cum_stb)), plus(liquid.of(case.oil_increment_stb))];
             if water {
-                row.push(volume(liquid.of(case.injected_water_stb), liquid.text));
+                row.push(words(liquid.of(case.injected_water_stb)));
                 row.push(dash(case.water_per_extra_oil.map(|v| number(v, 2))));
             }
             if gas_in {
-                row.push(volume(gas.of(case.injected_gas_scf), gas.text));
+                row.push(words(gas.of(case.injected_gas_scf)));
                 row.push(dash(case.gas_per_extra_oil_scf_stb.map(|v| number(ratio.of(v), 0))));
             }
-            row.push(format!("{} {}", number(pressure.of(case.pressure_psia), 0), pressure.text));
+            row.push(number(pressure.of(case.pressure_psia), 0));
             row.push(dash(case.water_cut.map(|v| format!("{} %", number(100.0 * v, 1)))));
             row
         })
         .collect();
+    let header: Vec<(&str, Side)> = header.iter().map(|(text, side)| (text.as_str(), *side)).collect();
     s.table(&header, &cells);
     if water {
-        s.quiet("  per extra: water injected above the base for each extra volume of oil");
+        s.quiet("  per extra: volumes of water injected above the base for each volume of oil above it");
     }
     if gas_in {
-        s.quiet(&format!("  per extra: gas injected above the base for each extra volume of oil, {}", ratio.text));
+        s.quiet(&format!("  per extra: gas injected above the base for each volume of oil above it, {}", ratio.text));
     }
 }
 
-fn plus(value: f64, unit: &str) -> String {
-    if value == 0.0 { "-".to_owned() } else { format!("{}{}", if value > 0.0 { "+" } else { "" }, volume(value, unit)) }
+fn plus(value: f64) -> String {
+    if value == 0.0 { "-".to_owned() } else { format!("{}{}", if value > 0.0 { "+" } else { "" }, words(value)) }
 }

@@ -68,7 +68,7 @@ fn files(curves: &[WellCurves], provenance: &Provenance, all_models: bool) -> Re
         let Some(first) = well.first() else { continue };
         let stem = file_stem(&first.well, &mut taken);
         let named: Vec<CurveSet> =
-            well.iter().map(|c| CurveSet { label: c.method.to_owned(), ..c.curve.clone() }).collect();
+            well.iter().map(|c| CurveSet { label: format!("method {}", c.method), ..c.curve.clone() }).collect();
         let drawing = curves_picture(&first.well, "Inflow and tubing curves", &named, provenance);
         files.extend(picture_files(&format!("curves-{stem}"), &drawing)?);
         let drawing = traverse_picture(&first.well, &well.iter().collect::<Vec<_>>(), provenance);

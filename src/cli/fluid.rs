@@ -7,11 +7,11 @@ use super::screen::{Screen, Side};
 use super::{Done, output};
 use crate::fluid::{BlackOil, ReservoirFluid};
 use crate::report::folder::ResultFolder;
-use crate::report::human::{number, short};
+use crate::report::human::{number, significant};
 use crate::report::labels::label;
 use crate::report::{FluidSheet, OutFile, Provenance, fluid_csv, fluid_json, fluid_picture, picture_files};
 use crate::scenario::{Document, FluidScenario};
-use crate::units::Dimension;
+use crate::units::{Dimension, UnitSystem};
 
 pub fn run(args: &FluidArgs) -> Result<Done, Failure> {
     let file = &args.common.file;
@@ -35,7 +35,7 @@ pub fn run(args: &FluidArgs) -> Result<Done, Failure> {
     let picked = !pressures.is_empty();
     let top = scenario.pressure_psia.unwrap_or(0.0).max(1.2 * fluid.initial_bubble_point_psia()).clamp(low, high);
     if !picked {
-        pressures = choice(&fluid, low, top);
+        pressures = choice(&fluid, scenario.units, low, top);
     }
     let sheet = sheet(&fluid, &scenario, &pressures);
     let provenance = provenance(&scenario, &file_name(file));
@@ -75,11 +75,14 @@ fn faults_of(document: &Document, faults: Vec<crate::fault::Fault>) -> Failure {
     all.map_or_else(|| Failure::Run("the fluid cannot be used".to_owned()), Failure::from)
 }
 
-/// Round pressures up to `top`, and the bubble point.
-fn choice(fluid: &BlackOil, low: f64, top: f64) -> Vec<f64> {
-    let step = [50.0, 100.0, 200.0, 250.0, 500.0, 1000.0].into_iter().find(|s| top / s <= 20.0).unwrap_or(2000.0);
-    let mut list: Vec<f64> =
-        (1..).map(|i| f64::from(i) * step).take_while(|p| *p <= top + 0.5 * step).filter(|p| *p >= low).collect();
+/// Pressures that are round in the written units up to `top`, and the bubble point; psia.
+fn choice(fluid: &BlackOil, units: UnitSystem, low: f64, top: f64) -> Vec<f64> {
+    let pressure = label(units, Dimension::Pressure);
+    let highest = pressure.of(top);
+    let steps = [5.0, 10.0, 20.0, 25.0, 50.0, 100.0, 200.0, 250.0, 500.0, 1000.0];
+    let step = steps.into_iter().find(|s| highest / s <= 20.0).unwrap_or(2000.0);
+    let round = (1..).map(|i| f64::from(i) * step).take_while(|p| *p <= highest + 0.5 * step);
+    let mut list: Vec<f64> = round.map(|p| pressure.back(p)).filter(|p| *p >= low).collect();
     let bubble = fluid.initial_bubble_point_psia();
     list.retain(|p| (p - bubble).abs() > 1e-6);
     list.push(bubble);
@@ -137,11 +140,8 @@ fn text(sheet: &FluidSheet, provenance: &Provenance, folder: Option<String>) -> 
             columns
                 .iter()
                 .map(|(stem, unit, pick)| match *stem {
-                    "pressure" => number(unit.of(pick(row)), 1),
-                    "rs" => number(unit.of(pick(row)), 1),
-                    "bg" => format!("{:.5}", unit.of(pick(row))),
-                    "mu_g" => format!("{:.5}", unit.of(pick(row))),
-                    _ => short(unit.of(pick(row))),
+                    "pressure" | "rs" => number(unit.of(pick(row)), 1),
+                    _ => significant(unit.of(pick(row))),
                 })
                 .collect(),
         );

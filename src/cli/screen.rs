@@ -77,12 +77,10 @@ impl Screen {
 
     fn marked(&mut self, colour: &str, mark: &str, text: &str) {
         let (mark, text) = (clean(mark), clean(text));
-        let width = mark.chars().count() + 3;
-        for (i, line) in wrap(&text, WIDTH - width).into_iter().enumerate() {
-            if i == 0 {
-                self.line(&format!("  {colour}{mark}{RESET} {line}"));
-            } else {
-                self.line(&format!("{}{line}", " ".repeat(width)));
+        for (i, line) in wrap(&format!("{mark} {text}"), WIDTH - 4).into_iter().enumerate() {
+            match line.strip_prefix(mark.as_str()) {
+                Some(rest) if i == 0 => self.line(&format!("  {colour}{mark}{RESET}{rest}")),
+                _ => self.line(&format!("{}{line}", if i == 0 { "  " } else { "    " })),
             }
         }
     }
@@ -109,7 +107,7 @@ impl Screen {
         if let Some(first) = widths.first_mut()
             && total > WIDTH
         {
-            *first = first.saturating_sub(total - WIDTH).max(6);
+            *first = first.saturating_sub(total - WIDTH).max(8);
         }
         let cells = |row: &mut dyn Iterator<Item = &str>| {
             let mut line = String::new();

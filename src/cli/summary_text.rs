@@ -1,7 +1,7 @@
 //! What `forecast` prints: the answers on one screen.
 
 use super::screen::{Screen, Side};
-use crate::forecast::{Doubt, Forecast, WellResult, date_at};
+use crate::forecast::{Doubt, EventKind, Forecast, WellResult, date_at};
 use crate::report::human::{month, number, short, span, volume};
 use crate::report::labels::{Dimension, UnitSystem, label};
 use crate::report::{CAUTION, Provenance, doubt_text, recovery, sanity};
@@ -42,28 +42,59 @@ fn last_day(forecast: &Forecast) -> jiff::civil::Date {
 fn ends(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
     let rate = label(units, Dimension::LiquidRate);
     s.heading("End of natural flow");
-    let name = forecast.wells.iter().map(|w| w.name.chars().count()).max().unwrap_or(0).min(24);
-    for well in &forecast.wells {
-        let text = match (well.natural_flow_end, well.flowing_at_end) {
-            (Some(end), false) => format!(
-                "{}: {}, at {} {} of oil, {} after the start",
+    let dash = || "-".to_owned();
+    let rows: Vec<Vec<String>> = forecast
+        .wells
+        .iter()
+        .map(|well| match (well.natural_flow_end, well.flowing_at_end) {
+            (Some(end), false) => vec![
+                well.name.clone(),
                 month(end.date),
-                end.reason.text(),
-                number(rate.of(end.oil_rate_stb_d), 0),
-                rate.text,
-                span(end.days)
-            ),
-            (Some(end), true) => format!(
-                "flows at the end of the forecast ({}), after an end in {} ({})",
+                end.reason.text().to_owned(),
+                format!("{} {}", number(rate.of(end.oil_rate_stb_d), 0), rate.text),
+                span(end.days),
+            ],
+            (_, true) => vec![
+                well.name.clone(),
                 month(last_day(forecast)),
-                month(end.date),
-                end.reason.text()
-            ),
-            (None, true) => format!("still flows at the end of the forecast ({})", month(last_day(forecast))),
-            (None, false) => "never flowed".to_owned(),
-        };
-        s.paragraph(2, name + 3, &format!("{:<name$}   {text}", well.name));
+                "still flows at the end of the forecast".to_owned(),
+                String::new(),
+                String::new(),
+            ],
+            (None, false) => vec![well.name.clone(), "never flowed".to_owned(), dash(), dash(), dash()],
+        })
+        .collect();
+    let header = [
+        ("well", Side::Left),
+        ("flows until", Side::Left),
+        ("reason", Side::Left),
+        ("oil rate then", Side::Right),
+        ("after", Side::Right),
+    ];
+    s.table(&header, &rows);
+    for well in &forecast.wells {
+        for text in interruptions(forecast, &well.name) {
+            s.paragraph(2, 2, &text);
+        }
     }
+}
+
+/// Ends of natural flow after which the well came back.
+fn interruptions(forecast: &Forecast, name: &str) -> Vec<String> {
+    let mut list = Vec::new();
+    let mut ended = None;
+    for event in forecast.events.iter().filter(|e| e.name == name) {
+        match (event.kind, ended) {
+            (EventKind::EndOfNaturalFlow(reason), _) => ended = Some((event.date, reason)),
+            (EventKind::FlowsAgain, Some((date, reason))) => {
+                let (from, to) = (month(date), month(event.date));
+                list.push(format!("{name} also stopped in {from} ({}) and came back in {to}.", reason.text()));
+                ended = None;
+            }
+            _ => {}
+        }
+    }
+    list
 }
 
 fn wells(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
@@ -171,7 +202,7 @@ fn tests(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
                 format!("{} {}{computed}", number(pressure.of(test.flowing_psia), 0), pressure.text),
                 format!("{} {}", short(rate.of(test.rate_stb_d)), rate.text),
                 format!("{} {}", short(rate.of(test.model_rate_stb_d)), rate.text),
-                if miss.is_finite() { format!("{miss:+.1} %") } else { "-".to_owned() },
+                percent(miss),
             ]);
         }
     }
@@ -187,6 +218,13 @@ fn tests(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
         ];
         s.table(&header, &rows);
     }
+}
+
+/// "+1.2 %"; what rounds to zero has no sign.
+fn percent(value: f64) -> String {
+    let text = number(value, 1);
+    let plus = if value > 0.0 && text != "0.0" { "+" } else { "" };
+    if value.is_finite() { format!("{plus}{text} %") } else { text }
 }
 
 /// The list of doubts, each with its cause and what to do.

@@ -8,6 +8,9 @@ use crate::fluid::FluidRow;
 use crate::forecast::WellCurves;
 use crate::tubing::TraversePoint;
 
+/// Name, unit and value of a column.
+pub type Column<Row> = (&'static str, Label, fn(&Row) -> f64);
+
 /// The fluid's properties at tank temperature.
 #[derive(Debug, Clone, PartialEq)]
 pub struct FluidSheet {
@@ -18,9 +21,6 @@ pub struct FluidSheet {
     /// The rows, by pressure.
     pub rows: Vec<FluidRow>,
 }
-
-/// A column: name, unit, value of a row.
-pub type Column<T> = (&'static str, Label, fn(&T) -> f64);
 
 impl FluidSheet {
     pub(super) fn line(&self, pick: impl Fn(&FluidRow) -> f64) -> Vec<f64> {

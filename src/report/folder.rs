@@ -167,6 +167,10 @@ fn make_parents(parent: &Path) -> io::Result<Vec<PathBuf>> {
 fn check_ours(resolved: &Path, target: &Path) -> Result<(), FolderError> {
     let not_ours = |what| Err(FolderError::NotOurs { path: target.to_owned(), what });
     let unwritable = |source| FolderError::Unwritable { path: target.to_owned(), source };
+    // Replacing it would pull the ground from under the user's shell.
+    if std::env::current_dir().is_ok_and(|here| here.starts_with(resolved)) {
+        return not_ours("is the current folder or holds it");
+    }
     match fs::symlink_metadata(resolved) {
         Err(e) if e.kind() == io::ErrorKind::NotFound => return Ok(()),
         Err(e) => return Err(unwritable(e)),

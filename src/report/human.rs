@@ -1,6 +1,6 @@
 //! Numbers and dates for people: thousands separators, month names, no bare M or MM.
 
-use jiff::{ToSpan, civil::Date};
+use jiff::civil::Date;
 
 const MONTHS: [&str; 12] = [
     "January",
@@ -28,19 +28,6 @@ pub fn short_month(date: Date) -> String {
     let index = usize::from(date.month().unsigned_abs()).saturating_sub(1);
     let name = MONTHS.get(index).copied().unwrap_or("");
     format!("{} {}", name.get(..3).unwrap_or(name), date.year())
-}
-
-/// The calendar day that holds the instant `days` after `start` 00:00.
-pub fn day_at(start: Date, days: f64) -> Date {
-    if !days.is_finite() {
-        return start;
-    }
-    start.checked_add((days.floor().clamp(-3e6, 3e6) as i64).days()).unwrap_or(start)
-}
-
-/// Whole days from `from` to `to`.
-pub fn days_between(from: Date, to: Date) -> f64 {
-    f64::from(from.until(to).map_or(0, |span| span.get_days()))
 }
 
 /// `1234567.8` with `decimals` digits after the point and a comma between thousands: "1,234,567.80".
@@ -81,17 +68,27 @@ pub fn short(value: f64) -> String {
     }
 }
 
+/// Five significant digits, without an exponent down to a millionth.
+pub fn significant(value: f64) -> String {
+    if value == 0.0 || !value.is_finite() || value.abs() < 1e-6 {
+        return short(value);
+    }
+    let decimals = (4.0 - value.abs().log10().floor()).clamp(0.0, 10.0) as usize;
+    number(value, decimals)
+}
+
 /// A volume in words: "1.234 million STB", "12.3 thousand STB", "640 STB".
 pub fn volume(value: f64, unit: &str) -> String {
-    let size = value.abs();
-    if size >= 1e9 {
-        format!("{} billion {unit}", number(value / 1e9, 3))
-    } else if size >= 1e6 {
-        format!("{} million {unit}", number(value / 1e6, 3))
-    } else if size >= 1e4 {
-        format!("{} thousand {unit}", number(value / 1e3, 1))
-    } else {
-        format!("{} {unit}", number(value, 0))
+    format!("{} {unit}", words(value))
+}
+
+/// A large number in words: "1.234 million", "12.3 thousand", "640".
+pub fn words(value: f64) -> String {
+    match value.abs() {
+        size if size >= 1e9 => format!("{} billion", number(value / 1e9, 3)),
+        size if size >= 1e6 => format!("{} million", number(value / 1e6, 3)),
+        size if size >= 1e4 => format!("{} thousand", number(value / 1e3, 1)),
+        _ => number(value, 0),
     }
 }
 
@@ -132,12 +129,19 @@ mod tests {
     }
 
     #[test]
-    fn an_instant_belongs_to_the_day_that_holds_it() {
-        assert_eq!(day_at(date(2027, 1, 1), 0.0), date(2027, 1, 1));
-        assert_eq!(day_at(date(2027, 1, 1), 30.999), date(2027, 1, 31));
-        assert_eq!(day_at(date(2027, 1, 1), 31.0), date(2027, 2, 1));
+    fn people_read_months() {
         assert_eq!(month(date(2031, 3, 17)), "March 2031");
         assert_eq!(short_month(date(2031, 12, 1)), "Dec 2031");
+    }
+
+    #[test]
+    fn figures_keep_their_size() {
+        assert_eq!(significant(0.000_803_21), "0.00080321");
+        assert_eq!(significant(1.357_121), "1.3571");
+        assert_eq!(short(12_345.6), "12,346");
+        assert_eq!(span(12.0), "12 days");
+        assert_eq!(span(-475.0), "-15.6 months");
+        assert_eq!(span(2276.6), "6.2 years");
     }
 
     #[test]

@@ -24,6 +24,11 @@ impl Label {
         value * self.factor + self.offset
     }
 
+    /// From the written units to the program's.
+    pub fn back(&self, written: f64) -> f64 {
+        (written - self.offset) / self.factor
+    }
+
     /// `stem` with the unit behind it.
     pub fn column(&self, stem: &str) -> String {
         if self.suffix.is_empty() { stem.to_owned() } else { format!("{stem}_{}", self.suffix) }

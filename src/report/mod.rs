@@ -75,8 +75,14 @@ impl Provenance {
 
     /// The small line below a picture.
     fn footer(&self) -> String {
+        self.footer_of(&format!("case {}", self.case_name()))
+    }
+
+    /// The same with other words at its end.
+    fn footer_of(&self, last: &str) -> String {
         let digest = self.sha256.get(..12).unwrap_or(&self.sha256);
-        format!("wane {} · {} · SHA-256 {digest} · case {}", self.version, self.scenario_name, self.case_name())
+        let line = format!("wane {} · {} · SHA-256 {digest}", self.version, self.scenario_name);
+        if last.is_empty() { line } else { format!("{line} · {last}") }
     }
 }
 

@@ -1,11 +1,10 @@
 //! `summary.json`: the answers in one small file.
 
-use super::human::day_at;
 use super::json::Json;
 use super::labels::{Dimension, Label, label};
 use super::table::recovery;
 use super::{Provenance, ReportError, sanity};
-use crate::forecast::{Doubt, Forecast, InjectorResult, WellResult};
+use crate::forecast::{Doubt, Forecast, InjectorResult, WellResult, date_at};
 
 /// `summary.json`.
 ///
@@ -45,7 +44,7 @@ fn summary(forecast: &Forecast, provenance: &Provenance) -> Json {
     let mut entries = provenance.entries();
     entries.extend([
         plain("start", forecast.start.to_string().as_str()),
-        plain("end", day_at(forecast.start, forecast.end_days).to_string().as_str()),
+        plain("end", date_at(forecast.start, forecast.end_days).to_string().as_str()),
         plain("end_days", forecast.end_days),
         plain("end_reason", forecast.end_text),
         plain("tank", tank(forecast, &units)),
@@ -126,7 +125,7 @@ fn well(forecast: &Forecast, well: &WellResult, units: &Units) -> Json {
             ])
         })
         .collect();
-    let plateau_end = well.plateau_end.map_or(Json::Null, |days| Json::text(day_at(forecast.start, days).to_string()));
+    let plateau_end = well.plateau_end.map_or(Json::Null, |days| Json::text(date_at(forecast.start, days).to_string()));
     Json::Object(vec![
         plain("name", well.name.as_str()),
         plain("natural_flow_end", end),

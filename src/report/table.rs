@@ -1,7 +1,6 @@
 //! The profile as rows: one per period and well, injector and tank; the same rows by calendar year.
 
-use super::human::days_between;
-use crate::forecast::{DriveIndices, Forecast, InjectedFluid, Period, TankRow};
+use crate::forecast::{DriveIndices, Forecast, InjectedFluid, Period, TankRow, days_between};
 use jiff::civil::{Date, date};
 
 /// What stands in a row. `None` is an empty cell: not applicable.

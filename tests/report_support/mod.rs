@@ -1,5 +1,5 @@
 //! Results made by hand: reports are tested without running the engine.
-#![allow(dead_code)]
+#![allow(dead_code, clippy::unwrap_used)]
 
 use jiff::civil::{Date, date};
 use wane::forecast::*;

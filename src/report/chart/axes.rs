@@ -248,6 +248,11 @@ fn outline(at: (f64, f64), mark: Mark, r: f64) -> Vec<(f64, f64)> {
     corners.iter().map(|(x, y)| (at.0 + r * x, at.1 + r * y)).collect()
 }
 
+/// Height that [`legend`] takes in a picture of this width.
+pub(super) fn legend_height(width: u32, entries: &[(String, Look, bool)]) -> f64 {
+    legend(&mut Drawing::new(width, 100), 0.0, entries)
+}
+
 /// Title, subtitle and the small line at the bottom.
 pub(super) fn headings(d: &mut Drawing, title: &str, subtitle: &str, footer: &str) {
     let (width, height) = (f64::from(d.width), f64::from(d.height));

@@ -1,7 +1,7 @@
 //! `compare`: the cases of a scenario laid over each other.
 
 use super::Drawing;
-use super::axes::{Span, headings, legend};
+use super::axes::{Span, headings, legend, legend_height};
 use super::rates::total_stretches;
 use super::style::{Look, look};
 use super::timeline::{Timeline, end_labels, stack};
@@ -9,6 +9,8 @@ use crate::forecast::Forecast;
 use crate::report::Provenance;
 use crate::report::human;
 use crate::report::labels::{Dimension, label};
+
+const WIDTH: u32 = 1040;
 
 type Points = Vec<(f64, f64)>;
 
@@ -35,12 +37,13 @@ pub fn compare_picture(cases: &[(&str, &Forecast)], provenance: &Provenance) -> 
         panels_of.push(("Water cut of all wells, fraction of liquid".to_owned(), true, cuts));
     }
 
-    let mut d = Drawing::new(1040, (150 + 215 * panels_of.len()) as u32);
-    let height = f64::from(d.size().1);
-    headings(&mut d, &provenance.title, "Cases compared", &provenance.footer());
     let entries: Vec<(String, Look, bool)> =
         cases.iter().enumerate().map(|(i, (name, _))| ((*name).to_owned(), case_look(i), false)).collect();
-    let top = 64.0 + legend(&mut d, 64.0, &entries);
+    let top = 64.0 + legend_height(WIDTH, &entries);
+    let mut d = Drawing::new(WIDTH, (top + 44.0 + 215.0 * panels_of.len() as f64) as u32);
+    let height = f64::from(d.size().1);
+    headings(&mut d, &provenance.title, "Cases compared", &provenance.footer_of("all cases"));
+    legend(&mut d, 64.0, &entries);
     let end = cases.iter().filter_map(|(_, f)| f.periods.last()).map(|p| p.end_days).fold(1.0, f64::max);
     let start = cases.first().map_or_else(jiff::civil::Date::default, |(_, f)| f.start);
     let timeline = Timeline { start, days: Span::new(0.0, end) };

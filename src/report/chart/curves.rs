@@ -33,7 +33,7 @@ pub fn curves_picture(well: &str, inflow: &str, curves: &[CurveSet], provenance:
         let left = 84.0 + column as f64 * (panel_width + 40.0);
         let top = 168.0 + 430.0 * row as f64;
         let panel = Panel { left, top, right: left + panel_width, bottom: top + 330.0, x, y };
-        draw_instant(&mut d, &panel, curve, provenance, column == 0);
+        draw_instant(&mut d, &panel, curve, provenance, i);
     }
     d
 }
@@ -59,7 +59,7 @@ fn spans(curves: &[CurveSet], rate: Label, pressure: Label) -> (Span, Span) {
     (Span::new(0.0, highest_rate * 1.02), Span::new(0.0, highest * 1.05).rounded(true))
 }
 
-fn draw_instant(d: &mut Drawing, panel: &Panel, curve: &CurveSet, provenance: &Provenance, first: bool) {
+fn draw_instant(d: &mut Drawing, panel: &Panel, curve: &CurveSet, provenance: &Provenance, index: usize) {
     let rate = label(provenance.units, Dimension::LiquidRate);
     let pressure = label(provenance.units, Dimension::Pressure);
     let difference = label(provenance.units, Dimension::PressureDifference);
@@ -72,10 +72,10 @@ fn draw_instant(d: &mut Drawing, panel: &Panel, curve: &CurveSet, provenance: &P
         .collect();
 
     gap(d, panel, &points);
-    panel.draw_y(d, "", 6, first);
+    panel.draw_y(d, "", 6, index.is_multiple_of(IN_A_ROW));
     panel.draw_x(d, &format!("Liquid rate, {}", rate.text), 4);
     panel.draw_frame(d);
-    if first {
+    if index == 0 {
         d.text((24.0, panel.top - 56.0), 13.0, Anchor::Left, INK, format!("Flowing pressure, {}", pressure.text));
     }
     let heading = format!("{}, {}", capital(&curve.label), human::month(curve.date));
@@ -88,7 +88,7 @@ fn draw_instant(d: &mut Drawing, panel: &Panel, curve: &CurveSet, provenance: &P
     panel.draw_line(d, points.iter().map(|p| (p.0, p.2)), TUBING_LOOK);
     widest(d, panel, &points, curve);
     if let Some((q, p)) = curve.operating_point {
-        operating_point(d, panel, (rate.of(q), pressure.of(p)), &points, rate, width);
+        operating_point(d, panel, (rate.of(q), pressure.of(p)), &points, rate);
     }
 }
 
@@ -97,11 +97,15 @@ fn margin_text(curve: &CurveSet, difference: Label) -> String {
     if !margin.is_finite() {
         return "no margin".to_owned();
     }
-    if curve.flow_margin_psi.abs() < 0.05 {
-        return "the curves only touch".to_owned();
+    let size = human::number(margin.abs(), if margin.abs() < 10.0 { 2 } else { 0 });
+    // Less than this is the thickness of a line.
+    if curve.flow_margin_psi.abs() < 0.5 && curve.operating_point.is_some() {
+        "the curves only touch".to_owned()
+    } else if margin < 0.0 {
+        format!("no crossing, {size} {} short", difference.text)
+    } else {
+        format!("margin {size} {}", difference.text)
     }
-    let decimals = if margin.abs() < 10.0 { 2 } else { 0 };
-    format!("margin {} {}", human::number(margin, decimals), difference.text)
 }
 
 /// Fills where the inflow curve stands above the tubing curve.
@@ -139,14 +143,7 @@ fn widest(d: &mut Drawing, panel: &Panel, points: &[(f64, f64, f64)], curve: &Cu
     }
 }
 
-fn operating_point(
-    d: &mut Drawing,
-    panel: &Panel,
-    point: (f64, f64),
-    points: &[(f64, f64, f64)],
-    rate: Label,
-    width: f64,
-) {
+fn operating_point(d: &mut Drawing, panel: &Panel, point: (f64, f64), points: &[(f64, f64, f64)], rate: Label) {
     if !(point.0.is_finite() && point.1.is_finite()) {
         return;
     }
@@ -162,9 +159,32 @@ fn operating_point(
     }
     panel.draw_mark(d, point, Look { colour: INK, ..INFLOW_LOOK }, 4.5);
     let text = format!("{} {}{}", human::number(point.0, 0), rate.text, if choked { ", choked" } else { "" });
-    // Curves fall to the right: above the point on its right is room.
-    let left = (x + 9.0).min(panel.left + width - super::paint::text_width(&text, 12.0));
-    d.text((left, (y - 12.0).max(panel.top + 8.0)), 12.0, Anchor::Left, INK, text);
+    label_beside(d, panel, (x, y), points, text);
+}
+
+/// Writes a text beside a point where neither curve runs through it.
+fn label_beside(d: &mut Drawing, panel: &Panel, at: (f64, f64), points: &[(f64, f64, f64)], text: String) {
+    let width = super::paint::text_width(&text, 12.0);
+    let places = [(9.0, -12.0), (9.0, -26.0), (9.0, -40.0), (-9.0 - width, 15.0), (-9.0 - width, 28.0), (9.0, 15.0)];
+    let place = |(dx, dy): (f64, f64)| {
+        let left = (at.0 + dx).min(panel.right - width).max(panel.left + 3.0);
+        (left, (at.1 + dy).max(panel.top + 8.0))
+    };
+    let free = |spot: &(f64, f64)| {
+        let (left, middle) = place(*spot);
+        let inside = |x: f64, y: f64| (left - 3.0..left + width + 3.0).contains(&x) && (y - middle).abs() < 9.0;
+        let crossed = |value: fn(&(f64, f64, f64)) -> f64| {
+            points.windows(2).any(|w| {
+                (0..=8).map(|i| f64::from(i) / 8.0).any(|s| {
+                    let mix = |a: f64, b: f64| a + s * (b - a);
+                    inside(panel.at_x(mix(w[0].0, w[1].0)), panel.at_y(mix(value(&w[0]), value(&w[1]))))
+                })
+            })
+        };
+        !crossed(|p| p.1) && !crossed(|p| p.2)
+    };
+    let spot = places.iter().find(|spot| free(spot)).unwrap_or(&places[0]);
+    d.text(place(*spot), 12.0, Anchor::Left, INK, text);
 }
 
 fn capital(text: &str) -> String {

@@ -16,7 +16,7 @@ pub fn fluid_picture(table: &FluidSheet, provenance: &Provenance) -> Drawing {
         crate::report::human::number(degrees.of(table.temperature_degf), 1),
         degrees.text
     );
-    headings(&mut d, &provenance.title, &subtitle, &provenance.footer());
+    headings(&mut d, &provenance.title, &subtitle, &provenance.footer_of(""));
     let gor = label(provenance.units, Dimension::GasOilRatio);
     let volume = label(provenance.units, Dimension::GasVolumeFactor);
     let (above, below) = volume.text.split_once('/').unwrap_or(("", ""));

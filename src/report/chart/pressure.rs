@@ -1,13 +1,15 @@
 //! `pressure`: reservoir pressure, gas-oil ratio and water cut over time.
 
-use super::axes::{Span, headings, legend};
-use super::rates::{ends_of_flow, timeline, title};
+use super::Drawing;
+use super::axes::{Span, headings, legend, legend_height};
+use super::rates::{NO_WATER, ends_of_flow, timeline, title, water_shows};
 use super::style::{Dash, Look, QUIET, TANK, TOTAL, look};
 use super::timeline::{draw_moments, moments_height, stack};
-use super::{Anchor, Drawing};
 use crate::forecast::Forecast;
 use crate::report::Provenance;
 use crate::report::labels::{Dimension, Label, label};
+
+const WIDTH: u32 = 960;
 
 type Points = Vec<(f64, f64)>;
 
@@ -23,10 +25,6 @@ struct State {
 /// Pressure, gas-oil ratio and water cut of a forecast, at the ends of the periods.
 pub fn pressure_picture(forecast: &Forecast, provenance: &Provenance) -> Drawing {
     let states = states(forecast, provenance);
-    let mut d = Drawing::new(960, (170 + 195 * states.len().max(1)) as u32);
-    let height = f64::from(d.size().1);
-    headings(&mut d, &title(provenance), "States at the end of each period", &provenance.footer());
-
     let timeline = timeline(forecast);
     let mut entries =
         vec![("tank".to_owned(), TANK, false), ("bubble point of the oil in the tank".to_owned(), BUBBLE, false)];
@@ -34,10 +32,18 @@ pub fn pressure_picture(forecast: &Forecast, provenance: &Provenance) -> Drawing
         entries.push(("all wells".to_owned(), TOTAL, false));
         entries.extend(forecast.wells.iter().enumerate().map(|(i, w)| (w.name.clone(), look(i), false)));
     }
-    let top = 64.0 + legend(&mut d, 64.0, &entries);
     let moments = ends_of_flow(forecast);
+    let top = 64.0 + legend_height(WIDTH, &entries);
+    let strip = moments_height(WIDTH, 36.0, timeline.days, &moments);
+    let height = top + strip + 28.0 + 195.0 * states.len() as f64 + 18.0;
+
+    let mut d = Drawing::new(WIDTH, height as u32);
+    let height = f64::from(d.size().1);
+    let no_water = if water_shows(forecast) { String::new() } else { format!("; {NO_WATER}") };
+    let subtitle = format!("States at the end of each period{no_water}");
+    headings(&mut d, &title(provenance), &subtitle, &provenance.footer());
+    legend(&mut d, 64.0, &entries);
     let ys: Vec<(Span, f64)> = states.iter().map(|s| (s.span(), 1.0)).collect();
-    let strip = stack(&d, top, height, 36.0, timeline.days, &ys).first().map_or(0.0, |p| moments_height(&moments, p));
     let panels = stack(&d, top + strip + 28.0, height - 62.0, 36.0, timeline.days, &ys);
     for (i, (state, panel)) in states.iter().zip(&panels).enumerate() {
         panel.draw_y(&mut d, &state.title, 4, true);
@@ -48,9 +54,6 @@ pub fn pressure_picture(forecast: &Forecast, provenance: &Provenance) -> Drawing
         }
     }
     draw_moments(&mut d, &panels, top, &moments);
-    if states.len() == 2 {
-        d.text((936.0, height - 14.0), 10.5, Anchor::Right, QUIET, "no water is produced");
-    }
     d
 }
 
@@ -85,7 +88,13 @@ fn states(forecast: &Forecast, provenance: &Provenance) -> Vec<State> {
     };
     let mut tank_pressure = vec![(0.0, pressure.of(forecast.start_pressure_psia))];
     tank_pressure.extend(at_ends(forecast, pressure, tank(|t| Some(t.pressure_psia))));
-    let bubble = at_ends(forecast, pressure, tank(|t| Some(t.bubble_point_psia)));
+    let mut bubble = at_ends(forecast, pressure, tank(|t| Some(t.bubble_point_psia)));
+    // Oil that starts above its bubble point keeps the same one until it is reached.
+    if let (Some(first), Some(tank)) = (bubble.first().copied(), forecast.tank.first())
+        && tank.pressure_psia > tank.bubble_point_psia
+    {
+        bubble.insert(0, (0.0, first.1));
+    }
     let all = if forecast.wells.len() > 1 { TOTAL } else { look(0) };
     let mut gor_lines = vec![(at_ends(forecast, gor, tank(|t| t.gor_scf_stb)), all)];
     gor_lines.extend(wells(gor, |r| r.gor_scf_stb));
@@ -101,7 +110,7 @@ fn states(forecast: &Forecast, provenance: &Provenance) -> Vec<State> {
         },
         State { title: format!("Producing gas-oil ratio, {}", gor.text), from_zero: true, lines: gor_lines },
     ];
-    if forecast.wells.iter().any(|w| w.rows.iter().any(|r| r.water_stb > 0.0)) {
+    if water_shows(forecast) {
         states.push(State { title: "Water cut, fraction of liquid".to_owned(), from_zero: true, lines: water_lines });
     }
     states

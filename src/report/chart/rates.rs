@@ -1,10 +1,10 @@
 //! `rates`: oil, gas, water and injection rates over time, each well and the total.
 
 use super::Drawing;
-use super::axes::{Span, headings, legend};
+use super::axes::{Span, headings, legend, legend_height};
 use super::style::{Look, TOTAL, look};
 use super::timeline::{Moment, Timeline, draw_moments, moments_height, stack};
-use crate::forecast::{Forecast, InjectorRow, Period, TankRow, WellResult, WellRow};
+use crate::forecast::{EventKind, EventRecord, Forecast, InjectorRow, Period, TankRow, WellResult, WellRow};
 use crate::report::Provenance;
 use crate::report::human::{self, short_month};
 use crate::report::labels::{Dimension, label};
@@ -27,27 +27,24 @@ struct Stream {
 /// The rates of a forecast as a picture: averages over the calendar period, drawn as steps.
 pub fn rates_picture(forecast: &Forecast, provenance: &Provenance) -> Drawing {
     let streams = streams(forecast);
-    let mut d = Drawing::new(WIDTH, (170 + 190 * streams.len().max(1)) as u32);
-    let height = f64::from(d.size().1);
-    headings(
-        &mut d,
-        &title(provenance),
-        "Calendar-day rates, averages over each period or up to the end of flow inside it",
-        &provenance.footer(),
-    );
-
     let timeline = timeline(forecast);
-    let mut top = 64.0;
-    if forecast.wells.len() > 1 || !forecast.injectors.is_empty() {
-        top += legend(&mut d, top, &legend_entries(forecast));
-    }
+    let several = forecast.wells.len() > 1 || !forecast.injectors.is_empty();
+    let entries = if several { legend_entries(forecast) } else { Vec::new() };
     let moments = ends_of_flow(forecast);
-    let panels_of = |d: &Drawing, top: f64| {
-        let ys: Vec<(Span, f64)> = streams.iter().map(|s| (axis(s, provenance).0, 1.0)).collect();
-        stack(d, top, height - 62.0, 36.0, timeline.days, &ys)
-    };
-    let strip = panels_of(&d, top).first().map_or(0.0, |p| moments_height(&moments, p));
-    let panels = panels_of(&d, top + strip + 28.0);
+    let top = 64.0 + if several { legend_height(WIDTH, &entries) } else { 0.0 };
+    let strip = moments_height(WIDTH, 36.0, timeline.days, &moments);
+    let height = top + strip + 28.0 + 190.0 * streams.len().max(1) as f64 + 18.0;
+
+    let mut d = Drawing::new(WIDTH, height as u32);
+    let height = f64::from(d.size().1);
+    let no_water = if water_shows(forecast) { String::new() } else { format!("; {NO_WATER}") };
+    let subtitle = format!("Calendar-day rates, averages over the part of each period with flow{no_water}");
+    headings(&mut d, &title(provenance), &subtitle, &provenance.footer());
+    if several {
+        legend(&mut d, 64.0, &entries);
+    }
+    let ys: Vec<(Span, f64)> = streams.iter().map(|s| (axis(s, provenance).0, 1.0)).collect();
+    let panels = stack(&d, top + strip + 28.0, height - 62.0, 36.0, timeline.days, &ys);
     for (i, (stream, panel)) in streams.iter().zip(&panels).enumerate() {
         let (_, factor, unit) = axis(stream, provenance);
         panel.draw_y(&mut d, &format!("{} rate, {unit}", stream.name), 4, true);
@@ -82,14 +79,21 @@ pub(super) fn timeline(forecast: &Forecast) -> Timeline {
     Timeline { start: forecast.start, days: Span::new(0.0, end) }
 }
 
+/// Every end of natural flow, also of wells that came back.
 pub(super) fn ends_of_flow(forecast: &Forecast) -> Vec<Moment> {
-    let ends = forecast.wells.iter().enumerate().filter_map(|(i, w)| w.natural_flow_end.map(|end| (i, w, end)));
-    ends.map(|(i, w, end)| Moment {
-        days: end.days,
-        text: format!("{} ends {}", w.name, short_month(end.date)),
-        look: look(i),
-    })
-    .collect()
+    let mut moments = Vec::new();
+    for (i, well) in forecast.wells.iter().enumerate() {
+        let is_end = |e: &&EventRecord| matches!(e.kind, EventKind::EndOfNaturalFlow(_)) && e.name == well.name;
+        let last = timeline(forecast).days.high;
+        let mut ends: Vec<_> = forecast.events.iter().filter(is_end).map(|e| (e.days, e.date)).collect();
+        if ends.is_empty() {
+            ends.extend(well.natural_flow_end.map(|end| (end.days, end.date)));
+        }
+        let text = |date| format!("{} ends {}", well.name, short_month(date));
+        let inside = ends.into_iter().filter(|(days, _)| (0.0..=last).contains(days));
+        moments.extend(inside.map(|(days, date)| Moment { days, text: text(date), look: look(i) }));
+    }
+    moments
 }
 
 fn legend_entries(forecast: &Forecast) -> Vec<(String, Look, bool)> {
@@ -133,8 +137,21 @@ fn streams(forecast: &Forecast) -> Vec<Stream> {
         Stream { name: "Injected gas", dimension: Dimension::GasRate, series: injectors(|r| r.gas_scf) },
     ];
     // A stream that never flows gets no panel; oil always has one.
-    all.into_iter().filter(|s| s.name == "Oil" || s.series.iter().any(Series::flows)).collect()
+    let shown = |s: &Stream| match s.name {
+        "Oil" => true,
+        "Water" => water_shows(forecast),
+        _ => s.series.iter().any(Series::flows),
+    };
+    all.into_iter().filter(shown).collect()
 }
+
+/// Whether water ever exceeds a thousandth of a period's liquid; less is the connate water's own expansion.
+pub(super) fn water_shows(forecast: &Forecast) -> bool {
+    forecast.tank.iter().any(|t| t.water_stb > 1e-3 * (t.oil_stb + t.water_stb))
+}
+
+/// What is said where the water has no panel.
+pub(super) const NO_WATER: &str = "water stays below 0.1 % of the liquid";
 
 impl Series {
     fn flows(&self) -> bool {
@@ -153,21 +170,53 @@ fn mean(period: &Period, until: f64, volume: f64) -> (f64, f64, f64) {
     (period.start_days, until, if length > 0.0 { volume / length } else { f64::NAN })
 }
 
-/// The tank's mean rates; the last period counts up to the end of the run.
+/// The tank's mean rates over the part of each period in which any well flows; periods without flow are gaps.
 pub(super) fn total_stretches(forecast: &Forecast, pick: fn(&TankRow) -> f64) -> Vec<(f64, f64, f64)> {
-    forecast.periods.iter().zip(&forecast.tank).map(|(p, t)| mean(p, p.run_days.min(p.end_days), pick(t))).collect()
-}
-
-/// A well's mean rates; the period in which it ends counts up to its end, and periods without flow are gaps.
-fn well_stretches(forecast: &Forecast, well: &WellResult, pick: fn(&WellRow) -> f64) -> Vec<(f64, f64, f64)> {
-    let end = well.natural_flow_end.map_or(f64::INFINITY, |end| end.days);
-    let rows = forecast.periods.iter().zip(&well.rows);
-    rows.map(|(p, r)| {
-        let run = p.run_days.min(p.end_days);
-        let until = if end > p.start_days { run.min(end) } else { run };
-        mean(p, until, if r.flowing_days > 0.0 { pick(r) } else { f64::NAN })
+    let intervals: Vec<_> = forecast.wells.iter().flat_map(|w| flow_intervals(forecast, w)).collect();
+    let rows = forecast.periods.iter().zip(&forecast.tank);
+    rows.map(|(p, t)| {
+        let flows = t.oil_stb + t.water_stb > 0.0;
+        flowing_mean(p, &intervals, if flows { pick(t) } else { f64::NAN })
     })
     .collect()
+}
+
+/// When a well flows, days from the start, as the events tell; without any, up to its end.
+fn flow_intervals(forecast: &Forecast, well: &WellResult) -> Vec<(f64, f64)> {
+    let mut list = Vec::new();
+    let mut since = None;
+    for event in forecast.events.iter().filter(|e| e.name == well.name) {
+        match event.kind {
+            EventKind::WellStarted | EventKind::FlowsAgain => {
+                since.get_or_insert(event.days);
+            }
+            EventKind::EndOfNaturalFlow(_) => list.push((since.take().unwrap_or(0.0), event.days)),
+            _ => {}
+        }
+    }
+    list.extend(since.map(|from| (from, f64::INFINITY)));
+    if list.is_empty() && well.rows.iter().any(|r| r.flowing_days > 0.0) {
+        list.push((0.0, well.natural_flow_end.map_or(f64::INFINITY, |end| end.days)));
+    }
+    list
+}
+
+/// A well's mean rates over the part of each period in which it flows; periods without flow are gaps.
+fn well_stretches(forecast: &Forecast, well: &WellResult, pick: fn(&WellRow) -> f64) -> Vec<(f64, f64, f64)> {
+    let intervals = flow_intervals(forecast, well);
+    let rows = forecast.periods.iter().zip(&well.rows);
+    rows.map(|(p, r)| flowing_mean(p, &intervals, if r.flowing_days > 0.0 { pick(r) } else { f64::NAN })).collect()
+}
+
+/// The mean rate of a volume over the part of a period between the first and the last flow in it.
+fn flowing_mean(period: &Period, intervals: &[(f64, f64)], volume: f64) -> (f64, f64, f64) {
+    let run = period.run_days.min(period.end_days);
+    let inside = intervals.iter().filter(|(from, to)| *from < run && *to > period.start_days);
+    let hull = inside.fold(None, |hull: Option<(f64, f64)>, (from, to)| {
+        Some(hull.map_or((*from, *to), |(a, b)| (a.min(*from), b.max(*to))))
+    });
+    let (from, to) = hull.map_or((period.start_days, run), |(a, b)| (a.max(period.start_days), b.min(run)));
+    (from, to, if to > from { volume / (to - from) } else { f64::NAN })
 }
 
 /// The scale of a stream, the factor from oilfield units to it, and its unit in words.

@@ -4,7 +4,8 @@ use super::axes::{Panel, Span, dashed};
 use super::paint::text_width;
 use super::style::{Dash, GRID, Look, QUIET};
 use super::{Anchor, Drawing};
-use crate::report::human::{self, days_between};
+use crate::forecast::{date_at, days_between};
+use crate::report::human;
 use jiff::civil::{Date, date};
 
 /// A marked instant: the end of natural flow of a well.
@@ -32,7 +33,7 @@ fn date_ticks(timeline: Timeline) -> Vec<(f64, String)> {
         l if l > 240.0 => 3,
         _ => 1,
     };
-    let first = human::day_at(timeline.start, timeline.days.low);
+    let first = date_at(timeline.start, timeline.days.low);
     let mut month = i32::from(first.year()) * 12 + i32::from(first.month()) - 1;
     month -= month.rem_euclid(months);
     let mut out = Vec::new();
@@ -106,9 +107,10 @@ fn rows_of(moments: &[Moment], panel: &Panel) -> (usize, Vec<(usize, f64)>) {
     (ends.len(), placed)
 }
 
-/// Height of the strip of labels above the panels.
-pub(super) fn moments_height(moments: &[Moment], panel: &Panel) -> f64 {
-    rows_of(moments, panel).0 as f64 * 17.0
+/// Height of the strip of labels above the panels of a picture of this width.
+pub(super) fn moments_height(width: u32, right: f64, x: Span, moments: &[Moment]) -> f64 {
+    let panels = stack(&Drawing::new(width, 100), 0.0, 100.0, right, x, &[(Span::new(0.0, 1.0), 1.0)]);
+    panels.first().map_or(0.0, |panel| rows_of(moments, panel).0 as f64 * 17.0)
 }
 
 /// A thin line through all panels at each moment, and its label above the first.
