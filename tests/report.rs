@@ -6,7 +6,7 @@ mod report_support;
 use report_support as made;
 use serde_json::Value;
 use std::collections::HashMap;
-use wane::forecast::{Forecast, InjectorRow};
+use wane::forecast::{Forecast, InjectedFluid, InjectorRow};
 use wane::report::*;
 use wane::study::{CaseOutcome, Comparison, Shift};
 
@@ -161,6 +161,7 @@ fn cells_that_do_not_apply_are_empty() {
 #[test]
 fn a_gas_injector_has_gas_columns() {
     let mut forecast = made::forecast();
+    forecast.injectors[0].fluid = InjectedFluid::Gas;
     forecast.injectors[0].rows = (1..=84)
         .map(|i| InjectorRow {
             gas_scf: 1e6,
