@@ -12,6 +12,8 @@ use std::cell::{Cell, RefCell};
 const REGAIN_PSI: f64 = 0.01;
 /// Flow margin at which a dead well may flow again, psi.
 pub(super) const FLOW_AGAIN_PSI: f64 = 1.0;
+/// Depth from which a valley between the top of a hump and the operating point parts the hump in two, psi.
+const VALLEY_PSI: f64 = 0.1;
 /// Height that shows without further search that natural flow is not about to end, psi.
 const CLEAR_MARGIN_PSI: f64 = 25.0;
 /// Free-gas excess that counts as a change of side at the bubble point, scf/STB.
@@ -54,6 +56,8 @@ pub(super) enum Watch {
     TargetAbove(usize),
     FloorAbove(usize),
     MarginGone(usize),
+    /// A valley has opened between the top of the hump and the operating point: from now on they are two humps.
+    Valley(usize),
     RightHump(usize),
     MinimumRate(usize),
     WaterCut(usize),
@@ -155,7 +159,7 @@ impl<'a> Dynamics<'a> {
                     }
                 }
                 Mode::Target | Mode::Floor => watches.push(Watch::CapLost(w)),
-                Mode::Line { .. } => watches.extend([Watch::MarginGone(w), Watch::RightHump(w)]),
+                Mode::Line { .. } => watches.extend([Watch::MarginGone(w), Watch::RightHump(w), Watch::Valley(w)]),
             }
             if mode.flows() {
                 if spec.target_rate_stb_d.is_some() && *mode != Mode::Target {
@@ -406,6 +410,10 @@ impl<'a> Dynamics<'a> {
                 }
             }
             Watch::RightHump(w) => self.right_hump(w, tank),
+            Watch::Valley(w) => {
+                let now = self.well_now(w, tank);
+                VALLEY_PSI - self.valley(w, &now).1
+            }
             Watch::MinimumRate(w) => {
                 let now = self.well_now(w, tank);
                 self.rate(w, &now) - spec(w).minimum_rate_stb_d.unwrap_or(0.0)
@@ -417,6 +425,29 @@ impl<'a> Dynamics<'a> {
             }
             Watch::FlowAgain(w) => FLOW_AGAIN_PSI - self.well_now(w, tank).survey().margin_psi,
         }
+    }
+
+    /// The lowest place between the top of the hump and the operating point that has higher ground on its right: rate, and how much
+    /// higher that ground is, psi.
+    pub fn valley(&self, w: usize, now: &WellNow) -> (f64, f64) {
+        const LOOKS: usize = 6;
+        let rate = self.rate(w, now);
+        let top = self.memory.spots.borrow()[w].top_rate_stb_d;
+        let mut lowest = (top, f64::INFINITY);
+        let mut found = (top, 0.0);
+        if top <= 0.0 {
+            return found;
+        }
+        for k in 1..=LOOKS {
+            let q = top + (rate - top) * k as f64 / (LOOKS + 1) as f64;
+            let height = now.height_psi(q);
+            if height < lowest.1 {
+                lowest = (q, height);
+            } else if height - lowest.1 > found.1 {
+                found = (lowest.0, height - lowest.1);
+            }
+        }
+        found
     }
 
     /// Positive while no other hump reaches above zero to the right of the one on which the well flows.

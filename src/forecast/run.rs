@@ -6,7 +6,7 @@ use super::field::{Field, RunError, Setup, injection_limit};
 use super::integrate::{Effort, End, Settings, State, Stretch, integrate};
 use super::{Change, EventKind, EventRecord, FieldSpec, FlowEnd, Forecast, StopReason, Tolerance, Work};
 use crate::tank::{ClosureError, TankState};
-use crate::well::{Crossing, crossings};
+use crate::well::{Crossing, crossings, top_near};
 use jiff::civil::Date;
 use std::sync::Arc;
 
@@ -459,6 +459,7 @@ impl<'a> Run<'a> {
                 self.event(&name, EventKind::FloorReached, String::new());
             }
             Watch::CapLost(w) => self.cap_lost(w, &tank)?,
+            Watch::Valley(w) => self.part_hump(w, &tank),
             Watch::MarginGone(w) | Watch::RightHump(w) => {
                 let name = name(w);
                 let before = self.modes.wells[w];
@@ -490,6 +491,21 @@ impl<'a> Run<'a> {
             }
         }
         Ok(())
+    }
+
+    /// The hump on which a well flows has become two: from now on the right-hand one counts, so that its end is seen coming.
+    fn part_hump(&mut self, w: usize, tank: &TankState) {
+        let Mode::Line { high, .. } = self.modes.wells[w] else { return };
+        let (low, top) = {
+            let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
+            let now = dynamics.well_now(w, tank);
+            let (valley, _) = dynamics.valley(w, &now);
+            let rate = dynamics.rate(w, &now);
+            let (top, _) = top_near(|q| now.height_psi(q), 0.5 * (valley + rate), valley, rate);
+            (valley / now.curve.open_flow_stb_d(), top)
+        };
+        self.trace.memory.spots.borrow_mut()[w].top_rate_stb_d = top;
+        self.modes.wells[w] = Mode::Line { low, high };
     }
 
     /// The target, or the floor's rate, can no longer be held: `h` has come down to zero there.
