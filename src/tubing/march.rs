@@ -350,24 +350,27 @@ impl<'a, M: Hydraulics> March<'a, M> {
             self.slope(stretch, md + x * h, pressure, branch).margin
         };
         let (mut inside, mut inside_margin) = (0.0, start.margin);
-        let mut beyond = None;
-        for x in [1.0 / 64.0, 0.25, 0.4, 0.5, 0.6, 0.75, 1.0] {
-            // A branch begins on its own border, where rounding decides the sign: the first look is a little inside.
-            if x < 0.1 && inside_margin > 0.0 {
-                continue;
+        if inside_margin <= 0.0 {
+            // A branch begins on its own border, where rounding decides the sign: look a little inside.
+            (inside, inside_margin) = (1.0 / 64.0, margin(1.0 / 64.0));
+            if inside_margin <= 0.0 {
+                return Some(0.0);
             }
-            let at = if x == 1.0 { step.end.margin } else { margin(x) };
-            if at < 0.0 {
-                beyond = Some((x, at));
-                break;
+        }
+        let mut beyond = (step.end.margin < 0.0).then_some((1.0, step.end.margin));
+        if beyond.is_none() {
+            // A stage was beyond, or may have missed an excursion.
+            for x in [0.25, 0.4, 0.5, 0.6, 0.75] {
+                let at = margin(x);
+                if at < 0.0 {
+                    beyond = Some((x, at));
+                    break;
+                }
+                (inside, inside_margin) = (x, at);
             }
-            (inside, inside_margin) = (x, at);
         }
         let (mut beyond, mut beyond_margin) = beyond?;
-        if inside_margin <= 0.0 {
-            return Some(inside);
-        }
-        // False position with the correction of Illinois.
+        // False position with the correction of Illinois, as far as the step's own correction can take it from there.
         let mut last_side = 0;
         for _ in 0..40 {
             if (beyond - inside) * h.abs() < 1e-7 {
@@ -375,7 +378,7 @@ impl<'a, M: Hydraulics> March<'a, M> {
             }
             let x = inside + (beyond - inside) * inside_margin / (inside_margin - beyond_margin);
             let at = margin(x);
-            if at.abs() < 1e-10 {
+            if at.abs() < 1e-8 {
                 return Some(x);
             }
             if at > 0.0 {
