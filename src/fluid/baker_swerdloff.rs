@@ -13,7 +13,7 @@
 //! Optimization" (1991).
 //!
 //! # Range
-//! The pressure factor of oil is zero at 3,977 psia; the floor of 1 dyn/cm rules from about 3,600 psia on.
+//! The pressure factor of oil is zero at 3,977 psia; the floor of 1 dyn/cm rules from about 3,650 psia on.
 //!
 //! # Departures
 //! Some printings divide the temperature difference of water by 280; the interpolation is over the 206 degF between its ends.

@@ -3,9 +3,12 @@
 use super::beggs_robinson::BeggsRobinson;
 use super::dranchuk_abou_kassem::{Isotherm, MAXIMUM_PPR};
 use super::gas::Gas;
+use super::lee_gonzalez_eakin::LB_FT3_PER_G_CM3;
 use super::mccain::McCainWater;
 use super::standing::Standing;
-use super::{FluidSpec, ReservoirFluid, baker_swerdloff, checks, oil_specific_gravity, vasquez_beggs};
+use super::{
+    FluidRow, FluidSpec, InSitu, ReservoirFluid, baker_swerdloff, checks, oil_specific_gravity, osif, vasquez_beggs,
+};
 use crate::fault::Fault;
 use crate::units::constants::{DEGF_TO_DEGR, FRESH_WATER_LB_FT3, FT3_PER_BBL};
 
@@ -37,7 +40,7 @@ pub struct BlackOil {
     beggs_robinson: BeggsRobinson,
     gas: Gas,
     water: McCainWater,
-    /// Mass of a barrel of stock-tank oil without gas, lb/5.614583 ft3, as lb/ft3.
+    /// Density of stock-tank oil, lb/ft3.
     oil_standard_density_lb_ft3: f64,
     /// Mass that a scf adds to a stock-tank barrel, lb/ft3 per scf/STB.
     gas_mass_lb_ft3: f64,
@@ -51,60 +54,6 @@ struct AtTank {
     isotherm: Isotherm,
     ln_dead_cp: f64,
     ln_temperature: f64,
-}
-
-/// Properties at one pressure and temperature in the tubing.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub struct InSitu {
-    /// Gas dissolved in the oil, scf/STB.
-    pub rs_scf_stb: f64,
-    /// Oil volume factor, rb/STB.
-    pub bo_rb_stb: f64,
-    /// Oil density, lb/ft3.
-    pub oil_density_lb_ft3: f64,
-    /// Oil viscosity, cp.
-    pub mu_o_cp: f64,
-    /// Gas volume factor, ft3/scf.
-    pub bg_ft3_scf: f64,
-    /// Gas density, lb/ft3.
-    pub gas_density_lb_ft3: f64,
-    /// Gas viscosity, cp.
-    pub mu_g_cp: f64,
-    /// Water volume factor, rb/STB.
-    pub bw_rb_stb: f64,
-    /// Water density, lb/ft3.
-    pub water_density_lb_ft3: f64,
-    /// Water viscosity, cp.
-    pub mu_w_cp: f64,
-    /// Tension between oil and gas, dyn/cm.
-    pub sigma_oil_gas_dyn_cm: f64,
-    /// Tension between water and gas, dyn/cm.
-    pub sigma_water_gas_dyn_cm: f64,
-    /// Compressibility factor of the gas.
-    pub z: f64,
-}
-
-/// One row of the fluid's property table at tank temperature.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub struct FluidRow {
-    /// Pressure, psia.
-    pub pressure_psia: f64,
-    /// Gas dissolved in the oil, scf/STB.
-    pub rs_scf_stb: f64,
-    /// Oil volume factor, rb/STB.
-    pub bo_rb_stb: f64,
-    /// Oil viscosity, cp.
-    pub mu_o_cp: f64,
-    /// Compressibility factor of the gas.
-    pub z: f64,
-    /// Gas volume factor, rb/scf.
-    pub bg_rb_scf: f64,
-    /// Gas viscosity, cp.
-    pub mu_g_cp: f64,
-    /// Water volume factor, rb/STB.
-    pub bw_rb_stb: f64,
-    /// Water viscosity, cp.
-    pub mu_w_cp: f64,
 }
 
 impl BlackOil {
@@ -205,6 +154,13 @@ impl BlackOil {
         self.gas.standard_density_lb_scf
     }
 
+    /// Compressibility of the water by Osif at tank temperature, 1/psi: reported only, the volume factor is McCain's.
+    pub fn water_compressibility_1_psi(&self, pressure_psia: f64) -> f64 {
+        let density_g_l = 1e3 * self.water.standard_density_lb_ft3() / LB_FT3_PER_G_CM3;
+        let salt_g_l = 1e-6 * self.spec.salinity_ppm * density_g_l;
+        osif::compressibility_1_psi(self.held_pressure(pressure_psia), self.temperature_degf, salt_g_l)
+    }
+
     pub(super) fn gas(&self) -> &Gas {
         &self.gas
     }
@@ -240,12 +196,25 @@ impl BlackOil {
         let mut safe_psia = 0.0;
         while pressure_psia < self.maximum_pressure_psia {
             if !self.closure_falls_at(pressure_psia) {
-                return safe_psia;
+                return self.closure_limit_between(safe_psia, pressure_psia);
             }
             safe_psia = pressure_psia;
             pressure_psia += STEP_PSIA;
         }
         self.maximum_pressure_psia
+    }
+
+    /// Bisects the pressure at which Bg meets dBo/dRs.
+    fn closure_limit_between(&self, mut safe_psia: f64, mut unsafe_psia: f64) -> f64 {
+        for _ in 0..40 {
+            let middle_psia = 0.5 * (safe_psia + unsafe_psia);
+            if self.closure_falls_at(middle_psia) {
+                safe_psia = middle_psia;
+            } else {
+                unsafe_psia = middle_psia;
+            }
+        }
+        safe_psia
     }
 
     fn closure_falls_at(&self, pressure_psia: f64) -> bool {

@@ -8,7 +8,8 @@
 //!
 //! # Method
 //! Solved for the reduced density r, of which r z(r) = 0.27 ppr/Tpr is a rising function for Tpr >= 1.03: one root, found by
-//! Newton's method inside a bracket.
+//! Halley's method inside a bracket, from a coarse table of roots that is filled once per run. Two steps reach rounding, so that the
+//! table leaves no trace in the result.
 //!
 //! # Source
 //! P. M. Dranchuk and J. H. Abou-Kassem, "Calculation of Z Factors for Natural Gases Using Equations of State", Journal of
@@ -20,6 +21,8 @@
 //! # Departures
 //! Tpr is held to at least 1.05, the last isotherm of the chart, and at most 3. Below about 1.02 the equation has up to three roots and z would
 //! jump with pressure; a gas that heavy or cool would partly condense, which no black-oil model describes.
+
+use std::sync::LazyLock;
 
 const A1: f64 = 0.3265;
 const A2: f64 = -1.0700;
@@ -70,25 +73,24 @@ impl Isotherm {
 
     /// r z(r) and its first two derivatives.
     #[inline]
-    fn pressure_function(&self, r: f64) -> (f64, f64) {
+    fn pressure_function(&self, r: f64) -> (f64, f64, f64) {
         let r2 = r * r;
         let r5 = r2 * r2 * r;
         let s = A11 * r2;
-        let bump = self.c4 * r2 * (-s).exp();
-        let z = 1.0 + self.c1 * r + self.c2 * r2 - self.c3 * r5 + bump * (1.0 + s);
-        // d(r z)/dr = z + r dz/dr, with d[(1+s) r2 e^-s]/dr = 2 r e^-s (1 + s - s^2).
-        let r_dz = self.c1 * r + 2.0 * self.c2 * r2 - 5.0 * self.c3 * r5 + 2.0 * bump * (1.0 + s - s * s);
-        (r * z, z + r_dz)
+        let bump = self.c4 * (-s).exp();
+        let value = r + self.c1 * r2 + self.c2 * r2 * r - self.c3 * r5 * r + bump * (1.0 + s) * r2 * r;
+        let slope =
+            1.0 + 2.0 * self.c1 * r + 3.0 * self.c2 * r2 - 6.0 * self.c3 * r5 + bump * (3.0 + (3.0 - 2.0 * s) * s) * r2;
+        let curvature = 2.0 * self.c1 + 6.0 * self.c2 * r - 30.0 * self.c3 * r2 * r2
+            + bump * (6.0 + (6.0 + (-18.0 + 4.0 * s) * s) * s) * r;
+        (value, slope, curvature)
     }
 
     /// The compressibility factor at a pseudo-reduced pressure, held to 0..30.
     #[inline]
     pub fn z(&self, ppr: f64) -> f64 {
         let target = 0.27 * ppr.clamp(0.0, MAXIMUM_PPR) * self.inverse_tpr;
-        if target <= 0.0 {
-            return 1.0;
-        }
-        target / self.density(target, (target / (1.0 + 0.35 * target)).min(DENSITY_BOUND))
+        if target > 0.0 { target / self.density(target, STARTS.at(target, self.inverse_tpr)) } else { 1.0 }
     }
 
     /// The root of r z(r) = `target` from a first guess.
@@ -97,22 +99,62 @@ impl Isotherm {
         let (mut low, mut high) = (0.0, DENSITY_BOUND);
         let mut r = guess;
         for _ in 0..60 {
-            let (value, slope) = self.pressure_function(r);
+            let (value, slope, curvature) = self.pressure_function(r);
             let miss = value - target;
             if miss > 0.0 {
                 high = r;
             } else {
                 low = r;
             }
-            let step = miss / slope;
+            let step = miss * slope / (slope * slope - 0.5 * miss * curvature);
             let next = r - step;
-            // Newton converges quadratically: after a step this small the error is below rounding.
-            if step.abs() <= 1e-8 * r {
+            // Halley converges cubically: after a step this small the error is below rounding.
+            if step.abs() <= 1e-6 * r {
                 return next;
             }
             r = if next > low && next < high { next } else { 0.5 * (low + high) };
         }
         r
+    }
+}
+
+/// Roots over a grid, from which the solver starts: r/target against target/(target + 1) and 1/Tpr.
+struct Starts([[f64; Starts::COLUMNS]; Starts::ROWS]);
+
+static STARTS: LazyLock<Starts> = LazyLock::new(Starts::new);
+
+impl Starts {
+    const ROWS: usize = 33;
+    const COLUMNS: usize = 65;
+    const LOWEST: f64 = 1.0 / MAXIMUM_TPR;
+    const ROWS_PER_UNIT: f64 = (Self::ROWS - 1) as f64 / (1.0 / MINIMUM_TPR - Self::LOWEST);
+    /// The highest target is 0.27 * 30/1.05 = 7.7; the last column lies above it.
+    const COLUMNS_PER_UNIT: f64 = (Self::COLUMNS - 1) as f64 / 0.9;
+
+    fn new() -> Self {
+        let mut grid = [[1.0; Self::COLUMNS]; Self::ROWS];
+        for (i, row) in grid.iter_mut().enumerate() {
+            let isotherm = Isotherm::new(1.0 / (Self::LOWEST + i as f64 / Self::ROWS_PER_UNIT));
+            for (j, cell) in row.iter_mut().enumerate().skip(1) {
+                let x = j as f64 / Self::COLUMNS_PER_UNIT;
+                let target = x / (1.0 - x);
+                *cell = isotherm.density(target, (target / (1.0 + 0.35 * target)).min(DENSITY_BOUND)) / target;
+            }
+        }
+        Self(grid)
+    }
+
+    #[inline]
+    fn at(&self, target: f64, inverse_tpr: f64) -> f64 {
+        let row = (inverse_tpr - Self::LOWEST) * Self::ROWS_PER_UNIT;
+        let column = target / (target + 1.0) * Self::COLUMNS_PER_UNIT;
+        let i = (row as usize).min(Self::ROWS - 2);
+        let j = (column as usize).min(Self::COLUMNS - 2);
+        let (y, x) = (row - i as f64, column - j as f64);
+        let (low, high) = (&self.0[i], &self.0[i + 1]);
+        let below = low[j] + (low[j + 1] - low[j]) * x;
+        let above = high[j] + (high[j + 1] - high[j]) * x;
+        (below + (above - below) * y) * target
     }
 }
 

@@ -21,7 +21,8 @@
 //! Bw is for gas-saturated water, up to 1 % above degassed pure water; salinity has little effect on it. Viscosity of salt-free water comes out 4 to 9 % low.
 //!
 //! # Departures
-//! The same Bw serves at every pressure: no gas comes out of the water.
+//! The same Bw serves at every pressure: no gas comes out of the water. Because gas that dissolves under pressure swells the water,
+//! the slope of Bw is smaller than the compressibility of water by itself: 0.4 of Osif's at 1,000 psia, 1.1 at 5,000 psia.
 
 /// The correlation for one brine.
 #[derive(Debug, Clone, Copy, PartialEq)]

@@ -2,13 +2,20 @@
 //!
 //! One file per published method. [`BlackOil`] joins the defaults; [`FluidTable`] takes a laboratory's rows.
 
+pub mod abdul_majeed;
+pub mod al_marhoun;
 pub mod baker_swerdloff;
+pub mod beal_standing;
 pub mod beggs_robinson;
 pub mod dranchuk_abou_kassem;
+pub mod glaso;
+pub mod hall_yarborough;
 pub mod lee_gonzalez_eakin;
 pub mod mccain;
 pub mod osif;
+pub mod petrosky_farshad;
 pub mod standing;
+pub mod standing_gas;
 pub mod sutton;
 pub mod vasquez_beggs;
 pub mod wichert_aziz;
@@ -18,11 +25,13 @@ mod checks;
 mod gas;
 mod range_notes;
 mod spec;
+mod state;
 mod table;
 
-pub use black_oil::{BlackOil, FluidRow, InSitu};
+pub use black_oil::BlackOil;
 pub use range_notes::RangeNote;
 pub use spec::FluidSpec;
+pub use state::{FluidRow, InSitu};
 pub use table::{FluidTable, FluidTableRow, TableWater};
 
 /// What the tank needs to know of the fluid, at the tank's temperature.

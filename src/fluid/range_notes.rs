@@ -1,7 +1,7 @@
 //! Which correlation is used outside the range that its authors published.
 
 use super::dranchuk_abou_kassem::{MAXIMUM_TPR, MINIMUM_TPR};
-use super::{BlackOil, ReservoirFluid};
+use super::{BlackOil, sutton};
 use crate::units::constants::DEGF_TO_DEGR;
 
 /// One correlation outside its published range.
@@ -71,7 +71,8 @@ impl BlackOil {
         notes.check(above, "temperature", t, (75.0, 294.0), " degF");
 
         let critical = self.gas().pseudo_critical;
-        notes.check(("gas pseudo-criticals", "Sutton"), "gas gravity", gravity, (0.57, 1.68), "");
+        let hydrocarbons = sutton::hydrocarbon_gravity(gravity, spec.h2s_fraction, spec.co2_fraction);
+        notes.check(("gas pseudo-criticals", "Sutton"), "hydrocarbon gas gravity", hydrocarbons, (0.57, 1.68), "");
         if spec.h2s_fraction + spec.co2_fraction > 0.0 {
             let sour = ("gas pseudo-criticals", "Wichert-Aziz");
             notes.check(sour, "hydrogen sulphide", spec.h2s_fraction, (0.0, 0.738), "");
@@ -98,7 +99,7 @@ impl BlackOil {
         notes.check(brine, "salinity", spec.salinity_ppm, (0.0, 260_000.0), " ppm");
 
         let tension = ("surface tension", "Baker-Swerdloff");
-        notes.check(tension, "bubble point", pb.min(self.pressure_range_psia().1), (0.0, 3_600.0), " psia");
+        notes.check(tension, "bubble point", pb, (0.0, 3_600.0), " psia");
         notes.0
     }
 }

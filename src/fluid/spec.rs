@@ -16,7 +16,7 @@ pub struct FluidSpec {
     pub bubble_point_psia: Option<f64>,
     /// Salinity of the water, weight fraction of total dissolved solids in parts per million.
     pub salinity_ppm: f64,
-    /// Mole fractions of hydrogen sulphide and carbon dioxide in the gas.
+    /// Mole fraction of hydrogen sulphide in the gas.
     pub h2s_fraction: f64,
     /// Mole fraction of carbon dioxide in the gas.
     pub co2_fraction: f64,
