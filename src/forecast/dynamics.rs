@@ -86,9 +86,24 @@ pub(super) struct Spot {
     pub rate_stb_d: f64,
     pub slope: f64,
     pub top_rate_stb_d: f64,
+    /// The valley on the left of a hump that is not the left-most; 0: not known yet.
+    pub low_rate_stb_d: f64,
     /// Tank pressure at which the rate was found, psia, and the change of rate with it, STB/d/psi.
     pub pressure_psia: f64,
     pub per_pressure: f64,
+}
+
+impl Spot {
+    /// Where the hump on which the well flows begins, STB/d; `low` is the part of open flow at which it was seen first.
+    fn left_end(&self, low: f64, open_flow_stb_d: f64) -> f64 {
+        if low <= 0.0 {
+            0.0
+        } else if self.low_rate_stb_d > 0.0 {
+            self.low_rate_stb_d
+        } else {
+            low * open_flow_stb_d
+        }
+    }
 }
 
 /// Offsets into the scaled state vector.
@@ -250,14 +265,14 @@ impl<'a> Dynamics<'a> {
     /// step over the end of natural flow and find it between two valid states.
     fn line_rate(&self, w: usize, now: &WellNow, low: f64, high: f64) -> f64 {
         let open = now.curve.open_flow_stb_d();
-        let bounds = (low * open, high * open);
         let spot = self.memory.spots.borrow()[w];
+        let bounds = (spot.left_end(low, open), high * open);
         let height = |q: f64| now.height_psi(q);
         let reservoir = now.curve.reservoir_psia();
         // The rate moves with the pressure much as it did last time.
         let moved = reservoir - spot.pressure_psia;
         let start =
-            spot.rate_stb_d + (spot.per_pressure * moved).clamp(-0.05 * spot.rate_stb_d, 0.05 * spot.rate_stb_d);
+            spot.rate_stb_d + (spot.per_pressure * moved).max(-0.05 * spot.rate_stb_d).min(0.05 * spot.rate_stb_d);
         if let Some((rate, slope)) = right_crossing(height, start, spot.slope, self.crossing_psi(), bounds) {
             self.remember(w, |s| {
                 if moved.abs() > 1e-3 {
@@ -278,13 +293,8 @@ impl<'a> Dynamics<'a> {
         let nudge = 1e-4 * rate;
         let slope = (height(rate + nudge) - height(rate - nudge)) / (2.0 * nudge);
         self.remember(w, |s| {
-            *s = Spot {
-                rate_stb_d: rate,
-                slope,
-                top_rate_stb_d: top_rate,
-                pressure_psia: now.curve.reservoir_psia(),
-                per_pressure: 0.0,
-            };
+            let pressure_psia = now.curve.reservoir_psia();
+            *s = Spot { rate_stb_d: rate, slope, top_rate_stb_d: top_rate, pressure_psia, per_pressure: 0.0, ..*s };
         });
         rate
     }
@@ -306,8 +316,14 @@ impl<'a> Dynamics<'a> {
         let open = now.curve.open_flow_stb_d();
         let spot = self.memory.spots.borrow()[w];
         let guess = if spot.top_rate_stb_d > 0.0 { spot.top_rate_stb_d } else { 0.3 * open };
-        let top = top_near(|q| now.height_psi(q), guess, low * open, (high * open).min(0.9999 * open));
+        let left = spot.left_end(low, open);
+        let top = top_near(|q| now.height_psi(q), guess, left, (high * open).min(0.9999 * open).max(left));
         self.remember(w, |s| s.top_rate_stb_d = top.0);
+        if low > 0.0 {
+            // The valley on the left moves too.
+            let valley = top_near(|q| -now.height_psi(q), left, 0.5 * left, top.0.max(0.6 * left));
+            self.remember(w, |s| s.low_rate_stb_d = valley.0);
+        }
         top
     }
 
@@ -403,7 +419,7 @@ impl<'a> Dynamics<'a> {
                     Mode::Line { low, high } => {
                         // A rate at which the curves stand well apart answers the question without looking for the best one.
                         let known = self.memory.spots.borrow()[w].top_rate_stb_d;
-                        let there = if known > 0.0 { now.height_psi(known) } else { 0.0 };
+                        let there = if known > 0.0 && low <= 0.0 { now.height_psi(known) } else { 0.0 };
                         if there > CLEAR_MARGIN_PSI { there } else { self.top(w, &now, low, high).1 }
                     }
                     _ => 1.0,
@@ -435,7 +451,7 @@ impl<'a> Dynamics<'a> {
         let top = self.memory.spots.borrow()[w].top_rate_stb_d;
         let mut lowest = (top, f64::INFINITY);
         let mut found = (top, 0.0);
-        if top <= 0.0 {
+        if top <= 0.0 || top >= rate {
             return found;
         }
         for k in 1..=LOOKS {

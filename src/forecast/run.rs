@@ -496,15 +496,16 @@ impl<'a> Run<'a> {
     /// The hump on which a well flows has become two: from now on the right-hand one counts, so that its end is seen coming.
     fn part_hump(&mut self, w: usize, tank: &TankState) {
         let Mode::Line { high, .. } = self.modes.wells[w] else { return };
-        let (low, top) = {
+        let low = {
             let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
             let now = dynamics.well_now(w, tank);
             let (valley, _) = dynamics.valley(w, &now);
-            let rate = dynamics.rate(w, &now);
+            let rate = dynamics.rate(w, &now).max(valley);
             let (top, _) = top_near(|q| now.height_psi(q), 0.5 * (valley + rate), valley, rate);
-            (valley / now.curve.open_flow_stb_d(), top)
+            let spot = &mut self.trace.memory.spots.borrow_mut()[w];
+            (spot.top_rate_stb_d, spot.low_rate_stb_d) = (top, valley);
+            valley / now.curve.open_flow_stb_d()
         };
-        self.trace.memory.spots.borrow_mut()[w].top_rate_stb_d = top;
         self.modes.wells[w] = Mode::Line { low, high };
     }
 

@@ -147,7 +147,9 @@ pub fn crossings(mut h: impl FnMut(f64) -> f64, open_flow_stb_d: f64) -> Vec<Cro
 ///
 /// Local: it stays between `low` and `high`, and widens its bracket until the top is inside.
 pub fn top_near(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: f64) -> (f64, f64) {
-    let mut middle = rate_stb_d.clamp(low, high);
+    // Bounds that have closed leave one rate.
+    let high = high.max(low);
+    let mut middle = rate_stb_d.max(low).min(high);
     let mut width = 0.02 * middle.max(1e-6 * high);
     let mut hm = h(middle);
     for _ in 0..60 {
