@@ -2,10 +2,10 @@
 
 use super::field::{Field, Setup, injected_fvf, injection_limit};
 use super::integrate::Problem;
-use super::{InjectedFluid, InjectionControl, StopReason, Tolerance};
+use super::{InjectedFluid, InjectionControl, StopReason};
 use crate::roots::brent;
 use crate::tank::{ClosureError, Cumulatives, TankState};
-use crate::well::{Gauge, WellNow, oil_gradient_psi_ft, right_crossing, top_near};
+use crate::well::{Gauge, WellNow, follow_top, oil_gradient_psi_ft, right_crossing, top_near};
 use std::cell::{Cell, RefCell};
 
 /// Height in psi by which the target (or floor) must be out of reach before it is taken up again, so that modes never flicker.
@@ -91,6 +91,8 @@ pub(super) struct Spot {
     /// Tank pressure at which the rate was found, psia, and the change of rate with it, STB/d/psi.
     pub pressure_psia: f64,
     pub per_pressure: f64,
+    /// The conditions under which the rate was found: the same ones need no search.
+    pub found_under: Option<[f64; 4]>,
 }
 
 impl Spot {
@@ -146,6 +148,8 @@ pub(super) struct Memory {
     pub pressure_psia: Cell<f64>,
     pub spots: RefCell<Vec<Spot>>,
     pub gauge: Gauge,
+    /// Height to which crossings are resolved, psi.
+    pub crossing_psi: Cell<f64>,
     pub closures: Cell<u64>,
 }
 
@@ -269,42 +273,60 @@ impl<'a> Dynamics<'a> {
         let bounds = (spot.left_end(low, open), high * open);
         let height = |q: f64| now.height_psi(q);
         let reservoir = now.curve.reservoir_psia();
+        let conditions = Some([reservoir, open, now.gor_scf_stb, now.water_cut]);
+        if spot.found_under == conditions {
+            return spot.rate_stb_d;
+        }
         // The rate moves with the pressure much as it did last time.
         let moved = reservoir - spot.pressure_psia;
         let start =
             spot.rate_stb_d + (spot.per_pressure * moved).max(-0.05 * spot.rate_stb_d).min(0.05 * spot.rate_stb_d);
-        if let Some((rate, slope)) = right_crossing(height, start, spot.slope, self.crossing_psi(), bounds) {
+        if let Some((rate, slope)) = right_crossing(height, start, spot.slope, self.memory.crossing_psi.get(), bounds) {
             self.remember(w, |s| {
                 if moved.abs() > 1e-3 {
                     s.per_pressure = (rate - s.rate_stb_d) / moved;
                 }
                 (s.rate_stb_d, s.slope, s.pressure_psia) = (rate, slope, reservoir);
+                s.found_under = conditions;
             });
             return rate;
         }
         let guess = if spot.top_rate_stb_d > 0.0 { spot.top_rate_stb_d } else { 0.3 * open };
-        let (top_rate, top) = top_near(height, guess, bounds.0, bounds.1.min(0.9999 * open));
+        let (top_rate, top, _) = follow_top(height, guess, bounds.0, bounds.1.min(0.9999 * open));
         if top <= 0.0 {
             self.remember(w, |s| s.top_rate_stb_d = top_rate);
             return top_rate;
+        }
+        // Near its end a hump is a parabola: through its top and one point beyond it.
+        let beyond = spot.rate_stb_d;
+        if beyond > 1.001 * top_rate && beyond < bounds.1 {
+            let bend = (top - height(beyond)) / (beyond - top_rate).powi(2);
+            let reach = (top / bend).sqrt();
+            if bend > 0.0
+                && let Some((rate, slope)) = right_crossing(
+                    height,
+                    top_rate + reach,
+                    -2.0 * bend * reach,
+                    self.memory.crossing_psi.get(),
+                    bounds,
+                )
+            {
+                self.remember(w, |s| {
+                    (s.rate_stb_d, s.slope, s.top_rate_stb_d) = (rate, slope, top_rate);
+                    (s.pressure_psia, s.per_pressure, s.found_under) = (reservoir, 0.0, conditions);
+                });
+                return rate;
+            }
         }
         let right = (bounds.1, height(bounds.1));
         let rate = if right.1 >= 0.0 { right.0 } else { brent(height, (top_rate, top), right, 1e-11 * open) };
         let nudge = 1e-4 * rate;
         let slope = (height(rate + nudge) - height(rate - nudge)) / (2.0 * nudge);
         self.remember(w, |s| {
-            let pressure_psia = now.curve.reservoir_psia();
-            *s = Spot { rate_stb_d: rate, slope, top_rate_stb_d: top_rate, pressure_psia, per_pressure: 0.0, ..*s };
+            (s.rate_stb_d, s.slope, s.top_rate_stb_d) = (rate, slope, top_rate);
+            (s.pressure_psia, s.per_pressure, s.found_under) = (reservoir, 0.0, conditions);
         });
         rate
-    }
-
-    /// Height to which crossings are resolved, psi: some hundred times finer than the integrator's tolerance needs.
-    fn crossing_psi(&self) -> f64 {
-        match self.field.spec.tolerance {
-            Tolerance::Normal => 2e-6,
-            Tolerance::Tight | Tolerance::Reference => 1e-7,
-        }
     }
 
     pub fn remember(&self, w: usize, change: impl FnOnce(&mut Spot)) {
@@ -446,7 +468,7 @@ impl<'a> Dynamics<'a> {
     /// The lowest place between the top of the hump and the operating point that has higher ground on its right: rate, and how much
     /// higher that ground is, psi.
     pub fn valley(&self, w: usize, now: &WellNow) -> (f64, f64) {
-        const LOOKS: usize = 6;
+        const LOOKS: usize = 4;
         let rate = self.rate(w, now);
         let top = self.memory.spots.borrow()[w].top_rate_stb_d;
         let mut lowest = (top, f64::INFINITY);

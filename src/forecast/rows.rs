@@ -5,10 +5,14 @@ use super::doubts::{Seen, about_result};
 use super::dynamics::{Dynamics, Mode};
 use super::field::{Field, RunError};
 use super::run::{Piece, Trace, work};
-use super::{DriveIndices, Forecast, InjectedFluid, InjectorResult, InjectorRow, Period, TankRow, WellResult, WellRow};
+use super::{DriveIndices, Forecast, InjectedFluid, InjectorResult, InjectorRow, Period, TankRow, Tolerance, WellResult, WellRow};
 use crate::tank::{Cumulatives, TankState};
 use crate::well::{Landscape, follow_top};
 
+/// Height to which the crossings of rows are resolved, psi: far below what a row shows.
+const ROW_CROSSING_PSI: f64 = 1e-3;
+/// Rows between two searches for the top of the margin; in between it is taken to move on as it did.
+const ROWS_PER_SEARCH: usize = 6;
 /// Rows between two looks at other rates; in between the top of the margin is followed.
 const ROWS_PER_LOOK: usize = 12;
 /// Those other rates, as parts of open flow.
@@ -18,6 +22,8 @@ const LOOKS: [f64; 7] = [0.02, 0.05, 0.1, 0.2, 0.35, 0.55, 0.8];
 #[derive(Clone, Copy, Default)]
 struct Margin {
     rate_stb_d: f64,
+    /// Change of that rate from row to row; `None` where the top is a corner, which has to be searched for.
+    drift_stb_d: Option<f64>,
     age: usize,
 }
 
@@ -103,6 +109,9 @@ impl<'a> Rows<'a> {
     fn new(field: &'a Field, trace: &'a Trace) -> Self {
         let (wells, injectors) = (field.spec.wells.len(), field.spec.injectors.len());
         trace.memory.pressure_psia.set(field.start.pressure_psia);
+        if field.spec.tolerance == Tolerance::Normal {
+            trace.memory.crossing_psi.set(ROW_CROSSING_PSI);
+        }
         // Start from the same warm starts whatever the run did last.
         for spot in trace.memory.spots.borrow_mut().iter_mut() {
             *spot = super::dynamics::Spot::default();
@@ -205,18 +214,26 @@ impl<'a> Rows<'a> {
             return -now.tubing_psia(0.0);
         }
         let known = &mut self.margins[w];
-        let lost = known.rate_stb_d <= 0.0 || known.rate_stb_d >= open;
-        if !lost {
-            let (rate, margin) = follow_top(|q| now.height_psi(q), known.rate_stb_d, 0.005 * open, 0.999 * open);
-            *known = Margin { rate_stb_d: rate, age: known.age + 1 };
+        if known.rate_stb_d > 0.0 && known.rate_stb_d < 0.99 * open {
+            let age = known.age + 1;
+            // At a smooth top the height is flat: a rate foretold from the last rows shows it to some 1e-4 psi.
+            if let (Some(drift), false) = (known.drift_stb_d, age.is_multiple_of(ROWS_PER_SEARCH)) {
+                *known = Margin { rate_stb_d: known.rate_stb_d + drift, age, ..*known };
+                return now.height_psi(known.rate_stb_d);
+            }
+            let (rate, margin, smooth) =
+                follow_top(|q| now.height_psi(q), known.rate_stb_d, 0.005 * open, 0.999 * open);
+            let rows = if known.drift_stb_d.is_some() { ROWS_PER_SEARCH as f64 } else { 1.0 };
+            let moved = (rate - known.rate_stb_d) / rows + known.drift_stb_d.unwrap_or(0.0);
+            *known = Margin { rate_stb_d: rate, drift_stb_d: smooth.then_some(moved), age };
             let elsewhere = |part: f64| now.height_psi(part * open);
-            if known.age < ROWS_PER_LOOK || !LOOKS.into_iter().any(|part| elsewhere(part) > margin) {
+            if age < ROWS_PER_LOOK || !LOOKS.into_iter().any(|part| elsewhere(part) > margin) {
                 known.age %= ROWS_PER_LOOK;
                 return margin;
             }
         }
         let Landscape { margin_psi, margin_rate_stb_d, .. } = now.survey();
-        *known = Margin { rate_stb_d: margin_rate_stb_d, age: 1 };
+        *known = Margin { rate_stb_d: margin_rate_stb_d, drift_stb_d: None, age: 1 };
         margin_psi
     }
 

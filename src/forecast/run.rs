@@ -80,6 +80,11 @@ impl<'a> Run<'a> {
         let memory = Memory::default();
         memory.pressure_psia.set(field.start.pressure_psia);
         *memory.spots.borrow_mut() = vec![Spot::default(); wells];
+        // Some hundred times finer than the integrator's tolerance needs.
+        memory.crossing_psi.set(match field.spec.tolerance {
+            Tolerance::Normal => 1e-5,
+            Tolerance::Tight | Tolerance::Reference => 1e-7,
+        });
         let layout = Layout { wells, injectors };
         let (rtol, atol) = match field.spec.tolerance {
             Tolerance::Normal => (2e-7, 2e-9),
