@@ -292,7 +292,7 @@ impl<'a> Dynamics<'a> {
             return rate;
         }
         let guess = if spot.top_rate_stb_d > 0.0 { spot.top_rate_stb_d } else { 0.3 * open };
-        let (top_rate, top, _) = follow_top(height, guess, bounds.0, bounds.1.min(0.9999 * open));
+        let (top_rate, top) = follow_top(height, guess, bounds.0, bounds.1.min(0.9999 * open));
         if top <= 0.0 {
             self.remember(w, |s| s.top_rate_stb_d = top_rate);
             return top_rate;

@@ -157,6 +157,11 @@ pub struct WellRow {
     pub water_cut: Option<f64>,
     /// Flow margin at line pressure, psi; negative for a dead well.
     pub flow_margin_psi: Option<f64>,
+    /// Reservoir pressure at the perforations less the pressure under a full column of dead oil and water at line pressure, psi:
+    /// below zero a shut-in well does not start by itself.
+    pub restart_margin_psi: Option<f64>,
+    /// Liquid rate over the rate at the minimum of the tubing curve, less one; below zero the well flows left of the minimum.
+    pub stability_margin: Option<f64>,
 }
 
 /// One injector in one period.
@@ -253,6 +258,15 @@ pub struct CurveSet {
     pub flow_margin_psi: f64,
 }
 
+/// The end of natural flow with one tubing model.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct ModelEnd {
+    /// Name of the tubing model, as in the scenario file.
+    pub method: &'static str,
+    /// The end; `None`: the well still flows at the end of the run.
+    pub end: Option<FlowEnd>,
+}
+
 /// One well of a finished forecast.
 #[derive(Debug, Clone, PartialEq)]
 pub struct WellResult {
@@ -266,6 +280,10 @@ pub struct WellResult {
     pub flowing_at_end: bool,
     /// Days from the start at which the target was first lost; `None` without a target or when it was never lost.
     pub plateau_end: Option<f64>,
+    /// Days from the start after which the well could not start again from a shut-in against its own dead column.
+    pub restart_until: Option<f64>,
+    /// The end of natural flow over the applicable tubing models, once computed.
+    pub spread: Option<Vec<ModelEnd>>,
     /// Highest producing gas-oil ratio, scf/STB, over period ends.
     pub peak_gor_scf_stb: f64,
     /// Inflow equation in words and figures ("Fetkovich, C = 7.9e-4 STB/d/psi^2n, n = 0.85 fitted to 3 tests").

@@ -168,8 +168,8 @@ pub fn top_near(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: 
 }
 
 /// Follows the top of a smooth hump that moved little: the vertex of a parabola through three heights, accepted when the height
-/// there is the one foretold; otherwise [`top_near`]. Rate, height, and whether the parabola served.
-pub fn follow_top(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: f64) -> (f64, f64, bool) {
+/// there is the one foretold; otherwise [`top_near`]. Rate and height.
+pub fn follow_top(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: f64) -> (f64, f64) {
     const FORETOLD_PSI: f64 = 0.05;
     let step = 0.015 * rate_stb_d;
     let (a, b, c) = (rate_stb_d - step, rate_stb_d, rate_stb_d + step);
@@ -181,12 +181,11 @@ pub fn follow_top(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high
             let (q, foretold) = (b + shift * step, hb + 0.5 * slope * shift);
             let there = h(q);
             if q > low && q < high && (there - foretold).abs() < FORETOLD_PSI {
-                return if hb > there { (b, hb, true) } else { (q, there, true) };
+                return if hb > there { (b, hb) } else { (q, there) };
             }
         }
     }
-    let (q, height) = top_near(h, rate_stb_d, low, high);
-    (q, height, false)
+    top_near(h, rate_stb_d, low, high)
 }
 
 /// Follows a stable crossing from where it was found last, with the slope of `h` found last: rate and slope.
