@@ -40,8 +40,8 @@ const DROPLETS: u16 = 8;
 const WEIGHT: Range = Range { low: 0.6, high: 0.8, shift: 4 };
 
 /// Relative change of pressure allowed in a step per relative distance from the onset of a transition, and at it.
-const COURSE: f64 = 0.25;
-const LEAST_COURSE: f64 = 0.015;
+const COURSE: f64 = 0.2;
+const LEAST_COURSE: f64 = 0.02;
 
 /// The default model.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]

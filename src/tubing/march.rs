@@ -6,11 +6,10 @@
 //!
 //! - the next step follows from the last error without thresholds; a step cut short by the end of a stretch counts
 //!   in proportion to its length, so that a vanishing last step changes nothing;
-//! - a step whose error is too large is repeated at `h (tolerance/error)^(1/5)`, which is the same step at the
+//! - a step whose error is too large is repeated at `h (tolerance/error)^(1/4)`, which is the same step at the
 //!   threshold itself;
 //! - the branch of the model (flow pattern, laminar or turbulent, gas or no gas) is held within a step, and its end
-//!   is located on the cubic Hermite interpolant, then corrected on the step that ends there. Stepping over one
-//!   would cost 0.2 to 10 psi.
+//!   is located (see `border`). Stepping over one would cost 0.2 to 10 psi.
 
 use super::liquid;
 use super::model::{Branch, Flow, Gradient, Hydraulics, KINETIC_LIMIT};
@@ -29,6 +28,7 @@ const AIM: f64 = 0.4;
 const LEAST_ERROR: f64 = 0.001;
 /// Tolerance of one step's error estimate relative to the accuracy asked of the whole traverse.
 const STEP_SHARE: f64 = 0.002;
+/// Weight of the third difference of the slopes in the error estimate.
 const BEND_SHARE: f64 = 1e-4;
 /// A branch that ends this soon after its begin is left unwatched for a while: the flow would chatter. As a change of
 /// pressure relative to the pressure, like the two below.
@@ -81,17 +81,17 @@ impl Progress {
 
 /// The right-hand side at one point.
 #[derive(Clone, Copy)]
-struct Slope {
-    psi_ft: f64,
-    margin: f64,
+pub(super) struct Slope {
+    pub psi_ft: f64,
+    pub margin: f64,
     kinetic: f64,
     course: f64,
 }
 
 /// One attempted step.
-struct Step {
-    pressure_psia: f64,
-    end: Slope,
+pub(super) struct Step {
+    pub pressure_psia: f64,
+    pub end: Slope,
     error_psi: f64,
     least_margin: f64,
     /// Whether the margin may be lower between the stages than at any of them.
@@ -184,7 +184,7 @@ impl<'a, M: Hydraulics> March<'a, M> {
     }
 
     #[inline]
-    fn slope(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64, branch: Branch) -> Slope {
+    pub(super) fn slope(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64, branch: Branch) -> Slope {
         let (flow, above) = self.flow(stretch, md_ft, pressure_psia);
         self.slope_of(&flow, above, stretch, branch)
     }
@@ -291,7 +291,8 @@ impl<'a, M: Hydraulics> March<'a, M> {
                 }
                 length *= part;
                 step = self.step(stretch, md, p, start, direction * length, branch);
-                if let Some(end) = self.corrected(stretch, (md, p, start), &step, direction * length, branch) {
+                let end = self.corrected(stretch, (md, p, start), &step, direction * length, branch);
+                if let Some(end) = end.filter(|end| (end_md_ft - end.0) * direction >= 0.0) {
                     switched = true;
                     at_border = end;
                     break;
@@ -342,78 +343,6 @@ impl<'a, M: Hydraulics> March<'a, M> {
         if best > 0.0 { wish * best.powf(weight) } else { wish }
     }
 
-    /// The part of a step after which its branch ends; `None`: it does not.
-    fn switch(&self, stretch: &Stretch, from: (f64, f64, Slope), step: &Step, h: f64, branch: Branch) -> Option<f64> {
-        let (md, p, start) = from;
-        let margin = |x: f64| {
-            let pressure = hermite(x, h, (p, start.psi_ft), (step.pressure_psia, step.end.psi_ft));
-            self.slope(stretch, md + x * h, pressure, branch).margin
-        };
-        let (mut inside, mut inside_margin) = (0.0, start.margin);
-        let mut beyond = None;
-        for x in [1.0 / 64.0, 0.25, 0.4, 0.5, 0.6, 0.75, 1.0] {
-            // A branch begins on its own border, where rounding decides the sign: the first look is a little inside.
-            if x < 0.1 && inside_margin > 0.0 {
-                continue;
-            }
-            let at = if x == 1.0 { step.end.margin } else { margin(x) };
-            if at < 0.0 {
-                beyond = Some((x, at));
-                break;
-            }
-            (inside, inside_margin) = (x, at);
-        }
-        let (mut beyond, mut beyond_margin) = beyond?;
-        if inside_margin <= 0.0 {
-            return Some(inside);
-        }
-        // False position with the correction of Illinois.
-        let mut last_side = 0;
-        for _ in 0..40 {
-            if (beyond - inside) * h.abs() < 1e-7 {
-                break;
-            }
-            let x = inside + (beyond - inside) * inside_margin / (inside_margin - beyond_margin);
-            let at = margin(x);
-            if at.abs() < 1e-10 {
-                return Some(x);
-            }
-            if at > 0.0 {
-                (inside, inside_margin) = (x, at);
-                if last_side == 1 {
-                    beyond_margin *= 0.5;
-                }
-                last_side = 1;
-            } else {
-                (beyond, beyond_margin) = (x, at);
-                if last_side == -1 {
-                    inside_margin *= 0.5;
-                }
-                last_side = -1;
-            }
-        }
-        Some(0.5 * (inside + beyond))
-    }
-
-    /// The border near the end of a step that was to end on it, by a secant on the margin; `None` when the step missed it.
-    fn corrected(
-        &self,
-        stretch: &Stretch,
-        from: (f64, f64, Slope),
-        step: &Step,
-        h: f64,
-        branch: Branch,
-    ) -> Option<(f64, f64)> {
-        let (md, p, start) = from;
-        let back = -0.02 * h;
-        let pressure = hermite(0.98, h, (p, start.psi_ft), (step.pressure_psia, step.end.psi_ft));
-        let before = self.slope(stretch, md + 0.98 * h, pressure, branch);
-        let shift = -step.end.margin * back / (before.margin - step.end.margin);
-        let bend = (before.psi_ft - step.end.psi_ft) / back;
-        let at = (md + h + shift, step.pressure_psia + shift * (step.end.psi_ft + 0.5 * shift * bend));
-        (shift.abs() <= 0.02 * h.abs()).then_some(at)
-    }
-
     /// Goes on for a while on the branch that would end at once, then chooses anew.
     fn unwatched(
         &self,
@@ -442,11 +371,4 @@ fn held(value: f64, most: f64) -> f64 {
 #[inline]
 fn fifth_root(x: f64) -> f64 {
     x.powf(0.2)
-}
-
-/// Cubic Hermite interpolant at the part `x` of a step of length `h` between two values and slopes.
-#[inline]
-fn hermite(x: f64, h: f64, (p0, f0): (f64, f64), (p1, f1): (f64, f64)) -> f64 {
-    let rise = p1 - p0;
-    p0 + x * (rise + (1.0 - x) * ((1.0 - x) * (h * f0 - rise) + x * (rise - h * f1)))
 }

@@ -12,6 +12,7 @@ pub mod liquid;
 pub mod model;
 pub mod no_slip;
 
+mod border;
 mod march;
 mod path;
 mod spec;
