@@ -336,7 +336,10 @@ fn faults_name_their_keys() {
 #[test]
 fn methods_have_the_names_of_the_file() {
     let names: Vec<_> = TubingMethod::ALL.iter().map(|m| m.name()).collect();
-    assert_eq!(names, ["hasan-kabir", "hagedorn-brown", "beggs-brill", "no-slip"]);
+    assert_eq!(
+        names,
+        ["hasan-kabir", "drift-flux", "ansari", "hagedorn-brown", "beggs-brill", "mukherjee-brill", "gray", "no-slip"]
+    );
     let well = tubing(&vertical(TubingMethod::HasanKabir)).with_method(TubingMethod::BeggsBrill);
     assert_eq!(well.method(), TubingMethod::BeggsBrill);
     assert_eq!(well, tubing(&vertical(TubingMethod::BeggsBrill)));
@@ -362,18 +365,20 @@ fn senseless_numbers_give_finite_pressures() {
 /// Random sound wells: two diameters, a kick-off, any temperature.
 fn any_well() -> impl Strategy<Value = TubingSpec> {
     let numbers = (1.0..5.0_f64, 1.0..5.0_f64, 500.0..8000.0_f64, 200.0..8000.0_f64, 0.0..1.0_f64, 40.0..200.0_f64);
-    (numbers, 0..4_usize, 0.0..0.01_f64).prop_map(|((d1, d2, kick_off, length, slope, wellhead), method, roughness)| {
-        let mut spec = spec(
-            TubingMethod::ALL[method],
-            &[(kick_off * 0.7, d1), (WHOLE, d2)],
-            &[(0.0, 0.0), (kick_off, kick_off), (kick_off + length, kick_off + slope * length)],
-        );
-        spec.wellhead_temperature_degf = wellhead;
-        for section in &mut spec.sections {
-            section.roughness_in = roughness;
-        }
-        spec
-    })
+    (numbers, 0..TubingMethod::ALL.len(), 0.0..0.01_f64).prop_map(
+        |((d1, d2, kick_off, length, slope, wellhead), method, roughness)| {
+            let mut spec = spec(
+                TubingMethod::ALL[method],
+                &[(kick_off * 0.7, d1), (WHOLE, d2)],
+                &[(0.0, 0.0), (kick_off, kick_off), (kick_off + length, kick_off + slope * length)],
+            );
+            spec.wellhead_temperature_degf = wellhead;
+            for section in &mut spec.sections {
+                section.roughness_in = roughness;
+            }
+            spec
+        },
+    )
 }
 
 proptest! {

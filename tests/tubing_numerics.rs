@@ -2,11 +2,15 @@
 #![allow(clippy::unwrap_used)]
 
 use wane::fluid::{BlackOil, FluidSpec};
+use wane::tubing::ansari::Ansari;
 use wane::tubing::beggs_brill::BeggsBrill;
+use wane::tubing::drift_flux::DriftFlux;
+use wane::tubing::gray::Gray;
 use wane::tubing::hagedorn_brown::HagedornBrown;
 use wane::tubing::hasan_kabir::HasanKabir;
 use wane::tubing::liquid;
 use wane::tubing::model::{Flow, Hydraulics, Pipe};
+use wane::tubing::mukherjee_brill::MukherjeeBrill;
 use wane::tubing::no_slip::NoSlip;
 use wane::tubing::{Stream, Tubing, TubingMethod, TubingSection, TubingSpec};
 
@@ -159,6 +163,10 @@ fn a_plain_integration_agrees() {
                 TubingMethod::HasanKabir => at(&HasanKabir),
                 TubingMethod::HagedornBrown => at(&HagedornBrown),
                 TubingMethod::BeggsBrill => at(&BeggsBrill { payne: true }),
+                TubingMethod::DriftFlux => at(&DriftFlux),
+                TubingMethod::Ansari => at(&Ansari),
+                TubingMethod::MukherjeeBrill => at(&MukherjeeBrill),
+                TubingMethod::Gray => at(&Gray),
                 TubingMethod::NoSlip => at(&NoSlip),
             }
         };

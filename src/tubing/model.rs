@@ -23,6 +23,10 @@ pub struct Pipe {
     pub cos_inclination: f64,
     /// Rise velocity of long bubbles against that in vertical pipe: sqrt(sin)*(1 + cos)^1.2, 0 for downward flow.
     pub long_bubble_factor: f64,
+    /// m(th) of the drift flux of Shi et al.
+    pub drift_flux_factor: f64,
+    /// Absolute roughness, ft.
+    pub roughness_ft: f64,
     /// sin(1.8 th) - sin(1.8 th)^3/3 of Beggs and Brill.
     pub beggs_brill_factor: f64,
     /// 1/(2 gc d 144), the constant of the friction gradient.
@@ -44,6 +48,8 @@ impl Pipe {
             sin_inclination: sin,
             cos_inclination: cos,
             long_bubble_factor: sin.max(0.0).sqrt() * (1.0 + cos).powf(1.2),
+            drift_flux_factor: super::drift_flux::Parameters::FITTED.inclination(sin, cos),
+            roughness_ft: roughness_in / 12.0,
             beggs_brill_factor: reduced - reduced.powi(3) / 3.0,
             friction_constant: 1.0 / (2.0 * GRAVITY_FT_S2 * IN2_PER_FT2 * diameter_ft),
             ln_diameter: diameter_ft.ln(),

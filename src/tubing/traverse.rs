@@ -1,10 +1,14 @@
 //! The pressure traverse of one well.
 
+use super::ansari::Ansari;
 use super::beggs_brill::BeggsBrill;
+use super::drift_flux::DriftFlux;
+use super::gray::Gray;
 use super::hagedorn_brown::HagedornBrown;
 use super::hasan_kabir::HasanKabir;
 use super::march::{March, Progress};
 use super::model::{Hydraulics, KINETIC_LIMIT};
+use super::mukherjee_brill::MukherjeeBrill;
 use super::no_slip::NoSlip;
 use super::path::Path;
 use super::{TubingMethod, TubingSpec};
@@ -79,6 +83,22 @@ macro_rules! with_model {
             }
             TubingMethod::BeggsBrill => {
                 let $model = &BeggsBrill { payne: true };
+                $body
+            }
+            TubingMethod::DriftFlux => {
+                let $model = &DriftFlux;
+                $body
+            }
+            TubingMethod::Ansari => {
+                let $model = &Ansari;
+                $body
+            }
+            TubingMethod::MukherjeeBrill => {
+                let $model = &MukherjeeBrill;
+                $body
+            }
+            TubingMethod::Gray => {
+                let $model = &Gray;
                 $body
             }
             TubingMethod::NoSlip => {
