@@ -232,7 +232,9 @@ fn a_tiny_rate_is_the_column_at_rest() {
         let well = tubing(&vertical(method));
         let rest = well.flowing_pressure(&fluid, &stream(0.0, 0.1, 700.0), 150.0).pressure_psia;
         let tiny = well.flowing_pressure(&fluid, &stream(1e-9, 0.1, 700.0), 150.0).pressure_psia;
-        assert!((rest - tiny).abs() < 1.0, "{}: {rest} {tiny}", method.name());
+        // Gray's holdup goes to its value at rest with the 0.05th power of the velocity: 1 % is missing here.
+        let bar_psi = if method == TubingMethod::Gray { 0.02 * rest } else { 1.0 };
+        assert!((rest - tiny).abs() < bar_psi, "{}: {rest} {tiny}", method.name());
         assert!(rest > 300.0 && rest.is_finite());
     }
     // Gas slips away from liquid at rest: the default model's column is the liquid's.
