@@ -20,6 +20,7 @@ fn spec(method: TubingMethod, sections: &[(f64, f64)], survey: &[(f64, f64)]) ->
             .map(|&(to_md_ft, diameter_in)| TubingSection { to_md_ft, diameter_in, roughness_in: 0.0006 })
             .collect(),
         survey: survey.to_vec(),
+        slip_factor: 1.0,
         wellhead_temperature_degf: 110.0,
     }
 }

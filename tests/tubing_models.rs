@@ -311,6 +311,9 @@ fn models_stay_finite_and_within_bounds_anywhere() {
                                 let bounds = -1e-12..=1.0 + 1e-12;
                                 assert!(bounds.contains(&found.holdup), "{name} {at:?}: {found:?}");
                                 assert!(found.gravity_psi_ft >= 0.0 && found.friction_psi_ft >= 0.0, "{name} {at:?}");
+                                // The holdup told is the one that weighs: the slip factor counts on it.
+                                let weight = at.1.gravity_psi_ft_of(at.0.density_at_holdup_lb_ft3(found.holdup));
+                                assert!((found.gravity_psi_ft - weight).abs() < 1e-12, "{name} {at:?}: {found:?}");
                                 assert!(found.margin >= -1e-6, "{name} {at:?}: {found:?}");
                             }
                         }

@@ -228,6 +228,7 @@ fn tubing(reader: &mut Reader, well: &Section<'_>) -> TubingSpec {
         method: method.unwrap_or(TubingMethod::HasanKabir),
         sections,
         survey: survey::read(reader, &section),
+        slip_factor: reader.number(&section, "slip_factor"),
         wellhead_temperature_degf: reader.quantity(&section, "wellhead_temperature"),
     };
     reader.finish(&section);

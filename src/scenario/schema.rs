@@ -292,6 +292,7 @@ pub const KEYS: &[Key] = &[
     key("well.tubing.sections.diameter", Quantity(D::Diameter, DIAMETER), Required, "Inside diameter"),
     key("well.tubing.sections.roughness", Quantity(D::Diameter, ROUGHNESS), Optional, "Absolute roughness; otherwise the tubing's"),
     key("well.tubing.roughness", Quantity(D::Diameter, ROUGHNESS), Default("\"0.0006 in\""), "Absolute roughness"),
+    key("well.tubing.slip_factor", Number(from(0.0, 10.0)), Default("1.0"), "The model's holdup above no-slip times this, to tune it to measurements; 0 is no slip"),
     key("well.tubing.survey", Survey, Required, "Pairs of measured and true vertical depth from [0, 0] down, or the path of a CSV file"),
     key("well.tubing.wellhead_temperature", Quantity(D::Temperature, from(-40.0, 500.0)), Required, "Flowing temperature at the wellhead"),
 

@@ -24,6 +24,7 @@
 //! # Source
 //! Ansari, Sylvester, Sarica, Shoham and Brill, SPE Production and Facilities (May 1994) 143.
 
+use super::ValidRange;
 use super::ansari_annular::{self as annular, Film};
 use super::ansari_slug as slug;
 use super::hasan_kabir::small_bubble_ft_s;
@@ -222,6 +223,10 @@ impl Hydraulics for Ansari {
         };
         gradient.margin = gradient.margin.min(margin(flow, pipe, pattern, film.as_ref()));
         gradient
+    }
+
+    fn range(&self) -> ValidRange {
+        ValidRange { diameter_in: (1.0, 8.0), deviation_deg: 15.0, ..ValidRange::OPEN }
     }
 
     fn pattern(&self, flow: &Flow, pipe: &Pipe) -> &'static str {

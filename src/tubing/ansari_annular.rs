@@ -10,6 +10,8 @@
 //! dp/dL = Z SC/(1 - 2 dl)^5 + rho_c g sin th,  HL = x + lamLC (1 - x)
 //! ```
 //!
+//! Gravity is shown as that of the whole mixture, rho_s, and the rest of dp/dL as friction: that at the wall.
+//!
 //! fF at the Reynolds number of the film, 1488 rhoL vSL (1 - FE) d/muL, which does not depend on its thickness. The
 //! smallest root x is the film. Slug flow where HL > 0.12 (bridging) or where the film is unstable (Barnea 1987):
 //! YM > XM^2 (2 - 1.5 x)/[x^3 (1 - 1.5 x)].
@@ -236,10 +238,14 @@ impl Film {
     pub(super) fn gradient(&self, flow: &Flow, pipe: &Pipe) -> Gradient {
         let rest = 1.0 - self.share;
         let holdup = self.holdup();
+        let density = flow.density_at_holdup_lb_ft3(holdup);
+        // The balance of the core gives the total; what the whole mixture does not weigh is friction at the wall.
+        let interface = self.interface * self.core_friction_psi_ft / (rest * rest * rest.sqrt());
+        let gravity_psi_ft = pipe.gravity_psi_ft(density);
         Gradient {
-            gravity_psi_ft: pipe.gravity_psi_ft(self.core_density_lb_ft3),
-            friction_psi_ft: self.interface * self.core_friction_psi_ft / (rest * rest * rest.sqrt()),
-            kinetic: flow.kinetic(flow.density_at_holdup_lb_ft3(holdup)),
+            gravity_psi_ft,
+            friction_psi_ft: (interface + pipe.gravity_psi_ft(self.core_density_lb_ft3) - gravity_psi_ft).max(0.0),
+            kinetic: flow.kinetic(density),
             holdup,
             margin: self.branch_margin,
             course: f64::INFINITY,

@@ -8,7 +8,8 @@
 //! gravity [(1 - beta) rho_LS + beta rhog] g;  friction (1 - beta) f rho_LS vm^2/(2 gc d), Re = 1488 rho_LS vm d/mu_LS
 //! ```
 //!
-//! The weight of the film around the bubble is neglected, as in the paper (some 5 % of the gravity).
+//! The weight of the film around the bubble is neglected, as in the paper (some 5 % of the gravity), and the holdup
+//! shown is the one that weighs.
 
 use super::hasan_kabir::{long_bubble_ft_s, small_bubble_ft_s};
 use super::model::{Flow, Gradient, Pipe, laminar_margin};
@@ -96,9 +97,15 @@ impl Unit {
         }
     }
 
+    /// Liquid holdup that weighs: that of the whole unit without the film.
+    #[inline]
+    pub fn weighing_holdup(&self) -> f64 {
+        (1.0 - self.bubble_part) * (1.0 - self.slug_void)
+    }
+
     /// Liquid holdup of the whole unit.
     pub fn holdup(&self) -> f64 {
-        (1.0 - self.bubble_part) * (1.0 - self.slug_void) + self.bubble_part * self.film_holdup
+        self.weighing_holdup() + self.bubble_part * self.film_holdup
     }
 
     /// Gas that the unit carries beyond what flows, ft/s: zero, since the liquid balances.
@@ -116,12 +123,12 @@ impl Unit {
         let density = flow.density_at_holdup_lb_ft3(1.0 - self.slug_void);
         let slug_part = 1.0 - self.bubble_part;
         let moody = pipe.roughness.moody(self.reynolds, laminar);
-        let weight = slug_part * density + self.bubble_part * flow.gas_density_lb_ft3;
-        let holdup = self.holdup();
+        let holdup = self.weighing_holdup();
+        let weight = flow.density_at_holdup_lb_ft3(holdup);
         Gradient {
             gravity_psi_ft: pipe.gravity_psi_ft(weight),
             friction_psi_ft: slug_part * pipe.friction_psi_ft(moody, density, flow.mixture_velocity_ft_s()),
-            kinetic: flow.kinetic(flow.density_at_holdup_lb_ft3(holdup)),
+            kinetic: flow.kinetic(weight),
             holdup,
             margin: laminar_margin(self.reynolds, laminar),
             course: f64::INFINITY,

@@ -31,6 +31,7 @@
 //! # Source
 //! Shi, Holmes, Durlofsky, Aziz, Diaz, Alkaya and Oddie, SPE Journal 10 (March 2005) 24.
 
+use super::ValidRange;
 use super::model::{Branch, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe, Range, laminar_bit, laminar_margin};
 use crate::units::constants::GRAVITY_FT_S2;
 
@@ -284,6 +285,10 @@ impl Hydraulics for DriftFlux {
             margin: laminar_margin(reynolds, laminar).min(state.margin),
             course: f64::INFINITY,
         }
+    }
+
+    fn range(&self) -> ValidRange {
+        ValidRange { deviation_deg: 88.0, mixture_velocity_ft_s: 12.0, ..ValidRange::OPEN }
     }
 
     fn pattern(&self, flow: &Flow, pipe: &Pipe) -> &'static str {

@@ -22,6 +22,7 @@
 //! Gray (1974), in the user manual of the American Petroleum Institute for sizing subsurface safety valves, API 14B
 //! (1978).
 
+use super::ValidRange;
 use super::friction::Roughness;
 use super::model::{Branch, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe};
 use crate::units::constants::GRAVITY_FT_S2;
@@ -128,6 +129,16 @@ impl Hydraulics for Gray {
             holdup,
             margin: rich_margin.min(limit_margin).min(1.0),
             course: f64::INFINITY,
+        }
+    }
+
+    fn range(&self) -> ValidRange {
+        ValidRange {
+            diameter_in: (0.0, 3.5),
+            deviation_deg: 15.0,
+            mixture_velocity_ft_s: 50.0,
+            liquid_gas_ratio_bbl_mmscf: 50.0,
+            ..ValidRange::OPEN
         }
     }
 

@@ -21,8 +21,10 @@ pub mod no_slip;
 mod border;
 mod march;
 mod path;
+mod range;
 mod spec;
 mod traverse;
 
+pub use range::{Limited, OutsideRange, ValidRange};
 pub use spec::{TubingMethod, TubingSection, TubingSpec};
 pub use traverse::{Stream, Traverse, TraversePoint, Tubing};

@@ -1,5 +1,6 @@
 //! What every hydraulics model gets and gives.
 
+use super::ValidRange;
 use super::friction::{LAMINAR_REYNOLDS, Roughness};
 use crate::units::constants::GRAVITY_FT_S2;
 
@@ -126,7 +127,7 @@ impl Flow {
 }
 
 /// Which branch of its piecewise formulas a model is on: a bit set whose meaning is the model's own, apart from
-/// the two lowest bits and the highest.
+/// the two lowest bits and the two highest.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub struct Branch(pub u16);
 
@@ -135,6 +136,8 @@ impl Branch {
     pub const SINGLE_PHASE: u16 = 1;
     /// Reynolds number below 2,100.
     pub const LAMINAR: u16 = 2;
+    /// Holdup held at 1 by the slip factor; set and used by the march, not by the models.
+    pub const SLIP_CEILING: u16 = 0x4000;
     /// Kinetic term held at its limit; set and used by the march, not by the models.
     pub const NEAR_SONIC: u16 = 0x8000;
 
@@ -185,6 +188,11 @@ pub trait Hydraulics {
 
     /// The gradient on a given branch.
     fn gradient(&self, flow: &Flow, pipe: &Pipe, branch: Branch) -> Gradient;
+
+    /// What the model is said to hold for.
+    fn range(&self) -> ValidRange {
+        ValidRange::OPEN
+    }
 
     /// Name of the flow pattern.
     fn pattern(&self, flow: &Flow, pipe: &Pipe) -> &'static str;

@@ -22,6 +22,7 @@
 //! Mukherjee and Brill, J. Can. Pet. Tech. (July 1983) 85 (holdup) and J. Energy Resour. Technol. 107 (1985) 549
 //! (gradient and flow patterns). Coefficients from memory of the papers.
 
+use super::ValidRange;
 use super::groups::LnGroups;
 use super::model::{Branch, Flow, Gradient, Hydraulics, Pipe, laminar_bit, laminar_margin};
 use super::no_slip;
@@ -175,6 +176,10 @@ impl Hydraulics for MukherjeeBrill {
             margin: margin.min(laminar_margin(reynolds, laminar)),
             course: f64::INFINITY,
         }
+    }
+
+    fn range(&self) -> ValidRange {
+        ValidRange { viscosity_number: 0.4, ..ValidRange::OPEN }
     }
 
     fn pattern(&self, flow: &Flow, pipe: &Pipe) -> &'static str {

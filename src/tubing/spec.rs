@@ -69,6 +69,8 @@ pub struct TubingSpec {
     pub sections: Vec<TubingSection>,
     /// Survey: measured and true vertical depth, ft, from the wellhead down; begins with (0, 0).
     pub survey: Vec<(f64, f64)>,
+    /// The model's holdup above no-slip times this number; 1 leaves the model as published.
+    pub slip_factor: f64,
     /// Flowing temperature at the wellhead, degF.
     pub wellhead_temperature_degf: f64,
 }
