@@ -5,7 +5,7 @@ use super::integrate::Problem;
 use super::{InjectedFluid, InjectionControl, StopReason};
 use crate::roots::brent;
 use crate::tank::{ClosureError, Cumulatives, TankState};
-use crate::well::{Gauge, WellNow, follow_top, oil_gradient_psi_ft, right_crossing, top_near};
+use crate::well::{Gauge, WellNow, follow_top, oil_gradient_psi_ft, right_crossing, survey, top_near};
 use std::cell::{Cell, RefCell};
 
 /// Height in psi by which the target (or floor) must be out of reach before it is taken up again, so that modes never flicker.
@@ -461,8 +461,15 @@ impl<'a> Dynamics<'a> {
                 let limit = spec(w).maximum_gor_scf_stb.unwrap_or(f64::INFINITY);
                 (limit - self.well_now(w, tank).gor_scf_stb) / limit
             }
-            Watch::FlowAgain(w) => FLOW_AGAIN_PSI - self.well_now(w, tank).survey().margin_psi,
+            Watch::FlowAgain(w) => FLOW_AGAIN_PSI - self.return_margin(w, &self.well_now(w, tank)),
         }
+    }
+
+    /// The flow margin within the rates that target and floor allow, psi: what a dead well must have again to return.
+    fn return_margin(&self, w: usize, now: &WellNow) -> f64 {
+        let cap = self.floor_rate(w, now).min(self.setup.wells[w].spec.target_rate_stb_d.unwrap_or(f64::INFINITY));
+        let open = now.curve.open_flow_stb_d().min(cap);
+        if open > 0.0 { survey(|q| now.height_psi(q), open).margin_psi } else { -FLOW_AGAIN_PSI }
     }
 
     /// The lowest place between the top of the hump and the operating point that has higher ground on its right: rate, and how much

@@ -199,8 +199,9 @@ impl<'a> Run<'a> {
             Mode::Stopped(_) => self.setup.wells[w].spec.may_flow_again && self.modes.watch_return[w],
             _ => true,
         });
+        let ahead = |day: f64| day > self.t && day < end;
         let events_ahead =
-            self.field.spec.changes.iter().any(|c| self.day(c.on) > self.t && matches!(c.change, Change::Well(..)));
+            self.field.spec.changes.iter().any(|c| ahead(self.day(c.on)) && matches!(c.change, Change::Well(..)));
         if alive || events_ahead {
             return false;
         }
@@ -486,12 +487,15 @@ impl<'a> Run<'a> {
             Watch::WaterCut(w) => self.stop(w, StopReason::WaterCutLimit)?,
             Watch::GasOilRatio(w) => self.stop(w, StopReason::GasOilRatioLimit)?,
             Watch::FlowAgain(w) => {
+                let name = name(w);
+                let mut note = "flow margin back at 1 psi";
                 if self.setup.wells[w].spec.may_flow_again {
                     self.place(w, true)?;
-                } else {
-                    let name = name(w);
+                    note = "flow margin back at 1 psi, but another limit of the well keeps it shut";
+                }
+                if !self.modes.wells[w].flows() {
                     self.modes.watch_return[w] = false;
-                    self.event(&name, EventKind::CouldFlowAgain, "flow margin back at 1 psi".to_owned());
+                    self.event(&name, EventKind::CouldFlowAgain, note.to_owned());
                 }
             }
         }
