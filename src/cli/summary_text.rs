@@ -109,10 +109,10 @@ fn restart_text(forecast: &Forecast, well: &WellResult) -> Option<String> {
     let date = date_at(forecast.start, days);
     let name = &well.name;
     Some(if days <= 0.0 {
-        format!("{name}, after a shut-in: never starts by itself against its own dead column.")
+        format!("{name}, shut in long enough for its column to die: does not start by itself again.")
     } else {
         format!(
-            "{name}, after a shut-in: does not start by itself against its own dead column from {} on.",
+            "{name}, shut in long enough for its column to die: does not start by itself again from {} on.",
             month(date)
         )
     })

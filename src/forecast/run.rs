@@ -10,6 +10,8 @@ use crate::well::{Crossing, crossings, top_near};
 use jiff::civil::Date;
 use std::sync::Arc;
 
+/// Height below which a hump that has just been lost counts as gone, psi.
+const GONE_PSI: f64 = 1e-3;
 /// Switches at one instant after which the run is given up.
 const MOST_SWITCHES_AT_ONCE: usize = 40;
 
@@ -312,7 +314,7 @@ impl<'a> Run<'a> {
             } else if started {
                 let shut = mode == Mode::Stopped(StopReason::Scheduled);
                 if mode == Mode::Waiting || shut || named {
-                    self.place(w, true)?;
+                    self.place(w, true, 0.0)?;
                 }
             }
         }
@@ -379,13 +381,14 @@ impl<'a> Run<'a> {
         })
     }
 
-    /// Looks at a well from scratch and puts it where it belongs. `starting`: it did not flow before.
-    fn place(&mut self, w: usize, starting: bool) -> Result<(), RunError> {
+    /// Looks at a well from scratch and puts it where it belongs. `starting`: it did not flow before. Humps that do not reach above
+    /// `least_psi` do not count.
+    fn place(&mut self, w: usize, starting: bool, least_psi: f64) -> Result<(), RunError> {
         let tank = self.tank_now()?;
         let before = self.modes.wells[w];
         let (found, spot) = {
             let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
-            placement(&self.setup, &dynamics, w, &tank)
+            placement(&self.setup, &dynamics, w, &tank, least_psi)
         };
         self.trace.memory.spots.borrow_mut()[w] = spot;
         let name = self.setup.wells[w].spec.name.clone();
@@ -473,10 +476,11 @@ impl<'a> Run<'a> {
                     dynamics.well_now(w, &tank).survey().margin_psi
                 };
                 // The same hump, found again at a height of rounding: it is gone.
-                if matches!(watch, Watch::MarginGone(_)) && margin < 1e-3 {
+                if matches!(watch, Watch::MarginGone(_)) && margin < GONE_PSI {
                     self.stop(w, StopReason::NoCrossing)?;
                 } else {
-                    self.place(w, false)?;
+                    let least = if matches!(watch, Watch::MarginGone(_)) { GONE_PSI } else { 0.0 };
+                    self.place(w, false, least)?;
                     if self.modes.wells[w].flows() && self.modes.wells[w] != before {
                         self.event(&name, EventKind::RateJump, String::new());
                     }
@@ -487,7 +491,7 @@ impl<'a> Run<'a> {
             Watch::GasOilRatio(w) => self.stop(w, StopReason::GasOilRatioLimit)?,
             Watch::FlowAgain(w) => {
                 if self.setup.wells[w].spec.may_flow_again {
-                    self.place(w, true)?;
+                    self.place(w, true, 0.0)?;
                 } else {
                     let name = name(w);
                     self.modes.watch_return[w] = false;
@@ -535,7 +539,7 @@ impl<'a> Run<'a> {
                 let limit = if was == Mode::Floor { StopReason::MinimumFlowingPressure } else { StopReason::RateLimit };
                 match stable_below(&now, 0.999_999 * cap) {
                     Some((mode, spot)) => (Ok(mode), spot),
-                    None if now.survey().margin_psi <= 1e-3 => (Err(StopReason::NoCrossing), Spot::default()),
+                    None if now.survey().margin_psi <= GONE_PSI => (Err(StopReason::NoCrossing), Spot::default()),
                     None => (Err(limit), Spot::default()),
                 }
             }
@@ -577,14 +581,20 @@ fn stable_below(now: &crate::well::WellNow, cap_stb_d: f64) -> Option<(Mode, Spo
 }
 
 /// Where a well belongs at a tank state: a flowing mode, or the reason why it does not flow.
-fn placement(setup: &Setup, dynamics: &Dynamics, w: usize, tank: &TankState) -> (Result<Mode, StopReason>, Spot) {
+fn placement(
+    setup: &Setup,
+    dynamics: &Dynamics,
+    w: usize,
+    tank: &TankState,
+    least_psi: f64,
+) -> (Result<Mode, StopReason>, Spot) {
     let spec = &setup.wells[w].spec;
     let now = dynamics.well_now(w, tank);
     let open = now.curve.open_flow_stb_d();
     if open <= 0.0 {
         return (Err(StopReason::NoCrossing), Spot::default());
     }
-    let land = now.survey();
+    let land = now.survey_above(least_psi);
     if land.margin_psi <= 0.0 {
         return (Err(StopReason::NoCrossing), Spot::default());
     }

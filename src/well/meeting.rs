@@ -87,16 +87,16 @@ fn look(h: &mut impl FnMut(f64) -> f64, open_flow_stb_d: f64) -> Look {
     Look { points, store, count }
 }
 
-/// Looks over all rates up to open flow.
-pub fn survey(mut h: impl FnMut(f64) -> f64, open_flow_stb_d: f64) -> Landscape {
+/// Looks over all rates up to open flow. Only a hump whose top lies above `least_psi` (zero, as a rule) is one to flow on.
+pub fn survey(mut h: impl FnMut(f64) -> f64, open_flow_stb_d: f64, least_psi: f64) -> Landscape {
     let look = look(&mut h, open_flow_stb_d);
     let humps = look.humps();
     let (_, margin_rate, margin) =
         humps.iter().copied().fold((0, 0.0, f64::NEG_INFINITY), |a, b| if b.2 > a.2 { b } else { a });
     let chosen =
-        humps.iter().rposition(|x| x.2 > 0.0).or_else(|| humps.iter().position(|x| x.2 >= margin)).unwrap_or(0);
+        humps.iter().rposition(|x| x.2 > least_psi).or_else(|| humps.iter().position(|x| x.2 >= margin)).unwrap_or(0);
     let (index, top_rate, top) = humps.get(chosen).copied().unwrap_or((0, look.points[0].0, look.points[0].1));
-    let right_crossing_stb_d = (top > 0.0).then(|| {
+    let right_crossing_stb_d = (top > least_psi).then(|| {
         // The first point beyond the top at which h is no longer positive; open flow itself always is such a point.
         let beyond = look.points[index + 1..].iter().copied().find(|p| p.0 > top_rate && p.1 <= 0.0);
         let inside = look.points[index + 1..]

@@ -350,7 +350,12 @@ impl<'a> WellNow<'a> {
 
     /// The landscape of heights over all rates.
     pub fn survey(&self) -> Landscape {
-        survey(|q| self.height_psi(q), self.curve.open_flow_stb_d())
+        self.survey_above(0.0)
+    }
+
+    /// The same, where only humps that reach above `least_psi` are chosen to flow on.
+    pub fn survey_above(&self, least_psi: f64) -> Landscape {
+        survey(|q| self.height_psi(q), self.curve.open_flow_stb_d(), least_psi)
     }
 
     /// Wellhead pressure of the choked well, psia; line pressure where the march up does not reach the surface.
