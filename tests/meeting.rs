@@ -25,7 +25,7 @@ fn none_one_and_two_crossings_are_told_apart() {
     near(found[0].rate_stb_d, expected[0], 1e-8, "left crossing");
     near(found[1].rate_stb_d, expected[1], 1e-8, "right crossing");
     assert!(!found[0].stable && found[1].stable, "only the right-hand crossing is stable");
-    let land = survey(height(2000.0, 900.0, 1e5, 0.2), 2000.0, 0.0);
+    let land = survey(height(2000.0, 900.0, 1e5, 0.2), 2000.0);
     near(land.right_crossing_stb_d.unwrap(), expected[1], 1e-8, "operating point");
     near(land.margin_rate_stb_d, (1e5_f64 / 1.2).sqrt(), 1e-4, "where the margin is");
     near(land.margin_psi, 1100.0 - 2.0 * (1e5_f64 * 1.2).sqrt(), 1e-9, "margin");
@@ -37,7 +37,7 @@ fn none_one_and_two_crossings_are_told_apart() {
     near(found[0].rate_stb_d, 1100.0 / 1.2, 1e-8, "single crossing");
 
     assert!(crossings(height(2000.0, 1500.0, 1e5, 0.2), 2000.0).is_empty());
-    let land = survey(height(2000.0, 1500.0, 1e5, 0.2), 2000.0, 0.0);
+    let land = survey(height(2000.0, 1500.0, 1e5, 0.2), 2000.0);
     assert!(land.right_crossing_stb_d.is_none() && land.margin_psi < 0.0);
 }
 
@@ -46,7 +46,7 @@ fn the_right_most_of_several_humps_is_the_operating_point() {
     // Two humps of height 30 around q = 300 and 12 around q = 1400, -40 between.
     let bump = |q: f64, at: f64, width: f64| (-((q - at) / width).powi(2)).exp();
     let h = |q: f64| -40.0 + 70.0 * bump(q, 300.0, 150.0) + 52.0 * bump(q, 1400.0, 120.0);
-    let land = survey(h, 2000.0, 0.0);
+    let land = survey(h, 2000.0);
     near(land.margin_psi, 30.0, 1e-6, "margin of the higher hump");
     near(land.top_rate_stb_d, 1400.0, 1e-3, "the hump that the well flows on");
     let edge = 1400.0 + 120.0 * (52.0_f64 / 40.0).ln().sqrt();
@@ -66,7 +66,7 @@ fn operating_point_of_the_published_example() {
         let i = q.partition_point(|v| *v <= x).clamp(1, q.len() - 1);
         y[i - 1] + (y[i] - y[i - 1]) * (x - q[i - 1]) / (q[i] - q[i - 1])
     };
-    let found = survey(|x| linear(&inflow, x) - linear(&tubing, x), 1500.0, 0.0);
+    let found = survey(|x| linear(&inflow, x) - linear(&tubing, x), 1500.0);
     let rate = found.right_crossing_stb_d.unwrap();
     near(rate, c["expected"][0]["value"].as_f64().unwrap(), 0.02, "rate");
     near(linear(&inflow, rate), c["expected"][1]["value"].as_f64().unwrap(), 0.02, "flowing pressure");
@@ -90,7 +90,7 @@ impl Problem for Miniature {
     /// y = a/1000; a' = -q, with q the right-hand crossing, held at the tangent rate once the curves have parted.
     fn derivative(&self, _t: f64, y: &[f64], dy: &mut [f64]) -> Result<(), ()> {
         let a = 1000.0 * y[0];
-        let land = survey(Self::height(a), a.max(1000.0), 0.0);
+        let land = survey(Self::height(a), a.max(1000.0));
         let q = land.right_crossing_stb_d.unwrap_or(land.top_rate_stb_d);
         dy[0] = -q / 1000.0;
         Ok(())
@@ -107,7 +107,7 @@ impl Problem for Miniature {
 
     fn watch(&self, _index: usize, _t: f64, y: &[f64]) -> Result<f64, ()> {
         let a = 1000.0 * y[0];
-        Ok(survey(Self::height(a), a.max(1000.0), 0.0).margin_psi)
+        Ok(survey(Self::height(a), a.max(1000.0)).margin_psi)
     }
 }
 
