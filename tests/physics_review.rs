@@ -3,12 +3,10 @@
 
 mod common;
 
-use common::fields::{injector, one_well, well};
+use common::fields::one_well;
 use common::near;
 use jiff::civil::date;
-use wane::forecast::{
-    Change, ChangeSpec, EventKind, FieldSpec, InjectedFluid, InjectionControl, StopReason, curves_on, run,
-};
+use wane::forecast::{Change, ChangeSpec, EventKind, FieldSpec, StopReason, curves_on, run};
 use wane::inflow::{Coefficient, InflowTest, Measured};
 use wane::tubing::TubingMethod;
 use wane::well::WellSpec;
@@ -39,33 +37,6 @@ fn a_floor_that_ended_a_well_still_binds_when_it_may_flow_again() {
     let with = run(&spec).unwrap();
     assert_eq!(with.wells[0].natural_flow_end, without.wells[0].natural_flow_end);
     assert!(!with.events.iter().any(|e| matches!(e.kind, EventKind::FlowsAgain | EventKind::CouldFlowAgain)));
-}
-
-/// A margin that comes back while another limit forbids: noted once, the run goes on.
-#[test]
-fn a_limit_keeps_a_well_shut_whose_margin_is_back() {
-    let mut spec = one_well();
-    let mut wi = injector("WI-1", InjectedFluid::Water, InjectionControl::Rate(3000.0));
-    wi.start = Some(date(2030, 6, 1));
-    wi.end = Some(date(2031, 6, 1));
-    spec.injectors = vec![wi];
-    let mut second = well("OP-2");
-    second.line_pressure_psia = 80.0;
-    second.target_rate_stb_d = Some(100.0);
-    spec.wells.push(second);
-    spec.wells[0].may_flow_again = true;
-    let free = run(&spec).unwrap();
-    let again = free.events.iter().find(|e| e.kind == EventKind::FlowsAgain && e.name == "OP-1").unwrap().days;
-    let first = free.events.iter().find(|e| matches!(e.kind, EventKind::EndOfNaturalFlow(_))).unwrap().days;
-    // A rate limit close to the target, set while it is dead.
-    let between = wane::forecast::date_at(spec.period.start, 0.5 * (first + again));
-    on(&mut spec, between, |w| w.minimum_rate_stb_d = Some(1499.0));
-    let held = run(&spec).unwrap();
-    let noted: Vec<_> = held.events.iter().filter(|e| e.kind == EventKind::CouldFlowAgain).collect();
-    assert_eq!(noted.len(), 1);
-    near(noted[0].days, again, 1e-9, "the day the margin is back");
-    assert!(noted[0].note.contains("another limit"));
-    assert_eq!(held.wells[0].natural_flow_end.unwrap().days, first);
 }
 
 /// A smaller string, run later, does not reinterpret separator tests, even where they could not have been made in it.
@@ -142,4 +113,21 @@ fn curves_on_the_day_of_an_event_show_its_settings() {
     // r = 7: half the skin resistance, twice the coefficient; above the bubble point the drawdown halves.
     let drawdown = |c: &wane::forecast::WellCurves| c.curve.reservoir_psia - c.curve.points[0].1;
     near(drawdown(&after[0]), 0.5 * drawdown(&before[0]), 1e-9, "drawdown");
+}
+
+/// A dated event that brings a well back to its target is noted like any other return to it.
+#[test]
+fn a_target_regained_by_an_event_is_noted() {
+    let mut spec = one_well();
+    spec.tank.oil_in_place_stb = 6e6;
+    spec.wells[0].line_pressure_psia = 110.0;
+    spec.wells[0].target_rate_stb_d = Some(800.0);
+    let lost = run(&spec).unwrap().wells[0].plateau_end.unwrap();
+    let day = wane::forecast::date_at(spec.period.start, lost + 20.0);
+    on(&mut spec, day, |w| w.skin = -4.0);
+    let f = run(&spec).unwrap();
+    let days = wane::forecast::days_between(spec.period.start, day);
+    assert!(f.events.iter().any(|e| e.kind == EventKind::TargetRegained && e.days == days));
+    assert_eq!(f.wells[0].plateau_end, Some(lost), "the first loss is what the summary tells");
+    assert!(f.events.iter().filter(|e| e.kind == EventKind::PlateauLost).count() >= 2);
 }

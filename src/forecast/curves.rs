@@ -54,7 +54,8 @@ pub fn curves_on(
         let own = well.tubing.method();
         let others = TubingMethod::ALL.into_iter().filter(|m| *m != own && all_models);
         for method in std::iter::once(own).chain(others) {
-            list.push(at(&field, &run, piece, w, days, on.to_string(), rates_stb_d, method)?);
+            let moment = Moment { piece, days, label: on.to_string() };
+            list.push(at(&field, &run, moment, w, rates_stb_d, method)?);
         }
     }
     Ok(list)
@@ -76,7 +77,8 @@ pub(super) fn life_curves(field: &Field, run: &Trace, w: usize) -> Result<Vec<Cu
     for (days, label, piece) in moments {
         let Some(piece) = piece else { continue };
         let own = piece.setup.wells[w].tubing.method();
-        list.push(at(field, run, piece, w, days, label.to_owned(), &[], own)?.curve);
+        let moment = Moment { piece, days, label: label.to_owned() };
+        list.push(at(field, run, moment, w, &[], own)?.curve);
     }
     Ok(list)
 }
@@ -87,14 +89,18 @@ fn piece_from(pieces: &[Piece], t_days: f64) -> Option<&Piece> {
     pieces.get(i).or_else(|| pieces.last())
 }
 
-#[allow(clippy::too_many_arguments)]
+/// An instant of the run, with the stretch whose settings hold there.
+struct Moment<'a> {
+    piece: &'a Piece,
+    days: f64,
+    label: String,
+}
+
 fn at(
     field: &Field,
     run: &Trace,
-    piece: &Piece,
+    Moment { piece, days, label }: Moment,
     w: usize,
-    days: f64,
-    label: String,
     rates: &[f64],
     method: TubingMethod,
 ) -> Result<WellCurves, RunError> {

@@ -204,9 +204,7 @@ fn well(field: &Field, forecast: &Forecast, seen: &Seen, w: usize, doubts: &mut 
                 "the well may flow again once gas moves: set may_flow_again = true, and weigh a short kick-off against lift",
             ));
         }
-        if !model.spec.may_flow_again
-            && forecast.events.iter().any(|e| e.name == *name && e.kind == EventKind::CouldFlowAgain)
-        {
+        if forecast.events.iter().any(|e| e.name == *name && e.kind == EventKind::CouldFlowAgain) {
             doubts.push(doubt(
                 DoubtKind::EarlyEnd,
                 name,

@@ -2,10 +2,11 @@
 
 use super::field::{Field, Setup, injected_fvf, injection_limit};
 use super::integrate::Problem;
+use super::placement::place_on;
 use super::{InjectedFluid, InjectionControl, StopReason};
 use crate::roots::brent;
 use crate::tank::{ClosureError, Cumulatives, TankState};
-use crate::well::{Gauge, WellNow, follow_top, oil_gradient_psi_ft, right_crossing, survey, top_near};
+use crate::well::{Gauge, LOOK_FROM, LOOK_TO, WellNow, follow_top, oil_gradient_psi_ft, right_crossing, top_near};
 use std::cell::{Cell, RefCell};
 
 /// Height in psi by which the target (or floor) must be out of reach before it is taken up again, so that modes never flicker.
@@ -20,8 +21,12 @@ const CLEAR_MARGIN_PSI: f64 = 25.0;
 const BUBBLE_POINT_SLACK_SCF_STB: f64 = 1e-6;
 /// The same for the critical gas saturation.
 const CRITICAL_GAS_SLACK: f64 = 1e-9;
+/// Days within which another crossing counts as soon.
+const SOON_DAYS: f64 = 30.0;
 /// Relative slack of an injection limit.
 const LIMIT_SLACK: f64 = 1e-6;
+/// Slack in psi of an injector shut in by its bottom-hole limit.
+const SHUT_SLACK_PSI: f64 = 1e-3;
 
 /// What a well does.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -41,6 +46,22 @@ pub(super) enum Mode {
     },
     /// Stopped for this reason.
     Stopped(StopReason),
+}
+
+impl Modes {
+    pub fn new(wells: usize, injectors: usize, saturated: bool, gas_mobile: bool) -> Self {
+        Self {
+            wells: vec![Mode::Waiting; wells],
+            watch_return: vec![false; wells],
+            injecting: vec![false; injectors],
+            limited: vec![false; injectors],
+            saturated,
+            gas_mobile,
+            bubble_point_slack: Slack::new(BUBBLE_POINT_SLACK_SCF_STB),
+            critical_gas_slack: Slack::new(CRITICAL_GAS_SLACK),
+            held_shut: vec![false; injectors],
+        }
+    }
 }
 
 impl Mode {
@@ -66,6 +87,28 @@ pub(super) enum Watch {
     BubblePoint,
     CriticalGas,
     InjectorLimit(usize),
+    /// The tank's pressure passes the injector's bottom-hole limit, where the allowed rate is bent at zero.
+    InjectorShut(usize),
+}
+
+/// Room around a border. A tank can settle right on one of its borders; each crossing soon after the last one widens the room,
+/// so that rounding does not cut the run into slivers. Only the integrator's restarts hang on it, not the physics.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Slack {
+    pub now: f64,
+    least: f64,
+    last_days: f64,
+}
+
+impl Slack {
+    fn new(least: f64) -> Self {
+        Self { now: least, least, last_days: f64::NEG_INFINITY }
+    }
+
+    pub fn crossed(&mut self, t_days: f64) {
+        self.now = if t_days - self.last_days < SOON_DAYS { 10.0 * self.now } else { self.least };
+        self.last_days = t_days;
+    }
 }
 
 /// Discrete state of a stretch.
@@ -78,6 +121,11 @@ pub(super) struct Modes {
     pub limited: Vec<bool>,
     pub saturated: bool,
     pub gas_mobile: bool,
+    /// How far beyond the bubble point, scf/STB, and the critical gas saturation the tank goes before it counts as a crossing.
+    pub bubble_point_slack: Slack,
+    pub critical_gas_slack: Slack,
+    /// Injectors shut in by their bottom-hole limit.
+    pub held_shut: Vec<bool>,
 }
 
 /// Where a well was found last.
@@ -99,7 +147,7 @@ impl Spot {
     /// Where the hump on which the well flows begins, STB/d; `low` is the part of open flow at which it was seen first.
     fn left_end(&self, low: f64, open_flow_stb_d: f64) -> f64 {
         if low <= 0.0 {
-            0.0
+            LOOK_FROM * open_flow_stb_d
         } else if self.low_rate_stb_d > 0.0 {
             self.low_rate_stb_d
         } else {
@@ -198,7 +246,12 @@ impl<'a> Dynamics<'a> {
                 }
             }
         }
-        watches.extend((0..setup.injectors.len()).filter(|&i| modes.injecting[i]).map(Watch::InjectorLimit));
+        for i in (0..setup.injectors.len()).filter(|&i| modes.injecting[i]) {
+            watches.push(Watch::InjectorLimit(i));
+            if setup.injectors[i].bottomhole_limit_psia.is_some() && setup.injectors[i].injectivity.is_some() {
+                watches.push(Watch::InjectorShut(i));
+            }
+        }
         Self { field, setup, modes, memory, watches }
     }
 
@@ -292,7 +345,7 @@ impl<'a> Dynamics<'a> {
             return rate;
         }
         let guess = if spot.top_rate_stb_d > 0.0 { spot.top_rate_stb_d } else { 0.3 * open };
-        let (top_rate, top) = follow_top(height, guess, bounds.0, bounds.1.min(0.9999 * open));
+        let (top_rate, top) = follow_top(height, guess, bounds.0, bounds.1.min(LOOK_TO * open));
         if top <= 0.0 {
             self.remember(w, |s| s.top_rate_stb_d = top_rate);
             return top_rate;
@@ -339,7 +392,7 @@ impl<'a> Dynamics<'a> {
         let spot = self.memory.spots.borrow()[w];
         let guess = if spot.top_rate_stb_d > 0.0 { spot.top_rate_stb_d } else { 0.3 * open };
         let left = spot.left_end(low, open);
-        let top = top_near(|q| now.height_psi(q), guess, left, (high * open).min(0.9999 * open).max(left));
+        let top = top_near(|q| now.height_psi(q), guess, left, (high * open).min(LOOK_TO * open).max(left));
         self.remember(w, |s| s.top_rate_stb_d = top.0);
         if low > 0.0 {
             // The valley on the left moves too.
@@ -388,11 +441,11 @@ impl<'a> Dynamics<'a> {
         match watch {
             Watch::BubblePoint => {
                 let side = if self.modes.saturated { 1.0 } else { -1.0 };
-                side * tank.excess_gas_scf_stb + BUBBLE_POINT_SLACK_SCF_STB
+                side * tank.excess_gas_scf_stb + self.modes.bubble_point_slack.now
             }
             Watch::CriticalGas => {
                 let above = tank.gas_saturation - self.setup.tank.relative_permeability().critical_gas();
-                (if self.modes.gas_mobile { above } else { -above }) + CRITICAL_GAS_SLACK
+                (if self.modes.gas_mobile { above } else { -above }) + self.modes.critical_gas_slack.now
             }
             Watch::InjectorLimit(i) => {
                 let (asked, _) = self.injection(i, tank, self.withdrawal_rb_d(tank));
@@ -403,6 +456,10 @@ impl<'a> Dynamics<'a> {
                 let scale = asked.max(limit).max(1e-9);
                 let spare = (limit - asked) / scale;
                 (if self.modes.limited[i] { -spare } else { spare }) + LIMIT_SLACK
+            }
+            Watch::InjectorShut(i) => {
+                let room = self.setup.injectors[i].bottomhole_limit_psia.unwrap_or(f64::INFINITY) - tank.pressure_psia;
+                (if self.modes.held_shut[i] { -room } else { room }) + SHUT_SLACK_PSI
             }
             Watch::CapLost(w) => {
                 let now = self.well_now(w, tank);
@@ -461,15 +518,25 @@ impl<'a> Dynamics<'a> {
                 let limit = spec(w).maximum_gor_scf_stb.unwrap_or(f64::INFINITY);
                 (limit - self.well_now(w, tank).gor_scf_stb) / limit
             }
-            Watch::FlowAgain(w) => FLOW_AGAIN_PSI - self.return_margin(w, &self.well_now(w, tank)),
+            Watch::FlowAgain(w) => {
+                let now = self.well_now(w, tank);
+                if now.curve.open_flow_stb_d() <= 0.0 {
+                    return FLOW_AGAIN_PSI;
+                }
+                let land = now.survey();
+                let short = FLOW_AGAIN_PSI - land.margin_psi;
+                // A margin alone does not help a well that one of its own limits would stop at once.
+                if short > 0.0 {
+                    return short;
+                }
+                match place_on(&now, spec(w), &land).0 {
+                    Err(_) => FLOW_AGAIN_PSI,
+                    // On its floor a well has no rate to give way to: the same room is asked for there.
+                    Ok(Mode::Floor) => short.max(FLOW_AGAIN_PSI - now.height_psi(self.floor_rate(w, &now))),
+                    Ok(_) => short,
+                }
+            }
         }
-    }
-
-    /// The flow margin within the rates that target and floor allow, psi: what a dead well must have again to return.
-    fn return_margin(&self, w: usize, now: &WellNow) -> f64 {
-        let cap = self.floor_rate(w, now).min(self.setup.wells[w].spec.target_rate_stb_d.unwrap_or(f64::INFINITY));
-        let open = now.curve.open_flow_stb_d().min(cap);
-        if open > 0.0 { survey(|q| now.height_psi(q), open).margin_psi } else { -FLOW_AGAIN_PSI }
     }
 
     /// The lowest place between the top of the hump and the operating point that has higher ground on its right: rate, and how much

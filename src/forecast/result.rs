@@ -258,13 +258,55 @@ pub struct CurveSet {
     pub flow_margin_psi: f64,
 }
 
+/// What one tubing model makes of a well.
+#[derive(Debug, Clone, PartialEq)]
+pub enum ModelOutcome {
+    /// Natural flow ends.
+    Ends(FlowEnd),
+    /// The well still flows at the end of the forecast.
+    StillFlows,
+    /// The forecast cannot be run with this model, for this reason.
+    Failed(String),
+}
+
 /// The end of natural flow with one tubing model.
-#[derive(Debug, Clone, Copy, PartialEq)]
+#[derive(Debug, Clone, PartialEq)]
 pub struct ModelEnd {
     /// Name of the tubing model, as in the scenario file.
     pub method: &'static str,
-    /// The end; `None`: the well still flows at the end of the run.
-    pub end: Option<FlowEnd>,
+    /// What it makes of the well.
+    pub outcome: ModelOutcome,
+}
+
+/// The end of natural flow over the applicable tubing models, the well's own first.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Spread {
+    /// One entry per model.
+    pub models: Vec<ModelEnd>,
+}
+
+impl Spread {
+    /// The earliest end and its model.
+    pub fn earliest(&self) -> Option<(&'static str, &FlowEnd)> {
+        self.ends().min_by(|a, b| a.1.days.total_cmp(&b.1.days))
+    }
+
+    /// The latest end and its model; `None` when no model ends the flow. Models with which the well still flows lie beyond it.
+    pub fn latest(&self) -> Option<(&'static str, &FlowEnd)> {
+        self.ends().max_by(|a, b| a.1.days.total_cmp(&b.1.days))
+    }
+
+    /// The models with which the well still flows at the end of the forecast.
+    pub fn still_flowing(&self) -> Vec<&'static str> {
+        self.models.iter().filter(|m| m.outcome == ModelOutcome::StillFlows).map(|m| m.method).collect()
+    }
+
+    fn ends(&self) -> impl Iterator<Item = (&'static str, &FlowEnd)> {
+        self.models.iter().filter_map(|m| match &m.outcome {
+            ModelOutcome::Ends(end) => Some((m.method, end)),
+            _ => None,
+        })
+    }
 }
 
 /// One well of a finished forecast.
@@ -283,7 +325,7 @@ pub struct WellResult {
     /// Days from the start after which the well could not start again from a shut-in against its own dead column.
     pub restart_until: Option<f64>,
     /// The end of natural flow over the applicable tubing models, once computed.
-    pub spread: Option<Vec<ModelEnd>>,
+    pub spread: Option<Spread>,
     /// Highest producing gas-oil ratio, scf/STB, over period ends.
     pub peak_gor_scf_stb: f64,
     /// Inflow equation in words and figures ("Fetkovich, C = 7.9e-4 STB/d/psi^2n, n = 0.85 fitted to 3 tests").
@@ -314,6 +356,8 @@ pub enum DoubtKind {
     UnlikelyValue,
     /// A test that the model does not reproduce.
     TestMismatch,
+    /// A model that met no measurement, or models that lie far apart.
+    ModelChoice,
     /// A fit that is weak or unphysical.
     WeakFit,
     /// A measured pressure that the computed state does not meet.

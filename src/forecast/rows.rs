@@ -9,7 +9,7 @@ use super::{
     DriveIndices, Forecast, InjectedFluid, InjectorResult, InjectorRow, Period, TankRow, Tolerance, WellResult, WellRow,
 };
 use crate::tank::{Cumulatives, TankState};
-use crate::well::{Landscape, WellNow, follow_top};
+use crate::well::{LOOK_FROM, LOOK_TO, Landscape, WellNow, follow_top};
 
 /// Height to which the crossings of rows are resolved, psi: far below what a row shows.
 const ROW_CROSSING_PSI: f64 = 1e-3;
@@ -110,6 +110,13 @@ pub(super) fn piece_at(pieces: &[Piece], t_days: f64) -> Option<&Piece> {
     pieces.get(i).or_else(|| pieces.last())
 }
 
+/// A cumulative volume from its scaled state: where nothing flows, the rounding of the interpolant does not make it fall.
+fn grown(scaled: f64, before: f64, scale: f64) -> f64 {
+    const ROUNDING: f64 = 1e-10;
+    let cum = scaled * scale;
+    if cum < before && before - cum < ROUNDING * scale { before } else { cum }
+}
+
 struct Rows<'a> {
     field: &'a Field,
     trace: &'a Trace,
@@ -185,9 +192,9 @@ impl<'a> Rows<'a> {
     ) -> WellRow {
         let (layout, initial) = (dynamics.layout(), self.field.tank().initial());
         let before = self.wells[w].last().copied().unwrap_or_default();
-        let oil_cum = y[layout.oil(w)] * initial.oil_stb;
-        let water_cum = y[layout.water(w)] * initial.oil_stb;
-        let gas_cum = y[layout.gas(w)] * initial.gas_scf;
+        let oil_cum = grown(y[layout.oil(w)], before.oil_cum_stb, initial.oil_stb);
+        let water_cum = grown(y[layout.water(w)], before.water_cum_stb, initial.oil_stb);
+        let gas_cum = grown(y[layout.gas(w)], before.gas_cum_scf, initial.gas_scf);
         let mut row = WellRow {
             oil_stb: oil_cum - before.oil_cum_stb,
             water_stb: water_cum - before.water_cum_stb,
@@ -237,7 +244,7 @@ impl<'a> Rows<'a> {
         }
         let known = &mut self.margins[w];
         if known.rate_stb_d > 0.0 && known.rate_stb_d < 0.99 * open {
-            let (rate, margin) = follow_top(|q| now.height_psi(q), known.rate_stb_d, 0.005 * open, 0.999 * open);
+            let (rate, margin) = follow_top(|q| now.height_psi(q), known.rate_stb_d, LOOK_FROM * open, LOOK_TO * open);
             *known = Margin { rate_stb_d: rate, age: known.age + 1 };
             let elsewhere = |part: f64| now.height_psi(part * open);
             if known.age < ROWS_PER_LOOK || !LOOKS.into_iter().any(|part| elsewhere(part) > margin) {
@@ -253,7 +260,7 @@ impl<'a> Rows<'a> {
     /// Rate at which the tubing curve is lowest, STB/d: left of it the flow heads. Sought up to open flow.
     fn tubing_minimum(&mut self, w: usize, now: &WellNow) -> f64 {
         let open = now.curve.open_flow_stb_d();
-        let (low, high) = (0.005 * open, 0.999 * open);
+        let (low, high) = (LOOK_FROM * open, LOOK_TO * open);
         let height = |q: f64| -now.tubing_psia(q);
         let known = &mut self.minima[w];
         if !(*known > low && *known < high) {
@@ -288,7 +295,8 @@ impl<'a> Rows<'a> {
         let (layout, scale) = (dynamics.layout(), dynamics.injected_scale(i));
         let injector = &dynamics.setup.injectors[i];
         let before = self.injectors[i].last().copied().unwrap_or_default();
-        let total = y[layout.injected(i)] * scale;
+        let cum_before = before.water_cum_stb + before.gas_cum_scf;
+        let total = grown(y[layout.injected(i)], cum_before, scale);
         let asked = y[layout.asked(i)] * scale;
         let asked_before = self.seen.asked[i];
         self.seen.asked[i] = asked;
@@ -323,8 +331,13 @@ impl<'a> Rows<'a> {
         (oil, gas, water): (f64, f64, f64),
         index: usize,
     ) {
-        let total = dynamics.cumulatives(y);
-        let balance = self.field.tank().balance(&total, tank);
+        let balance = self.field.tank().balance(&dynamics.cumulatives(y), tank);
+        let mut total = Cumulatives::default();
+        for row in self.wells.iter().filter_map(|rows| rows.last()) {
+            total.oil_stb += row.oil_cum_stb;
+            total.gas_scf += row.gas_cum_scf;
+            total.water_stb += row.water_cum_stb;
+        }
         let before = self.last;
         self.last = total;
         let (injected_water_stb, injected_gas_scf) = self

@@ -1,7 +1,7 @@
 //! A well, prepared: its tubing, its inflow fitted to the tests, and how both look at one instant.
 
 use super::WellSpec;
-use super::meeting::{Landscape, survey};
+use super::meeting::{Landscape, survey_above};
 use crate::fault::Fault;
 use crate::fluid::BlackOil;
 use crate::inflow::{
@@ -376,7 +376,12 @@ impl<'a> WellNow<'a> {
 
     /// The landscape of heights over all rates.
     pub fn survey(&self) -> Landscape {
-        survey(|q| self.height_psi(q), self.curve.open_flow_stb_d())
+        self.survey_above(0.0)
+    }
+
+    /// The same, where a hump counts as a place to flow only when it reaches above `least_psi`.
+    pub fn survey_above(&self, least_psi: f64) -> Landscape {
+        survey_above(|q| self.height_psi(q), self.curve.open_flow_stb_d(), least_psi)
     }
 
     /// Wellhead pressure of the choked well, psia; line pressure where the march up does not reach the surface.
