@@ -4,7 +4,10 @@
 mod common;
 
 use common::{case, near, numbers};
-use wane::inflow::{Conditions, FutureRule, Inflow, InflowCurve, InflowMethod, RateBasis, Shape, TestPoint, fit_tests};
+use wane::inflow::{
+    Conditions, FutureRule, Inflow, InflowCurve, InflowMethod, RateBasis, Shape, TestPoint, fit_saturated_below_datum,
+    fit_tests,
+};
 
 fn curve(shape: Shape, j: f64, pr: f64, pb: f64) -> InflowCurve {
     InflowCurve::new(shape, j, pr, pr.min(pb))
@@ -145,6 +148,28 @@ fn synthetic_tests_are_recovered() {
         .into();
     let fit = fit_tests(InflowMethod::Fetkovich, None, &straddling).unwrap();
     near(fit.coefficient * 2.0 * 2650.0, 1.7, 1e-12, "J of straddling tests");
+}
+
+/// Exact tests of a saturated tank in a well 250 ft below the datum (built from the module's own composite equation by hand) come back.
+#[test]
+fn saturated_tests_below_the_datum_are_recovered() {
+    let (n, c_per_psi) = (0.85, 3e-7);
+    let points: Vec<TestPoint> = [(2500.0, 2100.0), (2500.0, 1400.0), (2200.0, 1000.0)]
+        .map(|(pe, pwf): (f64, f64)| {
+            let pr = pe + 80.0;
+            let bracket = 2.0 * pe.powf(2.0 * n - 1.0) * (pr - pe) + (pe * pe - pwf * pwf).powf(n);
+            TestPoint {
+                reservoir_psia: pr,
+                effective_psia: pe,
+                flowing_psia: pwf,
+                rate_stb_d: c_per_psi * pe * bracket,
+            }
+        })
+        .into();
+    let fit = fit_saturated_below_datum(&points).unwrap();
+    let Shape::Fetkovich { n: found } = fit.shape else { panic!("shape") };
+    near(found, n, 1e-9, "n");
+    near(fit.coefficient, c_per_psi * 2500.0, 1e-9, "C at the first test's pressure");
 }
 
 /// Practice: the composite curve has one value and one slope at the bubble point (Fetkovich with n = 1, Vogel).

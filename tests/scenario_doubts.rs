@@ -24,7 +24,7 @@ fn each_slip_raises_its_own_doubt() {
     };
     let gauged = one_test("flowing = \"3170 psia\"");
     let separator = one_test("wellhead = \"410 psia\", gor = \"310 scf/STB\"");
-    let low_wellhead = one_test("wellhead = \"110 psia\", gor = \"620 scf/STB\"");
+    let low_wellhead = one_test("wellhead = \"60 psia\", gor = \"620 scf/STB\"");
     let old = gauged.replace("2026-10-12", "2024-10-12");
     let late = gauged.replace("2026-10-12", "2027-10-12");
     let other_pressure = gauged.replace("3600 psia", "3210 psia");
@@ -37,7 +37,7 @@ fn each_slip_raises_its_own_doubt() {
         (vec!["fluid.solution_gor=2600 scf/STB"], K::UnlikelyValue, "fluid", "gas-oil ratio is 2600 scf/STB"),
         (vec!["fluid.solution_gor=2100 scf/STB"], K::NotModelled, "fluid", "volatile oil"),
         (vec!["fluid.oil_gravity=48 API"], K::NotModelled, "fluid", "volatile oil"),
-        (vec!["tank.temperature=500 degF"], K::UnlikelyValue, "tank", "temperature is 500 degF"),
+        (vec!["tank.temperature=430 degF"], K::UnlikelyValue, "tank", "temperature is 430 degF"),
         (vec!["tank.connate_water=0.022"], K::UnlikelyValue, "tank", "connate water"),
         (vec!["tank.pore_compressibility=4e-4 1/psi"], K::UnlikelyValue, "tank", "pore compressibility is 400"),
         (vec!["tank.gas_cap_ratio=0.5", "fluid.bubble_point=3600 psia"], K::NotModelled, "tank", "gas cap of 0.5"),

@@ -48,7 +48,7 @@ pub fn fit_tests(method: InflowMethod, exponent: Option<f64>, points: &[TestPoin
     let saturated = points.iter().all(|p| p.reservoir_psia <= p.effective_psia * (1.0 + 1e-9));
     let free_n = method == InflowMethod::Fetkovich && exponent.is_none() && saturated && points.len() > 1;
     let (shape, coefficient) = if free_n {
-        let (n, c) = log_log(points)?;
+        let (n, c) = log_log(points, |p| (p.reservoir_psia - p.flowing_psia) * (p.reservoir_psia + p.flowing_psia))?;
         (Shape::Fetkovich { n }, c * reference)
     } else {
         let shape = match method {
@@ -94,14 +94,35 @@ fn coefficient_through_origin(shape: Shape, points: &[TestPoint], reference: f64
     xq / xx
 }
 
-/// Exponent and C/pr of the straight line ln(q/pr) = ln(C/pr) + n*ln(pr^2 - pwf^2).
-fn log_log(points: &[TestPoint]) -> Result<(f64, f64), String> {
+/// Saturated tests, perforations below the tank's datum: there pr stands above pe, the tank's pressure, and each rate is
+/// `C*[2*pe^(2n-1)*(pr - pe) + (pe^2 - pwf^2)^n]`. Least squares as for other saturated tests with that bracket to the power 1/n in
+/// place of `pr^2 - pwf^2`, repeated until n stands; with pe = pr the first pass is the answer.
+///
+/// # Errors
+/// As [`fit_tests`].
+pub fn fit_saturated_below_datum(points: &[TestPoint]) -> Result<Fit, String> {
+    const PASSES: usize = 50;
+    let mut n = log_log(points, |p| (p.reservoir_psia - p.flowing_psia) * (p.reservoir_psia + p.flowing_psia))?.0;
+    for _ in 0..PASSES {
+        let shape = Shape::Fetkovich { n };
+        let next = log_log(points, |p| unit_rate(shape, p).powf(1.0 / n))?.0;
+        let change = (next - n).abs();
+        n = next;
+        if change < 1e-12 {
+            break;
+        }
+    }
+    Ok(Fit { n_fitted: true, ..fit_tests(InflowMethod::Fetkovich, Some(n), points)? })
+}
+
+/// Exponent and C/pe of the straight line ln(q/pe) = ln(C/pe) + n*ln(squares), the squares being pr^2 - pwf^2 on a saturated reservoir.
+fn log_log(points: &[TestPoint], squares: impl Fn(&TestPoint) -> f64) -> Result<(f64, f64), String> {
     let rows = points.len();
-    let log_x = |p: &TestPoint| ((p.reservoir_psia - p.flowing_psia) * (p.reservoir_psia + p.flowing_psia)).ln();
+    let log_x = |p: &TestPoint| squares(p).ln();
     let mean = points.iter().map(log_x).sum::<f64>() / rows as f64;
     // Centred, so that the two columns are orthogonal and nothing cancels.
     let a = DMatrix::from_fn(rows, 2, |i, j| if j == 0 { 1.0 } else { log_x(&points[i]) - mean });
-    let b = DVector::from_fn(rows, |i, _| (points[i].rate_stb_d / points[i].reservoir_psia).ln());
+    let b = DVector::from_fn(rows, |i, _| (points[i].rate_stb_d / points[i].effective_psia).ln());
     let solution = a.svd(true, true).solve(&b, 1e-9).map_err(str::to_owned)?;
     let n = solution[1];
     if !(n.is_finite() && n > 0.05 && n < 5.0) {

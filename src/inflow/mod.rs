@@ -22,7 +22,7 @@ mod fit;
 mod spec;
 
 pub use curve::{InflowCurve, Shape};
-pub use fit::{Fit, TestPoint, fit_tests};
+pub use fit::{Fit, TestPoint, fit_saturated_below_datum, fit_tests};
 pub use spec::{Coefficient, FutureRule, InflowMethod, InflowSpec, InflowTest, Measured, RateBasis};
 
 /// What the inflow of a well follows as the tank changes.

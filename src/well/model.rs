@@ -6,7 +6,7 @@ use crate::fault::Fault;
 use crate::fluid::BlackOil;
 use crate::inflow::{
     Coefficient, Conditions, Fit, Inflow, InflowCurve, InflowMethod, InflowSpec, Measured, RateBasis, Shape, TestPoint,
-    fit_tests,
+    fit_saturated_below_datum, fit_tests,
 };
 use crate::tank::{Tank, TankState};
 use crate::tubing::{Stream, TraversePoint, Tubing, TubingMethod};
@@ -291,20 +291,15 @@ fn fit_inflow(
     }
 }
 
-/// Fits the points. Perforations below the datum stand above the bubble point of a saturated tank: its tests give n all the same,
-/// and then the coefficient of the composite curve that the forecast uses.
+/// Fits the points. Perforations below the datum stand above the bubble point of a saturated tank: its tests give n all the same.
 fn fit_points(inflow: &InflowSpec, points: &[TestPoint], saturated: bool) -> Result<Fit, String> {
     let below_datum = points.iter().any(|p| p.reservoir_psia > p.effective_psia * (1.0 + 1e-9));
-    if !(saturated && below_datum) {
-        return fit_tests(inflow.method, inflow.exponent, points);
+    let free_n = inflow.method == InflowMethod::Fetkovich && inflow.exponent.is_none() && points.len() > 1;
+    if saturated && below_datum && free_n {
+        fit_saturated_below_datum(points)
+    } else {
+        fit_tests(inflow.method, inflow.exponent, points)
     }
-    let at_own_depth: Vec<_> = points.iter().map(|p| TestPoint { effective_psia: p.reservoir_psia, ..*p }).collect();
-    let free = fit_tests(inflow.method, inflow.exponent, &at_own_depth)?;
-    let exponent = match free.shape {
-        Shape::Fetkovich { n } => Some(n),
-        Shape::Straight | Shape::Vogel => inflow.exponent,
-    };
-    Ok(Fit { n_fitted: free.n_fitted, ..fit_tests(inflow.method, exponent, points)? })
 }
 
 /// What the traverses of a run leave behind: their number, and whether the last one came near to sonic speed.
