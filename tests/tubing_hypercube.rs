@@ -50,10 +50,16 @@ fn default_accuracy_holds_over_a_hypercube_of_wells() {
             let height_ft = depth_ft * x(6, 0.0, 60.0).to_radians().cos();
             let spec = TubingSpec {
                 method,
-                sections: vec![TubingSection { to_md_ft: f64::INFINITY, diameter_in, roughness_in: 0.0006 }],
+                sections: vec![TubingSection {
+                    to_md_ft: f64::INFINITY,
+                    diameter_in,
+                    roughness_in: 0.0006,
+                    inner_pipe_in: 0.0,
+                }],
                 survey: vec![(0.0, 0.0), (depth_ft, height_ft)],
                 slip_factor: 1.0,
                 wellhead_temperature_degf: 110.0,
+                temperatures: Vec::new(),
             };
             let stream = Stream { liquid_rate_stb_d, water_cut, gor_scf_stb };
             let [usual, fine] = [0.02, 2e-5].map(|psi| Tubing::new(&spec, None, 190.0, psi).expect("a sound well"));

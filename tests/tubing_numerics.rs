@@ -31,11 +31,17 @@ fn well(method: TubingMethod, sections: &[(f64, f64)], survey: &[(f64, f64)], we
         method,
         sections: sections
             .iter()
-            .map(|&(to_md_ft, diameter_in)| TubingSection { to_md_ft, diameter_in, roughness_in: 0.0006 })
+            .map(|&(to_md_ft, diameter_in)| TubingSection {
+                to_md_ft,
+                diameter_in,
+                roughness_in: 0.0006,
+                inner_pipe_in: 0.0,
+            })
             .collect(),
         survey: survey.to_vec(),
         slip_factor: 1.0,
         wellhead_temperature_degf: wellhead_degf,
+        temperatures: Vec::new(),
     }
 }
 
