@@ -1,7 +1,7 @@
 //! Where a branch of a model ends inside a step.
 //!
 //! The margin that the model reports is followed along the cubic Hermite interpolant of the step to its sign change; a
-//! new step ends there, and its end is corrected by secants.
+//! new step ends there, and its end is corrected by a secant.
 
 use super::march::{March, Slope, Step};
 use super::model::{Branch, Hydraulics};
@@ -71,7 +71,7 @@ impl<M: Hydraulics> March<'_, M> {
         Some(0.5 * (inside + beyond))
     }
 
-    /// The border near the end of a step that was to end on it, by secants on the margin; `None` when the step missed it.
+    /// The border near the end of a step that was to end on it, by a secant on the margin; `None` when the step missed it.
     pub(super) fn corrected(
         &self,
         stretch: &Stretch,
@@ -86,15 +86,8 @@ impl<M: Hydraulics> March<'_, M> {
         let before = self.slope(stretch, md + 0.98 * h, pressure, branch);
         let shift = -step.end.margin * back / (before.margin - step.end.margin);
         let bend = (before.psi_ft - step.end.psi_ft) / back;
-        if shift.is_nan() || shift.abs() > 0.02 * h.abs() {
-            return None;
-        }
-        let at = |shift: f64| (md + h + shift, step.pressure_psia + shift * (step.end.psi_ft + 0.5 * shift * bend));
-        // A second secant: after a long step the first one's error would exceed the look ahead to the next branch.
-        let (near_ft, near_psia) = at(shift);
-        let left = self.slope(stretch, near_ft, near_psia, branch).margin;
-        let more = -left * shift / (left - step.end.margin);
-        Some(at(if more.abs() < shift.abs() { shift + more } else { shift }))
+        let at = (md + h + shift, step.pressure_psia + shift * (step.end.psi_ft + 0.5 * shift * bend));
+        (shift.abs() <= 0.02 * h.abs()).then_some(at)
     }
 }
 
