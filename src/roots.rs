@@ -73,7 +73,7 @@ pub fn brent(mut f: impl FnMut(f64) -> f64, a: (f64, f64), b: (f64, f64), tolera
 pub fn maximise(mut f: impl FnMut(f64) -> f64, a: f64, x: f64, b: f64, tolerance: f64) -> (f64, f64) {
     const GOLD: f64 = 0.381_966_011_250_105_1;
     let (mut a, mut b) = (a, b);
-    let mut x = x.clamp(a, b);
+    let mut x = x.max(a).min(b);
     let mut fx = f(x);
     let (mut w, mut v, mut fw, mut fv) = (x, x, fx, fx);
     let (mut d, mut e) = (0.0_f64, 0.0_f64);

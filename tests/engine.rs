@@ -72,12 +72,15 @@ fn ends_agree_with_tighter_tolerances() {
                 continue;
             }
             ended += 1;
-            spec.tolerance = Tolerance::Reference;
-            let reference = holds(&spec);
-            let (n, t, r) = (end_days(&normal, 0), end_days(&tight, 0), end_days(&reference, 0));
-            println!("{name}: {n:.4} {t:.4} {r:.4}, {:?}", normal.work);
+            let (n, t) = (end_days(&normal, 0), end_days(&tight, 0));
+            println!("{name}: {n:.4} {t:.4}, {:?}", normal.work);
             assert!((n - t).abs() <= 0.5, "{name}: normal {n} against tight {t} days");
-            assert!((t - r).abs() <= 0.1, "{name}: tight {t} against reference {r} days");
+            // A hundred times tighter again takes long: once per model is enough.
+            if ended == 1 {
+                spec.tolerance = Tolerance::Reference;
+                let r = end_days(&holds(&spec), 0);
+                assert!((t - r).abs() <= 0.1, "{name}: tight {t} against reference {r} days");
+            }
         }
         // Without slip the tubing curve hardly turns up at low rates: such wells do not die of it.
         assert!(ended > 0 || method == TubingMethod::NoSlip, "{}: no run ended", method.name());
@@ -325,4 +328,26 @@ fn a_tank_flooded_beyond_its_fluid_is_a_named_error() {
     spec.injectors = vec![injector("WI", InjectedFluid::Water, InjectionControl::Rate(200_000.0))];
     let error = run(&spec).unwrap_err().to_string();
     assert!(error.contains("too much is injected"), "{error}");
+}
+
+/// Two minima of the tubing curve: the hump on which the well flows parts from the other one and ends while natural flow goes on.
+#[test]
+fn losing_the_right_hand_hump_is_a_rate_jump_and_not_the_end() {
+    let path = concat!(env!("CARGO_MANIFEST_DIR"), "/scenarios/injection.toml");
+    let scenario = wane::scenario::Document::load(path.as_ref()).unwrap().resolve(None, &[]).unwrap();
+    let f = holds(&scenario.field);
+    let jump = f.events.iter().find(|e| e.kind == EventKind::RateJump).expect("a rate jump");
+    let end = f.wells[0].natural_flow_end.unwrap();
+    assert!(jump.days < end.days && end.reason == StopReason::NoCrossing);
+    let rate = |days: f64| {
+        let i = f.periods.iter().position(|p| p.end_days >= days).unwrap();
+        f.wells[0].rows[i].liquid_rate_stb_d.unwrap()
+    };
+    assert!(rate(jump.days - 31.0) > 1.2 * rate(jump.days + 31.0), "the rate jumps");
+    let mut tight = scenario.field.clone();
+    tight.tolerance = Tolerance::Tight;
+    let t = holds(&tight);
+    let again = t.events.iter().find(|e| e.kind == EventKind::RateJump).unwrap();
+    assert!((again.days - jump.days).abs() < 0.1, "jump at {} and {}", jump.days, again.days);
+    assert!((end_days(&t, 0) - end.days).abs() < 0.1);
 }

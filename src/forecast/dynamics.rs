@@ -2,24 +2,31 @@
 
 use super::field::{Field, Setup, injected_fvf, injection_limit};
 use super::integrate::Problem;
-use super::{InjectedFluid, InjectionControl, StopReason, Tolerance};
+use super::placement::place_on;
+use super::{InjectedFluid, InjectionControl, StopReason};
 use crate::roots::brent;
 use crate::tank::{ClosureError, Cumulatives, TankState};
-use crate::well::{Gauge, WellNow, oil_gradient_psi_ft, right_crossing, top_near};
+use crate::well::{Gauge, LOOK_FROM, LOOK_TO, WellNow, follow_top, oil_gradient_psi_ft, right_crossing, top_near};
 use std::cell::{Cell, RefCell};
 
 /// Height in psi by which the target (or floor) must be out of reach before it is taken up again, so that modes never flicker.
 const REGAIN_PSI: f64 = 0.01;
 /// Flow margin at which a dead well may flow again, psi.
 pub(super) const FLOW_AGAIN_PSI: f64 = 1.0;
+/// Depth from which a valley between the top of a hump and the operating point parts the hump in two, psi.
+const VALLEY_PSI: f64 = 0.1;
 /// Height that shows without further search that natural flow is not about to end, psi.
 const CLEAR_MARGIN_PSI: f64 = 25.0;
 /// Free-gas excess that counts as a change of side at the bubble point, scf/STB.
 const BUBBLE_POINT_SLACK_SCF_STB: f64 = 1e-6;
 /// The same for the critical gas saturation.
 const CRITICAL_GAS_SLACK: f64 = 1e-9;
+/// Days within which another crossing counts as soon.
+const SOON_DAYS: f64 = 30.0;
 /// Relative slack of an injection limit.
 const LIMIT_SLACK: f64 = 1e-6;
+/// Slack in psi of an injector shut in by its bottom-hole limit.
+const SHUT_SLACK_PSI: f64 = 1e-3;
 
 /// What a well does.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -41,6 +48,22 @@ pub(super) enum Mode {
     Stopped(StopReason),
 }
 
+impl Modes {
+    pub fn new(wells: usize, injectors: usize, saturated: bool, gas_mobile: bool) -> Self {
+        Self {
+            wells: vec![Mode::Waiting; wells],
+            watch_return: vec![false; wells],
+            injecting: vec![false; injectors],
+            limited: vec![false; injectors],
+            saturated,
+            gas_mobile,
+            bubble_point_slack: Slack::new(BUBBLE_POINT_SLACK_SCF_STB),
+            critical_gas_slack: Slack::new(CRITICAL_GAS_SLACK),
+            held_shut: vec![false; injectors],
+        }
+    }
+}
+
 impl Mode {
     pub fn flows(self) -> bool {
         matches!(self, Self::Target | Self::Floor | Self::Line { .. })
@@ -54,6 +77,8 @@ pub(super) enum Watch {
     TargetAbove(usize),
     FloorAbove(usize),
     MarginGone(usize),
+    /// A valley has opened between the top of the hump and the operating point: from now on they are two humps.
+    Valley(usize),
     RightHump(usize),
     MinimumRate(usize),
     WaterCut(usize),
@@ -62,6 +87,28 @@ pub(super) enum Watch {
     BubblePoint,
     CriticalGas,
     InjectorLimit(usize),
+    /// The tank's pressure passes the injector's bottom-hole limit, where the allowed rate is bent at zero.
+    InjectorShut(usize),
+}
+
+/// Room around a border. A tank can settle right on one of its borders; each crossing soon after the last one widens the room,
+/// so that rounding does not cut the run into slivers. Only the integrator's restarts hang on it, not the physics.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Slack {
+    pub now: f64,
+    least: f64,
+    last_days: f64,
+}
+
+impl Slack {
+    fn new(least: f64) -> Self {
+        Self { now: least, least, last_days: f64::NEG_INFINITY }
+    }
+
+    pub fn crossed(&mut self, t_days: f64) {
+        self.now = if t_days - self.last_days < SOON_DAYS { 10.0 * self.now } else { self.least };
+        self.last_days = t_days;
+    }
 }
 
 /// Discrete state of a stretch.
@@ -74,6 +121,11 @@ pub(super) struct Modes {
     pub limited: Vec<bool>,
     pub saturated: bool,
     pub gas_mobile: bool,
+    /// How far beyond the bubble point, scf/STB, and the critical gas saturation the tank goes before it counts as a crossing.
+    pub bubble_point_slack: Slack,
+    pub critical_gas_slack: Slack,
+    /// Injectors shut in by their bottom-hole limit.
+    pub held_shut: Vec<bool>,
 }
 
 /// Where a well was found last.
@@ -82,9 +134,26 @@ pub(super) struct Spot {
     pub rate_stb_d: f64,
     pub slope: f64,
     pub top_rate_stb_d: f64,
+    /// The valley on the left of a hump that is not the left-most; 0: not known yet.
+    pub low_rate_stb_d: f64,
     /// Tank pressure at which the rate was found, psia, and the change of rate with it, STB/d/psi.
     pub pressure_psia: f64,
     pub per_pressure: f64,
+    /// The conditions under which the rate was found: the same ones need no search.
+    pub found_under: Option<[f64; 4]>,
+}
+
+impl Spot {
+    /// Where the hump on which the well flows begins, STB/d; `low` is the part of open flow at which it was seen first.
+    fn left_end(&self, low: f64, open_flow_stb_d: f64) -> f64 {
+        if low <= 0.0 {
+            LOOK_FROM * open_flow_stb_d
+        } else if self.low_rate_stb_d > 0.0 {
+            self.low_rate_stb_d
+        } else {
+            low * open_flow_stb_d
+        }
+    }
 }
 
 /// Offsets into the scaled state vector.
@@ -127,6 +196,8 @@ pub(super) struct Memory {
     pub pressure_psia: Cell<f64>,
     pub spots: RefCell<Vec<Spot>>,
     pub gauge: Gauge,
+    /// Height to which crossings are resolved, psi.
+    pub crossing_psi: Cell<f64>,
     pub closures: Cell<u64>,
 }
 
@@ -155,7 +226,7 @@ impl<'a> Dynamics<'a> {
                     }
                 }
                 Mode::Target | Mode::Floor => watches.push(Watch::CapLost(w)),
-                Mode::Line { .. } => watches.extend([Watch::MarginGone(w), Watch::RightHump(w)]),
+                Mode::Line { .. } => watches.extend([Watch::MarginGone(w), Watch::RightHump(w), Watch::Valley(w)]),
             }
             if mode.flows() {
                 if spec.target_rate_stb_d.is_some() && *mode != Mode::Target {
@@ -175,7 +246,12 @@ impl<'a> Dynamics<'a> {
                 }
             }
         }
-        watches.extend((0..setup.injectors.len()).filter(|&i| modes.injecting[i]).map(Watch::InjectorLimit));
+        for i in (0..setup.injectors.len()).filter(|&i| modes.injecting[i]) {
+            watches.push(Watch::InjectorLimit(i));
+            if setup.injectors[i].bottomhole_limit_psia.is_some() && setup.injectors[i].injectivity.is_some() {
+                watches.push(Watch::InjectorShut(i));
+            }
+        }
         Self { field, setup, modes, memory, watches }
     }
 
@@ -246,51 +322,64 @@ impl<'a> Dynamics<'a> {
     /// step over the end of natural flow and find it between two valid states.
     fn line_rate(&self, w: usize, now: &WellNow, low: f64, high: f64) -> f64 {
         let open = now.curve.open_flow_stb_d();
-        let bounds = (low * open, high * open);
         let spot = self.memory.spots.borrow()[w];
+        let bounds = (spot.left_end(low, open), high * open);
         let height = |q: f64| now.height_psi(q);
         let reservoir = now.curve.reservoir_psia();
+        let conditions = Some([reservoir, open, now.gor_scf_stb, now.water_cut]);
+        if spot.found_under == conditions {
+            return spot.rate_stb_d;
+        }
         // The rate moves with the pressure much as it did last time.
         let moved = reservoir - spot.pressure_psia;
         let start =
-            spot.rate_stb_d + (spot.per_pressure * moved).clamp(-0.05 * spot.rate_stb_d, 0.05 * spot.rate_stb_d);
-        if let Some((rate, slope)) = right_crossing(height, start, spot.slope, self.crossing_psi(), bounds) {
+            spot.rate_stb_d + (spot.per_pressure * moved).max(-0.05 * spot.rate_stb_d).min(0.05 * spot.rate_stb_d);
+        if let Some((rate, slope)) = right_crossing(height, start, spot.slope, self.memory.crossing_psi.get(), bounds) {
             self.remember(w, |s| {
                 if moved.abs() > 1e-3 {
                     s.per_pressure = (rate - s.rate_stb_d) / moved;
                 }
                 (s.rate_stb_d, s.slope, s.pressure_psia) = (rate, slope, reservoir);
+                s.found_under = conditions;
             });
             return rate;
         }
         let guess = if spot.top_rate_stb_d > 0.0 { spot.top_rate_stb_d } else { 0.3 * open };
-        let (top_rate, top) = top_near(height, guess, bounds.0, bounds.1.min(0.9999 * open));
+        let (top_rate, top) = follow_top(height, guess, bounds.0, bounds.1.min(LOOK_TO * open));
         if top <= 0.0 {
             self.remember(w, |s| s.top_rate_stb_d = top_rate);
             return top_rate;
+        }
+        // Near its end a hump is a parabola: through its top and one point beyond it.
+        let beyond = spot.rate_stb_d;
+        if beyond > 1.001 * top_rate && beyond < bounds.1 {
+            let bend = (top - height(beyond)) / (beyond - top_rate).powi(2);
+            let reach = (top / bend).sqrt();
+            if bend > 0.0
+                && let Some((rate, slope)) = right_crossing(
+                    height,
+                    top_rate + reach,
+                    -2.0 * bend * reach,
+                    self.memory.crossing_psi.get(),
+                    bounds,
+                )
+            {
+                self.remember(w, |s| {
+                    (s.rate_stb_d, s.slope, s.top_rate_stb_d) = (rate, slope, top_rate);
+                    (s.pressure_psia, s.per_pressure, s.found_under) = (reservoir, 0.0, conditions);
+                });
+                return rate;
+            }
         }
         let right = (bounds.1, height(bounds.1));
         let rate = if right.1 >= 0.0 { right.0 } else { brent(height, (top_rate, top), right, 1e-11 * open) };
         let nudge = 1e-4 * rate;
         let slope = (height(rate + nudge) - height(rate - nudge)) / (2.0 * nudge);
         self.remember(w, |s| {
-            *s = Spot {
-                rate_stb_d: rate,
-                slope,
-                top_rate_stb_d: top_rate,
-                pressure_psia: now.curve.reservoir_psia(),
-                per_pressure: 0.0,
-            };
+            (s.rate_stb_d, s.slope, s.top_rate_stb_d) = (rate, slope, top_rate);
+            (s.pressure_psia, s.per_pressure, s.found_under) = (reservoir, 0.0, conditions);
         });
         rate
-    }
-
-    /// Height to which crossings are resolved, psi: some hundred times finer than the integrator's tolerance needs.
-    fn crossing_psi(&self) -> f64 {
-        match self.field.spec.tolerance {
-            Tolerance::Normal => 2e-6,
-            Tolerance::Tight | Tolerance::Reference => 1e-7,
-        }
     }
 
     pub fn remember(&self, w: usize, change: impl FnOnce(&mut Spot)) {
@@ -302,8 +391,14 @@ impl<'a> Dynamics<'a> {
         let open = now.curve.open_flow_stb_d();
         let spot = self.memory.spots.borrow()[w];
         let guess = if spot.top_rate_stb_d > 0.0 { spot.top_rate_stb_d } else { 0.3 * open };
-        let top = top_near(|q| now.height_psi(q), guess, low * open, (high * open).min(0.9999 * open));
+        let left = spot.left_end(low, open);
+        let top = top_near(|q| now.height_psi(q), guess, left, (high * open).min(LOOK_TO * open).max(left));
         self.remember(w, |s| s.top_rate_stb_d = top.0);
+        if low > 0.0 {
+            // The valley on the left moves too.
+            let valley = top_near(|q| -now.height_psi(q), left, 0.5 * left, top.0.max(0.6 * left));
+            self.remember(w, |s| s.low_rate_stb_d = valley.0);
+        }
         top
     }
 
@@ -346,11 +441,11 @@ impl<'a> Dynamics<'a> {
         match watch {
             Watch::BubblePoint => {
                 let side = if self.modes.saturated { 1.0 } else { -1.0 };
-                side * tank.excess_gas_scf_stb + BUBBLE_POINT_SLACK_SCF_STB
+                side * tank.excess_gas_scf_stb + self.modes.bubble_point_slack.now
             }
             Watch::CriticalGas => {
                 let above = tank.gas_saturation - self.setup.tank.relative_permeability().critical_gas();
-                (if self.modes.gas_mobile { above } else { -above }) + CRITICAL_GAS_SLACK
+                (if self.modes.gas_mobile { above } else { -above }) + self.modes.critical_gas_slack.now
             }
             Watch::InjectorLimit(i) => {
                 let (asked, _) = self.injection(i, tank, self.withdrawal_rb_d(tank));
@@ -361,6 +456,10 @@ impl<'a> Dynamics<'a> {
                 let scale = asked.max(limit).max(1e-9);
                 let spare = (limit - asked) / scale;
                 (if self.modes.limited[i] { -spare } else { spare }) + LIMIT_SLACK
+            }
+            Watch::InjectorShut(i) => {
+                let room = self.setup.injectors[i].bottomhole_limit_psia.unwrap_or(f64::INFINITY) - tank.pressure_psia;
+                (if self.modes.held_shut[i] { -room } else { room }) + SHUT_SLACK_PSI
             }
             Watch::CapLost(w) => {
                 let now = self.well_now(w, tank);
@@ -399,13 +498,17 @@ impl<'a> Dynamics<'a> {
                     Mode::Line { low, high } => {
                         // A rate at which the curves stand well apart answers the question without looking for the best one.
                         let known = self.memory.spots.borrow()[w].top_rate_stb_d;
-                        let there = if known > 0.0 { now.height_psi(known) } else { 0.0 };
+                        let there = if known > 0.0 && low <= 0.0 { now.height_psi(known) } else { 0.0 };
                         if there > CLEAR_MARGIN_PSI { there } else { self.top(w, &now, low, high).1 }
                     }
                     _ => 1.0,
                 }
             }
             Watch::RightHump(w) => self.right_hump(w, tank),
+            Watch::Valley(w) => {
+                let now = self.well_now(w, tank);
+                VALLEY_PSI - self.valley(w, &now).1
+            }
             Watch::MinimumRate(w) => {
                 let now = self.well_now(w, tank);
                 self.rate(w, &now) - spec(w).minimum_rate_stb_d.unwrap_or(0.0)
@@ -415,8 +518,48 @@ impl<'a> Dynamics<'a> {
                 let limit = spec(w).maximum_gor_scf_stb.unwrap_or(f64::INFINITY);
                 (limit - self.well_now(w, tank).gor_scf_stb) / limit
             }
-            Watch::FlowAgain(w) => FLOW_AGAIN_PSI - self.well_now(w, tank).survey().margin_psi,
+            Watch::FlowAgain(w) => {
+                let now = self.well_now(w, tank);
+                if now.curve.open_flow_stb_d() <= 0.0 {
+                    return FLOW_AGAIN_PSI;
+                }
+                let land = now.survey();
+                let short = FLOW_AGAIN_PSI - land.margin_psi;
+                // A margin alone does not help a well that one of its own limits would stop at once.
+                if short > 0.0 {
+                    return short;
+                }
+                match place_on(&now, spec(w), &land).0 {
+                    Err(_) => FLOW_AGAIN_PSI,
+                    // On its floor a well has no rate to give way to: the same room is asked for there.
+                    Ok(Mode::Floor) => short.max(FLOW_AGAIN_PSI - now.height_psi(self.floor_rate(w, &now))),
+                    Ok(_) => short,
+                }
+            }
         }
+    }
+
+    /// The lowest place between the top of the hump and the operating point that has higher ground on its right: rate, and how much
+    /// higher that ground is, psi.
+    pub fn valley(&self, w: usize, now: &WellNow) -> (f64, f64) {
+        const LOOKS: usize = 4;
+        let rate = self.rate(w, now);
+        let top = self.memory.spots.borrow()[w].top_rate_stb_d;
+        let mut lowest = (top, f64::INFINITY);
+        let mut found = (top, 0.0);
+        if top <= 0.0 || top >= rate {
+            return found;
+        }
+        for k in 1..=LOOKS {
+            let q = top + (rate - top) * k as f64 / (LOOKS + 1) as f64;
+            let height = now.height_psi(q);
+            if height < lowest.1 {
+                lowest = (q, height);
+            } else if height - lowest.1 > found.1 {
+                found = (lowest.0, height - lowest.1);
+            }
+        }
+        found
     }
 
     /// Positive while no other hump reaches above zero to the right of the one on which the well flows.
