@@ -176,6 +176,7 @@ fn the_first_well_arrives() {
                 TubingSection { to_md_ft: f64::INFINITY, diameter_in: 2.441, roughness_in: 0.002 },
             ],
             survey: vec![(0.0, 0.0), (3000.0, 2990.0), (7400.0, 7050.0)],
+            slip_factor: 0.9,
             wellhead_temperature_degf: 102.0,
         },
     };

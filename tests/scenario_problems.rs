@@ -107,8 +107,11 @@ const CASES: &[Case] = &[
     ("future = \"pressure\"", "future = «\"cubic\"»", &["`cubic` is not there yet", "pressure, mobility"]),
     (
         "\"hasan-kabir\"",
-        "«\"gray\"»",
-        &["`gray` is not there yet", "hasan-kabir, hagedorn-brown, beggs-brill, no-slip"],
+        "«\"orkiszewski\"»",
+        &[
+            "`orkiszewski` is not there yet",
+            "hasan-kabir, drift-flux, ansari, hagedorn-brown, beggs-brill, mukherjee-brill, gray, no-slip",
+        ],
     ),
     ("model = \"average\"", "model = «\"displacement\"»", &["`displacement` is not there yet", "connate, average"]),
     ("[[well]]", "«[well]»", &["`well` is a table, not a list of tables", "two brackets"]),

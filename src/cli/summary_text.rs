@@ -1,7 +1,7 @@
 //! What `forecast` prints: the answers on one screen.
 
 use super::screen::{Screen, Side};
-use crate::forecast::{Doubt, EventKind, Forecast, WellResult, date_at};
+use crate::forecast::{Doubt, EventKind, Forecast, ModelOutcome, WellResult, date_at};
 use crate::report::human::{month, number, short, span, volume};
 use crate::report::labels::{Dimension, UnitSystem, label};
 use crate::report::{CAUTION, Provenance, doubt_text, recovery, sanity};
@@ -73,10 +73,49 @@ fn ends(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
     ];
     s.table(&header, &rows);
     for well in &forecast.wells {
+        for text in spread_text(well).into_iter().chain(restart_text(forecast, well)) {
+            s.paragraph(2, 2, &text);
+        }
         for text in interruptions(forecast, &well.name) {
             s.paragraph(2, 2, &text);
         }
     }
+}
+
+/// Between which months the end lies over the tubing models that apply.
+fn spread_text(well: &WellResult) -> Option<String> {
+    let spread = well.spread.as_ref()?;
+    let name = &well.name;
+    let failed: Vec<&str> =
+        spread.models.iter().filter(|m| matches!(m.outcome, ModelOutcome::Failed(_))).map(|m| m.method).collect();
+    let left_out = if failed.is_empty() { String::new() } else { format!("; not run with {}", failed.join(", ")) };
+    let count = spread.models.len() - failed.len();
+    let still = spread.still_flowing();
+    let text = match (spread.earliest(), spread.latest()) {
+        (Some((first, earliest)), Some((last, latest))) if still.is_empty() => {
+            format!("between {} ({first}) and {} ({last})", month(earliest.date), month(latest.date))
+        }
+        (Some((first, earliest)), _) => {
+            format!("from {} ({first}) on; it still flows with {}", month(earliest.date), still.join(", "))
+        }
+        _ => "it still flows at the end of the forecast with every one".to_owned(),
+    };
+    Some(format!("{name}, over {count} tubing models: {text}{left_out}."))
+}
+
+/// When a shutdown becomes final.
+fn restart_text(forecast: &Forecast, well: &WellResult) -> Option<String> {
+    let days = well.restart_until?;
+    let date = date_at(forecast.start, days);
+    let name = &well.name;
+    Some(if days <= 0.0 {
+        format!("{name}, after a shut-in: never starts by itself against its own dead column.")
+    } else {
+        format!(
+            "{name}, after a shut-in: does not start by itself against its own dead column from {} on.",
+            month(date)
+        )
+    })
 }
 
 /// Ends of natural flow after which the well came back.

@@ -3,14 +3,14 @@
 use super::field::{Field, Setup, injected_fvf, injection_limit};
 use super::integrate::Problem;
 use super::placement::place_on;
-use super::{InjectedFluid, InjectionControl, StopReason, Tolerance};
+use super::{InjectedFluid, InjectionControl, StopReason};
 use crate::roots::brent;
 use crate::tank::{ClosureError, Cumulatives, TankState};
-use crate::well::{Gauge, LOOK_FROM, LOOK_TO, WellNow, oil_gradient_psi_ft, right_crossing, top_near};
+use crate::well::{Gauge, LOOK_FROM, LOOK_TO, WellNow, follow_top, oil_gradient_psi_ft, right_crossing, top_near};
 use std::cell::{Cell, RefCell};
 
 /// Height in psi by which the target (or floor) must be out of reach before it is taken up again, so that modes never flicker.
-const REGAIN_PSI: f64 = 0.01;
+pub(super) const REGAIN_PSI: f64 = 0.01;
 /// Flow margin at which a dead well may flow again, psi.
 pub(super) const FLOW_AGAIN_PSI: f64 = 1.0;
 /// Depth from which a valley between the top of a hump and the operating point parts the hump in two, psi.
@@ -139,6 +139,8 @@ pub(super) struct Spot {
     /// Tank pressure at which the rate was found, psia, and the change of rate with it, STB/d/psi.
     pub pressure_psia: f64,
     pub per_pressure: f64,
+    /// The conditions under which the rate was found: the same ones need no search.
+    pub found_under: Option<[f64; 4]>,
 }
 
 impl Spot {
@@ -152,6 +154,15 @@ impl Spot {
             low * open_flow_stb_d
         }
     }
+}
+
+/// A dip between the top of a hump and the operating point.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Valley {
+    pub rate_stb_d: f64,
+    /// Higher ground on its right, STB/d, and how much higher it is, psi.
+    pub crest_stb_d: f64,
+    pub rise_psi: f64,
 }
 
 /// Offsets into the scaled state vector.
@@ -194,6 +205,8 @@ pub(super) struct Memory {
     pub pressure_psia: Cell<f64>,
     pub spots: RefCell<Vec<Spot>>,
     pub gauge: Gauge,
+    /// Height to which crossings are resolved, psi.
+    pub crossing_psi: Cell<f64>,
     pub closures: Cell<u64>,
 }
 
@@ -322,42 +335,60 @@ impl<'a> Dynamics<'a> {
         let bounds = (spot.left_end(low, open), high * open);
         let height = |q: f64| now.height_psi(q);
         let reservoir = now.curve.reservoir_psia();
+        let conditions = Some([reservoir, open, now.gor_scf_stb, now.water_cut]);
+        if spot.found_under == conditions {
+            return spot.rate_stb_d;
+        }
         // The rate moves with the pressure much as it did last time.
         let moved = reservoir - spot.pressure_psia;
         let start =
             spot.rate_stb_d + (spot.per_pressure * moved).max(-0.05 * spot.rate_stb_d).min(0.05 * spot.rate_stb_d);
-        if let Some((rate, slope)) = right_crossing(height, start, spot.slope, self.crossing_psi(), bounds) {
+        if let Some((rate, slope)) = right_crossing(height, start, spot.slope, self.memory.crossing_psi.get(), bounds) {
             self.remember(w, |s| {
                 if moved.abs() > 1e-3 {
                     s.per_pressure = (rate - s.rate_stb_d) / moved;
                 }
                 (s.rate_stb_d, s.slope, s.pressure_psia) = (rate, slope, reservoir);
+                s.found_under = conditions;
             });
             return rate;
         }
         let guess = if spot.top_rate_stb_d > 0.0 { spot.top_rate_stb_d } else { 0.3 * open };
-        let (top_rate, top) = top_near(height, guess, bounds.0, bounds.1.min(LOOK_TO * open));
+        let (top_rate, top) = follow_top(height, guess, bounds.0, bounds.1.min(LOOK_TO * open));
         if top <= 0.0 {
             self.remember(w, |s| s.top_rate_stb_d = top_rate);
             return top_rate;
+        }
+        // Near its end a hump is a parabola: through its top and one point beyond it.
+        let beyond = spot.rate_stb_d;
+        if beyond > 1.001 * top_rate && beyond < bounds.1 {
+            let bend = (top - height(beyond)) / (beyond - top_rate).powi(2);
+            let reach = (top / bend).sqrt();
+            if bend > 0.0
+                && let Some((rate, slope)) = right_crossing(
+                    height,
+                    top_rate + reach,
+                    -2.0 * bend * reach,
+                    self.memory.crossing_psi.get(),
+                    bounds,
+                )
+            {
+                self.remember(w, |s| {
+                    (s.rate_stb_d, s.slope, s.top_rate_stb_d) = (rate, slope, top_rate);
+                    (s.pressure_psia, s.per_pressure, s.found_under) = (reservoir, 0.0, conditions);
+                });
+                return rate;
+            }
         }
         let right = (bounds.1, height(bounds.1));
         let rate = if right.1 >= 0.0 { right.0 } else { brent(height, (top_rate, top), right, 1e-11 * open) };
         let nudge = 1e-4 * rate;
         let slope = (height(rate + nudge) - height(rate - nudge)) / (2.0 * nudge);
         self.remember(w, |s| {
-            let pressure_psia = now.curve.reservoir_psia();
-            *s = Spot { rate_stb_d: rate, slope, top_rate_stb_d: top_rate, pressure_psia, per_pressure: 0.0, ..*s };
+            (s.rate_stb_d, s.slope, s.top_rate_stb_d) = (rate, slope, top_rate);
+            (s.pressure_psia, s.per_pressure, s.found_under) = (reservoir, 0.0, conditions);
         });
         rate
-    }
-
-    /// Height to which crossings are resolved, psi: some hundred times finer than the integrator's tolerance needs.
-    fn crossing_psi(&self) -> f64 {
-        match self.field.spec.tolerance {
-            Tolerance::Normal => 2e-6,
-            Tolerance::Tight | Tolerance::Reference => 1e-7,
-        }
     }
 
     pub fn remember(&self, w: usize, change: impl FnOnce(&mut Spot)) {
@@ -367,6 +398,9 @@ impl<'a> Dynamics<'a> {
     /// Top of the hump on which the well flows, rate and height.
     pub fn top(&self, w: usize, now: &WellNow, low: f64, high: f64) -> (f64, f64) {
         let open = now.curve.open_flow_stb_d();
+        if open <= 0.0 {
+            return (0.0, now.survey().margin_psi);
+        }
         let spot = self.memory.spots.borrow()[w];
         let guess = if spot.top_rate_stb_d > 0.0 { spot.top_rate_stb_d } else { 0.3 * open };
         let left = spot.left_end(low, open);
@@ -476,6 +510,7 @@ impl<'a> Dynamics<'a> {
                     Mode::Line { low, high } => {
                         // A rate at which the curves stand well apart answers the question without looking for the best one.
                         let known = self.memory.spots.borrow()[w].top_rate_stb_d;
+                        let known = known.min(LOOK_TO * now.curve.open_flow_stb_d());
                         let there = if known > 0.0 && low <= 0.0 { now.height_psi(known) } else { 0.0 };
                         if there > CLEAR_MARGIN_PSI { there } else { self.top(w, &now, low, high).1 }
                     }
@@ -485,7 +520,7 @@ impl<'a> Dynamics<'a> {
             Watch::RightHump(w) => self.right_hump(w, tank),
             Watch::Valley(w) => {
                 let now = self.well_now(w, tank);
-                VALLEY_PSI - self.valley(w, &now).1
+                VALLEY_PSI - self.valley(w, &now).rise_psi
             }
             Watch::MinimumRate(w) => {
                 let now = self.well_now(w, tank);
@@ -517,14 +552,13 @@ impl<'a> Dynamics<'a> {
         }
     }
 
-    /// The lowest place between the top of the hump and the operating point that has higher ground on its right: rate, and how much
-    /// higher that ground is, psi.
-    pub fn valley(&self, w: usize, now: &WellNow) -> (f64, f64) {
-        const LOOKS: usize = 6;
+    /// The lowest place between the top of the hump and the operating point that has higher ground on its right.
+    pub fn valley(&self, w: usize, now: &WellNow) -> Valley {
+        const LOOKS: usize = 4;
         let rate = self.rate(w, now);
         let top = self.memory.spots.borrow()[w].top_rate_stb_d;
         let mut lowest = (top, f64::INFINITY);
-        let mut found = (top, 0.0);
+        let mut found = Valley { rate_stb_d: top, crest_stb_d: rate, rise_psi: 0.0 };
         if top <= 0.0 || top >= rate {
             return found;
         }
@@ -533,27 +567,31 @@ impl<'a> Dynamics<'a> {
             let height = now.height_psi(q);
             if height < lowest.1 {
                 lowest = (q, height);
-            } else if height - lowest.1 > found.1 {
-                found = (lowest.0, height - lowest.1);
+            } else if height - lowest.1 > found.rise_psi {
+                found = Valley { rate_stb_d: lowest.0, crest_stb_d: q, rise_psi: height - lowest.1 };
             }
         }
         found
     }
 
+    /// The highest place looked at to the right of the operating point, rate and height; `None` where the well does not go there.
+    pub fn right_of(&self, w: usize, now: &WellNow) -> Option<(f64, f64)> {
+        const LOOKS: usize = 2;
+        // Beyond a target or floor the well does not go, so nothing there matters.
+        let cap = self.floor_rate(w, now).min(self.setup.wells[w].spec.target_rate_stb_d.unwrap_or(f64::INFINITY));
+        let (rate, open) = (self.rate(w, now), now.curve.open_flow_stb_d().min(cap));
+        if !(rate > 0.0 && rate < open) {
+            return None;
+        }
+        (1..=LOOKS)
+            .map(|k| rate + (open - rate) * k as f64 / (LOOKS + 1) as f64)
+            .map(|q| (q, now.height_psi(q)))
+            .max_by(|a, b| a.1.total_cmp(&b.1))
+    }
+
     /// Positive while no other hump reaches above zero to the right of the one on which the well flows.
     fn right_hump(&self, w: usize, tank: &TankState) -> f64 {
-        const LOOKS: usize = 2;
-        let now = self.well_now(w, tank);
-        // Beyond a target or floor the well does not go, so nothing there matters.
-        let cap = self.floor_rate(w, &now).min(self.setup.wells[w].spec.target_rate_stb_d.unwrap_or(f64::INFINITY));
-        let (rate, open) = (self.rate(w, &now), now.curve.open_flow_stb_d().min(cap));
-        if !(rate > 0.0 && rate < open) {
-            return 1.0;
-        }
-        let highest = (1..=LOOKS)
-            .map(|k| now.height_psi(rate + (open - rate) * k as f64 / (LOOKS + 1) as f64))
-            .fold(f64::NEG_INFINITY, f64::max);
-        REGAIN_PSI - highest
+        self.right_of(w, &self.well_now(w, tank)).map_or(1.0, |(_, height)| REGAIN_PSI - height)
     }
 }
 

@@ -215,12 +215,8 @@ fn inflow_test(reader: &mut Reader, section: &Section<'_>) -> InflowTest {
 
 fn tubing(reader: &mut Reader, well: &Section<'_>) -> TubingSpec {
     let section = reader.section(well, "tubing");
-    let method = match reader.choice(&section, "method", LATER_TUBING_METHODS) {
-        Some("hagedorn-brown") => TubingMethod::HagedornBrown,
-        Some("beggs-brill") => TubingMethod::BeggsBrill,
-        Some("no-slip") => TubingMethod::NoSlip,
-        _ => TubingMethod::HasanKabir,
-    };
+    let name = reader.choice(&section, "method", LATER_TUBING_METHODS);
+    let method = TubingMethod::ALL.into_iter().find(|method| name == Some(method.name()));
     exactly_one(reader, &section, "the tubing's inside diameter", EXCLUSIVE[1].1);
     let roughness_in = reader.quantity(&section, "roughness");
     let sections = match reader.optional_quantity(&section, "diameter") {
@@ -229,9 +225,10 @@ fn tubing(reader: &mut Reader, well: &Section<'_>) -> TubingSpec {
         None => Vec::new(),
     };
     let spec = TubingSpec {
-        method,
+        method: method.unwrap_or(TubingMethod::HasanKabir),
         sections,
         survey: survey::read(reader, &section),
+        slip_factor: reader.number(&section, "slip_factor"),
         wellhead_temperature_degf: reader.quantity(&section, "wellhead_temperature"),
     };
     reader.finish(&section);

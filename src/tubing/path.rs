@@ -69,6 +69,12 @@ impl Path {
                 );
             }
         }
+        if !(0.0..=10.0).contains(&spec.slip_factor) {
+            faults.push(
+                Fault::new("slip_factor", format!("{} is no slip factor", spec.slip_factor))
+                    .help("between 0 (no slip) and 10; 1 leaves the model as published"),
+            );
+        }
         if faults.is_empty() { Ok(cut(spec, bottom_md_ft, bottom_temperature_degf)) } else { Err(faults) }
     }
 }

@@ -177,8 +177,8 @@ pub fn top_near(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: 
 /// Follows the top of a smooth hump that moved little: the vertex of a parabola through three heights, accepted when the height
 /// there is the one foretold; otherwise [`top_near`]. Rate and height.
 pub fn follow_top(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: f64) -> (f64, f64) {
-    const FORETOLD_PSI: f64 = 0.02;
-    let step = 0.03 * rate_stb_d;
+    const FORETOLD_PSI: f64 = 0.05;
+    let step = 0.015 * rate_stb_d;
     let (a, b, c) = (rate_stb_d - step, rate_stb_d, rate_stb_d + step);
     if a > low && c < high {
         let (ha, hb, hc) = (h(a), h(b), h(c));

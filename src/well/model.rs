@@ -335,6 +335,14 @@ impl<'a> WellNow<'a> {
         found.pressure_psia
     }
 
+    /// Pressure at the perforations under a full column of the well's own dead oil and water at line pressure, psia: what a shut-in
+    /// well has to push out before it flows (the gas has left the column).
+    pub fn dead_column_psia(&self) -> f64 {
+        self.gauge.traverses.set(self.gauge.traverses.get() + 1);
+        let dead = Stream { liquid_rate_stb_d: 0.0, water_cut: self.water_cut, gor_scf_stb: 0.0 };
+        self.well.tubing.flowing_pressure(self.fluid, &dead, self.well.spec.line_pressure_psia).pressure_psia
+    }
+
     /// Height of the inflow curve above the tubing curve at line pressure, psi.
     pub fn height_psi(&self, liquid_rate_stb_d: f64) -> f64 {
         self.curve.flowing_psia(liquid_rate_stb_d) - self.tubing_psia(liquid_rate_stb_d)
@@ -347,6 +355,17 @@ impl<'a> WellNow<'a> {
 
     /// The same, where a hump counts as a place to flow only when it reaches above `least_psi`.
     pub fn survey_above(&self, least_psi: f64) -> Landscape {
+        if self.curve.open_flow_stb_d() <= 0.0 {
+            // No rate at all: the tubing asks for a pressure and the inflow offers none.
+            let margin_psi = -self.tubing_psia(0.0);
+            return Landscape {
+                margin_psi,
+                margin_rate_stb_d: 0.0,
+                right_crossing_stb_d: None,
+                top_rate_stb_d: 0.0,
+                hump_stb_d: (0.0, 0.0),
+            };
+        }
         survey_above(|q| self.height_psi(q), self.curve.open_flow_stb_d(), least_psi)
     }
 

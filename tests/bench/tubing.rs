@@ -19,6 +19,7 @@ fn tubing(method: TubingMethod) -> Tubing {
         method,
         sections: vec![TubingSection { to_md_ft: f64::INFINITY, diameter_in: 2.441, roughness_in: 0.0006 }],
         survey: vec![(0.0, 0.0), (8000.0, 8000.0)],
+        slip_factor: 1.0,
         wellhead_temperature_degf: 110.0,
     };
     Tubing::new(&spec, None, 190.0, 0.02).unwrap_or_else(|faults| panic!("{faults:?}"))

@@ -78,6 +78,7 @@ pub fn well(name: &str) -> WellSpec {
             method: TubingMethod::HasanKabir,
             sections: vec![TubingSection { to_md_ft: f64::INFINITY, diameter_in: 2.441, roughness_in: 0.0006 }],
             survey: vec![(0.0, 0.0), (4000.0, 4000.0), (8600.0, 8150.0)],
+            slip_factor: 1.0,
             wellhead_temperature_degf: 110.0,
         },
     }
