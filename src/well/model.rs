@@ -376,6 +376,17 @@ impl<'a> WellNow<'a> {
 
     /// The same, where a hump counts as a place to flow only when it reaches above `least_psi`.
     pub fn survey_above(&self, least_psi: f64) -> Landscape {
+        if self.curve.open_flow_stb_d() <= 0.0 {
+            // No rate at all: the tubing asks for a pressure and the inflow offers none.
+            let margin_psi = -self.tubing_psia(0.0);
+            return Landscape {
+                margin_psi,
+                margin_rate_stb_d: 0.0,
+                right_crossing_stb_d: None,
+                top_rate_stb_d: 0.0,
+                hump_stb_d: (0.0, 0.0),
+            };
+        }
         survey_above(|q| self.height_psi(q), self.curve.open_flow_stb_d(), least_psi)
     }
 
