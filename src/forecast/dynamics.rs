@@ -10,7 +10,7 @@ use crate::well::{Gauge, LOOK_FROM, LOOK_TO, WellNow, follow_top, oil_gradient_p
 use std::cell::{Cell, RefCell};
 
 /// Height in psi by which the target (or floor) must be out of reach before it is taken up again, so that modes never flicker.
-const REGAIN_PSI: f64 = 0.01;
+pub(super) const REGAIN_PSI: f64 = 0.01;
 /// Flow margin at which a dead well may flow again, psi.
 pub(super) const FLOW_AGAIN_PSI: f64 = 1.0;
 /// Depth from which a valley between the top of a hump and the operating point parts the hump in two, psi.
@@ -154,6 +154,15 @@ impl Spot {
             low * open_flow_stb_d
         }
     }
+}
+
+/// A dip between the top of a hump and the operating point.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Valley {
+    pub rate_stb_d: f64,
+    /// Higher ground on its right, STB/d, and how much higher it is, psi.
+    pub crest_stb_d: f64,
+    pub rise_psi: f64,
 }
 
 /// Offsets into the scaled state vector.
@@ -389,6 +398,9 @@ impl<'a> Dynamics<'a> {
     /// Top of the hump on which the well flows, rate and height.
     pub fn top(&self, w: usize, now: &WellNow, low: f64, high: f64) -> (f64, f64) {
         let open = now.curve.open_flow_stb_d();
+        if open <= 0.0 {
+            return (0.0, now.survey().margin_psi);
+        }
         let spot = self.memory.spots.borrow()[w];
         let guess = if spot.top_rate_stb_d > 0.0 { spot.top_rate_stb_d } else { 0.3 * open };
         let left = spot.left_end(low, open);
@@ -498,6 +510,7 @@ impl<'a> Dynamics<'a> {
                     Mode::Line { low, high } => {
                         // A rate at which the curves stand well apart answers the question without looking for the best one.
                         let known = self.memory.spots.borrow()[w].top_rate_stb_d;
+                        let known = known.min(LOOK_TO * now.curve.open_flow_stb_d());
                         let there = if known > 0.0 && low <= 0.0 { now.height_psi(known) } else { 0.0 };
                         if there > CLEAR_MARGIN_PSI { there } else { self.top(w, &now, low, high).1 }
                     }
@@ -507,7 +520,7 @@ impl<'a> Dynamics<'a> {
             Watch::RightHump(w) => self.right_hump(w, tank),
             Watch::Valley(w) => {
                 let now = self.well_now(w, tank);
-                VALLEY_PSI - self.valley(w, &now).1
+                VALLEY_PSI - self.valley(w, &now).rise_psi
             }
             Watch::MinimumRate(w) => {
                 let now = self.well_now(w, tank);
@@ -539,14 +552,13 @@ impl<'a> Dynamics<'a> {
         }
     }
 
-    /// The lowest place between the top of the hump and the operating point that has higher ground on its right: rate, and how much
-    /// higher that ground is, psi.
-    pub fn valley(&self, w: usize, now: &WellNow) -> (f64, f64) {
+    /// The lowest place between the top of the hump and the operating point that has higher ground on its right.
+    pub fn valley(&self, w: usize, now: &WellNow) -> Valley {
         const LOOKS: usize = 4;
         let rate = self.rate(w, now);
         let top = self.memory.spots.borrow()[w].top_rate_stb_d;
         let mut lowest = (top, f64::INFINITY);
-        let mut found = (top, 0.0);
+        let mut found = Valley { rate_stb_d: top, crest_stb_d: rate, rise_psi: 0.0 };
         if top <= 0.0 || top >= rate {
             return found;
         }
@@ -555,27 +567,31 @@ impl<'a> Dynamics<'a> {
             let height = now.height_psi(q);
             if height < lowest.1 {
                 lowest = (q, height);
-            } else if height - lowest.1 > found.1 {
-                found = (lowest.0, height - lowest.1);
+            } else if height - lowest.1 > found.rise_psi {
+                found = Valley { rate_stb_d: lowest.0, crest_stb_d: q, rise_psi: height - lowest.1 };
             }
         }
         found
     }
 
+    /// The highest place looked at to the right of the operating point, rate and height; `None` where the well does not go there.
+    pub fn right_of(&self, w: usize, now: &WellNow) -> Option<(f64, f64)> {
+        const LOOKS: usize = 2;
+        // Beyond a target or floor the well does not go, so nothing there matters.
+        let cap = self.floor_rate(w, now).min(self.setup.wells[w].spec.target_rate_stb_d.unwrap_or(f64::INFINITY));
+        let (rate, open) = (self.rate(w, now), now.curve.open_flow_stb_d().min(cap));
+        if !(rate > 0.0 && rate < open) {
+            return None;
+        }
+        (1..=LOOKS)
+            .map(|k| rate + (open - rate) * k as f64 / (LOOKS + 1) as f64)
+            .map(|q| (q, now.height_psi(q)))
+            .max_by(|a, b| a.1.total_cmp(&b.1))
+    }
+
     /// Positive while no other hump reaches above zero to the right of the one on which the well flows.
     fn right_hump(&self, w: usize, tank: &TankState) -> f64 {
-        const LOOKS: usize = 2;
-        let now = self.well_now(w, tank);
-        // Beyond a target or floor the well does not go, so nothing there matters.
-        let cap = self.floor_rate(w, &now).min(self.setup.wells[w].spec.target_rate_stb_d.unwrap_or(f64::INFINITY));
-        let (rate, open) = (self.rate(w, &now), now.curve.open_flow_stb_d().min(cap));
-        if !(rate > 0.0 && rate < open) {
-            return 1.0;
-        }
-        let highest = (1..=LOOKS)
-            .map(|k| now.height_psi(rate + (open - rate) * k as f64 / (LOOKS + 1) as f64))
-            .fold(f64::NEG_INFINITY, f64::max);
-        REGAIN_PSI - highest
+        self.right_of(w, &self.well_now(w, tank)).map_or(1.0, |(_, height)| REGAIN_PSI - height)
     }
 }
 

@@ -2,8 +2,9 @@
 
 use super::StopReason;
 use super::dynamics::{Dynamics, Mode, Spot};
+use crate::roots::brent;
 use crate::tank::TankState;
-use crate::well::{Crossing, Landscape, WellNow, WellSpec, crossings};
+use crate::well::{Crossing, LOOK_TO, Landscape, WellNow, WellSpec, crossings, top_near};
 
 /// The right-most stable crossing below a cap, as a mode.
 pub(super) fn stable_below(now: &WellNow, cap_stb_d: f64) -> Option<(Mode, Spot)> {
@@ -81,4 +82,33 @@ pub(super) fn place_on(now: &WellNow, spec: &WellSpec, land: &Landscape) -> (Res
         return (Err(StopReason::RateLimit), spot);
     }
     (Ok(mode), spot)
+}
+
+/// The hump around a rate known to lie above zero, on the right of the operating point `left_stb_d`.
+pub(super) fn hump_at(now: &WellNow, left_stb_d: f64, crest_stb_d: f64) -> Option<(Mode, Spot)> {
+    const LOOKS: usize = 12;
+    let open = now.curve.open_flow_stb_d();
+    let height = |q: f64| now.height_psi(q);
+    let (top_rate, top) = top_near(height, crest_stb_d, left_stb_d, LOOK_TO * open);
+    let between = |a: f64, b: f64, k: usize| a + (b - a) * k as f64 / LOOKS as f64;
+    let valley = (0..LOOKS)
+        .map(|k| between(left_stb_d, top_rate, k))
+        .map(|q| (q, height(q)))
+        .min_by(|a, b| a.1.total_cmp(&b.1))?
+        .0;
+    let mut inside = (top_rate, top);
+    for k in 1..=LOOKS {
+        let q = between(top_rate, open, k);
+        let here = (q, height(q));
+        if here.1 <= 0.0 {
+            let rate = brent(height, inside, here, 1e-10 * open);
+            let nudge = 1e-4 * rate;
+            let slope = (height(rate + nudge) - height(rate - nudge)) / (2.0 * nudge);
+            let spot =
+                Spot { rate_stb_d: rate, slope, top_rate_stb_d: top_rate, low_rate_stb_d: valley, ..Spot::default() };
+            return Some((Mode::Line { low: valley / open, high: 1.0 }, spot));
+        }
+        inside = here;
+    }
+    None
 }

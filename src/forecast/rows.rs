@@ -210,7 +210,7 @@ impl<'a> Rows<'a> {
             return row;
         }
         let now = dynamics.well_now(w, tank);
-        row.flow_margin_psi = Some(self.margin(w, &now));
+        row.flow_margin_psi = Some(self.margin(w, &now, mode.flows()));
         row.restart_margin_psi = Some(now.curve.reservoir_psia() - now.dead_column_psia());
         // A well that stopped at the very end of this period no longer flows at its end.
         let stopped_here = self.trace.flow_ends[w].is_some_and(|e| (e.days - period.run_days).abs() < 1e-6);
@@ -237,7 +237,8 @@ impl<'a> Rows<'a> {
     }
 
     /// The flow margin: followed from the row before, held against other rates once a year, looked for over all rates where it is new.
-    fn margin(&mut self, w: usize, now: &WellNow) -> f64 {
+    /// A flowing well whose followed top has sunk below zero stands on another hump: that, too, calls for the wide look.
+    fn margin(&mut self, w: usize, now: &WellNow, flows: bool) -> f64 {
         let open = now.curve.open_flow_stb_d();
         if open <= 0.0 {
             return -now.tubing_psia(0.0);
@@ -247,7 +248,8 @@ impl<'a> Rows<'a> {
             let (rate, margin) = follow_top(|q| now.height_psi(q), known.rate_stb_d, LOOK_FROM * open, LOOK_TO * open);
             *known = Margin { rate_stb_d: rate, age: known.age + 1 };
             let elsewhere = |part: f64| now.height_psi(part * open);
-            if known.age < ROWS_PER_LOOK || !LOOKS.into_iter().any(|part| elsewhere(part) > margin) {
+            let sunk = flows && margin < 0.0;
+            if !sunk && (known.age < ROWS_PER_LOOK || !LOOKS.into_iter().any(|part| elsewhere(part) > margin)) {
                 known.age %= ROWS_PER_LOOK;
                 return margin;
             }

@@ -1,10 +1,10 @@
 //! The driver: scheduled changes, stretches between them, mode switches, the end of natural flow.
 
 use super::calendar::{date_at, days_between};
-use super::dynamics::{Dynamics, Layout, Memory, Mode, Modes, Spot, Watch};
+use super::dynamics::{Dynamics, Layout, Memory, Mode, Modes, REGAIN_PSI, Spot, Watch};
 use super::field::{Field, RunError, Setup, injection_limit};
 use super::integrate::{Effort, End, Settings, State, Stretch, integrate};
-use super::placement::{placement, stable_below};
+use super::placement::{hump_at, placement, stable_below};
 use super::{Change, EventKind, EventRecord, FieldSpec, FlowEnd, Forecast, StopReason, Tolerance, Work};
 use crate::tank::{ClosureError, TankState};
 use crate::well::top_near;
@@ -200,8 +200,9 @@ impl<'a> Run<'a> {
             Mode::Stopped(_) => self.setup.wells[w].spec.may_flow_again && self.modes.watch_return[w],
             _ => true,
         });
+        let ahead = |day: f64| day > self.t && day < end;
         let events_ahead =
-            self.field.spec.changes.iter().any(|c| self.day(c.on) > self.t && matches!(c.change, Change::Well(..)));
+            self.field.spec.changes.iter().any(|c| ahead(self.day(c.on)) && matches!(c.change, Change::Well(..)));
         if alive || events_ahead {
             return false;
         }
@@ -420,6 +421,9 @@ impl<'a> Run<'a> {
                     self.trace.first_flow[w].get_or_insert(self.t);
                 }
                 let target = self.setup.wells[w].spec.target_rate_stb_d;
+                if mode == Mode::Target && before.flows() && before != Mode::Target {
+                    self.event(&name, EventKind::TargetRegained, String::new());
+                }
                 if target.is_some() && mode != Mode::Target && (before == Mode::Target || !before.flows()) {
                     self.plateau_lost(w);
                 }
@@ -488,6 +492,9 @@ impl<'a> Run<'a> {
                     self.stop(w, StopReason::NoCrossing)?;
                 } else {
                     self.place_above(w, false, if gone { GONE_PSI } else { 0.0 })?;
+                    if matches!(watch, Watch::RightHump(_)) {
+                        self.climb_right(w, &tank);
+                    }
                     if self.modes.wells[w].flows() && self.modes.wells[w] != before {
                         self.event(&name, EventKind::RateJump, String::new());
                     }
@@ -515,14 +522,33 @@ impl<'a> Run<'a> {
         let low = {
             let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
             let now = dynamics.well_now(w, tank);
-            let (valley, _) = dynamics.valley(w, &now);
+            let found = dynamics.valley(w, &now);
+            let valley = found.rate_stb_d;
             let rate = dynamics.rate(w, &now).max(valley);
-            let (top, _) = top_near(|q| now.height_psi(q), 0.5 * (valley + rate), valley, rate);
+            // From the higher ground, so that the same valley is not found again.
+            let (top, _) = top_near(|q| now.height_psi(q), found.crest_stb_d, valley, rate);
             let spot = &mut self.trace.memory.spots.borrow_mut()[w];
             (spot.top_rate_stb_d, spot.low_rate_stb_d) = (top, valley);
             valley / now.curve.open_flow_stb_d()
         };
         self.modes.wells[w] = Mode::Line { low, high };
+    }
+
+    /// A hump so narrow that the look over all rates steps over it, but seen on the right of the operating point, is taken from there.
+    fn climb_right(&mut self, w: usize, tank: &TankState) {
+        let Mode::Line { .. } = self.modes.wells[w] else { return };
+        let found = {
+            let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
+            let now = dynamics.well_now(w, tank);
+            dynamics
+                .right_of(w, &now)
+                .filter(|(_, height)| *height >= REGAIN_PSI)
+                .and_then(|(crest, _)| hump_at(&now, dynamics.rate(w, &now), crest))
+        };
+        if let Some((mode, spot)) = found {
+            self.trace.memory.spots.borrow_mut()[w] = spot;
+            self.modes.wells[w] = mode;
+        }
     }
 
     /// The target, or the floor's rate, can no longer be held: `h` has come down to zero there.
