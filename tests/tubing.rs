@@ -3,6 +3,7 @@
 
 use proptest::prelude::*;
 use wane::fluid::{BlackOil, FluidSpec};
+use wane::tubing::drift_flux::DriftFlux;
 use wane::tubing::hasan_kabir::HasanKabir;
 use wane::tubing::model::{Flow, Hydraulics, Pipe};
 use wane::tubing::{Stream, Tubing, TubingMethod, TubingSection, TubingSpec, liquid};
@@ -131,10 +132,10 @@ fn hasan_kabir_without_gas_is_liquid() {
 }
 
 #[test]
-fn hasan_kabir_is_continuous_in_every_variable() {
+fn drift_flux_models_are_continuous_in_every_variable() {
     // A fine sweep of each variable through bubbly, slug and annular flow: no step larger than the sweep explains. The
     // laminar jump is kept out by low viscosity.
-    let at = |x: &[f64; 9]| {
+    let at = |model: &dyn Hydraulics, x: &[f64; 9]| {
         let pipe = Pipe::new(x[8], 0.0006, x[7]);
         let flow = Flow {
             liquid_velocity_ft_s: x[0],
@@ -147,7 +148,7 @@ fn hasan_kabir_is_continuous_in_every_variable() {
             tension_dyn_cm: x[5],
             pressure_psia: x[6],
         };
-        HasanKabir.gradient(&flow, &pipe, HasanKabir.branch(&flow, &pipe)).total_psi_ft()
+        model.gradient(&flow, &pipe, model.branch(&flow, &pipe)).total_psi_ft()
     };
     let middle = [2.0, 6.0, 48.0, 6.0, 0.5, 15.0, 1200.0, 0.9, 2.441];
     let ranges = [
@@ -161,20 +162,24 @@ fn hasan_kabir_is_continuous_in_every_variable() {
         (0.02, 1.0),
         (1.0, 6.0),
     ];
+    let models: [(&str, &dyn Hydraulics); 2] = [("hasan-kabir", &HasanKabir), ("drift-flux", &DriftFlux)];
     for (variable, (low, high)) in ranges.into_iter().enumerate() {
-        for gas in [0.3, 2.0, 6.0, 20.0] {
+        for (gas, (name, model)) in [0.3, 2.0, 6.0, 20.0].into_iter().flat_map(|gas| models.map(|model| (gas, model))) {
             let value = |i: i32| {
                 let mut x = middle;
                 x[1] = gas;
                 x[variable] = low * f64::powf(high / low, f64::from(i) / 20_000.0);
-                at(&x)
+                at(model, &x)
             };
             let mut previous = value(0);
             for i in 1..=20_000 {
                 let next = value(i);
                 // A log step of at most 4e-4: a jump of the old flow maps would be 0.01 psi/ft and more.
                 let allowed = 0.01 * previous.abs().max(0.02);
-                assert!((next - previous).abs() < allowed, "variable {variable}, gas {gas}, i {i}: {previous} {next}");
+                assert!(
+                    (next - previous).abs() < allowed,
+                    "{name}, variable {variable}, gas {gas}, i {i}: {previous} {next}"
+                );
                 previous = next;
             }
         }
@@ -375,14 +380,15 @@ fn senseless_numbers_give_finite_pressures() {
 /// Random sound wells: two diameters, a kick-off, any temperature.
 fn any_well() -> impl Strategy<Value = TubingSpec> {
     let numbers = (1.0..5.0_f64, 1.0..5.0_f64, 500.0..8000.0_f64, 200.0..8000.0_f64, 0.0..1.0_f64, 40.0..200.0_f64);
-    (numbers, 0..TubingMethod::ALL.len(), 0.0..0.01_f64).prop_map(
-        |((d1, d2, kick_off, length, slope, wellhead), method, roughness)| {
+    (numbers, 0..TubingMethod::ALL.len(), (0.0..0.01_f64, prop_oneof![Just(1.0), 0.0..3.0_f64])).prop_map(
+        |((d1, d2, kick_off, length, slope, wellhead), method, (roughness, slip_factor))| {
             let mut spec = spec(
                 TubingMethod::ALL[method],
                 &[(kick_off * 0.7, d1), (WHOLE, d2)],
                 &[(0.0, 0.0), (kick_off, kick_off), (kick_off + length, kick_off + slope * length)],
             );
             spec.wellhead_temperature_degf = wellhead;
+            spec.slip_factor = slip_factor;
             for section in &mut spec.sections {
                 section.roughness_in = roughness;
             }

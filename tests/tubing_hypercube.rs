@@ -36,13 +36,14 @@ fn default_accuracy_holds_over_a_hypercube_of_wells() {
     let fluid = BlackOil::new(&spec, 190.0).expect("a sound fluid");
     let mut random = Random(20_270_401);
     let columns: Vec<Vec<f64>> = (0..7).map(|_| random.column()).collect();
+    let wells: Vec<[f64; 7]> = (0..WELLS).map(|i| std::array::from_fn(|column: usize| columns[column][i])).collect();
     let mut total = 0;
     for method in TubingMethod::ALL {
         let (mut compared, mut over, mut worst, mut at) = (0, 0, 0.0_f64, String::new());
-        for i in 0..WELLS {
-            let x = |column: usize, low: f64, high: f64| low + columns[column][i] * (high - low);
+        for well in &wells {
+            let x = |column: usize, low: f64, high: f64| low + well[column] * (high - low);
             let (depth_ft, diameter_in) = (x(0, 2000.0, 15_000.0), x(1, 1.9, 6.0));
-            let liquid_rate_stb_d = 20.0 * f64::powf(1000.0, columns[2][i]);
+            let liquid_rate_stb_d = 20.0 * f64::powf(1000.0, well[2]);
             let water_cut = x(4, 0.0, 0.98);
             // The gas-oil ratio whose gas over liquid is that of the column.
             let gor_scf_stb = x(3, 0.0, 5000.0) / (1.0 - water_cut);

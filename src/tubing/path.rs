@@ -138,7 +138,9 @@ fn temperature_faults(spec: &TubingSpec, bottom_temperature_degf: f64) -> Vec<Fa
                 .help("the first point lies at 0 ft of measured depth"),
         );
     }
-    if let Some(i) = depths().zip(depths().skip(1)).position(|(above_ft, below_ft)| !(below_ft > above_ft)) {
+    if let Some(i) =
+        depths().zip(depths().skip(1)).position(|(above_ft, below_ft)| below_ft.is_nan() || below_ft <= above_ft)
+    {
         faults.push(
             Fault::new(format!("temperature[{}]", i + 1), "the temperatures do not go down from point to point")
                 .help("each point is [measured depth, temperature], from the wellhead down"),
