@@ -1,0 +1,84 @@
+//! The fluid of one producing gas-oil ratio, as a tubing sees it.
+
+use super::beggs_robinson::BeggsRobinson;
+use super::black_oil::{TEMPERATURE_RANGE_DEGF, hold};
+use super::mccain::McCainWater;
+use super::standing::Standing;
+use super::{BlackOil, InSitu, baker_swerdloff};
+use crate::elementary::exp;
+use crate::units::constants::DEGF_TO_DEGR;
+
+/// A fluid whose dissolved gas is capped by the producing gas-oil ratio; made by [`BlackOil::capped`].
+///
+/// What depends on the ratio alone is computed once here, since a traverse asks for a hundred points.
+#[derive(Debug, Clone)]
+pub struct CappedOil<'a> {
+    fluid: &'a BlackOil,
+    cap_scf_stb: f64,
+    /// (Rs/g)^0.83 of the cap.
+    gas_power: f64,
+    /// a and b of Beggs and Robinson at the cap.
+    live_coefficients: (f64, f64),
+}
+
+impl<'a> CappedOil<'a> {
+    pub(super) fn new(fluid: &'a BlackOil, gor_limit_scf_stb: f64) -> Self {
+        let cap_scf_stb = gor_limit_scf_stb.max(0.0);
+        Self {
+            fluid,
+            cap_scf_stb,
+            gas_power: fluid.standing.gas_power(cap_scf_stb),
+            live_coefficients: BeggsRobinson::live_coefficients(cap_scf_stb),
+        }
+    }
+
+    /// Properties at a pressure and temperature; see [`BlackOil::in_situ`].
+    #[inline]
+    pub fn in_situ(&self, pressure_psia: f64, temperature_degf: f64) -> InSitu {
+        self.in_situ_and_bubble_point(pressure_psia, temperature_degf).0
+    }
+
+    /// The properties, and the bubble point of the oil at that temperature, psia: of all its gas where it is undersaturated, else
+    /// the pressure itself.
+    #[inline]
+    pub fn in_situ_and_bubble_point(&self, pressure_psia: f64, temperature_degf: f64) -> (InSitu, f64) {
+        let fluid = self.fluid;
+        let p = fluid.held_pressure(pressure_psia);
+        let t = hold(temperature_degf, TEMPERATURE_RANGE_DEGF);
+        let temperature_degr = t + DEGF_TO_DEGR;
+        let at = fluid.by_temperature.at(t);
+
+        let gas = fluid.gas.at(p, temperature_degr);
+        let mut rs = Standing::pressure_power(fluid.tuning_factor * p) * at.dissolved_scf_stb;
+        let mut bubble_point_psia = p;
+        let (bo, mu_o);
+        if rs > self.cap_scf_stb {
+            rs = self.cap_scf_stb;
+            bubble_point_psia = fluid.tuned_bubble_point_psia(self.gas_power, at.bubble_factor);
+            let above = fluid.above_bubble_point(p, rs, bubble_point_psia, t);
+            let (a, b) = self.live_coefficients;
+            bo = above.volume_ratio * fluid.standing.bo_rb_stb(rs, t);
+            mu_o = above.viscosity_ratio * a * exp(b * at.ln_dead_cp);
+        } else {
+            bo = fluid.standing.bo_rb_stb(rs, t);
+            mu_o = BeggsRobinson::live_cp(at.ln_dead_cp, rs);
+        }
+        let bw = McCainWater::bw_rb_stb(p, t);
+        let state = InSitu {
+            rs_scf_stb: rs,
+            bo_rb_stb: bo,
+            oil_density_lb_ft3: (fluid.oil_standard_density_lb_ft3 + fluid.gas_mass_lb_ft3 * rs) / bo,
+            mu_o_cp: mu_o,
+            bg_ft3_scf: gas.bg_ft3_scf,
+            gas_density_lb_ft3: gas.density_lb_ft3,
+            mu_g_cp: fluid.gas.viscosity_cp(temperature_degr, gas.density_lb_ft3),
+            bw_rb_stb: bw,
+            water_density_lb_ft3: fluid.water.standard_density_lb_ft3() / bw,
+            mu_w_cp: at.water_cp * McCainWater::viscosity_ratio(p),
+            sigma_oil_gas_dyn_cm: baker_swerdloff::oil_gas_dyn_cm(fluid.spec.oil_gravity_api, t, p),
+            sigma_water_gas_dyn_cm: baker_swerdloff::water_gas_dyn_cm(t, p),
+            z: gas.z,
+        };
+        (state, bubble_point_psia)
+    }
+}
