@@ -42,14 +42,33 @@ pub fn pressure_factor(pressure_psia: f64) -> f64 {
 /// Tension between oil and gas, dyn/cm.
 #[inline]
 pub fn oil_gas_dyn_cm(oil_gravity_api: f64, temperature_degf: f64, pressure_psia: f64) -> f64 {
-    (dead_oil_dyn_cm(oil_gravity_api, temperature_degf) * pressure_factor(pressure_psia)).max(FLOOR_DYN_CM)
+    oil_gas_of_dyn_cm(oil_gravity_api, temperature_degf, pressure_factor(pressure_psia))
+}
+
+/// The same from the factor for the dissolved gas.
+#[inline]
+pub(super) fn oil_gas_of_dyn_cm(oil_gravity_api: f64, temperature_degf: f64, pressure_factor: f64) -> f64 {
+    (dead_oil_dyn_cm(oil_gravity_api, temperature_degf) * pressure_factor).max(FLOOR_DYN_CM)
+}
+
+/// Tension between water and gas at 74 and at 280 degF, without floor, dyn/cm.
+#[inline]
+pub(super) fn water_gas_ends_dyn_cm(pressure_psia: f64) -> (f64, f64) {
+    let cool = 75.0 - 1.108 * POWER_OF_COOL_WATER.of(pressure_psia);
+    let hot = 53.0 - 0.1048 * POWER_OF_HOT_WATER.of(pressure_psia);
+    (cool, hot)
 }
 
 /// Tension between water and gas, dyn/cm.
 #[inline]
 pub fn water_gas_dyn_cm(temperature_degf: f64, pressure_psia: f64) -> f64 {
-    let cool = 75.0 - 1.108 * POWER_OF_COOL_WATER.of(pressure_psia);
-    let hot = 53.0 - 0.1048 * POWER_OF_HOT_WATER.of(pressure_psia);
+    let (cool, hot) = water_gas_ends_dyn_cm(pressure_psia);
+    water_gas_of_dyn_cm(temperature_degf, cool, hot)
+}
+
+/// The same from the tensions at 74 and at 280 degF.
+#[inline]
+pub(super) fn water_gas_of_dyn_cm(temperature_degf: f64, cool: f64, hot: f64) -> f64 {
     let part = ((temperature_degf - 74.0) * (1.0 / 206.0)).clamp(0.0, 1.0);
     (cool + (hot - cool) * part).max(FLOOR_DYN_CM)
 }

@@ -3,8 +3,9 @@
 use super::beggs_robinson::BeggsRobinson;
 use super::by_temperature::{AtTemperature, ByTemperature};
 use super::capped::CappedOil;
-use super::dranchuk_abou_kassem::{Isotherm, MAXIMUM_PPR};
+use super::dranchuk_abou_kassem::{Isotherm, MAXIMUM_PPR, MAXIMUM_TPR};
 use super::gas::Gas;
+use super::grid::Grid;
 use super::lee_gonzalez_eakin::LB_FT3_PER_G_CM3;
 use super::mccain::McCainWater;
 use super::standing::Standing;
@@ -14,6 +15,7 @@ use super::{
 use crate::elementary::ln;
 use crate::fault::Fault;
 use crate::units::constants::{DEGF_TO_DEGR, FRESH_WATER_LB_FT3, FT3_PER_BBL};
+use std::sync::{Arc, OnceLock};
 
 /// The lowest and highest pressures of the model, psia (the upper one falls where z leaves its fit).
 const PRESSURE_RANGE_PSIA: (f64, f64) = (14.696, 15_000.0);
@@ -21,6 +23,8 @@ const PRESSURE_RANGE_PSIA: (f64, f64) = (14.696, 15_000.0);
 const PRESSURE_FLOOR_PSIA: f64 = 0.5;
 /// Temperatures are held to this range, degF.
 pub(super) const TEMPERATURE_RANGE_DEGF: (f64, f64) = (32.0, 500.0);
+/// Below this pseudo-reduced temperature z bends too much for the grid.
+const LEAST_GRID_TPR: f64 = 1.15;
 /// The oil above a bubble point lower than this, psia, is compressed from here: A ln(p/pb) has no limit at zero.
 const LEAST_BUBBLE_POINT_PSIA: f64 = 14.696;
 
@@ -48,6 +52,8 @@ pub struct BlackOil {
     pub(super) gas_mass_lb_ft3: f64,
     tank: AtTank,
     pub(super) by_temperature: ByTemperature,
+    /// Filled at the first use in situ; copies of the fluid share it.
+    grid: Arc<OnceLock<Grid>>,
 }
 
 /// What depends only on the tank's temperature.
@@ -117,6 +123,7 @@ impl BlackOil {
                 functions: functions_at(tank_temperature_degf),
             },
             by_temperature: ByTemperature::new(functions_at),
+            grid: Arc::default(),
         };
         fluid.closure_is_monotone().map_err(|fault| vec![fault])?;
         Ok(fluid)
@@ -260,7 +267,31 @@ impl BlackOil {
 
     /// The fluid of one producing gas-oil ratio, prepared for many points.
     pub fn capped(&self, gor_limit_scf_stb: f64) -> CappedOil<'_> {
-        CappedOil::new(self, gor_limit_scf_stb)
+        CappedOil::new(self, gor_limit_scf_stb, Some(self.grid()))
+    }
+
+    /// The same straight from the correlations, four times slower: the reference for the prepared functions.
+    pub fn capped_by_correlations(&self, gor_limit_scf_stb: f64) -> CappedOil<'_> {
+        CappedOil::new(self, gor_limit_scf_stb, None)
+    }
+
+    /// The prepared functions of pressure and temperature: up to a little above the tank's temperature.
+    pub(super) fn grid(&self) -> &Grid {
+        const LOWEST_PSIA: f64 = 14.0;
+        const LOWEST_DEGF: f64 = 52.0;
+        const ABOVE_TANK_DEGF: f64 = 10.0;
+        // Room for the nodes beyond the edges, before the corners where pressure and temperature are held.
+        const RIM_RATIO: f64 = 0.85;
+        const RIM_DEGF: f64 = 20.0;
+        self.grid.get_or_init(|| {
+            let degf = |reduced: f64| reduced * self.gas.pseudo_critical.temperature_degr - DEGF_TO_DEGR;
+            let low_degf = LOWEST_DEGF.max(degf(LEAST_GRID_TPR) + RIM_DEGF);
+            let high_degf = (self.temperature_degf + ABOVE_TANK_DEGF)
+                .min(TEMPERATURE_RANGE_DEGF.1 - RIM_DEGF)
+                .min(degf(MAXIMUM_TPR) - RIM_DEGF);
+            let top_psia = RIM_RATIO * self.maximum_pressure_psia;
+            Grid::new(self, (LOWEST_PSIA, top_psia), (low_degf, high_degf))
+        })
     }
 
     /// What oil that holds `rs_scf_stb` does between its bubble point and `pressure_psia`.
@@ -268,6 +299,7 @@ impl BlackOil {
     pub(super) fn above_bubble_point(
         &self,
         p: f64,
+        ln_p: f64,
         rs_scf_stb: f64,
         bubble_point_psia: f64,
         temperature_degf: f64,
@@ -276,7 +308,6 @@ impl BlackOil {
         if p <= bubble_point_psia {
             return AboveBubblePoint { volume_ratio: 1.0, viscosity_ratio: 1.0 };
         }
-        let ln_p = ln(p);
         let ln_ratio = ln_p - ln(bubble_point_psia);
         let group = vasquez_beggs::compressibility_group(
             rs_scf_stb,
@@ -330,14 +361,14 @@ impl ReservoirFluid for BlackOil {
         let p = self.held_pressure(pressure_psia);
         let saturated = self.standing.bo_rb_stb(rs_scf_stb, self.temperature_degf);
         let bubble_point_psia = self.bubble_point_psia(rs_scf_stb);
-        saturated * self.above_bubble_point(p, rs_scf_stb, bubble_point_psia, self.temperature_degf).volume_ratio
+        saturated * self.above_bubble_point(p, ln(p), rs_scf_stb, bubble_point_psia, self.temperature_degf).volume_ratio
     }
 
     fn mu_o(&self, pressure_psia: f64, rs_scf_stb: f64) -> f64 {
         let p = self.held_pressure(pressure_psia);
         let saturated = BeggsRobinson::live_cp(self.tank.functions.ln_dead_cp, rs_scf_stb);
         let bubble_point_psia = self.bubble_point_psia(rs_scf_stb);
-        saturated * self.above_bubble_point(p, rs_scf_stb, bubble_point_psia, self.temperature_degf).viscosity_ratio
+        saturated * self.above_bubble_point(p, ln(p), rs_scf_stb, bubble_point_psia, self.temperature_degf).viscosity_ratio
     }
 
     fn bg(&self, pressure_psia: f64) -> f64 {

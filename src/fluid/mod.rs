@@ -25,6 +25,7 @@ mod by_temperature;
 mod capped;
 mod checks;
 mod gas;
+mod grid;
 mod range_notes;
 mod spec;
 mod state;
