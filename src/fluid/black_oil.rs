@@ -24,7 +24,7 @@ const PRESSURE_FLOOR_PSIA: f64 = 0.5;
 /// Temperatures are held to this range, degF.
 pub(super) const TEMPERATURE_RANGE_DEGF: (f64, f64) = (32.0, 500.0);
 /// Below this pseudo-reduced temperature z bends too much for the grid.
-const LEAST_GRID_TPR: f64 = 1.15;
+const LEAST_GRID_TPR: f64 = 1.2;
 /// The oil above a bubble point lower than this, psia, is compressed from here: A ln(p/pb) has no limit at zero.
 const LEAST_BUBBLE_POINT_PSIA: f64 = 14.696;
 
@@ -324,6 +324,11 @@ impl BlackOil {
     #[inline]
     pub(super) fn tuned_bubble_point_psia(&self, gas_power: f64, temperature_factor: f64) -> f64 {
         (Standing::bubble_point_of_psia(gas_power, temperature_factor) * self.inverse_tuning_factor).max(0.0)
+    }
+
+    #[inline]
+    pub(super) fn oil_density_lb_ft3(&self, rs_scf_stb: f64, bo_rb_stb: f64) -> f64 {
+        (self.oil_standard_density_lb_ft3 + self.gas_mass_lb_ft3 * rs_scf_stb) / bo_rb_stb
     }
 
     #[inline]

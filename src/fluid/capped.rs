@@ -54,30 +54,30 @@ impl<'a> CappedOil<'a> {
 
         let ln_p = ln(p);
         let prepared = if let Some(grid) = self.grid { grid.at(ln_p, t) } else { None };
-        let ([z, mu_g_cp], [pressure_power, oil_factor, cool, hot]) = match prepared {
+        let ([z, mu_g_cp, mut bo, mut density, ln_a, b], [pressure_power, oil_factor, cool, hot]) = match prepared {
             Some(prepared) => prepared,
-            None => (exact_gas(fluid, p, t), exact_powers(fluid, p)),
+            None => (exact_of_both(fluid, p, t), exact_of_pressure(fluid, p)),
         };
         let gas = fluid.gas.of_z(z, p, temperature_degr);
         let mut rs = pressure_power * at.dissolved_scf_stb;
         let mut bubble_point_psia = p;
-        let (bo, mu_o);
+        let mu_o;
         if rs > self.cap_scf_stb {
             rs = self.cap_scf_stb;
             bubble_point_psia = fluid.tuned_bubble_point_psia(self.gas_power, at.bubble_factor);
             let above = fluid.above_bubble_point(p, ln_p, rs, bubble_point_psia, t);
             let (a, b) = self.live_coefficients;
-            bo = above.volume_ratio * fluid.standing.bo_rb_stb(rs, t);
             mu_o = above.viscosity_ratio * a * exp(b * at.ln_dead_cp);
+            bo = above.volume_ratio * fluid.standing.bo_rb_stb(rs, t);
+            density = fluid.oil_density_lb_ft3(rs, bo);
         } else {
-            bo = fluid.standing.bo_rb_stb(rs, t);
-            mu_o = BeggsRobinson::live_cp(at.ln_dead_cp, rs);
+            mu_o = exp(ln_a + b * at.ln_dead_cp);
         }
         let bw = McCainWater::bw_rb_stb(p, t);
         let state = InSitu {
             rs_scf_stb: rs,
             bo_rb_stb: bo,
-            oil_density_lb_ft3: (fluid.oil_standard_density_lb_ft3 + fluid.gas_mass_lb_ft3 * rs) / bo,
+            oil_density_lb_ft3: density,
             mu_o_cp: mu_o,
             bg_ft3_scf: gas.bg_ft3_scf,
             gas_density_lb_ft3: gas.density_lb_ft3,
@@ -93,15 +93,19 @@ impl<'a> CappedOil<'a> {
     }
 }
 
-/// z and viscosity of the gas by the correlations.
-fn exact_gas(fluid: &BlackOil, pressure_psia: f64, temperature_degf: f64) -> [f64; OF_BOTH] {
+/// By the correlations: z and viscosity of the gas; volume factor and density of the saturated oil, ln a and b of its viscosity.
+fn exact_of_both(fluid: &BlackOil, pressure_psia: f64, temperature_degf: f64) -> [f64; OF_BOTH] {
     let temperature_degr = temperature_degf + DEGF_TO_DEGR;
     let gas = fluid.gas.at(pressure_psia, temperature_degr);
-    [gas.z, fluid.gas.viscosity_cp(temperature_degr, gas.density_lb_ft3)]
+    let mu_g_cp = fluid.gas.viscosity_cp(temperature_degr, gas.density_lb_ft3);
+    let rs = fluid.standing.rs_scf_stb(fluid.tuning_factor * pressure_psia, temperature_degf);
+    let bo = fluid.standing.bo_rb_stb(rs, temperature_degf);
+    let (a, b) = BeggsRobinson::live_coefficients(rs);
+    [gas.z, mu_g_cp, bo, fluid.oil_density_lb_ft3(rs, bo), ln(a), b]
 }
 
 /// The pressure group of the dissolved gas, and the pressure parts of the tensions.
-fn exact_powers(fluid: &BlackOil, pressure_psia: f64) -> [f64; OF_PRESSURE] {
+fn exact_of_pressure(fluid: &BlackOil, pressure_psia: f64) -> [f64; OF_PRESSURE] {
     let (cool, hot) = baker_swerdloff::water_gas_ends_dyn_cm(pressure_psia);
     let oil_factor = baker_swerdloff::pressure_factor(pressure_psia);
     [Standing::pressure_power(fluid.tuning_factor * pressure_psia), oil_factor, cool, hot]
@@ -109,10 +113,10 @@ fn exact_powers(fluid: &BlackOil, pressure_psia: f64) -> [f64; OF_PRESSURE] {
 
 impl Exact for BlackOil {
     fn of_both(&self, pressure_psia: f64, temperature_degf: f64) -> [f64; OF_BOTH] {
-        exact_gas(self, pressure_psia, temperature_degf)
+        exact_of_both(self, pressure_psia, temperature_degf)
     }
 
     fn of_pressure(&self, pressure_psia: f64) -> [f64; OF_PRESSURE] {
-        exact_powers(self, pressure_psia)
+        exact_of_pressure(self, pressure_psia)
     }
 }

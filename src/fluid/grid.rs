@@ -8,15 +8,15 @@
 //! difference: as good as interpolation (the rest is of eighth order), but local, so that no end condition is needed. Four
 //! nodes lie beyond every edge; the corners of the exact functions (the bounds of the fit of z) lie outside them.
 
-/// Steps of ln p per unit: 0.028 in the logarithm.
-const STEPS_PER_LN: f64 = 36.0;
+/// Steps per unit of ln p.
+const STEPS_PER_LN: f64 = 28.0;
 /// Steps per degF.
 const STEPS_PER_DEGF: f64 = 0.25;
 /// Nodes beyond each edge: one for the spline, three for its coefficients.
 const RIM: usize = 4;
 
-/// Functions of pressure and temperature on the grid: z and the gas viscosity.
-pub(super) const OF_BOTH: usize = 2;
+/// Functions of pressure and temperature on the grid; an even number, since two fit into one register.
+pub(super) const OF_BOTH: usize = 6;
 /// Functions of pressure alone on the same grid.
 pub(super) const OF_PRESSURE: usize = 4;
 
@@ -84,7 +84,7 @@ impl Grid {
         let mut both = [0.0; OF_BOTH];
         for (k, wy) in wy.into_iter().enumerate() {
             let start = (j + k) * self.columns + i;
-            let four = self.of_both.get(start..start + 4)?;
+            let four = self.of_both.get(start..start + 4)?.first_chunk::<4>()?;
             for f in 0..OF_BOTH {
                 both[f] += wy * ((wx[0] * four[0][f] + wx[1] * four[1][f]) + (wx[2] * four[2][f] + wx[3] * four[3][f]));
             }

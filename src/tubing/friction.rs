@@ -1,10 +1,11 @@
 //! Moody friction factor of a rough pipe.
 //!
 //! Turbulent flow after Colebrook (1939), `1/sqrt(f) = -2 log10(eps/(3.7 d) + 2.51/(Re sqrt(f)))`, started from
-//! Haaland (1983) and improved by two Newton steps: within 1e-8 of the exact solution for Re from 2,100 to 1e8 and
+//! Haaland (1983) and improved by one of Halley's steps: within 1e-8 of the exact solution for Re from 2,100 to 1e8 and
 //! eps/d up to 0.05, and as smooth as the equation itself. Laminar flow `f = 64/Re` below Re 2,100: the factor
 //! jumps there (as 64/Re and Colebrook do), which the traverse treats as a switch of the flow regime.
 
+use crate::elementary::ln;
 use std::f64::consts::LN_10;
 
 /// Reynolds number at which laminar flow gives way to turbulent flow.
@@ -33,12 +34,13 @@ impl Roughness {
         let inverse = 1.0 / reynolds;
         let viscous = 2.51 * inverse;
         // Haaland (1983), within 1.4 % of Colebrook.
-        let mut x = 0.9 * scale * (6.9 * inverse + self.haaland).ln();
-        for _ in 0..2 {
-            let argument = self.colebrook + viscous * x;
-            // Newton's step (x - scale ln a)/(1 - scale viscous/a), with one division.
-            x -= (x - scale * argument.ln()) * argument / (argument - scale * viscous);
-        }
+        let start = 0.9 * scale * ln(6.9 * inverse + self.haaland);
+        let argument = self.colebrook + viscous * start;
+        // The excess x - scale ln a, its slope times a, and its second derivative times a^2: Halley's step.
+        let excess = start - scale * ln(argument);
+        let slope = argument - scale * viscous;
+        let bend = scale * viscous * viscous;
+        let x = start - 2.0 * excess * argument * slope / (2.0 * slope * slope - excess * bend);
         1.0 / (x * x)
     }
 
