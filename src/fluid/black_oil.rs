@@ -9,9 +9,7 @@ use super::grid::Grid;
 use super::lee_gonzalez_eakin::LB_FT3_PER_G_CM3;
 use super::mccain::McCainWater;
 use super::standing::Standing;
-use super::{
-    FluidRow, FluidSpec, InSitu, ReservoirFluid, checks, oil_specific_gravity, osif, vasquez_beggs,
-};
+use super::{FluidRow, FluidSpec, InSitu, ReservoirFluid, checks, oil_specific_gravity, osif, vasquez_beggs};
 use crate::elementary::ln;
 use crate::fault::Fault;
 use crate::units::constants::{DEGF_TO_DEGR, FRESH_WATER_LB_FT3, FT3_PER_BBL};
@@ -54,6 +52,8 @@ pub struct BlackOil {
     pub(super) by_temperature: ByTemperature,
     /// Filled at the first use in situ; copies of the fluid share it.
     grid: Arc<OnceLock<Grid>>,
+    /// Whether the grid is used at all.
+    prepared: bool,
 }
 
 /// What depends only on the tank's temperature.
@@ -124,6 +124,7 @@ impl BlackOil {
             },
             by_temperature: ByTemperature::new(functions_at),
             grid: Arc::default(),
+            prepared: true,
         };
         fluid.closure_is_monotone().map_err(|fault| vec![fault])?;
         Ok(fluid)
@@ -267,12 +268,13 @@ impl BlackOil {
 
     /// The fluid of one producing gas-oil ratio, prepared for many points.
     pub fn capped(&self, gor_limit_scf_stb: f64) -> CappedOil<'_> {
-        CappedOil::new(self, gor_limit_scf_stb, Some(self.grid()))
+        CappedOil::new(self, gor_limit_scf_stb, self.prepared.then(|| self.grid()))
     }
 
-    /// The same straight from the correlations, four times slower: the reference for the prepared functions.
-    pub fn capped_by_correlations(&self, gor_limit_scf_stb: f64) -> CappedOil<'_> {
-        CappedOil::new(self, gor_limit_scf_stb, None)
+    /// The same fluid straight from the correlations, twice as slow: the reference for the prepared functions.
+    #[must_use]
+    pub fn unprepared(&self) -> Self {
+        Self { prepared: false, ..self.clone() }
     }
 
     /// The prepared functions of pressure and temperature: up to a little above the tank's temperature.
@@ -327,11 +329,6 @@ impl BlackOil {
     }
 
     #[inline]
-    pub(super) fn oil_density_lb_ft3(&self, rs_scf_stb: f64, bo_rb_stb: f64) -> f64 {
-        (self.oil_standard_density_lb_ft3 + self.gas_mass_lb_ft3 * rs_scf_stb) / bo_rb_stb
-    }
-
-    #[inline]
     pub(super) fn held_pressure(&self, pressure_psia: f64) -> f64 {
         hold(pressure_psia, (PRESSURE_FLOOR_PSIA, self.maximum_pressure_psia))
     }
@@ -373,7 +370,8 @@ impl ReservoirFluid for BlackOil {
         let p = self.held_pressure(pressure_psia);
         let saturated = BeggsRobinson::live_cp(self.tank.functions.ln_dead_cp, rs_scf_stb);
         let bubble_point_psia = self.bubble_point_psia(rs_scf_stb);
-        saturated * self.above_bubble_point(p, ln(p), rs_scf_stb, bubble_point_psia, self.temperature_degf).viscosity_ratio
+        saturated
+            * self.above_bubble_point(p, ln(p), rs_scf_stb, bubble_point_psia, self.temperature_degf).viscosity_ratio
     }
 
     fn bg(&self, pressure_psia: f64) -> f64 {

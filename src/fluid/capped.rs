@@ -2,8 +2,8 @@
 
 use super::beggs_robinson::BeggsRobinson;
 use super::black_oil::{TEMPERATURE_RANGE_DEGF, hold};
-use super::mccain::McCainWater;
 use super::grid::{Exact, Grid, OF_BOTH, OF_PRESSURE};
+use super::mccain::McCainWater;
 use super::standing::Standing;
 use super::{BlackOil, InSitu, baker_swerdloff};
 use crate::elementary::{exp, ln};
@@ -54,7 +54,7 @@ impl<'a> CappedOil<'a> {
 
         let ln_p = ln(p);
         let prepared = if let Some(grid) = self.grid { grid.at(ln_p, t) } else { None };
-        let ([z, mu_g_cp, mut bo, mut density, ln_a, b], [pressure_power, oil_factor, cool, hot]) = match prepared {
+        let ([z, mu_g_cp, mut bo, ln_a, b], [pressure_power, oil_factor, cool, hot]) = match prepared {
             Some(prepared) => prepared,
             None => (exact_of_both(fluid, p, t), exact_of_pressure(fluid, p)),
         };
@@ -69,7 +69,6 @@ impl<'a> CappedOil<'a> {
             let (a, b) = self.live_coefficients;
             mu_o = above.viscosity_ratio * a * exp(b * at.ln_dead_cp);
             bo = above.volume_ratio * fluid.standing.bo_rb_stb(rs, t);
-            density = fluid.oil_density_lb_ft3(rs, bo);
         } else {
             mu_o = exp(ln_a + b * at.ln_dead_cp);
         }
@@ -77,7 +76,7 @@ impl<'a> CappedOil<'a> {
         let state = InSitu {
             rs_scf_stb: rs,
             bo_rb_stb: bo,
-            oil_density_lb_ft3: density,
+            oil_density_lb_ft3: (fluid.oil_standard_density_lb_ft3 + fluid.gas_mass_lb_ft3 * rs) / bo,
             mu_o_cp: mu_o,
             bg_ft3_scf: gas.bg_ft3_scf,
             gas_density_lb_ft3: gas.density_lb_ft3,
@@ -93,7 +92,7 @@ impl<'a> CappedOil<'a> {
     }
 }
 
-/// By the correlations: z and viscosity of the gas; volume factor and density of the saturated oil, ln a and b of its viscosity.
+/// By the correlations: z and viscosity of the gas; volume factor of the saturated oil, ln a and b of its viscosity.
 fn exact_of_both(fluid: &BlackOil, pressure_psia: f64, temperature_degf: f64) -> [f64; OF_BOTH] {
     let temperature_degr = temperature_degf + DEGF_TO_DEGR;
     let gas = fluid.gas.at(pressure_psia, temperature_degr);
@@ -101,7 +100,7 @@ fn exact_of_both(fluid: &BlackOil, pressure_psia: f64, temperature_degf: f64) ->
     let rs = fluid.standing.rs_scf_stb(fluid.tuning_factor * pressure_psia, temperature_degf);
     let bo = fluid.standing.bo_rb_stb(rs, temperature_degf);
     let (a, b) = BeggsRobinson::live_coefficients(rs);
-    [gas.z, mu_g_cp, bo, fluid.oil_density_lb_ft3(rs, bo), ln(a), b]
+    [gas.z, mu_g_cp, bo, ln(a), b]
 }
 
 /// The pressure group of the dissolved gas, and the pressure parts of the tensions.

@@ -15,8 +15,8 @@ const STEPS_PER_DEGF: f64 = 0.25;
 /// Nodes beyond each edge: one for the spline, three for its coefficients.
 const RIM: usize = 4;
 
-/// Functions of pressure and temperature on the grid; an even number, since two fit into one register.
-pub(super) const OF_BOTH: usize = 6;
+/// Functions of pressure and temperature on the grid.
+pub(super) const OF_BOTH: usize = 5;
 /// Functions of pressure alone on the same grid.
 pub(super) const OF_PRESSURE: usize = 4;
 
@@ -66,7 +66,15 @@ impl Grid {
         for column in 0..columns {
             filter(&mut of_both, column, columns, rows);
         }
-        Self { ln_lowest, lowest_degf: low_degf, cells_of_pressure, cells_of_temperature, columns, of_both, of_pressure }
+        Self {
+            ln_lowest,
+            lowest_degf: low_degf,
+            cells_of_pressure,
+            cells_of_temperature,
+            columns,
+            of_both,
+            of_pressure,
+        }
     }
 
     /// The functions at a point; `None` outside the grid.
@@ -102,12 +110,7 @@ impl Grid {
 fn weights(x: f64) -> [f64; 4] {
     let r = 1.0 - x;
     let (x2, r2) = (x * x, r * r);
-    [
-        (1.0 / 6.0) * r2 * r,
-        (2.0 / 3.0) - x2 * (1.0 - 0.5 * x),
-        (2.0 / 3.0) - r2 * (1.0 - 0.5 * r),
-        (1.0 / 6.0) * x2 * x,
-    ]
+    [(1.0 / 6.0) * r2 * r, (2.0 / 3.0) - x2 * (1.0 - 0.5 * x), (2.0 / 3.0) - r2 * (1.0 - 0.5 * r), (1.0 / 6.0) * x2 * x]
 }
 
 /// Turns the values of a line of nodes into coefficients, but for three at each end.

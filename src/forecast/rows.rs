@@ -5,7 +5,9 @@ use super::doubts::{Seen, about_result};
 use super::dynamics::{Dynamics, Mode};
 use super::field::{Field, RunError};
 use super::run::{Piece, Trace, work};
-use super::{DriveIndices, Forecast, InjectedFluid, InjectorResult, InjectorRow, Period, TankRow, Tolerance, WellResult, WellRow};
+use super::{
+    DriveIndices, Forecast, InjectedFluid, InjectorResult, InjectorRow, Period, TankRow, Tolerance, WellResult, WellRow,
+};
 use crate::tank::{Cumulatives, TankState};
 use crate::well::{Landscape, follow_top};
 
