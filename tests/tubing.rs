@@ -17,10 +17,17 @@ fn spec(method: TubingMethod, sections: &[(f64, f64)], survey: &[(f64, f64)]) ->
         method,
         sections: sections
             .iter()
-            .map(|&(to_md_ft, diameter_in)| TubingSection { to_md_ft, diameter_in, roughness_in: 0.0006 })
+            .map(|&(to_md_ft, diameter_in)| TubingSection {
+                to_md_ft,
+                diameter_in,
+                roughness_in: 0.0006,
+                inner_pipe_in: 0.0,
+            })
             .collect(),
         survey: survey.to_vec(),
+        slip_factor: 1.0,
         wellhead_temperature_degf: 110.0,
+        temperatures: Vec::new(),
     }
 }
 
@@ -79,7 +86,8 @@ fn a_flowing_gas_well_matches_the_published_example() {
     // temperature and z method with a fully rough factor. 0.5 %: exact integration, other z, Colebrook, 0.2 STB/d of oil.
     let fluid = BlackOil::new(&FluidSpec::new(40.0, 0.71, 500.0), 200.0).expect("a sound fluid");
     let mut gas_well = spec(TubingMethod::NoSlip, &[], &[(0.0, 0.0), (10_000.0, 10_000.0)]);
-    gas_well.sections = vec![TubingSection { to_md_ft: WHOLE, diameter_in: 2.259, roughness_in: 0.0006 * 2.259 }];
+    gas_well.sections =
+        vec![TubingSection { to_md_ft: WHOLE, diameter_in: 2.259, roughness_in: 0.0006 * 2.259, inner_pipe_in: 0.0 }];
     gas_well.wellhead_temperature_degf = 150.0;
     let well = Tubing::new(&gas_well, None, 200.0, 0.02).expect("a sound well");
     let found = well.flowing_pressure(&fluid, &stream(0.2, 0.0, 1e7), 800.0).pressure_psia;
@@ -232,7 +240,9 @@ fn a_tiny_rate_is_the_column_at_rest() {
         let well = tubing(&vertical(method));
         let rest = well.flowing_pressure(&fluid, &stream(0.0, 0.1, 700.0), 150.0).pressure_psia;
         let tiny = well.flowing_pressure(&fluid, &stream(1e-9, 0.1, 700.0), 150.0).pressure_psia;
-        assert!((rest - tiny).abs() < 1.0, "{}: {rest} {tiny}", method.name());
+        // Gray's holdup goes to its value at rest with the 0.05th power of the velocity: 1 % is missing here.
+        let bar_psi = if method == TubingMethod::Gray { 0.02 * rest } else { 1.0 };
+        assert!((rest - tiny).abs() < bar_psi, "{}: {rest} {tiny}", method.name());
         assert!(rest > 300.0 && rest.is_finite());
     }
     // Gas slips away from liquid at rest: the default model's column is the liquid's.
@@ -336,7 +346,10 @@ fn faults_name_their_keys() {
 #[test]
 fn methods_have_the_names_of_the_file() {
     let names: Vec<_> = TubingMethod::ALL.iter().map(|m| m.name()).collect();
-    assert_eq!(names, ["hasan-kabir", "hagedorn-brown", "beggs-brill", "no-slip"]);
+    assert_eq!(
+        names,
+        ["hasan-kabir", "drift-flux", "ansari", "hagedorn-brown", "beggs-brill", "mukherjee-brill", "gray", "no-slip"]
+    );
     let well = tubing(&vertical(TubingMethod::HasanKabir)).with_method(TubingMethod::BeggsBrill);
     assert_eq!(well.method(), TubingMethod::BeggsBrill);
     assert_eq!(well, tubing(&vertical(TubingMethod::BeggsBrill)));
@@ -362,18 +375,20 @@ fn senseless_numbers_give_finite_pressures() {
 /// Random sound wells: two diameters, a kick-off, any temperature.
 fn any_well() -> impl Strategy<Value = TubingSpec> {
     let numbers = (1.0..5.0_f64, 1.0..5.0_f64, 500.0..8000.0_f64, 200.0..8000.0_f64, 0.0..1.0_f64, 40.0..200.0_f64);
-    (numbers, 0..4_usize, 0.0..0.01_f64).prop_map(|((d1, d2, kick_off, length, slope, wellhead), method, roughness)| {
-        let mut spec = spec(
-            TubingMethod::ALL[method],
-            &[(kick_off * 0.7, d1), (WHOLE, d2)],
-            &[(0.0, 0.0), (kick_off, kick_off), (kick_off + length, kick_off + slope * length)],
-        );
-        spec.wellhead_temperature_degf = wellhead;
-        for section in &mut spec.sections {
-            section.roughness_in = roughness;
-        }
-        spec
-    })
+    (numbers, 0..TubingMethod::ALL.len(), 0.0..0.01_f64).prop_map(
+        |((d1, d2, kick_off, length, slope, wellhead), method, roughness)| {
+            let mut spec = spec(
+                TubingMethod::ALL[method],
+                &[(kick_off * 0.7, d1), (WHOLE, d2)],
+                &[(0.0, 0.0), (kick_off, kick_off), (kick_off + length, kick_off + slope * length)],
+            );
+            spec.wellhead_temperature_degf = wellhead;
+            for section in &mut spec.sections {
+                section.roughness_in = roughness;
+            }
+            spec
+        },
+    )
 }
 
 proptest! {

@@ -2,11 +2,15 @@
 #![allow(clippy::unwrap_used)]
 
 use wane::fluid::{BlackOil, FluidSpec};
+use wane::tubing::ansari::Ansari;
 use wane::tubing::beggs_brill::BeggsBrill;
+use wane::tubing::drift_flux::DriftFlux;
+use wane::tubing::gray::Gray;
 use wane::tubing::hagedorn_brown::HagedornBrown;
 use wane::tubing::hasan_kabir::HasanKabir;
 use wane::tubing::liquid;
 use wane::tubing::model::{Flow, Hydraulics, Pipe};
+use wane::tubing::mukherjee_brill::MukherjeeBrill;
 use wane::tubing::no_slip::NoSlip;
 use wane::tubing::{Stream, Tubing, TubingMethod, TubingSection, TubingSpec};
 
@@ -27,10 +31,17 @@ fn well(method: TubingMethod, sections: &[(f64, f64)], survey: &[(f64, f64)], we
         method,
         sections: sections
             .iter()
-            .map(|&(to_md_ft, diameter_in)| TubingSection { to_md_ft, diameter_in, roughness_in: 0.0006 })
+            .map(|&(to_md_ft, diameter_in)| TubingSection {
+                to_md_ft,
+                diameter_in,
+                roughness_in: 0.0006,
+                inner_pipe_in: 0.0,
+            })
             .collect(),
         survey: survey.to_vec(),
+        slip_factor: 1.0,
         wellhead_temperature_degf: wellhead_degf,
+        temperatures: Vec::new(),
     }
 }
 
@@ -159,6 +170,10 @@ fn a_plain_integration_agrees() {
                 TubingMethod::HasanKabir => at(&HasanKabir),
                 TubingMethod::HagedornBrown => at(&HagedornBrown),
                 TubingMethod::BeggsBrill => at(&BeggsBrill { payne: true }),
+                TubingMethod::DriftFlux => at(&DriftFlux),
+                TubingMethod::Ansari => at(&Ansari),
+                TubingMethod::MukherjeeBrill => at(&MukherjeeBrill),
+                TubingMethod::Gray => at(&Gray),
                 TubingMethod::NoSlip => at(&NoSlip),
             }
         };

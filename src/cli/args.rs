@@ -75,6 +75,9 @@ pub struct ForecastArgs {
     /// Folder for the results [default: results/<scenario name>]
     #[arg(short, long, value_name = "DIR")]
     pub output: Option<PathBuf>,
+    /// Do not run the other tubing models to see how far the end of natural flow moves
+    #[arg(long)]
+    pub no_spread: bool,
 }
 
 #[derive(Debug, ClapArgs)]

@@ -8,6 +8,7 @@ use crate::forecast::{EventKind, Forecast, RunError};
 use crate::report::folder::ResultFolder;
 use crate::report::{forecast_files, sanity, summary_json};
 use crate::scenario::{Document, Scenario, data_doubts};
+use crate::study::add_spread;
 use crate::units::UnitSystem;
 
 pub fn run(args: &ForecastArgs) -> Result<Done, Failure> {
@@ -16,7 +17,10 @@ pub fn run(args: &ForecastArgs) -> Result<Done, Failure> {
     let scenario = document.resolve(args.case.as_deref(), &args.common.set)?;
     let folder = ResultFolder::prepare(&target(args.output.as_deref(), file))?;
 
-    let forecast = run_one(&scenario).map_err(|e| Failure::of_run(e, &scenario, None))?;
+    let mut forecast = run_one(&scenario).map_err(|e| Failure::of_run(e, &scenario, None))?;
+    if !args.no_spread {
+        add_spread(&scenario.field, &mut forecast).map_err(|e| Failure::of_run(e, &scenario, None))?;
+    }
     let provenance = provenance(&scenario, file);
     let mut files = forecast_files(&forecast, &provenance)?;
     files.push(scenario_copy(&document, &provenance.scenario_name, &files));

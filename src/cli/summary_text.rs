@@ -1,7 +1,7 @@
 //! What `forecast` prints: the answers on one screen.
 
 use super::screen::{Screen, Side};
-use crate::forecast::{Doubt, EventKind, Forecast, WellResult, date_at};
+use crate::forecast::{Doubt, EventKind, Forecast, ModelOutcome, WellResult, date_at};
 use crate::report::human::{month, number, short, span, volume};
 use crate::report::labels::{Dimension, UnitSystem, label};
 use crate::report::{CAUTION, Provenance, doubt_text, recovery, sanity};
@@ -73,10 +73,49 @@ fn ends(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
     ];
     s.table(&header, &rows);
     for well in &forecast.wells {
+        for text in spread_text(well).into_iter().chain(restart_text(forecast, well)) {
+            s.paragraph(2, 2, &text);
+        }
         for text in interruptions(forecast, &well.name) {
             s.paragraph(2, 2, &text);
         }
     }
+}
+
+/// Between which months the end lies over the tubing models that apply.
+fn spread_text(well: &WellResult) -> Option<String> {
+    let spread = well.spread.as_ref()?;
+    let name = &well.name;
+    let failed: Vec<&str> =
+        spread.models.iter().filter(|m| matches!(m.outcome, ModelOutcome::Failed(_))).map(|m| m.method).collect();
+    let left_out = if failed.is_empty() { String::new() } else { format!("; not run with {}", failed.join(", ")) };
+    let count = spread.models.len() - failed.len();
+    let still = spread.still_flowing();
+    let text = match (spread.earliest(), spread.latest()) {
+        (Some((first, earliest)), Some((last, latest))) if still.is_empty() => {
+            format!("between {} ({first}) and {} ({last})", month(earliest.date), month(latest.date))
+        }
+        (Some((first, earliest)), _) => {
+            format!("from {} ({first}) on; it still flows with {}", month(earliest.date), still.join(", "))
+        }
+        _ => "it still flows at the end of the forecast with every one".to_owned(),
+    };
+    Some(format!("{name}, over {count} tubing models: {text}{left_out}."))
+}
+
+/// When a shutdown becomes final.
+fn restart_text(forecast: &Forecast, well: &WellResult) -> Option<String> {
+    let days = well.restart_until?;
+    let date = date_at(forecast.start, days);
+    let name = &well.name;
+    Some(if days <= 0.0 {
+        format!("{name}, shut in long enough for its column to die: does not start by itself again.")
+    } else {
+        format!(
+            "{name}, shut in long enough for its column to die: does not start by itself again from {} on.",
+            month(date)
+        )
+    })
 }
 
 /// Ends of natural flow after which the well came back.
@@ -163,8 +202,9 @@ fn tank(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
     if gas_in > 0.0 {
         pairs.push(("gas injected", volume(gas.of(gas_in), gas.text)));
     }
-    let replaced = last.voidage_replacement_cum.map_or_else(|| "-".to_owned(), |v| number(v, 3));
-    pairs.push(("voidage replaced", format!("{replaced} of all that was withdrawn")));
+    if let Some(replaced) = last.voidage_replacement_cum.filter(|_| water > 0.0 || gas_in > 0.0) {
+        pairs.push(("voidage replaced", format!("{} of all that the forecast withdraws", number(replaced, 3))));
+    }
     if let Some(d) = last.drive_indices {
         let shares = [
             ("depletion", d.depletion),

@@ -2,14 +2,15 @@
 
 use super::field::{Field, Setup, injected_fvf, injection_limit};
 use super::integrate::Problem;
+use super::placement::place_on;
 use super::{InjectedFluid, InjectionControl, StopReason};
 use crate::roots::brent;
 use crate::tank::{ClosureError, Cumulatives, TankState};
-use crate::well::{Gauge, WellNow, follow_top, oil_gradient_psi_ft, right_crossing, top_near};
+use crate::well::{Gauge, LOOK_FROM, LOOK_TO, WellNow, follow_top, oil_gradient_psi_ft, right_crossing, top_near};
 use std::cell::{Cell, RefCell};
 
 /// Height in psi by which the target (or floor) must be out of reach before it is taken up again, so that modes never flicker.
-const REGAIN_PSI: f64 = 0.01;
+pub(super) const REGAIN_PSI: f64 = 0.01;
 /// Flow margin at which a dead well may flow again, psi.
 pub(super) const FLOW_AGAIN_PSI: f64 = 1.0;
 /// Depth from which a valley between the top of a hump and the operating point parts the hump in two, psi.
@@ -20,8 +21,12 @@ const CLEAR_MARGIN_PSI: f64 = 25.0;
 const BUBBLE_POINT_SLACK_SCF_STB: f64 = 1e-6;
 /// The same for the critical gas saturation.
 const CRITICAL_GAS_SLACK: f64 = 1e-9;
+/// Days within which another crossing counts as soon.
+const SOON_DAYS: f64 = 30.0;
 /// Relative slack of an injection limit.
 const LIMIT_SLACK: f64 = 1e-6;
+/// Slack in psi of an injector shut in by its bottom-hole limit.
+const SHUT_SLACK_PSI: f64 = 1e-3;
 
 /// What a well does.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -41,6 +46,22 @@ pub(super) enum Mode {
     },
     /// Stopped for this reason.
     Stopped(StopReason),
+}
+
+impl Modes {
+    pub fn new(wells: usize, injectors: usize, saturated: bool, gas_mobile: bool) -> Self {
+        Self {
+            wells: vec![Mode::Waiting; wells],
+            watch_return: vec![false; wells],
+            injecting: vec![false; injectors],
+            limited: vec![false; injectors],
+            saturated,
+            gas_mobile,
+            bubble_point_slack: Slack::new(BUBBLE_POINT_SLACK_SCF_STB),
+            critical_gas_slack: Slack::new(CRITICAL_GAS_SLACK),
+            held_shut: vec![false; injectors],
+        }
+    }
 }
 
 impl Mode {
@@ -66,6 +87,28 @@ pub(super) enum Watch {
     BubblePoint,
     CriticalGas,
     InjectorLimit(usize),
+    /// The tank's pressure passes the injector's bottom-hole limit, where the allowed rate is bent at zero.
+    InjectorShut(usize),
+}
+
+/// Room around a border. A tank can settle right on one of its borders; each crossing soon after the last one widens the room,
+/// so that rounding does not cut the run into slivers. Only the integrator's restarts hang on it, not the physics.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Slack {
+    pub now: f64,
+    least: f64,
+    last_days: f64,
+}
+
+impl Slack {
+    fn new(least: f64) -> Self {
+        Self { now: least, least, last_days: f64::NEG_INFINITY }
+    }
+
+    pub fn crossed(&mut self, t_days: f64) {
+        self.now = if t_days - self.last_days < SOON_DAYS { 10.0 * self.now } else { self.least };
+        self.last_days = t_days;
+    }
 }
 
 /// Discrete state of a stretch.
@@ -78,6 +121,11 @@ pub(super) struct Modes {
     pub limited: Vec<bool>,
     pub saturated: bool,
     pub gas_mobile: bool,
+    /// How far beyond the bubble point, scf/STB, and the critical gas saturation the tank goes before it counts as a crossing.
+    pub bubble_point_slack: Slack,
+    pub critical_gas_slack: Slack,
+    /// Injectors shut in by their bottom-hole limit.
+    pub held_shut: Vec<bool>,
 }
 
 /// Where a well was found last.
@@ -99,13 +147,22 @@ impl Spot {
     /// Where the hump on which the well flows begins, STB/d; `low` is the part of open flow at which it was seen first.
     fn left_end(&self, low: f64, open_flow_stb_d: f64) -> f64 {
         if low <= 0.0 {
-            0.0
+            LOOK_FROM * open_flow_stb_d
         } else if self.low_rate_stb_d > 0.0 {
             self.low_rate_stb_d
         } else {
             low * open_flow_stb_d
         }
     }
+}
+
+/// A dip between the top of a hump and the operating point.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Valley {
+    pub rate_stb_d: f64,
+    /// Higher ground on its right, STB/d, and how much higher it is, psi.
+    pub crest_stb_d: f64,
+    pub rise_psi: f64,
 }
 
 /// Offsets into the scaled state vector.
@@ -198,7 +255,12 @@ impl<'a> Dynamics<'a> {
                 }
             }
         }
-        watches.extend((0..setup.injectors.len()).filter(|&i| modes.injecting[i]).map(Watch::InjectorLimit));
+        for i in (0..setup.injectors.len()).filter(|&i| modes.injecting[i]) {
+            watches.push(Watch::InjectorLimit(i));
+            if setup.injectors[i].bottomhole_limit_psia.is_some() && setup.injectors[i].injectivity.is_some() {
+                watches.push(Watch::InjectorShut(i));
+            }
+        }
         Self { field, setup, modes, memory, watches }
     }
 
@@ -292,7 +354,7 @@ impl<'a> Dynamics<'a> {
             return rate;
         }
         let guess = if spot.top_rate_stb_d > 0.0 { spot.top_rate_stb_d } else { 0.3 * open };
-        let (top_rate, top, _) = follow_top(height, guess, bounds.0, bounds.1.min(0.9999 * open));
+        let (top_rate, top) = follow_top(height, guess, bounds.0, bounds.1.min(LOOK_TO * open));
         if top <= 0.0 {
             self.remember(w, |s| s.top_rate_stb_d = top_rate);
             return top_rate;
@@ -336,10 +398,13 @@ impl<'a> Dynamics<'a> {
     /// Top of the hump on which the well flows, rate and height.
     pub fn top(&self, w: usize, now: &WellNow, low: f64, high: f64) -> (f64, f64) {
         let open = now.curve.open_flow_stb_d();
+        if open <= 0.0 {
+            return (0.0, now.survey().margin_psi);
+        }
         let spot = self.memory.spots.borrow()[w];
         let guess = if spot.top_rate_stb_d > 0.0 { spot.top_rate_stb_d } else { 0.3 * open };
         let left = spot.left_end(low, open);
-        let top = top_near(|q| now.height_psi(q), guess, left, (high * open).min(0.9999 * open).max(left));
+        let top = top_near(|q| now.height_psi(q), guess, left, (high * open).min(LOOK_TO * open).max(left));
         self.remember(w, |s| s.top_rate_stb_d = top.0);
         if low > 0.0 {
             // The valley on the left moves too.
@@ -388,11 +453,11 @@ impl<'a> Dynamics<'a> {
         match watch {
             Watch::BubblePoint => {
                 let side = if self.modes.saturated { 1.0 } else { -1.0 };
-                side * tank.excess_gas_scf_stb + BUBBLE_POINT_SLACK_SCF_STB
+                side * tank.excess_gas_scf_stb + self.modes.bubble_point_slack.now
             }
             Watch::CriticalGas => {
                 let above = tank.gas_saturation - self.setup.tank.relative_permeability().critical_gas();
-                (if self.modes.gas_mobile { above } else { -above }) + CRITICAL_GAS_SLACK
+                (if self.modes.gas_mobile { above } else { -above }) + self.modes.critical_gas_slack.now
             }
             Watch::InjectorLimit(i) => {
                 let (asked, _) = self.injection(i, tank, self.withdrawal_rb_d(tank));
@@ -403,6 +468,10 @@ impl<'a> Dynamics<'a> {
                 let scale = asked.max(limit).max(1e-9);
                 let spare = (limit - asked) / scale;
                 (if self.modes.limited[i] { -spare } else { spare }) + LIMIT_SLACK
+            }
+            Watch::InjectorShut(i) => {
+                let room = self.setup.injectors[i].bottomhole_limit_psia.unwrap_or(f64::INFINITY) - tank.pressure_psia;
+                (if self.modes.held_shut[i] { -room } else { room }) + SHUT_SLACK_PSI
             }
             Watch::CapLost(w) => {
                 let now = self.well_now(w, tank);
@@ -441,6 +510,7 @@ impl<'a> Dynamics<'a> {
                     Mode::Line { low, high } => {
                         // A rate at which the curves stand well apart answers the question without looking for the best one.
                         let known = self.memory.spots.borrow()[w].top_rate_stb_d;
+                        let known = known.min(LOOK_TO * now.curve.open_flow_stb_d());
                         let there = if known > 0.0 && low <= 0.0 { now.height_psi(known) } else { 0.0 };
                         if there > CLEAR_MARGIN_PSI { there } else { self.top(w, &now, low, high).1 }
                     }
@@ -450,7 +520,7 @@ impl<'a> Dynamics<'a> {
             Watch::RightHump(w) => self.right_hump(w, tank),
             Watch::Valley(w) => {
                 let now = self.well_now(w, tank);
-                VALLEY_PSI - self.valley(w, &now).1
+                VALLEY_PSI - self.valley(w, &now).rise_psi
             }
             Watch::MinimumRate(w) => {
                 let now = self.well_now(w, tank);
@@ -461,18 +531,34 @@ impl<'a> Dynamics<'a> {
                 let limit = spec(w).maximum_gor_scf_stb.unwrap_or(f64::INFINITY);
                 (limit - self.well_now(w, tank).gor_scf_stb) / limit
             }
-            Watch::FlowAgain(w) => FLOW_AGAIN_PSI - self.well_now(w, tank).survey().margin_psi,
+            Watch::FlowAgain(w) => {
+                let now = self.well_now(w, tank);
+                if now.curve.open_flow_stb_d() <= 0.0 {
+                    return FLOW_AGAIN_PSI;
+                }
+                let land = now.survey();
+                let short = FLOW_AGAIN_PSI - land.margin_psi;
+                // A margin alone does not help a well that one of its own limits would stop at once.
+                if short > 0.0 {
+                    return short;
+                }
+                match place_on(&now, spec(w), &land).0 {
+                    Err(_) => FLOW_AGAIN_PSI,
+                    // On its floor a well has no rate to give way to: the same room is asked for there.
+                    Ok(Mode::Floor) => short.max(FLOW_AGAIN_PSI - now.height_psi(self.floor_rate(w, &now))),
+                    Ok(_) => short,
+                }
+            }
         }
     }
 
-    /// The lowest place between the top of the hump and the operating point that has higher ground on its right: rate, and how much
-    /// higher that ground is, psi.
-    pub fn valley(&self, w: usize, now: &WellNow) -> (f64, f64) {
+    /// The lowest place between the top of the hump and the operating point that has higher ground on its right.
+    pub fn valley(&self, w: usize, now: &WellNow) -> Valley {
         const LOOKS: usize = 4;
         let rate = self.rate(w, now);
         let top = self.memory.spots.borrow()[w].top_rate_stb_d;
         let mut lowest = (top, f64::INFINITY);
-        let mut found = (top, 0.0);
+        let mut found = Valley { rate_stb_d: top, crest_stb_d: rate, rise_psi: 0.0 };
         if top <= 0.0 || top >= rate {
             return found;
         }
@@ -481,27 +567,31 @@ impl<'a> Dynamics<'a> {
             let height = now.height_psi(q);
             if height < lowest.1 {
                 lowest = (q, height);
-            } else if height - lowest.1 > found.1 {
-                found = (lowest.0, height - lowest.1);
+            } else if height - lowest.1 > found.rise_psi {
+                found = Valley { rate_stb_d: lowest.0, crest_stb_d: q, rise_psi: height - lowest.1 };
             }
         }
         found
     }
 
+    /// The highest place looked at to the right of the operating point, rate and height; `None` where the well does not go there.
+    pub fn right_of(&self, w: usize, now: &WellNow) -> Option<(f64, f64)> {
+        const LOOKS: usize = 2;
+        // Beyond a target or floor the well does not go, so nothing there matters.
+        let cap = self.floor_rate(w, now).min(self.setup.wells[w].spec.target_rate_stb_d.unwrap_or(f64::INFINITY));
+        let (rate, open) = (self.rate(w, now), now.curve.open_flow_stb_d().min(cap));
+        if !(rate > 0.0 && rate < open) {
+            return None;
+        }
+        (1..=LOOKS)
+            .map(|k| rate + (open - rate) * k as f64 / (LOOKS + 1) as f64)
+            .map(|q| (q, now.height_psi(q)))
+            .max_by(|a, b| a.1.total_cmp(&b.1))
+    }
+
     /// Positive while no other hump reaches above zero to the right of the one on which the well flows.
     fn right_hump(&self, w: usize, tank: &TankState) -> f64 {
-        const LOOKS: usize = 2;
-        let now = self.well_now(w, tank);
-        // Beyond a target or floor the well does not go, so nothing there matters.
-        let cap = self.floor_rate(w, &now).min(self.setup.wells[w].spec.target_rate_stb_d.unwrap_or(f64::INFINITY));
-        let (rate, open) = (self.rate(w, &now), now.curve.open_flow_stb_d().min(cap));
-        if !(rate > 0.0 && rate < open) {
-            return 1.0;
-        }
-        let highest = (1..=LOOKS)
-            .map(|k| now.height_psi(rate + (open - rate) * k as f64 / (LOOKS + 1) as f64))
-            .fold(f64::NEG_INFINITY, f64::max);
-        REGAIN_PSI - highest
+        self.right_of(w, &self.well_now(w, tank)).map_or(1.0, |(_, height)| REGAIN_PSI - height)
     }
 }
 

@@ -18,6 +18,11 @@ pub type State = DVector<f64>;
 
 /// Samples of the interpolant per step where a dip is suspected.
 const DIP_SAMPLES: usize = 12;
+/// Steps after which a stretch is given up.
+const MOST_STEPS: u32 = 100_000;
+/// The solver's own test for stiffness would give up a tank that follows its injection within days. Such a run only costs steps, so
+/// the test is put off for ever.
+const NO_STIFFNESS_TEST: u32 = u32::MAX;
 /// Width in days to which events are located.
 const EVENT_WIDTH_DAYS: f64 = 1e-7;
 
@@ -199,8 +204,8 @@ pub fn integrate<P: Problem>(
         10.0,
         settings.longest_step_days,
         settings.first_step_days.min(span),
-        20_000,
-        1000,
+        MOST_STEPS,
+        NO_STIFFNESS_TEST,
         OutputType::Continuous,
     );
     let mut dense = ContinuousOutputModel::default();

@@ -6,6 +6,7 @@ mod doubts;
 mod dynamics;
 mod field;
 pub mod integrate;
+mod placement;
 mod result;
 mod rows;
 mod run;

@@ -157,6 +157,11 @@ pub struct WellRow {
     pub water_cut: Option<f64>,
     /// Flow margin at line pressure, psi; negative for a dead well.
     pub flow_margin_psi: Option<f64>,
+    /// Reservoir pressure at the perforations less the pressure under a full column of dead oil and water at line pressure, psi:
+    /// below zero a shut-in well does not start by itself.
+    pub restart_margin_psi: Option<f64>,
+    /// Liquid rate over the rate at the minimum of the tubing curve, less one; below zero the well flows left of the minimum.
+    pub stability_margin: Option<f64>,
 }
 
 /// One injector in one period.
@@ -253,6 +258,57 @@ pub struct CurveSet {
     pub flow_margin_psi: f64,
 }
 
+/// What one tubing model makes of a well.
+#[derive(Debug, Clone, PartialEq)]
+pub enum ModelOutcome {
+    /// Natural flow ends.
+    Ends(FlowEnd),
+    /// The well still flows at the end of the forecast.
+    StillFlows,
+    /// The forecast cannot be run with this model, for this reason.
+    Failed(String),
+}
+
+/// The end of natural flow with one tubing model.
+#[derive(Debug, Clone, PartialEq)]
+pub struct ModelEnd {
+    /// Name of the tubing model, as in the scenario file.
+    pub method: &'static str,
+    /// What it makes of the well.
+    pub outcome: ModelOutcome,
+}
+
+/// The end of natural flow over the applicable tubing models, the well's own first.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Spread {
+    /// One entry per model.
+    pub models: Vec<ModelEnd>,
+}
+
+impl Spread {
+    /// The earliest end and its model.
+    pub fn earliest(&self) -> Option<(&'static str, &FlowEnd)> {
+        self.ends().min_by(|a, b| a.1.days.total_cmp(&b.1.days))
+    }
+
+    /// The latest end and its model; `None` when no model ends the flow. Models with which the well still flows lie beyond it.
+    pub fn latest(&self) -> Option<(&'static str, &FlowEnd)> {
+        self.ends().max_by(|a, b| a.1.days.total_cmp(&b.1.days))
+    }
+
+    /// The models with which the well still flows at the end of the forecast.
+    pub fn still_flowing(&self) -> Vec<&'static str> {
+        self.models.iter().filter(|m| m.outcome == ModelOutcome::StillFlows).map(|m| m.method).collect()
+    }
+
+    fn ends(&self) -> impl Iterator<Item = (&'static str, &FlowEnd)> {
+        self.models.iter().filter_map(|m| match &m.outcome {
+            ModelOutcome::Ends(end) => Some((m.method, end)),
+            _ => None,
+        })
+    }
+}
+
 /// One well of a finished forecast.
 #[derive(Debug, Clone, PartialEq)]
 pub struct WellResult {
@@ -266,6 +322,10 @@ pub struct WellResult {
     pub flowing_at_end: bool,
     /// Days from the start at which the target was first lost; `None` without a target or when it was never lost.
     pub plateau_end: Option<f64>,
+    /// Days from the start after which the well could not start again from a shut-in against its own dead column.
+    pub restart_until: Option<f64>,
+    /// The end of natural flow over the applicable tubing models, once computed.
+    pub spread: Option<Spread>,
     /// Highest producing gas-oil ratio, scf/STB, over period ends.
     pub peak_gor_scf_stb: f64,
     /// Inflow equation in words and figures ("Fetkovich, C = 7.9e-4 STB/d/psi^2n, n = 0.85 fitted to 3 tests").
@@ -296,6 +356,8 @@ pub enum DoubtKind {
     UnlikelyValue,
     /// A test that the model does not reproduce.
     TestMismatch,
+    /// A model that met no measurement, or models that lie far apart.
+    ModelChoice,
     /// A fit that is weak or unphysical.
     WeakFit,
     /// A measured pressure that the computed state does not meet.

@@ -9,12 +9,10 @@ use super::{
     DriveIndices, Forecast, InjectedFluid, InjectorResult, InjectorRow, Period, TankRow, Tolerance, WellResult, WellRow,
 };
 use crate::tank::{Cumulatives, TankState};
-use crate::well::{Landscape, follow_top};
+use crate::well::{LOOK_FROM, LOOK_TO, Landscape, WellNow, follow_top};
 
 /// Height to which the crossings of rows are resolved, psi: far below what a row shows.
 const ROW_CROSSING_PSI: f64 = 1e-3;
-/// Rows between two searches for the top of the margin; in between it is taken to move on as it did.
-const ROWS_PER_SEARCH: usize = 6;
 /// Rows between two looks at other rates; in between the top of the margin is followed.
 const ROWS_PER_LOOK: usize = 12;
 /// Those other rates, as parts of open flow.
@@ -24,8 +22,6 @@ const LOOKS: [f64; 7] = [0.02, 0.05, 0.1, 0.2, 0.35, 0.55, 0.8];
 #[derive(Clone, Copy, Default)]
 struct Margin {
     rate_stb_d: f64,
-    /// Change of that rate from row to row; `None` where the top is a corner, which has to be searched for.
-    drift_stb_d: Option<f64>,
     age: usize,
 }
 
@@ -54,6 +50,8 @@ pub(super) fn forecast(field: &Field, trace: &Trace) -> Result<Forecast, RunErro
                     p.modes.wells[w].flows() && trace.flow_ends[w].is_none_or(|e| e.days < trace.end_days)
                 }) && trace.flow_ends[w].is_none(),
                 plateau_end: trace.plateau_ends[w],
+                restart_until: restart_until(&list, &rows),
+                spread: None,
                 peak_gor_scf_stb: rows.iter().filter_map(|r| r.gor_scf_stb).fold(0.0, f64::max),
                 inflow_text: model.inflow_text(),
                 tests: model.tests.clone(),
@@ -89,10 +87,34 @@ pub(super) fn forecast(field: &Field, trace: &Trace) -> Result<Forecast, RunErro
     Ok(forecast)
 }
 
+/// Days from the start after which a flowing well could no longer start against its own dead column: where the restart margin first
+/// falls through zero, straight between period ends. `None` when it never does while the well flows.
+fn restart_until(periods: &[Period], rows: &[WellRow]) -> Option<f64> {
+    let mut before: Option<(f64, f64)> = None;
+    for (period, row) in periods.iter().zip(rows) {
+        let Some(margin) = row.restart_margin_psi else { continue };
+        if margin < 0.0 {
+            return Some(match before {
+                Some((days, earlier)) => days + (period.run_days - days) * earlier / (earlier - margin),
+                None => period.start_days,
+            });
+        }
+        before = Some((period.run_days, margin));
+    }
+    None
+}
+
 /// The state at an instant: the later of two touching pieces never hides what held at the end of a period.
 pub(super) fn piece_at(pieces: &[Piece], t_days: f64) -> Option<&Piece> {
     let i = pieces.partition_point(|p| p.stretch.to_days < t_days - 1e-9);
     pieces.get(i).or_else(|| pieces.last())
+}
+
+/// A cumulative volume from its scaled state: where nothing flows, the rounding of the interpolant does not make it fall.
+fn grown(scaled: f64, before: f64, scale: f64) -> f64 {
+    const ROUNDING: f64 = 1e-10;
+    let cum = scaled * scale;
+    if cum < before && before - cum < ROUNDING * scale { before } else { cum }
 }
 
 struct Rows<'a> {
@@ -102,6 +124,7 @@ struct Rows<'a> {
     wells: Vec<Vec<WellRow>>,
     injectors: Vec<Vec<InjectorRow>>,
     margins: Vec<Margin>,
+    minima: Vec<f64>,
     voidage_before: (f64, f64),
     last: Cumulatives,
     seen: Seen,
@@ -125,6 +148,7 @@ impl<'a> Rows<'a> {
             wells: vec![Vec::new(); wells],
             injectors: vec![Vec::new(); injectors],
             margins: vec![Margin::default(); wells],
+            minima: vec![0.0; wells],
             voidage_before: (0.0, 0.0),
             last: Cumulatives::default(),
             seen: Seen::new(wells, injectors),
@@ -168,9 +192,9 @@ impl<'a> Rows<'a> {
     ) -> WellRow {
         let (layout, initial) = (dynamics.layout(), self.field.tank().initial());
         let before = self.wells[w].last().copied().unwrap_or_default();
-        let oil_cum = y[layout.oil(w)] * initial.oil_stb;
-        let water_cum = y[layout.water(w)] * initial.oil_stb;
-        let gas_cum = y[layout.gas(w)] * initial.gas_scf;
+        let oil_cum = grown(y[layout.oil(w)], before.oil_cum_stb, initial.oil_stb);
+        let water_cum = grown(y[layout.water(w)], before.water_cum_stb, initial.oil_stb);
+        let gas_cum = grown(y[layout.gas(w)], before.gas_cum_scf, initial.gas_scf);
         let mut row = WellRow {
             oil_stb: oil_cum - before.oil_cum_stb,
             water_stb: water_cum - before.water_cum_stb,
@@ -186,7 +210,8 @@ impl<'a> Rows<'a> {
             return row;
         }
         let now = dynamics.well_now(w, tank);
-        row.flow_margin_psi = Some(self.margin(w, &now));
+        row.flow_margin_psi = Some(self.margin(w, &now, mode.flows()));
+        row.restart_margin_psi = Some(now.curve.reservoir_psia() - now.dead_column_psia());
         // A well that stopped at the very end of this period no longer flows at its end.
         let stopped_here = self.trace.flow_ends[w].is_some_and(|e| (e.days - period.run_days).abs() < 1e-6);
         if mode.flows() && !stopped_here {
@@ -195,6 +220,8 @@ impl<'a> Rows<'a> {
             row.flowing = true;
             row.liquid_rate_stb_d = Some(rate);
             row.flowing_pressure_psia = Some(flowing_psia);
+            let minimum = self.tubing_minimum(w, &now);
+            row.stability_margin = Some(rate / minimum - 1.0);
             row.gor_scf_stb = Some(now.gor_scf_stb);
             row.water_cut = Some(now.water_cut);
             row.wellhead_pressure_psia = Some(match mode {
@@ -210,33 +237,40 @@ impl<'a> Rows<'a> {
     }
 
     /// The flow margin: followed from the row before, held against other rates once a year, looked for over all rates where it is new.
-    fn margin(&mut self, w: usize, now: &crate::well::WellNow) -> f64 {
+    /// A flowing well whose followed top has sunk below zero stands on another hump: that, too, calls for the wide look.
+    fn margin(&mut self, w: usize, now: &WellNow, flows: bool) -> f64 {
         let open = now.curve.open_flow_stb_d();
         if open <= 0.0 {
             return -now.tubing_psia(0.0);
         }
         let known = &mut self.margins[w];
         if known.rate_stb_d > 0.0 && known.rate_stb_d < 0.99 * open {
-            let age = known.age + 1;
-            // At a smooth top the height is flat: a rate foretold from the last rows shows it to some 1e-4 psi.
-            if let (Some(drift), false) = (known.drift_stb_d, age.is_multiple_of(ROWS_PER_SEARCH)) {
-                *known = Margin { rate_stb_d: known.rate_stb_d + drift, age, ..*known };
-                return now.height_psi(known.rate_stb_d);
-            }
-            let (rate, margin, smooth) =
-                follow_top(|q| now.height_psi(q), known.rate_stb_d, 0.005 * open, 0.999 * open);
-            let rows = if known.drift_stb_d.is_some() { ROWS_PER_SEARCH as f64 } else { 1.0 };
-            let moved = (rate - known.rate_stb_d) / rows + known.drift_stb_d.unwrap_or(0.0);
-            *known = Margin { rate_stb_d: rate, drift_stb_d: smooth.then_some(moved), age };
+            let (rate, margin) = follow_top(|q| now.height_psi(q), known.rate_stb_d, LOOK_FROM * open, LOOK_TO * open);
+            *known = Margin { rate_stb_d: rate, age: known.age + 1 };
             let elsewhere = |part: f64| now.height_psi(part * open);
-            if age < ROWS_PER_LOOK || !LOOKS.into_iter().any(|part| elsewhere(part) > margin) {
+            let sunk = flows && margin < 0.0;
+            if !sunk && (known.age < ROWS_PER_LOOK || !LOOKS.into_iter().any(|part| elsewhere(part) > margin)) {
                 known.age %= ROWS_PER_LOOK;
                 return margin;
             }
         }
         let Landscape { margin_psi, margin_rate_stb_d, .. } = now.survey();
-        *known = Margin { rate_stb_d: margin_rate_stb_d, drift_stb_d: None, age: 1 };
+        *known = Margin { rate_stb_d: margin_rate_stb_d, age: 1 };
         margin_psi
+    }
+
+    /// Rate at which the tubing curve is lowest, STB/d: left of it the flow heads. Sought up to open flow.
+    fn tubing_minimum(&mut self, w: usize, now: &WellNow) -> f64 {
+        let open = now.curve.open_flow_stb_d();
+        let (low, high) = (LOOK_FROM * open, LOOK_TO * open);
+        let height = |q: f64| -now.tubing_psia(q);
+        let known = &mut self.minima[w];
+        if !(*known > low && *known < high) {
+            let best = LOOKS.into_iter().map(|part| part * open).map(|q| (q, height(q)));
+            *known = best.fold((low, f64::NEG_INFINITY), |a, b| if b.1 > a.1 { b } else { a }).0;
+        }
+        *known = follow_top(height, *known, low, high).0;
+        *known
     }
 
     fn flowing_days(&self, w: usize, period: &Period) -> f64 {
@@ -263,7 +297,8 @@ impl<'a> Rows<'a> {
         let (layout, scale) = (dynamics.layout(), dynamics.injected_scale(i));
         let injector = &dynamics.setup.injectors[i];
         let before = self.injectors[i].last().copied().unwrap_or_default();
-        let total = y[layout.injected(i)] * scale;
+        let cum_before = before.water_cum_stb + before.gas_cum_scf;
+        let total = grown(y[layout.injected(i)], cum_before, scale);
         let asked = y[layout.asked(i)] * scale;
         let asked_before = self.seen.asked[i];
         self.seen.asked[i] = asked;
@@ -298,8 +333,13 @@ impl<'a> Rows<'a> {
         (oil, gas, water): (f64, f64, f64),
         index: usize,
     ) {
-        let total = dynamics.cumulatives(y);
-        let balance = self.field.tank().balance(&total, tank);
+        let balance = self.field.tank().balance(&dynamics.cumulatives(y), tank);
+        let mut total = Cumulatives::default();
+        for row in self.wells.iter().filter_map(|rows| rows.last()) {
+            total.oil_stb += row.oil_cum_stb;
+            total.gas_scf += row.gas_cum_scf;
+            total.water_stb += row.water_cum_stb;
+        }
         let before = self.last;
         self.last = total;
         let (injected_water_stb, injected_gas_scf) = self

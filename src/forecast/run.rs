@@ -1,15 +1,18 @@
 //! The driver: scheduled changes, stretches between them, mode switches, the end of natural flow.
 
 use super::calendar::{date_at, days_between};
-use super::dynamics::{Dynamics, Layout, Memory, Mode, Modes, Spot, Watch};
+use super::dynamics::{Dynamics, Layout, Memory, Mode, Modes, REGAIN_PSI, Spot, Watch};
 use super::field::{Field, RunError, Setup, injection_limit};
 use super::integrate::{Effort, End, Settings, State, Stretch, integrate};
+use super::placement::{hump_at, placement, stable_below};
 use super::{Change, EventKind, EventRecord, FieldSpec, FlowEnd, Forecast, StopReason, Tolerance, Work};
 use crate::tank::{ClosureError, TankState};
-use crate::well::{Crossing, crossings, top_near};
+use crate::well::top_near;
 use jiff::civil::Date;
 use std::sync::Arc;
 
+/// Height of a hump that has come down to zero, psi: room for rounding.
+const GONE_PSI: f64 = 1e-3;
 /// Switches at one instant after which the run is given up.
 const MOST_SWITCHES_AT_ONCE: usize = 40;
 
@@ -97,14 +100,12 @@ impl<'a> Run<'a> {
         Self {
             field,
             setup,
-            modes: Modes {
-                wells: vec![Mode::Waiting; wells],
-                watch_return: vec![false; wells],
-                injecting: vec![false; injectors],
-                limited: vec![false; injectors],
-                saturated: field.start.excess_gas_scf_stb >= 0.0,
-                gas_mobile: field.start.gas_saturation > field.tank().relative_permeability().critical_gas(),
-            },
+            modes: Modes::new(
+                wells,
+                injectors,
+                field.start.excess_gas_scf_stb >= 0.0,
+                field.start.gas_saturation > field.tank().relative_permeability().critical_gas(),
+            ),
             t: 0.0,
             y: State::zeros(layout.len()),
             trace: Trace {
@@ -199,8 +200,9 @@ impl<'a> Run<'a> {
             Mode::Stopped(_) => self.setup.wells[w].spec.may_flow_again && self.modes.watch_return[w],
             _ => true,
         });
+        let ahead = |day: f64| day > self.t && day < end;
         let events_ahead =
-            self.field.spec.changes.iter().any(|c| self.day(c.on) > self.t && matches!(c.change, Change::Well(..)));
+            self.field.spec.changes.iter().any(|c| ahead(self.day(c.on)) && matches!(c.change, Change::Well(..)));
         if alive || events_ahead {
             return false;
         }
@@ -330,6 +332,8 @@ impl<'a> Run<'a> {
             let (asked, _) = dynamics.injection(i, &tank, dynamics.withdrawal_rb_d(&tank));
             let limited = asked > injection_limit(&self.setup.injectors[i], tank.pressure_psia);
             self.set_limited(i, limited, &tank);
+            let limit = self.setup.injectors[i].bottomhole_limit_psia;
+            self.modes.held_shut[i] = limit.is_some_and(|limit| tank.pressure_psia > limit);
         }
         Ok(())
     }
@@ -381,11 +385,15 @@ impl<'a> Run<'a> {
 
     /// Looks at a well from scratch and puts it where it belongs. `starting`: it did not flow before.
     fn place(&mut self, w: usize, starting: bool) -> Result<(), RunError> {
+        self.place_above(w, starting, 0.0)
+    }
+
+    fn place_above(&mut self, w: usize, starting: bool, least_psi: f64) -> Result<(), RunError> {
         let tank = self.tank_now()?;
         let before = self.modes.wells[w];
         let (found, spot) = {
             let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
-            placement(&self.setup, &dynamics, w, &tank)
+            placement(&dynamics, w, &tank, least_psi)
         };
         self.trace.memory.spots.borrow_mut()[w] = spot;
         let name = self.setup.wells[w].spec.name.clone();
@@ -413,6 +421,9 @@ impl<'a> Run<'a> {
                     self.trace.first_flow[w].get_or_insert(self.t);
                 }
                 let target = self.setup.wells[w].spec.target_rate_stb_d;
+                if mode == Mode::Target && before.flows() && before != Mode::Target {
+                    self.event(&name, EventKind::TargetRegained, String::new());
+                }
                 if target.is_some() && mode != Mode::Target && (before == Mode::Target || !before.flows()) {
                     self.plateau_lost(w);
                 }
@@ -436,6 +447,7 @@ impl<'a> Run<'a> {
         match watch {
             Watch::BubblePoint => {
                 self.modes.saturated = !self.modes.saturated;
+                self.modes.bubble_point_slack.crossed(self.t);
                 let kind = if self.modes.saturated {
                     EventKind::BubblePointCrossedDown
                 } else {
@@ -445,10 +457,12 @@ impl<'a> Run<'a> {
             }
             Watch::CriticalGas => {
                 self.modes.gas_mobile = !self.modes.gas_mobile;
+                self.modes.critical_gas_slack.crossed(self.t);
                 if self.modes.gas_mobile {
                     self.event("tank", EventKind::FreeGasMobile, format!("{:.1} psia", tank.pressure_psia));
                 }
             }
+            Watch::InjectorShut(i) => self.modes.held_shut[i] = !self.modes.held_shut[i],
             Watch::InjectorLimit(i) => self.set_limited(i, !self.modes.limited[i], &tank),
             Watch::TargetAbove(w) => {
                 let name = name(w);
@@ -472,11 +486,15 @@ impl<'a> Run<'a> {
                     let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
                     dynamics.well_now(w, &tank).survey().margin_psi
                 };
-                // The same hump, found again at a height of rounding: it is gone.
-                if matches!(watch, Watch::MarginGone(_)) && margin < 1e-3 {
+                // The same hump, found again at a height of rounding, is gone; another one may be left.
+                let gone = matches!(watch, Watch::MarginGone(_));
+                if gone && margin < GONE_PSI {
                     self.stop(w, StopReason::NoCrossing)?;
                 } else {
-                    self.place(w, false)?;
+                    self.place_above(w, false, if gone { GONE_PSI } else { 0.0 })?;
+                    if matches!(watch, Watch::RightHump(_)) {
+                        self.climb_right(w, &tank);
+                    }
                     if self.modes.wells[w].flows() && self.modes.wells[w] != before {
                         self.event(&name, EventKind::RateJump, String::new());
                     }
@@ -504,14 +522,33 @@ impl<'a> Run<'a> {
         let low = {
             let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
             let now = dynamics.well_now(w, tank);
-            let (valley, _) = dynamics.valley(w, &now);
+            let found = dynamics.valley(w, &now);
+            let valley = found.rate_stb_d;
             let rate = dynamics.rate(w, &now).max(valley);
-            let (top, _) = top_near(|q| now.height_psi(q), 0.5 * (valley + rate), valley, rate);
+            // From the higher ground, so that the same valley is not found again.
+            let (top, _) = top_near(|q| now.height_psi(q), found.crest_stb_d, valley, rate);
             let spot = &mut self.trace.memory.spots.borrow_mut()[w];
             (spot.top_rate_stb_d, spot.low_rate_stb_d) = (top, valley);
             valley / now.curve.open_flow_stb_d()
         };
         self.modes.wells[w] = Mode::Line { low, high };
+    }
+
+    /// A hump so narrow that the look over all rates steps over it, but seen on the right of the operating point, is taken from there.
+    fn climb_right(&mut self, w: usize, tank: &TankState) {
+        let Mode::Line { .. } = self.modes.wells[w] else { return };
+        let found = {
+            let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
+            let now = dynamics.well_now(w, tank);
+            dynamics
+                .right_of(w, &now)
+                .filter(|(_, height)| *height >= REGAIN_PSI)
+                .and_then(|(crest, _)| hump_at(&now, dynamics.rate(w, &now), crest))
+        };
+        if let Some((mode, spot)) = found {
+            self.trace.memory.spots.borrow_mut()[w] = spot;
+            self.modes.wells[w] = mode;
+        }
     }
 
     /// The target, or the floor's rate, can no longer be held: `h` has come down to zero there.
@@ -535,7 +572,7 @@ impl<'a> Run<'a> {
                 let limit = if was == Mode::Floor { StopReason::MinimumFlowingPressure } else { StopReason::RateLimit };
                 match stable_below(&now, 0.999_999 * cap) {
                     Some((mode, spot)) => (Ok(mode), spot),
-                    None if now.survey().margin_psi <= 1e-3 => (Err(StopReason::NoCrossing), Spot::default()),
+                    None if now.survey().margin_psi <= GONE_PSI => (Err(StopReason::NoCrossing), Spot::default()),
                     None => (Err(limit), Spot::default()),
                 }
             }
@@ -555,75 +592,6 @@ impl<'a> Run<'a> {
             }
         }
     }
-}
-
-/// The right-most stable crossing below a cap, as a mode.
-fn stable_below(now: &crate::well::WellNow, cap_stb_d: f64) -> Option<(Mode, Spot)> {
-    let open = now.curve.open_flow_stb_d();
-    let all = crossings(|q| now.height_psi(q), open);
-    let i = all.iter().rposition(|c: &Crossing| c.stable && c.rate_stb_d <= cap_stb_d)?;
-    let rate = all[i].rate_stb_d;
-    let low = if i > 0 { all[i - 1].rate_stb_d } else { 0.0 };
-    let high = all.get(i + 1).map_or(open, |c| c.rate_stb_d);
-    let nudge = 1e-4 * rate;
-    let slope = (now.height_psi(rate + nudge) - now.height_psi(rate - nudge)) / (2.0 * nudge);
-    // The hump reaches from the middle of the dip on its left to the middle of the one on its right.
-    let low = if i > 1 { 0.5 * (low + all[i - 2].rate_stb_d) } else { 0.0 };
-    let high = if high < open { 0.5 * (rate + high) } else { open };
-    Some((
-        Mode::Line { low: low / open, high: high / open },
-        Spot { rate_stb_d: rate, slope, top_rate_stb_d: 0.5 * (rate + low.max(0.5 * rate)), ..Spot::default() },
-    ))
-}
-
-/// Where a well belongs at a tank state: a flowing mode, or the reason why it does not flow.
-fn placement(setup: &Setup, dynamics: &Dynamics, w: usize, tank: &TankState) -> (Result<Mode, StopReason>, Spot) {
-    let spec = &setup.wells[w].spec;
-    let now = dynamics.well_now(w, tank);
-    let open = now.curve.open_flow_stb_d();
-    if open <= 0.0 {
-        return (Err(StopReason::NoCrossing), Spot::default());
-    }
-    let land = now.survey();
-    if land.margin_psi <= 0.0 {
-        return (Err(StopReason::NoCrossing), Spot::default());
-    }
-    if spec.maximum_water_cut.is_some_and(|limit| now.water_cut >= limit) {
-        return (Err(StopReason::WaterCutLimit), Spot::default());
-    }
-    if spec.maximum_gor_scf_stb.is_some_and(|limit| now.gor_scf_stb >= limit) {
-        return (Err(StopReason::GasOilRatioLimit), Spot::default());
-    }
-    let floor = spec.minimum_flowing_pressure_psia.map_or(f64::INFINITY, |p| now.curve.rate_stb_d(p));
-    let target = spec.target_rate_stb_d.unwrap_or(f64::INFINITY);
-    let (cap, capped, limit) = if target <= floor {
-        (target, Mode::Target, StopReason::RateLimit)
-    } else {
-        (floor, Mode::Floor, StopReason::MinimumFlowingPressure)
-    };
-    let top = Spot { top_rate_stb_d: land.top_rate_stb_d, ..Spot::default() };
-    let (mode, spot, rate) = if cap <= 0.0 {
-        return (Err(limit), top);
-    } else if cap < open && now.height_psi(cap) >= 0.0 {
-        (capped, top, cap)
-    } else {
-        match land.right_crossing_stb_d {
-            Some(rate) if rate <= cap => {
-                let nudge = 1e-4 * rate;
-                let slope = (now.height_psi(rate + nudge) - now.height_psi(rate - nudge)) / (2.0 * nudge);
-                let mode = Mode::Line { low: land.hump_stb_d.0 / open, high: land.hump_stb_d.1 / open };
-                (mode, Spot { rate_stb_d: rate, slope, ..top }, rate)
-            }
-            _ => match stable_below(&now, cap) {
-                Some((mode, spot)) => (mode, spot, spot.rate_stb_d),
-                None => return (Err(limit), top),
-            },
-        }
-    };
-    if spec.minimum_rate_stb_d.is_some_and(|least| rate < least) {
-        return (Err(StopReason::RateLimit), spot);
-    }
-    (Ok(mode), spot)
 }
 
 /// Work of a trace, for the results.

@@ -47,7 +47,19 @@ pub struct InflowCurve {
 
 impl InflowCurve {
     /// A curve with coefficient J above `effective_psia` = min(pr, pb).
+    ///
+    /// Perforations so far above the datum that no pressure is left there, and rock in which no oil moves, give a curve without flow.
     pub fn new(shape: Shape, j_stb_d_psi: f64, reservoir_psia: f64, effective_psia: f64) -> Self {
+        if !(j_stb_d_psi > 0.0 && reservoir_psia > 0.0) {
+            let reservoir_psia = reservoir_psia.max(0.0);
+            return Self {
+                shape,
+                j_stb_d_psi: 0.0,
+                reservoir_psia,
+                effective_psia: reservoir_psia,
+                open_flow_stb_d: 0.0,
+            };
+        }
         let open_flow_stb_d = j_stb_d_psi * shape.drawdown(reservoir_psia, effective_psia, 0.0);
         Self { shape, j_stb_d_psi, reservoir_psia, effective_psia, open_flow_stb_d }
     }
@@ -64,7 +76,7 @@ impl InflowCurve {
 
     /// Rate at a flowing pressure, STB/d; zero at and above reservoir pressure.
     pub fn rate_stb_d(&self, flowing_psia: f64) -> f64 {
-        if flowing_psia >= self.reservoir_psia {
+        if flowing_psia >= self.reservoir_psia || self.open_flow_stb_d <= 0.0 {
             return 0.0;
         }
         self.j_stb_d_psi * self.shape.drawdown(self.reservoir_psia, self.effective_psia, flowing_psia.max(0.0))
@@ -72,6 +84,9 @@ impl InflowCurve {
 
     /// Flowing pressure at a rate, psia: the inverse of [`rate_stb_d`](Self::rate_stb_d), in closed form. Zero beyond open flow.
     pub fn flowing_psia(&self, rate_stb_d: f64) -> f64 {
+        if self.open_flow_stb_d <= 0.0 {
+            return if rate_stb_d > 0.0 { 0.0 } else { self.reservoir_psia };
+        }
         let drawdown = rate_stb_d / self.j_stb_d_psi;
         let straight = self.reservoir_psia - drawdown;
         if straight >= self.effective_psia || self.shape == Shape::Straight {

@@ -42,6 +42,8 @@ const COLUMNS: &[(&str, Option<Dimension>, Pick)] = {
         ("water_cut", None, |v| v.water_cut),
         ("flow_margin", Some(Q::PressureDifference), |v| v.flow_margin_psi),
         ("end_liquid_rate", Some(Q::LiquidRate), |v| v.end_liquid_rate_stb_d),
+        ("restart_margin", Some(Q::PressureDifference), |v| v.restart_margin_psi),
+        ("stability_margin", None, |v| v.stability_margin),
         ("bottomhole_pressure", Some(Q::Pressure), |v| v.bottomhole_pressure_psia),
         ("water_shortfall", Some(Q::LiquidVolume), |v| v.water_shortfall_stb),
         ("gas_shortfall", Some(Q::GasVolume), |v| v.gas_shortfall_scf),

@@ -4,7 +4,7 @@ use super::json::Json;
 use super::labels::{Dimension, Label, label};
 use super::table::recovery;
 use super::{Provenance, ReportError, sanity};
-use crate::forecast::{Doubt, Forecast, InjectorResult, WellResult, date_at};
+use crate::forecast::{Doubt, FlowEnd, Forecast, InjectorResult, ModelOutcome, Spread, WellResult, date_at};
 
 /// `summary.json`.
 ///
@@ -69,7 +69,8 @@ fn summary(forecast: &Forecast, provenance: &Provenance) -> Json {
 fn tank(forecast: &Forecast, units: &Units) -> Json {
     let last = forecast.tank.last();
     let injected = |pick: fn(&crate::forecast::InjectorRow) -> f64| -> f64 {
-        forecast.injectors.iter().filter_map(|i| i.rows.last()).map(pick).sum()
+        // An empty sum is -0.0.
+        0.0 + forecast.injectors.iter().filter_map(|i| i.rows.last()).map(pick).sum::<f64>()
     };
     let oil_cum_stb = last.map_or(0.0, |t| t.oil_cum_stb);
     let drive = last.and_then(|t| t.drive_indices).map_or(Json::Null, |d| {
@@ -125,19 +126,54 @@ fn well(forecast: &Forecast, well: &WellResult, units: &Units) -> Json {
             ])
         })
         .collect();
-    let plateau_end = well.plateau_end.map_or(Json::Null, |days| Json::text(date_at(forecast.start, days).to_string()));
+    let plateau_end = day_or_null(forecast, well.plateau_end);
     Json::Object(vec![
         plain("name", well.name.as_str()),
         plain("natural_flow_end", end),
         plain("flowing_at_end", Json::Bool(well.flowing_at_end)),
         plain("plateau_end", plateau_end),
         plain("plateau_end_days", well.plateau_end),
+        plain("restart_until", day_or_null(forecast, well.restart_until)),
+        plain("restart_until_days", well.restart_until),
+        plain("spread", well.spread.as_ref().map_or(Json::Null, spread)),
         entry(units.liquid, "oil_cum", Some(last.map_or(0.0, |r| r.oil_cum_stb))),
         entry(units.liquid, "water_cum", Some(last.map_or(0.0, |r| r.water_cum_stb))),
         entry(units.gas, "gas_cum", Some(last.map_or(0.0, |r| r.gas_cum_scf))),
         entry(units.gor, "peak_gor", Some(well.peak_gor_scf_stb)),
         plain("inflow", well.inflow_text.as_str()),
         plain("tests", Json::List(tests)),
+    ])
+}
+
+fn day_or_null(forecast: &Forecast, days: Option<f64>) -> Json {
+    days.map_or(Json::Null, |days| Json::text(date_at(forecast.start, days).to_string()))
+}
+
+/// `earliest` and `latest` are dates; `latest` is null while the well still flows with one of the models.
+fn spread(spread: &Spread) -> Json {
+    let date =
+        |end: Option<(&'static str, &FlowEnd)>| end.map_or(Json::Null, |(_, end)| Json::text(end.date.to_string()));
+    let latest = if spread.still_flowing().is_empty() { spread.latest() } else { None };
+    let models = spread
+        .models
+        .iter()
+        .map(|m| {
+            let (date, text) = match &m.outcome {
+                ModelOutcome::Ends(end) => (Json::text(end.date.to_string()), end.reason.text().to_owned()),
+                ModelOutcome::StillFlows => (Json::Null, "still flows".to_owned()),
+                ModelOutcome::Failed(why) => (Json::Null, why.clone()),
+            };
+            Json::Object(vec![
+                plain("method", m.method),
+                plain("natural_flow_end", date),
+                plain("reason", text.as_str()),
+            ])
+        })
+        .collect();
+    Json::Object(vec![
+        plain("earliest", date(spread.earliest())),
+        plain("latest", date(latest)),
+        plain("models", Json::List(models)),
     ])
 }
 

@@ -28,6 +28,8 @@ pub(super) struct Values {
     pub gor_scf_stb: Option<f64>,
     pub water_cut: Option<f64>,
     pub flow_margin_psi: Option<f64>,
+    pub restart_margin_psi: Option<f64>,
+    pub stability_margin: Option<f64>,
     pub bottomhole_pressure_psia: Option<f64>,
     pub bubble_point_psia: Option<f64>,
     pub oil_saturation: Option<f64>,
@@ -140,6 +142,8 @@ pub(super) fn row(forecast: &Forecast, index: usize, subject: Subject) -> Option
                 gor_scf_stb: r.gor_scf_stb,
                 water_cut: r.water_cut,
                 flow_margin_psi: r.flow_margin_psi,
+                restart_margin_psi: r.restart_margin_psi,
+                stability_margin: r.stability_margin,
                 ..Values::default()
             };
             (well.name.as_str(), Some(r.flowing), values)

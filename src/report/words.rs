@@ -31,6 +31,7 @@ pub fn doubt_text(kind: DoubtKind) -> &'static str {
         DoubtKind::OutsideRange => "outside range",
         DoubtKind::UnlikelyValue => "unlikely value",
         DoubtKind::TestMismatch => "test mismatch",
+        DoubtKind::ModelChoice => "tubing model",
         DoubtKind::WeakFit => "weak fit",
         DoubtKind::PressureMismatch => "pressure mismatch",
         DoubtKind::EarlyEnd => "early end",

@@ -17,6 +17,7 @@
 //! Beggs and Brill, J. Pet. Tech. (May 1973) 607, with the revised flow map; Payne et al., J. Pet. Tech. (Sept. 1979)
 //! 1198.
 
+use super::ValidRange;
 use super::groups::LnGroups;
 use super::model::{Branch, Flow, Gradient, Hydraulics, Pipe, laminar_bit, laminar_margin};
 use super::no_slip;
@@ -331,6 +332,10 @@ impl Hydraulics for BeggsBrill {
                 .min(exponent_margin(ln_y, branch))
                 .min(limits_margin),
         }
+    }
+
+    fn range(&self) -> ValidRange {
+        ValidRange { gas_liquid_ratio_scf_stb: 5000.0, ..ValidRange::OPEN }
     }
 
     fn pattern(&self, flow: &Flow, pipe: &Pipe) -> &'static str {

@@ -20,6 +20,7 @@
 //! Hagedorn and Brown, J. Pet. Tech. (April 1965) 475; Griffith and Wallis, J. Heat Transfer 83 (1961) 307; chart
 //! fits of Guo, Lyons and Ghalambor (2007).
 
+use super::ValidRange;
 use super::groups::LnGroups;
 use super::model::{Branch, Flow, Gradient, Hydraulics, Pipe, Range, laminar_bit, laminar_margin};
 use std::f64::consts::LN_10;
@@ -214,6 +215,17 @@ impl Hydraulics for HagedornBrown {
             holdup: state.holdup,
             course: f64::INFINITY,
             margin: laminar_margin(state.reynolds, laminar).min(state.margin),
+        }
+    }
+
+    fn range(&self) -> ValidRange {
+        ValidRange {
+            diameter_in: (1.0, 4.0),
+            deviation_deg: 15.0,
+            liquid_viscosity_cp: 110.0,
+            viscosity_number: 0.4,
+            gas_liquid_ratio_scf_stb: 5000.0,
+            ..ValidRange::OPEN
         }
     }
 

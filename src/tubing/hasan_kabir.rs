@@ -25,6 +25,7 @@
 //! Hasan and Kabir, SPE Production Engineering (1988) 263 and 474 (mechanistic model, deviated wells); Hasan, Kabir
 //! and Sayarpour, J. Pet. Sci. Eng. 71 (2010) 114 (blended void fraction). Constants from memory of the papers.
 
+use super::ValidRange;
 use super::model::{Branch, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe, Range, laminar_bit, laminar_margin};
 use crate::elementary::exp;
 use crate::units::constants::GRAVITY_FT_S2;
@@ -211,6 +212,10 @@ impl Hydraulics for HasanKabir {
             margin: laminar_margin(reynolds, laminar).min(state.margin),
             course: state.course,
         }
+    }
+
+    fn range(&self) -> ValidRange {
+        ValidRange { deviation_deg: 80.0, ..ValidRange::OPEN }
     }
 
     fn pattern(&self, flow: &Flow, pipe: &Pipe) -> &'static str {

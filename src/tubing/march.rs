@@ -58,6 +58,7 @@ pub(crate) struct March<'a, M> {
     water_fraction: f64,
     gor_scf_stb: f64,
     per_gor_stb_scf: f64,
+    slip_factor: f64,
     tolerance_psi: f64,
 }
 
@@ -99,7 +100,7 @@ pub(super) struct Step {
 }
 
 impl<'a, M: Hydraulics> March<'a, M> {
-    pub fn new(model: &'a M, fluid: &'a BlackOil, stream: &Stream, accuracy_psi: f64) -> Self {
+    pub fn new(model: &'a M, fluid: &'a BlackOil, stream: &Stream, slip_factor: f64, accuracy_psi: f64) -> Self {
         let water_fraction = held(stream.water_cut, 1.0);
         let gor_scf_stb = held(stream.gor_scf_stb, 1e8);
         Self {
@@ -110,6 +111,7 @@ impl<'a, M: Hydraulics> March<'a, M> {
             water_fraction,
             gor_scf_stb,
             per_gor_stb_scf: 1.0 / gor_scf_stb.max(1e-300),
+            slip_factor,
             tolerance_psi: accuracy_psi * STEP_SHARE,
         }
     }
@@ -154,8 +156,12 @@ impl<'a, M: Hydraulics> March<'a, M> {
         if above >= 0.0 {
             return liquid::branch(flow, &stretch.pipe);
         }
-        let branch = self.model.branch(flow, &stretch.pipe);
-        let near_sonic = self.model.gradient(flow, &stretch.pipe, branch).kinetic > KINETIC_LIMIT;
+        let mut branch = self.model.branch(flow, &stretch.pipe);
+        if self.slip_factor > 1.0 {
+            let holdup = self.model.gradient(flow, &stretch.pipe, branch).holdup;
+            branch.0 |= if self.free_holdup(flow, holdup) > 1.0 { Branch::SLIP_CEILING } else { 0 };
+        }
+        let near_sonic = self.on_model(flow, stretch, branch).kinetic > KINETIC_LIMIT;
         Branch(branch.0 | if near_sonic { Branch::NEAR_SONIC } else { 0 })
     }
 
@@ -169,9 +175,38 @@ impl<'a, M: Hydraulics> March<'a, M> {
         let (mut gradient, phase_margin) = if branch.has(Branch::SINGLE_PHASE) {
             (liquid::gradient(flow, &stretch.pipe, branch), above)
         } else {
-            (self.model.gradient(flow, &stretch.pipe, branch), -above)
+            (self.on_model(flow, stretch, branch), -above)
         };
         gradient.margin = gradient.margin.min(phase_margin);
+        gradient
+    }
+
+    /// Holdup with the slip factor, before it is held at 1.
+    #[inline]
+    fn free_holdup(&self, flow: &Flow, holdup: f64) -> f64 {
+        let slip = holdup - flow.no_slip_holdup;
+        // Only Ansari's slugs, whose film does not weigh, can be lighter than no slip: left so.
+        flow.no_slip_holdup + if slip > 0.0 { self.slip_factor * slip } else { slip }
+    }
+
+    /// The model's gradient, its weight and kinetic term brought to the holdup of the slip factor. Friction stays as
+    /// the model has it: the roughness is there to tune it.
+    #[inline]
+    fn on_model(&self, flow: &Flow, stretch: &Stretch, branch: Branch) -> Gradient {
+        let mut gradient = self.model.gradient(flow, &stretch.pipe, branch);
+        if self.slip_factor != 1.0 {
+            let free = self.free_holdup(flow, gradient.holdup);
+            let (holdup, margin) =
+                if branch.has(Branch::SLIP_CEILING) { (1.0, free - 1.0) } else { (free, 1.0 - free) };
+            let difference = flow.liquid_density_lb_ft3 - flow.gas_density_lb_ft3;
+            let heavier_lb_ft3 = difference * (holdup - gradient.holdup);
+            gradient.gravity_psi_ft += stretch.pipe.gravity_psi_ft(heavier_lb_ft3);
+            gradient.kinetic += flow.kinetic(heavier_lb_ft3);
+            gradient.holdup = holdup;
+            if self.slip_factor > 1.0 {
+                gradient.margin = gradient.margin.min(margin);
+            }
+        }
         gradient
     }
 

@@ -1,5 +1,6 @@
 //! What every hydraulics model gets and gives.
 
+use super::ValidRange;
 use super::friction::{LAMINAR_REYNOLDS, Roughness};
 use crate::units::constants::GRAVITY_FT_S2;
 
@@ -23,6 +24,10 @@ pub struct Pipe {
     pub cos_inclination: f64,
     /// Rise velocity of long bubbles against that in vertical pipe: sqrt(sin)*(1 + cos)^1.2, 0 for downward flow.
     pub long_bubble_factor: f64,
+    /// m(th) of the drift flux of Shi et al.
+    pub drift_flux_factor: f64,
+    /// Absolute roughness, ft.
+    pub roughness_ft: f64,
     /// sin(1.8 th) - sin(1.8 th)^3/3 of Beggs and Brill.
     pub beggs_brill_factor: f64,
     /// 1/(2 gc d 144), the constant of the friction gradient.
@@ -44,6 +49,8 @@ impl Pipe {
             sin_inclination: sin,
             cos_inclination: cos,
             long_bubble_factor: sin.max(0.0).sqrt() * (1.0 + cos).powf(1.2),
+            drift_flux_factor: super::drift_flux::Parameters::FITTED.inclination(sin, cos),
+            roughness_ft: roughness_in / 12.0,
             beggs_brill_factor: reduced - reduced.powi(3) / 3.0,
             friction_constant: 1.0 / (2.0 * GRAVITY_FT_S2 * IN2_PER_FT2 * diameter_ft),
             ln_diameter: diameter_ft.ln(),
@@ -120,7 +127,7 @@ impl Flow {
 }
 
 /// Which branch of its piecewise formulas a model is on: a bit set whose meaning is the model's own, apart from
-/// the two lowest bits and the highest.
+/// the two lowest bits and the two highest.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub struct Branch(pub u16);
 
@@ -129,6 +136,8 @@ impl Branch {
     pub const SINGLE_PHASE: u16 = 1;
     /// Reynolds number below 2,100.
     pub const LAMINAR: u16 = 2;
+    /// Holdup held at 1 by the slip factor; set and used by the march, not by the models.
+    pub const SLIP_CEILING: u16 = 0x4000;
     /// Kinetic term held at its limit; set and used by the march, not by the models.
     pub const NEAR_SONIC: u16 = 0x8000;
 
@@ -179,6 +188,11 @@ pub trait Hydraulics {
 
     /// The gradient on a given branch.
     fn gradient(&self, flow: &Flow, pipe: &Pipe, branch: Branch) -> Gradient;
+
+    /// What the model is said to hold for.
+    fn range(&self) -> ValidRange {
+        ValidRange::OPEN
+    }
 
     /// Name of the flow pattern.
     fn pattern(&self, flow: &Flow, pipe: &Pipe) -> &'static str;

@@ -5,24 +5,45 @@
 pub enum TubingMethod {
     /// Hasan and Kabir (1988, 2010): drift flux with blended void fraction.
     HasanKabir,
+    /// Shi et al. (2005): drift flux with fitted parameters.
+    DriftFlux,
+    /// Ansari et al. (1994): mechanistic, by flow pattern.
+    Ansari,
     /// Hagedorn and Brown (1965) with the bubble-flow modification.
     HagedornBrown,
     /// Beggs and Brill (1973) with the corrections of Payne et al. (1979).
     BeggsBrill,
+    /// Mukherjee and Brill (1983, 1985).
+    MukherjeeBrill,
+    /// Gray (1974): gas wells with some liquid.
+    Gray,
     /// Gas and liquid at one velocity.
     NoSlip,
 }
 
 impl TubingMethod {
     /// Every method.
-    pub const ALL: [Self; 4] = [Self::HasanKabir, Self::HagedornBrown, Self::BeggsBrill, Self::NoSlip];
+    pub const ALL: [Self; 8] = [
+        Self::HasanKabir,
+        Self::DriftFlux,
+        Self::Ansari,
+        Self::HagedornBrown,
+        Self::BeggsBrill,
+        Self::MukherjeeBrill,
+        Self::Gray,
+        Self::NoSlip,
+    ];
 
     /// Its name in scenario files and results.
     pub const fn name(self) -> &'static str {
         match self {
             Self::HasanKabir => "hasan-kabir",
+            Self::DriftFlux => "drift-flux",
+            Self::Ansari => "ansari",
             Self::HagedornBrown => "hagedorn-brown",
             Self::BeggsBrill => "beggs-brill",
+            Self::MukherjeeBrill => "mukherjee-brill",
+            Self::Gray => "gray",
             Self::NoSlip => "no-slip",
         }
     }
@@ -37,6 +58,8 @@ pub struct TubingSection {
     pub diameter_in: f64,
     /// Absolute roughness, in.
     pub roughness_in: f64,
+    /// Outside diameter of a pipe inside it, in.: the flow goes through the annulus. 0: none.
+    pub inner_pipe_in: f64,
 }
 
 /// The tubing of one well as the user states it, in oilfield units.
@@ -48,6 +71,11 @@ pub struct TubingSpec {
     pub sections: Vec<TubingSection>,
     /// Survey: measured and true vertical depth, ft, from the wellhead down; begins with (0, 0).
     pub survey: Vec<(f64, f64)>,
-    /// Flowing temperature at the wellhead, degF.
+    /// The model's holdup above no-slip times this number; 1 leaves the model as published.
+    pub slip_factor: f64,
+    /// Flowing temperature at the wellhead, degF. Not used beside a table of temperatures.
     pub wellhead_temperature_degf: f64,
+    /// Flowing temperatures: measured depth, ft, from 0 down, and degF. Empty: straight from the wellhead's to the tank's
+    /// against vertical depth.
+    pub temperatures: Vec<(f64, f64)>,
 }

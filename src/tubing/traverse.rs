@@ -1,13 +1,18 @@
 //! The pressure traverse of one well.
 
+use super::ansari::Ansari;
 use super::beggs_brill::BeggsBrill;
+use super::drift_flux::DriftFlux;
+use super::gray::Gray;
 use super::hagedorn_brown::HagedornBrown;
 use super::hasan_kabir::HasanKabir;
 use super::march::{March, Progress};
 use super::model::{Hydraulics, KINETIC_LIMIT};
+use super::mukherjee_brill::MukherjeeBrill;
 use super::no_slip::NoSlip;
-use super::path::Path;
-use super::{TubingMethod, TubingSpec};
+use super::path::{Path, Stretch};
+use super::range::RangeCheck;
+use super::{OutsideRange, TubingMethod, TubingSpec};
 use crate::fault::Fault;
 use crate::fluid::BlackOil;
 
@@ -62,6 +67,7 @@ pub struct TraversePoint {
 pub struct Tubing {
     path: Path,
     method: TubingMethod,
+    slip_factor: f64,
     accuracy_psi: f64,
 }
 
@@ -81,6 +87,22 @@ macro_rules! with_model {
                 let $model = &BeggsBrill { payne: true };
                 $body
             }
+            TubingMethod::DriftFlux => {
+                let $model = &DriftFlux;
+                $body
+            }
+            TubingMethod::Ansari => {
+                let $model = &Ansari;
+                $body
+            }
+            TubingMethod::MukherjeeBrill => {
+                let $model = &MukherjeeBrill;
+                $body
+            }
+            TubingMethod::Gray => {
+                let $model = &Gray;
+                $body
+            }
             TubingMethod::NoSlip => {
                 let $model = &NoSlip;
                 $body
@@ -89,6 +111,8 @@ macro_rules! with_model {
     };
 }
 
+/// Points of a check of ranges, besides the ends of stretches.
+const CHECK_INTERVALS: u32 = 12;
 /// Points of a profile between wellhead and perforations, besides the ends of stretches.
 const PROFILE_INTERVALS: u32 = 60;
 
@@ -108,6 +132,7 @@ impl Tubing {
         Ok(Self {
             path,
             method: spec.method,
+            slip_factor: spec.slip_factor,
             accuracy_psi: if accuracy_psi > 1e-9 { accuracy_psi.min(1.0) } else { 1e-9 },
         })
     }
@@ -154,13 +179,48 @@ impl Tubing {
         Self { method, ..self.clone() }
     }
 
+    /// The same tubing with another slip factor, held within 0 to 10.
+    #[must_use]
+    pub fn with_slip_factor(&self, slip_factor: f64) -> Self {
+        let slip_factor = if slip_factor > 0.0 { slip_factor.min(10.0) } else { 0.0 };
+        Self { slip_factor, ..self.clone() }
+    }
+
+    /// What leaves the range that the model states, somewhere along the traverse.
+    pub fn outside_range(&self, fluid: &BlackOil, stream: &Stream, wellhead_psia: f64) -> Vec<OutsideRange> {
+        with_model!(self.method, model => {
+            let mut check = RangeCheck::new(model.range(), stream);
+            self.walk(model, fluid, stream, wellhead_psia, CHECK_INTERVALS, |march, stretch, progress| {
+                let (flow, gradient, _) = march.describe(stretch, progress.md_ft, progress.pressure_psia);
+                check.point(&flow, &stretch.pipe, &gradient);
+            });
+            check.found()
+        })
+    }
+
+    /// Whether a model belongs among those whose spread says how sure a forecast is: no-slip never, Gray only on wells
+    /// within the range that it states, the others always.
+    pub fn applicable(&self, method: TubingMethod, fluid: &BlackOil, stream: &Stream, wellhead_psia: f64) -> bool {
+        match method {
+            TubingMethod::NoSlip => false,
+            // The ratio alone rules most wells out, without a traverse.
+            TubingMethod::Gray if !RangeCheck::new(Gray.range(), stream).found().is_empty() => false,
+            TubingMethod::Gray => self.with_method(method).outside_range(fluid, stream, wellhead_psia).is_empty(),
+            _ => true,
+        }
+    }
+
+    fn march<'a, M: Hydraulics>(&self, model: &'a M, fluid: &'a BlackOil, stream: &Stream) -> March<'a, M> {
+        March::new(model, fluid, stream, self.slip_factor, self.accuracy_psi)
+    }
+
     fn down<M: Hydraulics>(&self, model: &M, fluid: &BlackOil, stream: &Stream, wellhead_psia: f64) -> Traverse {
         let end = self.march_down(model, fluid, stream, wellhead_psia);
         Traverse { pressure_psia: end.pressure_psia, near_sonic: end.kinetic > KINETIC_LIMIT }
     }
 
     fn march_down<M: Hydraulics>(&self, model: &M, fluid: &BlackOil, stream: &Stream, wellhead_psia: f64) -> Progress {
-        let march = March::new(model, fluid, stream, self.accuracy_psi);
+        let march = self.march(model, fluid, stream);
         let mut progress = Progress::new(0.0, held(wellhead_psia));
         for stretch in &self.path.stretches {
             march.advance(stretch, &mut progress, stretch.bottom_md_ft);
@@ -169,7 +229,7 @@ impl Tubing {
     }
 
     fn up<M: Hydraulics>(&self, model: &M, fluid: &BlackOil, stream: &Stream, flowing_psia: f64) -> Option<f64> {
-        let march = March::new(model, fluid, stream, self.accuracy_psi);
+        let march = self.march(model, fluid, stream);
         let mut progress = Progress::new(self.path.perforations_md_ft, held(flowing_psia));
         for stretch in self.path.stretches.iter().rev() {
             if !march.advance(stretch, &mut progress, stretch.top_md_ft) {
@@ -186,14 +246,30 @@ impl Tubing {
         stream: &Stream,
         wellhead_psia: f64,
     ) -> Vec<TraversePoint> {
-        let march = March::new(model, fluid, stream, self.accuracy_psi);
-        let mut progress = Progress::new(0.0, held(wellhead_psia));
-        let spacing_ft = self.path.perforations_md_ft / f64::from(PROFILE_INTERVALS);
         let mut points = Vec::new();
+        self.walk(model, fluid, stream, wellhead_psia, PROFILE_INTERVALS, |march, stretch, progress| {
+            points.push(point(march, stretch, progress));
+        });
+        points
+    }
+
+    /// Marches down and visits the wellhead, the ends of stretches and points between.
+    fn walk<M: Hydraulics>(
+        &self,
+        model: &M,
+        fluid: &BlackOil,
+        stream: &Stream,
+        wellhead_psia: f64,
+        intervals: u32,
+        mut visit: impl FnMut(&March<'_, M>, &Stretch, &Progress),
+    ) {
+        let march = self.march(model, fluid, stream);
+        let mut progress = Progress::new(0.0, held(wellhead_psia));
+        let spacing_ft = self.path.perforations_md_ft / f64::from(intervals);
+        if let Some(first) = self.path.stretches.first() {
+            visit(&march, first, &progress);
+        }
         for stretch in &self.path.stretches {
-            if points.is_empty() {
-                points.push(point(&march, stretch, &progress));
-            }
             let steps = ((stretch.bottom_md_ft - stretch.top_md_ft) / spacing_ft).ceil().max(1.0);
             for i in 1..=steps as u32 {
                 let part = f64::from(i) / steps;
@@ -203,10 +279,9 @@ impl Tubing {
                     stretch.top_md_ft + part * (stretch.bottom_md_ft - stretch.top_md_ft)
                 };
                 march.advance(stretch, &mut progress, end_md_ft);
-                points.push(point(&march, stretch, &progress));
+                visit(&march, stretch, &progress);
             }
         }
-        points
     }
 }
 
@@ -215,7 +290,7 @@ fn held(pressure_psia: f64) -> f64 {
     if pressure_psia > 1.0 { pressure_psia.min(1e6) } else { 1.0 }
 }
 
-fn point<M: Hydraulics>(march: &March<'_, M>, stretch: &super::path::Stretch, progress: &Progress) -> TraversePoint {
+fn point<M: Hydraulics>(march: &March<'_, M>, stretch: &Stretch, progress: &Progress) -> TraversePoint {
     let (flow, gradient, pattern) = march.describe(stretch, progress.md_ft, progress.pressure_psia);
     TraversePoint {
         md_ft: progress.md_ft,

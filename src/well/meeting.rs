@@ -8,9 +8,11 @@ use crate::roots::{brent, maximise};
 
 /// Rates of the coarse look over `h`.
 const LOOK: usize = 50;
-/// First and last of them as parts of open flow.
-const LOOK_FROM: f64 = 0.005;
-const LOOK_TO: f64 = 0.999;
+/// First and last of them as parts of open flow. The first lies far below any rate that matters to an ordinary well; a prolific
+/// one flows at small parts of its open flow.
+pub const LOOK_FROM: f64 = 1e-4;
+/// See [`LOOK_FROM`].
+pub const LOOK_TO: f64 = 0.999;
 /// Relative width in rate to which crossings are refined.
 const RATE_WIDTH: f64 = 1e-10;
 /// Relative width in rate to which tops are refined: even on a corner of 1 psi per STB/d it costs well below 0.01 psi.
@@ -88,15 +90,20 @@ fn look(h: &mut impl FnMut(f64) -> f64, open_flow_stb_d: f64) -> Look {
 }
 
 /// Looks over all rates up to open flow.
-pub fn survey(mut h: impl FnMut(f64) -> f64, open_flow_stb_d: f64) -> Landscape {
+pub fn survey(h: impl FnMut(f64) -> f64, open_flow_stb_d: f64) -> Landscape {
+    survey_above(h, open_flow_stb_d, 0.0)
+}
+
+/// As [`survey`], where a hump counts as a place to flow only when it reaches above `least_psi`.
+pub fn survey_above(mut h: impl FnMut(f64) -> f64, open_flow_stb_d: f64, least_psi: f64) -> Landscape {
     let look = look(&mut h, open_flow_stb_d);
     let humps = look.humps();
     let (_, margin_rate, margin) =
         humps.iter().copied().fold((0, 0.0, f64::NEG_INFINITY), |a, b| if b.2 > a.2 { b } else { a });
     let chosen =
-        humps.iter().rposition(|x| x.2 > 0.0).or_else(|| humps.iter().position(|x| x.2 >= margin)).unwrap_or(0);
+        humps.iter().rposition(|x| x.2 > least_psi).or_else(|| humps.iter().position(|x| x.2 >= margin)).unwrap_or(0);
     let (index, top_rate, top) = humps.get(chosen).copied().unwrap_or((0, look.points[0].0, look.points[0].1));
-    let right_crossing_stb_d = (top > 0.0).then(|| {
+    let right_crossing_stb_d = (top > least_psi).then(|| {
         // The first point beyond the top at which h is no longer positive; open flow itself always is such a point.
         let beyond = look.points[index + 1..].iter().copied().find(|p| p.0 > top_rate && p.1 <= 0.0);
         let inside = look.points[index + 1..]
@@ -168,8 +175,8 @@ pub fn top_near(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: 
 }
 
 /// Follows the top of a smooth hump that moved little: the vertex of a parabola through three heights, accepted when the height
-/// there is the one foretold; otherwise [`top_near`]. Rate, height, and whether the parabola served.
-pub fn follow_top(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: f64) -> (f64, f64, bool) {
+/// there is the one foretold; otherwise [`top_near`]. Rate and height.
+pub fn follow_top(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: f64) -> (f64, f64) {
     const FORETOLD_PSI: f64 = 0.05;
     let step = 0.015 * rate_stb_d;
     let (a, b, c) = (rate_stb_d - step, rate_stb_d, rate_stb_d + step);
@@ -181,12 +188,11 @@ pub fn follow_top(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high
             let (q, foretold) = (b + shift * step, hb + 0.5 * slope * shift);
             let there = h(q);
             if q > low && q < high && (there - foretold).abs() < FORETOLD_PSI {
-                return if hb > there { (b, hb, true) } else { (q, there, true) };
+                return if hb > there { (b, hb) } else { (q, there) };
             }
         }
     }
-    let (q, height) = top_near(h, rate_stb_d, low, high);
-    (q, height, false)
+    top_near(h, rate_stb_d, low, high)
 }
 
 /// Follows a stable crossing from where it was found last, with the slope of `h` found last: rate and slope.

@@ -76,6 +76,8 @@ pub fn well(name: &str, periods: &[Period], plateau: f64, life: f64, wet: f64) -
                 gor_scf_stb: some(gor(t)),
                 water_cut: some(cut(t)),
                 flow_margin_psi: Some((life - t) * 0.3),
+                restart_margin_psi: Some((0.7 * life - t) * 0.2),
+                stability_margin: some(0.5),
             }
         })
         .collect();
@@ -94,6 +96,8 @@ pub fn well(name: &str, periods: &[Period], plateau: f64, life: f64, wet: f64) -
         flowing_at_end: rows.last().unwrap().flowing,
         rows,
         plateau_end: Some(910.25),
+        restart_until: Some(0.7 * life),
+        spread: None,
         peak_gor_scf_stb: peak,
         inflow_text: "Fetkovich, C = 7.9e-4 STB/d/psi^2n, n = 0.85 fitted to 3 tests".to_owned(),
         tests: vec![TestCheck {
