@@ -5,6 +5,7 @@
 //! unit is part of its name (`pressure_psia`, `rate_stb_d`).
 
 pub mod cli;
+pub mod elementary;
 pub mod fault;
 pub mod fluid;
 pub mod forecast;

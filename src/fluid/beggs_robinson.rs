@@ -14,7 +14,11 @@
 //! # Range
 //! 16 to 58 API, 70 to 295 degF, Rs 20 to 2,070 scf/STB, up to 5,265 psia. The dead-oil fit rises steeply below 70 degF.
 
+use crate::elementary::{Power, exp};
 use std::f64::consts::LN_10;
+
+static POWER_OF_A: Power = Power::new(-0.515);
+static POWER_OF_B: Power = Power::new(-0.338);
 
 /// The correlation for one oil.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -35,11 +39,16 @@ impl BeggsRobinson {
         (self.ln_gravity_factor - 1.163 * ln_temperature).exp().exp() - 1.0
     }
 
+    /// a and b of oil that is saturated with `rs_scf_stb`.
+    #[inline]
+    pub fn live_coefficients(rs_scf_stb: f64) -> (f64, f64) {
+        (10.715 * POWER_OF_A.of(rs_scf_stb + 100.0), 5.44 * POWER_OF_B.of(rs_scf_stb + 150.0))
+    }
+
     /// Viscosity of oil that is saturated with `rs_scf_stb`, cp.
     #[inline]
     pub fn live_cp(ln_dead_cp: f64, rs_scf_stb: f64) -> f64 {
-        let ln_a = -0.515 * (rs_scf_stb + 100.0).ln();
-        let b = 5.44 * (-0.338 * (rs_scf_stb + 150.0).ln()).exp();
-        10.715 * (ln_a + b * ln_dead_cp).exp()
+        let (a, b) = Self::live_coefficients(rs_scf_stb);
+        a * exp(b * ln_dead_cp)
     }
 }

@@ -1,23 +1,28 @@
 //! The fluid of published correlations, tuned through its measured bubble point.
 
 use super::beggs_robinson::BeggsRobinson;
-use super::dranchuk_abou_kassem::{Isotherm, MAXIMUM_PPR};
+use super::by_temperature::{AtTemperature, ByTemperature};
+use super::capped::CappedOil;
+use super::dranchuk_abou_kassem::{Isotherm, MAXIMUM_PPR, MAXIMUM_TPR};
 use super::gas::Gas;
+use super::grid::Grid;
 use super::lee_gonzalez_eakin::LB_FT3_PER_G_CM3;
 use super::mccain::McCainWater;
 use super::standing::Standing;
-use super::{
-    FluidRow, FluidSpec, InSitu, ReservoirFluid, baker_swerdloff, checks, oil_specific_gravity, osif, vasquez_beggs,
-};
+use super::{FluidRow, FluidSpec, InSitu, ReservoirFluid, checks, oil_specific_gravity, osif, vasquez_beggs};
+use crate::elementary::ln;
 use crate::fault::Fault;
 use crate::units::constants::{DEGF_TO_DEGR, FRESH_WATER_LB_FT3, FT3_PER_BBL};
+use std::sync::{Arc, OnceLock};
 
 /// The lowest and highest pressures of the model, psia (the upper one falls where z leaves its fit).
 const PRESSURE_RANGE_PSIA: (f64, f64) = (14.696, 15_000.0);
 /// Properties below this pressure, psia, are those at it: a caller's trial step never meets a pole.
 const PRESSURE_FLOOR_PSIA: f64 = 0.5;
 /// Temperatures are held to this range, degF.
-const TEMPERATURE_RANGE_DEGF: (f64, f64) = (32.0, 500.0);
+pub(super) const TEMPERATURE_RANGE_DEGF: (f64, f64) = (32.0, 500.0);
+/// Below this pseudo-reduced temperature z bends too much for the grid.
+const LEAST_GRID_TPR: f64 = 1.2;
 /// The oil above a bubble point lower than this, psia, is compressed from here: A ln(p/pb) has no limit at zero.
 const LEAST_BUBBLE_POINT_PSIA: f64 = 14.696;
 
@@ -27,24 +32,28 @@ const LEAST_BUBBLE_POINT_PSIA: f64 = 14.696;
 /// As a [`ReservoirFluid`] it answers at tank temperature; [`in_situ`](Self::in_situ) answers at any pressure and temperature.
 #[derive(Debug, Clone)]
 pub struct BlackOil {
-    spec: FluidSpec,
+    pub(super) spec: FluidSpec,
     temperature_degf: f64,
-    tuning_factor: f64,
+    pub(super) tuning_factor: f64,
     inverse_tuning_factor: f64,
     initial_bubble_point_psia: f64,
     maximum_pressure_psia: f64,
     oil_specific_gravity: f64,
     /// Gas gravity of the Vasquez-Beggs equations: corrected to a 100 psig separator when its conditions are stated.
     separator_gas_gravity: f64,
-    standing: Standing,
-    beggs_robinson: BeggsRobinson,
-    gas: Gas,
-    water: McCainWater,
+    pub(super) standing: Standing,
+    pub(super) gas: Gas,
+    pub(super) water: McCainWater,
     /// Density of stock-tank oil, lb/ft3.
-    oil_standard_density_lb_ft3: f64,
+    pub(super) oil_standard_density_lb_ft3: f64,
     /// Mass that a scf adds to a stock-tank barrel, lb/ft3 per scf/STB.
-    gas_mass_lb_ft3: f64,
+    pub(super) gas_mass_lb_ft3: f64,
     tank: AtTank,
+    pub(super) by_temperature: ByTemperature,
+    /// Filled at the first use in situ; copies of the fluid share it.
+    grid: Arc<OnceLock<Grid>>,
+    /// Whether the grid is used at all.
+    prepared: bool,
 }
 
 /// What depends only on the tank's temperature.
@@ -52,8 +61,7 @@ pub struct BlackOil {
 struct AtTank {
     temperature_degr: f64,
     isotherm: Isotherm,
-    ln_dead_cp: f64,
-    ln_temperature: f64,
+    functions: AtTemperature,
 }
 
 impl BlackOil {
@@ -80,7 +88,16 @@ impl BlackOil {
         let oil_specific_gravity = oil_specific_gravity(spec.oil_gravity_api);
         let beggs_robinson = BeggsRobinson::new(spec.oil_gravity_api);
         let temperature_degr = tank_temperature_degf + DEGF_TO_DEGR;
-        let ln_temperature = tank_temperature_degf.ln();
+        let water = McCainWater::new(spec.salinity_ppm);
+        let functions_at = |temperature_degf: f64| {
+            let ln_temperature = temperature_degf.ln();
+            AtTemperature {
+                ln_dead_cp: beggs_robinson.dead_cp(ln_temperature).ln(),
+                water_cp: water.atmospheric_cp(ln_temperature),
+                bubble_factor: standing.temperature_factor(temperature_degf),
+                dissolved_scf_stb: standing.unit_gas_scf_stb(temperature_degf),
+            }
+        };
         let fluid = Self {
             spec: spec.clone(),
             temperature_degf: tank_temperature_degf,
@@ -96,17 +113,18 @@ impl BlackOil {
                 None => spec.gas_gravity,
             },
             standing,
-            beggs_robinson,
             gas,
-            water: McCainWater::new(spec.salinity_ppm),
+            water,
             oil_standard_density_lb_ft3: oil_specific_gravity * FRESH_WATER_LB_FT3,
             gas_mass_lb_ft3: gas.standard_density_lb_scf / FT3_PER_BBL,
             tank: AtTank {
                 temperature_degr,
                 isotherm: Isotherm::new(gas.reduced_temperature(temperature_degr)),
-                ln_dead_cp: beggs_robinson.dead_cp(ln_temperature).ln(),
-                ln_temperature,
+                functions: functions_at(tank_temperature_degf),
             },
+            by_temperature: ByTemperature::new(functions_at),
+            grid: Arc::default(),
+            prepared: true,
         };
         fluid.closure_is_monotone().map_err(|fault| vec![fault])?;
         Ok(fluid)
@@ -131,7 +149,7 @@ impl BlackOil {
     #[inline]
     pub fn bubble_point_at_psia(&self, rs_scf_stb: f64, temperature_degf: f64) -> f64 {
         let t = hold(temperature_degf, TEMPERATURE_RANGE_DEGF);
-        (self.standing.bubble_point_psia(rs_scf_stb, t) * self.inverse_tuning_factor).max(0.0)
+        self.tuned_bubble_point_psia(self.standing.gas_power(rs_scf_stb), self.by_temperature.at(t).bubble_factor)
     }
 
     /// f of Rs_sat(p, T) = Standing's Rs(f p, T): the correlation's bubble point over the measured one.
@@ -245,51 +263,54 @@ impl BlackOil {
     /// Above the pressure where the cap binds the oil is undersaturated. Everything is continuous there. Pressure and temperature
     /// outside the model's range are held to it.
     pub fn in_situ(&self, pressure_psia: f64, temperature_degf: f64, gor_limit_scf_stb: f64) -> InSitu {
-        let p = self.held_pressure(pressure_psia);
-        let t = hold(temperature_degf, TEMPERATURE_RANGE_DEGF);
-        let temperature_degr = t + DEGF_TO_DEGR;
-        let (ln_p, ln_t) = (p.ln(), t.ln());
+        self.capped(gor_limit_scf_stb).in_situ(pressure_psia, temperature_degf)
+    }
 
-        let gas = self.gas.at(p, temperature_degr);
-        let rs_saturated = self.standing.rs_scf_stb(self.tuning_factor * p, t);
-        let cap = gor_limit_scf_stb.max(0.0);
-        let undersaturated = rs_saturated > cap;
-        let rs = if undersaturated { cap } else { rs_saturated };
-        let mut bo = self.standing.bo_rb_stb(rs, t);
-        let mut mu_o = BeggsRobinson::live_cp(self.beggs_robinson.dead_cp(ln_t).ln(), rs);
-        if undersaturated {
-            let above = self.above_bubble_point(p, ln_p, rs, t);
-            bo *= above.volume_ratio;
-            mu_o *= above.viscosity_ratio;
-        }
-        let bw = McCainWater::bw_rb_stb(p, t);
-        InSitu {
-            rs_scf_stb: rs,
-            bo_rb_stb: bo,
-            oil_density_lb_ft3: (self.oil_standard_density_lb_ft3 + self.gas_mass_lb_ft3 * rs) / bo,
-            mu_o_cp: mu_o,
-            bg_ft3_scf: gas.bg_ft3_scf,
-            gas_density_lb_ft3: gas.density_lb_ft3,
-            mu_g_cp: self.gas.viscosity_cp(temperature_degr, gas.density_lb_ft3),
-            bw_rb_stb: bw,
-            water_density_lb_ft3: self.water.standard_density_lb_ft3() / bw,
-            mu_w_cp: self.water.viscosity_cp(p, ln_t),
-            sigma_oil_gas_dyn_cm: baker_swerdloff::oil_gas_dyn_cm(self.spec.oil_gravity_api, t, ln_p),
-            sigma_water_gas_dyn_cm: baker_swerdloff::water_gas_dyn_cm(t, ln_p),
-            z: gas.z,
-        }
+    /// The fluid of one producing gas-oil ratio, prepared for many points.
+    pub fn capped(&self, gor_limit_scf_stb: f64) -> CappedOil<'_> {
+        CappedOil::new(self, gor_limit_scf_stb, self.prepared.then(|| self.grid()))
+    }
+
+    /// The same fluid straight from the correlations, twice as slow: the reference for the prepared functions.
+    #[must_use]
+    pub fn unprepared(&self) -> Self {
+        Self { prepared: false, ..self.clone() }
+    }
+
+    /// The prepared functions of pressure and temperature: up to a little above the tank's temperature.
+    pub(super) fn grid(&self) -> &Grid {
+        const LOWEST_PSIA: f64 = 14.0;
+        const LOWEST_DEGF: f64 = 52.0;
+        const ABOVE_TANK_DEGF: f64 = 10.0;
+        // Room for the nodes beyond the edges, before the corners where pressure and temperature are held.
+        const RIM_RATIO: f64 = 0.85;
+        const RIM_DEGF: f64 = 20.0;
+        self.grid.get_or_init(|| {
+            let degf = |reduced: f64| reduced * self.gas.pseudo_critical.temperature_degr - DEGF_TO_DEGR;
+            let low_degf = LOWEST_DEGF.max(degf(LEAST_GRID_TPR) + RIM_DEGF);
+            let high_degf = (self.temperature_degf + ABOVE_TANK_DEGF)
+                .min(TEMPERATURE_RANGE_DEGF.1 - RIM_DEGF)
+                .min(degf(MAXIMUM_TPR) - RIM_DEGF);
+            let top_psia = RIM_RATIO * self.maximum_pressure_psia;
+            Grid::new(self, (LOWEST_PSIA, top_psia), (low_degf, high_degf))
+        })
     }
 
     /// What oil that holds `rs_scf_stb` does between its bubble point and `pressure_psia`.
     #[inline]
-    fn above_bubble_point(&self, p: f64, ln_p: f64, rs_scf_stb: f64, temperature_degf: f64) -> AboveBubblePoint {
-        let bubble_point_psia = (self.standing.bubble_point_psia(rs_scf_stb, temperature_degf)
-            * self.inverse_tuning_factor)
-            .max(LEAST_BUBBLE_POINT_PSIA);
+    pub(super) fn above_bubble_point(
+        &self,
+        p: f64,
+        ln_p: f64,
+        rs_scf_stb: f64,
+        bubble_point_psia: f64,
+        temperature_degf: f64,
+    ) -> AboveBubblePoint {
+        let bubble_point_psia = bubble_point_psia.max(LEAST_BUBBLE_POINT_PSIA);
         if p <= bubble_point_psia {
             return AboveBubblePoint { volume_ratio: 1.0, viscosity_ratio: 1.0 };
         }
-        let ln_ratio = ln_p - bubble_point_psia.ln();
+        let ln_ratio = ln_p - ln(bubble_point_psia);
         let group = vasquez_beggs::compressibility_group(
             rs_scf_stb,
             temperature_degf,
@@ -303,19 +324,24 @@ impl BlackOil {
     }
 
     #[inline]
-    fn held_pressure(&self, pressure_psia: f64) -> f64 {
+    pub(super) fn tuned_bubble_point_psia(&self, gas_power: f64, temperature_factor: f64) -> f64 {
+        (Standing::bubble_point_of_psia(gas_power, temperature_factor) * self.inverse_tuning_factor).max(0.0)
+    }
+
+    #[inline]
+    pub(super) fn held_pressure(&self, pressure_psia: f64) -> f64 {
         hold(pressure_psia, (PRESSURE_FLOOR_PSIA, self.maximum_pressure_psia))
     }
 }
 
-struct AboveBubblePoint {
-    volume_ratio: f64,
-    viscosity_ratio: f64,
+pub(super) struct AboveBubblePoint {
+    pub volume_ratio: f64,
+    pub viscosity_ratio: f64,
 }
 
 /// Like `clamp`, but a NaN becomes the lower end.
 #[inline]
-fn hold(value: f64, (low, high): (f64, f64)) -> f64 {
+pub(super) fn hold(value: f64, (low, high): (f64, f64)) -> f64 {
     value.max(low).min(high)
 }
 
@@ -325,23 +351,27 @@ impl ReservoirFluid for BlackOil {
     }
 
     fn rs_saturated(&self, pressure_psia: f64) -> f64 {
-        self.standing.rs_scf_stb(self.tuning_factor * self.held_pressure(pressure_psia), self.temperature_degf)
+        Standing::pressure_power(self.tuning_factor * self.held_pressure(pressure_psia))
+            * self.tank.functions.dissolved_scf_stb
     }
 
     fn bubble_point_psia(&self, rs_scf_stb: f64) -> f64 {
-        (self.standing.bubble_point_psia(rs_scf_stb, self.temperature_degf) * self.inverse_tuning_factor).max(0.0)
+        self.tuned_bubble_point_psia(self.standing.gas_power(rs_scf_stb), self.tank.functions.bubble_factor)
     }
 
     fn bo(&self, pressure_psia: f64, rs_scf_stb: f64) -> f64 {
         let p = self.held_pressure(pressure_psia);
         let saturated = self.standing.bo_rb_stb(rs_scf_stb, self.temperature_degf);
-        saturated * self.above_bubble_point(p, p.ln(), rs_scf_stb, self.temperature_degf).volume_ratio
+        let bubble_point_psia = self.bubble_point_psia(rs_scf_stb);
+        saturated * self.above_bubble_point(p, ln(p), rs_scf_stb, bubble_point_psia, self.temperature_degf).volume_ratio
     }
 
     fn mu_o(&self, pressure_psia: f64, rs_scf_stb: f64) -> f64 {
         let p = self.held_pressure(pressure_psia);
-        let saturated = BeggsRobinson::live_cp(self.tank.ln_dead_cp, rs_scf_stb);
-        saturated * self.above_bubble_point(p, p.ln(), rs_scf_stb, self.temperature_degf).viscosity_ratio
+        let saturated = BeggsRobinson::live_cp(self.tank.functions.ln_dead_cp, rs_scf_stb);
+        let bubble_point_psia = self.bubble_point_psia(rs_scf_stb);
+        saturated
+            * self.above_bubble_point(p, ln(p), rs_scf_stb, bubble_point_psia, self.temperature_degf).viscosity_ratio
     }
 
     fn bg(&self, pressure_psia: f64) -> f64 {
@@ -360,7 +390,7 @@ impl ReservoirFluid for BlackOil {
     }
 
     fn mu_w(&self, pressure_psia: f64) -> f64 {
-        self.water.viscosity_cp(self.held_pressure(pressure_psia), self.tank.ln_temperature)
+        self.tank.functions.water_cp * McCainWater::viscosity_ratio(self.held_pressure(pressure_psia))
     }
 
     fn pressure_range_psia(&self) -> (f64, f64) {

@@ -22,6 +22,7 @@
 //! Tpr is held to at least 1.05, the last isotherm of the chart, and at most 3. Below about 1.02 the equation has up to three roots and z would
 //! jump with pressure; a gas that heavy or cool would partly condense, which no black-oil model describes.
 
+use crate::elementary::exp;
 use std::sync::LazyLock;
 
 const A1: f64 = 0.3265;
@@ -77,7 +78,7 @@ impl Isotherm {
         let r2 = r * r;
         let r5 = r2 * r2 * r;
         let s = A11 * r2;
-        let bump = self.c4 * (-s).exp();
+        let bump = self.c4 * exp(-s);
         let value = r + self.c1 * r2 + self.c2 * r2 * r - self.c3 * r5 * r + bump * (1.0 + s) * r2 * r;
         let slope =
             1.0 + 2.0 * self.c1 * r + 3.0 * self.c2 * r2 - 6.0 * self.c3 * r5 + bump * (3.0 + (3.0 - 2.0 * s) * s) * r2;
@@ -109,7 +110,7 @@ impl Isotherm {
             let step = miss * slope / (slope * slope - 0.5 * miss * curvature);
             let next = r - step;
             // Halley converges cubically: after a step this small the error is below rounding.
-            if step.abs() <= 1e-6 * r {
+            if step.abs() <= 3e-5 * r {
                 return next;
             }
             r = if next > low && next < high { next } else { 0.5 * (low + high) };
@@ -148,14 +149,26 @@ impl Starts {
     fn at(&self, target: f64, inverse_tpr: f64) -> f64 {
         let row = (inverse_tpr - Self::LOWEST) * Self::ROWS_PER_UNIT;
         let column = target / (target + 1.0) * Self::COLUMNS_PER_UNIT;
-        let i = (row as usize).min(Self::ROWS - 2);
-        let j = (column as usize).min(Self::COLUMNS - 2);
-        let (y, x) = (row - i as f64, column - j as f64);
-        let (low, high) = (&self.0[i], &self.0[i + 1]);
-        let below = low[j] + (low[j + 1] - low[j]) * x;
-        let above = high[j] + (high[j + 1] - high[j]) * x;
-        (below + (above - below) * y) * target
+        // The cell's first neighbour of four; at the rim the cell is not the middle one.
+        let i = (row as usize).clamp(1, Self::ROWS - 3) - 1;
+        let j = (column as usize).clamp(1, Self::COLUMNS - 3) - 1;
+        let along = cubic_weights(column - (j + 1) as f64);
+        let across = cubic_weights(row - (i + 1) as f64);
+        let mut sum = 0.0;
+        for (row, weight) in self.0[i..i + 4].iter().zip(across) {
+            let four = &row[j..j + 4];
+            sum += weight * ((four[0] * along[0] + four[1] * along[1]) + (four[2] * along[2] + four[3] * along[3]));
+        }
+        sum * target
     }
+}
+
+/// Weights of Lagrange's cubic through values at -1, 0, 1, 2.
+#[inline]
+fn cubic_weights(x: f64) -> [f64; 4] {
+    let (before, after, far) = (x + 1.0, x - 1.0, x - 2.0);
+    let (inner, outer) = (0.5 * after * far, 0.5 * before * x);
+    [-x * inner * (1.0 / 3.0), before * inner, -outer * far, outer * after * (1.0 / 3.0)]
 }
 
 /// The compressibility factor at one pseudo-reduced pressure and temperature.

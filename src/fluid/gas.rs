@@ -60,7 +60,12 @@ impl Gas {
     /// The gas on a prepared isotherm of its own temperature.
     #[inline]
     pub fn on_isotherm(&self, isotherm: &Isotherm, pressure_psia: f64, temperature_degr: f64) -> GasState {
-        let z = isotherm.z(self.reduced_pressure(pressure_psia));
+        self.of_z(isotherm.z(self.reduced_pressure(pressure_psia)), pressure_psia, temperature_degr)
+    }
+
+    /// The gas of a known compressibility factor.
+    #[inline]
+    pub fn of_z(&self, z: f64, pressure_psia: f64, temperature_degr: f64) -> GasState {
         // z T/p, the molar volume over R.
         let volume = z * temperature_degr / pressure_psia;
         GasState { z, bg_ft3_scf: self.standard_ratio * volume, density_lb_ft3: self.density_factor / volume }

@@ -14,6 +14,8 @@
 //! # Range
 //! 100 to 340 degF, 100 to 8,000 psia, carbon dioxide 0.9 to 3.2 mole per cent; not meant for sour gas.
 
+use crate::elementary::{exp, ln};
+
 /// 1 g/cm3 in lb/ft3.
 pub const LB_FT3_PER_G_CM3: f64 = 62.427_960_6;
 
@@ -74,7 +76,7 @@ impl LeeGonzalezEakin {
     #[inline]
     pub fn viscosity_cp(&self, temperature_degr: f64, density_lb_ft3: f64) -> f64 {
         let (k, x, y) = self.kxy(temperature_degr);
-        let density_power = (y * (density_lb_ft3 * (1.0 / LB_FT3_PER_G_CM3)).ln()).exp();
-        1e-4 * k * (x * density_power).exp()
+        let density_power = exp(y * ln(density_lb_ft3 * (1.0 / LB_FT3_PER_G_CM3)));
+        1e-4 * k * exp(x * density_power)
     }
 }

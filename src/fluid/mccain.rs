@@ -61,9 +61,17 @@ impl McCainWater {
     /// Viscosity, cp. `ln_temperature` is the logarithm of degF.
     #[inline]
     pub fn viscosity_cp(&self, pressure_psia: f64, ln_temperature: f64) -> f64 {
-        let p = pressure_psia;
-        self.viscosity_factor
-            * (self.viscosity_exponent * ln_temperature).exp()
-            * (0.9994 + (4.0295e-5 + 3.1062e-9 * p) * p)
+        self.atmospheric_cp(ln_temperature) * Self::viscosity_ratio(pressure_psia)
+    }
+
+    /// mu1, cp. `ln_temperature` is the logarithm of degF.
+    pub fn atmospheric_cp(&self, ln_temperature: f64) -> f64 {
+        self.viscosity_factor * (self.viscosity_exponent * ln_temperature).exp()
+    }
+
+    /// mu/mu1.
+    #[inline]
+    pub fn viscosity_ratio(pressure_psia: f64) -> f64 {
+        0.9994 + (4.0295e-5 + 3.1062e-9 * pressure_psia) * pressure_psia
     }
 }

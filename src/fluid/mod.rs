@@ -21,14 +21,18 @@ pub mod vasquez_beggs;
 pub mod wichert_aziz;
 
 mod black_oil;
+mod by_temperature;
+mod capped;
 mod checks;
 mod gas;
+mod grid;
 mod range_notes;
 mod spec;
 mod state;
 mod table;
 
 pub use black_oil::BlackOil;
+pub use capped::CappedOil;
 pub use range_notes::RangeNote;
 pub use spec::FluidSpec;
 pub use state::{FluidRow, InSitu};

@@ -20,9 +20,13 @@
 //! Handbooks round 1/0.83 to 1.2048; the exact inverse is used so that Rs and pb agree to rounding.
 
 use super::oil_specific_gravity;
+use crate::elementary::{Power, exp};
 use std::f64::consts::LN_10;
 
 const EXPONENT: f64 = 0.83;
+static POWER_OF_GAS: Power = Power::new(EXPONENT);
+static POWER_OF_PRESSURE: Power = Power::new(1.0 / EXPONENT);
+static POWER_OF_VOLUME: Power = Power::new(1.2);
 
 /// The correlation for one oil and gas.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -55,25 +59,50 @@ impl Standing {
     /// Bubble point of oil that holds `rs_scf_stb`, psia. Negative below a few scf/STB, where the fit has no meaning.
     #[inline]
     pub fn bubble_point_psia(&self, rs_scf_stb: f64, temperature_degf: f64) -> f64 {
-        if rs_scf_stb <= 0.0 {
-            return -18.2 * 1.4;
-        }
-        let power = (EXPONENT * (rs_scf_stb * self.inverse_gas_gravity).ln() + self.exponent(temperature_degf)).exp();
-        18.2 * (power - 1.4)
+        Self::bubble_point_of_psia(self.gas_power(rs_scf_stb), self.temperature_factor(temperature_degf))
+    }
+
+    /// (Rs/g)^0.83.
+    #[inline]
+    pub fn gas_power(&self, rs_scf_stb: f64) -> f64 {
+        if rs_scf_stb > 0.0 { POWER_OF_GAS.of(rs_scf_stb * self.inverse_gas_gravity) } else { 0.0 }
+    }
+
+    /// 10^a.
+    #[inline]
+    pub fn temperature_factor(&self, temperature_degf: f64) -> f64 {
+        exp(self.exponent(temperature_degf))
+    }
+
+    /// Bubble point from (Rs/g)^0.83 and 10^a, psia.
+    #[inline]
+    pub fn bubble_point_of_psia(gas_power: f64, temperature_factor: f64) -> f64 {
+        18.2 * (gas_power * temperature_factor - 1.4)
+    }
+
+    /// g 10^(-a/0.83), the gas that dissolves where p/18.2 + 1.4 is one, scf/STB.
+    #[inline]
+    pub fn unit_gas_scf_stb(&self, temperature_degf: f64) -> f64 {
+        self.gas_gravity * exp(self.exponent(temperature_degf) * (-1.0 / EXPONENT))
+    }
+
+    /// (p/18.2 + 1.4)^(1/0.83) at pressures above -25.48 psia.
+    #[inline]
+    pub fn pressure_power(pressure_psia: f64) -> f64 {
+        POWER_OF_PRESSURE.of(pressure_psia * (1.0 / 18.2) + 1.4)
     }
 
     /// Solution gas-oil ratio of saturated oil, scf/STB, at pressures above -25.48 psia.
     #[inline]
     pub fn rs_scf_stb(&self, pressure_psia: f64, temperature_degf: f64) -> f64 {
-        let ln_base = (pressure_psia * (1.0 / 18.2) + 1.4).ln() - self.exponent(temperature_degf);
-        self.gas_gravity * (ln_base * (1.0 / EXPONENT)).exp()
+        Self::pressure_power(pressure_psia) * self.unit_gas_scf_stb(temperature_degf)
     }
 
     /// Volume factor of saturated oil that holds `rs_scf_stb`, rb/STB.
     #[inline]
     pub fn bo_rb_stb(&self, rs_scf_stb: f64, temperature_degf: f64) -> f64 {
         let group = rs_scf_stb * self.gravity_ratio_root + 1.25 * temperature_degf;
-        0.9759 + 0.000_12 * group * (0.2 * group.ln()).exp()
+        0.9759 + 0.000_12 * POWER_OF_VOLUME.of(group)
     }
 
     /// Slope of the volume factor against the dissolved gas at constant temperature, rb/scf.

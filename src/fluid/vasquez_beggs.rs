@@ -23,6 +23,7 @@
 //! The compressibility is never below 1e-6 1/psi: A is negative for cool heavy oil with little gas, where the fit would let oil
 //! swell under pressure.
 
+use crate::elementary::{exp, ln};
 use crate::units::constants::DEGF_TO_DEGR;
 
 /// The least oil compressibility, 1/psi.
@@ -70,15 +71,15 @@ pub fn undersaturated_volume_ratio(group: f64, pressure_psia: f64, bubble_point_
     } else if bubble_point_psia >= floor_from_psia {
         MINIMUM_COMPRESSIBILITY_1_PSI * (pressure_psia - bubble_point_psia)
     } else {
-        group * (floor_from_psia / bubble_point_psia).ln()
+        group * ln(floor_from_psia / bubble_point_psia)
             + MINIMUM_COMPRESSIBILITY_1_PSI * (pressure_psia - floor_from_psia)
     };
-    (-strain).exp()
+    exp(-strain)
 }
 
 /// mu/mu_b between the bubble point and a pressure above it. `ln_ratio` is ln(p/pb), `ln_pressure` ln(p).
 #[inline]
 pub fn undersaturated_viscosity_ratio(pressure_psia: f64, ln_pressure: f64, ln_ratio: f64) -> f64 {
-    let m = 2.6 * (1.187 * ln_pressure - 11.513 - 8.98e-5 * pressure_psia).exp();
-    (m * ln_ratio).exp()
+    let m = 2.6 * exp(1.187 * ln_pressure - 11.513 - 8.98e-5 * pressure_psia);
+    exp(m * ln_ratio)
 }

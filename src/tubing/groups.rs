@@ -5,6 +5,7 @@
 //! exact conversion gives 1.9377, 120.805 and 0.15730.
 
 use super::model::{Flow, Pipe};
+use crate::elementary::ln;
 
 /// Constant of the velocity numbers.
 pub const VELOCITY: f64 = 1.938;
@@ -38,14 +39,14 @@ impl LnGroups {
     /// The groups of a flow.
     #[inline]
     pub fn new(flow: &Flow, pipe: &Pipe) -> Self {
-        let ln_density = flow.liquid_density_lb_ft3.ln();
-        let ln_tension = flow.tension_dyn_cm.ln();
+        let ln_density = ln(flow.liquid_density_lb_ft3);
+        let ln_tension = ln(flow.tension_dyn_cm);
         let quarter = 0.25 * (ln_density - ln_tension);
         Self {
-            liquid_velocity: LN_VELOCITY + flow.liquid_velocity_ft_s.max(REST_FT_S).ln() + quarter,
-            gas_velocity: LN_VELOCITY + flow.gas_velocity_ft_s.max(REST_FT_S).ln() + quarter,
+            liquid_velocity: LN_VELOCITY + ln(flow.liquid_velocity_ft_s.max(REST_FT_S)) + quarter,
+            gas_velocity: LN_VELOCITY + ln(flow.gas_velocity_ft_s.max(REST_FT_S)) + quarter,
             diameter: LN_DIAMETER + pipe.ln_diameter + 2.0 * quarter,
-            viscosity: LN_VISCOSITY + flow.liquid_viscosity_cp.ln() - 0.25 * (ln_density + 3.0 * ln_tension),
+            viscosity: LN_VISCOSITY + ln(flow.liquid_viscosity_cp) - 0.25 * (ln_density + 3.0 * ln_tension),
         }
     }
 
@@ -53,8 +54,8 @@ impl LnGroups {
     #[inline]
     pub fn liquid_velocity_number(flow: &Flow) -> f64 {
         LN_VELOCITY
-            + flow.liquid_velocity_ft_s.max(REST_FT_S).ln()
-            + 0.25 * (flow.liquid_density_lb_ft3 / flow.tension_dyn_cm).ln()
+            + ln(flow.liquid_velocity_ft_s.max(REST_FT_S))
+            + 0.25 * ln(flow.liquid_density_lb_ft3 / flow.tension_dyn_cm)
     }
 }
 

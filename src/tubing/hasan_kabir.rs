@@ -27,6 +27,7 @@
 
 use super::ValidRange;
 use super::model::{Branch, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe, Range, laminar_bit, laminar_margin};
+use crate::elementary::exp;
 use crate::units::constants::GRAVITY_FT_S2;
 
 /// Distribution coefficient of bubbly and slug flow.
@@ -168,7 +169,7 @@ fn void_branch(flow: &Flow, pipe: &Pipe) -> Branch {
 /// exp(-0.1/x) of the relative distance above an onset: zero with all its derivatives at the onset, one far above.
 #[inline]
 fn blend(above: f64) -> f64 {
-    if above > 0.0 { (-0.1 / above).exp() } else { 0.0 }
+    if above > 0.0 { exp(-0.1 / above) } else { 0.0 }
 }
 
 /// Cubic step from 0 to 1.

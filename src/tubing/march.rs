@@ -15,7 +15,7 @@ use super::liquid;
 use super::model::{Branch, Flow, Gradient, Hydraulics, KINETIC_LIMIT};
 use super::path::Stretch;
 use super::traverse::Stream;
-use crate::fluid::BlackOil;
+use crate::fluid::{BlackOil, CappedOil};
 use crate::units::constants::FT3_PER_BBL;
 
 /// Largest change of pressure in a step, relative to the pressure.
@@ -52,7 +52,7 @@ const PROPERTY_FLOOR_PSIA: f64 = 0.5;
 /// One model, one fluid, one stream.
 pub(crate) struct March<'a, M> {
     model: &'a M,
-    fluid: &'a BlackOil,
+    fluid: CappedOil<'a>,
     rate_stb_s: f64,
     oil_fraction: f64,
     water_fraction: f64,
@@ -105,7 +105,7 @@ impl<'a, M: Hydraulics> March<'a, M> {
         let gor_scf_stb = held(stream.gor_scf_stb, 1e8);
         Self {
             model,
-            fluid,
+            fluid: fluid.capped(gor_scf_stb),
             rate_stb_s: held(stream.liquid_rate_stb_d, 1e8) / 86_400.0,
             oil_fraction: 1.0 - water_fraction,
             water_fraction,
@@ -121,7 +121,7 @@ impl<'a, M: Hydraulics> March<'a, M> {
     fn flow(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> (Flow, f64) {
         let pressure_psia = pressure_psia.max(PROPERTY_FLOOR_PSIA);
         let temperature_degf = stretch.temperature_degf(md_ft);
-        let fluid = self.fluid.in_situ(pressure_psia, temperature_degf, self.gor_scf_stb);
+        let (fluid, bubble_point_psia) = self.fluid.in_situ_and_bubble_point(pressure_psia, temperature_degf);
         // Volumes in ft3 per STB of liquid.
         let oil = FT3_PER_BBL * self.oil_fraction * fluid.bo_rb_stb;
         let water = FT3_PER_BBL * self.water_fraction * fluid.bw_rb_stb;
@@ -136,7 +136,6 @@ impl<'a, M: Hydraulics> March<'a, M> {
         } else if fluid.rs_scf_stb < self.gor_scf_stb {
             fluid.rs_scf_stb * self.per_gor_stb_scf - 1.0
         } else {
-            let bubble_point_psia = self.fluid.bubble_point_at_psia(self.gor_scf_stb, temperature_degf);
             (pressure_psia / bubble_point_psia.max(1e-3) - 1.0).clamp(0.0, 1.0)
         };
         let flow = Flow {

@@ -1,0 +1,121 @@
+//! The fluid of one producing gas-oil ratio, as a tubing sees it.
+
+use super::beggs_robinson::BeggsRobinson;
+use super::black_oil::{TEMPERATURE_RANGE_DEGF, hold};
+use super::grid::{Exact, Grid, OF_BOTH, OF_PRESSURE};
+use super::mccain::McCainWater;
+use super::standing::Standing;
+use super::{BlackOil, InSitu, baker_swerdloff};
+use crate::elementary::{exp, ln};
+use crate::units::constants::DEGF_TO_DEGR;
+
+/// A fluid whose dissolved gas is capped by the producing gas-oil ratio; made by [`BlackOil::capped`].
+///
+/// What depends on the ratio alone is computed once here, since a traverse asks for a hundred points.
+#[derive(Debug, Clone)]
+pub struct CappedOil<'a> {
+    fluid: &'a BlackOil,
+    cap_scf_stb: f64,
+    /// (Rs/g)^0.83 of the cap.
+    gas_power: f64,
+    /// a and b of Beggs and Robinson at the cap.
+    live_coefficients: (f64, f64),
+    /// `None`: everything from the correlations themselves.
+    grid: Option<&'a Grid>,
+}
+
+impl<'a> CappedOil<'a> {
+    pub(super) fn new(fluid: &'a BlackOil, gor_limit_scf_stb: f64, grid: Option<&'a Grid>) -> Self {
+        let cap_scf_stb = gor_limit_scf_stb.max(0.0);
+        Self {
+            fluid,
+            cap_scf_stb,
+            gas_power: fluid.standing.gas_power(cap_scf_stb),
+            live_coefficients: BeggsRobinson::live_coefficients(cap_scf_stb),
+            grid,
+        }
+    }
+
+    /// Properties at a pressure and temperature; see [`BlackOil::in_situ`].
+    #[inline]
+    pub fn in_situ(&self, pressure_psia: f64, temperature_degf: f64) -> InSitu {
+        self.in_situ_and_bubble_point(pressure_psia, temperature_degf).0
+    }
+
+    /// The properties, and the bubble point of the oil at that temperature, psia: of all its gas where it is undersaturated, else
+    /// the pressure itself.
+    #[inline]
+    pub fn in_situ_and_bubble_point(&self, pressure_psia: f64, temperature_degf: f64) -> (InSitu, f64) {
+        let fluid = self.fluid;
+        let p = fluid.held_pressure(pressure_psia);
+        let t = hold(temperature_degf, TEMPERATURE_RANGE_DEGF);
+        let temperature_degr = t + DEGF_TO_DEGR;
+        let at = fluid.by_temperature.at(t);
+
+        let ln_p = ln(p);
+        let prepared = if let Some(grid) = self.grid { grid.at(ln_p, t) } else { None };
+        let ([z, mu_g_cp, mut bo, ln_a, b], [pressure_power, oil_factor, cool, hot]) = match prepared {
+            Some(prepared) => prepared,
+            None => (exact_of_both(fluid, p, t), exact_of_pressure(fluid, p)),
+        };
+        let gas = fluid.gas.of_z(z, p, temperature_degr);
+        let mut rs = pressure_power * at.dissolved_scf_stb;
+        let mut bubble_point_psia = p;
+        let mu_o;
+        if rs > self.cap_scf_stb {
+            rs = self.cap_scf_stb;
+            bubble_point_psia = fluid.tuned_bubble_point_psia(self.gas_power, at.bubble_factor);
+            let above = fluid.above_bubble_point(p, ln_p, rs, bubble_point_psia, t);
+            let (a, b) = self.live_coefficients;
+            mu_o = above.viscosity_ratio * a * exp(b * at.ln_dead_cp);
+            bo = above.volume_ratio * fluid.standing.bo_rb_stb(rs, t);
+        } else {
+            mu_o = exp(ln_a + b * at.ln_dead_cp);
+        }
+        let bw = McCainWater::bw_rb_stb(p, t);
+        let state = InSitu {
+            rs_scf_stb: rs,
+            bo_rb_stb: bo,
+            oil_density_lb_ft3: (fluid.oil_standard_density_lb_ft3 + fluid.gas_mass_lb_ft3 * rs) / bo,
+            mu_o_cp: mu_o,
+            bg_ft3_scf: gas.bg_ft3_scf,
+            gas_density_lb_ft3: gas.density_lb_ft3,
+            mu_g_cp: mu_g_cp,
+            bw_rb_stb: bw,
+            water_density_lb_ft3: fluid.water.standard_density_lb_ft3() / bw,
+            mu_w_cp: at.water_cp * McCainWater::viscosity_ratio(p),
+            sigma_oil_gas_dyn_cm: baker_swerdloff::oil_gas_of_dyn_cm(fluid.spec.oil_gravity_api, t, oil_factor),
+            sigma_water_gas_dyn_cm: baker_swerdloff::water_gas_of_dyn_cm(t, cool, hot),
+            z: gas.z,
+        };
+        (state, bubble_point_psia)
+    }
+}
+
+/// By the correlations: z and viscosity of the gas; volume factor of the saturated oil, ln a and b of its viscosity.
+fn exact_of_both(fluid: &BlackOil, pressure_psia: f64, temperature_degf: f64) -> [f64; OF_BOTH] {
+    let temperature_degr = temperature_degf + DEGF_TO_DEGR;
+    let gas = fluid.gas.at(pressure_psia, temperature_degr);
+    let mu_g_cp = fluid.gas.viscosity_cp(temperature_degr, gas.density_lb_ft3);
+    let rs = fluid.standing.rs_scf_stb(fluid.tuning_factor * pressure_psia, temperature_degf);
+    let bo = fluid.standing.bo_rb_stb(rs, temperature_degf);
+    let (a, b) = BeggsRobinson::live_coefficients(rs);
+    [gas.z, mu_g_cp, bo, ln(a), b]
+}
+
+/// The pressure group of the dissolved gas, and the pressure parts of the tensions.
+fn exact_of_pressure(fluid: &BlackOil, pressure_psia: f64) -> [f64; OF_PRESSURE] {
+    let (cool, hot) = baker_swerdloff::water_gas_ends_dyn_cm(pressure_psia);
+    let oil_factor = baker_swerdloff::pressure_factor(pressure_psia);
+    [Standing::pressure_power(fluid.tuning_factor * pressure_psia), oil_factor, cool, hot]
+}
+
+impl Exact for BlackOil {
+    fn of_both(&self, pressure_psia: f64, temperature_degf: f64) -> [f64; OF_BOTH] {
+        exact_of_both(self, pressure_psia, temperature_degf)
+    }
+
+    fn of_pressure(&self, pressure_psia: f64) -> [f64; OF_PRESSURE] {
+        exact_of_pressure(self, pressure_psia)
+    }
+}

@@ -1,0 +1,146 @@
+//! The prepared functions of a fluid against the correlations themselves.
+#![allow(clippy::unwrap_used)]
+
+use wane::fluid::{BlackOil, FluidSpec, InSitu};
+use wane::tubing::{Stream, Tubing, TubingMethod, TubingSection, TubingSpec};
+
+/// Uniform numbers from 0 to 1 (additive recurrence; no test depends on which).
+fn uniform(index: u32, stream: u32) -> f64 {
+    let step = [0.819_172_513_396_164_4, 0.671_043_606_703_789_2, 0.549_700_477_901_970_6, 0.450_306_949_446_119];
+    (0.5 + f64::from(index) * step[stream as usize]).fract()
+}
+
+/// Name, prepared, by the correlations.
+fn pairs(a: &InSitu, b: &InSitu) -> [(&'static str, f64, f64); 13] {
+    [
+        ("rs", a.rs_scf_stb, b.rs_scf_stb),
+        ("bo", a.bo_rb_stb, b.bo_rb_stb),
+        ("oil density", a.oil_density_lb_ft3, b.oil_density_lb_ft3),
+        ("mu_o", a.mu_o_cp, b.mu_o_cp),
+        ("bg", a.bg_ft3_scf, b.bg_ft3_scf),
+        ("gas density", a.gas_density_lb_ft3, b.gas_density_lb_ft3),
+        ("mu_g", a.mu_g_cp, b.mu_g_cp),
+        ("bw", a.bw_rb_stb, b.bw_rb_stb),
+        ("water density", a.water_density_lb_ft3, b.water_density_lb_ft3),
+        ("mu_w", a.mu_w_cp, b.mu_w_cp),
+        ("sigma oil", a.sigma_oil_gas_dyn_cm, b.sigma_oil_gas_dyn_cm),
+        ("sigma water", a.sigma_water_gas_dyn_cm, b.sigma_water_gas_dyn_cm),
+        ("z", a.z, b.z),
+    ]
+}
+
+fn fluids() -> Vec<(&'static str, FluidSpec, f64)> {
+    vec![
+        (
+            "medium",
+            FluidSpec { bubble_point_psia: Some(2650.0), salinity_ppm: 35_000.0, ..FluidSpec::new(34.0, 0.78, 620.0) },
+            190.0,
+        ),
+        ("heavy", FluidSpec::new(22.0, 0.68, 180.0), 140.0),
+        ("light", FluidSpec::new(42.0, 0.65, 900.0), 230.0),
+        ("rich gas", FluidSpec::new(35.0, 1.2, 500.0), 180.0),
+        ("sour", FluidSpec { h2s_fraction: 0.05, co2_fraction: 0.08, ..FluidSpec::new(30.0, 0.85, 400.0) }, 170.0),
+    ]
+}
+
+#[test]
+fn prepared_properties_are_those_of_the_correlations() {
+    for (fluid_name, spec, tank_degf) in fluids() {
+        let fluid = BlackOil::new(&spec, tank_degf).unwrap();
+        let exact = fluid.unprepared();
+        let mut worst = [("", 0.0_f64, 0.0, 0.0); 13];
+        for i in 0..100_000 {
+            let p = 14.0 * (10_000.0_f64 / 14.0).powf(uniform(i, 0));
+            let t = 40.0 + (tank_degf + 20.0 - 40.0) * uniform(i, 1);
+            let gor = if i % 2 == 0 { f64::INFINITY } else { 1500.0 * uniform(i, 2) };
+            let (prepared, exact) = (fluid.capped(gor).in_situ(p, t), exact.capped(gor).in_situ(p, t));
+            for ((name, a, b), worst) in pairs(&prepared, &exact).into_iter().zip(&mut worst) {
+                assert!(a.is_finite());
+                let error = (a / b - 1.0).abs();
+                if error >= worst.1 {
+                    *worst = (name, error, p, t);
+                }
+            }
+        }
+        for (name, error, p, t) in worst {
+            println!("{fluid_name}: {name} {error:.1e} at {p:.0} psia, {t:.0} degF");
+            assert!(error < 2e-7, "{fluid_name}: {name} {error:.1e}");
+        }
+    }
+}
+
+/// Stretches where a prepared function gives way to the correlation: the edges of the grid, and the pressure where the cap binds.
+#[test]
+fn nothing_jumps_where_the_preparation_ends() {
+    for (fluid_name, spec, tank_degf) in fluids() {
+        let fluid = BlackOil::new(&spec, tank_degf).unwrap();
+        let capped = fluid.capped(spec.solution_gor_scf_stb);
+        let mut worst = ("", 0.0_f64, 0.0, 0.0);
+        let mut look = |p: (f64, f64), t: (f64, f64)| {
+            let (a, b) = (capped.in_situ(p.0, t.0), capped.in_situ(p.1, t.1));
+            for (name, a, b) in pairs(&a, &b) {
+                let jump = (a / b - 1.0).abs();
+                if jump > worst.1 {
+                    worst = (name, jump, p.0, t.0);
+                }
+            }
+        };
+        // Steps of 1e-9 over the neighbourhoods: a jump shows above the functions' own change (log-log slopes up to 10).
+        for i in 0..4_000 {
+            let part = uniform(i, 0);
+            let (p, t) = (14.0 * (300.0 * uniform(i, 1)).max(1.0), 52.0 + (tank_degf - 50.0) * uniform(i, 2));
+            for edge_psia in [14.0, 14.0 * (1.0 + 1e-12)] {
+                look((edge_psia * (1.0 - 1e-9), edge_psia * (1.0 + 1e-9)), (t, t));
+            }
+            // From 52 degF in steps of 4 to at least 10 above the tank.
+            for edge_degf in [52.0, 52.0 + 4.0 * ((tank_degf + 10.0 - 52.0) / 4.0).ceil()] {
+                look((p, p), (edge_degf * (1.0 - 1e-9), edge_degf * (1.0 + 1e-9)));
+            }
+            let bubble_point_psia = fluid.bubble_point_at_psia(spec.solution_gor_scf_stb, t);
+            let near_psia = bubble_point_psia * (1.0 + 1e-8 * (part - 0.5));
+            look((near_psia * (1.0 - 1e-9), near_psia * (1.0 + 1e-9)), (t, t));
+        }
+        println!("{fluid_name}: {worst:?}");
+        assert!(worst.1 < 3e-7, "{fluid_name}: {worst:?}");
+    }
+}
+
+#[test]
+fn flowing_pressures_are_those_of_the_correlations() {
+    for (fluid_name, spec, tank_degf) in fluids() {
+        let fluid = BlackOil::new(&spec, tank_degf).unwrap();
+        let exact = fluid.unprepared();
+        for method in TubingMethod::ALL {
+            let (mut worst, mut sum, mut count, mut above) = (0.0_f64, 0.0, 0, 0);
+            for i in 0..1_000 {
+                let section = TubingSection {
+                    to_md_ft: f64::INFINITY,
+                    diameter_in: 1.995 + 1.5 * uniform(i, 0),
+                    roughness_in: 0.0006,
+                };
+                let depth_ft = 3_000.0 + 7_000.0 * uniform(i, 1);
+                let tubing = TubingSpec {
+                    method,
+                    sections: vec![section],
+                    survey: vec![(0.0, 0.0), (depth_ft, 0.9 * depth_ft)],
+                    wellhead_temperature_degf: 45.0 + 75.0 * uniform(i, 2),
+                };
+                let tubing = Tubing::new(&tubing, None, tank_degf, 0.02).unwrap();
+                let stream = Stream {
+                    liquid_rate_stb_d: 30.0 * 100.0_f64.powf(uniform(i, 3)),
+                    water_cut: 0.8 * uniform(i, 0),
+                    gor_scf_stb: 100.0 * 50.0_f64.powf(uniform(i, 1)),
+                };
+                let wellhead_psia = 60.0 + 500.0 * uniform(i, 3);
+                let at = |fluid| tubing.flowing_pressure(fluid, &stream, wellhead_psia).pressure_psia;
+                let error = (at(&fluid) - at(&exact)).abs();
+                assert!(error.is_finite());
+                (worst, sum, count) = (worst.max(error), sum + error, count + 1);
+                above += u32::from(error > 0.001);
+            }
+            let mean = sum / f64::from(count);
+            println!("{fluid_name} {}: worst {worst:.1e} psi, mean {mean:.1e}, {above} above 0.001", method.name());
+            assert!(worst < 0.01 && mean < 0.0003, "{fluid_name} {}: worst {worst} psi, mean {mean}", method.name());
+        }
+    }
+}
