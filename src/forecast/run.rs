@@ -479,26 +479,12 @@ impl<'a> Run<'a> {
             }
             Watch::CapLost(w) => self.cap_lost(w, &tank)?,
             Watch::Valley(w) => self.part_hump(w, &tank),
-            Watch::MarginGone(w) | Watch::RightHump(w) => {
-                let name = name(w);
+            Watch::MarginGone(w) => self.hump_lost(w, &tank)?,
+            Watch::RightHump(w) => {
                 let before = self.modes.wells[w];
-                let margin = {
-                    let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
-                    dynamics.well_now(w, &tank).survey().margin_psi
-                };
-                // The same hump, found again at a height of rounding, is gone; another one may be left.
-                let gone = matches!(watch, Watch::MarginGone(_));
-                if gone && margin < GONE_PSI {
-                    self.stop(w, StopReason::NoCrossing)?;
-                } else {
-                    self.place_above(w, false, if gone { GONE_PSI } else { 0.0 })?;
-                    if matches!(watch, Watch::RightHump(_)) {
-                        self.climb_right(w, &tank);
-                    }
-                    if self.modes.wells[w].flows() && self.modes.wells[w] != before {
-                        self.event(&name, EventKind::RateJump, String::new());
-                    }
-                }
+                self.place(w, false)?;
+                self.climb_right(w, &tank);
+                self.note_jump(w, before);
             }
             Watch::MinimumRate(w) => self.stop(w, StopReason::RateLimit)?,
             Watch::WaterCut(w) => self.stop(w, StopReason::WaterCutLimit)?,
@@ -513,6 +499,41 @@ impl<'a> Run<'a> {
                 }
             }
         }
+        Ok(())
+    }
+
+    fn note_jump(&mut self, w: usize, before: Mode) {
+        if self.modes.wells[w].flows() && self.modes.wells[w] != before {
+            let name = self.setup.wells[w].spec.name.clone();
+            self.event(&name, EventKind::RateJump, String::new());
+        }
+    }
+
+    /// The hump on which a well flowed has come down to zero: another one that carries it, or the end of natural flow.
+    ///
+    /// The look over all rates and the watch may differ by the height of a model's jump on whether a hump is still there. So a hump
+    /// counts only when the watch agrees that it does; otherwise only higher ones are considered.
+    fn hump_lost(&mut self, w: usize, tank: &TankState) -> Result<(), RunError> {
+        let before = self.modes.wells[w];
+        let mut least_psi = GONE_PSI;
+        loop {
+            let margin = {
+                let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
+                dynamics.well_now(w, tank).survey().margin_psi
+            };
+            if margin < least_psi {
+                self.modes.wells[w] = before;
+                return self.stop(w, StopReason::NoCrossing);
+            }
+            self.place_above(w, false, least_psi)?;
+            let Mode::Line { low, high } = self.modes.wells[w] else { break };
+            let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
+            if dynamics.top(w, &dynamics.well_now(w, tank), low, high).1 > 0.0 {
+                break;
+            }
+            least_psi *= 4.0;
+        }
+        self.note_jump(w, before);
         Ok(())
     }
 
