@@ -72,12 +72,15 @@ fn ends_agree_with_tighter_tolerances() {
                 continue;
             }
             ended += 1;
-            spec.tolerance = Tolerance::Reference;
-            let reference = holds(&spec);
-            let (n, t, r) = (end_days(&normal, 0), end_days(&tight, 0), end_days(&reference, 0));
-            println!("{name}: {n:.4} {t:.4} {r:.4}, {:?}", normal.work);
+            let (n, t) = (end_days(&normal, 0), end_days(&tight, 0));
+            println!("{name}: {n:.4} {t:.4}, {:?}", normal.work);
             assert!((n - t).abs() <= 0.5, "{name}: normal {n} against tight {t} days");
-            assert!((t - r).abs() <= 0.1, "{name}: tight {t} against reference {r} days");
+            // A hundred times tighter again takes long: once per model is enough.
+            if ended == 1 {
+                spec.tolerance = Tolerance::Reference;
+                let r = end_days(&holds(&spec), 0);
+                assert!((t - r).abs() <= 0.1, "{name}: tight {t} against reference {r} days");
+            }
         }
         // Without slip the tubing curve hardly turns up at low rates: such wells do not die of it.
         assert!(ended > 0 || method == TubingMethod::NoSlip, "{}: no run ended", method.name());

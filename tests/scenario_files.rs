@@ -86,6 +86,12 @@ fn with_survey(folder: &TempDir, survey: &str) -> Result<Vec<(f64, f64)>, String
     Ok(scenario.field.wells[0].tubing.survey.clone())
 }
 
+fn with_survey_of(folder: &TempDir, survey: &str) -> Vec<(f64, f64)> {
+    // Perforations and the rest of the scenario fit deeper wells only: the survey is looked at alone.
+    let longer = format!("{survey}8600,45{}\n", if survey.contains("azimuth") { ",30" } else { "" });
+    with_survey(folder, &longer).unwrap_or_else(|said| panic!("{said}"))
+}
+
 #[test]
 fn a_survey_is_read_from_the_folder_of_the_scenario() {
     let folder = folder();
@@ -93,6 +99,13 @@ fn a_survey_is_read_from_the_folder_of_the_scenario() {
     assert_eq!(with_survey(&folder, "md_ft,tvd_ft\n0,0\n4000,4000\n8600,8150\n"), expected);
     assert_eq!(with_survey(&folder, "# by wireline\nMD (ft), TVD [ft]\n0, 0\n4000.0, 4e3\n8600, 8150"), expected);
     let metric = with_survey(&folder, "md_m,tvd_m\n0,0\n3048,3000\n").unwrap();
+    // By hand: 45 degrees hold for 1,000 ft fall by 1000 cos 45, at any azimuth.
+    let held = "md_ft,inclination_deg\n0,45\n1000,45\n";
+    let turned = "md_ft,inclination_deg,azimuth_deg\n0,45,30\n1000,45,30\n";
+    for directional in [held, turned] {
+        let found = with_survey_of(&folder, directional);
+        assert!((found[1].1 - 1000.0 * 0.5_f64.sqrt()).abs() < 1.0e-9, "{found:?}");
+    }
     // 3048 m are 10000 ft by the definition of the foot.
     assert!((metric[1].0 - 10_000.0).abs() < 1.0e-9, "{metric:?}");
 }
@@ -108,6 +121,8 @@ fn a_bad_survey_file_is_named_with_its_line() {
         ("md_ft,tvd_ft\n0,0\n8600,NaN\n", "line 3: `NaN` is not a finite number"),
         ("md_ft,tvd_ft\n0,0\n-5,3\n", "line 3: depth -5 is not between 0 and 50000 ft"),
         ("md_ft,tvd_ft\n0,0\n", "fewer than two points"),
+        ("md_ft,inclination_deg\n0,0\n5000,95\n", "line 3: inclination 95 is not between 0 and 90 deg"),
+        ("md_ft,inclination_deg,azimuth\n0,0,0\n", "the column \"azimuth\" does not end with its unit"),
         ("", "columns where 2 are expected"),
         ("md_ft,tvd_ft\n0,0\n8600,8150\n8500,8100\n", "the survey goes backwards"),
     ];

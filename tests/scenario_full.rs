@@ -172,12 +172,13 @@ fn the_first_well_arrives() {
         tubing: TubingSpec {
             method: TubingMethod::BeggsBrill,
             sections: vec![
-                TubingSection { to_md_ft: 5000.0, diameter_in: 2.992, roughness_in: 0.001 },
-                TubingSection { to_md_ft: f64::INFINITY, diameter_in: 2.441, roughness_in: 0.002 },
+                TubingSection { to_md_ft: 5000.0, diameter_in: 2.992, roughness_in: 0.001, inner_pipe_in: 0.5 },
+                TubingSection { to_md_ft: f64::INFINITY, diameter_in: 2.441, roughness_in: 0.002, inner_pipe_in: 0.0 },
             ],
             survey: vec![(0.0, 0.0), (3000.0, 2990.0), (7400.0, 7050.0)],
             slip_factor: 0.9,
             wellhead_temperature_degf: 102.0,
+            temperatures: Vec::new(),
         },
     };
     let mut found = resolve().wells.remove(0);
@@ -195,12 +196,20 @@ fn the_other_wells_have_their_defaults_and_methods() {
     assert_eq!((b.inflow.method, b.tubing.method), (InflowMethod::Vogel, TubingMethod::HagedornBrown));
     assert_eq!((c.inflow.method, c.tubing.method), (InflowMethod::Straight, TubingMethod::NoSlip));
     assert_eq!((d.inflow.method, d.tubing.method), (InflowMethod::Fetkovich, TubingMethod::HasanKabir));
+    // 60 degrees over an arc of 6,100 ft: it falls by R sin 60 with R = 6100/(pi/3).
+    let fall_ft = 6100.0 / (std::f64::consts::PI / 3.0) * 60.0_f64.to_radians().sin();
+    assert_eq!(b.tubing.survey[1], (1000.0, 1000.0));
+    assert!((b.tubing.survey[2].1 - 1000.0 - fall_ft).abs() < 1e-9, "{:?}", b.tubing.survey);
+    let degf: Vec<f64> = b.tubing.temperatures.iter().map(|point| point.1).collect();
+    assert_eq!((b.tubing.temperatures[0].0, b.tubing.temperatures[1].0), (0.0, 5000.0));
+    assert!((degf[0] - 99.0).abs() < 1e-12 && (degf[1] - 158.0).abs() < 1e-12, "{degf:?}");
+    assert!(c.tubing.temperatures.is_empty() && c.tubing.wellhead_temperature_degf == 98.0);
     let index = Coefficient::ProductivityIndex { j_stb_d_psi: 1.7, reservoir_psia: 3000.0 };
     let open_flow = Coefficient::OpenFlow { rate_stb_d: 1300.0, reservoir_psia: 3120.0 };
     let c_given = Coefficient::Fetkovich { c: 0.0011, reservoir_psia: 3120.0 };
     assert_eq!([&b.inflow.coefficient, &c.inflow.coefficient, &d.inflow.coefficient], [&index, &open_flow, &c_given]);
     for (well, diameter_in) in [(b, 1.995), (c, 2.1), (d, 2.2)] {
-        let section = TubingSection { to_md_ft: f64::INFINITY, diameter_in, roughness_in: 0.0006 };
+        let section = TubingSection { to_md_ft: f64::INFINITY, diameter_in, roughness_in: 0.0006, inner_pipe_in: 0.0 };
         assert_eq!(well.tubing.sections, [section]);
         assert_eq!(
             (well.uptime, well.gor_factor, well.water_factor, well.skin, well.skin_at_test),

@@ -54,7 +54,26 @@ const CASES: &[Case] = &[
     // Missing.
     ("gas_gravity  = 0.78", "", &["`fluid.gas_gravity` is missing", "`gas_gravity` is expected here"]),
     ("name = \"OP-1\"\n", "", &["`well.name` is missing"]),
-    ("wellhead_temperature = \"110 degF\"", "", &["`well.tubing.wellhead_temperature` is missing", "\"190 degF\""]),
+    (
+        "wellhead_temperature = \"110 degF\"",
+        "",
+        &["the flowing temperature is not given", "one of wellhead_temperature, temperature"],
+    ),
+    (
+        "wellhead_temperature = \"110 degF\"",
+        "temperature = [[\"0 ft\", «\"110 ft\"»]]",
+        &["`temperature`", "a temperature is expected"],
+    ),
+    (
+        "wellhead_temperature = \"110 degF\"",
+        "temperature = [[\"0 ft\", \"110 degF\"], «[\"0 ft\", \"120 degF\"]»]",
+        &["the temperatures do not go down from point to point"],
+    ),
+    (
+        "wellhead_temperature = \"110 degF\"",
+        "temperature = «\"110 degF\"»",
+        &["`well.tubing.temperature` is a text", "[[\"0 ft\""],
+    ),
     ("survey    = [", "«serveys» = [", &["did you mean `survey`?"]),
     // Types.
     ("gas_gravity  = 0.78", "gas_gravity = «\"0.78\"»", &["is a text, not a number", "leave out the quotes"]),
@@ -446,6 +465,7 @@ fn every_key_of_the_list_is_really_read() {
         let name = key.path.rsplit('.').next().unwrap();
         let told = problems.list.iter().any(|problem| match name {
             "survey" => problem.message == "a point of a survey is a pair",
+            "temperature" if path.contains("tubing") => problem.message.contains("a point of a table of temperatures"),
             "name" => problem.message == "a name cannot be overridden",
             _ => problem.message.contains("a list") && problem.message.contains(name),
         });

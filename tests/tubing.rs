@@ -17,11 +17,17 @@ fn spec(method: TubingMethod, sections: &[(f64, f64)], survey: &[(f64, f64)]) ->
         method,
         sections: sections
             .iter()
-            .map(|&(to_md_ft, diameter_in)| TubingSection { to_md_ft, diameter_in, roughness_in: 0.0006 })
+            .map(|&(to_md_ft, diameter_in)| TubingSection {
+                to_md_ft,
+                diameter_in,
+                roughness_in: 0.0006,
+                inner_pipe_in: 0.0,
+            })
             .collect(),
         survey: survey.to_vec(),
         slip_factor: 1.0,
         wellhead_temperature_degf: 110.0,
+        temperatures: Vec::new(),
     }
 }
 
@@ -80,7 +86,8 @@ fn a_flowing_gas_well_matches_the_published_example() {
     // temperature and z method with a fully rough factor. 0.5 %: exact integration, other z, Colebrook, 0.2 STB/d of oil.
     let fluid = BlackOil::new(&FluidSpec::new(40.0, 0.71, 500.0), 200.0).expect("a sound fluid");
     let mut gas_well = spec(TubingMethod::NoSlip, &[], &[(0.0, 0.0), (10_000.0, 10_000.0)]);
-    gas_well.sections = vec![TubingSection { to_md_ft: WHOLE, diameter_in: 2.259, roughness_in: 0.0006 * 2.259 }];
+    gas_well.sections =
+        vec![TubingSection { to_md_ft: WHOLE, diameter_in: 2.259, roughness_in: 0.0006 * 2.259, inner_pipe_in: 0.0 }];
     gas_well.wellhead_temperature_degf = 150.0;
     let well = Tubing::new(&gas_well, None, 200.0, 0.02).expect("a sound well");
     let found = well.flowing_pressure(&fluid, &stream(0.2, 0.0, 1e7), 800.0).pressure_psia;

@@ -31,11 +31,17 @@ fn well(method: TubingMethod, sections: &[(f64, f64)], survey: &[(f64, f64)], we
         method,
         sections: sections
             .iter()
-            .map(|&(to_md_ft, diameter_in)| TubingSection { to_md_ft, diameter_in, roughness_in: 0.0006 })
+            .map(|&(to_md_ft, diameter_in)| TubingSection {
+                to_md_ft,
+                diameter_in,
+                roughness_in: 0.0006,
+                inner_pipe_in: 0.0,
+            })
             .collect(),
         survey: survey.to_vec(),
         slip_factor: 1.0,
         wellhead_temperature_degf: wellhead_degf,
+        temperatures: Vec::new(),
     }
 }
 
@@ -100,12 +106,7 @@ fn default_accuracy_is_kept_over_a_spread_of_wells() {
             if converged.pressure_psia > 15_000.0 {
                 return;
             }
-            // Near sonic velocity the pressure hangs on a pole of the equation; such a traverse is marked.
-            assert!(
-                error < 0.3 || converged.near_sonic,
-                "{}: {error} psi at {spec:?}, {stream:?}, {wellhead_psia} psia",
-                method.name()
-            );
+            assert!(error < 0.3, "{}: {error} psi at {spec:?}, {stream:?}, {wellhead_psia} psia", method.name());
             if error > 0.02 {
                 lingering += 1;
                 return;

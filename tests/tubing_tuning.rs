@@ -12,10 +12,16 @@ fn fluid() -> BlackOil {
 fn spec(method: TubingMethod, diameter_in: f64) -> TubingSpec {
     TubingSpec {
         method,
-        sections: vec![TubingSection { to_md_ft: f64::INFINITY, diameter_in, roughness_in: 0.0006 }],
+        sections: vec![TubingSection {
+            to_md_ft: f64::INFINITY,
+            diameter_in,
+            roughness_in: 0.0006,
+            inner_pipe_in: 0.0,
+        }],
         survey: vec![(0.0, 0.0), (3000.0, 3000.0), (8600.0, 8150.0)],
         slip_factor: 1.0,
         wellhead_temperature_degf: 110.0,
+        temperatures: Vec::new(),
     }
 }
 

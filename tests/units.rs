@@ -150,6 +150,7 @@ fn every_factor_is_that_of_the_definition() {
         (D::Velocity, vec![("ft/s", foot), ("m/s", 1.0)]),
         (D::LiquidVolumeFactor, vec![("rb/STB", 1.0), ("rm3/Sm3", 1.0)]),
         (D::GasVolumeFactor, vec![("rb/scf", barrel / cubic_foot), ("rm3/Sm3", 1.0)]),
+        (D::Angle, vec![("deg", std::f64::consts::PI / 180.0), ("rad", 1.0)]),
     ];
     let mut checked = 0;
     for (dimension, rows) in table {

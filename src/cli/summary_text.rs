@@ -109,10 +109,10 @@ fn restart_text(forecast: &Forecast, well: &WellResult) -> Option<String> {
     let date = date_at(forecast.start, days);
     let name = &well.name;
     Some(if days <= 0.0 {
-        format!("{name}, after a shut-in: never starts by itself against its own dead column.")
+        format!("{name}, shut in long enough for its column to die: does not start by itself again.")
     } else {
         format!(
-            "{name}, after a shut-in: does not start by itself against its own dead column from {} on.",
+            "{name}, shut in long enough for its column to die: does not start by itself again from {} on.",
             month(date)
         )
     })
@@ -202,8 +202,9 @@ fn tank(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
     if gas_in > 0.0 {
         pairs.push(("gas injected", volume(gas.of(gas_in), gas.text)));
     }
-    let replaced = last.voidage_replacement_cum.map_or_else(|| "-".to_owned(), |v| number(v, 3));
-    pairs.push(("voidage replaced", format!("{replaced} of all that was withdrawn")));
+    if let Some(replaced) = last.voidage_replacement_cum.filter(|_| water > 0.0 || gas_in > 0.0) {
+        pairs.push(("voidage replaced", format!("{} of all that the forecast withdraws", number(replaced, 3))));
+    }
     if let Some(d) = last.drive_indices {
         let shares = [
             ("depletion", d.depletion),

@@ -4,7 +4,7 @@ use super::calendar::{date_at, days_between};
 use super::dynamics::{Dynamics, Mode};
 use super::field::{Field, RunError};
 use super::rows::piece_at;
-use super::run::{Trace, trace};
+use super::run::{Piece, Trace, trace};
 use super::{CurveSet, FieldSpec};
 use crate::tubing::{TraversePoint, TubingMethod};
 use crate::well::WellNow;
@@ -48,11 +48,14 @@ pub fn curves_on(
         ]));
     }
     let mut list = Vec::new();
-    for w in 0..spec.wells.len() {
-        let own = field.setup.wells[w].tubing.method();
+    // Events act from 00:00 of their day: what holds from then on is shown.
+    let Some(piece) = piece_from(&run.pieces, days) else { return Ok(list) };
+    for (w, well) in piece.setup.wells.iter().enumerate() {
+        let own = well.tubing.method();
         let others = TubingMethod::ALL.into_iter().filter(|m| *m != own && all_models);
         for method in std::iter::once(own).chain(others) {
-            list.extend(at(&field, &run, w, days, on.to_string(), rates_stb_d, Some(method))?);
+            let moment = Moment { piece, days, label: on.to_string() };
+            list.push(at(&field, &run, moment, w, rates_stb_d, method)?);
         }
     }
     Ok(list)
@@ -63,38 +66,57 @@ pub(super) fn life_curves(field: &Field, run: &Trace, w: usize) -> Result<Vec<Cu
     let Some(start) = run.first_flow[w] else { return Ok(Vec::new()) };
     let (end, label) =
         run.flow_ends[w].map_or((run.end_days, "end of the forecast"), |e| (e.days, "end of natural flow"));
-    let days = [(start, "start"), (0.5 * (start + end), "mid-life"), (end, label)];
+    let middle = 0.5 * (start + end);
+    let moments = [
+        (start, "start", piece_from(&run.pieces, start)),
+        (middle, "mid-life", piece_from(&run.pieces, middle)),
+        // At its end the well is shown as it flowed last.
+        (end, label, piece_at(&run.pieces, end)),
+    ];
     let mut list = Vec::new();
-    for (t, label) in days {
-        list.extend(at(field, run, w, t, label.to_owned(), &[], None)?.map(|c| c.curve));
+    for (days, label, piece) in moments {
+        let Some(piece) = piece else { continue };
+        let own = piece.setup.wells[w].tubing.method();
+        let moment = Moment { piece, days, label: label.to_owned() };
+        list.push(at(field, run, moment, w, &[], own)?.curve);
     }
     Ok(list)
+}
+
+/// The stretch that begins at an instant or holds it.
+fn piece_from(pieces: &[Piece], t_days: f64) -> Option<&Piece> {
+    let i = pieces.partition_point(|p| p.stretch.to_days <= t_days + 1e-9);
+    pieces.get(i).or_else(|| pieces.last())
+}
+
+/// An instant of the run, with the stretch whose settings hold there.
+struct Moment<'a> {
+    piece: &'a Piece,
+    days: f64,
+    label: String,
 }
 
 fn at(
     field: &Field,
     run: &Trace,
+    Moment { piece, days, label }: Moment,
     w: usize,
-    days: f64,
-    label: String,
     rates: &[f64],
-    method: Option<TubingMethod>,
-) -> Result<Option<WellCurves>, RunError> {
-    let Some(piece) = piece_at(&run.pieces, days) else { return Ok(None) };
+    method: TubingMethod,
+) -> Result<WellCurves, RunError> {
     let dynamics = Dynamics::new(field, &piece.setup, &piece.modes, &run.memory);
     let y = piece.stretch.at(days);
     let tank = dynamics.tank(y.as_slice()).map_err(|source| RunError::TooMuchInjected { days, source })?;
     let own = dynamics.well_now(w, &tank);
     let mut other = piece.setup.wells[w].clone();
-    let now = match method {
-        Some(method) if method != other.tubing.method() => {
-            other.tubing = other.tubing.with_method(method);
-            own.with_well(&other)
-        }
-        _ => own,
+    let is_own = method == other.tubing.method();
+    let now = if is_own {
+        own
+    } else {
+        other.tubing = other.tubing.with_method(method);
+        own.with_well(&other)
     };
     let land = now.survey();
-    let is_own = method.is_none_or(|m| m == piece.setup.wells[w].tubing.method());
     let operating_rate = match piece.modes.wells[w] {
         Mode::Waiting | Mode::Stopped(_) => None,
         // At the end of natural flow the curves touch at the top of the hump.
@@ -108,7 +130,7 @@ fn at(
         rates.iter().map(|&q| (q, now.curve.flowing_psia(q), now.tubing_psia(q))).collect()
     };
     let profile = operating_rate.map_or_else(Vec::new, |q| now.profile(q));
-    Ok(Some(WellCurves {
+    Ok(WellCurves {
         well: piece.setup.wells[w].spec.name.clone(),
         method: now.method().name(),
         curve: CurveSet {
@@ -121,7 +143,7 @@ fn at(
             flow_margin_psi: land.margin_psi,
         },
         profile,
-    }))
+    })
 }
 
 fn points(now: &WellNow) -> Vec<(f64, f64, f64)> {

@@ -262,7 +262,7 @@ impl<'a> Rows<'a> {
     /// Rate at which the tubing curve is lowest, STB/d: left of it the flow heads. Sought up to open flow.
     fn tubing_minimum(&mut self, w: usize, now: &WellNow) -> f64 {
         let open = now.curve.open_flow_stb_d();
-        let (low, high) = (0.005 * open, 0.999 * open);
+        let (low, high) = (LOOK_FROM * open, LOOK_TO * open);
         let height = |q: f64| -now.tubing_psia(q);
         let known = &mut self.minima[w];
         if !(*known > low && *known < high) {

@@ -200,8 +200,9 @@ impl<'a> Run<'a> {
             Mode::Stopped(_) => self.setup.wells[w].spec.may_flow_again && self.modes.watch_return[w],
             _ => true,
         });
+        let ahead = |day: f64| day > self.t && day < end;
         let events_ahead =
-            self.field.spec.changes.iter().any(|c| self.day(c.on) > self.t && matches!(c.change, Change::Well(..)));
+            self.field.spec.changes.iter().any(|c| ahead(self.day(c.on)) && matches!(c.change, Change::Well(..)));
         if alive || events_ahead {
             return false;
         }
@@ -420,6 +421,9 @@ impl<'a> Run<'a> {
                     self.trace.first_flow[w].get_or_insert(self.t);
                 }
                 let target = self.setup.wells[w].spec.target_rate_stb_d;
+                if mode == Mode::Target && before.flows() && before != Mode::Target {
+                    self.event(&name, EventKind::TargetRegained, String::new());
+                }
                 if target.is_some() && mode != Mode::Target && (before == Mode::Target || !before.flows()) {
                     self.plateau_lost(w);
                 }
@@ -568,7 +572,7 @@ impl<'a> Run<'a> {
                 let limit = if was == Mode::Floor { StopReason::MinimumFlowingPressure } else { StopReason::RateLimit };
                 match stable_below(&now, 0.999_999 * cap) {
                     Some((mode, spot)) => (Ok(mode), spot),
-                    None if now.survey().margin_psi <= 1e-3 => (Err(StopReason::NoCrossing), Spot::default()),
+                    None if now.survey().margin_psi <= GONE_PSI => (Err(StopReason::NoCrossing), Spot::default()),
                     None => (Err(limit), Spot::default()),
                 }
             }

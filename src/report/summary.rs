@@ -69,7 +69,8 @@ fn summary(forecast: &Forecast, provenance: &Provenance) -> Json {
 fn tank(forecast: &Forecast, units: &Units) -> Json {
     let last = forecast.tank.last();
     let injected = |pick: fn(&crate::forecast::InjectorRow) -> f64| -> f64 {
-        forecast.injectors.iter().filter_map(|i| i.rows.last()).map(pick).sum()
+        // An empty sum is -0.0.
+        0.0 + forecast.injectors.iter().filter_map(|i| i.rows.last()).map(pick).sum::<f64>()
     };
     let oil_cum_stb = last.map_or(0.0, |t| t.oil_cum_stb);
     let drive = last.and_then(|t| t.drive_indices).map_or(Json::Null, |d| {

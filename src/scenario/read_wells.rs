@@ -17,6 +17,7 @@ pub(super) const EXCLUSIVE: &[(&str, &[&str])] = &[
     ("injector", &["rate", "voidage_replacement"]),
     ("well.tubing", &["diameter", "sections"]),
     ("well.inflow", &["test", "productivity_index", "open_flow", "coefficient"]),
+    ("well.tubing", &["wellhead_temperature", "temperature"]),
 ];
 
 /// Notes when none or several of the alternatives are there.
@@ -218,24 +219,36 @@ fn tubing(reader: &mut Reader, well: &Section<'_>) -> TubingSpec {
     let name = reader.choice(&section, "method", LATER_TUBING_METHODS);
     let method = TubingMethod::ALL.into_iter().find(|method| name == Some(method.name()));
     exactly_one(reader, &section, "the tubing's inside diameter", EXCLUSIVE[1].1);
+    exactly_one(reader, &section, "the flowing temperature", EXCLUSIVE[3].1);
     let roughness_in = reader.quantity(&section, "roughness");
+    let inner_pipe_in = reader.quantity(&section, "inner_pipe");
     let sections = match reader.optional_quantity(&section, "diameter") {
-        Some(diameter_in) => vec![TubingSection { to_md_ft: f64::INFINITY, diameter_in, roughness_in }],
-        None if section.has("sections") => tubing_sections(reader, &section, roughness_in),
+        Some(diameter_in) => vec![TubingSection { to_md_ft: f64::INFINITY, diameter_in, roughness_in, inner_pipe_in }],
+        None if section.has("sections") => tubing_sections(reader, &section, roughness_in, inner_pipe_in),
         None => Vec::new(),
     };
+    let temperatures = survey::temperatures(reader, &section);
+    let wellhead_temperature_degf = reader.optional_quantity(&section, "wellhead_temperature");
     let spec = TubingSpec {
         method: method.unwrap_or(TubingMethod::HasanKabir),
         sections,
         survey: survey::read(reader, &section),
         slip_factor: reader.number(&section, "slip_factor"),
-        wellhead_temperature_degf: reader.quantity(&section, "wellhead_temperature"),
+        wellhead_temperature_degf: wellhead_temperature_degf
+            .or(temperatures.first().map(|point| point.1))
+            .unwrap_or(f64::NAN),
+        temperatures,
     };
     reader.finish(&section);
     spec
 }
 
-fn tubing_sections(reader: &mut Reader, tubing: &Section<'_>, roughness_in: f64) -> Vec<TubingSection> {
+fn tubing_sections(
+    reader: &mut Reader,
+    tubing: &Section<'_>,
+    roughness_in: f64,
+    inner_pipe_in: f64,
+) -> Vec<TubingSection> {
     let stretches = reader.sections(tubing, "sections");
     let last = stretches.len().saturating_sub(1);
     let mut out = Vec::with_capacity(stretches.len());
@@ -251,6 +264,7 @@ fn tubing_sections(reader: &mut Reader, tubing: &Section<'_>, roughness_in: f64)
             to_md_ft: to_md_ft.unwrap_or(if i < last { f64::NAN } else { f64::INFINITY }),
             diameter_in: reader.quantity(stretch, "diameter"),
             roughness_in: reader.optional_quantity(stretch, "roughness").unwrap_or(roughness_in),
+            inner_pipe_in: reader.optional_quantity(stretch, "inner_pipe").unwrap_or(inner_pipe_in),
         });
         reader.finish(stretch);
     }

@@ -39,6 +39,7 @@ impl Key {
             Kind::Injected(..) => "liquid rate (water) or gas rate (gas)".to_owned(),
             Kind::FlowCoefficient => "rate per pressure^2n".to_owned(),
             Kind::Survey => "list of pairs, or a path".to_owned(),
+            Kind::Temperatures => "list of pairs".to_owned(),
             Kind::Table => "table".to_owned(),
             Kind::Tables => "list of tables".to_owned(),
             Kind::Overrides => "paths with values".to_owned(),
@@ -88,6 +89,8 @@ pub enum Kind {
     FlowCoefficient,
     /// Pairs of measured and vertical depth, or the path of a file.
     Survey,
+    /// Pairs of measured depth and temperature.
+    Temperatures,
     /// A table of further keys.
     Table,
     /// A list of tables of further keys.
@@ -168,7 +171,8 @@ const END: Limits = above(0.0, 1.0);
 
 use Dimension as D;
 use Kind::{
-    Choice, Day, Flag, FlowCoefficient, Fraction, Injected, Name, Number, Overrides, Quantity, Survey, Tables, Text,
+    Choice, Day, Flag, FlowCoefficient, Fraction, Injected, Name, Number, Overrides, Quantity, Survey, Tables,
+    Temperatures, Text,
 };
 use Need::{Default, Optional, Required};
 
@@ -291,10 +295,13 @@ pub const KEYS: &[Key] = &[
     key("well.tubing.sections.to", Quantity(D::Length, DEPTH), Optional, "Measured depth at which the stretch ends; only the last may leave it out"),
     key("well.tubing.sections.diameter", Quantity(D::Diameter, DIAMETER), Required, "Inside diameter"),
     key("well.tubing.sections.roughness", Quantity(D::Diameter, ROUGHNESS), Optional, "Absolute roughness; otherwise the tubing's"),
+    key("well.tubing.sections.inner_pipe", Quantity(D::Diameter, from(0.0, 30.0)), Optional, "Outside diameter of a pipe inside; otherwise the tubing's"),
     key("well.tubing.roughness", Quantity(D::Diameter, ROUGHNESS), Default("\"0.0006 in\""), "Absolute roughness"),
+    key("well.tubing.inner_pipe", Quantity(D::Diameter, from(0.0, 30.0)), Default("\"0 in\""), "Outside diameter of a pipe inside: the flow goes through the annulus around it"),
     key("well.tubing.slip_factor", Number(from(0.0, 10.0)), Default("1.0"), "The model's holdup above no-slip times this, to tune it to measurements; 0 is no slip"),
-    key("well.tubing.survey", Survey, Required, "Pairs of measured and true vertical depth from [0, 0] down, or the path of a CSV file"),
-    key("well.tubing.wellhead_temperature", Quantity(D::Temperature, from(-40.0, 500.0)), Required, "Flowing temperature at the wellhead"),
+    key("well.tubing.survey", Survey, Required, "Pairs of measured depth and true vertical depth or inclination from the wellhead down, or the path of a CSV file"),
+    key("well.tubing.wellhead_temperature", Quantity(D::Temperature, from(-40.0, 500.0)), Optional, "Flowing temperature at the wellhead; this or temperature"),
+    key("well.tubing.temperature", Temperatures, Optional, "Pairs of measured depth and flowing temperature from the wellhead down"),
 
     key("event", Tables, Optional, "Dated changes; a case may hold its own"),
     key("event.on", Day, Required, "Acts from 00:00 of this day"),

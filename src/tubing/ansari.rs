@@ -50,6 +50,9 @@ pub enum Pattern {
 }
 
 const PATTERN_SHIFT: u16 = 2;
+/// Branch bit of slug flow whose turbulence would disperse the bubbles, were they not so many. The patch of dispersed flow
+/// between the two borders may be short: so each is located, though one of them changes nothing.
+const TURBULENT: u16 = 128;
 
 /// Beyond this relative distance from a border its margin is not worked out: it is held there.
 const FAR: f64 = 0.2;
@@ -85,13 +88,11 @@ fn bubble_margin(flow: &Flow, pipe: &Pipe, rise_ft_s: f64) -> f64 {
     (1.0 - flow.gas_velocity_ft_s / border.max(1e-12)).min(pipe.diameter_ft / least_ft - 1.0).clamp(-FAR, FAR)
 }
 
-/// How far it is inside dispersed bubble flow.
+/// How far the flow is beyond the two borders of dispersed bubble flow: turbulence that breaks bubbles up, and bubbles
+/// that are not yet packed.
 #[inline]
-fn dispersed_margin(flow: &Flow, pipe: &Pipe) -> f64 {
+fn dispersion(flow: &Flow, pipe: &Pipe) -> (f64, f64) {
     let packed = 1.0 - flow.gas_velocity_ft_s / (3.17 * flow.liquid_velocity_ft_s).max(1e-12);
-    if packed <= -FAR {
-        return -FAR;
-    }
     let mixture = flow.mixture_velocity_ft_s().max(1e-12);
     let reynolds = no_slip::reynolds(flow, pipe, flow.no_slip_density_lb_ft3());
     let moody = pipe.roughness.turbulent(reynolds.max(super::friction::LAMINAR_REYNOLDS));
@@ -102,7 +103,7 @@ fn dispersed_margin(flow: &Flow, pipe: &Pipe) -> f64 {
     let powers = (ratio * ratio * ratio * shear * shear).powf(0.2);
     let breaking = 2.0 * (0.4 * tension / (difference(flow) * GRAVITY_FT_S2)).sqrt() * powers;
     let joining = 0.725 + 4.15 * (flow.gas_velocity_ft_s / mixture).sqrt();
-    (breaking / joining - 1.0).min(packed).clamp(-FAR, FAR)
+    ((breaking / joining - 1.0).clamp(-FAR, FAR), packed.clamp(-FAR, FAR))
 }
 
 /// How far it is inside annular flow.
@@ -112,13 +113,17 @@ fn annular_margin(flow: &Flow, pipe: &Pipe) -> f64 {
     if carried <= -FAR {
         return -FAR;
     }
-    let film = Film::new(flow, pipe, annular::bits(flow, pipe));
-    carried.min(film.margin()).clamp(-FAR, FAR)
+    carried.min(annular::film_margin(flow, pipe, FAR)).clamp(-FAR, FAR)
+}
+
+fn is_annular(flow: &Flow, pipe: &Pipe) -> bool {
+    annular::droplet_margin(flow) > 0.0 && Film::new(flow, pipe, annular::bits(flow, pipe)).margin() > 0.0
 }
 
 /// How far the flow is inside a pattern.
 #[inline]
-fn margin(flow: &Flow, pipe: &Pipe, pattern: Pattern, film: Option<&Film>) -> f64 {
+fn margin(flow: &Flow, pipe: &Pipe, branch: Branch, film: Option<&Film>) -> f64 {
+    let pattern = pattern_of(branch);
     let annular = match film {
         Some(film) => annular::droplet_margin(flow).min(film.margin()).clamp(-FAR, FAR),
         None => annular_margin(flow, pipe),
@@ -126,26 +131,36 @@ fn margin(flow: &Flow, pipe: &Pipe, pattern: Pattern, film: Option<&Film>) -> f6
     if pattern == Pattern::Annular {
         return annular;
     }
-    let dispersed = dispersed_margin(flow, pipe);
+    let (turbulent, packed) = dispersion(flow, pipe);
     if pattern == Pattern::DispersedBubble {
-        return dispersed.min(-annular);
+        return turbulent.min(packed).min(-annular);
     }
     let bubble = bubble_margin(flow, pipe, small_bubble_ft_s(flow));
-    let bubble = if pattern == Pattern::Bubble { bubble } else { -bubble };
-    bubble.min(-dispersed).min(-annular)
+    if pattern == Pattern::Bubble {
+        return bubble.min(-turbulent.min(packed)).min(-annular);
+    }
+    let dispersed = if branch.has(TURBULENT) { turbulent.min(-packed) } else { -turbulent };
+    dispersed.min(-bubble).min(-annular)
+}
+
+/// The flow pattern, and whether turbulence would disperse bubbles.
+fn choose(flow: &Flow, pipe: &Pipe) -> (Pattern, bool) {
+    if is_annular(flow, pipe) {
+        return (Pattern::Annular, false);
+    }
+    let (turbulent, packed) = dispersion(flow, pipe);
+    if turbulent.min(packed) > 0.0 {
+        (Pattern::DispersedBubble, true)
+    } else if bubble_margin(flow, pipe, small_bubble_ft_s(flow)) > 0.0 {
+        (Pattern::Bubble, turbulent > 0.0)
+    } else {
+        (Pattern::Slug, turbulent > 0.0)
+    }
 }
 
 /// The flow pattern.
 pub fn pattern(flow: &Flow, pipe: &Pipe) -> Pattern {
-    if annular_margin(flow, pipe) > 0.0 {
-        Pattern::Annular
-    } else if dispersed_margin(flow, pipe) > 0.0 {
-        Pattern::DispersedBubble
-    } else if bubble_margin(flow, pipe, small_bubble_ft_s(flow)) > 0.0 {
-        Pattern::Bubble
-    } else {
-        Pattern::Slug
-    }
+    choose(flow, pipe).0
 }
 
 /// Holdup of bubble flow: the void fraction is the one root of `alpha (1.2 vm + vs sqrt(1 - alpha)) = vSg`, whose left
@@ -200,10 +215,10 @@ fn bubbly(flow: &Flow, pipe: &Pipe, holdup: f64, laminar: bool) -> (Gradient, f6
 
 impl Hydraulics for Ansari {
     fn branch(&self, flow: &Flow, pipe: &Pipe) -> Branch {
-        let pattern = pattern(flow, pipe);
+        let (pattern, turbulent) = choose(flow, pipe);
         let bits = match pattern {
             Pattern::Annular => annular::bits(flow, pipe),
-            Pattern::Slug => laminar_bit(slug::Unit::new(flow, pipe).reynolds),
+            Pattern::Slug => laminar_bit(slug::Unit::new(flow, pipe).reynolds) | if turbulent { TURBULENT } else { 0 },
             Pattern::Bubble => laminar_bit(bubbly(flow, pipe, bubble_holdup(flow), false).1),
             Pattern::DispersedBubble => laminar_bit(bubbly(flow, pipe, flow.no_slip_holdup, false).1),
         };
@@ -221,7 +236,7 @@ impl Hydraulics for Ansari {
             Pattern::Bubble => bubbly(flow, pipe, bubble_holdup(flow), laminar).0,
             Pattern::DispersedBubble => bubbly(flow, pipe, flow.no_slip_holdup, laminar).0,
         };
-        gradient.margin = gradient.margin.min(margin(flow, pipe, pattern, film.as_ref()));
+        gradient.margin = gradient.margin.min(margin(flow, pipe, branch, film.as_ref()));
         gradient
     }
 

@@ -14,6 +14,7 @@ pub mod groups;
 pub mod hagedorn_brown;
 pub mod hasan_kabir;
 pub mod liquid;
+pub mod minimum_curvature;
 pub mod model;
 pub mod mukherjee_brill;
 pub mod no_slip;

@@ -59,16 +59,7 @@ impl Path {
             faults.extend(perforation_fault(bottom_md_ft, end_md_ft));
         }
         faults.extend(section_faults(spec, survey_is_good.then_some(bottom_md_ft)));
-        for (key, value) in
-            [("wellhead_temperature", spec.wellhead_temperature_degf), ("bottom_temperature", bottom_temperature_degf)]
-        {
-            if !(value > 0.0 && value < 700.0) {
-                faults.push(
-                    Fault::new(key, format!("{value} degF is no temperature of a flowing well"))
-                        .help("between 0 and 700 degF"),
-                );
-            }
-        }
+        faults.extend(temperature_faults(spec, bottom_temperature_degf));
         if !(0.0..=10.0).contains(&spec.slip_factor) {
             faults.push(
                 Fault::new("slip_factor", format!("{} is no slip factor", spec.slip_factor))
@@ -123,6 +114,39 @@ fn survey_faults(survey: &[(f64, f64)]) -> Vec<Fault> {
     Vec::new()
 }
 
+fn temperature_faults(spec: &TubingSpec, bottom_temperature_degf: f64) -> Vec<Fault> {
+    let mut faults = Vec::new();
+    let mut check = |key: String, value: f64| {
+        if !(value > 0.0 && value < 700.0) {
+            faults.push(
+                Fault::new(key, format!("{value} degF is no temperature of a flowing well"))
+                    .help("between 0 and 700 degF"),
+            );
+        }
+    };
+    if spec.temperatures.is_empty() {
+        check("wellhead_temperature".into(), spec.wellhead_temperature_degf);
+    }
+    for (i, &(_, temperature_degf)) in spec.temperatures.iter().enumerate() {
+        check(format!("temperature[{i}]"), temperature_degf);
+    }
+    check("bottom_temperature".into(), bottom_temperature_degf);
+    let depths = || spec.temperatures.iter().map(|point| point.0);
+    if depths().next().is_some_and(|first_ft| first_ft != 0.0) {
+        faults.push(
+            Fault::new("temperature[0]", "the temperatures do not begin at the wellhead")
+                .help("the first point lies at 0 ft of measured depth"),
+        );
+    }
+    if let Some(i) = depths().zip(depths().skip(1)).position(|(above_ft, below_ft)| !(below_ft > above_ft)) {
+        faults.push(
+            Fault::new(format!("temperature[{}]", i + 1), "the temperatures do not go down from point to point")
+                .help("each point is [measured depth, temperature], from the wellhead down"),
+        );
+    }
+    faults
+}
+
 fn perforation_fault(bottom_md_ft: f64, end_md_ft: f64) -> Option<Fault> {
     if bottom_md_ft.is_nan() || bottom_md_ft < 1.0 {
         return Some(Fault::new("perforations", format!("{bottom_md_ft} ft is no depth of perforations")));
@@ -154,6 +178,14 @@ fn section_faults(spec: &TubingSpec, bottom_md_ft: Option<f64>) -> Vec<Fault> {
             faults.push(
                 Fault::new(key(i, "roughness"), format!("{roughness_in} in is outside the friction factor's range"))
                     .help("between 0 and 5 % of the diameter; 0.0006 in is usual"),
+            );
+        } else if !(0.0..=diameter_in - 0.25).contains(&section.inner_pipe_in) {
+            faults.push(
+                Fault::new(
+                    key(i, "inner_pipe"),
+                    format!("a pipe of {} in does not go into {diameter_in} in", section.inner_pipe_in),
+                )
+                .help("its outside diameter leaves at least 0.25 in of the inside diameter around it"),
             );
         }
         if section.to_md_ft.is_nan() || section.to_md_ft <= above_ft {
@@ -188,29 +220,71 @@ fn tvd_at(survey: &[(f64, f64)], md_ft: f64) -> f64 {
     pair[0].1 + fraction * (pair[1].1 - pair[0].1)
 }
 
-fn cut(spec: &TubingSpec, bottom_md_ft: f64, bottom_temperature_degf: f64) -> Path {
-    let survey = &spec.survey;
-    let bottom_tvd_ft = tvd_at(survey, bottom_md_ft);
-    let rise_degf = bottom_temperature_degf - spec.wellhead_temperature_degf;
-    // Linear against vertical depth; a path without any depth has the wellhead's temperature throughout.
-    let slope_degf_ft = if bottom_tvd_ft > 0.0 { rise_degf / bottom_tvd_ft } else { 0.0 };
-    let temperature_at = |tvd_ft: f64| spec.wellhead_temperature_degf + slope_degf_ft * tvd_ft;
+/// Temperature at a measured depth, and at every other depth of a path.
+struct Temperatures<'a> {
+    spec: &'a TubingSpec,
+    bottom_md_ft: f64,
+    bottom_tvd_ft: f64,
+    bottom_degf: f64,
+}
 
-    let mut ends: Vec<f64> = survey.iter().map(|&(md_ft, _)| md_ft).collect();
-    ends.extend(spec.sections.iter().map(|section| section.to_md_ft));
-    for pair in survey.windows(2) {
-        let (top_degf, bottom_degf) = (temperature_at(pair[0].1), temperature_at(pair[1].1));
-        for corner_degf in TENSION_CORNERS_DEGF {
-            let fraction = (corner_degf - top_degf) / (bottom_degf - top_degf);
-            if fraction > 0.0 && fraction < 1.0 {
-                ends.push(pair[0].0 + fraction * (pair[1].0 - pair[0].0));
-            }
+impl Temperatures<'_> {
+    /// Linear against vertical depth down to the tank's: from the wellhead, or from the last point of the table, between
+    /// whose points it is linear against measured depth.
+    fn at_degf(&self, md_ft: f64) -> f64 {
+        let table = &self.spec.temperatures;
+        if let Some(i) = table.iter().position(|&(below_ft, _)| md_ft <= below_ft) {
+            let (below_ft, below_degf) = table[i];
+            let (above_ft, above_degf) = table[i.saturating_sub(1)];
+            let part = if below_ft > above_ft { (md_ft - above_ft) / (below_ft - above_ft) } else { 1.0 };
+            return above_degf + part * (below_degf - above_degf);
         }
+        let (top_ft, top_degf) = table.last().copied().unwrap_or((0.0, self.spec.wellhead_temperature_degf));
+        let top_tvd_ft = tvd_at(&self.spec.survey, top_ft);
+        let height_ft = self.bottom_tvd_ft - top_tvd_ft;
+        // A path without any depth has the upper temperature throughout.
+        let slope_degf_ft = if height_ft > 0.0 { (self.bottom_degf - top_degf) / height_ft } else { 0.0 };
+        top_degf + slope_degf_ft * (tvd_at(&self.spec.survey, md_ft) - top_tvd_ft)
     }
+
+    /// Adds the depths at which the temperature passes a corner of the tension correlations; `ends` are all depths
+    /// between which it is straight.
+    fn add_corners(&self, ends: &mut Vec<f64>) {
+        let mut corners = Vec::new();
+        let mut above_ft = 0.0;
+        for &below_ft in ends.iter().filter(|&&end_ft| end_ft <= self.bottom_md_ft) {
+            let (top_degf, bottom_degf) = (self.at_degf(above_ft), self.at_degf(below_ft));
+            for corner_degf in TENSION_CORNERS_DEGF {
+                let fraction = (corner_degf - top_degf) / (bottom_degf - top_degf);
+                if fraction > 0.0 && fraction < 1.0 {
+                    corners.push(above_ft + fraction * (below_ft - above_ft));
+                }
+            }
+            above_ft = below_ft;
+        }
+        ends.extend(corners);
+    }
+}
+
+/// Sorts depths within the path and joins those that nearly coincide; the last is the bottom.
+fn tidy(ends: &mut Vec<f64>, bottom_md_ft: f64) {
     ends.retain(|&md_ft| md_ft > LEAST_STRETCH_FT && md_ft < bottom_md_ft - LEAST_STRETCH_FT);
     ends.push(bottom_md_ft);
     ends.sort_by(f64::total_cmp);
     ends.dedup_by(|below, above| *below - *above < LEAST_STRETCH_FT);
+}
+
+fn cut(spec: &TubingSpec, bottom_md_ft: f64, bottom_temperature_degf: f64) -> Path {
+    let survey = &spec.survey;
+    let bottom_tvd_ft = tvd_at(survey, bottom_md_ft);
+    let temperatures = Temperatures { spec, bottom_md_ft, bottom_tvd_ft, bottom_degf: bottom_temperature_degf };
+
+    let mut ends: Vec<f64> = survey.iter().map(|&(md_ft, _)| md_ft).collect();
+    ends.extend(spec.sections.iter().map(|section| section.to_md_ft));
+    ends.extend(spec.temperatures.iter().map(|&(md_ft, _)| md_ft));
+    tidy(&mut ends, bottom_md_ft);
+    temperatures.add_corners(&mut ends);
+    tidy(&mut ends, bottom_md_ft);
 
     let mut stretches = Vec::with_capacity(ends.len());
     let (mut top_md_ft, mut top_tvd_ft) = (0.0, 0.0);
@@ -220,15 +294,19 @@ fn cut(spec: &TubingSpec, bottom_md_ft: f64, bottom_temperature_degf: f64) -> Pa
         let middle_ft = top_md_ft + 0.5 * length_ft;
         let section = spec.sections.iter().find(|section| middle_ft < section.to_md_ft);
         if let Some(section) = section.or(spec.sections.last()) {
-            let pipe = Pipe::new(section.diameter_in, section.roughness_in, (end_tvd_ft - top_tvd_ft) / length_ft);
+            // An annulus: its hydraulic diameter in the correlations, its true cross-section in the velocities.
+            let (outer_in, inner_in) = (section.diameter_in, section.inner_pipe_in);
+            let sin_inclination = (end_tvd_ft - top_tvd_ft) / length_ft;
+            let pipe = Pipe::new(outer_in - inner_in, section.roughness_in, sin_inclination);
+            let (top_degf, end_degf) = (temperatures.at_degf(top_md_ft), temperatures.at_degf(end_md_ft));
             stretches.push(Stretch {
                 top_md_ft,
                 bottom_md_ft: end_md_ft,
                 top_tvd_ft,
-                top_temperature_degf: temperature_at(top_tvd_ft),
-                temperature_slope_degf_ft: slope_degf_ft * (end_tvd_ft - top_tvd_ft) / length_ft,
+                top_temperature_degf: top_degf,
+                temperature_slope_degf_ft: (end_degf - top_degf) / length_ft,
                 pipe,
-                per_area_1_ft2: 4.0 / (std::f64::consts::PI * pipe.diameter_ft * pipe.diameter_ft),
+                per_area_1_ft2: 4.0 * 144.0 / (std::f64::consts::PI * (outer_in * outer_in - inner_in * inner_in)),
             });
         }
         (top_md_ft, top_tvd_ft) = (end_md_ft, end_tvd_ft);

@@ -58,6 +58,8 @@ pub struct TubingSection {
     pub diameter_in: f64,
     /// Absolute roughness, in.
     pub roughness_in: f64,
+    /// Outside diameter of a pipe inside it, in.: the flow goes through the annulus. 0: none.
+    pub inner_pipe_in: f64,
 }
 
 /// The tubing of one well as the user states it, in oilfield units.
@@ -71,6 +73,9 @@ pub struct TubingSpec {
     pub survey: Vec<(f64, f64)>,
     /// The model's holdup above no-slip times this number; 1 leaves the model as published.
     pub slip_factor: f64,
-    /// Flowing temperature at the wellhead, degF.
+    /// Flowing temperature at the wellhead, degF. Not used beside a table of temperatures.
     pub wellhead_temperature_degf: f64,
+    /// Flowing temperatures: measured depth, ft, from 0 down, and degF. Empty: straight from the wellhead's to the tank's
+    /// against vertical depth.
+    pub temperatures: Vec<(f64, f64)>,
 }

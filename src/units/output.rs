@@ -92,6 +92,7 @@ impl UnitSystem {
             (Self::Metric, D::LiquidVolumeFactor) => ("rm3/Sm3", "rm3_sm3", "rm³/Sm³"),
             (Self::Field, D::GasVolumeFactor) => ("rb/scf", "rb_scf", "rb/scf"),
             (Self::Metric, D::GasVolumeFactor) => ("rm3/Sm3", "rm3_sm3", "rm³/Sm³"),
+            (_, D::Angle) => ("deg", "deg", "°"),
         };
         let scale = units_of(dimension).find(|row| row.name == unit).map(|row| row.scale);
         let (factor, offset) = match scale {

@@ -57,11 +57,13 @@ pub enum Dimension {
     LiquidVolumeFactor,
     /// rb/scf.
     GasVolumeFactor,
+    /// Degrees.
+    Angle,
 }
 
 impl Dimension {
     /// All of them.
-    pub const ALL: [Self; 23] = [
+    pub const ALL: [Self; 24] = [
         Self::Pressure,
         Self::PressureDifference,
         Self::Length,
@@ -85,6 +87,7 @@ impl Dimension {
         Self::Velocity,
         Self::LiquidVolumeFactor,
         Self::GasVolumeFactor,
+        Self::Angle,
     ];
 
     /// With its article, for messages: "a pressure".
@@ -113,6 +116,7 @@ impl Dimension {
             Self::Velocity => "a velocity",
             Self::LiquidVolumeFactor => "a liquid volume factor",
             Self::GasVolumeFactor => "a gas volume factor",
+            Self::Angle => "an angle",
         }
     }
 
@@ -142,6 +146,7 @@ impl Dimension {
             Self::Velocity => "10 ft/s",
             Self::LiquidVolumeFactor => "1.3 rb/STB",
             Self::GasVolumeFactor => "0.001 rb/scf",
+            Self::Angle => "30 deg",
         }
     }
 }
@@ -403,5 +408,8 @@ fn build() -> Vec<Unit> {
 
         linear(GasVolumeFactor, "rb/scf", 1.0, &["bbl/scf"]),
         linear(GasVolumeFactor, "rm3/Sm3", M3_BBL / M3_FT3, &["m3/sm3"]),
+
+        linear(Angle, "deg", 1.0, &["degree", "degrees", "\u{b0}"]),
+        linear(Angle, "rad", 180.0 / std::f64::consts::PI, &["radian", "radians"]),
     ]
 }

@@ -103,7 +103,7 @@ pub fn survey_above(mut h: impl FnMut(f64) -> f64, open_flow_stb_d: f64, least_p
     let chosen =
         humps.iter().rposition(|x| x.2 > least_psi).or_else(|| humps.iter().position(|x| x.2 >= margin)).unwrap_or(0);
     let (index, top_rate, top) = humps.get(chosen).copied().unwrap_or((0, look.points[0].0, look.points[0].1));
-    let right_crossing_stb_d = (top > 0.0).then(|| {
+    let right_crossing_stb_d = (top > least_psi).then(|| {
         // The first point beyond the top at which h is no longer positive; open flow itself always is such a point.
         let beyond = look.points[index + 1..].iter().copied().find(|p| p.0 > top_rate && p.1 <= 0.0);
         let inside = look.points[index + 1..]

@@ -5,7 +5,8 @@ use super::meeting::{Landscape, survey_above};
 use crate::fault::Fault;
 use crate::fluid::BlackOil;
 use crate::inflow::{
-    Coefficient, Conditions, Fit, Inflow, InflowCurve, InflowMethod, Measured, RateBasis, Shape, TestPoint, fit_tests,
+    Coefficient, Conditions, Fit, Inflow, InflowCurve, InflowMethod, InflowSpec, Measured, RateBasis, Shape, TestPoint,
+    fit_tests,
 };
 use crate::tank::{Tank, TankState};
 use crate::tubing::{Stream, TraversePoint, Tubing, TubingMethod};
@@ -79,11 +80,7 @@ impl WellModel {
     /// # Errors
     /// Faults with keys of the `[[well]]` table.
     pub fn new(spec: &WellSpec, around: &Surroundings) -> Result<Self, Vec<Fault>> {
-        let tubing = Tubing::new(&spec.tubing, spec.perforations_md_ft, around.temperature_degf, around.accuracy_psi)
-            .map_err(|faults| {
-            faults.into_iter().map(|f| if f.key == "perforations" { f } else { f.under("tubing") }).collect::<Vec<_>>()
-        })?;
-        let depth_below_datum_ft = around.datum_tvd_ft.map_or(0.0, |datum| tubing.perforations_tvd_ft() - datum);
+        let (tubing, depth_below_datum_ft) = completion(spec, around)?;
         let (inflow, fit, points) = fit_inflow(spec, &tubing, depth_below_datum_ft, around)?;
         let mut well =
             Self { spec: spec.clone(), tubing, inflow, fit, tests: Vec::new(), skin_factor: 1.0, depth_below_datum_ft };
@@ -98,13 +95,11 @@ impl WellModel {
     /// # Errors
     /// As [`new`](Self::new).
     pub fn changed(&self, spec: &WellSpec, around: &Surroundings) -> Result<Self, Vec<Fault>> {
-        let mut well = Self::new(spec, around)?;
-        if spec.inflow == self.spec.inflow {
-            well.inflow = self.inflow.clone();
-            well.fit = self.fit;
-            well.tests = self.tests.clone();
+        if spec.inflow != self.spec.inflow {
+            return Self::new(spec, around);
         }
-        Ok(well)
+        let (tubing, depth_below_datum_ft) = completion(spec, around)?;
+        Ok(Self { spec: spec.clone(), tubing, depth_below_datum_ft, skin_factor: skin_factor(spec), ..self.clone() })
     }
 
     fn check_tests(&self, points: &[TestPoint], around: &Surroundings) -> Vec<TestCheck> {
@@ -115,8 +110,8 @@ impl WellModel {
             .map(|(test, point)| {
                 let then = Conditions {
                     reservoir_psia: point.reservoir_psia,
-                    bubble_point_psia: around.fluid.initial_bubble_point_psia(),
-                    oil_mobility_1_cp: reference_mobility(point.reservoir_psia, around),
+                    bubble_point_psia: bubble_point_then(test.reservoir_psia, around),
+                    oil_mobility_1_cp: reference_mobility(test.reservoir_psia, around),
                     water_cut: test.water_cut,
                 };
                 TestCheck {
@@ -176,13 +171,28 @@ impl WellModel {
     }
 }
 
+/// The tubing and the depth of the perforations below the datum, ft.
+fn completion(spec: &WellSpec, around: &Surroundings) -> Result<(Tubing, f64), Vec<Fault>> {
+    let tubing = Tubing::new(&spec.tubing, spec.perforations_md_ft, around.temperature_degf, around.accuracy_psi)
+        .map_err(|faults| {
+            faults.into_iter().map(|f| if f.key == "perforations" { f } else { f.under("tubing") }).collect::<Vec<_>>()
+        })?;
+    let depth_below_datum_ft = around.datum_tvd_ft.map_or(0.0, |datum| tubing.perforations_tvd_ft() - datum);
+    Ok((tubing, depth_below_datum_ft))
+}
+
 /// `(r + s_test)/(r + s)`: pseudo-steady radial flow with and without the present skin.
 fn skin_factor(spec: &WellSpec) -> f64 {
     let r = drainage_term(spec.radii_ft);
     (r + spec.skin_at_test) / (r + spec.skin)
 }
 
-/// kro/(mu_o*Bo) that goes with a coefficient found at this reservoir pressure: undisturbed oil above the bubble point, the
+/// Bubble point of the oil in the tank when its pressure was this, psia: below the first one the pressure itself, as in the forecast.
+fn bubble_point_then(datum_psia: f64, around: &Surroundings) -> f64 {
+    around.fluid.initial_bubble_point_psia().min(datum_psia)
+}
+
+/// kro/(mu_o*Bo) that goes with a coefficient found at this pressure of the tank: undisturbed oil above the bubble point, the
 /// saturations at the start of the forecast below it (those at the time of the test are not known).
 fn reference_mobility(reservoir_psia: f64, around: &Surroundings) -> f64 {
     let undisturbed = around.tank.undisturbed_mobility_1_cp(reservoir_psia);
@@ -212,29 +222,28 @@ fn fit_inflow(
         InflowMethod::Vogel => Shape::Vogel,
         InflowMethod::Fetkovich => Shape::Fetkovich { n },
     };
-    let carried = |shape: Shape, coefficient: f64, reservoir_psia: f64| Inflow {
+    let effective = |datum_psia: f64| at_perforations(datum_psia).min(bubble_point_then(datum_psia, around));
+    let carried = |shape: Shape, coefficient: f64, datum_psia: f64| Inflow {
         shape,
         future: inflow.future,
         basis: inflow.basis,
         coefficient,
-        reference_psia: reservoir_psia.min(bubble_point),
-        reference_mobility_1_cp: reference_mobility(reservoir_psia, around),
+        reference_psia: effective(datum_psia),
+        reference_mobility_1_cp: reference_mobility(datum_psia, around),
     };
     // J of the general form to the method's own coefficient.
     let from_j = |j: f64, pe: f64| match given_shape {
         Shape::Fetkovich { n } => j / (2.0 * pe.powf(2.0 * n - 1.0)),
         Shape::Straight | Shape::Vogel => j,
     };
-    let given = |coefficient: f64, datum_psia: f64| {
-        (carried(given_shape, coefficient, at_perforations(datum_psia)), None, Vec::new())
-    };
+    let given = |coefficient: f64, datum_psia: f64| (carried(given_shape, coefficient, datum_psia), None, Vec::new());
     match &inflow.coefficient {
         Coefficient::ProductivityIndex { j_stb_d_psi, reservoir_psia } => {
-            Ok(given(from_j(*j_stb_d_psi, at_perforations(*reservoir_psia).min(bubble_point)), *reservoir_psia))
+            Ok(given(from_j(*j_stb_d_psi, effective(*reservoir_psia)), *reservoir_psia))
         }
         Coefficient::OpenFlow { rate_stb_d, reservoir_psia } => {
             let pr = at_perforations(*reservoir_psia);
-            let pe = pr.min(bubble_point);
+            let pe = effective(*reservoir_psia);
             Ok(given(from_j(rate_stb_d / given_shape.drawdown(pr, pe, 0.0), pe), *reservoir_psia))
         }
         Coefficient::Fetkovich { c, reservoir_psia } => Ok(given(*c, *reservoir_psia)),
@@ -266,7 +275,7 @@ fn fit_inflow(
                 };
                 points.push(TestPoint {
                     reservoir_psia,
-                    effective_psia: reservoir_psia.min(bubble_point),
+                    effective_psia: effective(test.reservoir_psia),
                     flowing_psia,
                     rate_stb_d,
                 });
@@ -274,11 +283,28 @@ fn fit_inflow(
             if !faults.is_empty() {
                 return Err(faults);
             }
-            let fit = fit_tests(inflow.method, inflow.exponent, &points)
-                .map_err(|message| vec![Fault::new("inflow.test", message)])?;
-            Ok((carried(fit.shape, fit.coefficient, points[0].reservoir_psia), Some(fit), points))
+            let saturated = tests.iter().all(|t| t.reservoir_psia <= bubble_point * (1.0 + 1e-9));
+            let fit =
+                fit_points(inflow, &points, saturated).map_err(|message| vec![Fault::new("inflow.test", message)])?;
+            Ok((carried(fit.shape, fit.coefficient, tests[0].reservoir_psia), Some(fit), points))
         }
     }
+}
+
+/// Fits the points. Perforations below the datum stand above the bubble point of a saturated tank: its tests give n all the same,
+/// and then the coefficient of the composite curve that the forecast uses.
+fn fit_points(inflow: &InflowSpec, points: &[TestPoint], saturated: bool) -> Result<Fit, String> {
+    let below_datum = points.iter().any(|p| p.reservoir_psia > p.effective_psia * (1.0 + 1e-9));
+    if !(saturated && below_datum) {
+        return fit_tests(inflow.method, inflow.exponent, points);
+    }
+    let at_own_depth: Vec<_> = points.iter().map(|p| TestPoint { effective_psia: p.reservoir_psia, ..*p }).collect();
+    let free = fit_tests(inflow.method, inflow.exponent, &at_own_depth)?;
+    let exponent = match free.shape {
+        Shape::Fetkovich { n } => Some(n),
+        Shape::Straight | Shape::Vogel => inflow.exponent,
+    };
+    Ok(Fit { n_fitted: free.n_fitted, ..fit_tests(inflow.method, exponent, points)? })
 }
 
 /// What the traverses of a run leave behind: their number, and whether the last one came near to sonic speed.

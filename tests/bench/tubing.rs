@@ -17,10 +17,16 @@ fn fluid() -> BlackOil {
 fn tubing(method: TubingMethod) -> Tubing {
     let spec = TubingSpec {
         method,
-        sections: vec![TubingSection { to_md_ft: f64::INFINITY, diameter_in: 2.441, roughness_in: 0.0006 }],
+        sections: vec![TubingSection {
+            to_md_ft: f64::INFINITY,
+            diameter_in: 2.441,
+            roughness_in: 0.0006,
+            inner_pipe_in: 0.0,
+        }],
         survey: vec![(0.0, 0.0), (8000.0, 8000.0)],
         slip_factor: 1.0,
         wellhead_temperature_degf: 110.0,
+        temperatures: Vec::new(),
     };
     Tubing::new(&spec, None, 190.0, 0.02).unwrap_or_else(|faults| panic!("{faults:?}"))
 }

@@ -76,10 +76,16 @@ pub fn well(name: &str) -> WellSpec {
         },
         tubing: TubingSpec {
             method: TubingMethod::HasanKabir,
-            sections: vec![TubingSection { to_md_ft: f64::INFINITY, diameter_in: 2.441, roughness_in: 0.0006 }],
+            sections: vec![TubingSection {
+                to_md_ft: f64::INFINITY,
+                diameter_in: 2.441,
+                roughness_in: 0.0006,
+                inner_pipe_in: 0.0,
+            }],
             survey: vec![(0.0, 0.0), (4000.0, 4000.0), (8600.0, 8150.0)],
             slip_factor: 1.0,
             wellhead_temperature_degf: 110.0,
+            temperatures: Vec::new(),
         },
     }
 }
