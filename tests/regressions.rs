@@ -45,21 +45,6 @@ fn a_well_stopped_by_its_floor_does_not_return_at_the_same_instant() {
 }
 
 #[test]
-fn a_dead_well_whose_own_limit_forbids_flow_is_left_alone() {
-    // It dies of the heavy column in the dip and injection gives it a margin again, but by then too much water would come.
-    let mut spec = restless();
-    spec.tank.water_model = WaterModel::Average;
-    spec.wells[0].maximum_water_cut = Some(0.002);
-    let mut i = injector("I-1", InjectedFluid::Water, InjectionControl::Rate(150.0));
-    i.start = Some(date(2029, 1, 1));
-    spec.injectors.push(i);
-    let f = run(&spec).unwrap();
-    flows_only_with_a_margin(&f);
-    assert!(f.wells[0].rows.last().unwrap().flow_margin_psi.unwrap() > 1.0, "it has a margin again");
-    assert!(!f.events.iter().any(|e| e.kind == EventKind::FlowsAgain), "its water cut forbids it");
-}
-
-#[test]
 fn perforations_above_all_pressure_give_no_flow_and_no_panic() {
     for shape in [Shape::Straight, Shape::Vogel, Shape::Fetkovich { n: 0.7 }] {
         for (j, pressure) in [(2.0, -40.0), (0.0, 3000.0), (f64::NAN, 3000.0), (2.0, 0.0)] {

@@ -244,11 +244,12 @@ impl<'a> Rows<'a> {
             return -now.tubing_psia(0.0);
         }
         let known = &mut self.margins[w];
-        if known.rate_stb_d > 0.0 && known.rate_stb_d < 0.99 * open {
+        // The margin of a dead well may come back on any hump: it is looked for over all rates.
+        if flows && known.rate_stb_d > 0.0 && known.rate_stb_d < 0.99 * open {
             let (rate, margin) = follow_top(|q| now.height_psi(q), known.rate_stb_d, LOOK_FROM * open, LOOK_TO * open);
             *known = Margin { rate_stb_d: rate, age: known.age + 1 };
             let elsewhere = |part: f64| now.height_psi(part * open);
-            let sunk = flows && margin < 0.0;
+            let sunk = margin < 0.0;
             if !sunk && (known.age < ROWS_PER_LOOK || !LOOKS.into_iter().any(|part| elsewhere(part) > margin)) {
                 known.age %= ROWS_PER_LOOK;
                 return margin;
