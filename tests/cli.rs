@@ -1,7 +1,9 @@
 //! The program from outside: exit status, messages, files.
 #![allow(clippy::unwrap_used)]
 
-use std::collections::BTreeMap;
+mod common;
+
+use common::all;
 use std::fs;
 use std::path::Path;
 use std::process::{Command, Output, Stdio};
@@ -29,25 +31,6 @@ fn starter() -> TempDir {
     let output = wane(dir.path(), &["new", "demo"]);
     assert_eq!(code(&output), 0, "{}", err(&output));
     dir
-}
-
-/// Names and contents of everything below a folder.
-fn all(folder: &Path) -> BTreeMap<String, Vec<u8>> {
-    fn walk(folder: &Path, root: &Path, out: &mut BTreeMap<String, Vec<u8>>) {
-        for entry in fs::read_dir(folder).unwrap() {
-            let path = entry.unwrap().path();
-            let name = path.strip_prefix(root).unwrap().to_string_lossy().into_owned();
-            if path.is_dir() {
-                out.insert(name + "/", Vec::new());
-                walk(&path, root, out);
-            } else {
-                out.insert(name, fs::read(&path).unwrap());
-            }
-        }
-    }
-    let mut out = BTreeMap::new();
-    walk(folder, folder, &mut out);
-    out
 }
 
 /// Runs what must fail with `status`: a message on standard error, nothing on standard output, nothing written.

@@ -1,33 +1,15 @@
 //! The result folder: all or nothing, and nobody else's files.
 #![allow(clippy::unwrap_used)]
 
+mod common;
 mod report_support;
 
+use common::all;
 use report_support as made;
-use std::collections::BTreeMap;
 use std::fs;
 use std::path::Path;
 use wane::report::OutFile;
 use wane::report::folder::{FolderError, ResultFolder};
-
-/// Every file below `folder` with its content, and every folder.
-fn all(folder: &Path) -> BTreeMap<String, Vec<u8>> {
-    fn walk(folder: &Path, root: &Path, out: &mut BTreeMap<String, Vec<u8>>) {
-        for entry in fs::read_dir(folder).unwrap() {
-            let path = entry.unwrap().path();
-            let name = path.strip_prefix(root).unwrap().to_string_lossy().into_owned();
-            if path.is_dir() {
-                out.insert(name + "/", Vec::new());
-                walk(&path, root, out);
-            } else {
-                out.insert(name, fs::read(&path).unwrap());
-            }
-        }
-    }
-    let mut out = BTreeMap::new();
-    walk(folder, folder, &mut out);
-    out
-}
 
 fn files(text: &str) -> Vec<OutFile> {
     vec![OutFile::new("profile.csv", text.into()), OutFile::new("case/profile.csv", text.into())]

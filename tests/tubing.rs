@@ -1,6 +1,9 @@
 //! The tubing as the other layers use it: limits, closed forms, round trips, faults, random wells.
 #![allow(clippy::unwrap_used)]
 
+mod common;
+
+use common::tubing::string;
 use proptest::prelude::*;
 use wane::fluid::{BlackOil, FluidSpec};
 use wane::tubing::drift_flux::DriftFlux;
@@ -14,22 +17,7 @@ fn fluid() -> BlackOil {
 }
 
 fn spec(method: TubingMethod, sections: &[(f64, f64)], survey: &[(f64, f64)]) -> TubingSpec {
-    TubingSpec {
-        method,
-        sections: sections
-            .iter()
-            .map(|&(to_md_ft, diameter_in)| TubingSection {
-                to_md_ft,
-                diameter_in,
-                roughness_in: 0.0006,
-                inner_pipe_in: 0.0,
-            })
-            .collect(),
-        survey: survey.to_vec(),
-        slip_factor: 1.0,
-        wellhead_temperature_degf: 110.0,
-        temperatures: Vec::new(),
-    }
+    string(method, sections, survey, 110.0)
 }
 
 const WHOLE: f64 = f64::INFINITY;

@@ -4,6 +4,9 @@
 //! published equations by another program, which is said at each check (regression).
 #![allow(clippy::unwrap_used)]
 
+mod common;
+
+use common::tubing::flow;
 use std::fs::File;
 use std::io::BufReader;
 use wane::tubing::ansari::{self, Ansari};
@@ -25,21 +28,6 @@ fn check(id: &str, name: &str, found: f64) {
     let expected = item["value"].as_f64().expect("a number");
     let tolerance = item["tol_abs"].as_f64().unwrap_or_else(|| item["tol_rel"].as_f64().expect("one") * expected.abs());
     assert!((found - expected).abs() <= tolerance, "{id} {name}: found {found}, expected {expected}");
-}
-
-#[allow(clippy::too_many_arguments)]
-fn flow(vsl: f64, vsg: f64, rhol: f64, rhog: f64, mul: f64, mug: f64, sigma: f64, p: f64) -> Flow {
-    Flow {
-        liquid_velocity_ft_s: vsl,
-        gas_velocity_ft_s: vsg,
-        no_slip_holdup: vsl / (vsl + vsg),
-        liquid_density_lb_ft3: rhol,
-        gas_density_lb_ft3: rhog,
-        liquid_viscosity_cp: mul,
-        gas_viscosity_cp: mug,
-        tension_dyn_cm: sigma,
-        pressure_psia: p,
-    }
 }
 
 /// The running example of Brill and Mukherjee (1999), Multiphase Flow in Wells, Example 3.2 (from memory).

@@ -1,6 +1,9 @@
 //! The traverse as a numerical method: accuracy, smoothness, limits.
 #![allow(clippy::unwrap_used)]
 
+mod common;
+
+use common::tubing::string;
 use wane::fluid::{BlackOil, FluidSpec};
 use wane::tubing::ansari::Ansari;
 use wane::tubing::beggs_brill::BeggsBrill;
@@ -12,7 +15,7 @@ use wane::tubing::liquid;
 use wane::tubing::model::{Flow, Hydraulics, Pipe};
 use wane::tubing::mukherjee_brill::MukherjeeBrill;
 use wane::tubing::no_slip::NoSlip;
-use wane::tubing::{Stream, Tubing, TubingMethod, TubingSection, TubingSpec};
+use wane::tubing::{Stream, Tubing, TubingMethod, TubingSpec};
 
 /// An invented oil: 34 API, gas 0.78, 620 scf/STB, bubble point 2,650 psia at 190 degF.
 fn medium_oil() -> BlackOil {
@@ -26,34 +29,15 @@ fn heavy_oil() -> BlackOil {
     BlackOil::new(&FluidSpec::new(22.0, 0.68, 180.0), 140.0).expect("a sound fluid")
 }
 
-fn well(method: TubingMethod, sections: &[(f64, f64)], survey: &[(f64, f64)], wellhead_degf: f64) -> TubingSpec {
-    TubingSpec {
-        method,
-        sections: sections
-            .iter()
-            .map(|&(to_md_ft, diameter_in)| TubingSection {
-                to_md_ft,
-                diameter_in,
-                roughness_in: 0.0006,
-                inner_pipe_in: 0.0,
-            })
-            .collect(),
-        survey: survey.to_vec(),
-        slip_factor: 1.0,
-        wellhead_temperature_degf: wellhead_degf,
-        temperatures: Vec::new(),
-    }
-}
-
 const WHOLE: f64 = f64::INFINITY;
 
 /// Wells of the spread: vertical, two sizes, deviated, tapered, cool wellhead, deep, shallow.
 fn wells(method: TubingMethod) -> Vec<TubingSpec> {
     vec![
-        well(method, &[(WHOLE, 2.441)], &[(0.0, 0.0), (8000.0, 8000.0)], 110.0),
-        well(method, &[(WHOLE, 3.958)], &[(0.0, 0.0), (5500.0, 5500.0)], 80.0),
-        well(method, &[(WHOLE, 1.995)], &[(0.0, 0.0), (4000.0, 4000.0), (8600.0, 8150.0)], 105.0),
-        well(
+        string(method, &[(WHOLE, 2.441)], &[(0.0, 0.0), (8000.0, 8000.0)], 110.0),
+        string(method, &[(WHOLE, 3.958)], &[(0.0, 0.0), (5500.0, 5500.0)], 80.0),
+        string(method, &[(WHOLE, 1.995)], &[(0.0, 0.0), (4000.0, 4000.0), (8600.0, 8150.0)], 105.0),
+        string(
             method,
             &[(6000.0, 2.992), (WHOLE, 2.441)],
             &[(0.0, 0.0), (2500.0, 2500.0), (4500.0, 4200.0), (12_000.0, 8700.0)],
@@ -158,7 +142,7 @@ fn a_plain_integration_agrees() {
     let fluid = medium_oil();
     let stream = Stream { liquid_rate_stb_d: 420.0, water_cut: 0.25, gor_scf_stb: 800.0 };
     for method in TubingMethod::ALL {
-        let spec = well(method, &[(WHOLE, 2.441)], &[(0.0, 0.0), (8000.0, 8000.0)], 110.0);
+        let spec = string(method, &[(WHOLE, 2.441)], &[(0.0, 0.0), (8000.0, 8000.0)], 110.0);
         let pipe = Pipe::new(2.441, 0.0006, 1.0);
         let gradient = |depth_ft: f64, pressure_psia: f64| {
             let flow = flow_at(&fluid, &stream, &pipe, pressure_psia, 110.0 + 0.01 * depth_ft);
@@ -213,7 +197,7 @@ fn the_flowing_pressure_is_smooth() {
     ];
     let survey = [(0.0, 0.0), (3000.0, 3000.0), (9000.0, 8000.0)];
     for method in TubingMethod::ALL {
-        let spec = well(method, &[(5000.0, 2.992), (WHOLE, 2.441)], &survey, 85.0);
+        let spec = string(method, &[(5000.0, 2.992), (WHOLE, 2.441)], &survey, 85.0);
         let (usual, fine) = (tubing(&spec, 190.0, 0.02), tubing(&spec, 190.0, 1e-5));
         let (mut all, mut worst, mut rough) = (0, 0.0_f64, 0);
         for (rate, water_cut, gor, wellhead) in streams {

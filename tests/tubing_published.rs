@@ -5,6 +5,9 @@
 //! recomputed from the published equations, which is no evidence beyond a second implementation.
 #![allow(clippy::unwrap_used)]
 
+mod common;
+
+use common::tubing::flow;
 use std::fs::File;
 use std::io::BufReader;
 use wane::tubing::beggs_brill::{self, BeggsBrill, Map, Regime};
@@ -51,21 +54,6 @@ fn monograph() -> (Flow, Pipe) {
 /// Economides, Hill and Ehlig-Economides (1994), Petroleum Production Systems, chapter 7 (from memory).
 fn economides() -> (Flow, Pipe) {
     (flow(4.67, 8.72, 49.92, 2.6, 2.0, 0.0131, 30.0, 800.0), Pipe::new(2.259, 0.0006 * 2.259, 1.0))
-}
-
-#[allow(clippy::too_many_arguments)]
-fn flow(vsl: f64, vsg: f64, rhol: f64, rhog: f64, mul: f64, mug: f64, sigma: f64, p: f64) -> Flow {
-    Flow {
-        liquid_velocity_ft_s: vsl,
-        gas_velocity_ft_s: vsg,
-        no_slip_holdup: vsl / (vsl + vsg),
-        liquid_density_lb_ft3: rhol,
-        gas_density_lb_ft3: rhog,
-        liquid_viscosity_cp: mul,
-        gas_viscosity_cp: mug,
-        tension_dyn_cm: sigma,
-        pressure_psia: p,
-    }
 }
 
 fn gradient(model: &impl Hydraulics, (flow, pipe): &(Flow, Pipe)) -> Gradient {

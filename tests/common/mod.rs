@@ -2,8 +2,12 @@
 #![allow(dead_code, clippy::unwrap_used, missing_docs)]
 
 pub mod fields;
+pub mod tubing;
 
 use serde_json::Value;
+use std::collections::BTreeMap;
+use std::fs;
+use std::path::Path;
 
 /// One case of a reference file, by its id.
 pub fn case(file: &str, id: &str) -> Value {
@@ -33,4 +37,23 @@ pub fn near(found: f64, expected: f64, relative: f64, what: &str) {
         (found - expected).abs() <= relative * expected.abs() + 1e-300,
         "{what}: found {found}, expected {expected} within {relative} relative"
     );
+}
+
+/// Names and contents of everything below a folder.
+pub fn all(folder: &Path) -> BTreeMap<String, Vec<u8>> {
+    fn walk(folder: &Path, root: &Path, out: &mut BTreeMap<String, Vec<u8>>) {
+        for entry in fs::read_dir(folder).unwrap() {
+            let path = entry.unwrap().path();
+            let name = path.strip_prefix(root).unwrap().to_string_lossy().into_owned();
+            if path.is_dir() {
+                out.insert(name + "/", Vec::new());
+                walk(&path, root, out);
+            } else {
+                out.insert(name, fs::read(&path).unwrap());
+            }
+        }
+    }
+    let mut out = BTreeMap::new();
+    walk(folder, folder, &mut out);
+    out
 }
