@@ -1,8 +1,9 @@
 //! Inflow and tubing curves at chosen instants.
 
 use super::calendar::{date_at, days_between};
-use super::dynamics::{Dynamics, Mode};
+use super::dynamics::Dynamics;
 use super::field::{Field, RunError};
+use super::modes::Mode;
 use super::rows::piece_at;
 use super::run::{Piece, Trace, trace};
 use super::{CurveSet, FieldSpec};

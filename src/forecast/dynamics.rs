@@ -2,213 +2,23 @@
 
 use super::field::{Field, Setup, injected_fvf, injection_limit};
 use super::integrate::Problem;
+use super::modes::{Layout, Memory, Mode, Modes, REGAIN_PSI, Spot, Valley, Watch};
 use super::placement::place_on;
-use super::{InjectedFluid, InjectionControl, StopReason};
+use super::{InjectedFluid, InjectionControl};
 use crate::roots::brent;
 use crate::tank::{ClosureError, Cumulatives, TankState};
-use crate::well::{Gauge, LOOK_FROM, LOOK_TO, WellNow, follow_top, oil_gradient_psi_ft, right_crossing, top_near};
-use std::cell::{Cell, RefCell};
+use crate::well::{LOOK_TO, WellNow, follow_top, oil_gradient_psi_ft, right_crossing, top_near};
 
-/// Height in psi by which the target (or floor) must be out of reach before it is taken up again, so that modes never flicker.
-pub(super) const REGAIN_PSI: f64 = 0.01;
 /// Flow margin at which a dead well may flow again, psi.
-pub(super) const FLOW_AGAIN_PSI: f64 = 1.0;
+const FLOW_AGAIN_PSI: f64 = 1.0;
 /// Depth from which a valley between the top of a hump and the operating point parts the hump in two, psi.
 const VALLEY_PSI: f64 = 0.1;
 /// Height that shows without further search that natural flow is not about to end, psi.
 const CLEAR_MARGIN_PSI: f64 = 25.0;
-/// Free-gas excess that counts as a change of side at the bubble point, scf/STB.
-const BUBBLE_POINT_SLACK_SCF_STB: f64 = 1e-6;
-/// The same for the critical gas saturation.
-const CRITICAL_GAS_SLACK: f64 = 1e-9;
-/// Days within which another crossing counts as soon.
-const SOON_DAYS: f64 = 30.0;
 /// Relative slack of an injection limit.
 const LIMIT_SLACK: f64 = 1e-6;
 /// Slack in psi of an injector shut in by its bottom-hole limit.
 const SHUT_SLACK_PSI: f64 = 1e-3;
-
-/// What a well does.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub(super) enum Mode {
-    /// Has yet to start.
-    Waiting,
-    /// Choked back to its target.
-    Target,
-    /// On its flowing-pressure floor.
-    Floor,
-    /// At line pressure, on the hump of `h` between these parts of open flow.
-    Line {
-        /// Left end over open flow.
-        low: f64,
-        /// Right end over open flow.
-        high: f64,
-    },
-    /// Stopped for this reason.
-    Stopped(StopReason),
-}
-
-impl Modes {
-    pub fn new(wells: usize, injectors: usize, saturated: bool, gas_mobile: bool) -> Self {
-        Self {
-            wells: vec![Mode::Waiting; wells],
-            watch_return: vec![false; wells],
-            injecting: vec![false; injectors],
-            limited: vec![false; injectors],
-            saturated,
-            gas_mobile,
-            bubble_point_slack: Slack::new(BUBBLE_POINT_SLACK_SCF_STB),
-            critical_gas_slack: Slack::new(CRITICAL_GAS_SLACK),
-            held_shut: vec![false; injectors],
-        }
-    }
-}
-
-impl Mode {
-    pub fn flows(self) -> bool {
-        matches!(self, Self::Target | Self::Floor | Self::Line { .. })
-    }
-}
-
-/// What one watch stands for.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub(super) enum Watch {
-    CapLost(usize),
-    TargetAbove(usize),
-    FloorAbove(usize),
-    MarginGone(usize),
-    /// A valley has opened between the top of the hump and the operating point: from now on they are two humps.
-    Valley(usize),
-    RightHump(usize),
-    MinimumRate(usize),
-    WaterCut(usize),
-    GasOilRatio(usize),
-    FlowAgain(usize),
-    BubblePoint,
-    CriticalGas,
-    InjectorLimit(usize),
-    /// The tank's pressure passes the injector's bottom-hole limit, where the allowed rate is bent at zero.
-    InjectorShut(usize),
-}
-
-/// Room around a border. A tank can settle right on one of its borders; each crossing soon after the last one widens the room,
-/// so that rounding does not cut the run into slivers. Only the integrator's restarts hang on it, not the physics.
-#[derive(Debug, Clone, Copy)]
-pub(super) struct Slack {
-    pub now: f64,
-    least: f64,
-    last_days: f64,
-}
-
-impl Slack {
-    fn new(least: f64) -> Self {
-        Self { now: least, least, last_days: f64::NEG_INFINITY }
-    }
-
-    pub fn crossed(&mut self, t_days: f64) {
-        self.now = if t_days - self.last_days < SOON_DAYS { 10.0 * self.now } else { self.least };
-        self.last_days = t_days;
-    }
-}
-
-/// Discrete state of a stretch.
-#[derive(Debug, Clone)]
-pub(super) struct Modes {
-    pub wells: Vec<Mode>,
-    /// Dead wells whose return is still to be noted.
-    pub watch_return: Vec<bool>,
-    pub injecting: Vec<bool>,
-    pub limited: Vec<bool>,
-    pub saturated: bool,
-    pub gas_mobile: bool,
-    /// How far beyond the bubble point, scf/STB, and the critical gas saturation the tank goes before it counts as a crossing.
-    pub bubble_point_slack: Slack,
-    pub critical_gas_slack: Slack,
-    /// Injectors shut in by their bottom-hole limit.
-    pub held_shut: Vec<bool>,
-}
-
-/// Where a well was found last.
-#[derive(Debug, Clone, Copy, Default)]
-pub(super) struct Spot {
-    pub rate_stb_d: f64,
-    pub slope: f64,
-    pub top_rate_stb_d: f64,
-    /// The valley on the left of a hump that is not the left-most; 0: not known yet.
-    pub low_rate_stb_d: f64,
-    /// Tank pressure at which the rate was found, psia, and the change of rate with it, STB/d/psi.
-    pub pressure_psia: f64,
-    pub per_pressure: f64,
-    /// The conditions under which the rate was found: the same ones need no search.
-    pub found_under: Option<[f64; 4]>,
-}
-
-impl Spot {
-    /// Where the hump on which the well flows begins, STB/d; `low` is the part of open flow at which it was seen first.
-    fn left_end(&self, low: f64, open_flow_stb_d: f64) -> f64 {
-        if low <= 0.0 {
-            LOOK_FROM * open_flow_stb_d
-        } else if self.low_rate_stb_d > 0.0 {
-            self.low_rate_stb_d
-        } else {
-            low * open_flow_stb_d
-        }
-    }
-}
-
-/// A dip between the top of a hump and the operating point.
-#[derive(Debug, Clone, Copy)]
-pub(super) struct Valley {
-    pub rate_stb_d: f64,
-    /// Higher ground on its right, STB/d, and how much higher it is, psi.
-    pub crest_stb_d: f64,
-    pub rise_psi: f64,
-}
-
-/// Offsets into the scaled state vector.
-#[derive(Debug, Clone, Copy)]
-pub(super) struct Layout {
-    pub wells: usize,
-    pub injectors: usize,
-}
-
-impl Layout {
-    pub fn len(self) -> usize {
-        3 * self.wells + 2 * self.injectors + 2
-    }
-    pub fn oil(self, w: usize) -> usize {
-        w
-    }
-    pub fn gas(self, w: usize) -> usize {
-        self.wells + w
-    }
-    pub fn water(self, w: usize) -> usize {
-        2 * self.wells + w
-    }
-    pub fn injected(self, i: usize) -> usize {
-        3 * self.wells + i
-    }
-    pub fn asked(self, i: usize) -> usize {
-        3 * self.wells + self.injectors + i
-    }
-    pub fn effective_water(self) -> usize {
-        3 * self.wells + 2 * self.injectors
-    }
-    pub fn effective_gas(self) -> usize {
-        3 * self.wells + 2 * self.injectors + 1
-    }
-}
-
-/// Counters and warm starts that live through the whole run.
-#[derive(Debug, Default)]
-pub(super) struct Memory {
-    pub pressure_psia: Cell<f64>,
-    pub spots: RefCell<Vec<Spot>>,
-    pub gauge: Gauge,
-    /// Height to which crossings are resolved, psi.
-    pub crossing_psi: Cell<f64>,
-    pub closures: Cell<u64>,
-}
 
 /// One stretch.
 pub(super) struct Dynamics<'a> {
@@ -382,8 +192,7 @@ impl<'a> Dynamics<'a> {
         }
         let right = (bounds.1, height(bounds.1));
         let rate = if right.1 >= 0.0 { right.0 } else { brent(height, (top_rate, top), right, 1e-11 * open) };
-        let nudge = 1e-4 * rate;
-        let slope = (height(rate + nudge) - height(rate - nudge)) / (2.0 * nudge);
+        let slope = now.height_slope(rate);
         self.remember(w, |s| {
             (s.rate_stb_d, s.slope, s.top_rate_stb_d) = (rate, slope, top_rate);
             (s.pressure_psia, s.per_pressure, s.found_under) = (reservoir, 0.0, conditions);

@@ -6,11 +6,13 @@ mod doubts;
 mod dynamics;
 mod field;
 pub mod integrate;
+mod modes;
 mod placement;
 mod result;
 mod rows;
 mod run;
 mod spec;
+mod switching;
 
 pub use calendar::{date_at, days_between};
 pub use curves::{WellCurves, curves_on};

@@ -1,7 +1,8 @@
 //! Where a well belongs when it is looked at from scratch: a flowing mode, or the reason why it does not flow.
 
 use super::StopReason;
-use super::dynamics::{Dynamics, Mode, Spot};
+use super::dynamics::Dynamics;
+use super::modes::{Mode, Spot};
 use crate::roots::brent;
 use crate::tank::TankState;
 use crate::well::{Crossing, LOOK_TO, Landscape, WellNow, WellSpec, crossings, top_near};
@@ -14,8 +15,7 @@ pub(super) fn stable_below(now: &WellNow, cap_stb_d: f64) -> Option<(Mode, Spot)
     let rate = all[i].rate_stb_d;
     let low = if i > 0 { all[i - 1].rate_stb_d } else { 0.0 };
     let high = all.get(i + 1).map_or(open, |c| c.rate_stb_d);
-    let nudge = 1e-4 * rate;
-    let slope = (now.height_psi(rate + nudge) - now.height_psi(rate - nudge)) / (2.0 * nudge);
+    let slope = now.height_slope(rate);
     // The hump reaches from the middle of the dip on its left to the middle of the one on its right.
     let low = if i > 1 { 0.5 * (low + all[i - 2].rate_stb_d) } else { 0.0 };
     let high = if high < open { 0.5 * (rate + high) } else { open };
@@ -67,8 +67,7 @@ pub(super) fn place_on(now: &WellNow, spec: &WellSpec, land: &Landscape) -> (Res
     } else {
         match land.right_crossing_stb_d {
             Some(rate) if rate <= cap => {
-                let nudge = 1e-4 * rate;
-                let slope = (now.height_psi(rate + nudge) - now.height_psi(rate - nudge)) / (2.0 * nudge);
+                let slope = now.height_slope(rate);
                 let mode = Mode::Line { low: land.hump_stb_d.0 / open, high: land.hump_stb_d.1 / open };
                 (mode, Spot { rate_stb_d: rate, slope, ..top }, rate)
             }
@@ -102,8 +101,7 @@ pub(super) fn hump_at(now: &WellNow, left_stb_d: f64, crest_stb_d: f64) -> Optio
         let here = (q, height(q));
         if here.1 <= 0.0 {
             let rate = brent(height, inside, here, 1e-10 * open);
-            let nudge = 1e-4 * rate;
-            let slope = (height(rate + nudge) - height(rate - nudge)) / (2.0 * nudge);
+            let slope = now.height_slope(rate);
             let spot =
                 Spot { rate_stb_d: rate, slope, top_rate_stb_d: top_rate, low_rate_stb_d: valley, ..Spot::default() };
             return Some((Mode::Line { low: valley / open, high: 1.0 }, spot));

@@ -24,6 +24,11 @@ pub enum StopReason {
 }
 
 impl StopReason {
+    /// Whether the well may be able to flow again by itself: the tank may give it a margin back.
+    pub fn may_pass(self) -> bool {
+        matches!(self, Self::NoCrossing | Self::MinimumFlowingPressure)
+    }
+
     /// The fixed wording of result files.
     pub fn text(self) -> &'static str {
         match self {

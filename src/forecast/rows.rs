@@ -2,8 +2,9 @@
 
 use super::calendar::periods;
 use super::doubts::{Seen, about_result};
-use super::dynamics::{Dynamics, Mode};
+use super::dynamics::Dynamics;
 use super::field::{Field, RunError};
+use super::modes::Mode;
 use super::run::{Piece, Trace, work};
 use super::{
     DriveIndices, Forecast, InjectedFluid, InjectorResult, InjectorRow, Period, TankRow, Tolerance, WellResult, WellRow,
@@ -139,7 +140,7 @@ impl<'a> Rows<'a> {
         }
         // Start from the same warm starts whatever the run did last.
         for spot in trace.memory.spots.borrow_mut().iter_mut() {
-            *spot = super::dynamics::Spot::default();
+            *spot = super::modes::Spot::default();
         }
         Self {
             field,
@@ -228,10 +229,7 @@ impl<'a> Rows<'a> {
                 Mode::Line { .. } => piece.setup.wells[w].spec.line_pressure_psia,
                 _ => now.wellhead_psia(rate, flowing_psia),
             });
-            if !matches!(mode, Mode::Line { .. }) {
-                now.tubing_psia(rate);
-            }
-            self.seen.well(w, self.wells[w].len(), self.trace.memory.gauge.near_sonic.get());
+            self.seen.well(w, self.wells[w].len(), now.near_sonic(rate));
         }
         row
     }

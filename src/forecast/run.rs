@@ -1,18 +1,15 @@
-//! The driver: scheduled changes, stretches between them, mode switches, the end of natural flow.
+//! The driver: scheduled changes and the stretches between them. What a switch does stands in `switching.rs`.
 
 use super::calendar::{date_at, days_between};
-use super::dynamics::{Dynamics, Layout, Memory, Mode, Modes, REGAIN_PSI, Spot, Watch};
+use super::dynamics::Dynamics;
 use super::field::{Field, RunError, Setup, injection_limit};
 use super::integrate::{Effort, End, Settings, State, Stretch, integrate};
-use super::placement::{hump_at, placement, stable_below};
+use super::modes::{Layout, Memory, Mode, Modes, Spot};
 use super::{Change, EventKind, EventRecord, FieldSpec, FlowEnd, Forecast, StopReason, Tolerance, Work};
 use crate::tank::{ClosureError, TankState};
-use crate::well::top_near;
 use jiff::civil::Date;
 use std::sync::Arc;
 
-/// Height of a hump that has come down to zero, psi: room for rounding.
-const GONE_PSI: f64 = 1e-3;
 /// Switches at one instant after which the run is given up.
 const MOST_SWITCHES_AT_ONCE: usize = 40;
 
@@ -65,13 +62,14 @@ pub(super) fn trace(field: &Field) -> Result<Trace, RunError> {
     Run::new(field).go()
 }
 
-struct Run<'a> {
-    field: &'a Field,
-    setup: Arc<Setup>,
-    modes: Modes,
-    t: f64,
-    y: State,
-    trace: Trace,
+pub(super) struct Run<'a> {
+    pub(super) field: &'a Field,
+    pub(super) setup: Arc<Setup>,
+    pub(super) modes: Modes,
+    /// Days from the start.
+    pub(super) t: f64,
+    pub(super) y: State,
+    pub(super) trace: Trace,
     switches_here: usize,
     settings: Settings,
 }
@@ -128,7 +126,7 @@ impl<'a> Run<'a> {
         days_between(self.field.spec.period.start, date)
     }
 
-    fn event(&mut self, name: &str, kind: EventKind, note: String) {
+    pub(super) fn event(&mut self, name: &str, kind: EventKind, note: String) {
         self.trace.events.push(EventRecord {
             date: date_at(self.field.spec.period.start, self.t),
             days: self.t,
@@ -136,6 +134,11 @@ impl<'a> Run<'a> {
             kind,
             note,
         });
+    }
+
+    pub(super) fn well_event(&mut self, w: usize, kind: EventKind, note: String) {
+        let name = self.setup.wells[w].spec.name.clone();
+        self.event(&name, kind, note);
     }
 
     /// All days on which something is scheduled, and the last day.
@@ -267,7 +270,7 @@ impl<'a> Run<'a> {
         Ok(false)
     }
 
-    fn tank_now(&self) -> Result<TankState, RunError> {
+    pub(super) fn tank_now(&self) -> Result<TankState, RunError> {
         let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
         dynamics.tank(self.y.as_slice()).map_err(|source| RunError::TooMuchInjected { days: self.t, source })
     }
@@ -338,7 +341,7 @@ impl<'a> Run<'a> {
         Ok(())
     }
 
-    fn set_limited(&mut self, i: usize, limited: bool, tank: &TankState) {
+    pub(super) fn set_limited(&mut self, i: usize, limited: bool, tank: &TankState) {
         if self.modes.limited[i] == limited {
             return;
         }
@@ -346,272 +349,6 @@ impl<'a> Run<'a> {
         let name = self.setup.injectors[i].name.clone();
         let kind = if limited { EventKind::InjectionLimited } else { EventKind::InjectionLimitLeft };
         self.event(&name, kind, format!("tank pressure {:.0} psia", tank.pressure_psia));
-    }
-
-    /// Ends a well's natural flow.
-    fn stop(&mut self, w: usize, reason: StopReason) -> Result<(), RunError> {
-        if self.modes.wells[w].flows() {
-            let end = self.flow_end(w, reason)?;
-            self.trace.flow_ends[w] = Some(end);
-            let note = format!(
-                "{:.0} STB/d liquid, {:.0} STB/d oil, tank at {:.0} psia",
-                end.liquid_rate_stb_d, end.oil_rate_stb_d, end.reservoir_pressure_psia
-            );
-            let name = self.setup.wells[w].spec.name.clone();
-            self.event(&name, EventKind::EndOfNaturalFlow(reason), note);
-        }
-        self.modes.wells[w] = Mode::Stopped(reason);
-        self.modes.watch_return[w] = matches!(reason, StopReason::NoCrossing | StopReason::MinimumFlowingPressure);
-        Ok(())
-    }
-
-    fn flow_end(&self, w: usize, reason: StopReason) -> Result<FlowEnd, RunError> {
-        let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
-        // When the balance has run out the last state that it gave stands in.
-        let tank = dynamics.tank(self.y.as_slice()).unwrap_or(self.field.start);
-        let now = dynamics.well_now(w, &tank);
-        let rate = dynamics.rate(w, &now);
-        let margin = now.survey().margin_psi;
-        Ok(FlowEnd {
-            date: date_at(self.field.spec.period.start, self.t),
-            days: self.t,
-            reason,
-            liquid_rate_stb_d: rate,
-            oil_rate_stb_d: rate * (1.0 - now.water_cut),
-            flow_margin_psi: margin,
-            reservoir_pressure_psia: tank.pressure_psia,
-        })
-    }
-
-    /// Looks at a well from scratch and puts it where it belongs. `starting`: it did not flow before.
-    fn place(&mut self, w: usize, starting: bool) -> Result<(), RunError> {
-        self.place_above(w, starting, 0.0)
-    }
-
-    fn place_above(&mut self, w: usize, starting: bool, least_psi: f64) -> Result<(), RunError> {
-        let tank = self.tank_now()?;
-        let before = self.modes.wells[w];
-        let (found, spot) = {
-            let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
-            placement(&dynamics, w, &tank, least_psi)
-        };
-        self.trace.memory.spots.borrow_mut()[w] = spot;
-        let name = self.setup.wells[w].spec.name.clone();
-        match found {
-            Err(reason) if before.flows() => self.stop(w, reason),
-            Err(reason) => {
-                // A dead well tested again by an event that did not help keeps its first end.
-                if self.trace.flow_ends[w].is_none() {
-                    self.trace.flow_ends[w] =
-                        Some(FlowEnd { liquid_rate_stb_d: 0.0, oil_rate_stb_d: 0.0, ..self.flow_end(w, reason)? });
-                    self.event(&name, EventKind::EndOfNaturalFlow(reason), "it did not come to flow".to_owned());
-                    self.modes.wells[w] = Mode::Stopped(reason);
-                    self.modes.watch_return[w] =
-                        matches!(reason, StopReason::NoCrossing | StopReason::MinimumFlowingPressure);
-                }
-                Ok(())
-            }
-            Ok(mode) => {
-                self.modes.wells[w] = mode;
-                self.modes.watch_return[w] = false;
-                if starting && !before.flows() {
-                    let kind = if before == Mode::Waiting { EventKind::WellStarted } else { EventKind::FlowsAgain };
-                    self.event(&name, kind, String::new());
-                    self.trace.flow_ends[w] = None;
-                    self.trace.first_flow[w].get_or_insert(self.t);
-                }
-                let target = self.setup.wells[w].spec.target_rate_stb_d;
-                if mode == Mode::Target && before.flows() && before != Mode::Target {
-                    self.event(&name, EventKind::TargetRegained, String::new());
-                }
-                if target.is_some() && mode != Mode::Target && (before == Mode::Target || !before.flows()) {
-                    self.plateau_lost(w);
-                }
-                Ok(())
-            }
-        }
-    }
-
-    fn plateau_lost(&mut self, w: usize) {
-        if self.trace.plateau_ends[w].is_none() {
-            self.trace.plateau_ends[w] = Some(self.t);
-        }
-        let name = self.setup.wells[w].spec.name.clone();
-        self.event(&name, EventKind::PlateauLost, String::new());
-    }
-
-    /// Acts on a watch that reached zero.
-    fn switch(&mut self, watch: Watch) -> Result<(), RunError> {
-        let tank = self.tank_now()?;
-        let name = |w: usize| self.setup.wells[w].spec.name.clone();
-        match watch {
-            Watch::BubblePoint => {
-                self.modes.saturated = !self.modes.saturated;
-                self.modes.bubble_point_slack.crossed(self.t);
-                let kind = if self.modes.saturated {
-                    EventKind::BubblePointCrossedDown
-                } else {
-                    EventKind::BubblePointCrossedUp
-                };
-                self.event("tank", kind, format!("{:.1} psia", tank.pressure_psia));
-            }
-            Watch::CriticalGas => {
-                self.modes.gas_mobile = !self.modes.gas_mobile;
-                self.modes.critical_gas_slack.crossed(self.t);
-                if self.modes.gas_mobile {
-                    self.event("tank", EventKind::FreeGasMobile, format!("{:.1} psia", tank.pressure_psia));
-                }
-            }
-            Watch::InjectorShut(i) => self.modes.held_shut[i] = !self.modes.held_shut[i],
-            Watch::InjectorLimit(i) => self.set_limited(i, !self.modes.limited[i], &tank),
-            Watch::TargetAbove(w) => {
-                let name = name(w);
-                self.modes.wells[w] = Mode::Target;
-                self.event(&name, EventKind::TargetRegained, String::new());
-            }
-            Watch::FloorAbove(w) => {
-                let name = name(w);
-                if self.modes.wells[w] == Mode::Target {
-                    self.plateau_lost(w);
-                }
-                self.modes.wells[w] = Mode::Floor;
-                self.event(&name, EventKind::FloorReached, String::new());
-            }
-            Watch::CapLost(w) => self.cap_lost(w, &tank)?,
-            Watch::Valley(w) => self.part_hump(w, &tank),
-            Watch::MarginGone(w) => self.hump_lost(w, &tank)?,
-            Watch::RightHump(w) => {
-                let before = self.modes.wells[w];
-                self.place(w, false)?;
-                self.climb_right(w, &tank);
-                self.note_jump(w, before);
-            }
-            Watch::MinimumRate(w) => self.stop(w, StopReason::RateLimit)?,
-            Watch::WaterCut(w) => self.stop(w, StopReason::WaterCutLimit)?,
-            Watch::GasOilRatio(w) => self.stop(w, StopReason::GasOilRatioLimit)?,
-            Watch::FlowAgain(w) => {
-                if self.setup.wells[w].spec.may_flow_again {
-                    self.place(w, true)?;
-                } else {
-                    let name = name(w);
-                    self.modes.watch_return[w] = false;
-                    self.event(&name, EventKind::CouldFlowAgain, "flow margin back at 1 psi".to_owned());
-                }
-            }
-        }
-        Ok(())
-    }
-
-    fn note_jump(&mut self, w: usize, before: Mode) {
-        if self.modes.wells[w].flows() && self.modes.wells[w] != before {
-            let name = self.setup.wells[w].spec.name.clone();
-            self.event(&name, EventKind::RateJump, String::new());
-        }
-    }
-
-    /// The hump on which a well flowed has come down to zero: another one that carries it, or the end of natural flow.
-    ///
-    /// The look over all rates and the watch may differ by the height of a model's jump on whether a hump is still there. So a hump
-    /// counts only when the watch agrees that it does; otherwise only higher ones are considered.
-    fn hump_lost(&mut self, w: usize, tank: &TankState) -> Result<(), RunError> {
-        let before = self.modes.wells[w];
-        let mut least_psi = GONE_PSI;
-        loop {
-            let margin = {
-                let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
-                dynamics.well_now(w, tank).survey().margin_psi
-            };
-            if margin < least_psi {
-                self.modes.wells[w] = before;
-                return self.stop(w, StopReason::NoCrossing);
-            }
-            self.place_above(w, false, least_psi)?;
-            let Mode::Line { low, high } = self.modes.wells[w] else { break };
-            let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
-            if dynamics.top(w, &dynamics.well_now(w, tank), low, high).1 > 0.0 {
-                break;
-            }
-            least_psi *= 4.0;
-        }
-        self.note_jump(w, before);
-        Ok(())
-    }
-
-    /// The hump on which a well flows has become two: from now on the right-hand one counts, so that its end is seen coming.
-    fn part_hump(&mut self, w: usize, tank: &TankState) {
-        let Mode::Line { high, .. } = self.modes.wells[w] else { return };
-        let low = {
-            let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
-            let now = dynamics.well_now(w, tank);
-            let found = dynamics.valley(w, &now);
-            let valley = found.rate_stb_d;
-            let rate = dynamics.rate(w, &now).max(valley);
-            // From the higher ground, so that the same valley is not found again.
-            let (top, _) = top_near(|q| now.height_psi(q), found.crest_stb_d, valley, rate);
-            let spot = &mut self.trace.memory.spots.borrow_mut()[w];
-            (spot.top_rate_stb_d, spot.low_rate_stb_d) = (top, valley);
-            valley / now.curve.open_flow_stb_d()
-        };
-        self.modes.wells[w] = Mode::Line { low, high };
-    }
-
-    /// A hump so narrow that the look over all rates steps over it, but seen on the right of the operating point, is taken from there.
-    fn climb_right(&mut self, w: usize, tank: &TankState) {
-        let Mode::Line { .. } = self.modes.wells[w] else { return };
-        let found = {
-            let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
-            let now = dynamics.well_now(w, tank);
-            dynamics
-                .right_of(w, &now)
-                .filter(|(_, height)| *height >= REGAIN_PSI)
-                .and_then(|(crest, _)| hump_at(&now, dynamics.rate(w, &now), crest))
-        };
-        if let Some((mode, spot)) = found {
-            self.trace.memory.spots.borrow_mut()[w] = spot;
-            self.modes.wells[w] = mode;
-        }
-    }
-
-    /// The target, or the floor's rate, can no longer be held: `h` has come down to zero there.
-    fn cap_lost(&mut self, w: usize, tank: &TankState) -> Result<(), RunError> {
-        let was = self.modes.wells[w];
-        let (next, spot) = {
-            let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
-            let now = dynamics.well_now(w, tank);
-            let cap = dynamics.rate(w, &now);
-            let nudge = 1e-4 * cap;
-            let slope = (now.height_psi(cap + nudge) - now.height_psi(cap - nudge)) / (2.0 * nudge);
-            if slope < 0.0 {
-                // The stable crossing comes in from the right: the well declines along it.
-                let land = now.survey();
-                let open = now.curve.open_flow_stb_d();
-                let (low, high) = (land.hump_stb_d.0.min(0.999 * cap), land.hump_stb_d.1.max(1.001 * cap));
-                let top = if land.top_rate_stb_d < cap { land.top_rate_stb_d } else { 0.9 * cap };
-                let mode = Mode::Line { low: low / open, high: (high / open).min(1.0) };
-                (Ok(mode), Spot { rate_stb_d: cap, slope, top_rate_stb_d: top, ..Spot::default() })
-            } else {
-                let limit = if was == Mode::Floor { StopReason::MinimumFlowingPressure } else { StopReason::RateLimit };
-                match stable_below(&now, 0.999_999 * cap) {
-                    Some((mode, spot)) => (Ok(mode), spot),
-                    None if now.survey().margin_psi <= GONE_PSI => (Err(StopReason::NoCrossing), Spot::default()),
-                    None => (Err(limit), Spot::default()),
-                }
-            }
-        };
-        match next {
-            Err(reason) => self.stop(w, reason),
-            Ok(mode) => {
-                self.trace.memory.spots.borrow_mut()[w] = spot;
-                self.modes.wells[w] = mode;
-                if was == Mode::Target {
-                    self.plateau_lost(w);
-                } else {
-                    let name = self.setup.wells[w].spec.name.clone();
-                    self.event(&name, EventKind::FloorLeft, String::new());
-                }
-                Ok(())
-            }
-        }
     }
 }
 

@@ -9,7 +9,7 @@ use crate::inflow::{
     fit_saturated_below_datum, fit_tests,
 };
 use crate::tank::{Tank, TankState};
-use crate::tubing::{Stream, TraversePoint, Tubing, TubingMethod};
+use crate::tubing::{Stream, Traverse, TraversePoint, Tubing, TubingMethod};
 use jiff::civil::Date;
 use std::cell::Cell;
 
@@ -302,13 +302,17 @@ fn fit_points(inflow: &InflowSpec, points: &[TestPoint], saturated: bool) -> Res
     }
 }
 
-/// What the traverses of a run leave behind: their number, and whether the last one came near to sonic speed.
+/// Counts the traverses of a run.
 #[derive(Debug, Default)]
 pub struct Gauge {
     /// Traverses so far.
     pub traverses: Cell<u64>,
-    /// Whether the kinetic term was held at its limit in the last one.
-    pub near_sonic: Cell<bool>,
+}
+
+impl Gauge {
+    fn count(&self) {
+        self.traverses.set(self.traverses.get() + 1);
+    }
 }
 
 /// A well facing the tank's present state.
@@ -346,27 +350,37 @@ impl<'a> WellNow<'a> {
         Stream { liquid_rate_stb_d, water_cut: self.water_cut, gor_scf_stb: self.gor_scf_stb }
     }
 
+    /// The march down from line pressure.
+    fn traverse(&self, stream: &Stream) -> Traverse {
+        self.gauge.count();
+        self.well.tubing.flowing_pressure(self.fluid, stream, self.well.spec.line_pressure_psia)
+    }
+
     /// Flowing pressure that the tubing asks for at line pressure, psia.
     pub fn tubing_psia(&self, liquid_rate_stb_d: f64) -> f64 {
-        self.gauge.traverses.set(self.gauge.traverses.get() + 1);
-        let well = self.well;
-        let found =
-            well.tubing.flowing_pressure(self.fluid, &self.stream(liquid_rate_stb_d), well.spec.line_pressure_psia);
-        self.gauge.near_sonic.set(found.near_sonic);
-        found.pressure_psia
+        self.traverse(&self.stream(liquid_rate_stb_d)).pressure_psia
+    }
+
+    /// Whether the flow at this rate and line pressure comes near to sonic speed somewhere in the tubing.
+    pub fn near_sonic(&self, liquid_rate_stb_d: f64) -> bool {
+        self.traverse(&self.stream(liquid_rate_stb_d)).near_sonic
     }
 
     /// Pressure at the perforations under a full column of the well's own dead oil and water at line pressure, psia: what a shut-in
     /// well has to push out before it flows (the gas has left the column).
     pub fn dead_column_psia(&self) -> f64 {
-        self.gauge.traverses.set(self.gauge.traverses.get() + 1);
-        let dead = Stream { liquid_rate_stb_d: 0.0, water_cut: self.water_cut, gor_scf_stb: 0.0 };
-        self.well.tubing.flowing_pressure(self.fluid, &dead, self.well.spec.line_pressure_psia).pressure_psia
+        self.traverse(&Stream { liquid_rate_stb_d: 0.0, water_cut: self.water_cut, gor_scf_stb: 0.0 }).pressure_psia
     }
 
     /// Height of the inflow curve above the tubing curve at line pressure, psi.
     pub fn height_psi(&self, liquid_rate_stb_d: f64) -> f64 {
         self.curve.flowing_psia(liquid_rate_stb_d) - self.tubing_psia(liquid_rate_stb_d)
+    }
+
+    /// Slope of the height at a rate, psi per STB/d, by a central difference.
+    pub fn height_slope(&self, liquid_rate_stb_d: f64) -> f64 {
+        let nudge = 1e-4 * liquid_rate_stb_d;
+        (self.height_psi(liquid_rate_stb_d + nudge) - self.height_psi(liquid_rate_stb_d - nudge)) / (2.0 * nudge)
     }
 
     /// The landscape of heights over all rates.
@@ -392,7 +406,7 @@ impl<'a> WellNow<'a> {
 
     /// Wellhead pressure of the choked well, psia; line pressure where the march up does not reach the surface.
     pub fn wellhead_psia(&self, liquid_rate_stb_d: f64, flowing_psia: f64) -> f64 {
-        self.gauge.traverses.set(self.gauge.traverses.get() + 1);
+        self.gauge.count();
         self.well
             .tubing
             .wellhead_pressure(self.fluid, &self.stream(liquid_rate_stb_d), flowing_psia)
