@@ -130,6 +130,11 @@ impl Field {
         &self.setup.tank
     }
 
+    /// What the wells are prepared against.
+    pub fn surroundings(&self) -> Surroundings<'_> {
+        surroundings(&self.spec, &self.fluid, &self.setup.tank, &self.start)
+    }
+
     /// The fluid.
     pub fn fluid(&self) -> &BlackOil {
         &self.fluid

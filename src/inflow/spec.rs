@@ -46,6 +46,35 @@ pub enum Measured {
         /// Producing gas-oil ratio, scf/STB.
         gor_scf_stb: f64,
     },
+    /// Separator test with a gauge at the perforations: the gauge gives the inflow, the pair tells how good the tubing model is.
+    Both {
+        /// Flowing pressure at the perforations, psia.
+        flowing_psia: f64,
+        /// Flowing wellhead pressure, psia.
+        wellhead_psia: f64,
+        /// Producing gas-oil ratio, scf/STB.
+        gor_scf_stb: f64,
+    },
+}
+
+impl Measured {
+    /// Gauged pressure at the perforations, psia.
+    pub fn flowing_psia(&self) -> Option<f64> {
+        match *self {
+            Self::Gauged { flowing_psia } | Self::Both { flowing_psia, .. } => Some(flowing_psia),
+            Self::Separator { .. } => None,
+        }
+    }
+
+    /// Wellhead pressure, psia, and gas-oil ratio, scf/STB, of a separator test.
+    pub fn separator(&self) -> Option<(f64, f64)> {
+        match *self {
+            Self::Separator { wellhead_psia, gor_scf_stb } | Self::Both { wellhead_psia, gor_scf_stb, .. } => {
+                Some((wellhead_psia, gor_scf_stb))
+            }
+            Self::Gauged { .. } => None,
+        }
+    }
 }
 
 /// One measured inflow point.

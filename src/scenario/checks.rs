@@ -5,17 +5,17 @@
 use crate::fault::Fault;
 use crate::fluid::FluidSpec;
 use crate::forecast::{InjectionControl, InjectorSpec, PeriodSpec};
-use crate::inflow::{Coefficient, Measured};
+use crate::inflow::Coefficient;
 use crate::tank::TankSpec;
 use crate::well::WellSpec;
 use jiff::civil::Date;
 
 /// Rounding that two ways of writing one pressure may differ by, psi.
-const SAME_PRESSURE_PSI: f64 = 0.05;
+pub(super) const SAME_PRESSURE_PSI: f64 = 0.05;
 /// r in the skin equation where no radii are given (design section 4.3).
 const DEFAULT_LOG_RADII: f64 = 7.0;
 /// Rounding that depths in a survey may carry, ft.
-const DEPTH_ROUNDING_FT: f64 = 0.01;
+pub(super) const DEPTH_ROUNDING_FT: f64 = 0.01;
 
 /// The calendar.
 pub(super) fn period(period: &PeriodSpec) -> Vec<Fault> {
@@ -195,6 +195,7 @@ pub(super) fn well(
     }
     out.extend(inflow(well, atmospheric_pressure_psia).into_iter().map(|fault| fault.under("inflow")));
     out.extend(tubing(well, tank));
+    out.extend(super::checks_surveys::flowing(well, tank, atmospheric_pressure_psia));
     out.into_iter().map(|fault| fault.under(path)).collect()
 }
 
@@ -228,50 +229,42 @@ fn inflow(well: &WellSpec, atmospheric_pressure_psia: f64) -> Vec<Fault> {
     let mut out = Vec::new();
     let Coefficient::Tests(tests) = &well.inflow.coefficient else { return out };
     for (i, test) in tests.iter().enumerate() {
-        match test.measured {
-            Measured::Gauged { flowing_psia } => {
-                if flowing_psia >= test.reservoir_psia {
-                    out.push(
-                        Fault::new(
-                            format!("test[{i}].flowing"),
-                            format!(
-                                "the flowing pressure ({flowing_psia:.1} psia) is not below the reservoir pressure \
+        if let Some(flowing_psia) = test.measured.flowing_psia() {
+            if flowing_psia >= test.reservoir_psia {
+                out.push(
+                    Fault::new(
+                        format!("test[{i}].flowing"),
+                        format!(
+                            "the flowing pressure ({flowing_psia:.1} psia) is not below the reservoir pressure \
                                  ({:.1} psia)",
-                                test.reservoir_psia
-                            ),
-                        )
-                        .help("a well flows by the difference: check for swapped values, or gauge against absolute"),
-                    );
-                }
-                if flowing_psia < atmospheric_pressure_psia - SAME_PRESSURE_PSI {
-                    out.push(
-                        Fault::new(
-                            format!("test[{i}].flowing"),
-                            "the flowing pressure lies below atmospheric pressure",
-                        )
-                        .help("check the unit"),
-                    );
-                }
+                            test.reservoir_psia
+                        ),
+                    )
+                    .help("a well flows by the difference: check for swapped values, or gauge against absolute"),
+                );
             }
-            Measured::Separator { wellhead_psia, .. } => {
-                if wellhead_psia >= test.reservoir_psia {
-                    out.push(
-                        Fault::new(
-                            format!("test[{i}].wellhead"),
-                            "the wellhead pressure is not below the reservoir pressure",
-                        )
-                        .help("check for swapped values"),
-                    );
-                }
-                if wellhead_psia < atmospheric_pressure_psia - SAME_PRESSURE_PSI {
-                    out.push(
-                        Fault::new(
-                            format!("test[{i}].wellhead"),
-                            "the wellhead pressure lies below atmospheric pressure",
-                        )
+            if flowing_psia < atmospheric_pressure_psia - SAME_PRESSURE_PSI {
+                out.push(
+                    Fault::new(format!("test[{i}].flowing"), "the flowing pressure lies below atmospheric pressure")
+                        .help("check the unit"),
+                );
+            }
+        }
+        if let Some((wellhead_psia, _)) = test.measured.separator() {
+            if wellhead_psia >= test.reservoir_psia {
+                out.push(
+                    Fault::new(
+                        format!("test[{i}].wellhead"),
+                        "the wellhead pressure is not below the reservoir pressure",
+                    )
+                    .help("check for swapped values"),
+                );
+            }
+            if wellhead_psia < atmospheric_pressure_psia - SAME_PRESSURE_PSI {
+                out.push(
+                    Fault::new(format!("test[{i}].wellhead"), "the wellhead pressure lies below atmospheric pressure")
                         .help("was a gauge pressure meant? write psig or barg"),
-                    );
-                }
+                );
             }
         }
     }

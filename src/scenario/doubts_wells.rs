@@ -2,12 +2,12 @@
 
 use super::doubts::{Usual, doubt, short};
 use crate::forecast::{Doubt, DoubtKind, FieldSpec};
-use crate::inflow::{Coefficient, InflowTest, Measured};
+use crate::inflow::{Coefficient, InflowTest};
 use crate::well::WellSpec;
 
 /// A test that is older says little about today's well.
-const OLD_MONTHS: f64 = 24.0;
-const DAYS_IN_MONTH: f64 = 365.2425 / 12.0;
+pub(super) const OLD_MONTHS: f64 = 24.0;
+pub(super) const DAYS_IN_MONTH: f64 = 365.2425 / 12.0;
 /// Steeper than this from the vertical, a well counts as horizontal.
 const HORIZONTAL_DEG: f64 = 80.0;
 
@@ -78,6 +78,7 @@ pub(super) fn well(well: &WellSpec, field: &FieldSpec) -> Vec<Doubt> {
             out.extend(one_test(about, test, well, field));
         }
     }
+    out.extend(super::doubts_surveys::flowing(well, field));
     out
 }
 
@@ -107,11 +108,9 @@ fn number_of_tests(about: &str, tests: &[InflowTest]) -> Option<Doubt> {
         ));
     }
     // Log-log slope over hardly any distance: the exponent is then mostly the gauge's error.
-    let squares = tests.iter().filter_map(|test| match test.measured {
-        Measured::Gauged { flowing_psia } => Some(
-            (test.reservoir_psia * test.reservoir_psia - flowing_psia * flowing_psia) / test.reservoir_psia.powi(2),
-        ),
-        Measured::Separator { .. } => None,
+    let squares = tests.iter().filter_map(|test| {
+        let flowing_psia = test.measured.flowing_psia()?;
+        Some((test.reservoir_psia.powi(2) - flowing_psia.powi(2)) / test.reservoir_psia.powi(2))
     });
     let (low, high, count) =
         squares.fold((f64::INFINITY, 0.0_f64, 0), |(low, high, count), x| (low.min(x), high.max(x), count + 1));
@@ -172,7 +171,7 @@ fn one_test(about: &str, test: &InflowTest, well: &WellSpec, field: &FieldSpec) 
             ));
         }
     }
-    if let Measured::Separator { wellhead_psia, gor_scf_stb } = test.measured {
+    if let Some((wellhead_psia, gor_scf_stb)) = test.measured.separator() {
         let fluid = &field.fluid;
         let undersaturated = fluid.bubble_point_psia.is_some_and(|pb_psia| test.reservoir_psia > pb_psia);
         let apart = gor_scf_stb / fluid.solution_gor_scf_stb - 1.0;

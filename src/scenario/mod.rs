@@ -4,10 +4,13 @@
 //! command line change the tree; then one pass reads it by the list of keys in [`schema`] and notes *every* problem.
 
 mod checks;
+mod checks_surveys;
 mod document;
 mod doubts;
+mod doubts_surveys;
 mod doubts_wells;
 mod events;
+mod flowing_survey;
 mod guess;
 mod load;
 mod overrides;

@@ -1,5 +1,6 @@
 //! Wells and injectors: from the tree to plain data.
 
+use super::flowing_survey;
 use super::problem::Problem;
 use super::reader::Reader;
 use super::schema::{LATER_FUTURE_RULES, LATER_TUBING_METHODS};
@@ -75,6 +76,7 @@ pub(super) fn well(reader: &mut Reader, section: &Section<'_>, tank_pressure_psi
         maximum_gor_scf_stb: reader.optional_quantity(section, "maximum_gor"),
         inflow: inflow(reader, section, tank_pressure_psia),
         tubing: tubing(reader, section),
+        flowing_surveys: flowing_survey::read(reader, section),
     };
     reader.finish(section);
     spec
@@ -184,7 +186,12 @@ fn flow_coefficient(
 }
 
 fn inflow_test(reader: &mut Reader, section: &Section<'_>) -> InflowTest {
-    exactly_one(reader, section, "the test's pressure", &["flowing", "wellhead"]);
+    if !section.has("flowing") && !section.has("wellhead") {
+        reader.note(
+            Problem::new(section.at(""), "the test's pressure is not given")
+                .label("flowing, wellhead, or both are expected"),
+        );
+    }
     let flowing_psia = reader.optional_quantity(section, "flowing");
     let wellhead_psia = reader.optional_quantity(section, "wellhead");
     let gor_scf_stb = reader.optional_quantity(section, "gor");
@@ -192,7 +199,7 @@ fn inflow_test(reader: &mut Reader, section: &Section<'_>) -> InflowTest {
         reader.note(
             Problem::new(
                 section.at("wellhead"),
-                "a separator test needs its gas-oil ratio to compute the flowing pressure",
+                "a separator test needs its gas-oil ratio to compute the pressure along the tubing",
             )
             .label("`gor` is expected beside it"),
         );
@@ -201,7 +208,10 @@ fn inflow_test(reader: &mut Reader, section: &Section<'_>) -> InflowTest {
         (None, Some(wellhead_psia)) => {
             Measured::Separator { wellhead_psia, gor_scf_stb: gor_scf_stb.unwrap_or(f64::NAN) }
         }
-        (flowing_psia, _) => Measured::Gauged { flowing_psia: flowing_psia.unwrap_or(f64::NAN) },
+        (Some(flowing_psia), Some(wellhead_psia)) => {
+            Measured::Both { flowing_psia, wellhead_psia, gor_scf_stb: gor_scf_stb.unwrap_or(f64::NAN) }
+        }
+        (flowing_psia, None) => Measured::Gauged { flowing_psia: flowing_psia.unwrap_or(f64::NAN) },
     };
     let test = InflowTest {
         on: reader.day(section, "on"),

@@ -40,6 +40,7 @@ impl Key {
             Kind::FlowCoefficient => "rate per pressure^2n".to_owned(),
             Kind::Survey => "list of pairs, or a path".to_owned(),
             Kind::Temperatures => "list of pairs".to_owned(),
+            Kind::Stations => "list of pairs or triples, or a path".to_owned(),
             Kind::Table => "table".to_owned(),
             Kind::Tables => "list of tables".to_owned(),
             Kind::Overrides => "paths with values".to_owned(),
@@ -91,6 +92,8 @@ pub enum Kind {
     Survey,
     /// Pairs of measured depth and temperature.
     Temperatures,
+    /// Measured depth and pressure, perhaps temperature, or the path of a file.
+    Stations,
     /// A table of further keys.
     Table,
     /// A list of tables of further keys.
@@ -139,7 +142,6 @@ pub const LATER: &[(&str, &str)] = &[
     ("odds", "the uncertainty study"),
     ("fluid.table", "a laboratory table in place of correlations"),
     ("tank.aquifer", "an aquifer"),
-    ("well.flowing_survey", "flowing surveys"),
     ("well.choke", "a wellhead choke"),
 ];
 
@@ -171,8 +173,8 @@ const END: Limits = above(0.0, 1.0);
 
 use Dimension as D;
 use Kind::{
-    Choice, Day, Flag, FlowCoefficient, Fraction, Injected, Name, Number, Overrides, Quantity, Survey, Tables,
-    Temperatures, Text,
+    Choice, Day, Flag, FlowCoefficient, Fraction, Injected, Name, Number, Overrides, Quantity, Stations, Survey,
+    Tables, Temperatures, Text,
 };
 use Need::{Default, Optional, Required};
 
@@ -282,10 +284,10 @@ pub const KEYS: &[Key] = &[
     key("well.inflow.reservoir", Quantity(D::Pressure, PRESSURE), Optional, "Reservoir pressure to which the stated coefficient belongs; otherwise the tank's initial pressure"),
     key("well.inflow.test.on", Day, Optional, "Date of the test"),
     key("well.inflow.test.reservoir", Quantity(D::Pressure, PRESSURE), Required, "Reservoir pressure at the time, at the tank's datum"),
-    key("well.inflow.test.flowing", Quantity(D::Pressure, PRESSURE), Optional, "Gauged flowing pressure at the perforations; this or wellhead"),
+    key("well.inflow.test.flowing", Quantity(D::Pressure, PRESSURE), Optional, "Gauged flowing pressure at the perforations; this, wellhead, or both"),
     key("well.inflow.test.wellhead", Quantity(D::Pressure, PRESSURE), Optional, "Flowing wellhead pressure of a separator test; needs gor"),
     key("well.inflow.test.rate", Quantity(D::LiquidRate, RATE), Required, "Producing-day liquid rate"),
-    key("well.inflow.test.gor", Quantity(D::GasOilRatio, GOR), Optional, "Producing gas-oil ratio; not used beside a gauged pressure"),
+    key("well.inflow.test.gor", Quantity(D::GasOilRatio, GOR), Optional, "Producing gas-oil ratio; goes with wellhead"),
     key("well.inflow.test.water_cut", Fraction(Limits { low: 0.0, low_allowed: true, high: 0.999 }), Default("0.0"), "Water fraction of the liquid"),
 
     key("well.tubing", Kind::Table, Required, "Tubing"),
@@ -302,6 +304,16 @@ pub const KEYS: &[Key] = &[
     key("well.tubing.survey", Survey, Required, "Pairs of measured depth and true vertical depth or inclination from the wellhead down, or the path of a CSV file"),
     key("well.tubing.wellhead_temperature", Quantity(D::Temperature, from(-40.0, 500.0)), Optional, "Flowing temperature at the wellhead; this or temperature"),
     key("well.tubing.temperature", Temperatures, Optional, "Pairs of measured depth and flowing temperature from the wellhead down"),
+
+    key("well.flowing_survey", Tables, Optional, "Flowing pressures measured along depth: what the tubing models are held against"),
+    key("well.flowing_survey.on", Day, Required, "Day of the survey"),
+    key("well.flowing_survey.rate", Quantity(D::LiquidRate, RATE), Required, "Producing-day liquid rate"),
+    key("well.flowing_survey.gor", Quantity(D::GasOilRatio, GOR), Required, "Producing gas-oil ratio"),
+    key("well.flowing_survey.water_cut", Fraction(Limits { low: 0.0, low_allowed: true, high: 0.999 }), Default("0.0"), "Water fraction of the liquid"),
+    key("well.flowing_survey.wellhead", Quantity(D::Pressure, PRESSURE), Required, "Flowing wellhead pressure, from which the models are computed down"),
+    key("well.flowing_survey.wellhead_temperature", Quantity(D::Temperature, from(-40.0, 500.0)), Optional, "Flowing temperature at the wellhead that day; otherwise the tubing's"),
+    key("well.flowing_survey.reservoir", Quantity(D::Pressure, PRESSURE), Optional, "Reservoir pressure at the time, at the tank's datum: the inflow is then compared too"),
+    key("well.flowing_survey.points", Stations, Required, "Measured depth, pressure and perhaps temperature from the top down, or the path of a CSV file"),
 
     key("event", Tables, Optional, "Dated changes; a case may hold its own"),
     key("event.on", Day, Required, "Acts from 00:00 of this day"),

@@ -121,7 +121,21 @@ fn depths(reader: &mut Reader, row: &Node, label: &str) -> (f64, f64) {
 }
 
 fn from_file(reader: &mut Reader, path: &str, at: &Location) -> Vec<(f64, f64)> {
-    match load(&reader.folder.join(path)) {
+    let help = "a survey file has two columns with their units in the first line: md_ft,tvd_ft or md_m,tvd_m or \
+                md_ft,inclination_deg";
+    table_file(reader, path, at, help, parse_csv)
+}
+
+/// A table in a file beside the scenario, which is noted among the files used.
+pub(super) fn table_file<T>(
+    reader: &mut Reader,
+    path: &str,
+    at: &Location,
+    help: &str,
+    parse: impl Fn(&[u8]) -> Result<Vec<T>, String>,
+) -> Vec<T> {
+    let read = load(&reader.folder.join(path)).and_then(|(bytes, sha256)| Ok((parse(&bytes)?, sha256)));
+    match read {
         Ok((points, sha256)) => {
             if !reader.files.iter().any(|file| file.path == path) {
                 reader.files.push(FileUsed { path: path.to_owned(), sha256 });
@@ -132,17 +146,14 @@ fn from_file(reader: &mut Reader, path: &str, at: &Location) -> Vec<(f64, f64)> 
             reader.note(
                 Problem::new(at.clone(), format!("survey file {}: {message}", shorten(path)))
                     .label("read for this survey, from the scenario's folder")
-                    .help(
-                        "a survey file has two columns with their units in the first line: md_ft,tvd_ft or md_m,tvd_m or \
-                         md_ft,inclination_deg",
-                    ),
+                    .help(help),
             );
             Vec::new()
         }
     }
 }
 
-fn load(path: &std::path::Path) -> Result<(Vec<(f64, f64)>, String), String> {
+fn load(path: &std::path::Path) -> Result<(Vec<u8>, String), String> {
     let kind = std::fs::metadata(path).map_err(|error| match error.kind() {
         std::io::ErrorKind::NotFound => "there is no such file".to_owned(),
         _ => format!("it cannot be read ({error})"),
@@ -155,7 +166,7 @@ fn load(path: &std::path::Path) -> Result<(Vec<(f64, f64)>, String), String> {
     }
     let bytes = std::fs::read(path).map_err(|error| format!("it cannot be read ({error})"))?;
     let sha256 = super::hex(&Sha256::digest(&bytes));
-    Ok((parse_csv(&bytes)?, sha256))
+    Ok((bytes, sha256))
 }
 
 fn parse_csv(bytes: &[u8]) -> Result<Vec<(f64, f64)>, String> {

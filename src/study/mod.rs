@@ -1,5 +1,6 @@
-//! Studies that run many forecasts: cases side by side, the spread over tubing models.
+//! Studies that run many forecasts: cases side by side, the spread over tubing models; models tuned to measurements.
 
+pub mod calibrate;
 mod compare;
 mod spread;
 

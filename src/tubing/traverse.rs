@@ -153,6 +153,44 @@ impl Tubing {
         with_model!(self.method, model => self.points(model, fluid, stream, wellhead_psia))
     }
 
+    /// Pressures at measured depths, psia; depths rise and none lies below the perforations.
+    pub fn pressures_at(
+        &self,
+        fluid: &BlackOil,
+        stream: &Stream,
+        wellhead_psia: f64,
+        depths_md_ft: impl IntoIterator<Item = f64>,
+    ) -> Vec<f64> {
+        with_model!(self.method, model => {
+            let march = self.march(model, fluid, stream);
+            let mut progress = Progress::new(0.0, held(wellhead_psia));
+            let mut stretches = self.path.stretches.iter().peekable();
+            depths_md_ft
+                .into_iter()
+                .map(|depth_md_ft| {
+                    while let Some(stretch) = stretches.peek() {
+                        let end_md_ft = depth_md_ft.min(stretch.bottom_md_ft);
+                        if end_md_ft > progress.md_ft {
+                            march.advance(stretch, &mut progress, end_md_ft);
+                        }
+                        if depth_md_ft <= stretch.bottom_md_ft {
+                            break;
+                        }
+                        stretches.next();
+                    }
+                    progress.pressure_psia
+                })
+                .collect()
+        })
+    }
+
+    /// Vertical depth and temperature, ft and degF, at a measured depth.
+    pub fn place(&self, md_ft: f64) -> (f64, f64) {
+        let stretches = &self.path.stretches;
+        let stretch = stretches.iter().find(|s| md_ft <= s.bottom_md_ft).or(stretches.last());
+        stretch.map_or((f64::NAN, f64::NAN), |s| (s.tvd_ft(md_ft), s.temperature_degf(md_ft)))
+    }
+
     /// Steps that [`flowing_pressure`](Self::flowing_pressure) takes: a measure of its work.
     pub fn steps(&self, fluid: &BlackOil, stream: &Stream, wellhead_psia: f64) -> u32 {
         with_model!(self.method, model => self.march_down(model, fluid, stream, wellhead_psia).steps)

@@ -8,4 +8,4 @@ pub use meeting::{
     Crossing, LOOK_FROM, LOOK_TO, Landscape, crossings, follow_top, right_crossing, survey, survey_above, top_near,
 };
 pub use model::{Gauge, Surroundings, TestCheck, WellModel, WellNow, drainage_term, oil_gradient_psi_ft};
-pub use spec::WellSpec;
+pub use spec::{FlowingSurvey, SurveyPoint, WellSpec};

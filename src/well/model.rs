@@ -5,8 +5,8 @@ use super::meeting::{Landscape, survey_above};
 use crate::fault::Fault;
 use crate::fluid::BlackOil;
 use crate::inflow::{
-    Coefficient, Conditions, Fit, Inflow, InflowCurve, InflowMethod, InflowSpec, Measured, RateBasis, Shape, TestPoint,
-    fit_saturated_below_datum, fit_tests,
+    Coefficient, Conditions, Fit, Inflow, InflowCurve, InflowMethod, InflowSpec, InflowTest, Measured, RateBasis,
+    Shape, TestPoint, fit_saturated_below_datum, fit_tests,
 };
 use crate::tank::{Tank, TankState};
 use crate::tubing::{Stream, Traverse, TraversePoint, Tubing, TubingMethod};
@@ -104,26 +104,27 @@ impl WellModel {
 
     fn check_tests(&self, points: &[TestPoint], around: &Surroundings) -> Vec<TestCheck> {
         let Coefficient::Tests(tests) = &self.spec.inflow.coefficient else { return Vec::new() };
-        tests
-            .iter()
-            .zip(points)
-            .map(|(test, point)| {
-                let then = Conditions {
-                    reservoir_psia: point.reservoir_psia,
-                    bubble_point_psia: bubble_point_then(test.reservoir_psia, around),
-                    oil_mobility_1_cp: reference_mobility(test.reservoir_psia, around),
-                    water_cut: test.water_cut,
-                };
-                TestCheck {
-                    on: test.on,
-                    reservoir_psia: point.reservoir_psia,
-                    flowing_psia: point.flowing_psia,
-                    computed: matches!(test.measured, Measured::Separator { .. }),
-                    rate_stb_d: test.rate_stb_d,
-                    model_rate_stb_d: self.inflow.curve(&then, 1.0).rate_stb_d(point.flowing_psia),
-                }
-            })
-            .collect()
+        tests.iter().zip(points).map(|(test, point)| self.check_test(test, point.flowing_psia, around)).collect()
+    }
+
+    /// A test, whose flowing pressure is given or computed, beside the model's rate at the same conditions.
+    pub fn check_test(&self, test: &InflowTest, flowing_psia: f64, around: &Surroundings) -> TestCheck {
+        let rs = around.fluid.spec().solution_gor_scf_stb;
+        let gradient = oil_gradient_psi_ft(around.fluid, test.reservoir_psia, around.temperature_degf, rs);
+        let then = Conditions {
+            reservoir_psia: test.reservoir_psia + self.depth_below_datum_ft * gradient,
+            bubble_point_psia: bubble_point_then(test.reservoir_psia, around),
+            oil_mobility_1_cp: reference_mobility(test.reservoir_psia, around),
+            water_cut: test.water_cut,
+        };
+        TestCheck {
+            on: test.on,
+            reservoir_psia: then.reservoir_psia,
+            flowing_psia,
+            computed: matches!(test.measured, Measured::Separator { .. }),
+            rate_stb_d: test.rate_stb_d,
+            model_rate_stb_d: self.inflow.curve(&then, 1.0).rate_stb_d(flowing_psia),
+        }
     }
 
     /// The inflow equation in words and figures.
@@ -253,7 +254,7 @@ fn fit_inflow(
             for (i, test) in tests.iter().enumerate() {
                 let reservoir_psia = at_perforations(test.reservoir_psia);
                 let flowing_psia = match test.measured {
-                    Measured::Gauged { flowing_psia } => flowing_psia,
+                    Measured::Gauged { flowing_psia } | Measured::Both { flowing_psia, .. } => flowing_psia,
                     Measured::Separator { wellhead_psia, gor_scf_stb } => {
                         let stream =
                             Stream { liquid_rate_stb_d: test.rate_stb_d, water_cut: test.water_cut, gor_scf_stb };

@@ -45,4 +45,38 @@ pub struct WellSpec {
     pub inflow: InflowSpec,
     /// Tubing.
     pub tubing: TubingSpec,
+    /// Flowing pressures measured along depth.
+    pub flowing_surveys: Vec<FlowingSurvey>,
+}
+
+/// Flowing pressures measured along depth, with what flowed.
+#[derive(Debug, Clone, PartialEq)]
+pub struct FlowingSurvey {
+    /// Day of the survey.
+    pub on: Date,
+    /// Producing-day liquid rate, STB/d.
+    pub rate_stb_d: f64,
+    /// Producing gas-oil ratio, scf/STB.
+    pub gor_scf_stb: f64,
+    /// Water fraction of the liquid.
+    pub water_cut: f64,
+    /// Flowing wellhead pressure, psia.
+    pub wellhead_psia: f64,
+    /// Flowing temperature at the wellhead, degF, when measured.
+    pub wellhead_temperature_degf: Option<f64>,
+    /// Reservoir pressure at the time, at the tank's datum, psia, when known.
+    pub reservoir_psia: Option<f64>,
+    /// The stations, from the top down.
+    pub points: Vec<SurveyPoint>,
+}
+
+/// One station of a flowing survey.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct SurveyPoint {
+    /// Measured depth, ft.
+    pub md_ft: f64,
+    /// Pressure, psia.
+    pub pressure_psia: f64,
+    /// Temperature, degF, when measured.
+    pub temperature_degf: Option<f64>,
 }

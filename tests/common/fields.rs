@@ -87,6 +87,7 @@ pub fn well(name: &str) -> WellSpec {
             wellhead_temperature_degf: 110.0,
             temperatures: Vec::new(),
         },
+        flowing_surveys: Vec::new(),
     }
 }
 

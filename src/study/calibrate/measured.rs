@@ -1,0 +1,225 @@
+//! What was measured in a well's tubing, and how far a model misses it.
+
+use crate::fluid::BlackOil;
+use crate::forecast::Field;
+use crate::inflow::{Coefficient, InflowTest, Measured};
+use crate::tubing::{Stream, Tubing, TubingMethod, TubingSpec};
+use crate::well::{FlowingSurvey, WellModel};
+use jiff::civil::Date;
+
+/// Nearer to the wellhead than this a pressure is the wellhead's own and says nothing of the tubing, ft.
+const WELLHEAD_FT: f64 = 1.0;
+/// Error allowed in a computed pressure, psi: well below what a gauge reads, since differences are taken.
+const ACCURACY_PSI: f64 = 1e-3;
+
+/// What kind of measurement.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Kind {
+    /// A flowing survey.
+    Survey,
+    /// A separator test with a gauge at the perforations.
+    Test,
+}
+
+/// One station.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Station {
+    /// Measured depth, ft.
+    pub md_ft: f64,
+    /// Vertical depth, ft.
+    pub tvd_ft: f64,
+    /// Measured pressure, psia.
+    pub pressure_psia: f64,
+    /// Measured temperature, degF.
+    pub temperature_degf: Option<f64>,
+}
+
+/// One measurement of pressures in the tubing of a well.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Measurement {
+    /// Survey or test.
+    pub kind: Kind,
+    /// Day.
+    pub on: Option<Date>,
+    /// What flowed.
+    pub stream: Stream,
+    /// Flowing wellhead pressure, psia.
+    pub wellhead_psia: f64,
+    /// Reservoir pressure at the tank's datum, psia, when known.
+    pub reservoir_psia: Option<f64>,
+    /// The stations below the wellhead, from the top down.
+    pub stations: Vec<Station>,
+    /// The tubing as stated, with the temperatures of that day where they were measured.
+    tubing: TubingSpec,
+    perforations_md_ft: f64,
+    bottom_temperature_degf: f64,
+}
+
+impl Measurement {
+    /// All measurements of a well, surveys first.
+    pub fn of(well: &WellModel, field: &Field) -> Vec<Self> {
+        let temperature_degf = field.surroundings().temperature_degf;
+        let surveys = well.spec.flowing_surveys.iter().map(|survey| from_survey(well, survey, temperature_degf));
+        let tests = match &well.spec.inflow.coefficient {
+            Coefficient::Tests(tests) => tests.as_slice(),
+            _ => &[],
+        };
+        let tests = tests.iter().filter_map(|test| from_test(well, test, temperature_degf));
+        surveys.chain(tests).filter(|m| !m.stations.is_empty()).collect()
+    }
+
+    /// The tubing of that day with a model, tuned. `None` leaves the roughness as stated.
+    pub fn tubing(&self, tuning: &Tuning) -> Option<Tubing> {
+        let spec = tuning.applied(&self.tubing);
+        Tubing::new(&spec, Some(self.perforations_md_ft), self.bottom_temperature_degf, ACCURACY_PSI).ok()
+    }
+
+    /// Pressures of a model at the stations, psia; NaN where the tubing cannot be prepared.
+    pub fn pressures(&self, fluid: &BlackOil, tuning: &Tuning) -> Vec<f64> {
+        self.tubing(tuning).map_or_else(
+            || vec![f64::NAN; self.stations.len()],
+            |tubing| {
+                tubing.pressures_at(fluid, &self.stream, self.wellhead_psia, self.stations.iter().map(|s| s.md_ft))
+            },
+        )
+    }
+
+    /// What a model misses at the stations, psi: model less measured.
+    pub fn misses(&self, fluid: &BlackOil, tuning: &Tuning) -> Vec<f64> {
+        let model = self.pressures(fluid, tuning);
+        model.iter().zip(&self.stations).map(|(model, station)| model - station.pressure_psia).collect()
+    }
+}
+
+/// A model and what tunes it.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Tuning {
+    /// The model.
+    pub method: TubingMethod,
+    /// Slip factor.
+    pub slip_factor: f64,
+    /// Effective roughness of the whole string, in.; `None`: as stated.
+    pub roughness_in: Option<f64>,
+}
+
+impl Tuning {
+    /// A model as published.
+    pub fn published(method: TubingMethod) -> Self {
+        Self { method, slip_factor: 1.0, roughness_in: None }
+    }
+
+    /// The same tubing with this model and tuning.
+    #[must_use]
+    pub fn applied(&self, tubing: &TubingSpec) -> TubingSpec {
+        let mut spec = tubing.clone();
+        spec.method = self.method;
+        spec.slip_factor = self.slip_factor;
+        if let Some(roughness_in) = self.roughness_in {
+            for section in &mut spec.sections {
+                section.roughness_in = roughness_in;
+            }
+        }
+        spec
+    }
+}
+
+fn from_survey(well: &WellModel, survey: &FlowingSurvey, bottom_temperature_degf: f64) -> Measurement {
+    let mut tubing = well.spec.tubing.clone();
+    let measured: Vec<(f64, f64)> = survey
+        .points
+        .iter()
+        .filter(|p| p.md_ft >= WELLHEAD_FT)
+        .filter_map(|p| Some((p.md_ft, p.temperature_degf?)))
+        .collect();
+    let top = survey.points.first().filter(|p| p.md_ft < WELLHEAD_FT).and_then(|p| p.temperature_degf);
+    let wellhead_degf = survey.wellhead_temperature_degf.or(top);
+    if !measured.is_empty() {
+        let wellhead_degf = wellhead_degf.unwrap_or(tubing.wellhead_temperature_degf);
+        tubing.temperatures = std::iter::once((0.0, wellhead_degf)).chain(measured).collect();
+    } else if let (Some(wellhead_degf), true) = (wellhead_degf, tubing.temperatures.is_empty()) {
+        tubing.wellhead_temperature_degf = wellhead_degf;
+    }
+    let stations = survey.points.iter().filter(|p| p.md_ft >= WELLHEAD_FT).map(|p| Station {
+        md_ft: p.md_ft.min(well.tubing.perforations_md_ft()),
+        tvd_ft: well.tubing.place(p.md_ft).0,
+        pressure_psia: p.pressure_psia,
+        temperature_degf: p.temperature_degf,
+    });
+    Measurement {
+        kind: Kind::Survey,
+        on: Some(survey.on),
+        stream: Stream {
+            liquid_rate_stb_d: survey.rate_stb_d,
+            water_cut: survey.water_cut,
+            gor_scf_stb: survey.gor_scf_stb,
+        },
+        wellhead_psia: survey.wellhead_psia,
+        reservoir_psia: survey.reservoir_psia,
+        stations: stations.collect(),
+        tubing,
+        perforations_md_ft: well.tubing.perforations_md_ft(),
+        bottom_temperature_degf,
+    }
+}
+
+fn from_test(well: &WellModel, test: &InflowTest, bottom_temperature_degf: f64) -> Option<Measurement> {
+    let Measured::Both { flowing_psia, wellhead_psia, gor_scf_stb } = test.measured else { return None };
+    Some(Measurement {
+        kind: Kind::Test,
+        on: test.on,
+        stream: Stream { liquid_rate_stb_d: test.rate_stb_d, water_cut: test.water_cut, gor_scf_stb },
+        wellhead_psia,
+        reservoir_psia: Some(test.reservoir_psia),
+        stations: vec![Station {
+            md_ft: well.tubing.perforations_md_ft(),
+            tvd_ft: well.tubing.perforations_tvd_ft(),
+            pressure_psia: flowing_psia,
+            temperature_degf: None,
+        }],
+        tubing: well.spec.tubing.clone(),
+        perforations_md_ft: well.tubing.perforations_md_ft(),
+        bottom_temperature_degf,
+    })
+}
+
+/// How far a model misses.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Misses {
+    /// Stations.
+    pub count: usize,
+    /// Mean of model less measured, psi.
+    pub bias_psi: f64,
+    /// Mean of its size, psi.
+    pub mean_absolute_psi: f64,
+    /// The largest miss, with its sign, psi.
+    pub worst_psi: f64,
+    /// The same three, each miss over its measured pressure.
+    pub bias: f64,
+    /// See [`bias`](Self::bias).
+    pub mean_absolute: f64,
+    /// See [`bias`](Self::bias).
+    pub worst: f64,
+}
+
+impl Misses {
+    /// From pairs of a miss and a measured pressure, psi and psia.
+    pub fn of(pairs: &[(f64, f64)]) -> Self {
+        let n = pairs.len().max(1) as f64;
+        let mean = |pick: fn(&(f64, f64)) -> f64| pairs.iter().map(pick).sum::<f64>() / n;
+        let worst = |pick: fn(&(f64, f64)) -> f64| {
+            pairs
+                .iter()
+                .map(pick)
+                .fold(0.0, |worst: f64, x| if x.abs() > worst.abs() || x.is_nan() { x } else { worst })
+        };
+        Self {
+            count: pairs.len(),
+            bias_psi: mean(|p| p.0),
+            mean_absolute_psi: mean(|p| p.0.abs()),
+            worst_psi: worst(|p| p.0),
+            bias: mean(|p| p.0 / p.1),
+            mean_absolute: mean(|p| (p.0 / p.1).abs()),
+            worst: worst(|p| p.0 / p.1),
+        }
+    }
+}
