@@ -9,6 +9,7 @@ use crate::report::folder::ResultFolder;
 use crate::report::{forecast_files, sanity, summary_json};
 use crate::scenario::{Document, Scenario, data_doubts};
 use crate::study::add_spread;
+use crate::study::calibrate::tubing_doubts;
 use crate::units::UnitSystem;
 
 pub fn run(args: &ForecastArgs) -> Result<Done, Failure> {
@@ -46,6 +47,7 @@ pub fn run(args: &ForecastArgs) -> Result<Done, Failure> {
 pub fn run_one(scenario: &Scenario) -> Result<Forecast, RunError> {
     let mut forecast = crate::forecast::run_with_curves(&scenario.field)?;
     let mut doubts = data_doubts(scenario);
+    doubts.extend(tubing_doubts(&scenario.field)?);
     doubts.extend(forecast.doubts.iter().filter(|d| !doubts.contains(d)).cloned().collect::<Vec<_>>());
     forecast.doubts = doubts;
     tell(&mut forecast, scenario.units);

@@ -100,7 +100,8 @@ fn spread_text(well: &WellResult) -> Option<String> {
         }
         _ => "it still flows at the end of the forecast with every one".to_owned(),
     };
-    Some(format!("{name}, over {count} tubing models: {text}{left_out}."))
+    let tuned = if spread.calibrated { ", each tuned to its surveys" } else { "" };
+    Some(format!("{name}, over {count} tubing models{tuned}: {text}{left_out}."))
 }
 
 /// When a shutdown becomes final.

@@ -288,6 +288,8 @@ pub struct ModelEnd {
 pub struct Spread {
     /// One entry per model.
     pub models: Vec<ModelEnd>,
+    /// Whether the other models were tuned to pressures measured in the well's tubing.
+    pub calibrated: bool,
 }
 
 impl Spread {

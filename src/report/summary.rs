@@ -173,6 +173,7 @@ fn spread(spread: &Spread) -> Json {
     Json::Object(vec![
         plain("earliest", date(spread.earliest())),
         plain("latest", date(latest)),
+        plain("calibrated", Json::Bool(spread.calibrated)),
         plain("models", Json::List(models)),
     ])
 }

@@ -3,13 +3,17 @@
 //! # Method
 //! The whole forecast is run again with each other model that applies to at least one well, all wells switched together (they share the
 //! tank). A well takes part in the spread with the models that apply to it at the start of its flow: no-slip never, Gray only on gas-rich wells.
+//! Each model carries its own calibration: on a well with measured pressures in its tubing it runs with the slip factor and roughness
+//! that bring it to them, without any as published (a stated slip factor belongs to the well's own model alone). The well's own model
+//! always runs as the scenario states it.
 //! Published comparisons of tubing models disagree most near the minimum of the tubing curve, where a well dies; this spread is the cheapest
 //! honest measure of that doubt.
 
+use super::calibrate::{Tuning, tunings};
 use crate::forecast::{
     Change, Doubt, DoubtKind, Field, FieldSpec, Forecast, ModelEnd, ModelOutcome, RunError, Spread, WellResult, run,
 };
-use crate::tubing::TubingMethod;
+use crate::tubing::{TubingMethod, TubingSpec};
 use crate::well::Gauge;
 use rayon::prelude::*;
 
@@ -28,7 +32,15 @@ pub fn add_spread(spec: &FieldSpec, forecast: &mut Forecast) -> Result<(), RunEr
         .into_iter()
         .filter(|m| applies.iter().zip(&spec.wells).any(|(list, well)| list.contains(m) && well.tubing.method != *m))
         .collect();
-    let runs: Vec<_> = others.par_iter().map(|method| (*method, run(&with_method(spec, *method)))).collect();
+    let tuned: Vec<Option<Vec<Tuning>>> = field.wells().iter().map(|well| tunings(well, &field, &others)).collect();
+    let with = |m: usize, method: TubingMethod| -> Vec<Tuning> {
+        tuned.iter().map(|list| list.as_ref().map_or(Tuning::published(method), |list| list[m])).collect()
+    };
+    let runs: Vec<_> = others
+        .par_iter()
+        .enumerate()
+        .map(|(m, method)| (*method, run(&with_tunings(spec, &with(m, *method)))))
+        .collect();
     for (w, well) in forecast.wells.iter_mut().enumerate() {
         let own = spec.wells[w].tubing.method;
         let mut models = vec![ModelEnd { method: own.name(), outcome: outcome(well) }];
@@ -39,7 +51,7 @@ pub fn add_spread(spec: &FieldSpec, forecast: &mut Forecast) -> Result<(), RunEr
             };
             models.push(ModelEnd { method: method.name(), outcome });
         }
-        let spread = Spread { models };
+        let spread = Spread { models, calibrated: tuned[w].is_some() };
         forecast.doubts.extend(doubt(&well.name, &spread));
         well.spread = Some(spread);
     }
@@ -58,6 +70,11 @@ fn doubt(name: &str, spread: &Spread) -> Option<Doubt> {
     if days <= WIDE_DAYS && still.is_empty() {
         return None;
     }
+    let advice = if spread.calibrated {
+        "every model meets the surveys: survey again at a lower rate and a higher gas-oil ratio, nearer to the end"
+    } else {
+        "run a flowing pressure survey at a low rate, and choose the model that meets it"
+    };
     let seen = if still.is_empty() {
         format!("the end of natural flow lies {:.0} months apart between {first} and {last}", days / 30.436_875)
     } else {
@@ -68,7 +85,7 @@ fn doubt(name: &str, spread: &Spread) -> Option<Doubt> {
         about: name.to_owned(),
         seen,
         cause: "tubing models disagree most near the minimum of the tubing curve, where a well dies".to_owned(),
-        advice: "run a flowing pressure survey at a low rate, and choose the model that meets it".to_owned(),
+        advice: advice.to_owned(),
     })
 }
 
@@ -90,16 +107,20 @@ fn applicable(field: &Field) -> Vec<Vec<TubingMethod>> {
         .collect()
 }
 
-/// The same field with every well on one model, also after dated events.
-fn with_method(spec: &FieldSpec, method: TubingMethod) -> FieldSpec {
+/// The same field with every well on the model and tuning given for it, also after dated events.
+fn with_tunings(spec: &FieldSpec, tunings: &[Tuning]) -> FieldSpec {
     let mut other = spec.clone();
-    for well in &mut other.wells {
-        well.tubing.method = method;
+    for (well, tuning) in other.wells.iter_mut().zip(tunings) {
+        well.tubing = tuning.applied(&well.tubing);
     }
     for change in &mut other.changes {
-        if let Change::Well(_, well) = &mut change.change {
-            well.tubing.method = method;
-        }
+        let Change::Well(w, well) = &mut change.change else { continue };
+        let Some(tuning) = tunings.get(*w) else { continue };
+        // A string that an event puts in has a roughness of its own.
+        let same_string = |own: &TubingSpec| own.sections == well.tubing.sections;
+        let kept = spec.wells.get(*w).is_some_and(|before| same_string(&before.tubing));
+        let tuning = if kept { *tuning } else { Tuning { roughness_in: None, ..*tuning } };
+        well.tubing = tuning.applied(&well.tubing);
     }
     other
 }
