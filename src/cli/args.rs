@@ -23,6 +23,8 @@ pub enum Command {
     Forecast(ForecastArgs),
     /// Run every case of a scenario and set it beside the scenario as it stands
     Compare(CompareArgs),
+    /// Hold the tubing models against flowing surveys and separator tests, and tune them
+    Calibrate(CalibrateArgs),
     /// Fluid properties against pressure at tank temperature
     Fluid(FluidArgs),
     /// Inflow and tubing curves and the pressure traverse on a date
@@ -86,6 +88,22 @@ pub struct CompareArgs {
     #[command(flatten)]
     pub common: Common,
     /// Folder for the results [default: results/<scenario name>]
+    #[arg(short, long, value_name = "DIR")]
+    pub output: Option<PathBuf>,
+}
+
+#[derive(Debug, ClapArgs)]
+#[command(after_help = CAUTION)]
+pub struct CalibrateArgs {
+    #[command(flatten)]
+    pub common: Common,
+    /// Use this case of the scenario
+    #[arg(long, value_name = "NAME")]
+    pub case: Option<String>,
+    /// Only this well (repeatable)
+    #[arg(long, value_name = "NAME")]
+    pub well: Vec<String>,
+    /// Folder for the results [default: results/<scenario name>-calibration]
     #[arg(short, long, value_name = "DIR")]
     pub output: Option<PathBuf>,
 }

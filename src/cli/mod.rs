@@ -1,6 +1,8 @@
 //! Arguments, commands, text for the terminal.
 
 mod args;
+mod calibrate;
+mod calibrate_text;
 mod check;
 mod compare;
 mod compare_text;
@@ -14,6 +16,7 @@ mod output;
 mod screen;
 mod summary_text;
 
+pub use calibrate_text::calibrate_text;
 pub use compare_text::compare_text;
 pub use summary_text::forecast_text;
 
@@ -45,6 +48,7 @@ pub fn run() -> ExitCode {
         Command::Check(check) => check::run(check),
         Command::Forecast(forecast) => forecast::run(forecast),
         Command::Compare(compare) => compare::run(compare),
+        Command::Calibrate(calibrate) => calibrate::run(calibrate),
         Command::Fluid(fluid) => fluid::run(fluid),
         Command::Curves(curves) => curves::run(curves),
     };

@@ -2,6 +2,7 @@
 //!
 //! Exporters turn results into bytes and know no files; [`folder`] alone writes them.
 
+mod calibration_files;
 mod chart;
 mod compare_files;
 mod csv_files;
@@ -15,8 +16,13 @@ mod summary;
 mod table;
 mod words;
 
+pub use calibration_files::{
+    calibration_csv, calibration_json, finding_text, held_text, kind_text, lines_of, lines_toml, measurement_title,
+    stations_csv,
+};
 pub use chart::{
-    Drawing, compare_picture, curves_picture, fluid_picture, pressure_picture, rates_picture, traverse_picture,
+    Drawing, calibration_picture, compare_picture, curves_picture, fluid_picture, pressure_picture, rates_picture,
+    traverse_picture,
 };
 pub use compare_files::{compare_csv, compare_json};
 pub use csv_files::{events_csv, profile_csv, yearly_csv};

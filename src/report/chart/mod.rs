@@ -2,6 +2,7 @@
 //! SVG or PNG, and only `paint` knows the drawing library.
 
 mod axes;
+mod calibration;
 mod cases;
 mod curves;
 mod fluid;
@@ -12,6 +13,7 @@ mod style;
 mod timeline;
 mod traverse;
 
+pub use calibration::calibration_picture;
 pub use cases::compare_picture;
 pub use curves::curves_picture;
 pub use fluid::fluid_picture;

@@ -113,13 +113,14 @@ impl WellCalibration {
     }
 }
 
-/// Holds every well of a field against what was measured in it.
+/// Holds the wells of these names (every well where none is named) against what was measured in them.
 ///
 /// # Errors
 /// [`RunError`] where the field cannot be prepared, also with the tuned tubing.
-pub fn calibrate(spec: &FieldSpec) -> Result<Vec<WellCalibration>, RunError> {
+pub fn calibrate(spec: &FieldSpec, names: &[String]) -> Result<Vec<WellCalibration>, RunError> {
     let field = Field::new(spec)?;
-    (0..spec.wells.len()).map(|w| one_well(spec, &field, w)).collect()
+    let asked = |w: &usize| names.is_empty() || names.contains(&spec.wells[*w].name);
+    (0..spec.wells.len()).filter(asked).map(|w| one_well(spec, &field, w)).collect()
 }
 
 /// The models that apply to every measurement, the well's own first in any case.
