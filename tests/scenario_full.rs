@@ -10,7 +10,7 @@ use wane::scenario::{Document, schema};
 use wane::tank::{ProducedSpec, TankSpec, WaterModel};
 use wane::tubing::{TubingMethod, TubingSection, TubingSpec};
 use wane::units::UnitSystem;
-use wane::well::WellSpec;
+use wane::well::{FlowingSurvey, SurveyPoint, WellSpec};
 
 const FULL: &str = include_str!("data/full.toml");
 
@@ -127,6 +127,10 @@ fn injectors_arrive() {
     assert_eq!(resolve().injectors, [water, gas]);
 }
 
+fn point(md_ft: f64, pressure_psia: f64, temperature_degf: Option<f64>) -> SurveyPoint {
+    SurveyPoint { md_ft, pressure_psia, temperature_degf }
+}
+
 #[test]
 fn the_first_well_arrives() {
     let well = WellSpec {
@@ -180,6 +184,16 @@ fn the_first_well_arrives() {
             wellhead_temperature_degf: 102.0,
             temperatures: Vec::new(),
         },
+        flowing_surveys: vec![FlowingSurvey {
+            on: date(2026, 6, 11),
+            rate_stb_d: 520.0,
+            gor_scf_stb: 530.0,
+            water_cut: 0.03,
+            wellhead_psia: 310.0,
+            wellhead_temperature_degf: Some(105.0),
+            reservoir_psia: Some(2590.0),
+            points: vec![point(0.0, 311.0, None), point(3000.0, 960.0, Some(141.0)), point(7000.0, 2110.0, None)],
+        }],
     };
     let mut found = resolve().wells.remove(0);
     // 4.25 in / 12 by two roads.

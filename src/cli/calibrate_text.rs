@@ -148,10 +148,25 @@ fn fits(s: &mut Screen, well: &WellCalibration, units: UnitSystem) {
         (names[1].as_str(), Side::Right),
     ];
     s.table(&header, &rows);
+    // What is to be said of several models is said once.
+    let mut said: Vec<(String, Vec<&str>)> = Vec::new();
     for m in &well.models {
-        match &m.fit {
-            Ok(fit) => s.paragraph(2, 2, &format!("{}: {}.", m.method.name(), told(fit, units).join("; "))),
-            Err(why) => s.warning("!", &format!("{}: {why}", m.method.name())),
+        let Ok(fit) = &m.fit else { continue };
+        for text in told(fit, units) {
+            match said.iter_mut().find(|(known, _)| *known == text) {
+                Some((_, models)) => models.push(m.method.name()),
+                None => said.push((text, vec![m.method.name()])),
+            }
+        }
+    }
+    for (text, models) in said {
+        let who =
+            if models.len() == well.models.len() && models.len() > 1 { "all".to_owned() } else { models.join(", ") };
+        s.paragraph(2, 2, &format!("{who}: {text}."));
+    }
+    for m in &well.models {
+        if let Err(why) = &m.fit {
+            s.warning("!", &format!("{}: {why}", m.method.name()));
         }
     }
 }
@@ -169,7 +184,7 @@ fn finding_words(finding: Finding, fit: &Fitted) -> String {
     let (low, high) = LIKELY_SLIP;
     match finding {
         Finding::ExcludesOne => {
-            "the interval of the slip factor excludes 1: as published the model does not describe this well".to_owned()
+            "the interval of the slip factor excludes 1: as published it does not describe this well".to_owned()
         }
         Finding::IncludesOne => "the interval of the slip factor includes 1: as published it will do".to_owned(),
         Finding::NoInterval => "too few points for an interval".to_owned(),

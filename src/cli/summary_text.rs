@@ -88,7 +88,7 @@ fn spread_text(well: &WellResult) -> Option<String> {
     let name = &well.name;
     let failed: Vec<&str> =
         spread.models.iter().filter(|m| matches!(m.outcome, ModelOutcome::Failed(_))).map(|m| m.method).collect();
-    let left_out = if failed.is_empty() { String::new() } else { format!("; not run with {}", failed.join(", ")) };
+    let left_out = if failed.is_empty() { String::new() } else { format!("; not counted: {}", failed.join(", ")) };
     let count = spread.models.len() - failed.len();
     let still = spread.still_flowing();
     let text = match (spread.earliest(), spread.latest()) {

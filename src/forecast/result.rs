@@ -270,7 +270,7 @@ pub enum ModelOutcome {
     Ends(FlowEnd),
     /// The well still flows at the end of the forecast.
     StillFlows,
-    /// The forecast cannot be run with this model, for this reason.
+    /// The forecast cannot be run with this model, or the model does not come to the well's measurements, for this reason.
     Failed(String),
 }
 

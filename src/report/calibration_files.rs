@@ -82,7 +82,7 @@ impl Units {
 pub fn calibration_csv(wells: &[WellCalibration], units: UnitSystem) -> Result<Vec<u8>, ReportError> {
     let u = Units::of(units);
     csv_bytes(|w| {
-        let header: [String; 13] = [
+        let header: [String; 14] = [
             "well".into(),
             "method".into(),
             "tuning".into(),
@@ -96,6 +96,7 @@ pub fn calibration_csv(wells: &[WellCalibration], units: UnitSystem) -> Result<V
             "bias".into(),
             "mean_absolute".into(),
             "worst".into(),
+            "worst_relative".into(),
         ];
         w.write_record(&header)?;
         for well in wells {
@@ -113,7 +114,7 @@ pub fn calibration_csv(wells: &[WellCalibration], units: UnitSystem) -> Result<V
                             misses.count.to_string(),
                         ];
                         let psi = [misses.bias_psi, misses.mean_absolute_psi, misses.worst_psi];
-                        let part = [misses.bias, misses.mean_absolute, misses.worst];
+                        let part = [misses.bias, misses.mean_absolute, misses.worst, misses.worst_relative];
                         let figures = psi.map(|x| cell(u.difference.of(x))).into_iter().chain(part.map(cell));
                         w.write_record(start.into_iter().chain(figures))?;
                     }
@@ -243,6 +244,7 @@ fn score_json(score: &Score, well: &WellCalibration, u: &Units) -> Json {
             plain("bias", m.bias),
             plain("mean_absolute", m.mean_absolute),
             plain("worst", m.worst),
+            plain("worst_relative", m.worst_relative),
         ])
     };
     let each = well.measurements.iter().zip(&score.each).map(|(_, m)| misses(m));

@@ -4,7 +4,7 @@
 //! The whole forecast is run again with each other model that applies to at least one well, all wells switched together (they share the
 //! tank). A well takes part in the spread with the models that apply to it at the start of its flow: no-slip never, Gray only on gas-rich wells.
 //! Each model carries its own calibration: on a well with measured pressures in its tubing it runs with the slip factor and roughness
-//! that bring it to them, without any as published (a stated slip factor belongs to the well's own model alone). The well's own model
+//! that bring it to them, and is left out where even these do not; without any as published (a stated slip factor belongs to the well's own model alone). The well's own model
 //! always runs as the scenario states it.
 //! Published comparisons of tubing models disagree most near the minimum of the tubing curve, where a well dies; this spread is the cheapest
 //! honest measure of that doubt.
@@ -32,9 +32,14 @@ pub fn add_spread(spec: &FieldSpec, forecast: &mut Forecast) -> Result<(), RunEr
         .into_iter()
         .filter(|m| applies.iter().zip(&spec.wells).any(|(list, well)| list.contains(m) && well.tubing.method != *m))
         .collect();
-    let tuned: Vec<Option<Vec<Tuning>>> = field.wells().iter().map(|well| tunings(well, &field, &others)).collect();
+    let tuned: Vec<Option<Vec<Result<Tuning, String>>>> =
+        field.wells().iter().map(|well| tunings(well, &field, &others)).collect();
+    // A well that a model does not describe runs with it as published beside those that it does describe.
     let with = |m: usize, method: TubingMethod| -> Vec<Tuning> {
-        tuned.iter().map(|list| list.as_ref().map_or(Tuning::published(method), |list| list[m])).collect()
+        tuned
+            .iter()
+            .map(|list| list.as_ref().and_then(|list| list[m].clone().ok()).unwrap_or(Tuning::published(method)))
+            .collect()
     };
     let runs: Vec<_> = others
         .par_iter()
@@ -44,8 +49,10 @@ pub fn add_spread(spec: &FieldSpec, forecast: &mut Forecast) -> Result<(), RunEr
     for (w, well) in forecast.wells.iter_mut().enumerate() {
         let own = spec.wells[w].tubing.method;
         let mut models = vec![ModelEnd { method: own.name(), outcome: outcome(well) }];
-        for (method, other) in runs.iter().filter(|(m, _)| applies[w].contains(m) && *m != own) {
+        for (m, (method, other)) in runs.iter().enumerate().filter(|(_, (m, _))| applies[w].contains(m) && *m != own) {
+            let missed = tuned[w].as_ref().and_then(|list| list[m].as_ref().err());
             let outcome = match other {
+                _ if missed.is_some() => ModelOutcome::Failed(missed.cloned().unwrap_or_default()),
                 Ok(forecast) => outcome(&forecast.wells[w]),
                 Err(error) => ModelOutcome::Failed(error.to_string()),
             };

@@ -15,19 +15,21 @@ const ROW: f64 = 380.0;
 /// Measurements drawn; further ones are named.
 const MOST: usize = 4;
 
-/// The chosen model after its fit.
-const CHOSEN: Look = Look { colour: INK, width: 3.2, dash: Dash::Solid, mark: Mark::Disc };
+/// The chosen model after its fit: broad and pale, so that the measured points stand out on it.
+const CHOSEN: Look = Look { colour: [158, 190, 186], width: 7.0, dash: Dash::Solid, mark: Mark::Disc };
 /// What was measured.
 const MEASURED: Look = Look { colour: INK, width: 0.0, dash: Dash::Solid, mark: Mark::Disc };
 
 /// One row for each measurement of a well: pressure against depth, and what each model misses; depth grows downwards.
 pub fn calibration_picture(well: &WellCalibration, provenance: &Provenance) -> Drawing {
     let chosen = well.chosen().filter(|m| m.fitted.is_some());
+    // A single station is drawn as a mark for each model.
+    let single = well.measurements.iter().any(|m| m.stations.len() == 1);
     let mut entries: Vec<(String, Look, bool)> = well
         .models
         .iter()
         .enumerate()
-        .map(|(i, m)| (m.method.name().to_owned(), Look { width: 1.6, ..look(i) }, false))
+        .map(|(i, m)| (m.method.name().to_owned(), Look { width: 1.6, ..look(i) }, single))
         .collect();
     if let Some(fit) = chosen.and_then(|m| Some((m.method, m.fit.as_ref().ok()?))) {
         entries.push((
@@ -82,29 +84,29 @@ fn draw_row(d: &mut Drawing, well: &WellCalibration, index: usize, top: f64, pro
     d.text((24.0, top + 12.0), 14.0, Anchor::Left, INK, heading);
     d.text((976.0, top + 12.0), 12.5, Anchor::Right, QUIET, stream);
     let chosen = well.chosen().and_then(|model| model.fitted.as_ref());
-    let computed = || well.models.iter().map(|model| &model.published.pressures_psia[index]);
-    let measured = || m.stations.iter().map(|s| pressure.of(s.pressure_psia));
     let deepest = m.stations.last().map_or(1.0, |s| depth.of(s.md_ft));
-    let y = Span::new(0.0, deepest).rounded(true).turned();
-    let highest = Span::of(computed().flatten().map(|p| pressure.of(*p)).chain(measured())).map_or(1.0, |s| s.high);
+    let y = Span::new(0.0, 1.03 * deepest).turned();
+    let along = |curve: &[(f64, f64)]| -> Vec<(f64, f64)> {
+        curve.iter().map(|(md_ft, psia)| (pressure.of(*psia), depth.of(*md_ft))).collect()
+    };
+    let curves = || well.models.iter().map(|model| &model.published.curves[index]);
+    let measured = || m.stations.iter().map(|s| pressure.of(s.pressure_psia));
+    let computed = curves().flatten().map(|p| pressure.of(p.1));
+    let highest = Span::of(computed.chain(measured())).map_or(1.0, |s| s.high);
     let (panel_top, panel_bottom) = (top + 52.0, top + ROW - 62.0);
     let panel =
         Panel { left: 84.0, top: panel_top, right: 556.0, bottom: panel_bottom, x: Span::from_zero(highest, false), y };
     panel.draw_y(d, &format!("Measured depth, {}", depth.text), 5, true);
     panel.draw_x(d, &format!("Pressure, {}", pressure.text), 6);
     panel.draw_frame(d);
-    let along = |values: &[f64]| -> Vec<(f64, f64)> {
-        let stations = m.stations.iter().zip(values).map(|(s, p)| (pressure.of(*p), depth.of(s.md_ft)));
-        std::iter::once((pressure.of(m.wellhead_psia), 0.0)).chain(stations).collect()
-    };
-    for (i, model) in well.models.iter().enumerate() {
-        panel.draw_line(d, along(&model.published.pressures_psia[index]), Look { width: 1.6, ..look(i) });
-    }
     if let Some(score) = chosen {
-        panel.draw_line(d, along(&score.pressures_psia[index]), CHOSEN);
+        panel.draw_line(d, along(&score.curves[index]), CHOSEN);
+    }
+    for (i, curve) in curves().enumerate() {
+        panel.draw_line(d, along(curve), Look { width: 1.6, ..look(i) });
     }
     for s in &m.stations {
-        panel.draw_mark(d, (pressure.of(s.pressure_psia), depth.of(s.md_ft)), MEASURED, 4.2);
+        mark(d, panel.at((pressure.of(s.pressure_psia), depth.of(s.md_ft))), Mark::Disc, 4.0, INK);
     }
     draw_misses(d, well, index, (panel_top, panel_bottom, y), &depth, &difference);
 }
@@ -137,11 +139,16 @@ fn draw_misses(
     panel.draw_frame(d);
     let zero = panel.at_x(0.0);
     d.line(vec![(zero, top), (zero, bottom)], 1.2, QUIET);
-    for (i, model) in well.models.iter().enumerate() {
-        panel.draw_line(d, misses(&model.published.pressures_psia[index]), Look { width: 1.6, ..look(i) });
-    }
+    let draw = |d: &mut Drawing, values: &[f64], look: Look| match misses(values).as_slice() {
+        // One station makes no line.
+        [_, only] => mark(d, panel.at(*only), look.mark, 4.6, look.colour),
+        line => panel.draw_line(d, line.iter().copied(), look),
+    };
     if let Some(score) = chosen {
-        panel.draw_line(d, misses(&score.pressures_psia[index]), CHOSEN);
+        draw(d, &score.pressures_psia[index], Look { mark: Mark::Square, ..CHOSEN });
+    }
+    for (i, model) in well.models.iter().enumerate() {
+        draw(d, &model.published.pressures_psia[index], Look { width: 1.6, ..look(i) });
     }
     // The measured points are where nothing is missed.
     for s in &m.stations {

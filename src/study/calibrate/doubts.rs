@@ -47,15 +47,14 @@ fn of_well(well: &WellModel, field: &Field) -> Vec<Doubt> {
         let pairs: Vec<(f64, f64)> = misses.iter().zip(&m.stations).map(|(x, s)| (*x, s.pressure_psia)).collect();
         let found = Misses::of(&pairs);
         // NaN is a miss too.
-        if !(found.worst.abs() <= SURVEY_MISS) {
+        if !(found.worst_relative <= SURVEY_MISS) {
             out.push(doubt(
                 DoubtKind::TestMismatch,
                 format!(
-                    "{} misses the {} by up to {:+.0} psi ({:+.1} %)",
+                    "{} misses pressures of the {} by up to {:.1} %",
                     method.name(),
                     title(m),
-                    found.worst_psi,
-                    100.0 * found.worst
+                    100.0 * found.worst_relative
                 ),
                 "the model as tuned does not describe this well, or rate, gas, water or gauge of that day are wrong",
                 "run `wane calibrate` and use the lines that it prints",

@@ -7,14 +7,14 @@
 //! Student's t times the standard error (linear theory, e.g. Draper and Smith 1998). It supposes misses that are independent and of
 //! one size.
 
-use levenberg_marquardt::{LeastSquaresProblem, LevenbergMarquardt};
+use levenberg_marquardt::{LeastSquaresProblem, LevenbergMarquardt, TerminationReason};
 use nalgebra::{DMatrix, DVector, Dyn, Owned};
 use special::Beta;
 
 /// Confidence of every interval.
 pub const CONFIDENCE: f64 = 0.95;
 /// Function evaluations allowed are this many times the number of parameters plus one.
-const PATIENCE: usize = 200;
+const PATIENCE: usize = 60;
 /// Reciprocal condition of the scaled normal matrix below which parameters cannot be told apart.
 const SINGULAR: f64 = 1e-12;
 
@@ -31,6 +31,19 @@ pub struct Estimates {
     pub sum_of_squares: f64,
     /// Points less parameters.
     pub degrees_of_freedom: usize,
+    /// Whether the search came to rest; it does not where a parameter runs away.
+    pub settled: bool,
+}
+
+/// How a fit is done.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Settings<'a> {
+    /// Size of each parameter: steps are taken of it where the parameter itself is smaller.
+    pub typical: &'a [f64],
+    /// Relative step of the differences.
+    pub step: f64,
+    /// Relative change of the sum of squares that ends the search; of the parameters ten times as much.
+    pub tolerance: f64,
 }
 
 impl Estimates {
@@ -102,36 +115,32 @@ impl<F: Fn(&[f64]) -> Vec<f64>> LeastSquaresProblem<f64, Dyn, Dyn> for Problem<F
     }
 }
 
-/// Minimises the sum of squares of `residuals` from `start`. `step` is the relative step of the differences, taken of a
-/// parameter or of its `typical` size, whichever is larger.
+/// Minimises the sum of squares of `residuals` from `start`.
 ///
 /// # Errors
-/// A sentence when the residuals are not finite somewhere on the way, or the search does not settle.
-pub fn fit(
-    residuals: impl Fn(&[f64]) -> Vec<f64>,
-    start: &[f64],
-    typical: &[f64],
-    step: f64,
-) -> Result<Estimates, String> {
+/// A sentence when the residuals are not finite somewhere on the way.
+pub fn fit(residuals: impl Fn(&[f64]) -> Vec<f64>, start: &[f64], settings: Settings) -> Result<Estimates, String> {
+    let Settings { typical, step, tolerance } = settings;
     let problem = Problem { residuals, at: DVector::from_column_slice(start), step, typical: typical.to_vec() };
     let count = problem.residuals().ok_or("the model gives no finite pressure at the start of the fit")?.len();
     if count < start.len() {
         return Err(format!("{count} points cannot fix {} figures", start.len()));
     }
-    let search = LevenbergMarquardt::new().with_ftol(1e-12).with_xtol(1e-10).with_gtol(1e-12).with_patience(PATIENCE);
+    let search = LevenbergMarquardt::new()
+        .with_ftol(tolerance)
+        .with_xtol(10.0 * tolerance)
+        .with_gtol(tolerance)
+        .with_patience(PATIENCE);
     let (problem, report) = search.minimize(problem);
-    // "No improvement possible" is the noise of the residuals: as good as it gets.
-    if report.termination.was_usage_issue()
-        && !matches!(report.termination, levenberg_marquardt::TerminationReason::NoImprovementPossible(_))
-        || matches!(
-            report.termination,
-            levenberg_marquardt::TerminationReason::User(_)
-                | levenberg_marquardt::TerminationReason::Numerical(_)
-                | levenberg_marquardt::TerminationReason::LostPatience
-        )
-    {
-        return Err(format!("the fit does not settle ({:?})", report.termination));
-    }
+    let settled = match report.termination {
+        TerminationReason::ResidualsZero
+        | TerminationReason::Orthogonal
+        | TerminationReason::Converged { .. }
+        // The noise of the residuals is reached: as good as it gets.
+        | TerminationReason::NoImprovementPossible(_) => true,
+        TerminationReason::LostPatience => false,
+        other => return Err(format!("the fit fails ({other:?})")),
+    };
     let degrees_of_freedom = count - start.len();
     let sum_of_squares = 2.0 * report.objective_function;
     let covariance = problem
@@ -152,6 +161,7 @@ pub fn fit(
         correlation,
         sum_of_squares,
         degrees_of_freedom,
+        settled,
     })
 }
 

@@ -9,6 +9,8 @@ use jiff::civil::Date;
 
 /// Nearer to the wellhead than this a pressure is the wellhead's own and says nothing of the tubing, ft.
 const WELLHEAD_FT: f64 = 1.0;
+/// Intervals of a traverse that is drawn.
+const DRAWN: u32 = 40;
 /// Error allowed in a computed pressure, psi: well below what a gauge reads, since differences are taken.
 const ACCURACY_PSI: f64 = 1e-3;
 
@@ -74,6 +76,11 @@ impl Measurement {
         Tubing::new(&spec, Some(self.perforations_md_ft), self.bottom_temperature_degf, ACCURACY_PSI).ok()
     }
 
+    /// Smallest hydraulic diameter of the string, in.
+    pub(super) fn narrowest_in(&self) -> f64 {
+        self.tubing.sections.iter().map(|s| s.diameter_in - s.inner_pipe_in).fold(f64::INFINITY, f64::min)
+    }
+
     /// Pressures of a model at the stations, psia; NaN where the tubing cannot be prepared.
     pub fn pressures(&self, fluid: &BlackOil, tuning: &Tuning) -> Vec<f64> {
         self.tubing(tuning).map_or_else(
@@ -82,6 +89,14 @@ impl Measurement {
                 tubing.pressures_at(fluid, &self.stream, self.wellhead_psia, self.stations.iter().map(|s| s.md_ft))
             },
         )
+    }
+
+    /// The traverse of a model from the wellhead to the deepest station: measured depth, ft, and psia.
+    pub(super) fn curve(&self, fluid: &BlackOil, tuning: &Tuning) -> Vec<(f64, f64)> {
+        let Some((tubing, deepest)) = self.tubing(tuning).zip(self.stations.last()) else { return Vec::new() };
+        let depths: Vec<f64> = (0..=DRAWN).map(|i| deepest.md_ft * f64::from(i) / f64::from(DRAWN)).collect();
+        let pressures = tubing.pressures_at(fluid, &self.stream, self.wellhead_psia, depths.iter().copied());
+        depths.into_iter().zip(pressures).collect()
     }
 
     /// What a model misses at the stations, psi: model less measured.
@@ -193,12 +208,14 @@ pub struct Misses {
     pub mean_absolute_psi: f64,
     /// The largest miss, with its sign, psi.
     pub worst_psi: f64,
-    /// The same three, each miss over its measured pressure.
+    /// The same three, each miss over its measured pressure; the worst is that of the same station.
     pub bias: f64,
     /// See [`bias`](Self::bias).
     pub mean_absolute: f64,
     /// See [`bias`](Self::bias).
     pub worst: f64,
+    /// Largest size of a miss over its measured pressure.
+    pub worst_relative: f64,
 }
 
 impl Misses {
@@ -206,20 +223,18 @@ impl Misses {
     pub fn of(pairs: &[(f64, f64)]) -> Self {
         let n = pairs.len().max(1) as f64;
         let mean = |pick: fn(&(f64, f64)) -> f64| pairs.iter().map(pick).sum::<f64>() / n;
-        let worst = |pick: fn(&(f64, f64)) -> f64| {
-            pairs
-                .iter()
-                .map(pick)
-                .fold(0.0, |worst: f64, x| if x.abs() > worst.abs() || x.is_nan() { x } else { worst })
-        };
+        // NaN stands above every number, so that it is seen.
+        let worst = pairs.iter().copied().max_by(|a, b| a.0.abs().total_cmp(&b.0.abs())).unwrap_or((0.0, 1.0));
+        let relative = pairs.iter().map(|p| (p.0 / p.1).abs()).max_by(f64::total_cmp).unwrap_or(0.0);
         Self {
             count: pairs.len(),
             bias_psi: mean(|p| p.0),
             mean_absolute_psi: mean(|p| p.0.abs()),
-            worst_psi: worst(|p| p.0),
+            worst_psi: worst.0,
             bias: mean(|p| p.0 / p.1),
             mean_absolute: mean(|p| (p.0 / p.1).abs()),
-            worst: worst(|p| p.0 / p.1),
+            worst: worst.0 / worst.1,
+            worst_relative: relative,
         }
     }
 }

@@ -29,6 +29,8 @@ pub struct Score {
     pub tuning: Tuning,
     /// Pressures at the stations of each measurement, psia.
     pub pressures_psia: Vec<Vec<f64>>,
+    /// For each measurement the whole traverse from the wellhead to the deepest station, to be drawn: measured depth, ft, and psia.
+    pub curves: Vec<Vec<(f64, f64)>>,
     /// In each measurement.
     pub each: Vec<Misses>,
     /// In all together.
@@ -45,9 +47,10 @@ impl Score {
                 m.stations.iter().zip(model).map(|(s, p)| (p - s.pressure_psia, s.pressure_psia)).collect()
             })
             .collect();
+        let curves = measurements.iter().map(|m| m.curve(fluid, &tuning)).collect();
         let each = pairs.iter().map(|one| Misses::of(one)).collect();
         let all = Misses::of(&pairs.concat());
-        Self { tuning, pressures_psia, each, all }
+        Self { tuning, pressures_psia, curves, each, all }
     }
 }
 
@@ -249,16 +252,31 @@ fn back_calculated(well: &WellModel, reservoir_psia: f64, from_surveys: bool) ->
     }
 }
 
-/// The tuning of each of these models for a well, where its measurements give one.
-pub(super) fn tunings(well: &WellModel, field: &Field, methods: &[TubingMethod]) -> Option<Vec<Tuning>> {
+/// A tuned model whose misses still have a larger mean size than this part of the pressures does not describe the well.
+const STILL_MISSED: f64 = 0.05;
+
+/// The tuning of each of these models for a well, where its measurements give one; a sentence for a model that does not come to
+/// them even tuned.
+pub(super) fn tunings(
+    well: &WellModel,
+    field: &Field,
+    methods: &[TubingMethod],
+) -> Option<Vec<Result<Tuning, String>>> {
     let measurements = Measurement::of(well, field);
     if measurements.is_empty() {
         return None;
     }
     let stated_in = stated_roughness_in(&well.spec);
-    let fitted = methods.par_iter().map(|method| {
-        fit(*method, &measurements, field.fluid(), stated_in)
-            .map_or_else(|_| Tuning::published(*method), |fit| fit.tuning(*method))
-    });
-    Some(fitted.collect())
+    let tuned = |method: &TubingMethod| -> Result<Tuning, String> {
+        let fit = fit(*method, &measurements, field.fluid(), stated_in)?;
+        let score = Score::of(fit.tuning(*method), &measurements, field.fluid());
+        if !fit.plausible() {
+            return Err(format!("needs a slip factor of {:.2} to come to its measurements", fit.slip_factor));
+        }
+        if !(score.all.mean_absolute <= STILL_MISSED) {
+            return Err(format!("misses its measurements by {:.0} % even tuned", 100.0 * score.all.mean_absolute));
+        }
+        Ok(score.tuning)
+    };
+    Some(methods.par_iter().map(tuned).collect())
 }

@@ -7,14 +7,16 @@
 //! roughness is taken only where the points tell it: the second fit must be better by Fisher's test, the interval of the roughness
 //! must not span more than a factor of ten, and a tubing of that roughness must exist. Otherwise it is held and the reason is told.
 
-use super::least_squares::{self, Estimates, student_t};
+use super::least_squares::{self, Estimates, Settings, student_t};
 use super::measured::{Measurement, Tuning};
 use crate::fluid::BlackOil;
 use crate::tubing::TubingMethod;
 
 /// Bounds of the search. No column is told from another outside those of the slip factor.
 const SLIP: (f64, f64) = (0.02, 6.0);
-const ROUGHNESS_IN: (f64, f64) = (1e-6, 0.2);
+const ROUGHNESS_IN: (f64, f64) = (1e-6, 0.1);
+/// Part of the narrowest inside diameter beyond which the friction factor is not known.
+const ROUGHEST_PART: f64 = 0.04;
 /// Outside this a slip factor repairs something else: rate, gas, water or depth.
 pub const LIKELY_SLIP: (f64, f64) = (0.5, 2.0);
 /// Rougher than this no tubing is that has not lost its bore to scale (new pipe 0.0006 to 0.002, corroded up to 0.01), in.
@@ -31,6 +33,8 @@ const EXCHANGEABLE: f64 = 0.95;
 const FOLLOWING: f64 = 1.0;
 /// Step of the differences in the search's coordinates.
 const STEP: f64 = 1e-3;
+/// Relative change of the sum of squares that ends the search: below what the traverse's own accuracy lets it see.
+const TOLERANCE: f64 = 1e-9;
 
 /// Why the roughness is held at its stated value.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -146,8 +150,9 @@ impl Bounded {
 
 const SLIP_SCALE: Bounded = Bounded { low: SLIP.0, high: SLIP.1 };
 
-fn roughness_scale() -> Bounded {
-    Bounded { low: ROUGHNESS_IN.0.ln(), high: ROUGHNESS_IN.1.ln() }
+fn roughness_scale(measurements: &[Measurement]) -> Bounded {
+    let narrowest_in = measurements.iter().map(Measurement::narrowest_in).fold(f64::INFINITY, f64::min);
+    Bounded { low: ROUGHNESS_IN.0.ln(), high: ROUGHNESS_IN.1.min(ROUGHEST_PART * narrowest_in).ln() }
 }
 
 /// Fits a model to a well's measurements; `stated_in` is the roughness from which the search starts.
@@ -162,14 +167,13 @@ pub fn fit(
 ) -> Result<Fitted, String> {
     let misses = |tuning: &Tuning| -> Vec<f64> { measurements.iter().flat_map(|m| m.misses(fluid, tuning)).collect() };
     let slip_at = |u: &[f64]| SLIP_SCALE.value(u[0]);
-    let rough = roughness_scale();
+    let rough = roughness_scale(measurements);
     let rough_at = |u: &[f64]| rough.value(u[1]).exp();
     let start = SLIP_SCALE.coordinate(1.0);
     let alone = least_squares::fit(
         |u| misses(&Tuning { method, slip_factor: slip_at(u), roughness_in: None }),
         &[start],
-        &[1.0],
-        STEP,
+        Settings { typical: &[1.0], step: STEP, tolerance: TOLERANCE },
     )?;
     let points = alone.degrees_of_freedom + 1;
     let both = (points > 2).then(|| {
@@ -177,8 +181,7 @@ pub fn fit(
         least_squares::fit(
             |u| misses(&Tuning { method, slip_factor: slip_at(u), roughness_in: Some(rough_at(u)) }),
             &from,
-            &[1.0, 1.0],
-            STEP,
+            Settings { typical: &[1.0, 1.0], step: STEP, tolerance: TOLERANCE },
         )
     });
     let (held, both) = match both {
@@ -224,7 +227,8 @@ fn free(both: &Estimates, rough: Bounded) -> Free {
     Free {
         slip_factor: SLIP_SCALE.value(both.values[0]),
         roughness_in: ln_in.exp(),
-        roughness_interval_in: half.map(|h| ((ln_in - h).exp(), (ln_in + h).exp())),
+        // On a bound the slope is lost, and with it the interval.
+        roughness_interval_in: half.filter(|h| *h < 20.0).map(|h| ((ln_in - h).exp(), (ln_in + h).exp())),
         correlation: both.correlation,
     }
 }
@@ -238,6 +242,9 @@ fn why_held(alone: &Estimates, both: &Estimates, free: &Free) -> Option<Held> {
     }
     if free.roughness_in > ROUGHEST_IN || free.roughness_in < SMOOTHEST_IN {
         return Some(Held::Unphysical);
+    }
+    if !both.settled {
+        return Some(Held::Unsettled);
     }
     let told = free.roughness_interval_in.is_some_and(|(low, high)| high <= WIDEST * low);
     (!told).then_some(Held::Undetermined)
