@@ -458,6 +458,8 @@ fn every_key_of_the_list_is_really_read() {
             ("well.OP-1.inflow.test".to_owned(), format!("[{{ {rest} = [[7]] }}]"))
         } else if let Some(rest) = path.strip_prefix("well.OP-1.tubing.sections.") {
             ("well.OP-1.tubing.sections".to_owned(), format!("[{{ {rest} = [[7]] }}]"))
+        } else if let Some(rest) = path.strip_prefix("well.OP-1.flowing_survey.") {
+            ("well.OP-1.flowing_survey".to_owned(), format!("[{{ {rest} = [[7]] }}]"))
         } else {
             (path, "[[7]]".to_owned())
         };
@@ -465,6 +467,7 @@ fn every_key_of_the_list_is_really_read() {
         let name = key.path.rsplit('.').next().unwrap();
         let told = problems.list.iter().any(|problem| match name {
             "survey" => problem.message == "a point of a survey is a pair",
+            "points" => problem.message == "a point of a flowing survey is a depth and a pressure",
             "temperature" if path.contains("tubing") => problem.message.contains("a point of a table of temperatures"),
             "name" => problem.message == "a name cannot be overridden",
             _ => problem.message.contains("a list") && problem.message.contains(name),

@@ -6,7 +6,10 @@ mod common;
 use common::near;
 use std::path::Path;
 use wane::forecast::{FieldSpec, Forecast, StopReason, Tolerance, run};
+use wane::inflow::{Coefficient, Measured};
 use wane::scenario::Document;
+use wane::study::add_spread;
+use wane::study::calibrate::calibrate;
 
 fn shipped(name: &str) -> Document {
     Document::load(&Path::new(env!("CARGO_MANIFEST_DIR")).join("scenarios").join(name)).unwrap()
@@ -51,7 +54,7 @@ fn holds(what: &str, spec: &FieldSpec) -> Forecast {
 
 #[test]
 fn every_case_of_every_shipped_scenario_holds_the_numbers() {
-    for name in ["depletion.toml", "injection.toml", "two-wells.toml", "midlife.toml"] {
+    for name in ["depletion.toml", "injection.toml", "two-wells.toml", "midlife.toml", "calibrated.toml"] {
         let document = shipped(name);
         let cases = document.case_names();
         for case in std::iter::once(None).chain(cases.iter().map(|c| Some(c.as_str()))) {
@@ -109,6 +112,42 @@ fn separator_tests_without_a_gauge_are_met() {
         // Two tests fix C and n; the perforations lie two metres below the datum, where the straight line is not exact.
         near(t.model_rate_stb_d, t.rate_stb_d, 2e-3, "the tests are met");
     }
+}
+
+#[test]
+fn calibration_meets_the_surveys_and_narrows_the_spread() {
+    let spec = field("calibrated.toml", None);
+    // The tuned model as the scenario states it is within 2 % of every measured pressure.
+    let calibration = calibrate(&spec, &[]).unwrap().remove(0);
+    let own = &calibration.models[0];
+    let stated = own.as_stated.as_ref().unwrap();
+    assert!(stated.all.count == 19 && stated.all.worst_relative < 0.02, "{:?}", stated.all);
+    assert!(own.published.all.worst_relative > 0.10, "untuned it is not: {:?}", own.published.all);
+    // The surveys are a blend of two models: nothing meets them within their rounding.
+    assert!(calibration.models.iter().all(|m| m.fitted.as_ref().unwrap().all.mean_absolute_psi > 0.5));
+    assert_eq!(calibration.chosen, Some(0));
+
+    // Months from the earliest to the latest end; a model with which the well still flows counts to the end of the period.
+    let months = |spec: &FieldSpec| -> f64 {
+        let mut forecast = run(spec).unwrap();
+        add_spread(spec, &mut forecast).unwrap();
+        let spread = forecast.wells[0].spread.clone().unwrap();
+        let (first, last) = (spread.earliest().unwrap().1.days, spread.latest().unwrap().1.days);
+        let whole = wane::forecast::days_between(spec.period.start, spec.period.end);
+        (if spread.still_flowing().is_empty() { last } else { whole } - first) / 30.436_875
+    };
+    let mut before = spec.clone();
+    let well = &mut before.wells[0];
+    well.flowing_surveys.clear();
+    well.tubing.slip_factor = 1.0;
+    well.tubing.sections[0].roughness_in = 0.0006;
+    let Coefficient::Tests(tests) = &mut well.inflow.coefficient else { panic!("it has tests") };
+    for test in tests {
+        let (wellhead_psia, gor_scf_stb) = test.measured.separator().unwrap();
+        test.measured = Measured::Separator { wellhead_psia, gor_scf_stb };
+    }
+    let (before, after) = (months(&before), months(&spec));
+    assert!(before > 60.0 && after < 12.0, "{before} months before, {after} after");
 }
 
 /// The same field written in field and in metric units ends on the same day.

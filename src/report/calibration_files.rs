@@ -302,9 +302,9 @@ pub fn lines_of(well: &WellCalibration, units: UnitSystem) -> Option<String> {
     let first = sections.next().copied();
     let alike = first.filter(|first| sections.all(|other| other == first));
     let many = well.stated_roughness_in.len() > 1;
-    match (fit.roughness_in, alike) {
-        (Some(fitted), _) => {
-            text.push_str(&format!("roughness   = \"{}\"", rough_text(fitted, units)));
+    match (fit.roughness_in.or(fit.held_roughness_in), alike) {
+        (Some(effective), _) => {
+            text.push_str(&format!("roughness   = \"{}\"", rough_text(effective, units)));
             text.push_str(if many { "   # take `roughness` out of the sections\n" } else { "\n" });
         }
         (None, Some(stated)) => text.push_str(&format!("roughness   = \"{}\"\n", rough_text(stated, units))),

@@ -36,10 +36,9 @@ pub fn add_spread(spec: &FieldSpec, forecast: &mut Forecast) -> Result<(), RunEr
         field.wells().iter().map(|well| tunings(well, &field, &others)).collect();
     // A well that a model does not describe runs with it as published beside those that it does describe.
     let with = |m: usize, method: TubingMethod| -> Vec<Tuning> {
-        tuned
-            .iter()
-            .map(|list| list.as_ref().and_then(|list| list[m].clone().ok()).unwrap_or(Tuning::published(method)))
-            .collect()
+        let own = |list: &Option<Vec<Result<Tuning, String>>>| list.as_ref().and_then(|list| list[m].clone().ok());
+        let wells = tuned.iter().zip(&spec.wells);
+        wells.map(|(list, well)| own(list).unwrap_or_else(|| Tuning::published(method, &well.tubing))).collect()
     };
     let runs: Vec<_> = others
         .par_iter()

@@ -69,7 +69,12 @@ fn of_well(well: &WellModel, field: &Field) -> Vec<Doubt> {
             )
         }));
     }
-    let fit = tuning::fit(method, &measurements, field.fluid(), super::stated_roughness_in(&well.spec));
+    let fit = tuning::fit(
+        &Tuning::published(method, &well.spec.tubing),
+        &measurements,
+        field.fluid(),
+        super::start_roughness_in(&well.spec.tubing),
+    );
     // The slip factor alone, at the roughness that is stated.
     if let Ok(fit) = fit.map(|fit| fit.alone)
         && let Some((low, high)) = fit.1

@@ -9,6 +9,8 @@ use jiff::civil::Date;
 
 /// Nearer to the wellhead than this a pressure is the wellhead's own and says nothing of the tubing, ft.
 const WELLHEAD_FT: f64 = 1.0;
+/// Roughness of new pipe, in.: what a scenario has that states none.
+const NEW_PIPE_IN: f64 = 0.0006;
 /// Intervals of a traverse that is drawn.
 const DRAWN: u32 = 40;
 /// Error allowed in a computed pressure, psi: well below what a gauge reads, since differences are taken.
@@ -118,9 +120,11 @@ pub struct Tuning {
 }
 
 impl Tuning {
-    /// A model as published.
-    pub fn published(method: TubingMethod) -> Self {
-        Self { method, slip_factor: 1.0, roughness_in: None }
+    /// A model as published in a well's tubing, with the roughness as stated. A stated slip factor tells that the tubing is tuned for
+    /// its own model: the roughness beside it belongs to that model too, and the others get that of new pipe.
+    pub fn published(method: TubingMethod, stated: &TubingSpec) -> Self {
+        let tuned_for_another = method != stated.method && stated.slip_factor != 1.0;
+        Self { method, slip_factor: 1.0, roughness_in: tuned_for_another.then_some(NEW_PIPE_IN) }
     }
 
     /// The same tubing with this model and tuning.

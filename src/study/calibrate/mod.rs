@@ -15,7 +15,7 @@ pub use tuning::{Finding, Fitted, Free, Held, LIKELY_SLIP, ROUGHEST_IN, fit};
 use crate::fluid::BlackOil;
 use crate::forecast::{Field, FieldSpec, RunError};
 use crate::inflow::{Coefficient, InflowTest, Measured, RateBasis, Shape};
-use crate::tubing::TubingMethod;
+use crate::tubing::{TubingMethod, TubingSpec};
 use crate::well::{TestCheck, WellModel, WellSpec};
 use rayon::prelude::*;
 
@@ -59,7 +59,7 @@ impl Score {
 pub struct ModelScore {
     /// The model.
     pub method: TubingMethod,
-    /// As published: slip factor 1, roughness as stated.
+    /// As published: slip factor 1, roughness as stated, or of new pipe where the stated one is tuned for another model.
     pub published: Score,
     /// As the scenario states it, where that is another tuning; the well's own model only.
     pub as_stated: Option<Score>,
@@ -163,14 +163,15 @@ fn score(method: TubingMethod, well: &WellSpec, measurements: &[Measurement], fl
     let stated = &well.tubing;
     let as_stated = (stated.method == method && stated.slip_factor != 1.0)
         .then(|| score(Tuning { method, slip_factor: stated.slip_factor, roughness_in: None }));
-    let fit = fit(method, measurements, fluid, stated_roughness_in(well));
+    let published = Tuning::published(method, stated);
+    let fit = fit(&published, measurements, fluid, start_roughness_in(stated));
     let fitted = fit.as_ref().ok().map(|fit| score(fit.tuning(method)));
-    ModelScore { method, published: score(Tuning::published(method)), as_stated, fit, fitted }
+    ModelScore { method, published: score(published), as_stated, fit, fitted }
 }
 
 /// Roughness from which a search starts: that of the longest stretch would do as well.
-fn stated_roughness_in(well: &WellSpec) -> f64 {
-    well.tubing.sections.last().map_or(0.0006, |s| s.roughness_in)
+fn start_roughness_in(tubing: &TubingSpec) -> f64 {
+    tubing.sections.last().map_or(0.0006, |s| s.roughness_in)
 }
 
 /// The model with the least misses left among those whose fit is plausible; the well's own unless another is clearly better.
@@ -199,7 +200,7 @@ fn inflow(spec: &FieldSpec, w: usize, tuned: Option<Tuning>, out: &mut WellCalib
     let field = Field::new(&with)?;
     let around = field.surroundings();
     let bottom = |m: &Measurement, well: &WellModel| {
-        m.tubing(&tuned.unwrap_or(Tuning::published(well.tubing.method())))
+        m.tubing(&tuned.unwrap_or(Tuning::published(well.tubing.method(), &well.spec.tubing)))
             .unwrap_or_else(|| well.tubing.clone())
             .flowing_pressure(field.fluid(), &m.stream, m.wellhead_psia)
             .pressure_psia
@@ -266,9 +267,10 @@ pub(super) fn tunings(
     if measurements.is_empty() {
         return None;
     }
-    let stated_in = stated_roughness_in(&well.spec);
+    let stated = &well.spec.tubing;
     let tuned = |method: &TubingMethod| -> Result<Tuning, String> {
-        let fit = fit(*method, &measurements, field.fluid(), stated_in)?;
+        let published = Tuning::published(*method, stated);
+        let fit = fit(&published, &measurements, field.fluid(), start_roughness_in(stated))?;
         let score = Score::of(fit.tuning(*method), &measurements, field.fluid());
         if !fit.plausible() {
             return Err(format!("needs a slip factor of {:.2} to come to its measurements", fit.slip_factor));

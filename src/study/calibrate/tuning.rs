@@ -90,8 +90,10 @@ pub struct Fitted {
     pub slip_factor: f64,
     /// Its interval.
     pub slip_interval: Option<(f64, f64)>,
-    /// Effective roughness, in.; `None`: held as stated.
+    /// Effective roughness, in.; `None`: it is held.
     pub roughness_in: Option<f64>,
+    /// The roughness that is held then, in.; `None`: that of each stretch as stated.
+    pub held_roughness_in: Option<f64>,
     /// Its interval, in.
     pub roughness_interval_in: Option<(f64, f64)>,
     /// The slip factor alone, at the roughness as stated, and its interval.
@@ -111,7 +113,7 @@ pub struct Fitted {
 impl Fitted {
     /// The model with this fit.
     pub fn tuning(&self, method: TubingMethod) -> Tuning {
-        Tuning { method, slip_factor: self.slip_factor, roughness_in: self.roughness_in }
+        Tuning { method, slip_factor: self.slip_factor, roughness_in: self.roughness_in.or(self.held_roughness_in) }
     }
 
     /// Whether the fitted figures can be what they are called.
@@ -155,29 +157,27 @@ fn roughness_scale(measurements: &[Measurement]) -> Bounded {
     Bounded { low: ROUGHNESS_IN.0.ln(), high: ROUGHNESS_IN.1.min(ROUGHEST_PART * narrowest_in).ln() }
 }
 
-/// Fits a model to a well's measurements; `stated_in` is the roughness from which the search starts.
+/// Fits a model to a well's measurements. `untuned` is the model as published, whose roughness is held where the points do not tell
+/// one; `start_in` is the roughness from which the search starts.
 ///
 /// # Errors
 /// A sentence when the model cannot be brought through the points at all.
-pub fn fit(
-    method: TubingMethod,
-    measurements: &[Measurement],
-    fluid: &BlackOil,
-    stated_in: f64,
-) -> Result<Fitted, String> {
+pub fn fit(untuned: &Tuning, measurements: &[Measurement], fluid: &BlackOil, start_in: f64) -> Result<Fitted, String> {
+    let Tuning { method, roughness_in: held_roughness_in, .. } = *untuned;
+    let start_in = held_roughness_in.unwrap_or(start_in);
     let misses = |tuning: &Tuning| -> Vec<f64> { measurements.iter().flat_map(|m| m.misses(fluid, tuning)).collect() };
     let slip_at = |u: &[f64]| SLIP_SCALE.value(u[0]);
     let rough = roughness_scale(measurements);
     let rough_at = |u: &[f64]| rough.value(u[1]).exp();
     let start = SLIP_SCALE.coordinate(1.0);
     let alone = least_squares::fit(
-        |u| misses(&Tuning { method, slip_factor: slip_at(u), roughness_in: None }),
+        |u| misses(&Tuning { method, slip_factor: slip_at(u), roughness_in: held_roughness_in }),
         &[start],
         Settings { typical: &[1.0], step: STEP, tolerance: TOLERANCE },
     )?;
     let points = alone.degrees_of_freedom + 1;
     let both = (points > 2).then(|| {
-        let from = [alone.values[0], rough.coordinate(stated_in.max(ROUGHNESS_IN.0).ln())];
+        let from = [alone.values[0], rough.coordinate(start_in.max(ROUGHNESS_IN.0).ln())];
         least_squares::fit(
             |u| misses(&Tuning { method, slip_factor: slip_at(u), roughness_in: Some(rough_at(u)) }),
             &from,
@@ -202,6 +202,7 @@ pub fn fit(
         slip_interval,
         alone: slip(&alone),
         roughness_in: roughness.map(|f| f.roughness_in),
+        held_roughness_in,
         roughness_interval_in: roughness.and_then(|f| f.roughness_interval_in),
         held,
         correlation: roughness.and_then(|f| f.correlation),
