@@ -9,6 +9,7 @@ use jiff::civil::date;
 use wane::fluid::BlackOil;
 use wane::forecast::{DoubtKind, Field, FieldSpec};
 use wane::inflow::{Coefficient, InflowTest, Measured};
+use wane::report::{Provenance, UnitSystem, calibration_picture};
 use wane::study::calibrate::{
     Finding, Fitted, Held, Kind, Measurement, Misses, Tuning, WellCalibration, calibrate, fit, tubing_doubts,
 };
@@ -132,10 +133,10 @@ fn fitted(method: TubingMethod, spec: &FieldSpec) -> Fitted {
 
 #[test]
 fn known_slip_and_roughness_come_back() {
-    let check = |method: TubingMethod, surveys: &dyn Fn(&FieldSpec, (f64, f64)) -> Vec<FlowingSurvey>| {
+    fn check<M: Hydraulics>(method: TubingMethod, model: &M) {
         for figures in [(0.75, 0.0018), (1.0, 0.0006), (1.35, 0.006)] {
             let mut spec = field(method, Vec::new());
-            spec.wells[0].flowing_surveys = surveys(&spec, figures);
+            spec.wells[0].flowing_surveys = known(model, &spec, figures);
             let fit = fitted(method, &spec);
             let what = format!("{} {figures:?}: {fit:?}", method.name());
             near(fit.slip_factor, figures.0, 1e-3, &what);
@@ -144,10 +145,10 @@ fn known_slip_and_roughness_come_back() {
             assert!(fit.deviation_psi.unwrap() < 0.02, "{what}");
             assert!(fit.plausible(), "{what}");
         }
-    };
-    check(TubingMethod::HasanKabir, &|spec, figures| known(&HasanKabir, spec, figures));
-    check(TubingMethod::DriftFlux, &|spec, figures| known(&DriftFlux, spec, figures));
-    check(TubingMethod::BeggsBrill, &|spec, figures| known(&BeggsBrill { payne: true }, spec, figures));
+    }
+    check(TubingMethod::HasanKabir, &HasanKabir);
+    check(TubingMethod::DriftFlux, &DriftFlux);
+    check(TubingMethod::BeggsBrill, &BeggsBrill { payne: true });
 }
 
 /// Uniform numbers (Knuth's 64-bit linear congruence, high bits) made normal as the sum of twelve.
@@ -392,4 +393,58 @@ fn one_roughness_for_the_whole_string_and_surveys_give_an_inflow() {
     assert!(inflow.from_surveys);
     near(inflow.coefficient, 1500.0 / (3500.0 - bottom), 1e-3, "back-calculated index");
     assert_eq!(found.survey_inflow.len(), 1);
+}
+
+#[test]
+fn odd_measurements_are_answered_and_never_panic() {
+    let mut noise = Noise(99);
+    for round in 0..16 {
+        let mut spec = field(TubingMethod::ALL[round % 8], Vec::new());
+        let mut between = |low: f64, high: f64| {
+            let share = (0.5 + noise.next() / 6.0).clamp(0.0, 1.0);
+            (low.ln() + share * (high / low).ln()).exp()
+        };
+        let stream = Stream {
+            liquid_rate_stb_d: between(1e-3, 3e4),
+            water_cut: if round % 3 == 0 { 0.999 } else { 0.2 },
+            gor_scf_stb: between(1.0, 3e4),
+        };
+        let points: Vec<(f64, f64)> = (1..=1 + round % 7).map(|i| (1000.0 * i as f64, between(15.0, 2e4))).collect();
+        spec.wells[0].flowing_surveys = vec![survey(&stream, between(15.0, 3000.0), &points)];
+        let found = one(&spec);
+        for model in &found.models {
+            if let Ok(fit) = &model.fit {
+                assert!(fit.slip_factor.is_finite() && fit.slip_factor > 0.0, "{stream:?} {fit:?}");
+                assert!(fit.roughness_in.is_none_or(|x| x > 0.0 && x <= 0.015), "{stream:?} {fit:?}");
+            }
+        }
+        tubing_doubts(&spec).unwrap();
+    }
+}
+
+#[test]
+fn the_picture_holds_its_words_however_many_measurements_there_are() {
+    let mut spec = field(TubingMethod::HasanKabir, Vec::new());
+    spec.wells[0].name = "a well whose name is as long as a name may be, sixty letters".to_owned();
+    let (stream, wellhead) = STREAMS[0];
+    let whole = survey(&stream, wellhead, &by_hand(&HasanKabir, &spec, (1.2, 0.0018), &stream, wellhead, 1000.0));
+    for count in [1, 2, 7] {
+        spec.wells[0].flowing_surveys = vec![whole.clone(); count];
+        // One of them has a single station.
+        spec.wells[0].flowing_surveys[0].points.truncate(1);
+        for units in [UnitSystem::Field, UnitSystem::Metric] {
+            let provenance = Provenance {
+                title: "A title that goes on for longer than the picture is wide, ".repeat(4),
+                scenario_name: "long-name.toml".to_owned(),
+                units,
+                ..Provenance::default()
+            };
+            let drawing = calibration_picture(&one(&spec), &provenance);
+            assert_eq!(drawing.clipped_texts(), Vec::<&str>::new(), "{count}");
+            let rows = drawing.texts().filter(|t| t.starts_with("Flowing survey of")).count();
+            assert_eq!(rows, count.min(4));
+            assert_eq!(drawing.texts().any(|t| t.contains("3 further measurements")), count == 7);
+            assert!(drawing.to_svg().unwrap().len() > 1000);
+        }
+    }
 }

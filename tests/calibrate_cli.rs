@@ -158,7 +158,8 @@ fn what_cannot_be_calibrated_is_refused_and_writes_nothing() {
 fn the_forecast_tells_of_the_calibration_and_doubts_wells_without_one() {
     let dir = tempfile::tempdir().unwrap();
     let shown = out(&wane(dir.path(), &["forecast", SHIPPED]));
-    assert!(shown.contains("each tuned to its surveys: between"), "{shown}");
+    let shown = shown.replace("\n    ", " ");
+    assert!(shown.contains("each tuned to the measurements: between"), "{shown}");
     assert!(shown.contains("not counted: hagedorn-brown"), "{shown}");
     assert!(!shown.contains("met no measurement"), "{shown}");
     let file = untuned(dir.path(), "metric");

@@ -219,7 +219,7 @@ fn held_words(why: Held, free: Option<&Free>, units: UnitSystem) -> String {
     });
     match why {
         Held::TooFewPoints => "roughness held: too few points for two figures".to_owned(),
-        Held::NoGain => "roughness held: the points do not tell it, free it makes the fit no better".to_owned(),
+        Held::NoGain => "roughness held: free it makes the fit no better".to_owned(),
         Held::Undetermined => format!("roughness held: the points cannot tell it from slip{free_value}"),
         Held::Unphysical => match free {
             Some(f) if f.roughness_in > ROUGHEST_IN => format!(

@@ -100,7 +100,7 @@ fn spread_text(well: &WellResult) -> Option<String> {
         }
         _ => "it still flows at the end of the forecast with every one".to_owned(),
     };
-    let tuned = if spread.calibrated { ", each tuned to its surveys" } else { "" };
+    let tuned = if spread.calibrated { ", each tuned to the measurements" } else { "" };
     Some(format!("{name}, over {count} tubing models{tuned}: {text}{left_out}."))
 }
 

@@ -77,7 +77,7 @@ fn doubt(name: &str, spread: &Spread) -> Option<Doubt> {
         return None;
     }
     let advice = if spread.calibrated {
-        "every model meets the surveys: survey again at a lower rate and a higher gas-oil ratio, nearer to the end"
+        "every model counted comes to the measurements: survey again at a lower rate and a higher gas-oil ratio, nearer to the end"
     } else {
         "run a flowing pressure survey at a low rate, and choose the model that meets it"
     };

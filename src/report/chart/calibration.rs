@@ -41,7 +41,7 @@ pub fn calibration_picture(well: &WellCalibration, provenance: &Provenance) -> D
     entries.push(("measured".to_owned(), MEASURED, true));
     let drawn = order(&well.measurements);
     let legend_room = legend_height(WIDTH, &entries);
-    let height = 64.0 + legend_room + ROW * drawn.len().min(MOST).max(1) as f64 + 34.0;
+    let height = 64.0 + legend_room + ROW * drawn.len().clamp(1, MOST) as f64 + 34.0;
     let mut d = Drawing::new(WIDTH, height.ceil() as u32);
     let left_out = drawn.len().saturating_sub(MOST);
     let more =

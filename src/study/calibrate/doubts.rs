@@ -47,7 +47,7 @@ fn of_well(well: &WellModel, field: &Field) -> Vec<Doubt> {
         let pairs: Vec<(f64, f64)> = misses.iter().zip(&m.stations).map(|(x, s)| (*x, s.pressure_psia)).collect();
         let found = Misses::of(&pairs);
         // NaN is a miss too.
-        if !(found.worst_relative <= SURVEY_MISS) {
+        if found.worst_relative.is_nan() || found.worst_relative > SURVEY_MISS {
             out.push(doubt(
                 DoubtKind::TestMismatch,
                 format!(

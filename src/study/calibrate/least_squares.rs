@@ -14,7 +14,7 @@ use special::Beta;
 /// Confidence of every interval.
 pub const CONFIDENCE: f64 = 0.95;
 /// Function evaluations allowed are this many times the number of parameters plus one.
-const PATIENCE: usize = 60;
+const PATIENCE: usize = 40;
 /// Reciprocal condition of the scaled normal matrix below which parameters cannot be told apart.
 const SINGULAR: f64 = 1e-12;
 

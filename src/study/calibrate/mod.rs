@@ -275,7 +275,7 @@ pub(super) fn tunings(
         if !fit.plausible() {
             return Err(format!("needs a slip factor of {:.2} to come to its measurements", fit.slip_factor));
         }
-        if !(score.all.mean_absolute <= STILL_MISSED) {
+        if score.all.mean_absolute.is_nan() || score.all.mean_absolute > STILL_MISSED {
             return Err(format!("misses its measurements by {:.0} % even tuned", 100.0 * score.all.mean_absolute));
         }
         Ok(score.tuning)

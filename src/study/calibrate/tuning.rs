@@ -238,7 +238,7 @@ fn why_held(alone: &Estimates, both: &Estimates, free: &Free) -> Option<Held> {
     let dof = both.degrees_of_freedom;
     // Fisher's ratio for one more figure is the square of Student's t.
     let gain = (alone.sum_of_squares - both.sum_of_squares) / (both.sum_of_squares / dof as f64);
-    if !(gain > student_t(dof).powi(2)) {
+    if gain.is_nan() || gain <= student_t(dof).powi(2) {
         return Some(Held::NoGain);
     }
     if free.roughness_in > ROUGHEST_IN || free.roughness_in < SMOOTHEST_IN {
