@@ -238,6 +238,22 @@ fn what_the_points_cannot_tell_is_held_and_said() {
 }
 
 #[test]
+fn one_rate_tells_slip_from_roughness_worse_than_two() {
+    // Both make the column heavier all the way down: only the rate parts them.
+    let mut spec = field(TubingMethod::HasanKabir, Vec::new());
+    let both = known(&HasanKabir, &spec, (1.2, 0.004));
+    let correlation = |fit: &Fitted| fit.correlation.or(fit.held.and_then(|(_, free)| free?.correlation)).unwrap();
+    spec.wells[0].flowing_surveys = both.clone();
+    let two = fitted(TubingMethod::HasanKabir, &spec);
+    spec.wells[0].flowing_surveys = vec![both[0].clone()];
+    let one = fitted(TubingMethod::HasanKabir, &spec);
+    assert!(correlation(&two) < 0.0 && correlation(&one) < correlation(&two), "{one:?} {two:?}");
+    assert!(!two.findings.contains(&Finding::Exchangeable), "{two:?}");
+    assert_eq!(one.findings.contains(&Finding::Exchangeable), correlation(&one) < -0.95, "{one:?}");
+    assert!(one.findings.contains(&Finding::Exchangeable), "{one:?}");
+}
+
+#[test]
 fn unphysical_wishes_are_named() {
     // Rougher than any tubing: 0.05 in.
     let mut spec = field(TubingMethod::HasanKabir, Vec::new());
@@ -446,5 +462,30 @@ fn the_picture_holds_its_words_however_many_measurements_there_are() {
             assert_eq!(drawing.texts().any(|t| t.contains("3 further measurements")), count == 7);
             assert!(drawing.to_svg().unwrap().len() > 1000);
         }
+    }
+}
+
+#[test]
+fn pressures_at_depths_are_those_of_the_traverse() {
+    // Tapered and deviated: at the depths of the profile the profile's pressures, at the perforations the flowing pressure.
+    let mut spec = one_well();
+    let section = spec.wells[0].tubing.sections[0];
+    spec.wells[0].tubing.sections = vec![TubingSection { to_md_ft: 5000.0, diameter_in: 2.992, ..section }, section];
+    let field = Field::new(&spec).unwrap();
+    let tubing = &field.wells()[0].tubing;
+    for method in TubingMethod::ALL {
+        let tubing = tubing.with_method(method);
+        let (stream, wellhead) = STREAMS[0];
+        let profile = tubing.profile(field.fluid(), &stream, wellhead);
+        let found = tubing.pressures_at(field.fluid(), &stream, wellhead, profile.iter().map(|p| p.md_ft));
+        for (a, b) in found.iter().zip(&profile) {
+            assert!((a - b.pressure_psia).abs() < 0.02, "{}: {a} {b:?}", method.name());
+            let (tvd_ft, degf) = tubing.place(b.md_ft);
+            assert!((tvd_ft - b.tvd_ft).abs() < 1e-6 && (degf - b.temperature_degf).abs() < 1e-6, "{b:?}");
+        }
+        let bottom = tubing.flowing_pressure(field.fluid(), &stream, wellhead).pressure_psia;
+        let few =
+            tubing.pressures_at(field.fluid(), &stream, wellhead, [0.0, 1234.5, 1234.5, tubing.perforations_md_ft()]);
+        assert!((few[0] - wellhead).abs() < 1e-9 && few[1] == few[2] && (few[3] - bottom).abs() < 0.02, "{few:?}");
     }
 }

@@ -1,7 +1,7 @@
 //! What `calibrate` prints.
 
 use super::screen::{Screen, Side};
-use crate::report::human::{number, short, significant};
+use crate::report::human::{number, short};
 use crate::report::labels::{Dimension, UnitSystem, label};
 use crate::report::{CAUTION, Provenance, lines_of, measurement_title};
 use crate::study::calibrate::{
@@ -63,10 +63,15 @@ fn stream(m: &Measurement, units: UnitSystem) -> String {
         number(gor.of(m.stream.gor_scf_stb), 0),
         gor.text,
         number(100.0 * m.stream.water_cut, 0),
-        number(pressure.of(m.wellhead_psia), 0),
+        number(pressure.of(m.wellhead_psia), decimals(units)),
         pressure.text,
         if count == 1 { "" } else { "s" }
     )
+}
+
+/// Decimals of a pressure.
+fn decimals(units: UnitSystem) -> usize {
+    if units == UnitSystem::Field { 0 } else { 1 }
 }
 
 /// A table of what the models miss.
@@ -77,7 +82,7 @@ fn misses(
     pick: impl Fn(&crate::study::calibrate::Score) -> &Misses,
 ) {
     let difference = label(units, Dimension::PressureDifference);
-    let decimals = if units == UnitSystem::Field { 0 } else { 1 };
+    let decimals = decimals(units);
     let signed = |psi: f64, part: f64| {
         let plus = if psi > 0.0 { "+" } else { "" };
         format!("{plus}{} ({} %)", number(difference.of(psi), decimals), number(100.0 * part, 1))
@@ -285,10 +290,14 @@ fn inflow(s: &mut Screen, well: &WellCalibration, units: UnitSystem) {
             vec![
                 (*kind).to_owned(),
                 t.on.map_or_else(|| "-".to_owned(), |on| on.to_string()),
-                number(pressure.of(t.reservoir_psia), 0),
-                format!("{}{}", number(pressure.of(t.flowing_psia), 0), if t.computed { " computed" } else { "" }),
-                significant(rate.of(t.rate_stb_d)),
-                significant(rate.of(t.model_rate_stb_d)),
+                number(pressure.of(t.reservoir_psia), decimals(units)),
+                format!(
+                    "{}{}",
+                    number(pressure.of(t.flowing_psia), decimals(units)),
+                    if t.computed { " computed" } else { "" }
+                ),
+                short(rate.of(t.rate_stb_d)),
+                short(rate.of(t.model_rate_stb_d)),
                 format!("{}{} %", if miss > 0.05 { "+" } else { "" }, number(miss, 1)),
             ]
         })
