@@ -80,7 +80,7 @@ impl<'a> CappedOil<'a> {
             mu_o_cp: mu_o,
             bg_ft3_scf: gas.bg_ft3_scf,
             gas_density_lb_ft3: gas.density_lb_ft3,
-            mu_g_cp: mu_g_cp,
+            mu_g_cp,
             bw_rb_stb: bw,
             water_density_lb_ft3: fluid.water.standard_density_lb_ft3() / bw,
             mu_w_cp: at.water_cp * McCainWater::viscosity_ratio(p),

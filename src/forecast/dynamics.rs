@@ -13,6 +13,8 @@ use std::cell::{Cell, RefCell};
 pub(super) const REGAIN_PSI: f64 = 0.01;
 /// Flow margin at which a dead well may flow again, psi.
 pub(super) const FLOW_AGAIN_PSI: f64 = 1.0;
+/// Relative room to a well's limits within which a dead well does not return.
+const RETURN_ROOM: f64 = 1e-4;
 /// Depth from which a valley between the top of a hump and the operating point parts the hump in two, psi.
 const VALLEY_PSI: f64 = 0.1;
 /// Height that shows without further search that natural flow is not about to end, psi.
@@ -60,6 +62,7 @@ impl Modes {
             bubble_point_slack: Slack::new(BUBBLE_POINT_SLACK_SCF_STB),
             critical_gas_slack: Slack::new(CRITICAL_GAS_SLACK),
             held_shut: vec![false; injectors],
+            regain_psi: vec![Slack::new(REGAIN_PSI); wells],
         }
     }
 }
@@ -126,6 +129,8 @@ pub(super) struct Modes {
     pub critical_gas_slack: Slack,
     /// Injectors shut in by their bottom-hole limit.
     pub held_shut: Vec<bool>,
+    /// Height above a cap at which each well is choked back to it again. Until then its rate is held at the cap all the same.
+    pub regain_psi: Vec<Slack>,
 }
 
 /// Where a well was found last.
@@ -493,7 +498,7 @@ impl<'a> Dynamics<'a> {
                 let target = spec(w).target_rate_stb_d.unwrap_or(f64::INFINITY);
                 match self.modes.wells[w] {
                     Mode::Floor => target - self.floor_rate(w, &now) + 1e-6 * target,
-                    _ => REGAIN_PSI - now.height_psi(target),
+                    _ => self.modes.regain_psi[w].now - now.height_psi(target),
                 }
             }
             Watch::FloorAbove(w) => {
@@ -501,7 +506,7 @@ impl<'a> Dynamics<'a> {
                 let floor = spec(w).minimum_flowing_pressure_psia.unwrap_or(0.0);
                 match self.modes.wells[w] {
                     Mode::Target => now.curve.flowing_psia(spec(w).target_rate_stb_d.unwrap_or(0.0)) - floor + 1e-6,
-                    _ => REGAIN_PSI - now.height_psi(self.floor_rate(w, &now)),
+                    _ => self.modes.regain_psi[w].now - now.height_psi(self.floor_rate(w, &now)),
                 }
             }
             Watch::MarginGone(w) => {
@@ -542,11 +547,22 @@ impl<'a> Dynamics<'a> {
                 if short > 0.0 {
                     return short;
                 }
-                match place_on(&now, spec(w), &land).0 {
-                    Err(_) => FLOW_AGAIN_PSI,
-                    // On its floor a well has no rate to give way to: the same room is asked for there.
-                    Ok(Mode::Floor) => short.max(FLOW_AGAIN_PSI - now.height_psi(self.floor_rate(w, &now))),
-                    Ok(_) => short,
+                // Every condition is asked for with a little room, so that rounding does not refuse at the same instant what was found here.
+                let (limits, room) = (spec(w), 1.0 - RETURN_ROOM);
+                let near = limits.maximum_water_cut.is_some_and(|limit| now.water_cut > room * limit)
+                    || limits.maximum_gor_scf_stb.is_some_and(|limit| now.gor_scf_stb > room * limit);
+                match place_on(&now, limits, &land) {
+                    (Err(_), _) => FLOW_AGAIN_PSI,
+                    (Ok(_), _) if near => FLOW_AGAIN_PSI,
+                    // On its floor a well has no rate to give way to: the room of a return is asked for there.
+                    (Ok(Mode::Floor), _) => short.max(FLOW_AGAIN_PSI - now.height_psi(self.floor_rate(w, &now))),
+                    (Ok(Mode::Target), _) => {
+                        short.max(REGAIN_PSI - now.height_psi(limits.target_rate_stb_d.unwrap_or(0.0)))
+                    }
+                    (Ok(_), spot) if limits.minimum_rate_stb_d.is_some_and(|least| room * spot.rate_stb_d < least) => {
+                        FLOW_AGAIN_PSI
+                    }
+                    (Ok(_), _) => short,
                 }
             }
         }

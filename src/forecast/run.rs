@@ -13,6 +13,10 @@ use std::sync::Arc;
 
 /// Height of a hump that has come down to zero, psi: room for rounding.
 const GONE_PSI: f64 = 1e-3;
+/// Days within which another return of a dead well counts as soon.
+const SOON_BACK_DAYS: f64 = 10.0;
+/// Such returns in a row after which the well is left shut.
+const MOST_RETURNS_IN_A_ROW: usize = 5;
 /// Switches at one instant after which the run is given up.
 const MOST_SWITCHES_AT_ONCE: usize = 40;
 
@@ -74,6 +78,31 @@ struct Run<'a> {
     trace: Trace,
     switches_here: usize,
     settings: Settings,
+    returns: Vec<Returns>,
+}
+
+/// Returns of a well in quick succession. Nobody opens a well every other day: it is left shut until a dated event names it.
+#[derive(Debug, Clone, Copy)]
+struct Returns {
+    in_a_row: usize,
+    last_days: f64,
+}
+
+impl Returns {
+    const NONE: Self = Self { in_a_row: 0, last_days: f64::NEG_INFINITY };
+
+    fn soon(self, t_days: f64) -> bool {
+        t_days - self.last_days < SOON_BACK_DAYS
+    }
+
+    fn allow_another(self, t_days: f64) -> bool {
+        !self.soon(t_days) || self.in_a_row < MOST_RETURNS_IN_A_ROW
+    }
+
+    fn count(&mut self, t_days: f64) {
+        self.in_a_row = if self.soon(t_days) { self.in_a_row + 1 } else { 1 };
+        self.last_days = t_days;
+    }
 }
 
 impl<'a> Run<'a> {
@@ -120,6 +149,7 @@ impl<'a> Run<'a> {
                 end_text: "period ended",
             },
             switches_here: 0,
+            returns: vec![Returns::NONE; wells],
             settings: Settings { rtol, atol, longest_step_days: 180.0, first_step_days: 1.0 },
         }
     }
@@ -286,6 +316,7 @@ impl<'a> Run<'a> {
             self.setup = Arc::new(self.field.changed(&self.setup, &change.change)?);
             self.event(&change.name, EventKind::Scheduled, change.text.clone());
             if let Change::Well(w, _) = change.change {
+                self.returns[w] = Returns::NONE;
                 named[w] = true;
             }
         }
@@ -466,11 +497,13 @@ impl<'a> Run<'a> {
             Watch::InjectorLimit(i) => self.set_limited(i, !self.modes.limited[i], &tank),
             Watch::TargetAbove(w) => {
                 let name = name(w);
+                self.modes.regain_psi[w].crossed(self.t);
                 self.modes.wells[w] = Mode::Target;
                 self.event(&name, EventKind::TargetRegained, String::new());
             }
             Watch::FloorAbove(w) => {
                 let name = name(w);
+                self.modes.regain_psi[w].crossed(self.t);
                 if self.modes.wells[w] == Mode::Target {
                     self.plateau_lost(w);
                 }
@@ -490,12 +523,18 @@ impl<'a> Run<'a> {
             Watch::WaterCut(w) => self.stop(w, StopReason::WaterCutLimit)?,
             Watch::GasOilRatio(w) => self.stop(w, StopReason::GasOilRatioLimit)?,
             Watch::FlowAgain(w) => {
-                if self.setup.wells[w].spec.may_flow_again {
+                let may = self.setup.wells[w].spec.may_flow_again;
+                if may && self.returns[w].allow_another(self.t) {
                     self.place(w, true)?;
+                    if self.modes.wells[w].flows() {
+                        self.returns[w].count(self.t);
+                    }
                 } else {
                     let name = name(w);
                     self.modes.watch_return[w] = false;
-                    self.event(&name, EventKind::CouldFlowAgain, "flow margin back at 1 psi".to_owned());
+                    let note =
+                        if may { "it comes and goes within days: left shut" } else { "flow margin back at 1 psi" };
+                    self.event(&name, EventKind::CouldFlowAgain, note.to_owned());
                 }
             }
         }
