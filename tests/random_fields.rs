@@ -223,7 +223,13 @@ fn well_holds(
 }
 
 proptest! {
-    #![proptest_config(ProptestConfig { cases: 200, failure_persistence: None, rng_seed: RngSeed::Fixed(2027), ..ProptestConfig::default() })]
+    #![proptest_config(ProptestConfig {
+        cases: 200,
+        failure_persistence: None,
+        max_shrink_iters: 64,
+        rng_seed: RngSeed::Fixed(2027),
+        ..ProptestConfig::default()
+    })]
 
     #[test]
     fn whatever_the_field_the_result_holds_together(spec in a_field()) {

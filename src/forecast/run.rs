@@ -560,7 +560,8 @@ impl<'a> Run<'a> {
                 let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
                 dynamics.well_now(w, tank).survey().margin_psi
             };
-            if margin < least_psi {
+            // Called back to the same instant time and again, the well stands on the edge of a jump: what carries it here is gone beyond.
+            if margin < least_psi || self.switches_here > MOST_SWITCHES_AT_ONCE / 2 {
                 self.modes.wells[w] = before;
                 return self.stop(w, StopReason::NoCrossing);
             }
