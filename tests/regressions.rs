@@ -159,6 +159,9 @@ fn a_shut_injector_injects_nothing_rather_than_less_than_nothing() {
     let f = run(&spec).unwrap();
     let rows = &f.injectors[0].rows;
     assert!(rows.iter().all(|r| r.water_stb >= 0.0), "negative volume");
+    // As injected, that is without the help of what the rows forgive as rounding: nothing at all before the limit is reached.
+    let open = f.tank.iter().position(|t| t.pressure_psia < 3000.0).unwrap();
+    assert!(rows[..open].iter().all(|r| r.water_cum_stb == 0.0), "injected above its limit");
     assert_eq!(rows[0].water_stb, 0.0, "shut in above its limit");
     assert!(rows.last().unwrap().water_cum_stb > 0.0, "open once the tank is below the limit");
 }
@@ -172,4 +175,23 @@ fn a_steep_corner_at_a_small_part_of_open_flow_is_found_to_its_top() {
     for from in [0.3, 0.44, 0.46, 1.0] {
         assert!((top_near(h, from, 0.01, 104.8).1 - 0.01).abs() < 1e-3, "from {from}");
     }
+}
+
+#[test]
+fn an_event_that_does_not_help_leaves_the_end_of_natural_flow_where_it_was() {
+    // The tank stands still from the well's end on, so that its margin is zero to rounding when the event looks at it again.
+    let mut spec = restless();
+    spec.wells[0].may_flow_again = false;
+    let end = run(&spec).unwrap().wells[0].natural_flow_end.unwrap();
+    let mut w = spec.wells[0].clone();
+    w.minimum_rate_stb_d = Some(1.0);
+    spec.changes.push(ChangeSpec {
+        on: date(2029, 6, 1),
+        name: w.name.clone(),
+        text: "minimum_rate = 1".to_owned(),
+        change: Change::Well(0, Box::new(w)),
+    });
+    let f = run(&spec).unwrap();
+    assert!((f.wells[0].natural_flow_end.unwrap().days - end.days).abs() < 1e-6);
+    assert!(!f.events.iter().any(|e| e.kind == EventKind::FlowsAgain));
 }

@@ -429,6 +429,10 @@ impl<'a> Dynamics<'a> {
             InjectionControl::Rate(rate) => rate,
             InjectionControl::VoidageReplacement(part) => part * withdrawal_rb_d / injected_fvf(injector.fluid, tank),
         };
+        if self.modes.held_shut[i] {
+            // Also in a trial step beyond the limit, so that the step is smooth and its interpolant does not swing below zero.
+            return (asked, 0.0);
+        }
         (asked, asked.min(injection_limit(injector, tank.pressure_psia)))
     }
 

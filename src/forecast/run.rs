@@ -345,7 +345,9 @@ impl<'a> Run<'a> {
             } else if started {
                 let shut = mode == Mode::Stopped(StopReason::Scheduled);
                 if mode == Mode::Waiting || shut || named {
-                    self.place(w, true)?;
+                    // A dead well does not come to flow on the rounding of the margin that it died with.
+                    let least_psi = if matches!(mode, Mode::Stopped(_)) { GONE_PSI } else { 0.0 };
+                    self.place_above(w, true, least_psi)?;
                 }
             }
         }
@@ -363,7 +365,8 @@ impl<'a> Run<'a> {
             let (asked, _) = dynamics.injection(i, &tank, dynamics.withdrawal_rb_d(&tank));
             let limited = asked > injection_limit(&self.setup.injectors[i], tank.pressure_psia);
             self.set_limited(i, limited, &tank);
-            let limit = self.setup.injectors[i].bottomhole_limit_psia;
+            let injector = &self.setup.injectors[i];
+            let limit = injector.bottomhole_limit_psia.filter(|_| injector.injectivity.is_some());
             self.modes.held_shut[i] = limit.is_some_and(|limit| tank.pressure_psia > limit);
         }
         Ok(())
