@@ -210,7 +210,11 @@ fn well(field: &Field, forecast: &Forecast, seen: &Seen, w: usize, doubts: &mut 
                 name,
                 "after its end the well could flow again by itself".to_owned(),
                 "rising gas-oil ratio or pressure support gave it a flow margin again; a stopped well needs a start",
-                "set may_flow_again = true if somebody will open it",
+                if field.spec.wells[w].may_flow_again {
+                    "it came and went within days and was left shut: lift it, or let pressure build up and open it by an event"
+                } else {
+                    "set may_flow_again = true if somebody will open it"
+                },
             ));
         }
     }

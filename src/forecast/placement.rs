@@ -37,7 +37,11 @@ pub(super) fn placement(
     if open <= 0.0 {
         return (Err(StopReason::NoCrossing), Spot::default());
     }
-    place_on(&now, &dynamics.setup.wells[w].spec, &now.survey_above(least_psi))
+    let land = now.survey_above(least_psi);
+    if land.margin_psi <= least_psi {
+        return (Err(StopReason::NoCrossing), Spot::default());
+    }
+    place_on(&now, &dynamics.setup.wells[w].spec, &land)
 }
 
 /// [`placement`] on a landscape that is known already.

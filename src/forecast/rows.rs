@@ -113,7 +113,8 @@ pub(super) fn piece_at(pieces: &[Piece], t_days: f64) -> Option<&Piece> {
 
 /// A cumulative volume from its scaled state: where nothing flows, the rounding of the interpolant does not make it fall.
 fn grown(scaled: f64, before: f64, scale: f64) -> f64 {
-    const ROUNDING: f64 = 1e-10;
+    // Of the order of the absolute tolerance of the integrator.
+    const ROUNDING: f64 = 4e-9;
     let cum = scaled * scale;
     if cum < before && before - cum < ROUNDING * scale { before } else { cum }
 }

@@ -4,14 +4,15 @@ use super::calendar::{date_at, days_between};
 use super::dynamics::Dynamics;
 use super::field::{Field, RunError, Setup, injection_limit};
 use super::integrate::{Effort, End, Settings, State, Stretch, integrate};
-use super::modes::{Layout, Memory, Mode, Modes, Spot};
+use super::modes::{Layout, Memory, Mode, Modes, Returns, Spot};
+use super::switching::GONE_PSI;
 use super::{Change, EventKind, EventRecord, FieldSpec, FlowEnd, Forecast, StopReason, Tolerance, Work};
 use crate::tank::{ClosureError, TankState};
 use jiff::civil::Date;
 use std::sync::Arc;
 
 /// Switches at one instant after which the run is given up.
-const MOST_SWITCHES_AT_ONCE: usize = 40;
+pub(super) const MOST_SWITCHES_AT_ONCE: usize = 40;
 
 /// A stretch with the settings and modes that held in it.
 pub(super) struct Piece {
@@ -70,8 +71,9 @@ pub(super) struct Run<'a> {
     pub(super) t: f64,
     pub(super) y: State,
     pub(super) trace: Trace,
-    switches_here: usize,
+    pub(super) switches_here: usize,
     settings: Settings,
+    pub(super) returns: Vec<Returns>,
 }
 
 impl<'a> Run<'a> {
@@ -118,6 +120,7 @@ impl<'a> Run<'a> {
                 end_text: "period ended",
             },
             switches_here: 0,
+            returns: vec![Returns::NONE; wells],
             settings: Settings { rtol, atol, longest_step_days: 180.0, first_step_days: 1.0 },
         }
     }
@@ -289,6 +292,7 @@ impl<'a> Run<'a> {
             self.setup = Arc::new(self.field.changed(&self.setup, &change.change)?);
             self.event(&change.name, EventKind::Scheduled, change.text.clone());
             if let Change::Well(w, _) = change.change {
+                self.returns[w] = Returns::NONE;
                 named[w] = true;
             }
         }
@@ -317,7 +321,9 @@ impl<'a> Run<'a> {
             } else if started {
                 let shut = mode == Mode::Stopped(StopReason::Scheduled);
                 if mode == Mode::Waiting || shut || named {
-                    self.place(w, true)?;
+                    // A dead well does not come to flow on the rounding of the margin that it died with.
+                    let least_psi = if matches!(mode, Mode::Stopped(_)) { GONE_PSI } else { 0.0 };
+                    self.place_above(w, true, least_psi)?;
                 }
             }
         }
@@ -335,7 +341,8 @@ impl<'a> Run<'a> {
             let (asked, _) = dynamics.injection(i, &tank, dynamics.withdrawal_rb_d(&tank));
             let limited = asked > injection_limit(&self.setup.injectors[i], tank.pressure_psia);
             self.set_limited(i, limited, &tank);
-            let limit = self.setup.injectors[i].bottomhole_limit_psia;
+            let injector = &self.setup.injectors[i];
+            let limit = injector.bottomhole_limit_psia.filter(|_| injector.injectivity.is_some());
             self.modes.held_shut[i] = limit.is_some_and(|limit| tank.pressure_psia > limit);
         }
         Ok(())

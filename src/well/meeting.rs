@@ -15,7 +15,8 @@ pub const LOOK_FROM: f64 = 1e-4;
 pub const LOOK_TO: f64 = 0.999;
 /// Relative width in rate to which crossings are refined.
 const RATE_WIDTH: f64 = 1e-10;
-/// Relative width in rate to which tops are refined: even on a corner of 1 psi per STB/d it costs well below 0.01 psi.
+/// Width to which tops are refined, relative to the rate at which they stand (at a small part of open flow corners are steep): even
+/// where the curves part by their whole height within a few per cent of the rate it costs well below 0.01 psi.
 const TOP_WIDTH: f64 = 1e-6;
 
 /// A place where `h` is zero.
@@ -78,7 +79,7 @@ fn look(h: &mut impl FnMut(f64) -> f64, open_flow_stb_d: f64) -> Look {
         let reach = (here.1 - left.1).max(here.1 - right.1);
         let (mut q, mut top) = here;
         if here.1 + reach >= best || here.1 + reach >= 0.0 {
-            (q, top) = maximise(&mut *h, left.0, here.0, right.0, TOP_WIDTH * open_flow_stb_d);
+            (q, top) = maximise(&mut *h, left.0, here.0, right.0, TOP_WIDTH * here.0);
             if here.1 > top {
                 (q, top) = here;
             }
@@ -167,7 +168,7 @@ pub fn top_near(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: 
         } else if ha > hm && a > low {
             (middle, hm) = (a, ha);
         } else {
-            return maximise(h, a, middle, b, TOP_WIDTH * high);
+            return maximise(h, a, middle, b, TOP_WIDTH * middle.max(1e-6 * high));
         }
         width *= 2.0;
     }
