@@ -1,5 +1,6 @@
 //! Doubts about a result: what was seen, the likely cause, what to do.
 
+use super::doubts_wellhead;
 use super::field::Field;
 use super::{Doubt, DoubtKind, EventKind, Forecast, InjectedFluid, StopReason};
 use crate::inflow::Shape;
@@ -56,7 +57,7 @@ fn month(date: Date) -> String {
     format!("{} {}", date.strftime("%B"), date.year())
 }
 
-fn months(forecast: &Forecast, rows: &[usize]) -> String {
+pub(super) fn months(forecast: &Forecast, rows: &[usize]) -> String {
     let name = |i: &usize| forecast.periods.get(*i).map_or_else(String::new, |p| month(p.start));
     match rows {
         [] => String::new(),
@@ -71,6 +72,10 @@ pub(super) fn about_result(field: &Field, forecast: &Forecast, seen: &Seen) -> V
     fluid_and_tank(field, forecast, &mut doubts);
     for w in 0..forecast.wells.len() {
         well(field, forecast, seen, w, &mut doubts);
+        doubts_wellhead::choke(&field.wells()[w], forecast, w, &mut doubts);
+    }
+    for l in 0..field.spec.lines.len() {
+        doubts_wellhead::line(field, forecast, l, &mut doubts);
     }
     for i in 0..forecast.injectors.len() {
         injector(field, forecast, seen, i, &mut doubts);
@@ -79,7 +84,7 @@ pub(super) fn about_result(field: &Field, forecast: &Forecast, seen: &Seen) -> V
     doubts
 }
 
-fn doubt(kind: DoubtKind, about: &str, seen: String, cause: &str, advice: &str) -> Doubt {
+pub(super) fn doubt(kind: DoubtKind, about: &str, seen: String, cause: &str, advice: &str) -> Doubt {
     Doubt { kind, about: about.to_owned(), seen, cause: cause.to_owned(), advice: advice.to_owned() }
 }
 

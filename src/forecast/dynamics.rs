@@ -108,6 +108,7 @@ impl<'a> Dynamics<'a> {
         let tank = &self.setup.tank;
         let state = tank.state(&tank.inventory(&self.cumulatives(y)), self.memory.pressure_psia.get())?;
         self.memory.pressure_psia.set(state.pressure_psia);
+        self.settle_lines(&state);
         Ok(state)
     }
 
@@ -117,7 +118,7 @@ impl<'a> Dynamics<'a> {
         let gradient = spec.tank.datum_tvd_ft.map_or(0.0, |_| {
             oil_gradient_psi_ft(&self.field.fluid, tank.pressure_psia, spec.tank.temperature_degf, tank.rs_scf_stb)
         });
-        self.setup.wells[w].now(&self.field.fluid, tank, gradient, &self.memory.gauge)
+        self.setup.wells[w].now(&self.field.fluid, tank, gradient, &self.memory.gauge).against(self.line(w))
     }
 
     /// The rate that the flowing-pressure floor allows, STB/d.
@@ -147,7 +148,7 @@ impl<'a> Dynamics<'a> {
         let bounds = (spot.left_end(low, open), high * open);
         let height = |q: f64| now.height_psi(q);
         let reservoir = now.curve.reservoir_psia();
-        let conditions = Some([reservoir, open, now.gor_scf_stb, now.water_cut]);
+        let conditions = Some([reservoir, open, now.gor_scf_stb, now.water_cut, now.line().idle_psia()]);
         if spot.found_under == conditions {
             return spot.rate_stb_d;
         }

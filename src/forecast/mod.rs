@@ -3,9 +3,11 @@
 mod calendar;
 mod curves;
 mod doubts;
+mod doubts_wellhead;
 mod dynamics;
 mod field;
 pub mod integrate;
+mod lines;
 mod modes;
 mod placement;
 mod result;

@@ -55,6 +55,11 @@ impl Modes {
 }
 
 impl Mode {
+    /// Whether it flows as its line and choke let it, held back by nothing else.
+    pub fn is_line(self) -> bool {
+        matches!(self, Self::Line { .. })
+    }
+
     pub fn flows(self) -> bool {
         matches!(self, Self::Target | Self::Floor | Self::Line { .. })
     }
@@ -157,7 +162,7 @@ pub(super) struct Spot {
     pub pressure_psia: f64,
     pub per_pressure: f64,
     /// The conditions under which the rate was found: the same ones need no search.
-    pub found_under: Option<[f64; 4]>,
+    pub found_under: Option<[f64; 5]>,
 }
 
 impl Spot {
@@ -221,6 +226,10 @@ impl Layout {
 pub(super) struct Memory {
     pub pressure_psia: Cell<f64>,
     pub spots: RefCell<Vec<Spot>>,
+    /// What each well brings into its shared line, STB/d or scf/d.
+    pub into_line: RefCell<Vec<f64>>,
+    /// How much less each well would bring per psi more in its line.
+    pub gives_way: RefCell<Vec<f64>>,
     pub gauge: Gauge,
     /// Height to which crossings are resolved, psi.
     pub crossing_psi: Cell<f64>,

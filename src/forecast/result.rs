@@ -154,6 +154,12 @@ pub struct WellRow {
     pub flowing_pressure_psia: Option<f64>,
     /// Wellhead pressure, psia: above line pressure while choked.
     pub wellhead_pressure_psia: Option<f64>,
+    /// Pressure of the line, psia.
+    pub line_pressure_psia: Option<f64>,
+    /// Opening of the choke, in.: the well's own, or that which holds it back to its target.
+    pub choke_size_in: Option<f64>,
+    /// Whether the flow through the choke is critical.
+    pub choke_critical: Option<bool>,
     /// Producing-day liquid rate, STB/d.
     pub liquid_rate_stb_d: Option<f64>,
     /// Producing gas-oil ratio, scf/STB.
@@ -335,6 +341,8 @@ pub struct WellResult {
     pub peak_gor_scf_stb: f64,
     /// Inflow equation in words and figures ("Fetkovich, C = 7.9e-4 STB/d/psi^2n, n = 0.85 fitted to 3 tests").
     pub inflow_text: String,
+    /// The choke at its wellhead in words.
+    pub choke_text: Option<String>,
     /// Each test beside the model's rate.
     pub tests: Vec<TestCheck>,
     /// Curves at the start, at mid-life and at the end of natural flow (or of the run).

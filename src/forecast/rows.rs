@@ -10,6 +10,7 @@ use super::{
     DriveIndices, Forecast, InjectedFluid, InjectorResult, InjectorRow, Period, TankRow, Tolerance, WellResult, WellRow,
 };
 use crate::tank::{Cumulatives, TankState};
+use crate::tubing::Choke;
 use crate::well::{LOOK_FROM, LOOK_TO, Landscape, WellNow, follow_top};
 
 /// Height to which the crossings of rows are resolved, psi: far below what a row shows.
@@ -55,6 +56,7 @@ pub(super) fn forecast(field: &Field, trace: &Trace) -> Result<Forecast, RunErro
                 spread: None,
                 peak_gor_scf_stb: rows.iter().filter_map(|r| r.gor_scf_stb).fold(0.0, f64::max),
                 inflow_text: model.inflow_text(),
+                choke_text: model.choke.as_ref().map(Choke::text),
                 tests: model.tests.clone(),
                 curves: Vec::new(),
                 rows,
@@ -143,6 +145,8 @@ impl<'a> Rows<'a> {
         for spot in trace.memory.spots.borrow_mut().iter_mut() {
             *spot = super::modes::Spot::default();
         }
+        trace.memory.into_line.borrow_mut().fill(0.0);
+        trace.memory.gives_way.borrow_mut().fill(0.0);
         Self {
             field,
             trace,
@@ -226,10 +230,18 @@ impl<'a> Rows<'a> {
             row.stability_margin = Some(rate / minimum - 1.0);
             row.gor_scf_stb = Some(now.gor_scf_stb);
             row.water_cut = Some(now.water_cut);
-            row.wellhead_pressure_psia = Some(match mode {
-                Mode::Line { .. } => piece.setup.wells[w].spec.line_pressure_psia,
+            row.line_pressure_psia = Some(now.line_psia(rate));
+            let wellhead_psia = match mode {
+                Mode::Line { .. } => now.open_wellhead_psia(rate),
                 _ => now.wellhead_psia(rate, flowing_psia),
-            });
+            };
+            row.wellhead_pressure_psia = Some(wellhead_psia);
+            if let Some(choke) = &piece.setup.wells[w].choke {
+                let closed_in = if mode.is_line() { None } else { now.choke_size_for(rate, wellhead_psia) };
+                let size_in = closed_in.unwrap_or(choke.size_in()).min(choke.size_in());
+                row.choke_size_in = Some(size_in);
+                row.choke_critical = Some(now.through_choke(&choke.with_size(size_in), rate).critical);
+            }
             self.seen.well(w, self.wells[w].len(), now.near_sonic(rate));
         }
         row

@@ -83,6 +83,8 @@ impl<'a> Run<'a> {
         let memory = Memory::default();
         memory.pressure_psia.set(field.start.pressure_psia);
         *memory.spots.borrow_mut() = vec![Spot::default(); wells];
+        *memory.into_line.borrow_mut() = vec![0.0; wells];
+        *memory.gives_way.borrow_mut() = vec![0.0; wells];
         // Some hundred times finer than the integrator's tolerance needs.
         memory.crossing_psi.set(match field.spec.tolerance {
             Tolerance::Normal => 1e-5,
@@ -294,6 +296,16 @@ impl<'a> Run<'a> {
             if let Change::Well(w, _) = change.change {
                 self.returns[w] = Returns::NONE;
                 named[w] = true;
+            }
+            // What changes on a shared line concerns all its wells.
+            let line = match change.change {
+                Change::Line(line, _) => Some(line),
+                Change::Well(w, _) => self.setup.line_of[w],
+                _ => None,
+            };
+            let all = matches!(change.change, Change::Line(..));
+            for (w, of) in self.setup.line_of.iter().enumerate() {
+                named[w] |= line.is_some() && *of == line && (all || self.modes.wells[w].flows());
             }
         }
         for i in 0..self.setup.injectors.len() {

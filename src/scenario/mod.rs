@@ -12,6 +12,7 @@ mod guess;
 mod load;
 mod overrides;
 mod problem;
+mod read_line;
 mod read_tank;
 mod read_wells;
 mod reader;

@@ -1,9 +1,11 @@
 //! Where inflow and tubing meet: stable rate, flow margin.
 
+mod line;
 mod meeting;
 mod model;
 mod spec;
 
+pub use line::{Line, LineRate, LineSpec};
 pub use meeting::{
     Crossing, LOOK_FROM, LOOK_TO, Landscape, crossings, follow_top, right_crossing, survey, survey_above, top_near,
 };

@@ -1,7 +1,7 @@
 //! One producing well as the user states it.
 
 use crate::inflow::InflowSpec;
-use crate::tubing::TubingSpec;
+use crate::tubing::{ChokeSpec, TubingSpec};
 use jiff::civil::Date;
 
 /// One producing well as the user states it, in oilfield units.
@@ -9,8 +9,12 @@ use jiff::civil::Date;
 pub struct WellSpec {
     /// Name, unique in the scenario.
     pub name: String,
-    /// Pressure of the line into which the well flows, psia.
+    /// Pressure of the line into which the well flows, psia; of a shared line, its lowest.
     pub line_pressure_psia: f64,
+    /// Name of the shared line into which it flows, whose pressure depends on what all its wells make.
+    pub shared_line: Option<String>,
+    /// Choke between wellhead and line; `None`: wide open, or adjusted to the target without a limit of its own.
+    pub choke: Option<ChokeSpec>,
     /// Producing-day liquid rate to which the well is choked back, STB/d.
     pub target_rate_stb_d: Option<f64>,
     /// Fraction of the time on stream.

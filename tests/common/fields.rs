@@ -42,6 +42,7 @@ pub fn one_well() -> FieldSpec {
             },
         },
         wells: vec![well("OP-1")],
+        lines: Vec::new(),
         injectors: Vec::new(),
         changes: Vec::new(),
         tolerance: Tolerance::Normal,
@@ -52,6 +53,8 @@ pub fn well(name: &str) -> WellSpec {
     WellSpec {
         name: name.to_owned(),
         line_pressure_psia: 220.0,
+        shared_line: None,
+        choke: None,
         target_rate_stb_d: Some(1500.0),
         uptime: 0.95,
         perforations_md_ft: None,
