@@ -28,10 +28,11 @@ pub(super) fn line(reader: &mut Reader, section: &Section<'_>) -> LineSpec {
                 spec.rate = if gas { LineRate::Gas } else { LineRate::Liquid };
                 spec.pressures = rows.iter().map(|row| point(reader, row, gas)).collect();
             }
-            _ => reader.note(
-                Problem::new(entry.node.at.clone(), "`line.pressure` is no list of pairs")
-                    .label(format!("expected: {example}")),
-            ),
+            _ => {
+                let problem = Problem::new(entry.node.at.clone(), "`line.pressure` is no list of pairs");
+                reader.note(problem.label(format!("expected: {example}")));
+                spec.pressures.push((f64::NAN, f64::NAN));
+            }
         }
     }
     reader.finish(section);
