@@ -17,8 +17,8 @@ use wane::forecast::{
 };
 use wane::inflow::{Coefficient, FutureRule, InflowMethod, RateBasis};
 use wane::tank::WaterModel;
-use wane::tubing::TubingMethod;
-use wane::well::WellSpec;
+use wane::tubing::{ChokeMethod, ChokeSpec, Discharge, TubingMethod};
+use wane::well::{LineRate, LineSpec, WellSpec};
 
 /// Gravity, gas gravity, solution gas, bubble point over initial pressure, pressure, temperature, oil in place, connate water.
 type Ground = (f64, f64, f64, f64, f64, f64, f64, f64);
@@ -208,7 +208,12 @@ fn well_holds(
     }
     if let Some(end) = w.natural_flow_end {
         let scheduled = f.events.iter().any(|e| {
-            matches!(e.kind, EventKind::Scheduled | EventKind::InjectionStarted) && (e.days - end.days).abs() < 1e-6
+            let steps = matches!(e.kind, EventKind::Scheduled | EventKind::InjectionStarted);
+            // On a shared line another well's start, jump or return is a step too.
+            let fellow = !spec.lines.is_empty()
+                && e.name != w.name
+                && matches!(e.kind, EventKind::WellStarted | EventKind::FlowsAgain | EventKind::RateJump);
+            (steps || fellow) && (e.days - end.days).abs() < 1e-6
         });
         let came_to_flow = end.liquid_rate_stb_d > 0.0;
         if end.reason == StopReason::NoCrossing && came_to_flow && !scheduled {
@@ -241,6 +246,60 @@ proptest! {
             Err(error @ (RunError::Start(_) | RunError::TooMuchInjected { .. })) => {
                 prop_assert!(!error.to_string().is_empty());
             }
+            Err(error) => prop_assert!(false, "{error}"),
+        }
+    }
+}
+
+/// The same fields behind chokes and on one shared line.
+fn with_surface(mut spec: FieldSpec, chokes: &[Option<(ChokeMethod, f64)>], slope: Option<(bool, f64)>) -> FieldSpec {
+    let first_psia = spec.wells[0].line_pressure_psia;
+    let apply = |w: &mut WellSpec, choke: Option<(ChokeMethod, f64)>| {
+        let discharge = Discharge::Given(choke.map_or(1.0, |c| c.0.usual_discharge()));
+        w.choke = choke.map(|(method, size_in)| ChokeSpec { method, size_in, discharge });
+        if slope.is_some() {
+            (w.shared_line, w.line_pressure_psia) = (Some("header".to_owned()), first_psia);
+        }
+    };
+    for (w, choke) in spec.wells.iter_mut().zip(chokes) {
+        apply(w, *choke);
+    }
+    for change in &mut spec.changes {
+        if let Change::Well(0, w) = &mut change.change {
+            apply(w, chokes[0]);
+        }
+    }
+    if let Some((gas, psi)) = slope {
+        let (rate, last) = if gas { (LineRate::Gas, 2e6) } else { (LineRate::Liquid, 2000.0) };
+        let pressures = vec![(0.0, first_psia), (0.5 * last, first_psia + 0.3 * psi), (last, first_psia + psi)];
+        spec.lines = vec![LineSpec { name: "header".to_owned(), rate, pressures }];
+    }
+    spec
+}
+
+fn a_choke() -> impl Strategy<Value = Option<(ChokeMethod, f64)>> {
+    prop::option::weighted(0.6, (prop::sample::select(&ChokeMethod::ALL[..]), 0.15..1.5_f64))
+}
+
+proptest! {
+    #![proptest_config(ProptestConfig {
+        cases: 60,
+        failure_persistence: None,
+        max_shrink_iters: 64,
+        rng_seed: RngSeed::Fixed(31),
+        ..ProptestConfig::default()
+    })]
+
+    #[test]
+    fn chokes_and_shared_lines_hold_together_too(
+        spec in a_field(),
+        chokes in [a_choke(), a_choke()],
+        slope in prop::option::weighted(0.7, (any::<bool>(), 0.0..400.0_f64)),
+    ) {
+        let spec = with_surface(spec, &chokes, slope);
+        match run(&spec) {
+            Ok(forecast) => holds(&spec, &forecast)?,
+            Err(RunError::Input(_) | RunError::Start(_) | RunError::TooMuchInjected { .. }) => {}
             Err(error) => prop_assert!(false, "{error}"),
         }
     }
