@@ -89,6 +89,8 @@ pub enum EventKind {
     CouldFlowAgain,
     /// A well flows again.
     FlowsAgain,
+    /// The balance has no answer beyond this day: more is injected than the tank can take, or the fluid model ends.
+    BalanceStopped,
     /// Injection began.
     InjectionStarted,
     /// Injection ended.

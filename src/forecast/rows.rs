@@ -11,10 +11,14 @@ use super::{
 };
 use crate::tank::{Cumulatives, TankState};
 use crate::tubing::Choke;
-use crate::well::{LOOK_FROM, LOOK_TO, Landscape, WellNow, follow_top};
+use crate::well::{LOOK_FROM, LOOK_TO, Landscape, WellNow, follow_top_within};
 
 /// Height to which the crossings of rows are resolved, psi: far below what a row shows.
 const ROW_CROSSING_PSI: f64 = 1e-3;
+/// Width to which the top of a row's margin and the minimum of its tubing curve are sought where they stand on a corner, over the rate: the
+/// margin is good to some 0.001 psi.
+const ROW_TOP_WIDTH: f64 = 1e-5;
+const ROW_MINIMUM_WIDTH: f64 = 2e-4;
 /// Rows between two looks at other rates; in between the top of the margin is followed.
 const ROWS_PER_LOOK: usize = 12;
 /// Those other rates, as parts of open flow.
@@ -257,7 +261,8 @@ impl<'a> Rows<'a> {
         let known = &mut self.margins[w];
         // The margin of a dead well may come back on any hump: it is looked for over all rates.
         if flows && known.rate_stb_d > 0.0 && known.rate_stb_d < 0.99 * open {
-            let (rate, margin) = follow_top(|q| now.height_psi(q), known.rate_stb_d, LOOK_FROM * open, LOOK_TO * open);
+            let (low, high) = (LOOK_FROM * open, LOOK_TO * open);
+            let (rate, margin) = follow_top_within(|q| now.height_psi(q), known.rate_stb_d, low, high, ROW_TOP_WIDTH);
             *known = Margin { rate_stb_d: rate, age: known.age + 1 };
             let elsewhere = |part: f64| now.height_psi(part * open);
             let sunk = margin < 0.0;
@@ -281,7 +286,7 @@ impl<'a> Rows<'a> {
             let best = LOOKS.into_iter().map(|part| part * open).map(|q| (q, height(q)));
             *known = best.fold((low, f64::NEG_INFINITY), |a, b| if b.1 > a.1 { b } else { a }).0;
         }
-        *known = follow_top(height, *known, low, high).0;
+        *known = follow_top_within(height, *known, low, high, ROW_MINIMUM_WIDTH).0;
         *known
     }
 

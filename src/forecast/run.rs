@@ -265,7 +265,8 @@ impl<'a> Run<'a> {
 
     fn balance_gone(&mut self, error: ClosureError) -> Result<bool, RunError> {
         if !matches!(error, ClosureError::NoRoot { .. }) {
-            return Err(RunError::TooMuchInjected { days: self.t, source: error });
+            // What was computed up to here is kept; the event fails a check of the results.
+            self.event("tank", EventKind::BalanceStopped, error.to_string());
         }
         for w in 0..self.modes.wells.len() {
             if self.modes.wells[w].flows() {

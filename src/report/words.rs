@@ -17,6 +17,7 @@ pub fn event_text(kind: EventKind) -> &'static str {
         EventKind::EndOfNaturalFlow(_) => "end of natural flow",
         EventKind::CouldFlowAgain => "could flow again",
         EventKind::FlowsAgain => "flows again",
+        EventKind::BalanceStopped => "balance without an answer",
         EventKind::InjectionStarted => "injection started",
         EventKind::InjectionEnded => "injection ended",
         EventKind::InjectionLimited => "injection limited",

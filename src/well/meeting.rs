@@ -154,7 +154,12 @@ pub fn crossings(mut h: impl FnMut(f64) -> f64, open_flow_stb_d: f64) -> Vec<Cro
 /// Follows the top of a hump from where it was found last: rate and height.
 ///
 /// Local: it stays between `low` and `high`, and widens its bracket until the top is inside.
-pub fn top_near(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: f64) -> (f64, f64) {
+pub fn top_near(h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: f64) -> (f64, f64) {
+    top_within(h, rate_stb_d, low, high, TOP_WIDTH)
+}
+
+/// [`top_near`] to a width relative to the rate.
+fn top_within(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: f64, width_share: f64) -> (f64, f64) {
     // Bounds that have closed leave one rate.
     let high = high.max(low);
     let mut middle = rate_stb_d.max(low).min(high);
@@ -168,7 +173,7 @@ pub fn top_near(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: 
         } else if ha > hm && a > low {
             (middle, hm) = (a, ha);
         } else {
-            return maximise(h, a, middle, b, TOP_WIDTH * middle.max(1e-6 * high));
+            return maximise(h, a, middle, b, width_share * middle.max(1e-6 * high));
         }
         width *= 2.0;
     }
@@ -177,7 +182,18 @@ pub fn top_near(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: 
 
 /// Follows the top of a smooth hump that moved little: the vertex of a parabola through three heights, accepted when the height
 /// there is the one foretold; otherwise [`top_near`]. Rate and height.
-pub fn follow_top(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: f64) -> (f64, f64) {
+pub fn follow_top(h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: f64) -> (f64, f64) {
+    follow_top_within(h, rate_stb_d, low, high, TOP_WIDTH)
+}
+
+/// [`follow_top`] where the top is needed only to a width relative to the rate.
+pub fn follow_top_within(
+    mut h: impl FnMut(f64) -> f64,
+    rate_stb_d: f64,
+    low: f64,
+    high: f64,
+    width_share: f64,
+) -> (f64, f64) {
     const FORETOLD_PSI: f64 = 0.05;
     let step = 0.015 * rate_stb_d;
     let (a, b, c) = (rate_stb_d - step, rate_stb_d, rate_stb_d + step);
@@ -193,7 +209,7 @@ pub fn follow_top(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high
             }
         }
     }
-    top_near(h, rate_stb_d, low, high)
+    top_within(h, rate_stb_d, low, high, width_share)
 }
 
 /// Follows a stable crossing from where it was found last, with the slope of `h` found last: rate and slope.
