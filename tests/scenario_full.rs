@@ -10,7 +10,7 @@ use wane::scenario::{Document, schema};
 use wane::tank::{ProducedSpec, TankSpec, WaterModel};
 use wane::tubing::{ChokeMethod, ChokeSpec, ChokeTest, Discharge, TubingMethod, TubingSection, TubingSpec};
 use wane::units::UnitSystem;
-use wane::well::{LineRate, LineSpec, WellSpec};
+use wane::well::{LineRate, LineSpec, ScreenSpec, WellSpec};
 
 const FULL: &str = include_str!("data/full.toml");
 
@@ -172,6 +172,11 @@ fn the_first_well_arrives() {
         minimum_rate_stb_d: Some(45.0),
         maximum_water_cut: Some(0.87),
         maximum_gor_scf_stb: Some(4200.0),
+        screens: ScreenSpec {
+            heading_margin: 0.25,
+            maximum_velocity_ft_s: Some(60.0),
+            erosional_constant: Some(125.0),
+        },
         inflow: InflowSpec {
             method: InflowMethod::Fetkovich,
             future: FutureRule::Mobility,

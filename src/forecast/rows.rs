@@ -6,6 +6,7 @@ use super::dynamics::Dynamics;
 use super::field::{Field, RunError};
 use super::modes::Mode;
 use super::run::{Piece, Trace, work};
+use super::screens::{Look, note_heading, slope_margin};
 use super::{
     DriveIndices, Forecast, InjectedFluid, InjectorResult, InjectorRow, Period, TankRow, Tolerance, WellResult, WellRow,
 };
@@ -90,6 +91,7 @@ pub(super) fn forecast(field: &Field, trace: &Trace) -> Result<Forecast, RunErro
         events: trace.events.clone(),
         doubts: Vec::new(),
     };
+    note_heading(&mut forecast, &seen.screens);
     forecast.doubts = about_result(field, &forecast, &seen);
     Ok(forecast)
 }
@@ -246,7 +248,21 @@ impl<'a> Rows<'a> {
                 row.choke_size_in = Some(size_in);
                 row.choke_critical = Some(now.through_choke(&choke.with_size(size_in), rate).critical);
             }
-            self.seen.well(w, self.wells[w].len(), now.near_sonic(rate));
+            row.slope_margin = slope_margin(&now, rate);
+            let look = Look {
+                field: self.field,
+                well: &piece.setup.wells[w],
+                now: &now,
+                row: self.wells[w].len(),
+                rate_stb_d: rate,
+                wellhead_psia,
+                choked: !mode.is_line(),
+                stability_margin: rate / minimum - 1.0,
+                slope_margin: row.slope_margin,
+            };
+            let flow = look.wellhead_flow();
+            row.wellhead_velocity_ft_s = flow.map(|flow| flow.mixture_velocity_ft_s());
+            self.seen.screens[w].look(&look, flow.as_ref());
         }
         row
     }

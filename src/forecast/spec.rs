@@ -1,5 +1,6 @@
 //! Everything a forecast needs, as plain checked data in oilfield units.
 
+use super::OnsetSpec;
 use crate::fluid::FluidSpec;
 use crate::tank::TankSpec;
 use crate::well::{LineSpec, WellSpec};
@@ -123,6 +124,8 @@ pub struct FieldSpec {
     pub injectors: Vec<InjectorSpec>,
     /// Dated events, sorted by date.
     pub changes: Vec<ChangeSpec>,
+    /// Onsets of deposits, where given.
+    pub onsets: OnsetSpec,
     /// Numerics.
     pub tolerance: Tolerance,
 }

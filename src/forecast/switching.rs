@@ -4,7 +4,7 @@ use super::calendar::date_at;
 use super::dynamics::Dynamics;
 use super::field::RunError;
 use super::modes::{Mode, REGAIN_PSI, Spot, Watch};
-use super::placement::{hump_at, placement, stable_below};
+use super::placement::{hump_at, placement, stable_below, why_apart};
 use super::run::{MOST_SWITCHES_AT_ONCE, Run};
 use super::{EventKind, FlowEnd, StopReason};
 use crate::tank::TankState;
@@ -16,6 +16,7 @@ pub(super) const GONE_PSI: f64 = 1e-3;
 impl Run<'_> {
     /// Ends a well's natural flow.
     pub(super) fn stop(&mut self, w: usize, reason: StopReason) -> Result<(), RunError> {
+        let reason = if reason == StopReason::NoCrossing { self.why_apart(w) } else { reason };
         if self.modes.wells[w].flows() {
             let end = self.flow_end(w, reason)?;
             self.trace.flow_ends[w] = Some(end);
@@ -28,6 +29,14 @@ impl Run<'_> {
         self.modes.wells[w] = Mode::Stopped(reason);
         self.modes.watch_return[w] = reason.may_pass();
         Ok(())
+    }
+
+    fn why_apart(&self, w: usize) -> StopReason {
+        let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
+        match dynamics.tank(self.y.as_slice()) {
+            Ok(tank) => why_apart(&dynamics, w, &dynamics.well_now(w, &tank)),
+            Err(_) => StopReason::NoCrossing,
+        }
     }
 
     fn flow_end(&self, w: usize, reason: StopReason) -> Result<FlowEnd, RunError> {

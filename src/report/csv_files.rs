@@ -44,6 +44,8 @@ const COLUMNS: &[(&str, Option<Dimension>, Pick)] = {
         ("end_liquid_rate", Some(Q::LiquidRate), |v| v.end_liquid_rate_stb_d),
         ("restart_margin", Some(Q::PressureDifference), |v| v.restart_margin_psi),
         ("stability_margin", None, |v| v.stability_margin),
+        ("slope_margin", None, |v| v.slope_margin),
+        ("wellhead_velocity", Some(Q::Velocity), |v| v.wellhead_velocity_ft_s),
         ("line_pressure", Some(Q::Pressure), |v| v.line_pressure_psia),
         ("choke_size", Some(Q::Diameter), |v| v.choke_size_in),
         ("bottomhole_pressure", Some(Q::Pressure), |v| v.bottomhole_pressure_psia),

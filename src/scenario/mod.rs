@@ -13,6 +13,7 @@ mod load;
 mod overrides;
 mod problem;
 mod read_line;
+mod read_onsets;
 mod read_tank;
 mod read_wells;
 mod reader;

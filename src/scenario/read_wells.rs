@@ -11,7 +11,7 @@ use crate::forecast::{InjectedFluid, InjectionControl, InjectorSpec};
 use crate::inflow::{Coefficient, FutureRule, InflowMethod, InflowSpec, InflowTest, Measured, RateBasis};
 use crate::tubing::{TubingMethod, TubingSection, TubingSpec};
 use crate::units::parse_flow_coefficient;
-use crate::well::{LineSpec, WellSpec};
+use crate::well::{LineSpec, ScreenSpec, WellSpec};
 
 /// Keys of which exactly one may be there; an override that sets one removes the others.
 pub(super) const EXCLUSIVE: &[(&str, &[&str])] = &[
@@ -86,6 +86,11 @@ pub(super) fn well(
         minimum_rate_stb_d: reader.optional_quantity(section, "minimum_rate"),
         maximum_water_cut: reader.optional_number(section, "maximum_water_cut"),
         maximum_gor_scf_stb: reader.optional_quantity(section, "maximum_gor"),
+        screens: ScreenSpec {
+            heading_margin: reader.number(section, "heading_margin"),
+            maximum_velocity_ft_s: reader.optional_quantity(section, "maximum_velocity"),
+            erosional_constant: reader.optional_number(section, "erosional_constant"),
+        },
         inflow: inflow(reader, section, tank_pressure_psia),
         tubing: tubing(reader, section),
     };

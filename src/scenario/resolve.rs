@@ -38,7 +38,7 @@ pub(super) fn resolve(root: &Table, case: Option<&Node>, folder: &Path, text: &s
     }
     let units = read_tank::units(&mut reader, &top);
     let period = read_tank::period(&mut reader, &top);
-    let fluid = read_tank::fluid(&mut reader, &top);
+    let (fluid, onsets) = read_tank::fluid(&mut reader, &top);
     let water_injected = injects_water(root);
     let tank_section = reader.section(&top, "tank");
     let tank = read_tank::tank(&mut reader, &tank_section, water_injected);
@@ -91,7 +91,7 @@ pub(super) fn resolve(root: &Table, case: Option<&Node>, folder: &Path, text: &s
     let stand_in =
         PeriodSpec { start: Date::constant(1900, 1, 1), end: Date::constant(2301, 1, 1), every: Every::Month };
     let period = period.unwrap_or(stand_in);
-    let mut field = FieldSpec { period, fluid, tank, wells, lines, injectors, changes: Vec::new(), tolerance };
+    let mut field = FieldSpec { period, fluid, tank, wells, lines, injectors, changes: Vec::new(), onsets, tolerance };
     apply_events(events, root, &mut reader, &mut field, &mut changed, text);
     normalise(&mut field);
     Resolved { units, atmospheric_pressure_psia, field, files: reader.files, changed, problems: reader.problems }

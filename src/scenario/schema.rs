@@ -40,6 +40,7 @@ impl Key {
             Kind::FlowCoefficient => "rate per pressure^2n".to_owned(),
             Kind::Survey => "list of pairs, or a path".to_owned(),
             Kind::Temperatures | Kind::LinePressures => "list of pairs".to_owned(),
+            Kind::Onset => "pressure, or list of pairs".to_owned(),
             Kind::Table => "table".to_owned(),
             Kind::Tables => "list of tables".to_owned(),
             Kind::Overrides => "paths with values".to_owned(),
@@ -91,6 +92,8 @@ pub enum Kind {
     Survey,
     /// Pairs of measured depth and temperature.
     Temperatures,
+    /// A pressure, or pairs of temperature and pressure.
+    Onset,
     /// Pairs of a total rate and a pressure.
     LinePressures,
     /// A table of further keys.
@@ -172,8 +175,8 @@ const END: Limits = above(0.0, 1.0);
 
 use Dimension as D;
 use Kind::{
-    Choice, Day, Flag, FlowCoefficient, Fraction, Injected, LinePressures, Name, Number, Overrides, Quantity, Survey,
-    Tables, Temperatures, Text,
+    Choice, Day, Flag, FlowCoefficient, Fraction, Injected, LinePressures, Name, Number, Onset, Overrides, Quantity,
+    Survey, Tables, Temperatures, Text,
 };
 use Need::{Default, Optional, Required};
 
@@ -207,6 +210,9 @@ pub const KEYS: &[Key] = &[
     key("fluid.co2", Fraction(FRACTION), Default("0.0"), "Mole fraction of carbon dioxide in the gas"),
     key("fluid.separator_pressure", Quantity(D::Pressure, above(0.0, 5_000.0)), Optional, "With separator_temperature: corrects the gas gravity in the Vasquez-Beggs correlations"),
     key("fluid.separator_temperature", Quantity(D::Temperature, from(0.0, 400.0)), Optional, "Goes with separator_pressure"),
+    key("fluid.asphaltene_onset", Onset, Optional, "Upper onset pressure of asphaltene, at reservoir temperature or as pairs of temperature and pressure; below it asphaltene may come out. A screen: it changes no flow"),
+    key("fluid.asphaltene_lower_onset", Onset, Optional, "Lower onset pressure, below which asphaltene is dissolved again; goes with asphaltene_onset"),
+    key("fluid.wax_appearance", Quantity(D::Temperature, from(-40.0, 300.0)), Optional, "Wax appearance temperature: below it wax may come out. A screen: it changes no flow"),
 
     key("tank", Kind::Table, Required, "The reservoir compartment"),
     key("tank.oil_in_place", Quantity(D::LiquidVolume, LIQUID), Required, "Oil initially in place"),
@@ -275,6 +281,9 @@ pub const KEYS: &[Key] = &[
     key("well.minimum_rate", Quantity(D::LiquidRate, RATE), Optional, "Producing-day liquid rate below which it is given up"),
     key("well.maximum_water_cut", Fraction(above(0.0, 1.0)), Optional, "Water cut above which it is given up"),
     key("well.maximum_gor", Quantity(D::GasOilRatio, GOR), Optional, "Gas-oil ratio above which it is given up"),
+    key("well.heading_margin", Number(from(0.0, 10.0)), Default("0.1"), "Margin of the rate over that at the minimum of the tubing curve below which the well is said to head"),
+    key("well.maximum_velocity", Quantity(D::Velocity, above(0.0, 1_000.0)), Optional, "Your own limit on the velocity at the wellhead; months beyond it are told, nothing is changed and nothing certified"),
+    key("well.erosional_constant", Number(above(0.0, 1_000.0)), Optional, "Your own C of the limit C/sqrt(mixture density) on the velocity at the wellhead, in ft/s and lb/ft3; as maximum_velocity"),
 
     key("well.inflow", Kind::Table, Required, "Inflow"),
     key("well.inflow.method", Choice(&["straight", "vogel", "fetkovich"]), Default("\"fetkovich\""), "Shape of the curve below the bubble point"),

@@ -7,7 +7,7 @@ use super::gray::Gray;
 use super::hagedorn_brown::HagedornBrown;
 use super::hasan_kabir::HasanKabir;
 use super::march::{March, Progress};
-use super::model::{Hydraulics, KINETIC_LIMIT};
+use super::model::{Flow, Hydraulics, KINETIC_LIMIT};
 use super::mukherjee_brill::MukherjeeBrill;
 use super::no_slip::NoSlip;
 use super::path::{Path, Stretch};
@@ -151,6 +151,14 @@ impl Tubing {
     /// The traverse in detail, from the wellhead down.
     pub fn profile(&self, fluid: &BlackOil, stream: &Stream, wellhead_psia: f64) -> Vec<TraversePoint> {
         with_model!(self.method, model => self.points(model, fluid, stream, wellhead_psia))
+    }
+
+    /// The flow as it enters the wellhead.
+    pub fn flow_at_wellhead(&self, fluid: &BlackOil, stream: &Stream, wellhead_psia: f64) -> Option<Flow> {
+        let top = self.path.stretches.first()?;
+        Some(
+            with_model!(self.method, model => self.march(model, fluid, stream).describe(top, 0.0, held(wellhead_psia)).0),
+        )
     }
 
     /// Steps that [`flowing_pressure`](Self::flowing_pressure) takes: a measure of its work.

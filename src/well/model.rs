@@ -434,9 +434,10 @@ impl<'a> WellNow<'a> {
         self.traverse(&self.stream(liquid_rate_stb_d)).pressure_psia
     }
 
-    /// Whether the flow at this rate and line pressure comes near to sonic speed somewhere in the tubing.
-    pub fn near_sonic(&self, liquid_rate_stb_d: f64) -> bool {
-        self.traverse(&self.stream(liquid_rate_stb_d)).near_sonic
+    /// Whether the flow at this rate and wellhead pressure comes near to sonic speed somewhere in the tubing.
+    pub fn near_sonic(&self, liquid_rate_stb_d: f64, wellhead_psia: f64) -> bool {
+        self.gauge.count();
+        self.well.tubing.flowing_pressure(self.fluid, &self.stream(liquid_rate_stb_d), wellhead_psia).near_sonic
     }
 
     /// Pressure at the perforations under a full column of the well's own dead oil and water at line pressure, psia: what a shut-in

@@ -45,8 +45,28 @@ pub struct WellSpec {
     pub maximum_water_cut: Option<f64>,
     /// Gas-oil ratio above which the well is given up, scf/STB.
     pub maximum_gor_scf_stb: Option<f64>,
+    /// What the flow is held against at period ends; it ends nothing.
+    pub screens: ScreenSpec,
     /// Inflow.
     pub inflow: InflowSpec,
     /// Tubing.
     pub tubing: TubingSpec,
+}
+
+/// What a well's flow is held against at period ends. A flow beyond it is told as a doubt; nothing is changed or ended.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct ScreenSpec {
+    /// Margin of the rate over that at the minimum of the tubing curve below which the well may head.
+    pub heading_margin: f64,
+    /// The user's own limit on the mixture velocity at the wellhead, ft/s.
+    pub maximum_velocity_ft_s: Option<f64>,
+    /// The user's own C of the velocity limit C/sqrt(density), ft/s and lb/ft3.
+    pub erosional_constant: Option<f64>,
+}
+
+impl Default for ScreenSpec {
+    /// A tenth above the minimum of the tubing curve; no limit on the velocity.
+    fn default() -> Self {
+        Self { heading_margin: 0.1, maximum_velocity_ft_s: None, erosional_constant: None }
+    }
 }

@@ -3,12 +3,14 @@
 
 use jiff::civil::date;
 use wane::fluid::FluidSpec;
-use wane::forecast::{Every, FieldSpec, InjectedFluid, InjectionControl, InjectorSpec, PeriodSpec, Tolerance};
+use wane::forecast::{
+    Every, FieldSpec, InjectedFluid, InjectionControl, InjectorSpec, OnsetSpec, PeriodSpec, Tolerance,
+};
 use wane::inflow::{Coefficient, FutureRule, InflowMethod, InflowSpec, RateBasis};
 use wane::rock::CoreySpec;
 use wane::tank::{TankSpec, WaterModel};
 use wane::tubing::{TubingMethod, TubingSection, TubingSpec};
-use wane::well::WellSpec;
+use wane::well::{ScreenSpec, WellSpec};
 
 /// One well that drains an undersaturated tank.
 pub fn one_well() -> FieldSpec {
@@ -45,6 +47,7 @@ pub fn one_well() -> FieldSpec {
         lines: Vec::new(),
         injectors: Vec::new(),
         changes: Vec::new(),
+        onsets: OnsetSpec::default(),
         tolerance: Tolerance::Normal,
     }
 }
@@ -70,6 +73,7 @@ pub fn well(name: &str) -> WellSpec {
         minimum_rate_stb_d: None,
         maximum_water_cut: None,
         maximum_gor_scf_stb: None,
+        screens: ScreenSpec::default(),
         inflow: InflowSpec {
             method: InflowMethod::Fetkovich,
             future: FutureRule::Pressure,
