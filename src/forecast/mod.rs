@@ -24,5 +24,5 @@ pub use curves::{WellCurves, curves_on};
 pub use field::{Field, RunError};
 pub use onsets::OnsetSpec;
 pub use result::*;
-pub use run::{run, run_with_curves};
+pub use run::{natural_flow_ends, run, run_with_curves};
 pub use spec::*;

