@@ -322,12 +322,17 @@ fn gas_injection_counts_gas_back_and_closes() {
 }
 
 #[test]
-fn a_tank_flooded_beyond_its_fluid_is_a_named_error() {
+fn a_tank_flooded_beyond_its_fluid_stops_with_what_was_computed_so_far() {
     let mut spec = long_lived();
     spec.tank.water_model = WaterModel::Connate;
     spec.injectors = vec![injector("WI", InjectedFluid::Water, InjectionControl::Rate(200_000.0))];
-    let error = run(&spec).unwrap_err().to_string();
-    assert!(error.contains("too much is injected"), "{error}");
+    let f = holds(&spec);
+    let stop = f.events.iter().find(|e| e.kind == EventKind::BalanceStopped).expect("the stop is an event");
+    assert!(stop.note.contains("too much is injected") && stop.days > 1.0 && stop.days == f.end_days, "{stop:?}");
+    let end = f.wells[0].natural_flow_end.unwrap();
+    assert_eq!((end.reason, end.days), (StopReason::BalanceHasNoSolution, stop.days));
+    // A check of the results fails, so that the exit status is 3.
+    assert!(wane::report::sanity(&f).iter().any(|text| text.contains("too much is injected")));
 }
 
 /// Two minima of the tubing curve: the hump on which the well flows parts from the other one and ends while natural flow goes on.

@@ -5,10 +5,12 @@ mod common;
 
 use common::fields::{injector, one_well};
 use jiff::civil::date;
-use wane::forecast::{EventKind, FieldSpec, Forecast, InjectedFluid, InjectionControl, StopReason, run};
+use wane::forecast::{
+    Change, ChangeSpec, EventKind, FieldSpec, Forecast, InjectedFluid, InjectionControl, StopReason, run,
+};
 use wane::inflow::{Coefficient, InflowCurve, Shape};
 use wane::tank::WaterModel;
-use wane::well::{LOOK_FROM, survey, survey_above};
+use wane::well::{LOOK_FROM, survey, survey_above, top_near};
 
 fn flows_only_with_a_margin(f: &Forecast) {
     for w in &f.wells {
@@ -45,9 +47,46 @@ fn a_well_stopped_by_its_floor_does_not_return_at_the_same_instant() {
 }
 
 #[test]
+fn a_dead_well_whose_own_limit_forbids_flow_is_left_alone() {
+    // It dies of the heavy column in the dip. Then its target is set to less than it could hold, and injection brings a margin
+    // of 1 psi back within two days of its start: it must wait until it can hold that target.
+    let mut spec = restless();
+    let mut w = spec.wells[0].clone();
+    w.target_rate_stb_d = Some(150.0);
+    spec.changes.push(ChangeSpec {
+        on: date(2028, 6, 1),
+        name: w.name.clone(),
+        text: "target_rate = 150".to_owned(),
+        change: Change::Well(0, Box::new(w)),
+    });
+    let mut i = injector("I-1", InjectedFluid::Water, InjectionControl::Rate(300.0));
+    i.start = Some(date(2029, 1, 1));
+    spec.injectors.push(i);
+    let f = run(&spec).unwrap();
+    flows_only_with_a_margin(&f);
+    let back = f.events.iter().find(|e| e.kind == EventKind::FlowsAgain).expect("it comes back in the end");
+    assert!(back.days > 731.0 + 5.0, "back on day {}", back.days);
+    let row = f.wells[0].rows.iter().find(|r| r.flowing && r.oil_cum_stb > f.wells[0].rows[12].oil_cum_stb).unwrap();
+    assert!((row.liquid_rate_stb_d.unwrap() - 150.0).abs() < 1e-6);
+}
+
+#[test]
+fn a_well_that_comes_and_goes_within_days_is_left_shut() {
+    let mut spec = restless();
+    spec.tank.oil_in_place_stb = 5e5;
+    let mut i = injector("I-1", InjectedFluid::Water, InjectionControl::Rate(60.0));
+    i.start = Some(date(2028, 1, 1));
+    spec.injectors.push(i);
+    let f = run(&spec).unwrap();
+    let returns = f.events.iter().filter(|e| e.kind == EventKind::FlowsAgain).count();
+    assert!((1..60).contains(&returns), "{returns} returns");
+    flows_only_with_a_margin(&f);
+}
+
+#[test]
 fn perforations_above_all_pressure_give_no_flow_and_no_panic() {
     for shape in [Shape::Straight, Shape::Vogel, Shape::Fetkovich { n: 0.7 }] {
-        for (j, pressure) in [(2.0, -40.0), (0.0, 3000.0), (f64::NAN, 3000.0), (2.0, 0.0)] {
+        for (j, pressure) in [(2.0, -40.0), (1e-12, 3000.0), (0.0, 3000.0), (f64::NAN, 3000.0), (2.0, 0.0)] {
             let curve = InflowCurve::new(shape, j, pressure, pressure.min(2500.0));
             assert_eq!(curve.open_flow_stb_d(), 0.0);
             assert_eq!(curve.rate_stb_d(10.0), 0.0);
@@ -120,6 +159,39 @@ fn a_shut_injector_injects_nothing_rather_than_less_than_nothing() {
     let f = run(&spec).unwrap();
     let rows = &f.injectors[0].rows;
     assert!(rows.iter().all(|r| r.water_stb >= 0.0), "negative volume");
+    // As injected, that is without the help of what the rows forgive as rounding: nothing at all before the limit is reached.
+    let open = f.tank.iter().position(|t| t.pressure_psia < 3000.0).unwrap();
+    assert!(rows[..open].iter().all(|r| r.water_cum_stb == 0.0), "injected above its limit");
     assert_eq!(rows[0].water_stb, 0.0, "shut in above its limit");
     assert!(rows.last().unwrap().water_cum_stb > 0.0, "open once the tank is below the limit");
+}
+
+#[test]
+fn a_steep_corner_at_a_small_part_of_open_flow_is_found_to_its_top() {
+    // 125 psi per STB/d on its right, at 0.4 % of open flow: from either side the same top, to 0.001 psi.
+    let corner = 0.4453;
+    let h = |q: f64| if q < corner { 0.01 - 2.0 * (corner - q) } else { 0.01 - 125.0 * (q - corner) };
+    assert!((survey(h, 104.9).margin_psi - 0.01).abs() < 1e-3);
+    for from in [0.3, 0.44, 0.46, 1.0] {
+        assert!((top_near(h, from, 0.01, 104.8).1 - 0.01).abs() < 1e-3, "from {from}");
+    }
+}
+
+#[test]
+fn an_event_that_does_not_help_leaves_the_end_of_natural_flow_where_it_was() {
+    // The tank stands still from the well's end on, so that its margin is zero to rounding when the event looks at it again.
+    let mut spec = restless();
+    spec.wells[0].may_flow_again = false;
+    let end = run(&spec).unwrap().wells[0].natural_flow_end.unwrap();
+    let mut w = spec.wells[0].clone();
+    w.minimum_rate_stb_d = Some(1.0);
+    spec.changes.push(ChangeSpec {
+        on: date(2029, 6, 1),
+        name: w.name.clone(),
+        text: "minimum_rate = 1".to_owned(),
+        change: Change::Well(0, Box::new(w)),
+    });
+    let f = run(&spec).unwrap();
+    assert!((f.wells[0].natural_flow_end.unwrap().days - end.days).abs() < 1e-6);
+    assert!(!f.events.iter().any(|e| e.kind == EventKind::FlowsAgain));
 }

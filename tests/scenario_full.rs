@@ -8,9 +8,9 @@ use wane::inflow::{Coefficient, FutureRule, InflowMethod, InflowSpec, InflowTest
 use wane::rock::CoreySpec;
 use wane::scenario::{Document, schema};
 use wane::tank::{ProducedSpec, TankSpec, WaterModel};
-use wane::tubing::{TubingMethod, TubingSection, TubingSpec};
+use wane::tubing::{ChokeMethod, ChokeSpec, ChokeTest, Discharge, TubingMethod, TubingSection, TubingSpec};
 use wane::units::UnitSystem;
-use wane::well::{FlowingSurvey, SurveyPoint, WellSpec};
+use wane::well::{FlowingSurvey, LineRate, LineSpec, ScreenSpec, SurveyPoint, WellSpec};
 
 const FULL: &str = include_str!("data/full.toml");
 
@@ -136,6 +136,31 @@ fn the_first_well_arrives() {
     let well = WellSpec {
         name: "A".to_owned(),
         line_pressure_psia: 205.0,
+        shared_line: None,
+        choke: Some(ChokeSpec {
+            method: ChokeMethod::Ros,
+            size_in: 28.0 / 64.0,
+            discharge: Discharge::Tests(vec![
+                ChokeTest {
+                    on: Some(date(2026, 5, 7)),
+                    size_in: 0.25,
+                    wellhead_psia: 620.0,
+                    line_psia: 205.0,
+                    rate_stb_d: 510.0,
+                    gor_scf_stb: 520.0,
+                    water_cut: 0.02,
+                },
+                ChokeTest {
+                    on: None,
+                    size_in: 28.0 / 64.0,
+                    wellhead_psia: 480.0,
+                    line_psia: 204.0,
+                    rate_stb_d: 900.0,
+                    gor_scf_stb: 525.0,
+                    water_cut: 0.0,
+                },
+            ]),
+        }),
         target_rate_stb_d: Some(850.0),
         uptime: 0.91,
         perforations_md_ft: Some(7380.0),
@@ -151,6 +176,11 @@ fn the_first_well_arrives() {
         minimum_rate_stb_d: Some(45.0),
         maximum_water_cut: Some(0.87),
         maximum_gor_scf_stb: Some(4200.0),
+        screens: ScreenSpec {
+            heading_margin: 0.25,
+            maximum_velocity_ft_s: Some(60.0),
+            erosional_constant: Some(125.0),
+        },
         inflow: InflowSpec {
             method: InflowMethod::Fetkovich,
             future: FutureRule::Mobility,
@@ -238,12 +268,28 @@ fn the_other_wells_have_their_defaults_and_methods() {
 }
 
 #[test]
+fn lines_and_chokes_arrive() {
+    let field = resolve();
+    let line = LineSpec { name: "L".to_owned(), rate: LineRate::Gas, pressures: vec![(0.0, 140.0), (3e6, 190.0)] };
+    assert_eq!(field.lines, [line]);
+    let lines: Vec<_> = field.wells.iter().map(|well| well.shared_line.as_deref()).collect();
+    assert_eq!(lines, [None, None, Some("L"), None]);
+    let discharge = Discharge::Given(0.8);
+    let choke = ChokeSpec { method: ChokeMethod::Sachdeva, size_in: 0.5, discharge };
+    assert_eq!((field.wells[1].choke.as_ref(), field.wells[2].choke.as_ref()), (None, Some(&choke)));
+    assert_eq!(field.wells[2].line_pressure_psia, 140.0, "the lowest stands in");
+}
+
+#[test]
 fn events_arrive_in_whole_settings() {
     let field = resolve();
-    let [well, injector, tank] = field.changes.as_slice() else { panic!("three changes") };
+    let [well, line, injector, tank] = field.changes.as_slice() else { panic!("four changes") };
     assert_eq!((well.on, well.name.as_str()), (date(2029, 1, 1), "D"));
     let new = WellSpec { skin: 2.0, ..field.wells[3].clone() };
     assert_eq!(well.change, Change::Well(3, Box::new(new)));
+    assert_eq!((line.on, line.name.as_str()), (date(2029, 6, 1), "L"));
+    let new = LineSpec { pressures: vec![(0.0, 120.0)], ..field.lines[0].clone() };
+    assert_eq!(line.change, Change::Line(0, new));
     assert_eq!((injector.on, injector.name.as_str()), (date(2030, 1, 1), "W"));
     let new = InjectorSpec { rate_limit: Some(1600.0), ..field.injectors[0].clone() };
     assert_eq!(injector.change, Change::Injector(0, new));

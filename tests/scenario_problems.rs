@@ -51,6 +51,42 @@ const CASES: &[Case] = &[
     ),
     ("salinity     =", "«table»     =", &["a laboratory table in place of correlations comes with a later version"]),
     ("title =", "«odds» = {}\ntitle =", &["`odds`: the uncertainty study comes with a later version"]),
+    // Lines and chokes.
+    (
+        "line_pressure = \"220 psia\"",
+        "line = «\"heder\"»",
+        &["there is no line named `heder`", "the scenario has no line at all"],
+    ),
+    (
+        "line_pressure = \"220 psia\"",
+        "line_pressure = \"220 psia\"\nline = «\"header\"»",
+        &["`line_pressure` and `line` exclude each other"],
+    ),
+    (
+        "[[well]]\n",
+        "[[line]]\nname = \"header\"\npressure = [[\"0 STB/d\", \"150 psia\"], [«\"2 MMscf/d\"», \"240 psia\"]]\n[[well]]\n",
+        &["`MMscf/d` is the unit of a gas rate, a liquid rate is expected"],
+    ),
+    (
+        "[[well]]\n",
+        "[[line]]\nname = \"header\"\npressure = [[\"0 STB/d\", \"150 psia\"], «[\"900 STB/d\", \"140 psia\"]»]\n[[well]]\n",
+        &["the pressure of the line falls to 140.0 psia at a higher rate"],
+    ),
+    (
+        "[[well]]\n",
+        "[[line]]\nname = \"header\"\npressure = «\"150 psia\"»\n[[well]]\n",
+        &["`line.pressure` is no list of pairs"],
+    ),
+    (
+        "[well.tubing]\n",
+        "[well.choke]\nsize = \"24/64 in\"\nmethod = «\"gilber\"»\n[well.tubing]\n",
+        &["did you mean", "gilbert"],
+    ),
+    (
+        "[well.tubing]\n",
+        "[well.choke]\nsize = \"24/64 in\"\ntest = [{ wellhead = \"300 psia\", line = «\"310 psia\"», rate = \"900 STB/d\", gor = \"620 scf/STB\" }]\n[well.tubing]\n",
+        &["the pressure downstream of the choke is not below that upstream of it"],
+    ),
     // Missing.
     ("gas_gravity  = 0.78", "", &["`fluid.gas_gravity` is missing", "`gas_gravity` is expected here"]),
     ("name = \"OP-1\"\n", "", &["`well.name` is missing"]),
@@ -446,26 +482,31 @@ fn a_case_that_does_not_exist_is_answered_with_those_that_do() {
 /// A list instead of what is expected is refused by every key that is really read.
 #[test]
 fn every_key_of_the_list_is_really_read() {
-    let document = Document::parse("good.toml", GOOD).unwrap();
+    let text = format!("{GOOD}\n[[line]]\nname = \"LN\"\npressure = [[\"0 STB/d\", \"150 psia\"]]\n");
+    let document = Document::parse("good.toml", &text).unwrap();
     for key in schema::KEYS {
         let path = match key.path.split_once('.') {
             _ if key.path.starts_with("event") || key.path.starts_with("case") => continue,
             Some(("well", rest)) => format!("well.OP-1.{rest}"),
+            Some(("line", rest)) => format!("line.LN.{rest}"),
             Some(("injector", rest)) => format!("injector.OI-1.{rest}"),
             _ => key.path.to_owned(),
         };
-        let (path, value) = if let Some(rest) = path.strip_prefix("well.OP-1.inflow.test.") {
-            ("well.OP-1.inflow.test".to_owned(), format!("[{{ {rest} = [[7]] }}]"))
-        } else if let Some(rest) = path.strip_prefix("well.OP-1.tubing.sections.") {
-            ("well.OP-1.tubing.sections".to_owned(), format!("[{{ {rest} = [[7]] }}]"))
-        } else if let Some(rest) = path.strip_prefix("well.OP-1.flowing_survey.") {
-            ("well.OP-1.flowing_survey".to_owned(), format!("[{{ {rest} = [[7]] }}]"))
-        } else {
-            (path, "[[7]]".to_owned())
+        let lists =
+            ["inflow.test", "tubing.sections", "choke.test", "flowing_survey"].map(|list| format!("well.OP-1.{list}"));
+        let member =
+            |list: &String| Some((list.clone(), path.strip_prefix(list.as_str())?.strip_prefix('.')?.to_owned()));
+        let (path, value) = match lists.iter().find_map(member) {
+            Some((list, rest)) => (list, format!("[{{ {rest} = [[7]] }}]")),
+            None => (path, "[[7]]".to_owned()),
         };
         let problems = document.resolve(None, &[format!("{path}={value}")]).map(|_| ()).expect_err(key.path);
         let name = key.path.rsplit('.').next().unwrap();
         let told = problems.list.iter().any(|problem| match name {
+            "pressure" if path.starts_with("line") => problem.message == "a point of a line's table is a pair",
+            "asphaltene_onset" | "asphaltene_lower_onset" => {
+                problem.message == format!("a point of `{}` is a pair", key.path)
+            }
             "survey" => problem.message == "a point of a survey is a pair",
             "points" => problem.message == "a point of a flowing survey is a depth and a pressure",
             "temperature" if path.contains("tubing") => problem.message.contains("a point of a table of temperatures"),

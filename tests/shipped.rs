@@ -54,7 +54,9 @@ fn holds(what: &str, spec: &FieldSpec) -> Forecast {
 
 #[test]
 fn every_case_of_every_shipped_scenario_holds_the_numbers() {
-    for name in ["depletion.toml", "injection.toml", "two-wells.toml", "midlife.toml", "calibrated.toml"] {
+    for name in
+        ["depletion.toml", "injection.toml", "two-wells.toml", "midlife.toml", "shared-line.toml", "calibrated.toml"]
+    {
         let document = shipped(name);
         let cases = document.case_names();
         for case in std::iter::once(None).chain(cases.iter().map(|c| Some(c.as_str()))) {
@@ -100,6 +102,20 @@ fn the_strong_well_in_the_wide_string_dies_first() {
     let f = run(&field("two-wells.toml", None)).unwrap();
     let (strong, weak) = (f.wells[0].natural_flow_end.unwrap(), f.wells[1].natural_flow_end.unwrap());
     assert!(strong.days < weak.days && strong.liquid_rate_stb_d > 2.0 * weak.liquid_rate_stb_d);
+}
+
+#[test]
+fn a_dying_well_relieves_its_line_and_a_second_separator_buys_months() {
+    let base = run(&field("shared-line.toml", None)).unwrap();
+    let relieved = run(&field("shared-line.toml", Some("second separator"))).unwrap();
+    let end = |f: &Forecast, w: usize| f.wells[w].natural_flow_end.unwrap().days;
+    for w in 0..3 {
+        assert!(end(&relieved, w) > end(&base, w) + 60.0);
+    }
+    let first = end(&base, 1).min(end(&base, 2));
+    let row = base.periods.iter().position(|p| p.end_days > first).unwrap();
+    let line = |i: usize| base.wells[0].rows[i].line_pressure_psia.unwrap();
+    assert!(line(row + 1) < line(row - 1) - 0.5, "{} then {} psia", line(row - 1), line(row + 1));
 }
 
 #[test]

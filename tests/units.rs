@@ -73,7 +73,18 @@ fn every_factor_is_that_of_the_definition() {
         ),
         (D::PressureDifference, vec![("psi", psi), ("bar", 1e5), ("kPa", 1e3), ("MPa", 1e6)]),
         (D::Length, vec![("ft", foot), ("m", 1.0), ("km", kilo), ("in", inch)]),
-        (D::Diameter, vec![("in", inch), ("mm", 1e-3), ("cm", 1e-2), ("m", 1.0), ("ft", foot), ("um", 1e-6)]),
+        (
+            D::Diameter,
+            vec![
+                ("in", inch),
+                ("mm", 1e-3),
+                ("cm", 1e-2),
+                ("m", 1.0),
+                ("ft", foot),
+                ("/64 in", inch / 64.0),
+                ("um", 1e-6),
+            ],
+        ),
         (
             D::LiquidVolume,
             vec![
@@ -237,6 +248,7 @@ fn what_people_write_is_understood() {
         (D::Salinity, "35000 ppm", vec!["3.5 %", "35 g/kg", "3.5 wt%"]),
         (D::Time, "2 years", vec!["24 months", "2 yr", "730.485 days"]),
         (D::Diameter, "2.441 in", vec!["2.441 inch", "2.441\"", "62.0014 mm", "6.20014 cm"]),
+        (D::Diameter, "0.375 in", vec!["24/64 in", "24/64\"", "24/64"]),
         (D::Length, "8600 ft", vec!["8600 feet", "8600'", "2621.28 m"]),
         (D::Permeability, "80 mD", vec!["80 md", "0.08 D"]),
         (D::Density, "62.4 lb/ft3", vec!["62.4 lb/ft^3", "62.4 lbm/ft³"]),

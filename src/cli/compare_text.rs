@@ -15,7 +15,11 @@ pub fn compare_text(comparison: &Comparison, provenance: &Provenance, folder: Op
         let text = format!("{} has no [[case]] to compare: only the scenario as it stands", provenance.scenario_name);
         s.paragraph(0, 0, &text);
     } else {
-        s.paragraph(0, 0, &format!("{} cases of {}, each against base", rows.len() - 1, provenance.scenario_name));
+        let count = match rows.len() - 1 {
+            1 => "One case".to_owned(),
+            cases => format!("{cases} cases"),
+        };
+        s.paragraph(0, 0, &format!("{count} of {}, each against base", provenance.scenario_name));
     }
     ends(&mut s, &rows, provenance);
     volumes(&mut s, &rows, provenance);

@@ -231,6 +231,11 @@ fn tests(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
     for well in &forecast.wells {
         s.paragraph(2, 2, &format!("{}: {}", well.name, well.inflow_text));
     }
+    for well in &forecast.wells {
+        if let Some(choke) = &well.choke_text {
+            s.paragraph(2, 2, &format!("{}, choke: {choke}", well.name));
+        }
+    }
     let mut rows = Vec::new();
     for well in &forecast.wells {
         for test in &well.tests {

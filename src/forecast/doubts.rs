@@ -1,6 +1,9 @@
 //! Doubts about a result: what was seen, the likely cause, what to do.
 
+use super::doubts_flow::about_flow;
+use super::doubts_wellhead;
 use super::field::Field;
+use super::screens::Screens;
 use super::{Doubt, DoubtKind, EventKind, Forecast, InjectedFluid, StopReason};
 use crate::inflow::Shape;
 use crate::tank::{TankState, WaterModel};
@@ -17,7 +20,8 @@ const HIGH_DEPLETION_RECOVERY: f64 = 0.30;
 pub(super) struct Seen {
     /// Volume asked of each injector up to the last row, STB or scf.
     pub asked: Vec<f64>,
-    near_sonic: Vec<Vec<usize>>,
+    /// What the screens of each well met.
+    pub screens: Vec<Screens>,
     injection: Vec<Option<(f64, f64, usize)>>,
     lowest_psia: f64,
 }
@@ -26,15 +30,9 @@ impl Seen {
     pub fn new(wells: usize, injectors: usize) -> Self {
         Self {
             asked: vec![0.0; injectors],
-            near_sonic: vec![Vec::new(); wells],
+            screens: vec![Screens::default(); wells],
             injection: vec![None; injectors],
             lowest_psia: f64::INFINITY,
-        }
-    }
-
-    pub fn well(&mut self, w: usize, row: usize, near_sonic: bool) {
-        if near_sonic {
-            self.near_sonic[w].push(row);
         }
     }
 
@@ -52,11 +50,11 @@ impl Seen {
     }
 }
 
-fn month(date: Date) -> String {
+pub(super) fn month(date: Date) -> String {
     format!("{} {}", date.strftime("%B"), date.year())
 }
 
-fn months(forecast: &Forecast, rows: &[usize]) -> String {
+pub(super) fn months(forecast: &Forecast, rows: &[usize]) -> String {
     let name = |i: &usize| forecast.periods.get(*i).map_or_else(String::new, |p| month(p.start));
     match rows {
         [] => String::new(),
@@ -71,6 +69,10 @@ pub(super) fn about_result(field: &Field, forecast: &Forecast, seen: &Seen) -> V
     fluid_and_tank(field, forecast, &mut doubts);
     for w in 0..forecast.wells.len() {
         well(field, forecast, seen, w, &mut doubts);
+        doubts_wellhead::choke(&field.wells()[w], forecast, w, &mut doubts);
+    }
+    for l in 0..field.spec.lines.len() {
+        doubts_wellhead::line(field, forecast, l, &mut doubts);
     }
     for i in 0..forecast.injectors.len() {
         injector(field, forecast, seen, i, &mut doubts);
@@ -79,7 +81,7 @@ pub(super) fn about_result(field: &Field, forecast: &Forecast, seen: &Seen) -> V
     doubts
 }
 
-fn doubt(kind: DoubtKind, about: &str, seen: String, cause: &str, advice: &str) -> Doubt {
+pub(super) fn doubt(kind: DoubtKind, about: &str, seen: String, cause: &str, advice: &str) -> Doubt {
     Doubt { kind, about: about.to_owned(), seen, cause: cause.to_owned(), advice: advice.to_owned() }
 }
 
@@ -179,15 +181,7 @@ fn well(field: &Field, forecast: &Forecast, seen: &Seen, w: usize, doubts: &mut 
             "run a test at two or three rates before the result goes into an order",
         ));
     }
-    if !seen.near_sonic[w].is_empty() {
-        doubts.push(doubt(
-            DoubtKind::NearSonic,
-            name,
-            format!("the flow comes near to sonic speed in the tubing: {}", months(forecast, &seen.near_sonic[w])),
-            "high gas-oil ratio on low line pressure; every tubing model here is used outside its range",
-            "do not read rates of these months closely; a larger string or a higher line pressure avoids it",
-        ));
-    }
+    about_flow(forecast, name, &seen.screens[w], doubts);
     if let Some(end) = result.natural_flow_end {
         let critical = field.tank().relative_permeability().critical_gas();
         let row = forecast.periods.iter().position(|p| p.run_days >= end.days);
@@ -210,7 +204,11 @@ fn well(field: &Field, forecast: &Forecast, seen: &Seen, w: usize, doubts: &mut 
                 name,
                 "after its end the well could flow again by itself".to_owned(),
                 "rising gas-oil ratio or pressure support gave it a flow margin again; a stopped well needs a start",
-                "set may_flow_again = true if somebody will open it",
+                if field.spec.wells[w].may_flow_again {
+                    "it came and went within days and was left shut: lift it, or let pressure build up and open it by an event"
+                } else {
+                    "set may_flow_again = true if somebody will open it"
+                },
             ));
         }
     }

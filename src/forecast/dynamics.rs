@@ -11,6 +11,8 @@ use crate::well::{LOOK_TO, WellNow, follow_top, oil_gradient_psi_ft, right_cross
 
 /// Flow margin at which a dead well may flow again, psi.
 const FLOW_AGAIN_PSI: f64 = 1.0;
+/// Relative room to a well's limits within which a dead well does not return.
+const RETURN_ROOM: f64 = 1e-4;
 /// Depth from which a valley between the top of a hump and the operating point parts the hump in two, psi.
 const VALLEY_PSI: f64 = 0.1;
 /// Height that shows without further search that natural flow is not about to end, psi.
@@ -106,6 +108,7 @@ impl<'a> Dynamics<'a> {
         let tank = &self.setup.tank;
         let state = tank.state(&tank.inventory(&self.cumulatives(y)), self.memory.pressure_psia.get())?;
         self.memory.pressure_psia.set(state.pressure_psia);
+        self.settle_lines(&state);
         Ok(state)
     }
 
@@ -115,7 +118,7 @@ impl<'a> Dynamics<'a> {
         let gradient = spec.tank.datum_tvd_ft.map_or(0.0, |_| {
             oil_gradient_psi_ft(&self.field.fluid, tank.pressure_psia, spec.tank.temperature_degf, tank.rs_scf_stb)
         });
-        self.setup.wells[w].now(&self.field.fluid, tank, gradient, &self.memory.gauge)
+        self.setup.wells[w].now(&self.field.fluid, tank, gradient, &self.memory.gauge).against(self.line(w))
     }
 
     /// The rate that the flowing-pressure floor allows, STB/d.
@@ -145,7 +148,7 @@ impl<'a> Dynamics<'a> {
         let bounds = (spot.left_end(low, open), high * open);
         let height = |q: f64| now.height_psi(q);
         let reservoir = now.curve.reservoir_psia();
-        let conditions = Some([reservoir, open, now.gor_scf_stb, now.water_cut]);
+        let conditions = Some([reservoir, open, now.gor_scf_stb, now.water_cut, now.line().idle_psia()]);
         if spot.found_under == conditions {
             return spot.rate_stb_d;
         }
@@ -233,6 +236,10 @@ impl<'a> Dynamics<'a> {
             InjectionControl::Rate(rate) => rate,
             InjectionControl::VoidageReplacement(part) => part * withdrawal_rb_d / injected_fvf(injector.fluid, tank),
         };
+        if self.modes.held_shut[i] {
+            // Also in a trial step beyond the limit, so that the step is smooth and its interpolant does not swing below zero.
+            return (asked, 0.0);
+        }
         (asked, asked.min(injection_limit(injector, tank.pressure_psia)))
     }
 
@@ -302,7 +309,7 @@ impl<'a> Dynamics<'a> {
                 let target = spec(w).target_rate_stb_d.unwrap_or(f64::INFINITY);
                 match self.modes.wells[w] {
                     Mode::Floor => target - self.floor_rate(w, &now) + 1e-6 * target,
-                    _ => REGAIN_PSI - now.height_psi(target),
+                    _ => self.modes.regain_psi[w].now - now.height_psi(target),
                 }
             }
             Watch::FloorAbove(w) => {
@@ -310,7 +317,7 @@ impl<'a> Dynamics<'a> {
                 let floor = spec(w).minimum_flowing_pressure_psia.unwrap_or(0.0);
                 match self.modes.wells[w] {
                     Mode::Target => now.curve.flowing_psia(spec(w).target_rate_stb_d.unwrap_or(0.0)) - floor + 1e-6,
-                    _ => REGAIN_PSI - now.height_psi(self.floor_rate(w, &now)),
+                    _ => self.modes.regain_psi[w].now - now.height_psi(self.floor_rate(w, &now)),
                 }
             }
             Watch::MarginGone(w) => {
@@ -351,11 +358,22 @@ impl<'a> Dynamics<'a> {
                 if short > 0.0 {
                     return short;
                 }
-                match place_on(&now, spec(w), &land).0 {
-                    Err(_) => FLOW_AGAIN_PSI,
-                    // On its floor a well has no rate to give way to: the same room is asked for there.
-                    Ok(Mode::Floor) => short.max(FLOW_AGAIN_PSI - now.height_psi(self.floor_rate(w, &now))),
-                    Ok(_) => short,
+                // Every condition is asked for with a little room, so that rounding does not refuse at the same instant what was found here.
+                let (limits, room) = (spec(w), 1.0 - RETURN_ROOM);
+                let near = limits.maximum_water_cut.is_some_and(|limit| now.water_cut > room * limit)
+                    || limits.maximum_gor_scf_stb.is_some_and(|limit| now.gor_scf_stb > room * limit);
+                match place_on(&now, limits, &land) {
+                    (Err(_), _) => FLOW_AGAIN_PSI,
+                    (Ok(_), _) if near => FLOW_AGAIN_PSI,
+                    // On its floor a well has no rate to give way to: the room of a return is asked for there.
+                    (Ok(Mode::Floor), _) => short.max(FLOW_AGAIN_PSI - now.height_psi(self.floor_rate(w, &now))),
+                    (Ok(Mode::Target), _) => {
+                        short.max(REGAIN_PSI - now.height_psi(limits.target_rate_stb_d.unwrap_or(0.0)))
+                    }
+                    (Ok(_), spot) if limits.minimum_rate_stb_d.is_some_and(|least| room * spot.rate_stb_d < least) => {
+                        FLOW_AGAIN_PSI
+                    }
+                    (Ok(_), _) => short,
                 }
             }
         }

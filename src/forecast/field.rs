@@ -5,7 +5,7 @@ use crate::fault::Fault;
 use crate::fluid::BlackOil;
 use crate::rock::RelativePermeability;
 use crate::tank::{ClosureError, Tank, TankSpec, TankState};
-use crate::well::{Surroundings, WellModel};
+use crate::well::{LineSpec, Surroundings, WellModel};
 use std::sync::Arc;
 
 /// Why a forecast could not be run.
@@ -51,6 +51,9 @@ fn list(faults: &[Fault]) -> String {
 #[derive(Debug, Clone)]
 pub(super) struct Setup {
     pub wells: Vec<WellModel>,
+    pub lines: Vec<LineSpec>,
+    /// The shared line of each well.
+    pub line_of: Vec<Option<usize>>,
     pub injectors: Vec<InjectorSpec>,
     pub tank: Tank,
 }
@@ -108,10 +111,15 @@ impl Field {
                 Err(found) => faults.extend(under(found, &format!("well[{i}]"))),
             }
         }
+        for (i, line) in spec.lines.iter().enumerate() {
+            faults.extend(under(line.check(), &format!("line[{i}]")));
+        }
         if !faults.is_empty() {
             return Err(RunError::Input(faults));
         }
-        let setup = Arc::new(Setup { wells, injectors: spec.injectors.clone(), tank });
+        let line_of = line_of(&wells, &spec.lines).map_err(RunError::Input)?;
+        let setup =
+            Arc::new(Setup { wells, lines: spec.lines.clone(), line_of, injectors: spec.injectors.clone(), tank });
         Ok(Self { spec: spec.clone(), fluid, setup, start })
     }
 
@@ -165,12 +173,33 @@ impl Field {
                 next.wells[*i] = setup.wells[*i]
                     .changed(spec, &around)
                     .map_err(|f| RunError::Input(under(f, &format!("well[{i}]"))))?;
+                next.line_of = line_of(&next.wells, &next.lines).map_err(RunError::Input)?;
+            }
+            Change::Line(i, spec) => {
+                let faults = spec.check();
+                if !faults.is_empty() {
+                    return Err(RunError::Input(under(faults, &format!("line[{i}]"))));
+                }
+                next.lines[*i] = spec.clone();
             }
             Change::Injector(i, spec) => next.injectors[*i] = spec.clone(),
             Change::Tank(spec) => next.tank.set_flow(flow(spec), spec.water_model),
         }
         Ok(next)
     }
+}
+
+/// The shared line of each well.
+fn line_of(wells: &[WellModel], lines: &[LineSpec]) -> Result<Vec<Option<usize>>, Vec<Fault>> {
+    let find = |(i, well): (usize, &WellModel)| match &well.spec.shared_line {
+        None => Ok(None),
+        Some(name) => lines
+            .iter()
+            .position(|line| line.name == *name)
+            .map(Some)
+            .ok_or_else(|| vec![Fault::new(format!("well[{i}].line"), format!("there is no line named `{name}`"))]),
+    };
+    wells.iter().enumerate().map(find).collect()
 }
 
 /// The key of the scenario file at which a fault of the fluid is mended.

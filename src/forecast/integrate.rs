@@ -19,7 +19,7 @@ pub type State = DVector<f64>;
 /// Samples of the interpolant per step where a dip is suspected.
 const DIP_SAMPLES: usize = 12;
 /// Steps after which a stretch is given up.
-const MOST_STEPS: u32 = 100_000;
+const MOST_STEPS: u32 = 40_000;
 /// The solver's own test for stiffness would give up a tank that follows its injection within days. Such a run only costs steps, so
 /// the test is put off for ever.
 const NO_STIFFNESS_TEST: u32 = u32::MAX;

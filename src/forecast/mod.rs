@@ -3,20 +3,26 @@
 mod calendar;
 mod curves;
 mod doubts;
+mod doubts_flow;
+mod doubts_wellhead;
 mod dynamics;
 mod field;
 pub mod integrate;
+mod lines;
 mod modes;
+mod onsets;
 mod placement;
 mod result;
 mod rows;
 mod run;
+mod screens;
 mod spec;
 mod switching;
 
 pub use calendar::{date_at, days_between};
 pub use curves::{WellCurves, curves_on};
 pub use field::{Field, RunError};
+pub use onsets::OnsetSpec;
 pub use result::*;
-pub use run::{run, run_with_curves};
+pub use run::{natural_flow_ends, run, run_with_curves};
 pub use spec::*;

@@ -12,6 +12,10 @@ const BUBBLE_POINT_SLACK_SCF_STB: f64 = 1e-6;
 const CRITICAL_GAS_SLACK: f64 = 1e-9;
 /// Days within which another crossing counts as soon.
 const SOON_DAYS: f64 = 30.0;
+/// Days within which another return of a dead well counts as soon.
+const SOON_BACK_DAYS: f64 = 10.0;
+/// Such returns in a row after which the well is left shut.
+const MOST_RETURNS_IN_A_ROW: usize = 5;
 
 /// What a well does.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -45,11 +49,17 @@ impl Modes {
             bubble_point_slack: Slack::new(BUBBLE_POINT_SLACK_SCF_STB),
             critical_gas_slack: Slack::new(CRITICAL_GAS_SLACK),
             held_shut: vec![false; injectors],
+            regain_psi: vec![Slack::new(REGAIN_PSI); wells],
         }
     }
 }
 
 impl Mode {
+    /// Whether it flows as its line and choke let it, held back by nothing else.
+    pub fn is_line(self) -> bool {
+        matches!(self, Self::Line { .. })
+    }
+
     pub fn flows(self) -> bool {
         matches!(self, Self::Target | Self::Floor | Self::Line { .. })
     }
@@ -111,6 +121,33 @@ pub(super) struct Modes {
     pub critical_gas_slack: Slack,
     /// Injectors shut in by their bottom-hole limit.
     pub held_shut: Vec<bool>,
+    /// Height above a cap at which each well is choked back to it again. Until then its rate is held at the cap all the same.
+    pub regain_psi: Vec<Slack>,
+}
+
+/// Returns of a well in quick succession. Nobody opens a well every other day: it is left shut until a dated event names it.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Returns {
+    in_a_row: usize,
+    last_days: f64,
+}
+
+impl Returns {
+    pub const NONE: Self = Self { in_a_row: 0, last_days: f64::NEG_INFINITY };
+
+    fn soon(self, t_days: f64) -> bool {
+        t_days - self.last_days < SOON_BACK_DAYS
+    }
+
+    /// Whether one more return is not too many.
+    pub fn allow_another(self, t_days: f64) -> bool {
+        !self.soon(t_days) || self.in_a_row < MOST_RETURNS_IN_A_ROW
+    }
+
+    pub fn count(&mut self, t_days: f64) {
+        self.in_a_row = if self.soon(t_days) { self.in_a_row + 1 } else { 1 };
+        self.last_days = t_days;
+    }
 }
 
 /// Where a well was found last.
@@ -125,7 +162,7 @@ pub(super) struct Spot {
     pub pressure_psia: f64,
     pub per_pressure: f64,
     /// The conditions under which the rate was found: the same ones need no search.
-    pub found_under: Option<[f64; 4]>,
+    pub found_under: Option<[f64; 5]>,
 }
 
 impl Spot {
@@ -189,6 +226,10 @@ impl Layout {
 pub(super) struct Memory {
     pub pressure_psia: Cell<f64>,
     pub spots: RefCell<Vec<Spot>>,
+    /// What each well brings into its shared line, STB/d or scf/d.
+    pub into_line: RefCell<Vec<f64>>,
+    /// How much less each well would bring per psi more in its line.
+    pub gives_way: RefCell<Vec<f64>>,
     pub gauge: Gauge,
     /// Height to which crossings are resolved, psi.
     pub crossing_psi: Cell<f64>,

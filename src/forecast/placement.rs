@@ -3,6 +3,7 @@
 use super::StopReason;
 use super::dynamics::Dynamics;
 use super::modes::{Mode, Spot};
+use crate::inflow::FutureRule;
 use crate::roots::brent;
 use crate::tank::TankState;
 use crate::well::{Crossing, LOOK_TO, Landscape, WellNow, WellSpec, crossings, top_near};
@@ -25,6 +26,20 @@ pub(super) fn stable_below(now: &WellNow, cap_stb_d: f64) -> Option<(Mode, Spot)
     ))
 }
 
+/// Open flow up to which a well that follows the mobility of the oil counts as standing still, STB/d: ten times the least that an inflow
+/// curve knows, so that both sides of its end are told alike.
+const STANDSTILL_STB_D: f64 = 0.01;
+
+/// Why the curves do not meet: oil that has ceased to move takes the whole inflow away, whatever the tubing asks.
+pub(super) fn why_apart(dynamics: &Dynamics, w: usize, now: &WellNow) -> StopReason {
+    let by_mobility = dynamics.setup.wells[w].inflow.future == FutureRule::Mobility;
+    if by_mobility && now.curve.reservoir_psia() > 0.0 && now.curve.open_flow_stb_d() < STANDSTILL_STB_D {
+        StopReason::OilNoLongerMoves
+    } else {
+        StopReason::NoCrossing
+    }
+}
+
 /// Where a well belongs at a tank state: a flowing mode, or the reason why it does not flow. Humps no higher than `least_psi` do not count.
 pub(super) fn placement(
     dynamics: &Dynamics,
@@ -33,11 +48,14 @@ pub(super) fn placement(
     least_psi: f64,
 ) -> (Result<Mode, StopReason>, Spot) {
     let now = dynamics.well_now(w, tank);
-    let open = now.curve.open_flow_stb_d();
-    if open <= 0.0 {
+    if now.curve.open_flow_stb_d() <= 0.0 {
+        return (Err(why_apart(dynamics, w, &now)), Spot::default());
+    }
+    let land = now.survey_above(least_psi);
+    if land.margin_psi <= least_psi {
         return (Err(StopReason::NoCrossing), Spot::default());
     }
-    place_on(&now, &dynamics.setup.wells[w].spec, &now.survey_above(least_psi))
+    place_on(&now, &dynamics.setup.wells[w].spec, &land)
 }
 
 /// [`placement`] on a landscape that is known already.

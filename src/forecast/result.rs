@@ -9,6 +9,8 @@ use jiff::civil::Date;
 pub enum StopReason {
     /// Inflow and tubing curve no longer meet.
     NoCrossing,
+    /// The mobility of the oil carries the inflow, and no oil moves any more.
+    OilNoLongerMoves,
     /// The flowing-pressure floor leaves no stable rate.
     MinimumFlowingPressure,
     /// The rate fell below the stated minimum, or the target lies below the lowest stable rate.
@@ -26,13 +28,14 @@ pub enum StopReason {
 impl StopReason {
     /// Whether the well may be able to flow again by itself: the tank may give it a margin back.
     pub fn may_pass(self) -> bool {
-        matches!(self, Self::NoCrossing | Self::MinimumFlowingPressure)
+        matches!(self, Self::NoCrossing | Self::OilNoLongerMoves | Self::MinimumFlowingPressure)
     }
 
     /// The fixed wording of result files.
     pub fn text(self) -> &'static str {
         match self {
             Self::NoCrossing => "no crossing",
+            Self::OilNoLongerMoves => "oil no longer moves",
             Self::MinimumFlowingPressure => "minimum flowing pressure",
             Self::RateLimit => "rate limit",
             Self::WaterCutLimit => "water-cut limit",
@@ -79,6 +82,8 @@ pub enum EventKind {
     FreeGasMobile,
     /// The right-most crossing disappeared while another stayed.
     RateJump,
+    /// A flowing well came near to or left of the minimum of its tubing curve, or where its gas hardly lifts the liquid.
+    MayHead,
     /// The well came up against its flowing-pressure floor.
     FloorReached,
     /// The well left its flowing-pressure floor.
@@ -89,6 +94,8 @@ pub enum EventKind {
     CouldFlowAgain,
     /// A well flows again.
     FlowsAgain,
+    /// The balance has no answer beyond this day: more is injected than the tank can take, or the fluid model ends.
+    BalanceStopped,
     /// Injection began.
     InjectionStarted,
     /// Injection ended.
@@ -154,6 +161,12 @@ pub struct WellRow {
     pub flowing_pressure_psia: Option<f64>,
     /// Wellhead pressure, psia: above line pressure while choked.
     pub wellhead_pressure_psia: Option<f64>,
+    /// Pressure of the line, psia.
+    pub line_pressure_psia: Option<f64>,
+    /// Opening of the choke, in.: the well's own, or that which holds it back to its target.
+    pub choke_size_in: Option<f64>,
+    /// Whether the flow through the choke is critical.
+    pub choke_critical: Option<bool>,
     /// Producing-day liquid rate, STB/d.
     pub liquid_rate_stb_d: Option<f64>,
     /// Producing gas-oil ratio, scf/STB.
@@ -167,6 +180,11 @@ pub struct WellRow {
     pub restart_margin_psi: Option<f64>,
     /// Liquid rate over the rate at the minimum of the tubing curve, less one; below zero the well flows left of the minimum.
     pub stability_margin: Option<f64>,
+    /// Slope of the tubing curve less that of the inflow curve at the rate, over the steepness of the inflow curve: 1 at the minimum of
+    /// the tubing curve, 0 where the curves only touch.
+    pub slope_margin: Option<f64>,
+    /// Velocity of the mixture at the wellhead, at the conditions there, ft/s.
+    pub wellhead_velocity_ft_s: Option<f64>,
 }
 
 /// One injector in one period.
@@ -337,6 +355,8 @@ pub struct WellResult {
     pub peak_gor_scf_stb: f64,
     /// Inflow equation in words and figures ("Fetkovich, C = 7.9e-4 STB/d/psi^2n, n = 0.85 fitted to 3 tests").
     pub inflow_text: String,
+    /// The choke at its wellhead in words.
+    pub choke_text: Option<String>,
     /// Each test beside the model's rate.
     pub tests: Vec<TestCheck>,
     /// Curves at the start, at mid-life and at the end of natural flow (or of the run).
@@ -371,6 +391,12 @@ pub enum DoubtKind {
     PressureMismatch,
     /// A stop in the dip of the gas-oil ratio just below the bubble point.
     EarlyEnd,
+    /// A well that may head.
+    Heading,
+    /// A velocity beyond the limit that the user gave.
+    Velocity,
+    /// Asphaltene or wax may come out of the oil.
+    Deposits,
     /// Flow near to sonic in the tubing.
     NearSonic,
     /// Injection held back by a limit.

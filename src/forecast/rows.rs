@@ -6,14 +6,20 @@ use super::dynamics::Dynamics;
 use super::field::{Field, RunError};
 use super::modes::Mode;
 use super::run::{Piece, Trace, work};
+use super::screens::{Look, note_heading, slope_margin};
 use super::{
     DriveIndices, Forecast, InjectedFluid, InjectorResult, InjectorRow, Period, TankRow, Tolerance, WellResult, WellRow,
 };
 use crate::tank::{Cumulatives, TankState};
-use crate::well::{LOOK_FROM, LOOK_TO, Landscape, WellNow, follow_top};
+use crate::tubing::Choke;
+use crate::well::{LOOK_FROM, LOOK_TO, Landscape, WellNow, follow_top_within};
 
 /// Height to which the crossings of rows are resolved, psi: far below what a row shows.
 const ROW_CROSSING_PSI: f64 = 1e-3;
+/// Width to which the top of a row's margin and the minimum of its tubing curve are sought where they stand on a corner, over the rate: the
+/// margin is good to some 0.001 psi.
+const ROW_TOP_WIDTH: f64 = 1e-5;
+const ROW_MINIMUM_WIDTH: f64 = 2e-4;
 /// Rows between two looks at other rates; in between the top of the margin is followed.
 const ROWS_PER_LOOK: usize = 12;
 /// Those other rates, as parts of open flow.
@@ -55,6 +61,7 @@ pub(super) fn forecast(field: &Field, trace: &Trace) -> Result<Forecast, RunErro
                 spread: None,
                 peak_gor_scf_stb: rows.iter().filter_map(|r| r.gor_scf_stb).fold(0.0, f64::max),
                 inflow_text: model.inflow_text(),
+                choke_text: model.choke.as_ref().map(Choke::text),
                 tests: model.tests.clone(),
                 curves: Vec::new(),
                 rows,
@@ -84,6 +91,7 @@ pub(super) fn forecast(field: &Field, trace: &Trace) -> Result<Forecast, RunErro
         events: trace.events.clone(),
         doubts: Vec::new(),
     };
+    note_heading(&mut forecast, &seen.screens);
     forecast.doubts = about_result(field, &forecast, &seen);
     Ok(forecast)
 }
@@ -113,7 +121,8 @@ pub(super) fn piece_at(pieces: &[Piece], t_days: f64) -> Option<&Piece> {
 
 /// A cumulative volume from its scaled state: where nothing flows, the rounding of the interpolant does not make it fall.
 fn grown(scaled: f64, before: f64, scale: f64) -> f64 {
-    const ROUNDING: f64 = 1e-10;
+    // Of the order of the absolute tolerance of the integrator.
+    const ROUNDING: f64 = 4e-9;
     let cum = scaled * scale;
     if cum < before && before - cum < ROUNDING * scale { before } else { cum }
 }
@@ -142,6 +151,8 @@ impl<'a> Rows<'a> {
         for spot in trace.memory.spots.borrow_mut().iter_mut() {
             *spot = super::modes::Spot::default();
         }
+        trace.memory.into_line.borrow_mut().fill(0.0);
+        trace.memory.gives_way.borrow_mut().fill(0.0);
         Self {
             field,
             trace,
@@ -225,11 +236,33 @@ impl<'a> Rows<'a> {
             row.stability_margin = Some(rate / minimum - 1.0);
             row.gor_scf_stb = Some(now.gor_scf_stb);
             row.water_cut = Some(now.water_cut);
-            row.wellhead_pressure_psia = Some(match mode {
-                Mode::Line { .. } => piece.setup.wells[w].spec.line_pressure_psia,
+            row.line_pressure_psia = Some(now.line_psia(rate));
+            let wellhead_psia = match mode {
+                Mode::Line { .. } => now.open_wellhead_psia(rate),
                 _ => now.wellhead_psia(rate, flowing_psia),
-            });
-            self.seen.well(w, self.wells[w].len(), now.near_sonic(rate));
+            };
+            row.wellhead_pressure_psia = Some(wellhead_psia);
+            if let Some(choke) = &piece.setup.wells[w].choke {
+                let closed_in = if mode.is_line() { None } else { now.choke_size_for(rate, wellhead_psia) };
+                let size_in = closed_in.unwrap_or(choke.size_in()).min(choke.size_in());
+                row.choke_size_in = Some(size_in);
+                row.choke_critical = Some(now.through_choke(&choke.with_size(size_in), rate).critical);
+            }
+            row.slope_margin = slope_margin(&now, rate);
+            let look = Look {
+                field: self.field,
+                well: &piece.setup.wells[w],
+                now: &now,
+                row: self.wells[w].len(),
+                rate_stb_d: rate,
+                wellhead_psia,
+                choked: !mode.is_line(),
+                stability_margin: rate / minimum - 1.0,
+                slope_margin: row.slope_margin,
+            };
+            let flow = look.wellhead_flow();
+            row.wellhead_velocity_ft_s = flow.map(|flow| flow.mixture_velocity_ft_s());
+            self.seen.screens[w].look(&look, flow.as_ref());
         }
         row
     }
@@ -244,7 +277,8 @@ impl<'a> Rows<'a> {
         let known = &mut self.margins[w];
         // The margin of a dead well may come back on any hump: it is looked for over all rates.
         if flows && known.rate_stb_d > 0.0 && known.rate_stb_d < 0.99 * open {
-            let (rate, margin) = follow_top(|q| now.height_psi(q), known.rate_stb_d, LOOK_FROM * open, LOOK_TO * open);
+            let (low, high) = (LOOK_FROM * open, LOOK_TO * open);
+            let (rate, margin) = follow_top_within(|q| now.height_psi(q), known.rate_stb_d, low, high, ROW_TOP_WIDTH);
             *known = Margin { rate_stb_d: rate, age: known.age + 1 };
             let elsewhere = |part: f64| now.height_psi(part * open);
             let sunk = margin < 0.0;
@@ -268,7 +302,7 @@ impl<'a> Rows<'a> {
             let best = LOOKS.into_iter().map(|part| part * open).map(|q| (q, height(q)));
             *known = best.fold((low, f64::NEG_INFINITY), |a, b| if b.1 > a.1 { b } else { a }).0;
         }
-        *known = follow_top(height, *known, low, high).0;
+        *known = follow_top_within(height, *known, low, high, ROW_MINIMUM_WIDTH).0;
         *known
     }
 

@@ -1,8 +1,9 @@
 //! Everything a forecast needs, as plain checked data in oilfield units.
 
+use super::OnsetSpec;
 use crate::fluid::FluidSpec;
 use crate::tank::TankSpec;
-use crate::well::WellSpec;
+use crate::well::{LineSpec, WellSpec};
 use jiff::civil::Date;
 
 /// Length of a reporting period.
@@ -73,6 +74,8 @@ pub struct InjectorSpec {
 pub enum Change {
     /// Well of this index takes these settings.
     Well(usize, Box<WellSpec>),
+    /// Shared line of this index takes this table.
+    Line(usize, LineSpec),
     /// Injector of this index takes these settings.
     Injector(usize, InjectorSpec),
     /// The tank takes these relative permeabilities and this water model (its volumes cannot change).
@@ -84,7 +87,7 @@ pub enum Change {
 pub struct ChangeSpec {
     /// Acts from 00:00 of this day.
     pub on: Date,
-    /// The name of the well or injector, or "tank".
+    /// The name of the well, line or injector, or "tank".
     pub name: String,
     /// What it sets, as the user wrote it ("skin = -2.0").
     pub text: String,
@@ -115,10 +118,14 @@ pub struct FieldSpec {
     pub tank: TankSpec,
     /// Producing wells.
     pub wells: Vec<WellSpec>,
+    /// Lines that wells share.
+    pub lines: Vec<LineSpec>,
     /// Injectors.
     pub injectors: Vec<InjectorSpec>,
     /// Dated events, sorted by date.
     pub changes: Vec<ChangeSpec>,
+    /// Onsets of deposits, where given.
+    pub onsets: OnsetSpec,
     /// Numerics.
     pub tolerance: Tolerance,
 }

@@ -4,18 +4,19 @@ use super::calendar::date_at;
 use super::dynamics::Dynamics;
 use super::field::RunError;
 use super::modes::{Mode, REGAIN_PSI, Spot, Watch};
-use super::placement::{hump_at, placement, stable_below};
-use super::run::Run;
+use super::placement::{hump_at, placement, stable_below, why_apart};
+use super::run::{MOST_SWITCHES_AT_ONCE, Run};
 use super::{EventKind, FlowEnd, StopReason};
 use crate::tank::TankState;
 use crate::well::top_near;
 
 /// Height of a hump that has come down to zero, psi: room for rounding.
-const GONE_PSI: f64 = 1e-3;
+pub(super) const GONE_PSI: f64 = 1e-3;
 
 impl Run<'_> {
     /// Ends a well's natural flow.
     pub(super) fn stop(&mut self, w: usize, reason: StopReason) -> Result<(), RunError> {
+        let reason = if reason == StopReason::NoCrossing { self.why_apart(w) } else { reason };
         if self.modes.wells[w].flows() {
             let end = self.flow_end(w, reason)?;
             self.trace.flow_ends[w] = Some(end);
@@ -28,6 +29,14 @@ impl Run<'_> {
         self.modes.wells[w] = Mode::Stopped(reason);
         self.modes.watch_return[w] = reason.may_pass();
         Ok(())
+    }
+
+    fn why_apart(&self, w: usize) -> StopReason {
+        let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
+        match dynamics.tank(self.y.as_slice()) {
+            Ok(tank) => why_apart(&dynamics, w, &dynamics.well_now(w, &tank)),
+            Err(_) => StopReason::NoCrossing,
+        }
     }
 
     fn flow_end(&self, w: usize, reason: StopReason) -> Result<FlowEnd, RunError> {
@@ -53,7 +62,7 @@ impl Run<'_> {
         self.place_above(w, starting, 0.0)
     }
 
-    fn place_above(&mut self, w: usize, starting: bool, least_psi: f64) -> Result<(), RunError> {
+    pub(super) fn place_above(&mut self, w: usize, starting: bool, least_psi: f64) -> Result<(), RunError> {
         let tank = self.tank_now()?;
         let before = self.modes.wells[w];
         let (found, spot) = {
@@ -126,10 +135,12 @@ impl Run<'_> {
             Watch::InjectorShut(i) => self.modes.held_shut[i] = !self.modes.held_shut[i],
             Watch::InjectorLimit(i) => self.set_limited(i, !self.modes.limited[i], &tank),
             Watch::TargetAbove(w) => {
+                self.modes.regain_psi[w].crossed(self.t);
                 self.modes.wells[w] = Mode::Target;
                 self.well_event(w, EventKind::TargetRegained, String::new());
             }
             Watch::FloorAbove(w) => {
+                self.modes.regain_psi[w].crossed(self.t);
                 if self.modes.wells[w] == Mode::Target {
                     self.plateau_lost(w);
                 }
@@ -149,11 +160,17 @@ impl Run<'_> {
             Watch::WaterCut(w) => self.stop(w, StopReason::WaterCutLimit)?,
             Watch::GasOilRatio(w) => self.stop(w, StopReason::GasOilRatioLimit)?,
             Watch::FlowAgain(w) => {
-                if self.setup.wells[w].spec.may_flow_again {
+                let may = self.setup.wells[w].spec.may_flow_again;
+                if may && self.returns[w].allow_another(self.t) {
                     self.place(w, true)?;
+                    if self.modes.wells[w].flows() {
+                        self.returns[w].count(self.t);
+                    }
                 } else {
                     self.modes.watch_return[w] = false;
-                    self.well_event(w, EventKind::CouldFlowAgain, "flow margin back at 1 psi".to_owned());
+                    let note =
+                        if may { "it comes and goes within days: left shut" } else { "flow margin back at 1 psi" };
+                    self.well_event(w, EventKind::CouldFlowAgain, note.to_owned());
                 }
             }
         }
@@ -178,7 +195,8 @@ impl Run<'_> {
                 let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
                 dynamics.well_now(w, tank).survey().margin_psi
             };
-            if margin < least_psi {
+            // Called back to the same instant time and again, the well stands on the edge of a jump: what carries it here is gone beyond.
+            if margin < least_psi || self.switches_here > MOST_SWITCHES_AT_ONCE / 2 {
                 self.modes.wells[w] = before;
                 return self.stop(w, StopReason::NoCrossing);
             }

@@ -35,6 +35,9 @@ impl Shape {
     }
 }
 
+/// Open flow below which a well does not flow at all, STB/d.
+const LEAST_OPEN_FLOW_STB_D: f64 = 1e-3;
+
 /// One inflow curve.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct InflowCurve {
@@ -61,6 +64,8 @@ impl InflowCurve {
             };
         }
         let open_flow_stb_d = j_stb_d_psi * shape.drawdown(reservoir_psia, effective_psia, 0.0);
+        // Rock whose oil has all but ceased to move: a thousandth of a barrel a day is no flow, and its curve no help to any search.
+        let open_flow_stb_d = if open_flow_stb_d < LEAST_OPEN_FLOW_STB_D { 0.0 } else { open_flow_stb_d };
         Self { shape, j_stb_d_psi, reservoir_psia, effective_psia, open_flow_stb_d }
     }
 

@@ -44,6 +44,10 @@ const COLUMNS: &[(&str, Option<Dimension>, Pick)] = {
         ("end_liquid_rate", Some(Q::LiquidRate), |v| v.end_liquid_rate_stb_d),
         ("restart_margin", Some(Q::PressureDifference), |v| v.restart_margin_psi),
         ("stability_margin", None, |v| v.stability_margin),
+        ("slope_margin", None, |v| v.slope_margin),
+        ("wellhead_velocity", Some(Q::Velocity), |v| v.wellhead_velocity_ft_s),
+        ("line_pressure", Some(Q::Pressure), |v| v.line_pressure_psia),
+        ("choke_size", Some(Q::Diameter), |v| v.choke_size_in),
         ("bottomhole_pressure", Some(Q::Pressure), |v| v.bottomhole_pressure_psia),
         ("water_shortfall", Some(Q::LiquidVolume), |v| v.water_shortfall_stb),
         ("gas_shortfall", Some(Q::GasVolume), |v| v.gas_shortfall_scf),
@@ -97,6 +101,7 @@ fn profile_bytes<'a>(rows: impl Iterator<Item = Row<'a>>, units: UnitSystem) -> 
             w.write_field(dimension.map_or_else(|| (*stem).to_owned(), |q| label(units, q).column(stem)))?;
         }
         w.write_field("flowing")?;
+        w.write_field("choke_flow")?;
         w.write_record(None::<&[u8]>)?;
         for row in rows {
             w.write_field(row.start.to_string())?;
@@ -107,6 +112,7 @@ fn profile_bytes<'a>(rows: impl Iterator<Item = Row<'a>>, units: UnitSystem) -> 
                 w.write_field(value.map_or_else(String::new, cell))?;
             }
             w.write_field(row.flowing.map_or("", |f| if f { "yes" } else { "no" }))?;
+            w.write_field(row.values.choke_critical.map_or("", |c| if c { "critical" } else { "subcritical" }))?;
             w.write_record(None::<&[u8]>)?;
         }
         Ok(())

@@ -1,6 +1,6 @@
 //! Checks that every finished forecast must pass, whatever was asked.
 
-use crate::forecast::Forecast;
+use crate::forecast::{EventKind, Forecast};
 
 /// Largest accepted relative residual of the material balance.
 pub const BALANCE_LIMIT: f64 = 1e-8;
@@ -9,7 +9,12 @@ pub const DRIVE_LIMIT: f64 = 1e-6;
 
 /// What failed, in words; empty when everything holds.
 pub fn sanity(forecast: &Forecast) -> Vec<String> {
-    let mut failed = Vec::new();
+    let mut failed: Vec<String> = forecast
+        .events
+        .iter()
+        .filter(|event| event.kind == EventKind::BalanceStopped)
+        .map(|event| format!("the run stopped on {}: {}", event.date, event.note))
+        .collect();
     // Not "residual > limit": a NaN must fail too.
     if forecast.balance_residual.is_nan() || forecast.balance_residual > BALANCE_LIMIT {
         failed.push(format!(

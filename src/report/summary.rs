@@ -141,6 +141,7 @@ fn well(forecast: &Forecast, well: &WellResult, units: &Units) -> Json {
         entry(units.gas, "gas_cum", Some(last.map_or(0.0, |r| r.gas_cum_scf))),
         entry(units.gor, "peak_gor", Some(well.peak_gor_scf_stb)),
         plain("inflow", well.inflow_text.as_str()),
+        plain("choke", well.choke_text.as_deref().map_or(Json::Null, Json::text)),
         plain("tests", Json::List(tests)),
     ])
 }

@@ -30,6 +30,11 @@ pub(super) struct Values {
     pub flow_margin_psi: Option<f64>,
     pub restart_margin_psi: Option<f64>,
     pub stability_margin: Option<f64>,
+    pub slope_margin: Option<f64>,
+    pub wellhead_velocity_ft_s: Option<f64>,
+    pub line_pressure_psia: Option<f64>,
+    pub choke_size_in: Option<f64>,
+    pub choke_critical: Option<bool>,
     pub bottomhole_pressure_psia: Option<f64>,
     pub bubble_point_psia: Option<f64>,
     pub oil_saturation: Option<f64>,
@@ -144,6 +149,11 @@ pub(super) fn row(forecast: &Forecast, index: usize, subject: Subject) -> Option
                 flow_margin_psi: r.flow_margin_psi,
                 restart_margin_psi: r.restart_margin_psi,
                 stability_margin: r.stability_margin,
+                slope_margin: r.slope_margin,
+                wellhead_velocity_ft_s: r.wellhead_velocity_ft_s,
+                line_pressure_psia: r.line_pressure_psia,
+                choke_size_in: r.choke_size_in,
+                choke_critical: r.choke_critical,
                 ..Values::default()
             };
             (well.name.as_str(), Some(r.flowing), values)

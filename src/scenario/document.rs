@@ -196,7 +196,7 @@ impl Document {
         let top = Section::root(&root);
         reader.atmospheric_pressure_psia = read_tank::atmospheric_pressure_psia(&mut reader, &top);
         let units = read_tank::units(&mut reader, &top);
-        let fluid = read_tank::fluid(&mut reader, &top);
+        let (fluid, _) = read_tank::fluid(&mut reader, &top);
         let tank = reader.section(&top, "tank");
         let temperature_degf = reader.quantity(&tank, "temperature");
         // A missing or wrong pressure is no concern of the fluid.

@@ -12,9 +12,9 @@ use jiff::civil::Date;
 pub(super) struct EventRead {
     pub on: Date,
     pub on_at: Location,
-    /// "well", "injector" or "tank".
+    /// "well", "line", "injector" or "tank".
     pub list: &'static str,
-    /// The name of the well or injector, or "tank".
+    /// The name of the well, line or injector, or "tank".
     pub name: String,
     /// Where the name stands.
     pub name_at: Location,
@@ -52,20 +52,21 @@ fn read_one(reader: &mut Reader, section: &Section<'_>) -> Option<EventRead> {
     let on = reader.day(section, "on");
     reader.finish(section);
     let set = read_set(reader, section);
-    let there: Vec<&'static str> = ["well", "injector", "tank"].into_iter().filter(|key| section.has(key)).collect();
+    let there: Vec<&'static str> =
+        ["well", "line", "injector", "tank"].into_iter().filter(|key| section.has(key)).collect();
     let list = match there.as_slice() {
         [one] => *one,
         [] => {
             reader.note(
                 Problem::new(section.at(""), "the event does not say what it changes")
-                    .label("one of well, injector, tank is expected"),
+                    .label("one of well, line, injector, tank is expected"),
             );
             return None;
         }
         [_, second, ..] => {
             reader.note(
                 Problem::new(section.at(second), "an event changes one thing")
-                    .label("only one of well, injector, tank is expected"),
+                    .label("only one of well, line, injector, tank is expected"),
             );
             return None;
         }

@@ -15,6 +15,8 @@ mod guess;
 mod load;
 mod overrides;
 mod problem;
+mod read_line;
+mod read_onsets;
 mod read_tank;
 mod read_wells;
 mod reader;

@@ -8,6 +8,9 @@ use super::schema::{self, Kind};
 use super::tree::{self, Entry, Node, Table, Value};
 use toml::de::DeValue;
 
+/// Lists whose members are reached by name.
+const NAMED: [&str; 3] = ["well", "line", "injector"];
+
 /// One new value and the path at which it goes.
 #[derive(Debug, Clone, PartialEq)]
 pub(super) struct Override {
@@ -98,7 +101,7 @@ fn put(table: &mut Table, schema_path: &str, path: &[String], one: &Override) ->
         if kind.is_some_and(|kind| kind == Kind::Name) {
             return Err(Problem::new(one.path_at.clone(), "a name cannot be overridden"));
         }
-        if kind == Some(Kind::Tables) && matches!(here.as_str(), "well" | "injector") {
+        if kind == Some(Kind::Tables) && NAMED.contains(&here.as_str()) {
             return Err(Problem::new(
                 one.path_at.clone(),
                 format!("`{here}` is a list: which {here}, and which of its keys?"),
@@ -122,7 +125,7 @@ fn put(table: &mut Table, schema_path: &str, path: &[String], one: &Override) ->
             Some(Kind::Table) => {
                 table.set(key, &one.path_at, Node { value: Value::Table(Table::default()), at: one.path_at.clone() });
             }
-            Some(Kind::Tables) if matches!(here.as_str(), "well" | "injector") => {
+            Some(Kind::Tables) if NAMED.contains(&here.as_str()) => {
                 return Err(no_such_member(&here, &rest[0], &[], one));
             }
             Some(_) => return Err(too_deep(&here, one)),
@@ -132,7 +135,7 @@ fn put(table: &mut Table, schema_path: &str, path: &[String], one: &Override) ->
     let Some(entry) = table.get_mut(key) else { return Ok(()) };
     match &mut entry.node.value {
         Value::Table(inner) => put(inner, &here, rest, one),
-        Value::List(items) if matches!(here.as_str(), "well" | "injector") => {
+        Value::List(items) if NAMED.contains(&here.as_str()) => {
             let count = items.len();
             let names: Vec<String> = items.iter().filter_map(|item| item.name().map(str::to_owned)).collect();
             match items.iter_mut().find(|item| item.name() == Some(rest[0].as_str())) {

@@ -1,11 +1,12 @@
 //! Fluid, tank, calendar: from the tree to plain data.
 
 use super::problem::Problem;
+use super::read_onsets;
 use super::reader::Reader;
 use super::schema::LATER_WATER_MODELS;
 use super::section::Section;
 use crate::fluid::FluidSpec;
-use crate::forecast::{Every, PeriodSpec, Tolerance};
+use crate::forecast::{Every, OnsetSpec, PeriodSpec, Tolerance};
 use crate::rock::CoreySpec;
 use crate::tank::{ProducedSpec, TankSpec, WaterModel};
 use crate::units::constants::DEGF_TO_DEGR;
@@ -53,7 +54,8 @@ pub(super) fn tolerance(reader: &mut Reader, root: &Section<'_>) -> Tolerance {
     if word == Some("tight") { Tolerance::Tight } else { Tolerance::Normal }
 }
 
-pub(super) fn fluid(reader: &mut Reader, root: &Section<'_>) -> FluidSpec {
+/// The fluid, and the onsets of deposits that stand beside its properties.
+pub(super) fn fluid(reader: &mut Reader, root: &Section<'_>) -> (FluidSpec, OnsetSpec) {
     let standard = reader.section(root, "standard");
     let standard_pressure_psia = reader.quantity(&standard, "pressure");
     let standard_temperature_degf = reader.quantity(&standard, "temperature");
@@ -85,8 +87,9 @@ pub(super) fn fluid(reader: &mut Reader, root: &Section<'_>) -> FluidSpec {
         // Rounded, so that 60 degF gives the constant 519.67 and not its neighbour.
         standard_temperature_degr: ((standard_temperature_degf + DEGF_TO_DEGR) * 1.0e9).round() / 1.0e9,
     };
+    let onsets = read_onsets::read(reader, &section);
     reader.finish(&section);
-    spec
+    (spec, onsets)
 }
 
 /// The tank; `water_injected`: whether the scenario injects water, so that the water model must be stated.

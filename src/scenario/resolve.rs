@@ -3,6 +3,7 @@
 use super::checks;
 use super::events::{self, EventRead};
 use super::problem::{Location, Problem};
+use super::read_line;
 use super::read_tank;
 use super::read_wells;
 use super::reader::{FileUsed, Reader};
@@ -37,14 +38,16 @@ pub(super) fn resolve(root: &Table, case: Option<&Node>, folder: &Path, text: &s
     }
     let units = read_tank::units(&mut reader, &top);
     let period = read_tank::period(&mut reader, &top);
-    let fluid = read_tank::fluid(&mut reader, &top);
+    let (fluid, onsets) = read_tank::fluid(&mut reader, &top);
     let water_injected = injects_water(root);
     let tank_section = reader.section(&top, "tank");
     let tank = read_tank::tank(&mut reader, &tank_section, water_injected);
+    let lines: Vec<_> =
+        reader.sections(&top, "line").iter().map(|section| read_line::line(&mut reader, section)).collect();
     let wells: Vec<_> = reader
         .sections(&top, "well")
         .iter()
-        .map(|section| read_wells::well(&mut reader, section, tank.pressure_psia))
+        .map(|section| read_wells::well(&mut reader, section, tank.pressure_psia, &lines))
         .collect();
     let injectors: Vec<_> =
         reader.sections(&top, "injector").iter().map(|section| read_wells::injector(&mut reader, section)).collect();
@@ -59,6 +62,10 @@ pub(super) fn resolve(root: &Table, case: Option<&Node>, folder: &Path, text: &s
     for (i, well) in wells.iter().enumerate() {
         faults.extend(checks::well(&format!("well[{i}]"), well, period.as_ref(), &tank, atmospheric_pressure_psia));
     }
+    for (i, line) in lines.iter().enumerate() {
+        let absolute = |fault: Fault| fault.under(&format!("line[{i}]"));
+        faults.extend(line.check().into_iter().map(absolute));
+    }
     for (i, injector) in injectors.iter().enumerate() {
         faults.extend(checks::injector(
             &format!("injector[{i}]"),
@@ -69,6 +76,7 @@ pub(super) fn resolve(root: &Table, case: Option<&Node>, folder: &Path, text: &s
     }
     let named = |list: &str, i: usize, name: &str| (format!("{list}[{i}]"), name.to_owned());
     let mut names: Vec<_> = wells.iter().enumerate().map(|(i, well)| named("well", i, &well.name)).collect();
+    names.extend(lines.iter().enumerate().map(|(i, line)| named("line", i, &line.name)));
     names.extend(injectors.iter().enumerate().map(|(i, injector)| named("injector", i, &injector.name)));
     faults.extend(checks::duplicate_names(&names));
     let located = faults.iter().map(|fault| problem_of(fault, root)).collect::<Vec<_>>();
@@ -83,7 +91,7 @@ pub(super) fn resolve(root: &Table, case: Option<&Node>, folder: &Path, text: &s
     let stand_in =
         PeriodSpec { start: Date::constant(1900, 1, 1), end: Date::constant(2301, 1, 1), every: Every::Month };
     let period = period.unwrap_or(stand_in);
-    let mut field = FieldSpec { period, fluid, tank, wells, injectors, changes: Vec::new(), tolerance };
+    let mut field = FieldSpec { period, fluid, tank, wells, lines, injectors, changes: Vec::new(), onsets, tolerance };
     apply_events(events, root, &mut reader, &mut field, &mut changed, text);
     normalise(&mut field);
     Resolved { units, atmospheric_pressure_psia, field, files: reader.files, changed, problems: reader.problems }
@@ -109,7 +117,7 @@ fn normalise(field: &mut FieldSpec) {
         match &mut change.change {
             Change::Well(_, well) => well.start = well.start.filter(|start| *start > first),
             Change::Injector(_, injector) => injector.start = injector.start.filter(|start| *start > first),
-            Change::Tank(_) => {}
+            Change::Line(..) | Change::Tank(_) => {}
         }
     }
 }
@@ -144,9 +152,14 @@ fn apply_events(
         let (change, faults) = match event.list {
             "well" => {
                 let Some(node) = current.tables("well").get(index) else { continue };
-                let spec = read_wells::well(&mut again, &Section::of(node, "well"), field.tank.pressure_psia);
+                let spec =
+                    read_wells::well(&mut again, &Section::of(node, "well"), field.tank.pressure_psia, &field.lines);
                 let faults = checks::well(&path, &spec, Some(&field.period), &field.tank, atmospheric_pressure_psia);
                 (Change::Well(index, Box::new(spec)), faults)
+            }
+            "line" => {
+                let Some(node) = current.tables("line").get(index) else { continue };
+                (Change::Line(index, read_line::line(&mut again, &Section::of(node, "line"))), Vec::new())
             }
             "injector" => {
                 let Some(node) = current.tables("injector").get(index) else { continue };

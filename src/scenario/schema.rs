@@ -39,8 +39,9 @@ impl Key {
             Kind::Injected(..) => "liquid rate (water) or gas rate (gas)".to_owned(),
             Kind::FlowCoefficient => "rate per pressure^2n".to_owned(),
             Kind::Survey => "list of pairs, or a path".to_owned(),
-            Kind::Temperatures => "list of pairs".to_owned(),
+            Kind::Temperatures | Kind::LinePressures => "list of pairs".to_owned(),
             Kind::Stations => "list of pairs or triples, or a path".to_owned(),
+            Kind::Onset => "pressure, or list of pairs".to_owned(),
             Kind::Table => "table".to_owned(),
             Kind::Tables => "list of tables".to_owned(),
             Kind::Overrides => "paths with values".to_owned(),
@@ -94,6 +95,10 @@ pub enum Kind {
     Temperatures,
     /// Measured depth and pressure, perhaps temperature, or the path of a file.
     Stations,
+    /// A pressure, or pairs of temperature and pressure.
+    Onset,
+    /// Pairs of a total rate and a pressure.
+    LinePressures,
     /// A table of further keys.
     Table,
     /// A list of tables of further keys.
@@ -142,7 +147,6 @@ pub const LATER: &[(&str, &str)] = &[
     ("odds", "the uncertainty study"),
     ("fluid.table", "a laboratory table in place of correlations"),
     ("tank.aquifer", "an aquifer"),
-    ("well.choke", "a wellhead choke"),
 ];
 
 /// Water models that come with a later version.
@@ -173,8 +177,8 @@ const END: Limits = above(0.0, 1.0);
 
 use Dimension as D;
 use Kind::{
-    Choice, Day, Flag, FlowCoefficient, Fraction, Injected, Name, Number, Overrides, Quantity, Stations, Survey,
-    Tables, Temperatures, Text,
+    Choice, Day, Flag, FlowCoefficient, Fraction, Injected, LinePressures, Name, Number, Onset, Overrides, Quantity,
+    Stations, Survey, Tables, Temperatures, Text,
 };
 use Need::{Default, Optional, Required};
 
@@ -208,6 +212,9 @@ pub const KEYS: &[Key] = &[
     key("fluid.co2", Fraction(FRACTION), Default("0.0"), "Mole fraction of carbon dioxide in the gas"),
     key("fluid.separator_pressure", Quantity(D::Pressure, above(0.0, 5_000.0)), Optional, "With separator_temperature: corrects the gas gravity in the Vasquez-Beggs correlations"),
     key("fluid.separator_temperature", Quantity(D::Temperature, from(0.0, 400.0)), Optional, "Goes with separator_pressure"),
+    key("fluid.asphaltene_onset", Onset, Optional, "Upper onset pressure of asphaltene, at reservoir temperature or as pairs of temperature and pressure; below it asphaltene may come out. A screen: it changes no flow"),
+    key("fluid.asphaltene_lower_onset", Onset, Optional, "Lower onset pressure, below which asphaltene is dissolved again; goes with asphaltene_onset"),
+    key("fluid.wax_appearance", Quantity(D::Temperature, from(-40.0, 300.0)), Optional, "Wax appearance temperature: below it wax may come out. A screen: it changes no flow"),
 
     key("tank", Kind::Table, Required, "The reservoir compartment"),
     key("tank.oil_in_place", Quantity(D::LiquidVolume, LIQUID), Required, "Oil initially in place"),
@@ -241,7 +248,7 @@ pub const KEYS: &[Key] = &[
     key("tank.relative_permeability.water_exponent", Number(EXPONENT), Default("3.0"), "Exponent of the water curve"),
 
     key("injector", Tables, Optional, "Injectors"),
-    key("injector.name", Name, Required, "Unique among wells and injectors"),
+    key("injector.name", Name, Required, "Unique among lines, wells and injectors"),
     key("injector.fluid", Choice(&["water", "gas"]), Required, "What is injected"),
     key("injector.start", Day, Optional, "First day; otherwise the start of the period"),
     key("injector.end", Day, Optional, "Day from which it is shut; otherwise never"),
@@ -252,9 +259,14 @@ pub const KEYS: &[Key] = &[
     key("injector.bottomhole_limit", Quantity(D::Pressure, PRESSURE), Optional, "Highest bottom-hole pressure, from the fracture figure; acts through injectivity"),
     key("injector.injectivity", Injected(D::ProductivityIndex, D::GasInjectivity, above(0.0, 1.0e8)), Optional, "Surface rate per pressure above the tank's"),
 
+    key("line", Tables, Optional, "Lines whose pressure rises with what all their wells make together"),
+    key("line.name", Name, Required, "Unique among lines, wells and injectors"),
+    key("line.pressure", LinePressures, Required, "Pairs of total rate (liquid, or gas) and pressure where the wells join it"),
+
     key("well", Tables, Required, "Producing wells"),
-    key("well.name", Name, Required, "Unique among wells and injectors"),
-    key("well.line_pressure", Quantity(D::Pressure, PRESSURE), Required, "Pressure of the line into which the well flows"),
+    key("well.name", Name, Required, "Unique among lines, wells and injectors"),
+    key("well.line_pressure", Quantity(D::Pressure, PRESSURE), Optional, "Pressure of the line into which the well flows; this or line"),
+    key("well.line", Text, Optional, "Name of the shared line into which it flows; this or line_pressure"),
     key("well.target_rate", Quantity(D::LiquidRate, RATE), Optional, "Producing-day liquid rate to which it is choked back while it can; otherwise wide open"),
     key("well.uptime", Fraction(above(0.0, 1.0)), Default("1.0"), "Fraction of the time on stream"),
     key("well.perforations", Quantity(D::Length, DEPTH), Optional, "Measured depth; otherwise the end of the survey"),
@@ -271,6 +283,9 @@ pub const KEYS: &[Key] = &[
     key("well.minimum_rate", Quantity(D::LiquidRate, RATE), Optional, "Producing-day liquid rate below which it is given up"),
     key("well.maximum_water_cut", Fraction(above(0.0, 1.0)), Optional, "Water cut above which it is given up"),
     key("well.maximum_gor", Quantity(D::GasOilRatio, GOR), Optional, "Gas-oil ratio above which it is given up"),
+    key("well.heading_margin", Number(from(0.0, 10.0)), Default("0.1"), "Margin of the rate over that at the minimum of the tubing curve below which the well is said to head"),
+    key("well.maximum_velocity", Quantity(D::Velocity, above(0.0, 1_000.0)), Optional, "Your own limit on the velocity at the wellhead; months beyond it are told, nothing is changed and nothing certified"),
+    key("well.erosional_constant", Number(above(0.0, 1_000.0)), Optional, "Your own C of the limit C/sqrt(mixture density) on the velocity at the wellhead, in ft/s and lb/ft3; as maximum_velocity"),
 
     key("well.inflow", Kind::Table, Required, "Inflow"),
     key("well.inflow.method", Choice(&["straight", "vogel", "fetkovich"]), Default("\"fetkovich\""), "Shape of the curve below the bubble point"),
@@ -305,6 +320,19 @@ pub const KEYS: &[Key] = &[
     key("well.tubing.wellhead_temperature", Quantity(D::Temperature, from(-40.0, 500.0)), Optional, "Flowing temperature at the wellhead; this or temperature"),
     key("well.tubing.temperature", Temperatures, Optional, "Pairs of measured depth and flowing temperature from the wellhead down"),
 
+    key("well.choke", Kind::Table, Optional, "Choke at the wellhead; with a target rate it is closed further while the target holds"),
+    key("well.choke.size", Quantity(D::Diameter, above(0.0, 10.0)), Required, "Opening, \"24/64 in\""),
+    key("well.choke.method", Choice(&["sachdeva", "gilbert", "ros", "baxendell", "achong", "pilehvari"]), Default("\"sachdeva\""), "Relation; all but sachdeva hold in critical flow alone"),
+    key("well.choke.discharge_coefficient", Number(above(0.0, 5.0)), Optional, "Rate over that of the relation; otherwise from test, or 0.85 with sachdeva and 1 with the others"),
+    key("well.choke.test", Tables, Optional, "Measured points that give the discharge coefficient; excludes it"),
+    key("well.choke.test.on", Day, Optional, "Date of the test"),
+    key("well.choke.test.size", Quantity(D::Diameter, above(0.0, 10.0)), Optional, "Opening at the time; otherwise the choke's"),
+    key("well.choke.test.wellhead", Quantity(D::Pressure, PRESSURE), Required, "Pressure upstream of the choke"),
+    key("well.choke.test.line", Quantity(D::Pressure, PRESSURE), Required, "Pressure downstream of it"),
+    key("well.choke.test.rate", Quantity(D::LiquidRate, RATE), Required, "Producing-day liquid rate"),
+    key("well.choke.test.gor", Quantity(D::GasOilRatio, GOR), Required, "Producing gas-oil ratio"),
+    key("well.choke.test.water_cut", Fraction(Limits { low: 0.0, low_allowed: true, high: 0.999 }), Default("0.0"), "Water fraction of the liquid"),
+
     key("well.flowing_survey", Tables, Optional, "Flowing pressures measured along depth: what the tubing models are held against"),
     key("well.flowing_survey.on", Day, Required, "Day of the survey"),
     key("well.flowing_survey.rate", Quantity(D::LiquidRate, RATE), Required, "Producing-day liquid rate"),
@@ -317,7 +345,8 @@ pub const KEYS: &[Key] = &[
 
     key("event", Tables, Optional, "Dated changes; a case may hold its own"),
     key("event.on", Day, Required, "Acts from 00:00 of this day"),
-    key("event.well", Text, Optional, "Name of the well that changes; exactly one of well, injector, tank"),
+    key("event.well", Text, Optional, "Name of the well that changes; exactly one of well, line, injector, tank"),
+    key("event.line", Text, Optional, "Name of the shared line that changes"),
     key("event.injector", Text, Optional, "Name of the injector that changes"),
     key("event.tank", Flag, Optional, "true: the tank changes"),
     key("event.set", Overrides, Required, "New values; keys are relative to what is named"),

@@ -107,7 +107,7 @@ fn applicable(field: &Field) -> Vec<Vec<TubingMethod>> {
             let stream = now.stream(rate);
             TubingMethod::ALL
                 .into_iter()
-                .filter(|m| well.tubing.applicable(*m, field.fluid(), &stream, well.spec.line_pressure_psia))
+                .filter(|m| well.tubing.applicable(*m, field.fluid(), &stream, now.open_wellhead_psia(rate)))
                 .collect()
         })
         .collect()

@@ -7,6 +7,7 @@ pub mod ansari;
 pub mod ansari_annular;
 pub mod ansari_slug;
 pub mod beggs_brill;
+pub mod choke;
 pub mod drift_flux;
 pub mod friction;
 pub mod gray;
@@ -26,6 +27,7 @@ mod range;
 mod spec;
 mod traverse;
 
+pub use choke::{Choke, ChokeCheck, ChokeFlow, ChokeMethod, ChokeSpec, ChokeTest, Discharge};
 pub use range::{Limited, OutsideRange, ValidRange};
 pub use spec::{TubingMethod, TubingSection, TubingSpec};
 pub use traverse::{Stream, Traverse, TraversePoint, Tubing};

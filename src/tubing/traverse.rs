@@ -7,7 +7,7 @@ use super::gray::Gray;
 use super::hagedorn_brown::HagedornBrown;
 use super::hasan_kabir::HasanKabir;
 use super::march::{March, Progress};
-use super::model::{Hydraulics, KINETIC_LIMIT};
+use super::model::{Flow, Hydraulics, KINETIC_LIMIT};
 use super::mukherjee_brill::MukherjeeBrill;
 use super::no_slip::NoSlip;
 use super::path::{Path, Stretch};
@@ -189,6 +189,14 @@ impl Tubing {
         let stretches = &self.path.stretches;
         let stretch = stretches.iter().find(|s| md_ft <= s.bottom_md_ft).or(stretches.last());
         stretch.map_or((f64::NAN, f64::NAN), |s| (s.tvd_ft(md_ft), s.temperature_degf(md_ft)))
+    }
+
+    /// The flow as it enters the wellhead.
+    pub fn flow_at_wellhead(&self, fluid: &BlackOil, stream: &Stream, wellhead_psia: f64) -> Option<Flow> {
+        let top = self.path.stretches.first()?;
+        Some(
+            with_model!(self.method, model => self.march(model, fluid, stream).describe(top, 0.0, held(wellhead_psia)).0),
+        )
     }
 
     /// Steps that [`flowing_pressure`](Self::flowing_pressure) takes: a measure of its work.

@@ -317,6 +317,7 @@ fn build() -> Vec<Unit> {
         linear(Diameter, "cm", 1.0e-2 / IN_M, &[]),
         linear(Diameter, "m", 1.0 / IN_M, &["meter", "metre"]),
         linear(Diameter, "ft", 12.0, &["feet", "foot"]),
+        linear(Diameter, "/64 in", 1.0 / 64.0, &["/64", "/64\"", "/64ths", "/64inch"]),
         linear(Diameter, "um", 1.0e-6 / IN_M, &["micron", "microns", "\u{b5}m", "\u{3bc}m"]),
 
         shifted("degF", 1.0, 0.0, &["f", "fahrenheit"]),

@@ -7,7 +7,7 @@
 use super::{Dimension, UnitSystem};
 
 /// Units in which the physics writes, and what they measure.
-const SPOKEN: [(&str, Dimension); 9] = [
+const SPOKEN: [(&str, Dimension); 12] = [
     ("psia", Dimension::Pressure),
     ("psi", Dimension::PressureDifference),
     ("STB/d", Dimension::LiquidRate),
@@ -17,6 +17,10 @@ const SPOKEN: [(&str, Dimension); 9] = [
     ("scf/d", Dimension::GasRate),
     ("scf", Dimension::GasVolume),
     ("ft", Dimension::Length),
+    ("ft/s", Dimension::Velocity),
+    // Not "in", which is a word too.
+    ("inch", Dimension::Diameter),
+    ("degF", Dimension::Temperature),
 ];
 /// Fetkovich's C, whose conversion depends on the exponent that the same sentence states as "n = 0.85".
 const FLOW_COEFFICIENT: &str = "STB/d/psi^2n";
@@ -94,6 +98,10 @@ mod tests {
         assert_eq!(
             metric.tell("C = 1.0000e-3 STB/d/psi^2n (liquid), n = 1.000 at 2650 psia"),
             "C = 3.3444e-2 Sm³/d/bar^2n (liquid), n = 1.000 at 182.7 bara"
+        );
+        assert_eq!(
+            metric.tell("up to 30.0 ft/s; down to 92 degF, 2.441 inch (3 in March)"),
+            "up to 9.14 m/s; down to 33 °C, 62.00 mm (3 in March)"
         );
         assert_eq!(UnitSystem::Field.tell("280 STB/d"), "280 STB/d");
         assert_eq!(metric.tell("nothing to tell: 12 apples"), "nothing to tell: 12 apples");

@@ -15,7 +15,8 @@ pub const LOOK_FROM: f64 = 1e-4;
 pub const LOOK_TO: f64 = 0.999;
 /// Relative width in rate to which crossings are refined.
 const RATE_WIDTH: f64 = 1e-10;
-/// Relative width in rate to which tops are refined: even on a corner of 1 psi per STB/d it costs well below 0.01 psi.
+/// Width to which tops are refined, relative to the rate at which they stand (at a small part of open flow corners are steep): even
+/// where the curves part by their whole height within a few per cent of the rate it costs well below 0.01 psi.
 const TOP_WIDTH: f64 = 1e-6;
 
 /// A place where `h` is zero.
@@ -78,7 +79,7 @@ fn look(h: &mut impl FnMut(f64) -> f64, open_flow_stb_d: f64) -> Look {
         let reach = (here.1 - left.1).max(here.1 - right.1);
         let (mut q, mut top) = here;
         if here.1 + reach >= best || here.1 + reach >= 0.0 {
-            (q, top) = maximise(&mut *h, left.0, here.0, right.0, TOP_WIDTH * open_flow_stb_d);
+            (q, top) = maximise(&mut *h, left.0, here.0, right.0, TOP_WIDTH * here.0);
             if here.1 > top {
                 (q, top) = here;
             }
@@ -153,7 +154,12 @@ pub fn crossings(mut h: impl FnMut(f64) -> f64, open_flow_stb_d: f64) -> Vec<Cro
 /// Follows the top of a hump from where it was found last: rate and height.
 ///
 /// Local: it stays between `low` and `high`, and widens its bracket until the top is inside.
-pub fn top_near(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: f64) -> (f64, f64) {
+pub fn top_near(h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: f64) -> (f64, f64) {
+    top_within(h, rate_stb_d, low, high, TOP_WIDTH)
+}
+
+/// [`top_near`] to a width relative to the rate.
+fn top_within(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: f64, width_share: f64) -> (f64, f64) {
     // Bounds that have closed leave one rate.
     let high = high.max(low);
     let mut middle = rate_stb_d.max(low).min(high);
@@ -167,7 +173,7 @@ pub fn top_near(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: 
         } else if ha > hm && a > low {
             (middle, hm) = (a, ha);
         } else {
-            return maximise(h, a, middle, b, TOP_WIDTH * high);
+            return maximise(h, a, middle, b, width_share * middle.max(1e-6 * high));
         }
         width *= 2.0;
     }
@@ -176,7 +182,18 @@ pub fn top_near(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: 
 
 /// Follows the top of a smooth hump that moved little: the vertex of a parabola through three heights, accepted when the height
 /// there is the one foretold; otherwise [`top_near`]. Rate and height.
-pub fn follow_top(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: f64) -> (f64, f64) {
+pub fn follow_top(h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high: f64) -> (f64, f64) {
+    follow_top_within(h, rate_stb_d, low, high, TOP_WIDTH)
+}
+
+/// [`follow_top`] where the top is needed only to a width relative to the rate.
+pub fn follow_top_within(
+    mut h: impl FnMut(f64) -> f64,
+    rate_stb_d: f64,
+    low: f64,
+    high: f64,
+    width_share: f64,
+) -> (f64, f64) {
     const FORETOLD_PSI: f64 = 0.05;
     let step = 0.015 * rate_stb_d;
     let (a, b, c) = (rate_stb_d - step, rate_stb_d, rate_stb_d + step);
@@ -192,7 +209,7 @@ pub fn follow_top(mut h: impl FnMut(f64) -> f64, rate_stb_d: f64, low: f64, high
             }
         }
     }
-    top_near(h, rate_stb_d, low, high)
+    top_within(h, rate_stb_d, low, high, width_share)
 }
 
 /// Follows a stable crossing from where it was found last, with the slope of `h` found last: rate and slope.

@@ -1,11 +1,14 @@
 //! Where inflow and tubing meet: stable rate, flow margin.
 
+mod line;
 mod meeting;
 mod model;
 mod spec;
 
+pub use line::{Line, LineRate, LineSpec};
 pub use meeting::{
-    Crossing, LOOK_FROM, LOOK_TO, Landscape, crossings, follow_top, right_crossing, survey, survey_above, top_near,
+    Crossing, LOOK_FROM, LOOK_TO, Landscape, crossings, follow_top, follow_top_within, right_crossing, survey,
+    survey_above, top_near,
 };
 pub use model::{Gauge, Surroundings, TestCheck, WellModel, WellNow, drainage_term, oil_gradient_psi_ft};
-pub use spec::{FlowingSurvey, SurveyPoint, WellSpec};
+pub use spec::{FlowingSurvey, ScreenSpec, SurveyPoint, WellSpec};

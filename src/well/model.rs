@@ -1,7 +1,7 @@
 //! A well, prepared: its tubing, its inflow fitted to the tests, and how both look at one instant.
 
-use super::WellSpec;
 use super::meeting::{Landscape, survey_above};
+use super::{Line, WellSpec};
 use crate::fault::Fault;
 use crate::fluid::BlackOil;
 use crate::inflow::{
@@ -9,7 +9,7 @@ use crate::inflow::{
     Shape, TestPoint, fit_saturated_below_datum, fit_tests,
 };
 use crate::tank::{Tank, TankState};
-use crate::tubing::{Stream, Traverse, TraversePoint, Tubing, TubingMethod};
+use crate::tubing::{Choke, ChokeFlow, Stream, Traverse, TraversePoint, Tubing, TubingMethod};
 use jiff::civil::Date;
 use std::cell::Cell;
 
@@ -37,6 +37,8 @@ pub struct WellModel {
     pub spec: WellSpec,
     /// Its tubing.
     pub tubing: Tubing,
+    /// The choke at its wellhead.
+    pub choke: Option<Choke>,
     /// Its inflow.
     pub inflow: Inflow,
     /// How the coefficient was fitted, when it was.
@@ -82,8 +84,16 @@ impl WellModel {
     pub fn new(spec: &WellSpec, around: &Surroundings) -> Result<Self, Vec<Fault>> {
         let (tubing, depth_below_datum_ft) = completion(spec, around)?;
         let (inflow, fit, points) = fit_inflow(spec, &tubing, depth_below_datum_ft, around)?;
-        let mut well =
-            Self { spec: spec.clone(), tubing, inflow, fit, tests: Vec::new(), skin_factor: 1.0, depth_below_datum_ft };
+        let mut well = Self {
+            spec: spec.clone(),
+            choke: choke(spec, around),
+            tubing,
+            inflow,
+            fit,
+            tests: Vec::new(),
+            skin_factor: 1.0,
+            depth_below_datum_ft,
+        };
         well.tests = well.check_tests(&points, around);
         well.skin_factor = skin_factor(spec);
         Ok(well)
@@ -99,7 +109,15 @@ impl WellModel {
             return Self::new(spec, around);
         }
         let (tubing, depth_below_datum_ft) = completion(spec, around)?;
-        Ok(Self { spec: spec.clone(), tubing, depth_below_datum_ft, skin_factor: skin_factor(spec), ..self.clone() })
+        let choke = choke(spec, around);
+        Ok(Self {
+            spec: spec.clone(),
+            tubing,
+            choke,
+            depth_below_datum_ft,
+            skin_factor: skin_factor(spec),
+            ..self.clone()
+        })
     }
 
     fn check_tests(&self, points: &[TestPoint], around: &Surroundings) -> Vec<TestCheck> {
@@ -168,7 +186,8 @@ impl WellModel {
             water_cut,
         };
         let curve = self.inflow.curve(&conditions, self.skin_factor);
-        WellNow { well: self, fluid, curve, gor_scf_stb: gor, water_cut, gauge }
+        let line = Line::Fixed(self.spec.line_pressure_psia);
+        WellNow { well: self, fluid, curve, gor_scf_stb: gor, water_cut, line, gauge }
     }
 }
 
@@ -180,6 +199,10 @@ fn completion(spec: &WellSpec, around: &Surroundings) -> Result<(Tubing, f64), V
         })?;
     let depth_below_datum_ft = around.datum_tvd_ft.map_or(0.0, |datum| tubing.perforations_tvd_ft() - datum);
     Ok((tubing, depth_below_datum_ft))
+}
+
+fn choke(spec: &WellSpec, around: &Surroundings) -> Option<Choke> {
+    spec.choke.as_ref().map(|choke| Choke::new(choke, around.fluid, |_| spec.tubing.wellhead_temperature_degf))
 }
 
 /// `(r + s_test)/(r + s)`: pseudo-steady radial flow with and without the present skin.
@@ -327,6 +350,7 @@ pub struct WellNow<'a> {
     pub gor_scf_stb: f64,
     /// Its water cut.
     pub water_cut: f64,
+    line: Line<'a>,
     gauge: &'a Gauge,
 }
 
@@ -336,14 +360,63 @@ impl<'a> WellNow<'a> {
         Self { well, ..self }
     }
 
+    /// The same well on a line of another pressure.
+    pub fn against(self, line: Line<'a>) -> Self {
+        Self { line, ..self }
+    }
+
+    /// The line it faces.
+    pub fn line(&self) -> Line<'a> {
+        self.line
+    }
+
+    /// Pressure of the line while the well makes a rate, psia.
+    pub fn line_psia(&self, liquid_rate_stb_d: f64) -> f64 {
+        self.line.pressure_psia(&self.stream(liquid_rate_stb_d))
+    }
+
+    /// What a choke does to a rate that flows through it into the line.
+    pub fn through_choke(&self, choke: &Choke, liquid_rate_stb_d: f64) -> ChokeFlow {
+        let stream = self.stream(liquid_rate_stb_d);
+        choke.flow(self.fluid, &stream, self.line.pressure_psia(&stream), self.wellhead_temperature_degf(&stream))
+    }
+
+    /// The opening that holds the choke's stream back to a wellhead pressure, in.
+    pub fn choke_size_for(&self, liquid_rate_stb_d: f64, wellhead_psia: f64) -> Option<f64> {
+        let stream = self.stream(liquid_rate_stb_d);
+        let (line, temperature) = (self.line.pressure_psia(&stream), self.wellhead_temperature_degf(&stream));
+        self.well.choke.as_ref()?.size_for(self.fluid, &stream, wellhead_psia, line, temperature)
+    }
+
+    fn wellhead_temperature_degf(&self, _stream: &Stream) -> f64 {
+        self.well.spec.tubing.wellhead_temperature_degf
+    }
+
+    /// Lowest pressure at the wellhead that passes a stream into the line: the line's, or what the choke asks for, psia.
+    fn back_pressure_psia(&self, stream: &Stream) -> f64 {
+        let line_psia = self.line.pressure_psia(stream);
+        match &self.well.choke {
+            None => line_psia,
+            Some(choke) => {
+                choke.flow(self.fluid, stream, line_psia, self.wellhead_temperature_degf(stream)).upstream_psia
+            }
+        }
+    }
+
+    /// The same at a rate, psia.
+    pub fn open_wellhead_psia(&self, liquid_rate_stb_d: f64) -> f64 {
+        self.back_pressure_psia(&self.stream(liquid_rate_stb_d))
+    }
+
     /// The tubing's method.
     pub fn method(&self) -> TubingMethod {
         self.well.tubing.method()
     }
 
-    /// The traverse at line pressure.
+    /// The traverse at line pressure (through the choke, where there is one).
     pub fn profile(&self, liquid_rate_stb_d: f64) -> Vec<TraversePoint> {
-        self.well.tubing.profile(self.fluid, &self.stream(liquid_rate_stb_d), self.well.spec.line_pressure_psia)
+        let stream = self.stream(liquid_rate_stb_d);
+        self.well.tubing.profile(self.fluid, &stream, self.back_pressure_psia(&stream))
     }
 
     /// The stream at a liquid rate.
@@ -351,10 +424,10 @@ impl<'a> WellNow<'a> {
         Stream { liquid_rate_stb_d, water_cut: self.water_cut, gor_scf_stb: self.gor_scf_stb }
     }
 
-    /// The march down from line pressure.
+    /// The march down from line pressure (through the choke, where there is one).
     fn traverse(&self, stream: &Stream) -> Traverse {
         self.gauge.count();
-        self.well.tubing.flowing_pressure(self.fluid, stream, self.well.spec.line_pressure_psia)
+        self.well.tubing.flowing_pressure(self.fluid, stream, self.back_pressure_psia(stream))
     }
 
     /// Flowing pressure that the tubing asks for at line pressure, psia.
@@ -362,9 +435,10 @@ impl<'a> WellNow<'a> {
         self.traverse(&self.stream(liquid_rate_stb_d)).pressure_psia
     }
 
-    /// Whether the flow at this rate and line pressure comes near to sonic speed somewhere in the tubing.
-    pub fn near_sonic(&self, liquid_rate_stb_d: f64) -> bool {
-        self.traverse(&self.stream(liquid_rate_stb_d)).near_sonic
+    /// Whether the flow at this rate and wellhead pressure comes near to sonic speed somewhere in the tubing.
+    pub fn near_sonic(&self, liquid_rate_stb_d: f64, wellhead_psia: f64) -> bool {
+        self.gauge.count();
+        self.well.tubing.flowing_pressure(self.fluid, &self.stream(liquid_rate_stb_d), wellhead_psia).near_sonic
     }
 
     /// Pressure at the perforations under a full column of the well's own dead oil and water at line pressure, psia: what a shut-in
@@ -411,6 +485,6 @@ impl<'a> WellNow<'a> {
         self.well
             .tubing
             .wellhead_pressure(self.fluid, &self.stream(liquid_rate_stb_d), flowing_psia)
-            .unwrap_or(self.well.spec.line_pressure_psia)
+            .unwrap_or_else(|| self.open_wellhead_psia(liquid_rate_stb_d))
     }
 }

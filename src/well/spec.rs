@@ -1,7 +1,7 @@
 //! One producing well as the user states it.
 
 use crate::inflow::InflowSpec;
-use crate::tubing::TubingSpec;
+use crate::tubing::{ChokeSpec, TubingSpec};
 use jiff::civil::Date;
 
 /// One producing well as the user states it, in oilfield units.
@@ -9,8 +9,12 @@ use jiff::civil::Date;
 pub struct WellSpec {
     /// Name, unique in the scenario.
     pub name: String,
-    /// Pressure of the line into which the well flows, psia.
+    /// Pressure of the line into which the well flows, psia; of a shared line, its lowest.
     pub line_pressure_psia: f64,
+    /// Name of the shared line into which it flows, whose pressure depends on what all its wells make.
+    pub shared_line: Option<String>,
+    /// Choke between wellhead and line; `None`: wide open, or adjusted to the target without a limit of its own.
+    pub choke: Option<ChokeSpec>,
     /// Producing-day liquid rate to which the well is choked back, STB/d.
     pub target_rate_stb_d: Option<f64>,
     /// Fraction of the time on stream.
@@ -41,6 +45,8 @@ pub struct WellSpec {
     pub maximum_water_cut: Option<f64>,
     /// Gas-oil ratio above which the well is given up, scf/STB.
     pub maximum_gor_scf_stb: Option<f64>,
+    /// What the flow is held against at period ends; it ends nothing.
+    pub screens: ScreenSpec,
     /// Inflow.
     pub inflow: InflowSpec,
     /// Tubing.
@@ -79,4 +85,22 @@ pub struct SurveyPoint {
     pub pressure_psia: f64,
     /// Temperature, degF, when measured.
     pub temperature_degf: Option<f64>,
+}
+
+/// What a well's flow is held against at period ends. A flow beyond it is told as a doubt; nothing is changed or ended.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct ScreenSpec {
+    /// Margin of the rate over that at the minimum of the tubing curve below which the well may head.
+    pub heading_margin: f64,
+    /// The user's own limit on the mixture velocity at the wellhead, ft/s.
+    pub maximum_velocity_ft_s: Option<f64>,
+    /// The user's own C of the velocity limit C/sqrt(density), ft/s and lb/ft3.
+    pub erosional_constant: Option<f64>,
+}
+
+impl Default for ScreenSpec {
+    /// A tenth above the minimum of the tubing curve; no limit on the velocity.
+    fn default() -> Self {
+        Self { heading_margin: 0.1, maximum_velocity_ft_s: None, erosional_constant: None }
+    }
 }

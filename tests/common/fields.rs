@@ -3,12 +3,14 @@
 
 use jiff::civil::date;
 use wane::fluid::FluidSpec;
-use wane::forecast::{Every, FieldSpec, InjectedFluid, InjectionControl, InjectorSpec, PeriodSpec, Tolerance};
+use wane::forecast::{
+    Every, FieldSpec, InjectedFluid, InjectionControl, InjectorSpec, OnsetSpec, PeriodSpec, Tolerance,
+};
 use wane::inflow::{Coefficient, FutureRule, InflowMethod, InflowSpec, RateBasis};
 use wane::rock::CoreySpec;
 use wane::tank::{TankSpec, WaterModel};
 use wane::tubing::{TubingMethod, TubingSection, TubingSpec};
-use wane::well::WellSpec;
+use wane::well::{ScreenSpec, WellSpec};
 
 /// One well that drains an undersaturated tank.
 pub fn one_well() -> FieldSpec {
@@ -42,8 +44,10 @@ pub fn one_well() -> FieldSpec {
             },
         },
         wells: vec![well("OP-1")],
+        lines: Vec::new(),
         injectors: Vec::new(),
         changes: Vec::new(),
+        onsets: OnsetSpec::default(),
         tolerance: Tolerance::Normal,
     }
 }
@@ -52,6 +56,8 @@ pub fn well(name: &str) -> WellSpec {
     WellSpec {
         name: name.to_owned(),
         line_pressure_psia: 220.0,
+        shared_line: None,
+        choke: None,
         target_rate_stb_d: Some(1500.0),
         uptime: 0.95,
         perforations_md_ft: None,
@@ -67,6 +73,7 @@ pub fn well(name: &str) -> WellSpec {
         minimum_rate_stb_d: None,
         maximum_water_cut: None,
         maximum_gor_scf_stb: None,
+        screens: ScreenSpec::default(),
         inflow: InflowSpec {
             method: InflowMethod::Fetkovich,
             future: FutureRule::Pressure,

@@ -78,6 +78,11 @@ pub fn well(name: &str, periods: &[Period], plateau: f64, life: f64, wet: f64) -
                 flow_margin_psi: Some((life - t) * 0.3),
                 restart_margin_psi: Some((0.7 * life - t) * 0.2),
                 stability_margin: some(0.5),
+                slope_margin: some(1.4),
+                wellhead_velocity_ft_s: some(12.0 + 0.01 * t),
+                line_pressure_psia: some(200.0),
+                choke_size_in: None,
+                choke_critical: None,
             }
         })
         .collect();
@@ -99,6 +104,7 @@ pub fn well(name: &str, periods: &[Period], plateau: f64, life: f64, wet: f64) -
         restart_until: Some(0.7 * life),
         spread: None,
         peak_gor_scf_stb: peak,
+        choke_text: None,
         inflow_text: "Fetkovich, C = 7.9e-4 STB/d/psi^2n, n = 0.85 fitted to 3 tests".to_owned(),
         tests: vec![TestCheck {
             on: Some(date(2026, 11, 3)),
