@@ -4,14 +4,15 @@
 //! The whole forecast is run again with each other model that applies to at least one well, all wells switched together (they share the
 //! tank). A well takes part in the spread with the models that apply to it at the start of its flow: no-slip never, Gray only on gas-rich wells.
 //! Each model carries its own calibration: on a well with measured pressures in its tubing it runs with the slip factor and roughness
-//! that bring it to them, and is left out where even these do not; without any as published (a stated slip factor belongs to the well's own model alone). The well's own model
-//! always runs as the scenario states it.
+//! that bring it to them, and is left out where even these do not; without any as published (a stated slip factor belongs to the well's
+//! own model alone). The well's own model always runs as the scenario states it.
 //! Published comparisons of tubing models disagree most near the minimum of the tubing curve, where a well dies; this spread is the cheapest
 //! honest measure of that doubt.
 
 use super::calibrate::{Tuning, tunings};
 use crate::forecast::{
-    Change, Doubt, DoubtKind, Field, FieldSpec, Forecast, ModelEnd, ModelOutcome, RunError, Spread, WellResult, run,
+    Change, Doubt, DoubtKind, Field, FieldSpec, FlowEnd, Forecast, ModelEnd, ModelOutcome, RunError, Spread,
+    natural_flow_ends,
 };
 use crate::tubing::{TubingMethod, TubingSpec};
 use crate::well::Gauge;
@@ -43,16 +44,16 @@ pub fn add_spread(spec: &FieldSpec, forecast: &mut Forecast) -> Result<(), RunEr
     let runs: Vec<_> = others
         .par_iter()
         .enumerate()
-        .map(|(m, method)| (*method, run(&with_tunings(spec, &with(m, *method)))))
+        .map(|(m, method)| (*method, natural_flow_ends(&with_tunings(spec, &with(m, *method)))))
         .collect();
     for (w, well) in forecast.wells.iter_mut().enumerate() {
         let own = spec.wells[w].tubing.method;
-        let mut models = vec![ModelEnd { method: own.name(), outcome: outcome(well) }];
+        let mut models = vec![ModelEnd { method: own.name(), outcome: outcome(well.natural_flow_end) }];
         for (m, (method, other)) in runs.iter().enumerate().filter(|(_, (m, _))| applies[w].contains(m) && *m != own) {
             let missed = tuned[w].as_ref().and_then(|list| list[m].as_ref().err());
             let outcome = match other {
                 _ if missed.is_some() => ModelOutcome::Failed(missed.cloned().unwrap_or_default()),
-                Ok(forecast) => outcome(&forecast.wells[w]),
+                Ok(ends) => outcome(ends[w]),
                 Err(error) => ModelOutcome::Failed(error.to_string()),
             };
             models.push(ModelEnd { method: method.name(), outcome });
@@ -64,8 +65,8 @@ pub fn add_spread(spec: &FieldSpec, forecast: &mut Forecast) -> Result<(), RunEr
     Ok(())
 }
 
-fn outcome(well: &WellResult) -> ModelOutcome {
-    well.natural_flow_end.map_or(ModelOutcome::StillFlows, ModelOutcome::Ends)
+fn outcome(end: Option<FlowEnd>) -> ModelOutcome {
+    end.map_or(ModelOutcome::StillFlows, ModelOutcome::Ends)
 }
 
 fn doubt(name: &str, spread: &Spread) -> Option<Doubt> {
