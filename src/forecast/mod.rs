@@ -13,6 +13,7 @@ mod rows;
 mod run;
 mod spec;
 mod switching;
+mod track;
 
 pub use calendar::{date_at, days_between};
 pub use curves::{WellCurves, curves_on};
@@ -20,3 +21,4 @@ pub use field::{Field, RunError};
 pub use result::*;
 pub use run::{run, run_with_curves};
 pub use spec::*;
+pub use track::{WellMoment, WellTrack, tracks, wells_after_events};

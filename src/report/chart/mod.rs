@@ -4,6 +4,7 @@
 mod axes;
 mod cases;
 mod curves;
+mod edge;
 mod fluid;
 mod paint;
 mod pressure;
@@ -14,6 +15,7 @@ mod traverse;
 
 pub use cases::compare_picture;
 pub use curves::curves_picture;
+pub use edge::edge_picture;
 pub use fluid::fluid_picture;
 pub use pressure::pressure_picture;
 pub use rates::rates_picture;
