@@ -1,7 +1,7 @@
 //! `edge.csv`, `track.csv` and the machine-readable edge map.
 
 use super::csv_files::{cell, csv_bytes};
-use super::human::{number, short};
+use super::human::number;
 use super::json::Json;
 use super::labels::{Dimension, UnitSystem, label};
 use super::{Provenance, ReportError};
@@ -34,9 +34,9 @@ pub fn line_text(line: &EdgeLine, units: UnitSystem) -> String {
     let LineOf { line_pressure_psia, diameter_in, gas } = line.of;
     let (pressure, diameter) = (label(units, Dimension::Pressure), label(units, Dimension::Diameter));
     let ratio = label(units, Dimension::GasOilRatio);
-    let mut text = format!("line {} {}", short(pressure.of(line_pressure_psia)), pressure.text);
+    let mut text = format!("line {} {}", trimmed(pressure.of(line_pressure_psia), 1), pressure.text);
     if let Some(inches) = diameter_in {
-        text.push_str(&format!(", {} {}", trimmed(diameter.of(inches)), diameter.text));
+        text.push_str(&format!(", {} {}", trimmed(diameter.of(inches), 3), diameter.text));
     }
     if let Gas::Given(gor) = gas {
         text.push_str(&format!(", {} {}", number(ratio.of(gor), 0), ratio.text));
@@ -47,9 +47,9 @@ pub fn line_text(line: &EdgeLine, units: UnitSystem) -> String {
     text
 }
 
-/// Up to three decimals, no idle zeros: a diameter as it is called.
-fn trimmed(value: f64) -> String {
-    format!("{value:.3}").trim_end_matches('0').trim_end_matches('.').to_owned()
+/// So many decimals at most, no idle zeros.
+fn trimmed(value: f64, decimals: usize) -> String {
+    format!("{value:.decimals$}").trim_end_matches('0').trim_end_matches('.').to_owned()
 }
 
 fn optional(value: Option<f64>) -> String {

@@ -8,7 +8,7 @@ use super::{Anchor, Colour, Drawing};
 use crate::report::human;
 use crate::report::labels::{Dimension, Label, label};
 use crate::report::{Provenance, gas_text, line_text};
-use crate::study::{Edge, EdgeLine, WellEdge};
+use crate::study::{Edge, EdgeLine, Gas, Stand, WellEdge};
 
 const WIDTH: u32 = 960;
 /// Where the well does not flow at its own line pressure.
@@ -43,7 +43,7 @@ pub fn edge_picture(well: &WellEdge, provenance: &Provenance) -> Drawing {
         y: Span::from_zero(pressure.of(highest), false),
     };
     if let Some(own) = well.own() {
-        no_flow(&mut d, &panel, own, pressure);
+        no_flow(&mut d, &panel, own, pressure, pressure.of(well.top_psia));
     }
     panel.draw_y(&mut d, &format!("Reservoir pressure, {}", pressure.text), 8, true);
     panel.draw_x(&mut d, "Water cut, fraction of liquid", 10);
@@ -55,9 +55,19 @@ pub fn edge_picture(well: &WellEdge, provenance: &Provenance) -> Drawing {
         }
     }
     draw_tests(&mut d, &panel, well, pressure);
-    draw_seen(&mut d, &panel, well, pressure);
-    draw_way(&mut d, &panel, well, pressure);
+    let mut curves: Vec<Vec<(f64, f64)>> = well.lines.iter().flat_map(EdgeLine::branches).collect();
+    curves.extend(well.way.iter().map(|way| way.stands.iter().map(on_the_map).collect()));
+    for point in curves.iter_mut().flatten() {
+        *point = panel.at((point.0, pressure.of(point.1)));
+    }
+    let mut words = Words { panel: &panel, curves, taken: Vec::new() };
+    draw_way(&mut d, &mut words, well, pressure);
+    draw_seen(&mut d, &mut words, well, pressure);
     d
+}
+
+fn on_the_map(stand: &Stand) -> (f64, f64) {
+    (stand.moment.water_cut, stand.moment.reservoir_pressure_psia)
 }
 
 /// Colour by line pressure; dash by line pressure, or by string and gas rule where there are several; the well's own is the broad one.
@@ -83,7 +93,11 @@ fn distinct(values: impl Iterator<Item = f64>) -> Vec<f64> {
 /// Tubing model and gas-oil ratio in one line.
 fn rule(well: &WellEdge, provenance: &Provenance) -> String {
     let pressure = label(provenance.units, Dimension::Pressure);
-    let gas = well.lines.first().map_or_else(String::new, |line| gas_text(line.of.gas, provenance.units));
+    let gas = match well.lines.first().map(|line| line.of.gas) {
+        Some(Gas::Given(_)) => "a given gas-oil ratio at every pressure".to_owned(),
+        Some(gas) => gas_text(gas, provenance.units),
+        None => String::new(),
+    };
     let beyond = well.forecast_ends_psia.map_or_else(String::new, |psia| {
         format!(
             "; below {} {} the tank depletes on without injection",
@@ -91,7 +105,9 @@ fn rule(well: &WellEdge, provenance: &Provenance) -> String {
             pressure.text
         )
     });
-    format!("{}, {gas}{beyond}", well.method)
+    let given = well.lines.iter().any(|l| matches!(l.of.gas, Gas::Given(_)));
+    let other = if given && well.way.is_some() { "; the forecast has a ratio of its own" } else { "" };
+    format!("{}, {gas}{beyond}{other}", well.method)
 }
 
 /// What the marks mean.
@@ -133,12 +149,12 @@ fn ring(d: &mut Drawing, at: (f64, f64)) {
 }
 
 /// Fills the side of the own line on which the well does not flow.
-fn no_flow(d: &mut Drawing, panel: &Panel, own: &EdgeLine, pressure: Label) {
+fn no_flow(d: &mut Drawing, panel: &Panel, own: &EdgeLine, pressure: Label, top: f64) {
     // Each border of no flow, from below upwards.
     let stretches = |edge: &Edge| -> Vec<(f64, f64)> {
-        let mut list = vec![(panel.y.low, edge.lowest().map_or(panel.y.high, |p| pressure.of(p.pressure_psia)))];
+        let mut list = vec![(panel.y.low, edge.lowest().map_or(top, |p| pressure.of(p.pressure_psia)))];
         let gaps = edge.gaps_psia().into_iter().rev();
-        list.extend(gaps.map(|(low, high)| (pressure.of(low), high.map_or(panel.y.high, |p| pressure.of(p)))));
+        list.extend(gaps.map(|(low, high)| (pressure.of(low), high.map_or(top, |p| pressure.of(p)))));
         list
     };
     for pair in own.points.windows(2) {
@@ -163,37 +179,33 @@ fn no_flow(d: &mut Drawing, panel: &Panel, own: &EdgeLine, pressure: Label) {
 fn draw_tests(d: &mut Drawing, panel: &Panel, well: &WellEdge, pressure: Label) {
     for &(_, reservoir_psia, water_cut) in &well.tests {
         let look = Look { colour: QUIET, mark: Mark::Square, ..WAY };
-        panel.draw_mark(d, (water_cut, pressure.of(reservoir_psia)), look, 5.0);
+        panel.draw_mark(d, (water_cut, pressure.of(reservoir_psia)), look, 8.0);
     }
 }
 
-fn draw_seen(d: &mut Drawing, panel: &Panel, well: &WellEdge, pressure: Label) {
-    let mut taken: Vec<(f64, f64, f64)> = Vec::new();
+fn draw_seen(d: &mut Drawing, words: &mut Words, well: &WellEdge, pressure: Label) {
     for verdict in &well.seen {
         let seen = &verdict.seen;
-        let (x, y) = panel.at((seen.water_cut, pressure.of(seen.reservoir_pressure_psia)));
+        let at = words.panel.at((seen.water_cut, pressure.of(seen.reservoir_pressure_psia)));
         if seen.flowed {
-            ring(d, (x, y))
+            ring(d, at);
         } else {
-            cross(d, (x, y))
+            cross(d, at);
         }
-        if well.seen.len() > MOST_NAMES {
-            continue;
-        }
-        let text = fitted(&seen.label, 12.0, 160.0);
-        let width = text_width(&text, 12.0);
-        let left = if x + 11.0 + width > panel.right { x - 11.0 - width } else { x + 11.0 };
-        let free = |y: f64| taken.iter().all(|t| (t.2 - y).abs() > 13.0 || t.0 > left + width || t.1 < left);
-        let y = [y, y - 14.0, y + 14.0, y - 28.0, y + 28.0].into_iter().find(|y| free(*y)).unwrap_or(y);
-        taken.push((left, left + width, y));
-        d.text((left, y), 12.0, Anchor::Left, INK, text);
+        words.taken.push((at.0 - 6.0, at.1 - 6.0, at.0 + 6.0, at.1 + 6.0));
+    }
+    for verdict in well.seen.iter().filter(|_| well.seen.len() <= MOST_NAMES) {
+        let seen = &verdict.seen;
+        let at = words.panel.at((seen.water_cut, pressure.of(seen.reservoir_pressure_psia)));
+        words.write(d, at, fitted(&seen.label, 12.0, 160.0));
     }
 }
 
 /// The way of the well, with a small mark at each new year and its two ends called by name.
-fn draw_way(d: &mut Drawing, panel: &Panel, well: &WellEdge, pressure: Label) {
+fn draw_way(d: &mut Drawing, words: &mut Words, well: &WellEdge, pressure: Label) {
     let Some(way) = &well.way else { return };
-    let at = |stand: &crate::study::Stand| (stand.moment.water_cut, pressure.of(stand.moment.reservoir_pressure_psia));
+    let panel = words.panel;
+    let at = |stand: &Stand| (on_the_map(stand).0, pressure.of(on_the_map(stand).1));
     panel.draw_line(d, way.stands.iter().map(at), WAY);
     for stand in way.stands.iter().filter(|s| s.moment.date.month() == 1 && s.moment.date.day() == 1) {
         panel.draw_mark(d, at(stand), WAY, 3.0);
@@ -201,24 +213,56 @@ fn draw_way(d: &mut Drawing, panel: &Panel, well: &WellEdge, pressure: Label) {
     let (Some(first), Some(last)) = (way.stands.first(), way.stands.last()) else { return };
     panel.draw_mark(d, at(first), WAY, 5.0);
     panel.draw_mark(d, at(last), Look { mark: Mark::Diamond, ..WAY }, 6.0);
-    let start = human::short_month(first.moment.date);
     let end = match &way.end {
         Some(end) => format!("{}: end of natural flow, {}", human::short_month(end.date), end.reason.text()),
         None => format!("{}: still flows", human::short_month(last.moment.date)),
     };
-    // Beside each other where the way is short.
-    let (from, to) = (panel.at(at(first)), panel.at(at(last)));
-    let apart = (from.1 - to.1).abs() > 16.0;
-    words(d, panel, (from.0, if apart { from.1 } else { from.1 - 14.0 }), start);
-    words(d, panel, (to.0, if apart { to.1 } else { to.1 + 6.0 }), end);
+    words.write(d, panel.at(at(last)), end);
+    words.write(d, panel.at(at(first)), human::short_month(first.moment.date));
 }
 
-/// A text beside a mark on a white ground, since lines may run through it.
-fn words(d: &mut Drawing, panel: &Panel, (x, y): (f64, f64), text: String) {
-    let width = text_width(&text, 12.0);
-    let left = if x + 14.0 + width > panel.right { x - 14.0 - width } else { x + 14.0 };
-    let ground =
-        [(left - 3.0, y - 8.0), (left + width + 3.0, y - 8.0), (left + width + 3.0, y + 8.0), (left - 3.0, y + 8.0)];
-    d.area(ground.to_vec(), [255, 255, 255]);
-    d.text((left, y), 12.0, Anchor::Left, INK, text);
+/// A box: left, top, right, bottom.
+type Frame = (f64, f64, f64, f64);
+
+/// Writes texts beside marks so that no curve runs through them.
+struct Words<'a> {
+    panel: &'a Panel,
+    /// In pixels.
+    curves: Vec<Vec<(f64, f64)>>,
+    taken: Vec<Frame>,
+}
+
+impl Words<'_> {
+    /// A text beside a mark, on a white ground where there is no free place.
+    fn write(&mut self, d: &mut Drawing, (x, y): (f64, f64), text: String) {
+        let width = text_width(&text, 12.0);
+        let frame = |(dx, dy): (f64, f64)| -> Frame {
+            let left = if dx > 0.0 { x + dx } else { x + dx - width };
+            (left - 3.0, y + dy - 8.0, left + width + 3.0, y + dy + 8.0)
+        };
+        let panel = self.panel;
+        let inside = |f: &Frame| f.0 > panel.left && f.2 < panel.right && f.1 > panel.top && f.3 < panel.bottom;
+        let crossed = |f: &Frame| self.curves.iter().any(|c| c.windows(2).any(|s| runs_through(s[0], s[1], f)));
+        let apart = |f: &Frame, g: &Frame| f.2 < g.0 || g.2 < f.0 || f.3 < g.1 || g.3 < f.1;
+        let unwritten = |f: &Frame| self.taken.iter().all(|g| apart(f, g));
+        let downs = [0.0, 16.0, -16.0, 28.0, -28.0];
+        let places: Vec<Frame> = downs.into_iter().flat_map(|dy| [(14.0, dy), (-14.0, dy)]).map(frame).collect();
+        let free = places.iter().find(|f| inside(f) && unwritten(f) && !crossed(f)).copied();
+        let chosen = free.unwrap_or_else(|| {
+            let f = places.iter().find(|f| inside(f) && unwritten(f)).copied().unwrap_or_else(|| frame((14.0, 0.0)));
+            d.area(vec![(f.0, f.1), (f.2, f.1), (f.2, f.3), (f.0, f.3)], [255, 255, 255]);
+            f
+        });
+        self.taken.push(chosen);
+        d.text((chosen.0 + 3.0, 0.5 * (chosen.1 + chosen.3)), 12.0, Anchor::Left, INK, text);
+    }
+}
+
+/// Whether a segment touches a box, looked at every few pixels.
+fn runs_through(a: (f64, f64), b: (f64, f64), f: &Frame) -> bool {
+    let steps = ((a.0 - b.0).hypot(a.1 - b.1) / 3.0).ceil().max(1.0);
+    (0..=steps as u32).map(|i| f64::from(i) / steps).any(|s| {
+        let (x, y) = (a.0 + s * (b.0 - a.0), a.1 + s * (b.1 - a.1));
+        x > f.0 && x < f.2 && y > f.1 && y < f.3
+    })
 }

@@ -17,6 +17,8 @@ const WIDTH_PSI: f64 = 1e-3;
 pub(super) const LEFT_PSI: f64 = 0.01;
 /// Parts of open flow at which a look asks whether a well flows, the likeliest first.
 const PARTS: [f64; 12] = [0.3, 0.15, 0.5, 0.08, 0.22, 0.04, 0.4, 0.7, 0.02, 0.01, 0.004, 0.9];
+/// Further ones at which a located edge is held against other humps.
+const MORE_PARTS: [f64; 8] = [0.002, 0.007, 0.014, 0.03, 0.06, 0.11, 0.6, 0.8];
 
 /// Where a well flows at one water cut.
 #[derive(Debug, Clone, PartialEq)]
@@ -129,10 +131,14 @@ impl Subject<'_> {
         PARTS.into_iter().find(|part| open > 0.0 && now.height_psi(part * open) > 0.0)
     }
 
-    /// Where the well flows at a water cut. `also_psia` are further pressures to look at.
+    /// Where the well flows at a water cut. `also_psia` are further pressures to look at, more closely.
     pub fn edge(&self, water_cut: f64, also_psia: &[f64]) -> Edge {
         let looks = self.looks(also_psia);
         let mut parts: Vec<Option<f64>> = looks.iter().map(|p| self.flowing_part(*p, water_cut)).collect();
+        for (part, pressure) in parts.iter_mut().zip(&looks).filter(|(part, p)| part.is_none() && also_psia.contains(p))
+        {
+            *part = self.wide_look(*pressure, water_cut).filter(|(_, margin)| *margin > 0.0).map(|(part, _)| part);
+        }
         if parts.iter().all(Option::is_none) {
             // A narrow hump is most likely to be found where the reservoir pushes most.
             parts[0] =
@@ -219,9 +225,14 @@ impl Subject<'_> {
             return Err(part);
         }
         if live.1 > 0.0 {
-            let quick = self.at(brent(followed, dead, live, WIDTH_PSI), water_cut);
-            if quick.margin_psi.abs() <= LEFT_PSI {
-                return Ok(quick);
+            let pressure_psia = brent(&mut followed, dead, live, WIDTH_PSI);
+            let margin_psi = followed(pressure_psia);
+            let now = self.now(pressure_psia, water_cut, &gauge);
+            let open = now.curve.open_flow_stb_d();
+            let higher = |part: f64| now.height_psi(part * open) > LEFT_PSI.max(margin_psi);
+            if margin_psi.abs() <= LEFT_PSI && !PARTS.into_iter().chain(MORE_PARTS).any(higher) {
+                let (rate_stb_d, gor_scf_stb) = (part * open, now.gor_scf_stb);
+                return Ok(Place { pressure_psia, rate_stb_d, gor_scf_stb, margin_psi });
             }
         }
         // Another hump stands higher there.

@@ -2,7 +2,7 @@
 
 use super::branch::{lost, pressures};
 use super::gas::{ByPressure, Gas};
-use super::line::{Edge, LEFT_PSI, Subject};
+use super::line::{Edge, LEFT_PSI, Place, Subject};
 use super::{EdgeLine, EdgeMap, EdgeOptions, LineOf, Seen, Stand, Verdict, Way, WellEdge};
 use crate::fault::Fault;
 use crate::forecast::{Field, FieldSpec, RunError, WellTrack, tracks, wells_after_events};
@@ -89,7 +89,7 @@ fn well_edge(
 
     let own = all.iter().position(|(_, own)| *own).unwrap_or(0);
     let forecast_ends_psia = way.filter(|_| lines[own].of.gas == Gas::Forecast).map(|w| w.end_pressure_psia);
-    let way = way.filter(|w| !w.moments.is_empty()).map(|way| followed(way, &subjects[own]));
+    let way = way.filter(|w| !w.moments.is_empty()).map(|way| followed(way, &subjects[own], &lines[own]));
     let verdicts = seen.into_par_iter().map(|seen| verdict(seen, &subjects[own])).collect();
     Ok(WellEdge {
         well: model.spec.name.clone(),
@@ -198,35 +198,44 @@ fn between(subject: &Subject, mut low: Edge, high: &Edge, all: &mut Vec<Edge>) {
     all.extend(beyond.into_iter().rev());
 }
 
-fn followed(way: &WellTrack, subject: &Subject) -> Way {
-    let mut cuts: Vec<f64> = way.moments.iter().map(|m| m.water_cut).collect();
-    cuts.sort_by(f64::total_cmp);
-    cuts.dedup();
-    let edges: Vec<Edge> = cuts.par_iter().map(|cut| subject.edge(*cut, &[])).collect();
-    let last = way.moments.last();
-    let stands = way.moments.iter().map(|moment| {
-        let edge = edges.get(cuts.partition_point(|cut| *cut < moment.water_cut));
-        let pressure = moment.reservoir_pressure_psia;
-        // A window that has only just closed is too narrow to be bracketed.
-        let touches = || subject.margin_psi(pressure, moment.water_cut).abs() <= LEFT_PSI;
-        let border_psia = if last == Some(moment) && touches() {
-            Some(pressure)
-        } else {
-            edge.and_then(|e| e.nearest(pressure)).map(|p| p.pressure_psia)
-        };
-        let side = if edge.is_some_and(|e| e.flows(pressure)) { 1.0 } else { -1.0 };
-        Stand {
-            moment: *moment,
-            border_psia,
-            pressure_margin_psi: border_psia.map(|border| side * (pressure - border).abs()),
-        }
-    });
-    let stands: Vec<Stand> = stands.collect();
+fn followed(way: &WellTrack, subject: &Subject, line: &EdgeLine) -> Way {
+    let last = way.moments.len().saturating_sub(1);
+    let stands: Vec<Stand> = way
+        .moments
+        .par_iter()
+        .enumerate()
+        .map(|(i, moment)| {
+            let pressure = moment.reservoir_pressure_psia;
+            let known = if i == 0 || i == last { None } else { straight(&line.points, moment.water_cut) };
+            let edge = known.unwrap_or_else(|| subject.edge(moment.water_cut, &[]));
+            // A window that has only just closed is too narrow to be bracketed.
+            let touches = || subject.margin_psi(pressure, moment.water_cut).abs() <= LEFT_PSI;
+            let nearest = edge.nearest(pressure).map(|p| p.pressure_psia);
+            let border_psia = if i == last && touches() { Some(pressure) } else { nearest };
+            let side = if edge.flows(pressure) { 1.0 } else { -1.0 };
+            let pressure_margin_psi = border_psia.map(|border| side * (pressure - border).abs());
+            Stand { moment: *moment, border_psia, pressure_margin_psi }
+        })
+        .collect();
     let days_left = match (way.moments.first(), way.moments.last()) {
         (Some(first), Some(last)) => last.days - first.days,
         _ => 0.0,
     };
     Way { stands, end: way.end, flowing_at_end: way.flowing_at_end, days_left }
+}
+
+/// The edge straight between the two points around a water cut; `None` where they do not go on each other.
+fn straight(points: &[Edge], water_cut: f64) -> Option<Edge> {
+    let above = points.get(points.partition_point(|p| p.water_cut <= water_cut))?;
+    let below = points.iter().rfind(|p| p.water_cut <= water_cut)?;
+    let share = (water_cut - below.water_cut) / (above.water_cut - below.water_cut);
+    let mix = |a: f64, b: f64| a + share * (b - a);
+    let pairs = below.places.iter().zip(&above.places);
+    (below.flows_at_top == above.flows_at_top && below.places.len() == above.places.len()).then(|| Edge {
+        water_cut,
+        flows_at_top: below.flows_at_top,
+        places: pairs.map(|(a, b)| Place { pressure_psia: mix(a.pressure_psia, b.pressure_psia), ..*a }).collect(),
+    })
 }
 
 fn verdict(seen: &Seen, own: &Subject) -> Verdict {

@@ -132,7 +132,8 @@ pub struct Stand {
 /// The way of the well through its forecast.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Way {
-    /// At its first flow, at the ends of periods, at its end.
+    /// At its first flow, at the ends of periods, at its end. The first and the last border are exact; those between are straight between
+    /// the points of the well's own line.
     pub stands: Vec<Stand>,
     /// The end of natural flow.
     pub end: Option<FlowEnd>,
