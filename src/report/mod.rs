@@ -17,8 +17,8 @@ mod table;
 mod words;
 
 pub use chart::{
-    Drawing, compare_picture, curves_picture, edge_picture, fluid_picture, pressure_picture, rates_picture,
-    traverse_picture,
+    Drawing, compare_picture, curves_picture, depth_picture, edge_picture, fluid_picture, models_picture,
+    pressure_picture, rates_picture, traverse_picture,
 };
 pub use compare_files::{compare_csv, compare_json};
 pub use csv_files::{events_csv, profile_csv, yearly_csv};
