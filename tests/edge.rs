@@ -10,6 +10,7 @@ use std::path::Path;
 use std::process::{Command, Output};
 use wane::forecast::{Field, FieldSpec, InjectedFluid, InjectionControl, StopReason};
 use wane::inflow::Conditions;
+use wane::report::{Provenance, UnitSystem, edge_picture};
 use wane::scenario::Document;
 use wane::study::{EdgeLine, EdgeMap, EdgeOptions, Gas, Seen, edge_map};
 use wane::tubing::Stream;
@@ -238,6 +239,42 @@ fn a_forecast_that_fails_leaves_a_map_without_it() {
     assert!(well.way.is_none());
     assert_eq!(well.lines[0].of.gas, Gas::Dissolved);
     assert!(well.lines[0].points[0].lowest().is_some());
+}
+
+#[test]
+fn pictures_cut_nothing_off_and_name_what_they_show() {
+    let spec = shipped("two-wells");
+    let seen = |label: &str, pressure: f64, flowed: bool| Seen {
+        well: Some("BF-2".to_owned()),
+        label: label.to_owned(),
+        reservoir_pressure_psia: pressure,
+        water_cut: 0.97,
+        line_pressure_psia: Some(90.0),
+        gor_scf_stb: None,
+        flowed,
+    };
+    let seen = vec![
+        seen("a neighbour with a long name, dead since 2019", 2900.0, false),
+        seen("another neighbour close to it, dead since 2021", 2890.0, false),
+        seen("one that flows", 2100.0, true),
+    ];
+    let options = EdgeOptions { diameters_in: vec![1.995], gors_scf_stb: vec![700.0, 1500.0], seen, ..own_only(&spec) };
+    for (options, name) in [(options, "many lines"), (own_only(&spec), "one line")] {
+        let map = map(&spec, &options);
+        assert_eq!(map.wells[0].seen.len(), 0, "points of the other well");
+        for well in &map.wells {
+            for units in [UnitSystem::Field, UnitSystem::Metric] {
+                let drawing =
+                    edge_picture(well, &Provenance { units, title: "Two".to_owned(), ..Provenance::default() });
+                assert!(drawing.clipped_texts().is_empty(), "{name} cuts off {:?}", drawing.clipped_texts());
+                let svg = String::from_utf8(drawing.to_svg().unwrap()).unwrap();
+                assert!(!svg.contains("NaN") && !svg.contains("inf\""), "{name} holds only finite numbers");
+                let texts: Vec<&str> = drawing.texts().collect();
+                assert!(texts.iter().any(|t| t.contains("ends, no crossing")), "{texts:?}");
+                assert_eq!(texts.contains(&"one that flows"), !well.seen.is_empty());
+            }
+        }
+    }
 }
 
 fn wane(dir: &Path, args: &[&str]) -> Output {

@@ -128,7 +128,8 @@ fn stand(stand: &Stand, units: UnitSystem) -> String {
                 (true, false) => "below the gap in its line",
                 (false, _) => "on the dead side of its line",
             };
-            format!("{} {} {side}", number(difference.of(margin.abs()), 0), difference.text)
+            let distance = difference.of(margin.abs());
+            format!("{} {} {side}", number(distance, if distance < 10.0 { 1 } else { 0 }), difference.text)
         }
         _ => "where its line has no point".to_owned(),
     };

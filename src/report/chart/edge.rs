@@ -179,7 +179,7 @@ fn no_flow(d: &mut Drawing, panel: &Panel, own: &EdgeLine, pressure: Label, top:
 fn draw_tests(d: &mut Drawing, panel: &Panel, well: &WellEdge, pressure: Label) {
     for &(_, reservoir_psia, water_cut) in &well.tests {
         let look = Look { colour: QUIET, mark: Mark::Square, ..WAY };
-        panel.draw_mark(d, (water_cut, pressure.of(reservoir_psia)), look, 8.0);
+        panel.draw_mark(d, (water_cut, pressure.of(reservoir_psia)), look, 7.0);
     }
 }
 
@@ -214,7 +214,7 @@ fn draw_way(d: &mut Drawing, words: &mut Words, well: &WellEdge, pressure: Label
     panel.draw_mark(d, at(first), WAY, 5.0);
     panel.draw_mark(d, at(last), Look { mark: Mark::Diamond, ..WAY }, 6.0);
     let end = match &way.end {
-        Some(end) => format!("{}: end of natural flow, {}", human::short_month(end.date), end.reason.text()),
+        Some(end) => format!("{}: ends, {}", human::short_month(end.date), end.reason.text()),
         None => format!("{}: still flows", human::short_month(last.moment.date)),
     };
     words.write(d, panel.at(at(last)), end);
@@ -242,17 +242,19 @@ impl Words<'_> {
         };
         let panel = self.panel;
         let inside = |f: &Frame| f.0 > panel.left && f.2 < panel.right && f.1 > panel.top && f.3 < panel.bottom;
-        let crossed = |f: &Frame| self.curves.iter().any(|c| c.windows(2).any(|s| runs_through(s[0], s[1], f)));
+        let crossings =
+            |f: &Frame| self.curves.iter().filter(|c| c.windows(2).any(|s| runs_through(s[0], s[1], f))).count();
         let apart = |f: &Frame, g: &Frame| f.2 < g.0 || g.2 < f.0 || f.3 < g.1 || g.3 < f.1;
         let unwritten = |f: &Frame| self.taken.iter().all(|g| apart(f, g));
         let downs = [0.0, 16.0, -16.0, 28.0, -28.0];
         let places: Vec<Frame> = downs.into_iter().flat_map(|dy| [(14.0, dy), (-14.0, dy)]).map(frame).collect();
-        let free = places.iter().find(|f| inside(f) && unwritten(f) && !crossed(f)).copied();
-        let chosen = free.unwrap_or_else(|| {
-            let f = places.iter().find(|f| inside(f) && unwritten(f)).copied().unwrap_or_else(|| frame((14.0, 0.0)));
-            d.area(vec![(f.0, f.1), (f.2, f.1), (f.2, f.3), (f.0, f.3)], [255, 255, 255]);
-            f
-        });
+        let allowed = places.iter().filter(|f| inside(f) && unwritten(f));
+        let best = allowed.map(|f| (crossings(f), *f)).min_by_key(|(count, _)| *count);
+        let (count, chosen) = best.unwrap_or_else(|| (1, frame((14.0, 0.0))));
+        if count > 0 {
+            let (left, top, right, bottom) = chosen;
+            d.area(vec![(left, top), (right, top), (right, bottom), (left, bottom)], [255, 255, 255]);
+        }
         self.taken.push(chosen);
         d.text((chosen.0 + 3.0, 0.5 * (chosen.1 + chosen.3)), 12.0, Anchor::Left, INK, text);
     }

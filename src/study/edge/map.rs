@@ -6,7 +6,7 @@ use super::line::{Edge, LEFT_PSI, Place, Subject};
 use super::{EdgeLine, EdgeMap, EdgeOptions, LineOf, Seen, Stand, Verdict, Way, WellEdge};
 use crate::fault::Fault;
 use crate::forecast::{Field, FieldSpec, RunError, WellTrack, tracks, wells_after_events};
-use crate::inflow::{Coefficient, FutureRule};
+use crate::inflow::{Coefficient, FutureRule, RateBasis};
 use crate::tubing::{Tubing, TubingSection};
 use crate::well::WellModel;
 use rayon::prelude::*;
@@ -20,6 +20,11 @@ const WATER_CUTS: [f64; 23] = [
 const BESIDE_OWN: [f64; 2] = [0.6, 1.5];
 /// Width to which the end of a line is located.
 const WATER_CUT_WIDTH: f64 = 1e-3;
+/// Change of a place between two water cuts, parts of the top of the map, from which on a water cut is set between them; and the width
+/// that is left.
+const FAR: f64 = 0.05;
+/// See [`FAR`].
+const FAR_WIDTH: f64 = 0.01;
 /// Accuracy of the tubing's pressure on a string asked for, psi: that of a forecast.
 const ACCURACY_PSI: f64 = 0.02;
 
@@ -165,7 +170,7 @@ fn finished(of: LineOf, own: bool, subject: &Subject, points: Vec<Edge>) -> Edge
     let mut all = Vec::with_capacity(2 * points.len());
     for point in points {
         if let Some(before) = all.last().cloned() {
-            between(subject, before, &point, &mut all);
+            between(subject, &before, &point, &mut all);
         }
         all.push(point);
     }
@@ -174,28 +179,26 @@ fn finished(of: LineOf, own: bool, subject: &Subject, points: Vec<Edge>) -> Edge
     EdgeLine { of, own, no_flow_from: no_flow_from.map(|i| all[i].water_cut), points: all }
 }
 
-/// Adds what lies between two points of which one has more places.
-fn between(subject: &Subject, mut low: Edge, high: &Edge, all: &mut Vec<Edge>) {
-    let mut high = high.clone();
-    let mut beyond = Vec::new();
-    while low.places.len() != high.places.len() && high.water_cut - low.water_cut > WATER_CUT_WIDTH {
-        // What vanishes is looked for where it was seen last.
-        let (more, fewer) = if low.places.len() > high.places.len() { (&low, &high) } else { (&high, &low) };
-        let (more, fewer) = (pressures(more), pressures(fewer));
-        let also: Vec<f64> = match lost(&more, &fewer) {
-            Some((first, 2)) => vec![0.5 * (more[first] + more[first + 1])],
-            _ => Vec::new(),
-        };
-        let middle = subject.edge(0.5 * (low.water_cut + high.water_cut), &also);
-        if middle.places.len() == low.places.len() {
-            all.push(middle.clone());
-            low = middle;
-        } else {
-            beyond.push(middle.clone());
-            high = middle;
-        }
+/// Adds what lies between two points of which one has more places, or whose places lie far apart.
+fn between(subject: &Subject, low: &Edge, high: &Edge, all: &mut Vec<Edge>) {
+    let (before, after) = (pressures(low), pressures(high));
+    let width = high.water_cut - low.water_cut;
+    let same = before.len() == after.len();
+    let far = |(a, b): (&f64, &f64)| (a - b).abs() > FAR * subject.top_psia;
+    let wanted = if same { before.iter().zip(&after).any(far) && width > FAR_WIDTH } else { width > WATER_CUT_WIDTH };
+    if !wanted {
+        return;
     }
-    all.extend(beyond.into_iter().rev());
+    // What vanishes is looked for where it was seen last.
+    let (more, fewer) = if before.len() > after.len() { (&before, &after) } else { (&after, &before) };
+    let also: Vec<f64> = match lost(more, fewer) {
+        Some((first, 2)) => vec![0.5 * (more[first] + more[first + 1])],
+        _ => Vec::new(),
+    };
+    let middle = subject.edge(0.5 * (low.water_cut + high.water_cut), &also);
+    between(subject, low, &middle, all);
+    all.push(middle.clone());
+    between(subject, &middle, high, all);
 }
 
 fn followed(way: &WellTrack, subject: &Subject, line: &EdgeLine) -> Way {
@@ -274,6 +277,9 @@ fn notes(spec: &FieldSpec, model: &WellModel) -> Vec<String> {
     }
     if spec.changes.iter().any(|c| c.name == well.name) {
         list.push("drawn under the settings at its end of natural flow, after dated events".to_owned());
+    }
+    if well.inflow.basis == RateBasis::Oil {
+        list.push("its inflow is that of oil alone: at a higher water cut more liquid comes in".to_owned());
     }
     if well.inflow.future == FutureRule::Mobility {
         list.push(
