@@ -143,6 +143,25 @@ fn a_well_that_water_ends_stops_on_its_line_too() {
     assert!(before.iter().all(|s| s.pressure_margin_psi.unwrap() > -0.5), "{before:?}");
 }
 
+#[test]
+fn the_line_of_another_line_pressure_is_where_a_forecast_at_that_pressure_ends() {
+    // One well, no injection, no water: the tank's gas-oil ratio depends on its pressure alone (Muskat 1945), whatever the rate. So the
+    // map around the forecast at one line pressure foretells the end at another, also where it lies below the end of the first.
+    let spec = shipped("depletion");
+    let own = spec.wells[0].line_pressure_psia;
+    let around = map(&spec, &EdgeOptions { line_pressures_psia: vec![0.4 * own], ..EdgeOptions::default() });
+    let foretold = around.wells[0].lines[0].points[0].lowest().unwrap().pressure_psia;
+    let mut other = spec.clone();
+    other.wells[0].line_pressure_psia = 0.4 * own;
+    let forecast = wane::forecast::run(&other).unwrap();
+    let end = forecast.wells[0].natural_flow_end.unwrap();
+    let first_end = around.wells[0].way.as_ref().unwrap().end.unwrap();
+    assert!(end.reservoir_pressure_psia < first_end.reservoir_pressure_psia - 30.0);
+    let miss = foretold - end.reservoir_pressure_psia;
+    // The depletion beyond the end goes in steps of 15 psi, between which the ratio is taken to be straight.
+    assert!(miss.abs() < 1.0, "the forecast ends {miss} psi away from the map");
+}
+
 /// Where a line says that the well flows, at the water cuts of every line.
 fn flows(line: &EdgeLine, cut: f64, pressure_psia: f64) -> bool {
     line.points.iter().find(|p| (p.water_cut - cut).abs() < 1e-12).unwrap().flows(pressure_psia)
