@@ -12,7 +12,7 @@ use wane::forecast::{Field, FieldSpec, InjectedFluid, InjectionControl, StopReas
 use wane::inflow::Conditions;
 use wane::report::{Provenance, UnitSystem, edge_picture};
 use wane::scenario::Document;
-use wane::study::{EdgeLine, EdgeMap, EdgeOptions, Gas, Seen, edge_map};
+use wane::study::{Edge, EdgeLine, EdgeMap, EdgeOptions, Gas, LineOf, Place, Seen, edge_map};
 use wane::tubing::Stream;
 
 fn shipped(name: &str) -> FieldSpec {
@@ -260,6 +260,51 @@ fn a_forecast_that_fails_leaves_a_map_without_it() {
     assert!(well.lines[0].points[0].lowest().is_some());
 }
 
+/// An edge made by hand.
+fn made(water_cut: f64, flows_at_top: bool, pressures: &[f64]) -> Edge {
+    let place = |p: &f64| Place { pressure_psia: *p, rate_stb_d: 100.0, gor_scf_stb: 600.0, margin_psi: 0.0 };
+    Edge { water_cut, flows_at_top, places: pressures.iter().map(place).collect() }
+}
+
+#[test]
+fn windows_and_gaps_of_an_edge_made_by_hand() {
+    let edge = made(0.3, true, &[2500.0, 2000.0, 900.0]);
+    assert_eq!(edge.windows_psia(), [(2500.0, None), (900.0, Some(2000.0))]);
+    assert_eq!(edge.gaps_psia(), [(2000.0, Some(2500.0))]);
+    assert_eq!(edge.lowest().unwrap().pressure_psia, 900.0);
+    for (pressure, flows) in [(3000.0, true), (2200.0, false), (1500.0, true), (500.0, false)] {
+        assert_eq!(edge.flows(pressure), flows, "{pressure}");
+    }
+    assert_eq!(edge.nearest(2100.0).unwrap().pressure_psia, 2000.0);
+    let lower_only = made(0.9, false, &[2000.0, 900.0]);
+    assert_eq!(lower_only.windows_psia(), [(900.0, Some(2000.0))]);
+    assert_eq!(lower_only.gaps_psia(), [(2000.0, None)]);
+    let none = made(0.99, false, &[]);
+    assert!(none.windows_psia().is_empty() && none.gaps_psia().is_empty() && none.lowest().is_none());
+    assert!(!none.flows(3000.0) && none.nearest(1.0).is_none());
+}
+
+#[test]
+fn branches_join_what_belongs_together() {
+    // One edge; a gap opens above it; window and gap close from below; at last the edge leaves through the top.
+    let points = vec![
+        made(0.0, true, &[800.0]),
+        made(0.1, true, &[2310.0, 2290.0, 900.0]),
+        made(0.2, true, &[2500.0, 2000.0, 1000.0]),
+        made(0.3, true, &[2700.0, 1510.0, 1490.0]),
+        made(0.4, true, &[2900.0]),
+        made(0.5, false, &[]),
+    ];
+    let of = LineOf { line_pressure_psia: 100.0, diameter_in: None, gas: Gas::Dissolved };
+    let mut found = EdgeLine { of, own: true, points, no_flow_from: Some(0.5) }.branches();
+    found.sort_by(|a, b| a[0].0.total_cmp(&b[0].0).then(b[1].1.total_cmp(&a[1].1)));
+    let lower = vec![(0.0, 800.0), (0.1, 900.0), (0.2, 1000.0), (0.3, 1490.0), (0.3, 1500.0)];
+    // The two sides of the gap begin where it opens.
+    let upper = vec![(0.1, 2300.0), (0.1, 2310.0), (0.2, 2500.0), (0.3, 2700.0), (0.4, 2900.0)];
+    let middle = vec![(0.1, 2300.0), (0.1, 2290.0), (0.2, 2000.0), (0.3, 1510.0), (0.3, 1500.0)];
+    assert_eq!(found, [lower, upper, middle]);
+}
+
 #[test]
 fn pictures_cut_nothing_off_and_name_what_they_show() {
     let spec = shipped("two-wells");
@@ -363,8 +408,12 @@ fn the_command_writes_a_folder_and_refuses_what_it_cannot_draw() {
     let text = String::from_utf8(run(&["-o", "out"])).unwrap();
     assert!(text.contains("line 145 psia (its own)") && text.contains("X-2") && text.contains("on its line"), "{text}");
     let files: Vec<String> = all(&dir.path().join("out")).into_keys().collect();
-    let expected = ["d.toml", "edge-QM-1.png", "edge-QM-1.svg", "edge.csv", "edge.json", "manifest.json", "track.csv"];
+    let expected =
+        ["d.toml", "edge-QM-1.png", "edge-QM-1.svg", "edge.csv", "edge.json", "manifest.json", "seen.csv", "track.csv"];
     assert_eq!(files, expected);
+    let manifest: serde_json::Value =
+        serde_json::from_slice(&fs::read(dir.path().join("out/manifest.json")).unwrap()).unwrap();
+    assert_eq!(manifest["settings"]["edge line-pressure"], "200 psia");
     let json: serde_json::Value = serde_json::from_slice(&run(&["--json"])).unwrap();
     let well = &json["wells"][0];
     assert_eq!(well["lines"].as_array().unwrap().len(), 2);

@@ -1,7 +1,7 @@
 //! `wane edge`: the edge of natural flow.
 
 use super::args::EdgeArgs;
-use super::context::{provenance, quantity, scenario_copy, shown};
+use super::context::{file_name, provenance, quantity, scenario_copy, shown};
 use super::edge_text::edge_text;
 use super::failure::Failure;
 use super::{Done, output, seen};
@@ -31,9 +31,14 @@ pub fn run(args: &EdgeArgs) -> Result<Done, Failure> {
         }
         _ => Failure::of_run(error, &scenario, None),
     })?;
-    let provenance = provenance(&scenario, file);
+    let mut provenance = provenance(&scenario, file);
+    provenance.settings.extend(settings(args));
     if let Some(folder) = folder {
         let mut files = files(&map, &provenance)?;
+        if let Some(path) = &args.seen {
+            // As it was read: the map can be checked against it later.
+            files.push(OutFile::new("seen.csv", seen::bytes(path)?));
+        }
         files.push(scenario_copy(&document, &provenance.scenario_name, &files));
         folder.commit(files, &provenance)?;
     }
@@ -82,6 +87,19 @@ fn options(args: &EdgeArgs, scenario: &Scenario) -> Result<EdgeOptions, Failure>
         )));
     }
     Ok(options)
+}
+
+/// What was asked for, for the manifest.
+fn settings(args: &EdgeArgs) -> Vec<(String, String)> {
+    let mut list: Vec<(String, String)> = Vec::new();
+    for (option, texts) in [("line-pressure", &args.line_pressure), ("diameter", &args.diameter), ("gor", &args.gor)] {
+        if !texts.is_empty() {
+            list.push((format!("edge {option}"), texts.join(", ")));
+        }
+    }
+    list.push(("edge forecast".to_owned(), if args.no_forecast { "no" } else { "yes" }.to_owned()));
+    list.extend(args.seen.as_deref().map(|path| ("edge seen".to_owned(), file_name(path))));
+    list
 }
 
 fn files(map: &EdgeMap, provenance: &Provenance) -> Result<Vec<OutFile>, ReportError> {

@@ -13,11 +13,15 @@ const MOST_ROWS: usize = 1000;
 /// Highest pressure of a point, psia.
 const HIGHEST_PSIA: f64 = 30_000.0;
 
+/// The file as it is.
+pub fn bytes(path: &Path) -> Result<Vec<u8>, Failure> {
+    std::fs::read(path).map_err(|e| Failure::Usage(format!("--seen: cannot read {}: {e}", path.display())))
+}
+
 /// Reads the file. Every mistake names file, line and column.
 pub fn read(path: &Path, scenario: &Scenario) -> Result<Vec<Seen>, Failure> {
     let name = file_name(path);
-    let bytes =
-        std::fs::read(path).map_err(|e| Failure::Usage(format!("--seen: cannot read {}: {e}", path.display())))?;
+    let bytes = bytes(path)?;
     let text =
         String::from_utf8(bytes).map_err(|_| Failure::Usage(format!("--seen: {name} is not a text file in UTF-8")))?;
     let text = text.strip_prefix('\u{feff}').unwrap_or(&text);
