@@ -6,12 +6,15 @@ mod compare;
 mod compare_text;
 mod context;
 mod curves;
+mod edge;
+mod edge_text;
 mod failure;
 mod fluid;
 mod forecast;
 mod new;
 mod output;
 mod screen;
+mod seen;
 mod summary_text;
 
 pub use compare_text::compare_text;
@@ -47,6 +50,7 @@ pub fn run() -> ExitCode {
         Command::Compare(compare) => compare::run(compare),
         Command::Fluid(fluid) => fluid::run(fluid),
         Command::Curves(curves) => curves::run(curves),
+        Command::Edge(edge) => edge::run(edge),
     };
     match done {
         Ok(Done::Well) => ExitCode::SUCCESS,

@@ -1,7 +1,11 @@
-//! Studies that run many forecasts: cases side by side, the spread over tubing models.
+//! Studies that run many forecasts: cases side by side, the spread over tubing models; and the edge of natural flow around one.
 
 mod compare;
+mod edge;
 mod spread;
 
 pub use compare::{CaseOutcome, CaseRow, Comparison, Shift, WellShift};
+pub use edge::{
+    Edge, EdgeLine, EdgeMap, EdgeOptions, Gas, LineOf, Place, Seen, Stand, Verdict, Way, WellEdge, edge_map,
+};
 pub use spread::add_spread;

@@ -4,7 +4,10 @@
 mod axes;
 mod cases;
 mod curves;
+mod depth;
+mod edge;
 mod fluid;
+mod models;
 mod paint;
 mod pressure;
 mod rates;
@@ -14,7 +17,10 @@ mod traverse;
 
 pub use cases::compare_picture;
 pub use curves::curves_picture;
+pub use depth::depth_picture;
+pub use edge::edge_picture;
 pub use fluid::fluid_picture;
+pub use models::models_picture;
 pub use pressure::pressure_picture;
 pub use rates::rates_picture;
 pub use traverse::traverse_picture;
