@@ -29,6 +29,8 @@ pub enum Command {
     Fluid(FluidArgs),
     /// Inflow and tubing curves and the pressure traverse on a date
     Curves(CurvesArgs),
+    /// Edge map: the lowest reservoir pressure at which each well still flows, against water cut
+    Edge(EdgeArgs),
 }
 
 /// What most commands share.
@@ -143,6 +145,37 @@ pub struct CurvesArgs {
     #[arg(long)]
     pub all_models: bool,
     /// Write curves, traverses and their pictures into this folder
+    #[arg(short, long, value_name = "DIR")]
+    pub output: Option<PathBuf>,
+}
+
+#[derive(Debug, ClapArgs)]
+#[command(after_help = CAUTION)]
+pub struct EdgeArgs {
+    #[command(flatten)]
+    pub common: Common,
+    /// Use this case of the scenario
+    #[arg(long, value_name = "NAME")]
+    pub case: Option<String>,
+    /// Line pressure of a line beside the well's own: "150 psia" (repeatable) [default: 0.6 and 1.5 times its own]
+    #[arg(long, value_name = "PRESSURE")]
+    pub line_pressure: Vec<String>,
+    /// A string of this inside diameter beside the well's own: "1.995 in" (repeatable)
+    #[arg(long, value_name = "DIAMETER")]
+    pub diameter: Vec<String>,
+    /// Gas-oil ratio at every pressure: "600 scf/STB" (repeatable) [default: that of the forecast at each pressure]
+    #[arg(long, value_name = "RATIO")]
+    pub gor: Vec<String>,
+    /// Run no forecast: no track, and the gas-oil ratio is the gas that the oil dissolves at each pressure
+    #[arg(long)]
+    pub no_forecast: bool,
+    /// Wells seen dead or flowing, as a CSV file: label, reservoir, water_cut and perhaps well, line_pressure, gor, state
+    #[arg(long, value_name = "FILE")]
+    pub seen: Option<PathBuf>,
+    /// Print the lines as CSV
+    #[arg(long, conflicts_with = "json")]
+    pub csv: bool,
+    /// Write the map, the track and their pictures into this folder
     #[arg(short, long, value_name = "DIR")]
     pub output: Option<PathBuf>,
 }

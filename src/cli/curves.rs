@@ -10,8 +10,8 @@ use crate::report::folder::ResultFolder;
 use crate::report::human::number;
 use crate::report::labels::label;
 use crate::report::{
-    OutFile, Provenance, ReportError, curves_csv, curves_json, curves_picture, file_stem, picture_files, traverse_csv,
-    traverse_picture,
+    OutFile, Provenance, ReportError, curves_csv, curves_json, curves_picture, depth_picture, file_stem,
+    models_picture, picture_files, traverse_csv, traverse_picture,
 };
 use crate::scenario::Document;
 use crate::units::Dimension;
@@ -71,7 +71,12 @@ fn files(curves: &[WellCurves], provenance: &Provenance, all_models: bool) -> Re
             well.iter().map(|c| CurveSet { label: format!("method {}", c.method), ..c.curve.clone() }).collect();
         let drawing = curves_picture(&first.well, "Inflow and tubing curves", &named, provenance);
         files.extend(picture_files(&format!("curves-{stem}"), &drawing)?);
-        let drawing = traverse_picture(&first.well, &well.iter().collect::<Vec<_>>(), provenance);
+        let all: Vec<&WellCurves> = well.iter().collect();
+        if all.len() > 1 {
+            files.extend(picture_files(&format!("models-{stem}"), &models_picture(&first.well, &all, provenance))?);
+        }
+        files.extend(picture_files(&format!("depth-{stem}"), &depth_picture(first, provenance))?);
+        let drawing = traverse_picture(&first.well, &all, provenance);
         files.extend(picture_files(&format!("traverse-{stem}"), &drawing)?);
     }
     Ok(files)

@@ -8,12 +8,15 @@ mod compare;
 mod compare_text;
 mod context;
 mod curves;
+mod edge;
+mod edge_text;
 mod failure;
 mod fluid;
 mod forecast;
 mod new;
 mod output;
 mod screen;
+mod seen;
 mod summary_text;
 
 pub use calibrate_text::calibrate_text;
@@ -51,6 +54,7 @@ pub fn run() -> ExitCode {
         Command::Calibrate(calibrate) => calibrate::run(calibrate),
         Command::Fluid(fluid) => fluid::run(fluid),
         Command::Curves(curves) => curves::run(curves),
+        Command::Edge(edge) => edge::run(edge),
     };
     match done {
         Ok(Done::Well) => ExitCode::SUCCESS,

@@ -18,6 +18,7 @@ mod run;
 mod screens;
 mod spec;
 mod switching;
+mod track;
 
 pub use calendar::{date_at, days_between};
 pub use curves::{WellCurves, curves_on};
@@ -26,3 +27,4 @@ pub use onsets::OnsetSpec;
 pub use result::*;
 pub use run::{natural_flow_ends, run, run_with_curves};
 pub use spec::*;
+pub use track::{WellMoment, WellTrack, tracks, wells_after_events};

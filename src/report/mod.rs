@@ -7,6 +7,7 @@ mod chart;
 mod compare_files;
 mod csv_files;
 mod curve_files;
+mod edge_files;
 pub mod folder;
 pub mod human;
 mod json;
@@ -21,12 +22,13 @@ pub use calibration_files::{
     stations_csv,
 };
 pub use chart::{
-    Drawing, calibration_picture, compare_picture, curves_picture, fluid_picture, pressure_picture, rates_picture,
-    traverse_picture,
+    Drawing, calibration_picture, compare_picture, curves_picture, depth_picture, edge_picture, fluid_picture,
+    models_picture, pressure_picture, rates_picture, traverse_picture,
 };
 pub use compare_files::{compare_csv, compare_json};
 pub use csv_files::{events_csv, profile_csv, yearly_csv};
 pub use curve_files::{FluidSheet, curves_csv, curves_json, fluid_csv, fluid_json, traverse_csv};
+pub use edge_files::{edge_csv, edge_json, gas_text, line_text, track_csv};
 pub use labels::UnitSystem;
 pub use sanity::sanity;
 pub use summary::{doubts_json, summary_json};

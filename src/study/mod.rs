@@ -1,8 +1,13 @@
-//! Studies that run many forecasts: cases side by side, the spread over tubing models; models tuned to measurements.
+//! Studies that run many forecasts: cases side by side, the spread over tubing models; the edge of natural flow around one; and
+//! models tuned to measurements.
 
 pub mod calibrate;
 mod compare;
+mod edge;
 mod spread;
 
 pub use compare::{CaseOutcome, CaseRow, Comparison, Shift, WellShift};
+pub use edge::{
+    Edge, EdgeLine, EdgeMap, EdgeOptions, Gas, LineOf, Place, Seen, Stand, Verdict, Way, WellEdge, edge_map,
+};
 pub use spread::add_spread;

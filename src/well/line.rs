@@ -102,6 +102,35 @@ pub enum Line<'a> {
     },
 }
 
+/// A shared line as one well faces it, kept beyond the run that found it.
+#[derive(Debug, Clone, PartialEq)]
+pub struct KeptLine {
+    line: LineSpec,
+    others: f64,
+    own: f64,
+    felt: f64,
+}
+
+impl KeptLine {
+    /// Keeps a shared line; `None` for a fixed pressure.
+    pub fn of(line: Line<'_>) -> Option<Self> {
+        match line {
+            Line::Fixed(_) => None,
+            Line::Shared { line, others, own, felt } => Some(Self { line: line.clone(), others, own, felt }),
+        }
+    }
+
+    /// The line again.
+    pub fn line(&self) -> Line<'_> {
+        Line::Shared { line: &self.line, others: self.others, own: self.own, felt: self.felt }
+    }
+
+    /// Its pressure with all wells as they were, psia.
+    pub fn pressure_psia(&self) -> f64 {
+        self.line.pressure_psia(self.others + self.own)
+    }
+}
+
 impl Line<'_> {
     /// Its pressure while the well brings a stream, psia.
     #[inline]

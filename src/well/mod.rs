@@ -5,7 +5,7 @@ mod meeting;
 mod model;
 mod spec;
 
-pub use line::{Line, LineRate, LineSpec};
+pub use line::{KeptLine, Line, LineRate, LineSpec};
 pub use meeting::{
     Crossing, LOOK_FROM, LOOK_TO, Landscape, crossings, follow_top, follow_top_within, right_crossing, survey,
     survey_above, top_near,

@@ -51,14 +51,22 @@ pub(super) struct Look {
     pub mark: Mark,
 }
 
-const COLOURS: [Colour; 6] =
-    [[27, 58, 92], [214, 126, 44], [58, 142, 140], [128, 72, 118], [176, 158, 60], [96, 108, 120]];
+const COLOURS: [Colour; 8] = [
+    [27, 58, 92],
+    [214, 126, 44],
+    [58, 142, 140],
+    [128, 72, 118],
+    [176, 158, 60],
+    [96, 108, 120],
+    [112, 168, 214],
+    [150, 48, 44],
+];
 const DASHES: [Dash; 4] = [Dash::Solid, Dash::Long, Dash::Mixed, Dash::Short];
 const MARKS: [Mark; 4] = [Mark::Disc, Mark::Square, Mark::Triangle, Mark::Diamond];
 
 /// The look of the series of this index.
 pub(super) fn look(index: usize) -> Look {
-    // The dash moves on once more after a round of colours, so that 24 series differ.
+    // The dash moves on once more after a round of colours, so that 32 series differ.
     let dash = (index + index / COLOURS.len()) % DASHES.len();
     Look { colour: COLOURS[index % COLOURS.len()], width: 1.8, dash: DASHES[dash], mark: MARKS[index % MARKS.len()] }
 }

@@ -36,7 +36,7 @@ pub fn traverse_picture(well: &str, curves: &[&WellCurves], provenance: &Provena
     };
     let highest = Span::of(points().map(|p| pressure.of(p.pressure_psia))).map_or(1.0, |s| s.high);
     // Depth grows downwards.
-    let y = Span::new(0.0, deepest.high).rounded(true);
+    let y = Span::new(0.0, 1.01 * deepest.high);
     let x = Span::from_zero(highest, false);
     let panel = Panel { left: 84.0, top, right: 690.0, bottom: 650.0, x, y: y.turned() };
     panel.draw_y(&mut d, &format!("True vertical depth, {}", depth.text), 6, true);
