@@ -5,7 +5,7 @@ mod common;
 
 use common::near;
 use std::path::Path;
-use wane::forecast::{FieldSpec, Forecast, StopReason, Tolerance, run};
+use wane::forecast::{FieldSpec, Forecast, ModelOutcome, StopReason, Tolerance, run};
 use wane::inflow::{Coefficient, Measured};
 use wane::scenario::Document;
 use wane::study::add_spread;
@@ -143,14 +143,23 @@ fn calibration_meets_the_surveys_and_narrows_the_spread() {
     assert!(calibration.models.iter().all(|m| m.fitted.as_ref().unwrap().all.mean_absolute_psi > 0.5));
     assert_eq!(calibration.chosen, Some(0));
 
-    // Months from the earliest to the latest end; a model with which the well still flows counts to the end of the period.
-    let months = |spec: &FieldSpec| -> f64 {
+    // Months from the earliest to the latest end over some of the models; one with which the well still flows counts to the end of the
+    // period.
+    let whole = wane::forecast::days_between(spec.period.start, spec.period.end);
+    let ends = |spec: &FieldSpec| -> Vec<(&'static str, f64)> {
         let mut forecast = run(spec).unwrap();
         add_spread(spec, &mut forecast).unwrap();
-        let spread = forecast.wells[0].spread.clone().unwrap();
-        let (first, last) = (spread.earliest().unwrap().1.days, spread.latest().unwrap().1.days);
-        let whole = wane::forecast::days_between(spec.period.start, spec.period.end);
-        (if spread.still_flowing().is_empty() { last } else { whole } - first) / 30.436_875
+        let models = forecast.wells[0].spread.clone().unwrap().models.into_iter();
+        let days = models.filter_map(|m| match m.outcome {
+            ModelOutcome::Ends(end) => Some((m.method, end.days)),
+            ModelOutcome::StillFlows => Some((m.method, whole)),
+            ModelOutcome::Failed(_) => None,
+        });
+        days.collect()
+    };
+    let months = |list: &[(&'static str, f64)], counted: &dyn Fn(&str) -> bool| -> f64 {
+        let days = || list.iter().filter(|m| counted(m.0)).map(|m| m.1);
+        (days().fold(0.0, f64::max) - days().fold(whole, f64::min)) / 30.436_875
     };
     let mut before = spec.clone();
     let well = &mut before.wells[0];
@@ -162,8 +171,13 @@ fn calibration_meets_the_surveys_and_narrows_the_spread() {
         let (wellhead_psia, gor_scf_stb) = test.measured.separator().unwrap();
         test.measured = Measured::Separator { wellhead_psia, gor_scf_stb };
     }
-    let (before, after) = (months(&before), months(&spec));
-    assert!(before > 60.0 && after < 12.0, "{before} months before, {after} after");
+    let (before, after) = (ends(&before), ends(&spec));
+    let (all_before, all_after) = (months(&before, &|_| true), months(&after, &|_| true));
+    assert!(all_before > 60.0 && all_after < 12.0, "{before:?} {after:?}");
+    // Not only since models are left out: those that stay were far apart too.
+    let stays = |method: &str| after.iter().any(|m| m.0 == method);
+    assert!(after.len() >= 3, "{after:?}");
+    assert!(months(&before, &stays) > 3.0 * all_after, "{before:?} {after:?}");
 }
 
 /// The same field written in field and in metric units ends on the same day.
