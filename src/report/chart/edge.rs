@@ -126,7 +126,7 @@ fn key(d: &mut Drawing, well: &WellEdge, y: f64) {
         entry(d, &|d, x| dashed(d, &[(x, y), (x + 34.0, y)], WAY.width, WAY.dash, WAY.colour), "forecast");
     }
     if !well.tests.is_empty() {
-        entry(d, &|d, x| mark(d, (x + 17.0, y), Mark::Square, 4.0, QUIET), "test");
+        entry(d, &|d, x| mark(d, (x + 17.0, y), Mark::Square, 4.0, QUIET), "test or survey");
     }
     if well.seen.iter().any(|v| !v.seen.flowed) {
         entry(d, &|d, x| cross(d, (x + 17.0, y)), "seen dead");

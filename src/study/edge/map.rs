@@ -6,7 +6,7 @@ use super::line::{Edge, LEFT_PSI, Place, Subject};
 use super::{EdgeLine, EdgeMap, EdgeOptions, LineOf, Seen, Stand, Verdict, Way, WellEdge};
 use crate::fault::Fault;
 use crate::forecast::{Field, FieldSpec, RunError, WellTrack, tracks, wells_after_events};
-use crate::inflow::{Coefficient, FutureRule, RateBasis};
+use crate::inflow::{Coefficient, InflowTest, FutureRule, RateBasis};
 use crate::tubing::{Tubing, TubingSection};
 use crate::well::{KeptLine, WellModel};
 use rayon::prelude::*;
@@ -257,10 +257,20 @@ fn verdict(seen: &Seen, own: &Subject) -> Verdict {
 }
 
 fn tests(model: &WellModel) -> Vec<(Option<jiff::civil::Date>, f64, f64)> {
-    match &model.spec.inflow.coefficient {
-        Coefficient::Tests(tests) => tests.iter().map(|t| (t.on, t.reservoir_psia, t.water_cut)).collect(),
-        _ => Vec::new(),
+    let tests: &[InflowTest] = match &model.spec.inflow.coefficient {
+        Coefficient::Tests(tests) => tests,
+        _ => &[],
+    };
+    let surveys = &model.spec.flowing_surveys;
+    let surveyed = surveys.iter().filter_map(|s| Some((Some(s.on), s.reservoir_psia?, s.water_cut)));
+    // A survey and a test of one day at one pressure are one point.
+    let mut points: Vec<_> = tests.iter().map(|t| (t.on, t.reservoir_psia, t.water_cut)).collect();
+    for point in surveyed {
+        if !points.contains(&point) {
+            points.push(point);
+        }
     }
+    points
 }
 
 fn notes(spec: &FieldSpec, model: &WellModel, settled: bool) -> Vec<String> {

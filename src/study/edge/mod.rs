@@ -158,7 +158,7 @@ pub struct WellEdge {
     pub lines: Vec<EdgeLine>,
     /// Its way through the forecast.
     pub way: Option<Way>,
-    /// Tests of its inflow: date, reservoir pressure in psia, water cut.
+    /// Tests of its inflow and flowing surveys with a reservoir pressure: date, reservoir pressure in psia, water cut.
     pub tests: Vec<(Option<Date>, f64, f64)>,
     /// What was seen.
     pub seen: Vec<Verdict>,
