@@ -135,10 +135,11 @@ pub(super) fn well(
     atmospheric_pressure_psia: f64,
 ) -> Vec<Fault> {
     let mut out = dates(well.start, well.end, period);
+    let line_key = if well.shared_line.is_some() { "line" } else { "line_pressure" };
     if well.line_pressure_psia < atmospheric_pressure_psia - SAME_PRESSURE_PSI {
         out.push(
             Fault::new(
-                "line_pressure",
+                line_key,
                 format!(
                     "the line pressure ({:.2} psia) lies below atmospheric pressure \
                      ({atmospheric_pressure_psia:.2} psia)",
@@ -150,11 +151,8 @@ pub(super) fn well(
     }
     if well.line_pressure_psia >= tank.pressure_psia {
         out.push(
-            Fault::new(
-                "line_pressure",
-                "the line pressure is not below the tank's initial pressure: the well can never flow",
-            )
-            .help("check the unit"),
+            Fault::new(line_key, "the line pressure is not below the tank's initial pressure: the well can never flow")
+                .help("check the unit"),
         );
     }
     if well.minimum_flowing_pressure_psia.is_some_and(|floor_psia| floor_psia >= tank.pressure_psia) {

@@ -6,7 +6,7 @@ use super::line::{Edge, LEFT_PSI, Place, Subject};
 use super::{EdgeLine, EdgeMap, EdgeOptions, LineOf, Seen, Stand, Verdict, Way, WellEdge};
 use crate::fault::Fault;
 use crate::forecast::{Field, FieldSpec, RunError, WellTrack, tracks, wells_after_events};
-use crate::inflow::{Coefficient, InflowTest, FutureRule, RateBasis};
+use crate::inflow::{Coefficient, FutureRule, InflowTest, RateBasis};
 use crate::tubing::{Tubing, TubingSection};
 use crate::well::{KeptLine, WellModel};
 use rayon::prelude::*;
