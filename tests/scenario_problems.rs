@@ -57,7 +57,27 @@ const CASES: &[Case] = &[
     (
         "wellhead_temperature = \"110 degF\"",
         "",
-        &["the flowing temperature is not given", "one of wellhead_temperature, temperature"],
+        &["the flowing temperature is not given", "one of wellhead_temperature, temperature, heat"],
+    ),
+    (
+        "wellhead_temperature = \"110 degF\"",
+        "wellhead_temperature = \"110 degF\"\nheat = «{ surface_temperature = \"60 degF\" }»",
+        &["`wellhead_temperature` and `heat` exclude each other"],
+    ),
+    (
+        "wellhead_temperature = \"110 degF\"",
+        "heat = { surface_temperature = «\"300 degF\"» }",
+        &["the wellhead is hotter than the tank"],
+    ),
+    (
+        "wellhead_temperature = \"110 degF\"",
+        "heat = { surface_temperature = \"60 degF\", transfer = «\"4 Btu/h/ft/degF\"» }",
+        &["`Btu/h/ft/degF`"],
+    ),
+    (
+        "wellhead_temperature = \"110 degF\"",
+        "wellhead_temperature = \"110 degF\"\nrestrictions = [{ at = \"4000 ft\", diameter = «\"2.5 in\"» }]",
+        &["2.5 in does not restrict the tubing there", "below the 2.441 in"],
     ),
     (
         "wellhead_temperature = \"110 degF\"",
@@ -458,6 +478,8 @@ fn every_key_of_the_list_is_really_read() {
             ("well.OP-1.inflow.test".to_owned(), format!("[{{ {rest} = [[7]] }}]"))
         } else if let Some(rest) = path.strip_prefix("well.OP-1.tubing.sections.") {
             ("well.OP-1.tubing.sections".to_owned(), format!("[{{ {rest} = [[7]] }}]"))
+        } else if let Some(rest) = path.strip_prefix("well.OP-1.tubing.restrictions.") {
+            ("well.OP-1.tubing.restrictions".to_owned(), format!("[{{ {rest} = [[7]] }}]"))
         } else {
             (path, "[[7]]".to_owned())
         };

@@ -61,6 +61,8 @@ fn default_accuracy_holds_over_a_hypercube_of_wells() {
                 slip_factor: 1.0,
                 wellhead_temperature_degf: 110.0,
                 temperatures: Vec::new(),
+                heat: None,
+                restrictions: Vec::new(),
             };
             let stream = Stream { liquid_rate_stb_d, water_cut, gor_scf_stb };
             let [usual, fine] = [0.02, 2e-5].map(|psi| Tubing::new(&spec, None, 190.0, psi).expect("a sound well"));

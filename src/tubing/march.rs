@@ -11,6 +11,7 @@
 //! - the branch of the model (flow pattern, laminar or turbulent, gas or no gas) is held within a step, and its end
 //!   is located (see `border`). Stepping over one would cost 0.2 to 10 psi.
 
+use super::heat;
 use super::liquid;
 use super::model::{Branch, Flow, Gradient, Hydraulics, KINETIC_LIMIT};
 use super::path::Stretch;
@@ -60,6 +61,7 @@ pub(crate) struct March<'a, M> {
     per_gor_stb_scf: f64,
     slip_factor: f64,
     tolerance_psi: f64,
+    liquid_btu_lb_degf: f64,
 }
 
 /// Where the march stands.
@@ -72,11 +74,22 @@ pub(crate) struct Progress {
     wish_ft: f64,
     unwatched: f64,
     pub(crate) steps: u32,
+    /// Whether a restriction was critical.
+    pub choked: bool,
 }
 
 impl Progress {
     pub fn new(md_ft: f64, pressure_psia: f64) -> Self {
-        Self { md_ft, pressure_psia, kinetic: 0.0, wish_ft: 0.0, unwatched: UNWATCHED, steps: 0 }
+        Self { md_ft, pressure_psia, kinetic: 0.0, wish_ft: 0.0, unwatched: UNWATCHED, steps: 0, choked: false }
+    }
+
+    /// Through the restriction at the bottom of a stretch; whether there is one.
+    pub fn pass_down<M: Hydraulics>(&mut self, march: &March<'_, M>, stretch: &Stretch) -> bool {
+        let Some(throat) = &stretch.throat else { return false };
+        let (pressure_psia, critical) = throat.down(march, stretch, self.md_ft, self.pressure_psia);
+        self.pressure_psia = pressure_psia;
+        self.choked |= critical;
+        true
     }
 }
 
@@ -113,12 +126,23 @@ impl<'a, M: Hydraulics> March<'a, M> {
             per_gor_stb_scf: 1.0 / gor_scf_stb.max(1e-300),
             slip_factor,
             tolerance_psi: accuracy_psi * STEP_SHARE,
+            liquid_btu_lb_degf: heat::liquid_btu_lb_degf(fluid, water_fraction),
         }
+    }
+
+    /// Whether nothing flows.
+    pub fn at_rest(&self) -> bool {
+        self.rate_stb_s == 0.0
+    }
+
+    /// Heat capacity of the liquid.
+    pub fn liquid_btu_lb_degf(&self) -> f64 {
+        self.liquid_btu_lb_degf
     }
 
     /// The flow at a point, and how far it is above (positive) or below its bubble point, relatively.
     #[inline]
-    fn flow(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> (Flow, f64) {
+    pub(super) fn flow(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> (Flow, f64) {
         let pressure_psia = pressure_psia.max(PROPERTY_FLOOR_PSIA);
         let temperature_degf = stretch.temperature_degf(md_ft);
         let (fluid, bubble_point_psia) = self.fluid.in_situ_and_bubble_point(pressure_psia, temperature_degf);
@@ -248,6 +272,20 @@ impl<'a, M: Hydraulics> March<'a, M> {
         (flow, self.gradient(&flow, above, stretch, branch), pattern)
     }
 
+    /// Marches to a depth within a stretch, downwards or upwards, by way of the corners of its temperature. False: the
+    /// pressure ran out on the way up.
+    pub fn advance(&self, stretch: &Stretch, progress: &mut Progress, end_md_ft: f64) -> bool {
+        loop {
+            let stop_md_ft = stretch.next_stop_ft(progress.md_ft, end_md_ft);
+            if !self.advance_to(stretch, progress, stop_md_ft) {
+                return false;
+            }
+            if stop_md_ft == end_md_ft {
+                return true;
+            }
+        }
+    }
+
     /// One step of Dormand and Prince's pair on one branch; `h` is negative on the way up.
     #[inline]
     fn step(&self, stretch: &Stretch, md: f64, p: f64, start: Slope, h: f64, branch: Branch) -> Step {
@@ -287,8 +325,8 @@ impl<'a, M: Hydraulics> March<'a, M> {
         Step { pressure_psia: p + h * mean, end, error_psi: (h * error).abs(), least_margin, valley }
     }
 
-    /// Marches to `end_md_ft` within a stretch, downwards or upwards. False: the pressure ran out on the way up.
-    pub fn advance(&self, stretch: &Stretch, progress: &mut Progress, end_md_ft: f64) -> bool {
+    /// As `advance`, where nothing in the temperature is in the way.
+    fn advance_to(&self, stretch: &Stretch, progress: &mut Progress, end_md_ft: f64) -> bool {
         let direction = (end_md_ft - progress.md_ft).signum();
         let (mut branch, mut start) = self.begin(stretch, progress.md_ft, progress.pressure_psia);
         loop {

@@ -1,8 +1,10 @@
 //! The path of the tubing: survey and sections made into stretches of one diameter, inclination and temperature slope.
 
-use super::TubingSpec;
 use super::model::Pipe;
+use super::restriction::Throat;
+use super::{HeatSpec, RestrictionSpec, TubingSection, TubingSpec, heat};
 use crate::fault::Fault;
+use crate::roots::brent;
 
 /// Temperatures at which the surface tension correlations turn a corner, degF (Baker-Swerdloff: oil between 68 and
 /// 100, water between 74 and 280). Integration stops there, since it wants smooth functions.
@@ -10,6 +12,12 @@ const TENSION_CORNERS_DEGF: [f64; 4] = [68.0, 74.0, 100.0, 280.0];
 
 /// Stretches shorter than this are joined to their neighbour, ft.
 const LEAST_STRETCH_FT: f64 = 1e-6;
+/// Restrictions nearer than this to one another are at one depth, ft.
+const LEAST_RESTRICTION_GAP_FT: f64 = 1e-4;
+/// Largest cross-section of a restriction relative to the pipe's.
+const MOST_RESTRICTION: f64 = 0.999;
+/// Nearer to a corner the march stands on it, degF.
+const LEAST_CORNER_DEGF: f64 = 1e-6;
 
 /// A straight stretch of pipe of one diameter.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -20,15 +28,45 @@ pub(crate) struct Stretch {
     pub top_temperature_degf: f64,
     /// Temperature rise per foot of measured depth.
     pub temperature_slope_degf_ft: f64,
+    /// What the stream has above that line at the bottom; it fades upwards over a relaxation length.
+    pub excess_degf: f64,
+    pub per_relaxation_1_ft: f64,
+    /// Relaxation length per heat capacity of the stream; 0 where the temperature is given.
+    pub heat_resistance_ft_h_degf_btu: f64,
     pub pipe: Pipe,
     /// Reciprocal of the cross-section, 1/ft2.
     pub per_area_1_ft2: f64,
+    /// A restriction at the bottom.
+    pub throat: Option<Throat>,
 }
 
 impl Stretch {
     #[inline]
     pub fn temperature_degf(&self, md_ft: f64) -> f64 {
-        self.top_temperature_degf + self.temperature_slope_degf_ft * (md_ft - self.top_md_ft)
+        let line_degf = self.top_temperature_degf + self.temperature_slope_degf_ft * (md_ft - self.top_md_ft);
+        if self.excess_degf == 0.0 {
+            return line_degf;
+        }
+        line_degf + self.excess_degf * ((md_ft - self.bottom_md_ft) * self.per_relaxation_1_ft).exp()
+    }
+
+    /// Where the march from one depth to another has to stop first: the temperature passes a corner there. Stretches of
+    /// given temperature are cut at them beforehand.
+    pub fn next_stop_ft(&self, from_md_ft: f64, to_md_ft: f64) -> f64 {
+        if self.excess_degf == 0.0 {
+            return to_md_ft;
+        }
+        let (from, to) = (self.temperature_degf(from_md_ft), self.temperature_degf(to_md_ft));
+        let part = |corner: f64| (corner - from) / (to - from);
+        let Some(corner) = TENSION_CORNERS_DEGF
+            .into_iter()
+            .filter(|&corner| (corner - from).abs() > LEAST_CORNER_DEGF && part(corner) > 0.0 && part(corner) < 1.0)
+            .min_by(|a, b| part(*a).total_cmp(&part(*b)))
+        else {
+            return to_md_ft;
+        };
+        let miss = |md_ft: f64| self.temperature_degf(md_ft) - corner;
+        brent(miss, (from_md_ft, from - corner), (to_md_ft, to - corner), 1e-9)
     }
 
     pub fn tvd_ft(&self, md_ft: f64) -> f64 {
@@ -42,6 +80,8 @@ pub(crate) struct Path {
     pub stretches: Vec<Stretch>,
     pub perforations_md_ft: f64,
     pub perforations_tvd_ft: f64,
+    /// Whether the temperature comes from the heat that the stream loses.
+    pub loses_heat: bool,
 }
 
 impl Path {
@@ -60,6 +100,10 @@ impl Path {
         }
         faults.extend(section_faults(spec, survey_is_good.then_some(bottom_md_ft)));
         faults.extend(temperature_faults(spec, bottom_temperature_degf));
+        faults.extend(spec.heat.as_ref().map_or_else(Vec::new, |heat| heat_faults(heat, bottom_temperature_degf)));
+        if faults.is_empty() {
+            faults.extend(restriction_faults(spec, bottom_md_ft));
+        }
         if !(0.0..=10.0).contains(&spec.slip_factor) {
             faults.push(
                 Fault::new("slip_factor", format!("{} is no slip factor", spec.slip_factor))
@@ -124,7 +168,7 @@ fn temperature_faults(spec: &TubingSpec, bottom_temperature_degf: f64) -> Vec<Fa
             );
         }
     };
-    if spec.temperatures.is_empty() {
+    if spec.temperatures.is_empty() && spec.heat.is_none() {
         check("wellhead_temperature".into(), spec.wellhead_temperature_degf);
     }
     for (i, &(_, temperature_degf)) in spec.temperatures.iter().enumerate() {
@@ -147,6 +191,82 @@ fn temperature_faults(spec: &TubingSpec, bottom_temperature_degf: f64) -> Vec<Fa
         );
     }
     faults
+}
+
+fn heat_faults(heat: &HeatSpec, bottom_temperature_degf: f64) -> Vec<Fault> {
+    let mut faults = Vec::new();
+    let surface_degf = heat.surface_temperature_degf;
+    if surface_degf.is_nan() || surface_degf < -40.0 || surface_degf > bottom_temperature_degf {
+        faults.push(
+            Fault::new("heat.surface_temperature", format!("{surface_degf} degF is not that of ground above the tank"))
+                .help("between -40 degF and the tank's temperature"),
+        );
+    }
+    for (name, value) in [
+        ("conductivity", heat.conductivity_btu_h_ft_degf),
+        ("diffusivity", heat.diffusivity_ft2_h),
+        ("wellbore_radius", heat.wellbore_radius_ft),
+        ("producing_time", heat.producing_time_d),
+    ] {
+        if !(value > 0.0 && value < f64::INFINITY) {
+            faults.push(Fault::new(format!("heat.{name}"), format!("{value} is not above 0")));
+        }
+    }
+    // Infinite: the completion holds nothing back.
+    if heat.transfer_btu_h_ft2_degf.is_nan() || heat.transfer_btu_h_ft2_degf <= 0.0 {
+        faults.push(Fault::new("heat.transfer", format!("{} is not above 0", heat.transfer_btu_h_ft2_degf)));
+    }
+    faults
+}
+
+/// Of a tubing that is sound otherwise.
+fn restriction_faults(spec: &TubingSpec, bottom_md_ft: f64) -> Vec<Fault> {
+    let mut faults = Vec::new();
+    for (i, restriction) in spec.restrictions.iter().enumerate() {
+        let RestrictionSpec { at_md_ft, diameter_in, discharge_coefficient } = *restriction;
+        let key = |name: &str| format!("restrictions[{i}].{name}");
+        if !(at_md_ft > LEAST_STRETCH_FT && at_md_ft <= bottom_md_ft) {
+            faults.push(
+                Fault::new(key("at"), format!("{at_md_ft} ft lies outside the tubing"))
+                    .help("below the wellhead, down to the perforations"),
+            );
+            continue;
+        }
+        if spec.restrictions[..i].iter().any(|above| (above.at_md_ft - at_md_ft).abs() < LEAST_RESTRICTION_GAP_FT) {
+            faults.push(
+                Fault::new(key("at"), format!("there are two restrictions at {at_md_ft} ft"))
+                    .help("state the smaller one alone"),
+            );
+        }
+        // The pipe on both sides of it; an annulus by its cross-section.
+        let least_in2 = [-1.0, 1.0]
+            .into_iter()
+            .filter_map(|side| section_at(spec, at_md_ft + side * LEAST_STRETCH_FT))
+            .map(|section| section.diameter_in.powi(2) - section.inner_pipe_in.powi(2))
+            .fold(f64::INFINITY, f64::min);
+        if !(diameter_in > 0.0 && diameter_in * diameter_in < MOST_RESTRICTION * least_in2) {
+            faults.push(
+                Fault::new(key("diameter"), format!("{diameter_in} in does not restrict the tubing there"))
+                    .help(format!("above 0 and below the {:.3} in of the tubing", least_in2.sqrt())),
+            );
+        }
+        if !(discharge_coefficient > 0.0 && discharge_coefficient <= 1.0) {
+            faults.push(
+                Fault::new(key("discharge"), format!("{discharge_coefficient} is no coefficient of discharge"))
+                    .help("above 0 and at most 1"),
+            );
+        }
+    }
+    faults
+}
+
+/// The section at a measured depth.
+fn section_at(spec: &TubingSpec, md_ft: f64) -> Option<&TubingSection> {
+    spec.sections.iter().find(|section| md_ft < section.to_md_ft).or(spec.sections.last())
+}
+
+fn area_ft2(section: &TubingSection) -> f64 {
+    std::f64::consts::PI * (section.diameter_in.powi(2) - section.inner_pipe_in.powi(2)) / (4.0 * 144.0)
 }
 
 fn perforation_fault(bottom_md_ft: f64, end_md_ft: f64) -> Option<Fault> {
@@ -241,7 +361,9 @@ impl Temperatures<'_> {
             let part = if below_ft > above_ft { (md_ft - above_ft) / (below_ft - above_ft) } else { 1.0 };
             return above_degf + part * (below_degf - above_degf);
         }
-        let (top_ft, top_degf) = table.last().copied().unwrap_or((0.0, self.spec.wellhead_temperature_degf));
+        let wellhead_degf =
+            self.spec.heat.map_or(self.spec.wellhead_temperature_degf, |heat| heat.surface_temperature_degf);
+        let (top_ft, top_degf) = table.last().copied().unwrap_or((0.0, wellhead_degf));
         let top_tvd_ft = tvd_at(&self.spec.survey, top_ft);
         let height_ft = self.bottom_tvd_ft - top_tvd_ft;
         // A path without any depth has the upper temperature throughout.
@@ -284,8 +406,11 @@ fn cut(spec: &TubingSpec, bottom_md_ft: f64, bottom_temperature_degf: f64) -> Pa
     let mut ends: Vec<f64> = survey.iter().map(|&(md_ft, _)| md_ft).collect();
     ends.extend(spec.sections.iter().map(|section| section.to_md_ft));
     ends.extend(spec.temperatures.iter().map(|&(md_ft, _)| md_ft));
+    ends.extend(spec.restrictions.iter().map(|restriction| restriction.at_md_ft));
     tidy(&mut ends, bottom_md_ft);
-    temperatures.add_corners(&mut ends);
+    if spec.heat.is_none() {
+        temperatures.add_corners(&mut ends);
+    }
     tidy(&mut ends, bottom_md_ft);
 
     let mut stretches = Vec::with_capacity(ends.len());
@@ -294,8 +419,7 @@ fn cut(spec: &TubingSpec, bottom_md_ft: f64, bottom_temperature_degf: f64) -> Pa
         let end_tvd_ft = tvd_at(survey, end_md_ft);
         let length_ft = end_md_ft - top_md_ft;
         let middle_ft = top_md_ft + 0.5 * length_ft;
-        let section = spec.sections.iter().find(|section| middle_ft < section.to_md_ft);
-        if let Some(section) = section.or(spec.sections.last()) {
+        if let Some(section) = section_at(spec, middle_ft) {
             // An annulus: its hydraulic diameter in the correlations, its true cross-section in the velocities.
             let (outer_in, inner_in) = (section.diameter_in, section.inner_pipe_in);
             let sin_inclination = (end_tvd_ft - top_tvd_ft) / length_ft;
@@ -308,10 +432,30 @@ fn cut(spec: &TubingSpec, bottom_md_ft: f64, bottom_temperature_degf: f64) -> Pa
                 top_temperature_degf: top_degf,
                 temperature_slope_degf_ft: (end_degf - top_degf) / length_ft,
                 pipe,
-                per_area_1_ft2: 4.0 * 144.0 / (std::f64::consts::PI * (outer_in * outer_in - inner_in * inner_in)),
+                excess_degf: 0.0,
+                per_relaxation_1_ft: 0.0,
+                heat_resistance_ft_h_degf_btu: spec
+                    .heat
+                    .map_or(0.0, |heat| heat::resistance_ft_h_degf_btu(&heat, outer_in / 24.0)),
+                per_area_1_ft2: 1.0 / area_ft2(section),
+                throat: throat_at(spec, end_md_ft, section),
             });
         }
         (top_md_ft, top_tvd_ft) = (end_md_ft, end_tvd_ft);
     }
-    Path { stretches, perforations_md_ft: bottom_md_ft, perforations_tvd_ft: bottom_tvd_ft }
+    Path {
+        stretches,
+        perforations_md_ft: bottom_md_ft,
+        perforations_tvd_ft: bottom_tvd_ft,
+        loses_heat: spec.heat.is_some(),
+    }
+}
+
+/// The restriction at the end of a stretch in `above`.
+fn throat_at(spec: &TubingSpec, end_md_ft: f64, above: &TubingSection) -> Option<Throat> {
+    let at = |restriction: &&RestrictionSpec| (restriction.at_md_ft - end_md_ft).abs() < LEAST_RESTRICTION_GAP_FT;
+    let restriction = spec.restrictions.iter().find(at)?;
+    let below = section_at(spec, end_md_ft + LEAST_RESTRICTION_GAP_FT)?;
+    let (diameter_in, discharge) = (restriction.diameter_in, restriction.discharge_coefficient);
+    Some(Throat::new(diameter_in, discharge, area_ft2(above), area_ft2(below)))
 }
