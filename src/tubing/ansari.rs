@@ -49,10 +49,10 @@ pub enum Pattern {
     Annular,
 }
 
-const PATTERN_SHIFT: u16 = 2;
+const PATTERN_SHIFT: u32 = 2;
 /// Branch bit of slug flow whose turbulence would disperse the bubbles, were they not so many. The patch of dispersed flow
 /// between the two borders may be short: so each is located, though one of them changes nothing.
-const TURBULENT: u16 = 128;
+const TURBULENT: u32 = 128;
 
 /// Beyond this relative distance from a border its margin is not worked out: it is held there.
 const FAR: f64 = 0.2;
@@ -222,7 +222,7 @@ impl Hydraulics for Ansari {
             Pattern::Bubble => laminar_bit(bubbly(flow, pipe, bubble_holdup(flow), false).1),
             Pattern::DispersedBubble => laminar_bit(bubbly(flow, pipe, flow.no_slip_holdup, false).1),
         };
-        Branch(bits | ((pattern as u16) << PATTERN_SHIFT))
+        Branch(bits | ((pattern as u32) << PATTERN_SHIFT))
     }
 
     #[inline]

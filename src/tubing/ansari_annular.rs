@@ -29,9 +29,9 @@ const THIN_FILM: f64 = ENTRAINMENT_BEGINS + 8.0 * std::f64::consts::LN_10;
 const THICKEST: f64 = 0.5;
 
 // Branch bits beside the pattern; that of laminar flow is the core's.
-const NO_ENTRAINMENT: u16 = 16;
-const THIN: u16 = 32;
-const LAMINAR_FILM: u16 = 64;
+const NO_ENTRAINMENT: u32 = 16;
+const THIN: u32 = 32;
+const LAMINAR_FILM: u32 = 64;
 
 /// Relative distance of the gas velocity above that which carries droplets (Taitel, Barnea and Dukler 1980).
 #[inline]
@@ -72,7 +72,7 @@ pub struct Film {
 }
 
 /// The branch bits of a flow that is annular.
-pub fn bits(flow: &Flow, pipe: &Pipe) -> u16 {
+pub fn bits(flow: &Flow, pipe: &Pipe) -> u32 {
     let velocity = critical_velocity(flow);
     let entrainment = if velocity < ENTRAINMENT_BEGINS {
         NO_ENTRAINMENT
@@ -105,7 +105,7 @@ pub(super) fn film_margin(flow: &Flow, pipe: &Pipe, far: f64) -> f64 {
 }
 
 #[inline]
-fn entrained(velocity: f64, bits: u16) -> f64 {
+fn entrained(velocity: f64, bits: u32) -> f64 {
     if bits & NO_ENTRAINMENT != 0 { 0.0 } else { 1.0 - (-0.125 * (velocity - ENTRAINMENT_BEGINS)).exp() }
 }
 
@@ -173,7 +173,7 @@ fn film_share(x_squared: f64, y: f64, roughening: f64) -> (f64, bool) {
 impl Film {
     /// The film of a flow on a branch.
     #[inline]
-    pub fn new(flow: &Flow, pipe: &Pipe, bits: u16) -> Self {
+    pub fn new(flow: &Flow, pipe: &Pipe, bits: u32) -> Self {
         let velocity = critical_velocity(flow);
         let entrained = entrained(velocity, bits);
         let core = Core::new(flow, pipe, entrained);

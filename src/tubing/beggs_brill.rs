@@ -45,19 +45,19 @@ pub struct BeggsBrill {
 
 // Branch bits: the regime in two of them, the branch of S in two more, then four for the limits that act on the
 // holdup of the regime, and four for those of the other regime of transition flow.
-const REGIME_SHIFT: u16 = 2;
-const S_WINDOW: u16 = 16;
-const S_BELOW_ONE: u16 = 32;
-const LIMITS_SHIFT: u16 = 6;
-const OTHER_LIMITS_SHIFT: u16 = 10;
+const REGIME_SHIFT: u32 = 2;
+const S_WINDOW: u32 = 16;
+const S_BELOW_ONE: u32 = 32;
+const LIMITS_SHIFT: u32 = 6;
+const OTHER_LIMITS_SHIFT: u32 = 10;
 /// HL(0) is the no-slip holdup.
-const HORIZONTAL_FLOOR: u16 = 1;
+const HORIZONTAL_FLOOR: u32 = 1;
 /// C is zero.
-const NO_INCLINATION: u16 = 2;
+const NO_INCLINATION: u32 = 2;
 /// HL is at its lower limit.
-const FLOOR: u16 = 4;
+const FLOOR: u32 = 4;
 /// HL is 1.
-const CEILING: u16 = 8;
+const CEILING: u32 = 8;
 
 /// Keeps logarithms finite.
 const LEAST_HOLDUP: f64 = 1e-6;
@@ -182,7 +182,7 @@ impl BeggsBrill {
     }
 
     /// Which limits act on the holdup of a regime.
-    fn limits(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe) -> u16 {
+    fn limits(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe) -> u32 {
         let mut limits = 0;
         if map.ln_horizontal_holdup(regime) < map.ln_no_slip_holdup {
             limits |= HORIZONTAL_FLOOR;
@@ -207,7 +207,7 @@ impl BeggsBrill {
 
     /// The holdup in one regime other than transition, with a given set of limits.
     #[inline]
-    fn limited(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe, limits: u16) -> Holdup {
+    fn limited(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe, limits: u32) -> Holdup {
         let uphill = pipe.sin_inclination >= 0.0;
         let ln_horizontal = map.ln_horizontal_holdup(regime);
         let above_no_slip = ln_horizontal - map.ln_no_slip_holdup;
@@ -240,7 +240,7 @@ impl BeggsBrill {
     }
 
     /// The bits of the limits of a regime; of both regimes in transition flow.
-    fn limit_bits(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe) -> u16 {
+    fn limit_bits(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe) -> u32 {
         if regime == Regime::Transition {
             (self.limits(map, Regime::Segregated, flow, pipe) << LIMITS_SHIFT)
                 | (self.limits(map, Regime::Intermittent, flow, pipe) << OTHER_LIMITS_SHIFT)
@@ -306,7 +306,7 @@ impl Hydraulics for BeggsBrill {
             0
         };
         let reynolds = no_slip::reynolds(flow, pipe, flow.no_slip_density_lb_ft3());
-        Branch(limits | ((regime as u16) << REGIME_SHIFT) | exponent | laminar_bit(reynolds))
+        Branch(limits | ((regime as u32) << REGIME_SHIFT) | exponent | laminar_bit(reynolds))
     }
 
     #[inline]

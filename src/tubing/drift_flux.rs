@@ -79,17 +79,17 @@ const BUBBLE_K: f64 = 1.53;
 
 /// a1 to a2 of the fitted set; its bits in the branch.
 const RAMP: Range = Range { low: 0.06, high: 0.21, shift: 2 };
-const KU_SHIFT: u16 = 4;
+const KU_SHIFT: u32 = 4;
 
 /// The stretch of the table of Ku: 0 below it, 7 above.
-fn ku_stretch(diameter: f64) -> u16 {
-    KU.iter().filter(|(at, _)| diameter >= *at).count() as u16
+fn ku_stretch(diameter: f64) -> u32 {
+    KU.iter().filter(|(at, _)| diameter >= *at).count() as u32
 }
 
 /// Ku and how far the diameter is inside its stretch, relatively.
 #[inline]
-fn ku_on(diameter: f64, stretch: u16) -> (f64, f64) {
-    let i = usize::from(stretch);
+fn ku_on(diameter: f64, stretch: u32) -> (f64, f64) {
+    let i = stretch as usize;
     match (i.checked_sub(1).and_then(|i| KU.get(i)), KU.get(i)) {
         (Some((low, at_low)), Some((high, at_high))) => {
             let part = (diameter - low) / (high - low);

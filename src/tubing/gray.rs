@@ -41,9 +41,9 @@ const LEAST_ROUGHNESS_FT: f64 = 2.77e-5;
 const MOST_RELATIVE_ROUGHNESS: f64 = 0.05;
 
 // Branch bits.
-const RICH: u16 = 4;
-const ROUGHNESS_FLOOR: u16 = 8;
-const ROUGHNESS_CEILING: u16 = 16;
+const RICH: u32 = 4;
+const ROUGHNESS_FLOOR: u32 = 8;
+const ROUGHNESS_CEILING: u32 = 16;
 
 /// The numbers of the holdup.
 #[derive(Debug, Clone, Copy, PartialEq)]

@@ -30,9 +30,9 @@ const BUBBLE_SLIP_FT_S: f64 = 0.8;
 const LN_PRESSURE_BASE: f64 = 2.687_847_493_784_690_6; // 14.7 psia
 
 // Branch bits: bubble flow, the sides of three fitted ranges, the floor and the ceiling of the holdup.
-const BUBBLE: u16 = 4;
-const FLOOR: u16 = 8;
-const CEILING: u16 = 16;
+const BUBBLE: u32 = 4;
+const FLOOR: u32 = 8;
+const CEILING: u32 = 16;
 /// ln NL within 0.002 and 0.4, the range of the chart: beyond it the quartic turns over.
 const VISCOSITY: Range = Range { low: -6.214_608_098_422_191, high: -0.916_290_731_874_155, shift: 5 };
 /// ln H within 3e-6 and 6e-3.

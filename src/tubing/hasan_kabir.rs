@@ -35,9 +35,9 @@ const C0: f64 = 1.2;
 
 // Branch bits. All transitions are smooth, yet they begin at a point where no power series holds.
 /// Above the end of bubbly flow.
-const SLUG: u16 = 4;
+const SLUG: u32 = 4;
 /// Above the droplet criterion.
-const DROPLETS: u16 = 8;
+const DROPLETS: u32 = 8;
 /// Void fraction of slug flow between which the droplet criterion gains weight.
 const WEIGHT: Range = Range { low: 0.6, high: 0.8, shift: 4 };
 

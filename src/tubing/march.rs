@@ -16,6 +16,7 @@ use super::liquid;
 use super::model::{Branch, Flow, Gradient, Hydraulics, KINETIC_LIMIT};
 use super::path::Stretch;
 use super::traverse::Stream;
+use crate::fluid::baker_swerdloff::FLOOR_DYN_CM;
 use crate::fluid::{BlackOil, CappedOil};
 use crate::units::constants::FT3_PER_BBL;
 
@@ -93,6 +94,15 @@ impl Progress {
     }
 }
 
+/// The flow at one point.
+pub(super) struct Local {
+    pub flow: Flow,
+    /// How far the pressure is above (positive) or below the bubble point, relatively.
+    above: f64,
+    /// How far the tension of oil is above its floor, relatively.
+    above_floor: f64,
+}
+
 /// The right-hand side at one point.
 #[derive(Clone, Copy)]
 pub(super) struct Slope {
@@ -140,12 +150,12 @@ impl<'a, M: Hydraulics> March<'a, M> {
         self.liquid_btu_lb_degf
     }
 
-    /// The flow at a point, and how far it is above (positive) or below its bubble point, relatively.
+    /// The flow at a point. The tension of oil is free or at its floor as the branch says; without one, as it comes.
     #[inline]
-    pub(super) fn flow(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> (Flow, f64) {
+    pub(super) fn local(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64, branch: Option<Branch>) -> Local {
         let pressure_psia = pressure_psia.max(PROPERTY_FLOOR_PSIA);
         let temperature_degf = stretch.temperature_degf(md_ft);
-        let (fluid, bubble_point_psia) = self.fluid.in_situ_and_bubble_point(pressure_psia, temperature_degf);
+        let (fluid, corners) = self.fluid.in_situ_and_corners(pressure_psia, temperature_degf);
         // Volumes in ft3 per STB of liquid.
         let oil = FT3_PER_BBL * self.oil_fraction * fluid.bo_rb_stb;
         let water = FT3_PER_BBL * self.water_fraction * fluid.bw_rb_stb;
@@ -160,8 +170,13 @@ impl<'a, M: Hydraulics> March<'a, M> {
         } else if fluid.rs_scf_stb < self.gor_scf_stb {
             fluid.rs_scf_stb * self.per_gor_stb_scf - 1.0
         } else {
-            (pressure_psia / bubble_point_psia.max(1e-3) - 1.0).clamp(0.0, 1.0)
+            (pressure_psia / corners.bubble_point_psia.max(1e-3) - 1.0).clamp(0.0, 1.0)
         };
+        let above_floor =
+            if self.oil_fraction == 0.0 { f64::INFINITY } else { corners.free_tension_dyn_cm / FLOOR_DYN_CM - 1.0 };
+        let floor = branch.map_or(above_floor <= 0.0, |branch| branch.has(Branch::TENSION_FLOOR));
+        // A stage beyond the border stays finite.
+        let oil_tension = if floor { FLOOR_DYN_CM } else { corners.free_tension_dyn_cm.max(0.1 * FLOOR_DYN_CM) };
         let flow = Flow {
             liquid_velocity_ft_s: velocity * liquid,
             gas_velocity_ft_s: velocity * gas,
@@ -170,14 +185,20 @@ impl<'a, M: Hydraulics> March<'a, M> {
             gas_density_lb_ft3: fluid.gas_density_lb_ft3,
             liquid_viscosity_cp: oil_share * fluid.mu_o_cp + water_share * fluid.mu_w_cp,
             gas_viscosity_cp: fluid.mu_g_cp,
-            tension_dyn_cm: oil_share * fluid.sigma_oil_gas_dyn_cm + water_share * fluid.sigma_water_gas_dyn_cm,
+            tension_dyn_cm: oil_share * oil_tension + water_share * fluid.sigma_water_gas_dyn_cm,
             pressure_psia,
         };
-        (flow, above)
+        Local { flow, above, above_floor }
     }
 
-    fn choose(&self, flow: &Flow, above: f64, stretch: &Stretch) -> Branch {
-        if above >= 0.0 {
+    /// The flow as it comes.
+    pub(super) fn flow(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> Flow {
+        self.local(stretch, md_ft, pressure_psia, None).flow
+    }
+
+    fn choose(&self, local: &Local, stretch: &Stretch) -> Branch {
+        let flow = &local.flow;
+        if local.above >= 0.0 {
             return liquid::branch(flow, &stretch.pipe);
         }
         let mut branch = self.model.branch(flow, &stretch.pipe);
@@ -186,20 +207,21 @@ impl<'a, M: Hydraulics> March<'a, M> {
             branch.0 |= if self.free_holdup(flow, holdup) > 1.0 { Branch::SLIP_CEILING } else { 0 };
         }
         let near_sonic = self.on_model(flow, stretch, branch).kinetic > KINETIC_LIMIT;
-        Branch(branch.0 | if near_sonic { Branch::NEAR_SONIC } else { 0 })
+        let floor = if local.above_floor <= 0.0 { Branch::TENSION_FLOOR } else { 0 };
+        Branch(branch.0 | floor | if near_sonic { Branch::NEAR_SONIC } else { 0 })
     }
 
     fn branch(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> Branch {
-        let (flow, above) = self.flow(stretch, md_ft, pressure_psia);
-        self.choose(&flow, above, stretch)
+        self.choose(&self.local(stretch, md_ft, pressure_psia, None), stretch)
     }
 
     #[inline]
-    fn gradient(&self, flow: &Flow, above: f64, stretch: &Stretch, branch: Branch) -> Gradient {
+    fn gradient(&self, local: &Local, stretch: &Stretch, branch: Branch) -> Gradient {
         let (mut gradient, phase_margin) = if branch.has(Branch::SINGLE_PHASE) {
-            (liquid::gradient(flow, &stretch.pipe, branch), above)
+            (liquid::gradient(&local.flow, &stretch.pipe, branch), local.above)
         } else {
-            (self.on_model(flow, stretch, branch), -above)
+            let floor = if branch.has(Branch::TENSION_FLOOR) { -local.above_floor } else { local.above_floor };
+            (self.on_model(&local.flow, stretch, branch), floor.min(-local.above))
         };
         gradient.margin = gradient.margin.min(phase_margin);
         gradient
@@ -236,20 +258,19 @@ impl<'a, M: Hydraulics> March<'a, M> {
 
     /// The branch at a point and the slope on it.
     fn begin(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> (Branch, Slope) {
-        let (flow, above) = self.flow(stretch, md_ft, pressure_psia);
-        let branch = self.choose(&flow, above, stretch);
-        (branch, self.slope_of(&flow, above, stretch, branch))
+        let local = self.local(stretch, md_ft, pressure_psia, None);
+        let branch = self.choose(&local, stretch);
+        (branch, self.slope_of(&local, stretch, branch))
     }
 
     #[inline]
     pub(super) fn slope(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64, branch: Branch) -> Slope {
-        let (flow, above) = self.flow(stretch, md_ft, pressure_psia);
-        self.slope_of(&flow, above, stretch, branch)
+        self.slope_of(&self.local(stretch, md_ft, pressure_psia, Some(branch)), stretch, branch)
     }
 
     #[inline]
-    fn slope_of(&self, flow: &Flow, above: f64, stretch: &Stretch, branch: Branch) -> Slope {
-        let gradient = self.gradient(flow, above, stretch, branch);
+    fn slope_of(&self, local: &Local, stretch: &Stretch, branch: Branch) -> Slope {
+        let gradient = self.gradient(local, stretch, branch);
         // Where the kinetic term is held begins and ends like any other branch; a stage just beyond stays finite.
         let (held, kinetic_margin) = if branch.has(Branch::NEAR_SONIC) {
             (KINETIC_LIMIT, gradient.kinetic - KINETIC_LIMIT)
@@ -266,10 +287,10 @@ impl<'a, M: Hydraulics> March<'a, M> {
 
     /// Flow, gradient and name of the pattern at a point.
     pub fn describe(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> (Flow, Gradient, &'static str) {
-        let (flow, above) = self.flow(stretch, md_ft, pressure_psia);
-        let branch = self.choose(&flow, above, stretch);
-        let pattern = if above >= 0.0 { "liquid" } else { self.model.pattern(&flow, &stretch.pipe) };
-        (flow, self.gradient(&flow, above, stretch, branch), pattern)
+        let local = self.local(stretch, md_ft, pressure_psia, None);
+        let branch = self.choose(&local, stretch);
+        let pattern = if local.above >= 0.0 { "liquid" } else { self.model.pattern(&local.flow, &stretch.pipe) };
+        (local.flow, self.gradient(&local, stretch, branch), pattern)
     }
 
     /// Marches to a depth within a stretch, downwards or upwards, by way of the corners of its temperature. False: the

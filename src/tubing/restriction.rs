@@ -144,7 +144,7 @@ impl Throat {
         md_ft: f64,
         psia: f64,
     ) -> (Mixture, f64) {
-        let flow = march.flow(stretch, md_ft, psia).0;
+        let flow = march.flow(stretch, md_ft, psia);
         let gas = flow.gas_velocity_ft_s * flow.gas_density_lb_ft3;
         let flux = gas + flow.liquid_velocity_ft_s * flow.liquid_density_lb_ft3;
         let mixture = Mixture::new(
