@@ -50,6 +50,9 @@ const S_WINDOW: u32 = 16;
 const S_BELOW_ONE: u32 = 32;
 const LIMITS_SHIFT: u32 = 6;
 const OTHER_LIMITS_SHIFT: u32 = 10;
+/// Above the no-slip holdup at which the border of the regime turns a corner: the flow may pass beyond the tip of it for a
+/// few feet only, so the march stops there.
+const ABOVE_CORNER: u32 = 1 << 14;
 /// HL(0) is the no-slip holdup.
 const HORIZONTAL_FLOOR: u32 = 1;
 /// C is zero.
@@ -59,6 +62,10 @@ const FLOOR: u32 = 4;
 /// HL is 1.
 const CEILING: u32 = 8;
 
+/// Relative change of pressure allowed in a step where S rises from y = 1 downwards, within 2 % of y: at the start, and
+/// per ln y.
+const LEAST_COURSE: f64 = 0.02;
+const COURSE: f64 = 0.5;
 /// Keeps logarithms finite.
 const LEAST_HOLDUP: f64 = 1e-6;
 const LN_0_01: f64 = -4.605_170_185_988_091;
@@ -94,22 +101,37 @@ impl Map {
         }
     }
 
-    /// How far the flow is inside a regime: positive inside.
+    /// How far the flow is inside a regime: positive inside. Its border turns a corner at lam = 0.01 (segregated) or 0.4, on
+    /// one side of which the margin is meant.
     #[inline]
-    pub fn margin(&self, regime: Regime) -> f64 {
+    fn margin_on_side(&self, regime: Regime, above: bool) -> f64 {
         let n = self.ln_froude;
         let [l1, l2, l3, l4] = self.ln_limits;
         let above_0_01 = self.ln_no_slip_holdup - LN_0_01;
         let above_0_4 = self.ln_no_slip_holdup - LN_0_4;
-        match regime {
-            Regime::Segregated => (-above_0_01).min(l1 - n).max(above_0_01.min(l2 - n)),
-            Regime::Transition => above_0_01.min(n - l2).min(l3 - n),
-            Regime::Intermittent => {
-                let few = above_0_01.min(-above_0_4).min(n - l3).min(l1 - n);
-                few.max(above_0_4.min(n - l3).min(l4 - n))
-            }
-            Regime::Distributed => (-above_0_4).min(n - l1).max(above_0_4.min(n - l4)),
+        match (regime, above) {
+            (Regime::Segregated, false) => (-above_0_01).min(l1 - n),
+            (Regime::Segregated, true) => above_0_01.min(l2 - n),
+            (Regime::Transition, _) => above_0_01.min(n - l2).min(l3 - n),
+            (Regime::Intermittent, false) => above_0_01.min(-above_0_4).min(n - l3).min(l1 - n),
+            (Regime::Intermittent, true) => above_0_4.min(n - l3).min(l4 - n),
+            (Regime::Distributed, false) => (-above_0_4).min(n - l1),
+            (Regime::Distributed, true) => above_0_4.min(n - l4),
         }
+    }
+
+    /// On which side of the corner of a regime's border the flow is.
+    #[inline]
+    fn side(&self, regime: Regime) -> bool {
+        match regime {
+            Regime::Segregated => self.ln_no_slip_holdup >= LN_0_01,
+            _ => self.ln_no_slip_holdup >= LN_0_4,
+        }
+    }
+
+    /// How far the flow is inside a regime: positive inside.
+    pub fn margin(&self, regime: Regime) -> f64 {
+        self.margin_on_side(regime, false).max(self.margin_on_side(regime, true))
     }
 
     /// The regime; segregated flow is tested first.
@@ -306,7 +328,8 @@ impl Hydraulics for BeggsBrill {
             0
         };
         let reynolds = no_slip::reynolds(flow, pipe, flow.no_slip_density_lb_ft3());
-        Branch(limits | ((regime as u32) << REGIME_SHIFT) | exponent | laminar_bit(reynolds))
+        let side = if map.side(regime) { ABOVE_CORNER } else { 0 };
+        Branch(limits | ((regime as u32) << REGIME_SHIFT) | exponent | side | laminar_bit(reynolds))
     }
 
     #[inline]
@@ -326,9 +349,9 @@ impl Hydraulics for BeggsBrill {
             friction_psi_ft: pipe.friction_psi_ft(moody, no_slip_density, flow.mixture_velocity_ft_s()),
             kinetic: flow.kinetic(slip_density),
             holdup,
-            course: f64::INFINITY,
+            course: if branch.has(S_BELOW_ONE) { LEAST_COURSE + COURSE * ln_y.abs() } else { f64::INFINITY },
             margin: laminar_margin(reynolds, laminar)
-                .min(map.margin(regime))
+                .min(map.margin_on_side(regime, branch.has(ABOVE_CORNER)))
                 .min(exponent_margin(ln_y, branch))
                 .min(limits_margin),
         }
