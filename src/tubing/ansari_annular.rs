@@ -66,7 +66,7 @@ pub struct Film {
     /// Modified parameter YM.
     pub y: f64,
     /// How far the flow is inside its branch of this pattern.
-    branch_margin: f64,
+    pub(super) branch_margin: f64,
     /// Whether a film was found.
     found: bool,
 }
@@ -84,24 +84,6 @@ pub fn bits(flow: &Flow, pipe: &Pipe) -> u32 {
     let entrained = entrained(velocity, entrainment);
     let film = if film_reynolds(flow, pipe, entrained) < super::friction::LAMINAR_REYNOLDS { LAMINAR_FILM } else { 0 };
     entrainment | film | laminar_bit(Core::new(flow, pipe, entrained).reynolds)
-}
-
-/// How far a flow is inside annular flow as far as its film goes; continuous also where FE passes 0.9 and where the film
-/// turns laminar, at which the film itself jumps: within `far` of such a border what lies behind it counts by its
-/// distance.
-pub(super) fn film_margin(flow: &Flow, pipe: &Pipe, far: f64) -> f64 {
-    let bits = bits(flow, pipe);
-    let here = Film::new(flow, pipe, bits);
-    let velocity = critical_velocity(flow);
-    let thin = (velocity / THIN_FILM - 1.0).abs();
-    let laminar = laminar_margin(film_reynolds(flow, pipe, here.entrained), bits & LAMINAR_FILM != 0).abs();
-    let mut margin = here.margin().min(thin).min(laminar);
-    for (distance, bit) in [(thin, THIN), (laminar, LAMINAR_FILM)] {
-        if distance < far && -distance > margin {
-            margin = margin.max(Film::new(flow, pipe, bits ^ bit).margin().min(-distance));
-        }
-    }
-    margin
 }
 
 #[inline]
