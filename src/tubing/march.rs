@@ -15,6 +15,7 @@ use super::heat;
 use super::liquid;
 use super::model::{Branch, Flow, Gradient, Hydraulics, KINETIC_LIMIT};
 use super::path::Stretch;
+use super::slide::UNWATCHED;
 use super::traverse::Stream;
 use crate::fluid::baker_swerdloff::FLOOR_DYN_CM;
 use crate::fluid::{BlackOil, CappedOil};
@@ -32,11 +33,9 @@ const LEAST_ERROR: f64 = 0.001;
 const STEP_SHARE: f64 = 0.002;
 /// Weight of the third difference of the slopes in the error estimate.
 const BEND_SHARE: f64 = 1e-4;
-/// A branch that ends this soon after its begin is left unwatched for a while: the flow would chatter. As a change of
+/// A branch that ends this soon after its begin lingers on its border, see `slide`. As a change of
 /// pressure relative to the pressure, like the two below.
 const LEAST_BRANCH: f64 = 1e-8;
-/// First stretch to be left unwatched; it doubles each time.
-const UNWATCHED: f64 = 2e-4;
 /// Beyond a border the next branch is chosen this change of pressure ahead, relative to the pressure.
 const LOOK_AHEAD: f64 = 1e-6;
 /// How often a step is repeated, and by how much its bar rises each time.
@@ -73,7 +72,7 @@ pub(crate) struct Progress {
     pub kinetic: f64,
     /// Length wished for the next step, ft; 0: none yet.
     wish_ft: f64,
-    unwatched: f64,
+    pub(super) unwatched: f64,
     pub(crate) steps: u32,
     /// Whether a restriction was critical.
     pub choked: bool,
@@ -211,7 +210,7 @@ impl<'a, M: Hydraulics> March<'a, M> {
         Branch(branch.0 | floor | if near_sonic { Branch::NEAR_SONIC } else { 0 })
     }
 
-    fn branch(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> Branch {
+    pub(super) fn branch(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> Branch {
         self.choose(&self.local(stretch, md_ft, pressure_psia, None), stretch)
     }
 
@@ -257,7 +256,7 @@ impl<'a, M: Hydraulics> March<'a, M> {
     }
 
     /// The branch at a point and the slope on it.
-    fn begin(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> (Branch, Slope) {
+    pub(super) fn begin(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> (Branch, Slope) {
         let local = self.local(stretch, md_ft, pressure_psia, None);
         let branch = self.choose(&local, stretch);
         (branch, self.slope_of(&local, stretch, branch))
@@ -309,7 +308,7 @@ impl<'a, M: Hydraulics> March<'a, M> {
 
     /// One step of Dormand and Prince's pair on one branch; `h` is negative on the way up.
     #[inline]
-    fn step(&self, stretch: &Stretch, md: f64, p: f64, start: Slope, h: f64, branch: Branch) -> Step {
+    pub(super) fn step(&self, stretch: &Stretch, md: f64, p: f64, start: Slope, h: f64, branch: Branch) -> Step {
         let k1 = start.psi_ft;
         let mut least_margin = f64::INFINITY;
         let mut stage = |c: f64, slope: f64| {
@@ -350,6 +349,8 @@ impl<'a, M: Hydraulics> March<'a, M> {
     fn advance_to(&self, stretch: &Stretch, progress: &mut Progress, end_md_ft: f64) -> bool {
         let direction = (end_md_ft - progress.md_ft).signum();
         let (mut branch, mut start) = self.begin(stretch, progress.md_ft, progress.pressure_psia);
+        // The branch left at the last border.
+        let mut before = None;
         loop {
             progress.kinetic = progress.kinetic.max(start.kinetic);
             if progress.pressure_psia < LEAST_PRESSURE_PSIA {
@@ -392,7 +393,8 @@ impl<'a, M: Hydraulics> March<'a, M> {
                 }
             }
             if length == 0.0 {
-                self.unwatched(stretch, progress, end_md_ft, &mut branch, &mut start);
+                (branch, start) = self.linger(stretch, progress, end_md_ft, (before, branch), start);
+                before = None;
                 continue;
             }
             // The bar rises with every repetition: where the error does not fall with the step, a chain of repetitions
@@ -419,9 +421,15 @@ impl<'a, M: Hydraulics> March<'a, M> {
             start = step.end;
             if switched {
                 (progress.md_ft, progress.pressure_psia) = at_border;
+                let left = Some(branch);
                 let ahead = direction * (LOOK_AHEAD * pressure_length).min(rest);
                 branch = self.branch(stretch, progress.md_ft + ahead, progress.pressure_psia + start.psi_ft * ahead);
                 start = self.slope(stretch, progress.md_ft, progress.pressure_psia, branch);
+                before = left;
+                if self.ends_at_once(stretch, progress, direction, branch, start) {
+                    (branch, start) = self.linger(stretch, progress, end_md_ft, (before, branch), start);
+                    before = None;
+                }
             }
         }
     }
@@ -434,25 +442,6 @@ impl<'a, M: Hydraulics> March<'a, M> {
         // Geometric mean of the old wish and the best length, by how much of the wish was tried.
         let best = weight * fifth_root(AIM / error);
         if best > 0.0 { wish * best.powf(weight) } else { wish }
-    }
-
-    /// Goes on for a while on the branch that would end at once, then chooses anew.
-    fn unwatched(
-        &self,
-        stretch: &Stretch,
-        progress: &mut Progress,
-        end_md_ft: f64,
-        branch: &mut Branch,
-        start: &mut Slope,
-    ) {
-        let rest = end_md_ft - progress.md_ft;
-        let pressure_length = progress.pressure_psia / start.psi_ft.max(1e-12);
-        let h = rest.signum() * (progress.unwatched * pressure_length).min(rest.abs());
-        progress.unwatched *= 2.0;
-        let step = self.step(stretch, progress.md_ft, progress.pressure_psia, *start, h, *branch);
-        progress.md_ft = if h == rest { end_md_ft } else { progress.md_ft + h };
-        progress.pressure_psia = step.pressure_psia;
-        (*branch, *start) = self.begin(stretch, progress.md_ft, progress.pressure_psia);
     }
 }
 

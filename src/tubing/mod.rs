@@ -25,6 +25,7 @@ mod border;
 mod march;
 mod path;
 mod range;
+mod slide;
 mod spec;
 mod traverse;
 
