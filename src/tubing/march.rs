@@ -30,7 +30,7 @@ const AIM: f64 = 0.4;
 /// Error below which the next step grows no further, in the same units.
 const LEAST_ERROR: f64 = 0.001;
 /// Tolerance of one step's error estimate relative to the accuracy asked of the whole traverse.
-const STEP_SHARE: f64 = 0.002;
+const STEP_SHARE: f64 = 0.008;
 /// Weight of the third difference of the slopes in the error estimate.
 const BEND_SHARE: f64 = 1e-4;
 /// A branch that ends this soon after its begin lingers on its border, see `slide`. As a change of
@@ -45,6 +45,9 @@ const BAR_RISE: f64 = 4.0;
 const MOST_STEPS: u32 = 4000;
 /// The march upwards gives up below this pressure, psia.
 const LEAST_PRESSURE_PSIA: f64 = 1.0;
+/// Kinetic term above which steps go by the distance from 1: so large a relative change of pressure per (1 - Ek)/Ek.
+const FAST: f64 = 0.4;
+const FAST_COURSE: f64 = 0.3;
 /// The kinetic term of a trial that runs beyond the limit.
 const KINETIC_BEYOND: f64 = 0.95;
 /// No fluid property is asked for below this pressure, psia.
@@ -276,11 +279,17 @@ impl<'a, M: Hydraulics> March<'a, M> {
         } else {
             (gradient.kinetic.min(KINETIC_BEYOND), KINETIC_LIMIT - gradient.kinetic)
         };
+        // Towards sonic velocity the gradient rises as 1/(1 - Ek), and Ek with the square of 1/p.
+        let course = if gradient.kinetic > FAST && !branch.has(Branch::NEAR_SONIC) {
+            gradient.course.min(FAST_COURSE * (1.0 - held) / held)
+        } else {
+            gradient.course
+        };
         Slope {
             psi_ft: (gradient.gravity_psi_ft + gradient.friction_psi_ft) / (1.0 - held),
             margin: gradient.margin.min(kinetic_margin),
             kinetic: gradient.kinetic,
-            course: gradient.course,
+            course,
         }
     }
 
@@ -340,7 +349,8 @@ impl<'a, M: Hydraulics> March<'a, M> {
             - end.psi_ft / 40.0;
         // The fourth difference, which `error` measures, may vanish by chance; the third then still tells of a bend.
         let third_difference = -k1 / 0.24 + third.psi_ft / 0.105 - fourth.psi_ft / 0.08 + end.psi_ft / 0.14;
-        let error = error.hypot(BEND_SHARE * third_difference);
+        let bend = BEND_SHARE * third_difference;
+        let error = (error * error + bend * bend).sqrt();
         let valley = third.margin < start.margin && fourth.margin < end.margin;
         Step { pressure_psia: p + h * mean, end, error_psi: (h * error).abs(), least_margin, valley }
     }
@@ -438,6 +448,9 @@ impl<'a, M: Hydraulics> March<'a, M> {
     fn next_wish(&self, wish: f64, length: f64, error_psi: f64) -> f64 {
         let relative = error_psi / self.tolerance_psi;
         let error = (relative * relative + LEAST_ERROR * LEAST_ERROR).sqrt();
+        if length == wish {
+            return wish * fifth_root(AIM / error);
+        }
         let weight = length / wish;
         // Geometric mean of the old wish and the best length, by how much of the wish was tried.
         let best = weight * fifth_root(AIM / error);
