@@ -36,10 +36,12 @@ impl Roughness {
         // Haaland (1983), within 1.4 % of Colebrook.
         let start = 0.9 * scale * ln(6.9 * inverse + self.haaland);
         let argument = self.colebrook + viscous * start;
-        let per_argument = 1.0 / argument;
         let excess = start - scale * ln(argument);
-        // One over the slope 1 - scale viscous/a. The second step takes the logarithm's change as a series.
-        let step = argument / (argument - scale * viscous);
+        // One over the slope 1 - scale viscous/a, and 1/a with the same division. The second step takes the logarithm's change
+        // as a series.
+        let slope = argument - scale * viscous;
+        let per_both = 1.0 / (argument * slope);
+        let (per_argument, step) = (per_both * slope, per_both * argument * argument);
         let mut shift = -excess * step;
         let w = viscous * per_argument * shift;
         let rise = w * (1.0 + w * (-0.5 + w * (1.0 / 3.0)));

@@ -41,6 +41,8 @@ const WEIGHT: Range = Range { low: 0.6, high: 0.8, shift: 4 };
 const COURSE: f64 = 0.2;
 const COURSE_BELOW: f64 = 5.0;
 const LEAST_COURSE: f64 = 0.01;
+/// Droplets begin more mildly: steps may be so much longer.
+const DROPLETS_COURSE: f64 = 3.0;
 
 /// The default model.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -131,7 +133,7 @@ fn state(flow: &Flow, pipe: &Pipe, branch: Branch) -> State {
     if !WEIGHT.is_below(branch) {
         let droplet = DROPLETS_OVER_SMALL * small * (liquid / flow.gas_density_lb_ft3).sqrt();
         let above_droplets = gas / droplet - 1.0;
-        course = course.min(2.0 * course_of(above_droplets));
+        course = course.min(DROPLETS_COURSE * course_of(above_droplets));
         if above_droplets > 0.0 {
             void.annular = smooth_step((held - WEIGHT.low) / (WEIGHT.high - WEIGHT.low)) * blend(above_droplets);
             void.fraction = gas / ((C0 - (C0 - 1.0) * void.annular) * mixture + drift * (1.0 - void.annular));
@@ -144,7 +146,7 @@ fn state(flow: &Flow, pipe: &Pipe, branch: Branch) -> State {
     State { void, margin, course, in_slug }
 }
 
-/// Near the onset of a transition steps go by its distance (twice as far where droplets begin, a milder bend).
+/// Near the onset of a transition steps go by its distance.
 #[inline]
 fn course_of(above: f64) -> f64 {
     LEAST_COURSE + if above > 0.0 { COURSE * above } else { -COURSE_BELOW * above }
