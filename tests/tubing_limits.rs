@@ -224,8 +224,8 @@ fn a_gas_column_is_that_of_cullender_and_smith() {
 #[test]
 fn without_liquid_fast_gas_is_alone_in_every_model() {
     // At a velocity that carries every droplet the liquid's share vanishes with the liquid, and each model has the gradient of
-    // gas in the pipe. Gray's is of a rough pipe at Re 1e7: its weight alone is compared. How near each comes with 1e-9
-    // of liquid follows from its own correlation of the holdup: the bars.
+    // gas in the pipe. Of two models the weight alone is compared: Gray's friction is that of a rough pipe at Re 1e7, and that of
+    // Beggs and Brill has a factor e^S of lam/HL^2, which in distributed flow has no limit where both vanish.
     let pipe = Pipe::new(2.441, 0.0006, 1.0);
     let fast = flow(6e-8, 60.0, 45.0, 4.0, 0.6, 0.016, 12.0, 1200.0);
     let (weight, velocity) = (4.0 / 144.0, 60.0);
@@ -244,10 +244,11 @@ fn without_liquid_fast_gas_is_alone_in_every_model() {
         // exp(-0.1 vgc/(vSg - vgc)) leaves some of the slug's holdup to the default model.
         let bar = match method {
             TubingMethod::HasanKabir => 0.05,
+            TubingMethod::Gray => 0.005,
             _ => 0.002,
         };
         assert!((found.gravity_psi_ft / weight - 1.0).abs() < bar, "{}: {found:?} {weight}", method.name());
-        if method != TubingMethod::Gray {
+        if !matches!(method, TubingMethod::Gray | TubingMethod::BeggsBrill) {
             assert!((found.friction_psi_ft / friction - 1.0).abs() < bar, "{}: {found:?} {friction}", method.name());
         }
     }

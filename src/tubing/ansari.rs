@@ -28,7 +28,7 @@ use super::ValidRange;
 use super::ansari_annular::{self as annular, Film};
 use super::ansari_slug as slug;
 use super::hasan_kabir::small_bubble_ft_s;
-use super::model::{Branch, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe, laminar_bit, laminar_margin};
+use super::model::{Branch, Course, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe, laminar_bit, laminar_margin};
 use super::no_slip;
 use crate::units::constants::GRAVITY_FT_S2;
 
@@ -211,7 +211,7 @@ fn bubbly(flow: &Flow, pipe: &Pipe, holdup: f64, laminar: bool) -> (Gradient, f6
         kinetic: flow.kinetic(density),
         holdup,
         margin: laminar_margin(reynolds, laminar),
-        course: f64::INFINITY,
+        course: Course::FREE,
     };
     (gradient, reynolds)
 }

@@ -16,7 +16,7 @@
 //! smallest root x is the film. Slug flow where HL > 0.12 (bridging) or where the film is unstable (Barnea 1987):
 //! YM > XM^2 (2 - 1.5 x)/[x^3 (1 - 1.5 x)].
 
-use super::model::{Branch, DYN_CM_PER_LBM_S2, Flow, Gradient, IN2_PER_FT2, Pipe, laminar_bit, laminar_margin};
+use super::model::{Branch, Course, DYN_CM_PER_LBM_S2, Flow, Gradient, IN2_PER_FT2, Pipe, laminar_bit, laminar_margin};
 
 /// lbm/(ft s) in a cp.
 const LBM_FT_S_PER_CP: f64 = 6.719_69e-4;
@@ -248,7 +248,7 @@ impl Film {
             kinetic: flow.kinetic(density),
             holdup,
             margin: self.branch_margin,
-            course: f64::INFINITY,
+            course: Course::FREE,
         }
     }
 }

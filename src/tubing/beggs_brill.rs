@@ -19,7 +19,7 @@
 
 use super::ValidRange;
 use super::groups::LnGroups;
-use super::model::{Branch, Flow, Gradient, Hydraulics, Pipe, laminar_bit, laminar_margin};
+use super::model::{Branch, Course, Flow, Gradient, Hydraulics, Pipe, laminar_bit, laminar_margin};
 use super::no_slip;
 use crate::units::constants::GRAVITY_FT_S2;
 
@@ -349,7 +349,11 @@ impl Hydraulics for BeggsBrill {
             friction_psi_ft: pipe.friction_psi_ft(moody, no_slip_density, flow.mixture_velocity_ft_s()),
             kinetic: flow.kinetic(slip_density),
             holdup,
-            course: if branch.has(S_BELOW_ONE) { LEAST_COURSE + COURSE * ln_y.abs() } else { f64::INFINITY },
+            course: if branch.has(S_BELOW_ONE) {
+                Course::both(LEAST_COURSE + COURSE * ln_y.abs())
+            } else {
+                Course::FREE
+            },
             margin: laminar_margin(reynolds, laminar)
                 .min(map.margin_on_side(regime, branch.has(ABOVE_CORNER)))
                 .min(exponent_margin(ln_y, branch))

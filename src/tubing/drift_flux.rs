@@ -32,7 +32,9 @@
 //! Shi, Holmes, Durlofsky, Aziz, Diaz, Alkaya and Oddie, SPE Journal 10 (March 2005) 24.
 
 use super::ValidRange;
-use super::model::{Branch, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe, Range, laminar_bit, laminar_margin};
+use super::model::{
+    Branch, Course, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe, Range, laminar_bit, laminar_margin,
+};
 use crate::units::constants::GRAVITY_FT_S2;
 
 /// The model.
@@ -283,7 +285,7 @@ impl Hydraulics for DriftFlux {
             kinetic: flow.kinetic(density),
             holdup,
             margin: laminar_margin(reynolds, laminar).min(state.margin),
-            course: f64::INFINITY,
+            course: Course::FREE,
         }
     }
 

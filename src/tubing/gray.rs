@@ -24,7 +24,7 @@
 
 use super::ValidRange;
 use super::friction::Roughness;
-use super::model::{Branch, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe};
+use super::model::{Branch, Course, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe};
 use crate::units::constants::GRAVITY_FT_S2;
 
 /// The model.
@@ -128,7 +128,7 @@ impl Hydraulics for Gray {
             kinetic: flow.kinetic(density),
             holdup,
             margin: rich_margin.min(limit_margin).min(1.0),
-            course: f64::INFINITY,
+            course: Course::FREE,
         }
     }
 

@@ -22,7 +22,7 @@
 
 use super::ValidRange;
 use super::groups::LnGroups;
-use super::model::{Branch, Flow, Gradient, Hydraulics, Pipe, Range, laminar_bit, laminar_margin};
+use super::model::{Branch, Course, Flow, Gradient, Hydraulics, Pipe, Range, laminar_bit, laminar_margin};
 use std::f64::consts::LN_10;
 
 /// Slip velocity of bubble flow, ft/s.
@@ -224,7 +224,7 @@ impl Hydraulics for HagedornBrown {
             friction_psi_ft,
             kinetic: flow.kinetic(state.density_lb_ft3),
             holdup: state.holdup,
-            course: f64::INFINITY,
+            course: Course::FREE,
             margin: laminar_margin(state.reynolds, laminar).min(state.margin),
         }
     }

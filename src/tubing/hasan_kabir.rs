@@ -26,7 +26,9 @@
 //! and Sayarpour, J. Pet. Sci. Eng. 71 (2010) 114 (blended void fraction). Constants from memory of the papers.
 
 use super::ValidRange;
-use super::model::{Branch, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe, Range, laminar_bit, laminar_margin};
+use super::model::{
+    Branch, Course, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe, Range, laminar_bit, laminar_margin,
+};
 use crate::elementary::exp;
 use crate::units::constants::GRAVITY_FT_S2;
 
@@ -39,7 +41,8 @@ const WEIGHT: Range = Range { low: 0.6, high: 0.8, shift: 4 };
 // The transitions are smooth, yet no power series holds at their onset: steps go by the distance from it. So many relative
 // changes of pressure are allowed per relative distance above it, below it (where nothing happens yet), and at it.
 const COURSE: f64 = 0.2;
-const COURSE_BELOW: f64 = 5.0;
+const COURSE_BELOW: f64 = 0.5;
+const COURSE_LEAVING: f64 = 5.0;
 const LEAST_COURSE: f64 = 0.01;
 /// Droplets begin more mildly: steps may be so much longer.
 const DROPLETS_COURSE: f64 = 3.0;
@@ -104,7 +107,7 @@ pub fn void(flow: &Flow, pipe: &Pipe) -> Void {
 struct State {
     void: Void,
     margin: f64,
-    course: f64,
+    course: Course,
     /// Void fraction of slug flow.
     in_slug: f64,
 }
@@ -121,7 +124,7 @@ fn state(flow: &Flow, pipe: &Pipe, branch: Branch) -> State {
     let bubbly_end = (C0 * flow.liquid_velocity_ft_s + small) * (1.0 / (4.0 - C0)) * pipe.sin_inclination.max(0.0);
     // In horizontal pipe bubbly flow ends at once.
     let above_bubbly = gas / bubbly_end.max(1e-9) - 1.0;
-    let (mut slug, mut drift, mut course) = (0.0, small, course_of(above_bubbly));
+    let (mut slug, mut drift, mut course) = (0.0, small, course_of(above_bubbly, 1.0));
     if above_bubbly > 0.0 {
         slug = blend(above_bubbly);
         let long = 0.35 * (buoyancy * pipe.diameter_ft).sqrt() * pipe.long_bubble_factor;
@@ -133,7 +136,7 @@ fn state(flow: &Flow, pipe: &Pipe, branch: Branch) -> State {
     if !WEIGHT.is_below(branch) {
         let droplet = DROPLETS_OVER_SMALL * small * (liquid / flow.gas_density_lb_ft3).sqrt();
         let above_droplets = gas / droplet - 1.0;
-        course = course.min(DROPLETS_COURSE * course_of(above_droplets));
+        course = course.min(course_of(above_droplets, DROPLETS_COURSE));
         if above_droplets > 0.0 {
             void.annular = smooth_step((held - WEIGHT.low) / (WEIGHT.high - WEIGHT.low)) * blend(above_droplets);
             void.fraction = gas / ((C0 - (C0 - 1.0) * void.annular) * mixture + drift * (1.0 - void.annular));
@@ -146,10 +149,18 @@ fn state(flow: &Flow, pipe: &Pipe, branch: Branch) -> State {
     State { void, margin, course, in_slug }
 }
 
-/// Near the onset of a transition steps go by its distance.
+/// Near the onset of a transition steps go by its distance. Below it nothing happens yet: only a step towards it, up the
+/// well, must not overlook it.
 #[inline]
-fn course_of(above: f64) -> f64 {
-    LEAST_COURSE + if above > 0.0 { COURSE * above } else { -COURSE_BELOW * above }
+fn course_of(above: f64, times: f64) -> Course {
+    if above > 0.0 {
+        Course::both(times * (LEAST_COURSE + COURSE * above))
+    } else {
+        Course {
+            rise: times * (LEAST_COURSE - COURSE_LEAVING * above),
+            fall: times * (LEAST_COURSE - COURSE_BELOW * above),
+        }
+    }
 }
 
 fn void_branch(flow: &Flow, pipe: &Pipe) -> Branch {

@@ -13,7 +13,7 @@
 
 use super::heat;
 use super::liquid;
-use super::model::{Branch, Flow, Gradient, Hydraulics, KINETIC_LIMIT};
+use super::model::{Branch, Course, Flow, Gradient, Hydraulics, KINETIC_LIMIT};
 use super::path::Stretch;
 use super::slide::UNWATCHED;
 use super::traverse::Stream;
@@ -111,7 +111,7 @@ pub(super) struct Slope {
     pub psi_ft: f64,
     pub margin: f64,
     kinetic: f64,
-    course: f64,
+    course: Course,
 }
 
 /// One attempted step.
@@ -281,7 +281,7 @@ impl<'a, M: Hydraulics> March<'a, M> {
         };
         // Towards sonic velocity the gradient rises as 1/(1 - Ek), and Ek with the square of 1/p.
         let course = if gradient.kinetic > FAST && !branch.has(Branch::NEAR_SONIC) {
-            gradient.course.min(FAST_COURSE * (1.0 - held) / held)
+            gradient.course.min(Course::both(FAST_COURSE * (1.0 - held) / held))
         } else {
             gradient.course
         };
@@ -375,7 +375,8 @@ impl<'a, M: Hydraulics> March<'a, M> {
             if progress.wish_ft == 0.0 {
                 progress.wish_ft = FIRST_STEP_RELATIVE * pressure_length;
             }
-            let mut wish = progress.wish_ft.min(start.course.min(STEP_RELATIVE) * pressure_length);
+            let course = if direction > 0.0 { start.course.rise } else { start.course.fall };
+            let mut wish = progress.wish_ft.min(course.min(STEP_RELATIVE) * pressure_length);
             progress.steps += 1;
             if progress.steps > MOST_STEPS {
                 wish = rest;

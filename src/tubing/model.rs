@@ -150,6 +150,32 @@ impl Branch {
     }
 }
 
+/// Relative changes of pressure that a step may make.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Course {
+    /// Upwards in pressure: on the march down.
+    pub rise: f64,
+    /// Downwards in pressure: on the march up.
+    pub fall: f64,
+}
+
+impl Course {
+    /// No limit.
+    pub const FREE: Self = Self { rise: f64::INFINITY, fall: f64::INFINITY };
+
+    /// The same limit both ways.
+    #[inline]
+    pub fn both(change: f64) -> Self {
+        Self { rise: change, fall: change }
+    }
+
+    /// The smaller of two.
+    #[inline]
+    pub fn min(self, other: Self) -> Self {
+        Self { rise: self.rise.min(other.rise), fall: self.fall.min(other.fall) }
+    }
+}
+
 /// The parts of the pressure gradient at one point.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Gradient {
@@ -164,9 +190,9 @@ pub struct Gradient {
     /// How far inside its branch the flow is: positive inside, zero on the border, negative beyond it; continuous,
     /// of the order of a relative distance. It is by its sign change that the traverse finds the switches.
     pub margin: f64,
-    /// The relative change of pressure over which the gradient may be expected to change its course; infinite where
+    /// The relative change of pressure over which the gradient may be expected to change its course; free where
     /// nothing but the fluid bends it.
-    pub course: f64,
+    pub course: Course,
 }
 
 /// Ek at which the kinetic term is held (convention 4.8(13)).

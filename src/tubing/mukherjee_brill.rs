@@ -24,7 +24,7 @@
 
 use super::ValidRange;
 use super::groups::LnGroups;
-use super::model::{Branch, Flow, Gradient, Hydraulics, Pipe, laminar_bit, laminar_margin};
+use super::model::{Branch, Course, Flow, Gradient, Hydraulics, Pipe, laminar_bit, laminar_margin};
 use super::no_slip;
 use std::f64::consts::LN_10;
 
@@ -174,7 +174,7 @@ impl Hydraulics for MukherjeeBrill {
             kinetic: flow.kinetic(density),
             holdup,
             margin: margin.min(laminar_margin(reynolds, laminar)),
-            course: f64::INFINITY,
+            course: Course::FREE,
         }
     }
 
