@@ -270,6 +270,23 @@ fn every_word_of_a_choice_is_understood() {
 }
 
 #[test]
+fn heat_replaces_a_stated_temperature_and_the_other_way_round() {
+    let document = Document::parse("full.toml", FULL).unwrap_or_else(|problems| panic!("{problems}"));
+    let with = |set: &str| document.resolve(None, &[set.to_owned()]).unwrap_or_else(|problems| panic!("{problems}"));
+    for set in
+        ["well.A.tubing.heat={ surface_temperature = \"60 degF\" }", "well.A.tubing.heat.surface_temperature=60 degF"]
+    {
+        let tubing = with(set).field.wells.remove(0).tubing;
+        let heat = tubing.heat.expect("set");
+        // The defaults of the reference.
+        assert_eq!((heat.surface_temperature_degf, heat.conductivity_btu_h_ft_degf), (60.0, 1.4));
+        assert_eq!((heat.diffusivity_ft2_h, heat.wellbore_radius_ft), (0.04, 0.354));
+        assert_eq!((heat.transfer_btu_h_ft2_degf, heat.producing_time_d), (f64::INFINITY, 365.2425));
+    }
+    assert!(with("well.C.tubing.wellhead_temperature=98 degF").field.wells[2].tubing.heat.is_none());
+}
+
+#[test]
 fn tests_replace_a_stated_coefficient_and_what_belongs_to_it() {
     let document = Document::parse("full.toml", FULL).unwrap_or_else(|problems| panic!("{problems}"));
     let test = "well.B.inflow.test=[{ reservoir = \"2900 psia\", flowing = \"2200 psia\", rate = \"700 STB/d\" }]";

@@ -117,6 +117,21 @@ fn default_accuracy_holds_over_a_hypercube_of_wells() {
                     method.name(),
                     well.spec
                 );
+                // Up and down again; where a pattern jumps, more than one wellhead pressure may belong to one below.
+                if matches!(
+                    method,
+                    TubingMethod::Ansari | TubingMethod::HagedornBrown | TubingMethod::BeggsBrill | TubingMethod::Gray
+                ) {
+                    return Some(((found - converged).abs(), (split - found).abs()));
+                }
+                let back = usual.wellhead_pressure(fluid, stream, found).expect("it came from the surface");
+                let again = usual.flowing_pressure(fluid, stream, back).pressure_psia;
+                assert!(
+                    (again - found).abs() < 0.05,
+                    "{} {:?} {stream:?} {wellhead_psia}: {found}, {back}, {again}",
+                    method.name(),
+                    well.spec
+                );
                 Some(((found - converged).abs(), (split - found).abs()))
             })
             .collect();
