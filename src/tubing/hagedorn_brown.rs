@@ -13,7 +13,7 @@
 //!
 //! # Limitation
 //! Fitted to vertical 1 to 1.5 in. tubing of 1,500 ft, 10 to 110 cp. NL is held in 0.002 to 0.4 inside the CNL fit,
-//! H below 6e-3 (under 3e-6, where the chart ends, HL/psi falls as H^1.1, as it does there, so that no liquid leaves gas), B below 0.09; psi is 1 up to where its fit exceeds 1 (B = 0.0123). The holdup jumps where bubble flow
+//! H in 3e-6 to 6e-3 (below 1e-7 HL/psi falls with H, so that no liquid leaves gas), B below 0.09; psi is 1 up to where its fit exceeds 1 (B = 0.0123). The holdup jumps where bubble flow
 //! ends. In deviated pipe only the gravity term changes.
 //!
 //! # Source
@@ -37,9 +37,8 @@ const CEILING: u32 = 16;
 const VISCOSITY: Range = Range { low: -6.214_608_098_422_191, high: -0.916_290_731_874_155, shift: 5 };
 /// ln H within 3e-6 and 6e-3.
 const CORRELATING: Range = Range { low: -12.716_898_269_296_165, high: -5.115_995_809_754_082, shift: 7 };
-/// The fit at the lower end of H, and its slope in logarithms there; a test holds them to the fit.
-const LEAST_OVER_PSI: f64 = 0.077_663_030_991_129_42;
-const LEAST_POWER: f64 = 1.109_993_052_733_463_8;
+/// ln H from 1e-7 up: below it HL/psi falls in proportion to H, since without liquid it has to vanish.
+const VANISHING: Range = Range { low: -16.118_095_650_958_32, high: f64::INFINITY, shift: 11 };
 /// ln B from where the fit of psi rises above 1 (B = 0.0123) to 0.09.
 const SECONDARY: Range = Range { low: -4.398_143_709_447_593, high: -2.407_945_608_651_872, shift: 9 };
 
@@ -59,17 +58,10 @@ fn log10_cnl(ln_viscosity_number: f64) -> f64 {
     -2.698_51 + x * (0.158_41 + x * (-0.551 + x * (0.547_85 - x * 0.121_95)))
 }
 
-/// HL/psi from the natural logarithm of the correlating group H, which is held at the upper end of its range; below the lower end
-/// it falls with the power of H that the fit has there.
+/// HL/psi from the natural logarithm of the correlating group H, which is held to its range; far below it falls with H.
 #[inline]
 pub fn holdup_over_psi(ln_h: f64) -> f64 {
-    if ln_h < CORRELATING.low { below_chart(ln_h) } else { fitted_holdup(ln_h.min(CORRELATING.high)) }
-}
-
-/// HL/psi below the chart: without liquid it has to vanish.
-#[inline]
-fn below_chart(ln_h: f64) -> f64 {
-    LEAST_OVER_PSI * (LEAST_POWER * (ln_h - CORRELATING.low)).exp()
+    fitted_holdup(ln_h.clamp(CORRELATING.low, CORRELATING.high)) * (ln_h - VANISHING.low).min(0.0).exp()
 }
 
 #[inline]
@@ -153,7 +145,8 @@ fn above_bubble_flow(flow: &Flow, pipe: &Pipe, branch: Branch) -> State {
     let free_h = h + LN_10 * log10_cnl(nl);
     let (h, h_margin) = CORRELATING.hold(free_h, branch);
     let (b, b_margin) = SECONDARY.hold(b, branch);
-    let over_psi = if CORRELATING.is_below(branch) { below_chart(free_h) } else { fitted_holdup(h) };
+    let (_, vanishing_margin) = VANISHING.hold(free_h, branch);
+    let over_psi = fitted_holdup(h) * if VANISHING.is_below(branch) { (free_h - VANISHING.low).exp() } else { 1.0 };
     let correlated = over_psi * fitted_psi(b.exp());
     let above_floor = correlated - flow.no_slip_holdup;
     let (holdup, holdup_margin) = if branch.has(FLOOR) {
@@ -170,7 +163,12 @@ fn above_bubble_flow(flow: &Flow, pipe: &Pipe, branch: Branch) -> State {
         holdup,
         density_lb_ft3: flow.density_at_holdup_lb_ft3(holdup),
         reynolds: pipe.reynolds(flow.no_slip_density_lb_ft3(), flow.mixture_velocity_ft_s(), ln_viscosity.exp()),
-        margin: nl_margin.min(h_margin).min(b_margin).min(holdup_margin).min(-bubble_margin(flow, pipe)),
+        margin: nl_margin
+            .min(h_margin)
+            .min(vanishing_margin)
+            .min(b_margin)
+            .min(holdup_margin)
+            .min(-bubble_margin(flow, pipe)),
     }
 }
 
@@ -184,7 +182,8 @@ fn slug_branch(flow: &Flow, pipe: &Pipe) -> Branch {
     let [nl, h, b] = correlating(flow, pipe);
     let nl_bits = VISCOSITY.bits(nl);
     let (held, _) = VISCOSITY.hold(nl, Branch(nl_bits));
-    let ranges = nl_bits | CORRELATING.bits(h + LN_10 * log10_cnl(held)) | SECONDARY.bits(b);
+    let h = h + LN_10 * log10_cnl(held);
+    let ranges = nl_bits | CORRELATING.bits(h) | VANISHING.bits(h) | SECONDARY.bits(b);
     let state = above_bubble_flow(flow, pipe, Branch(ranges));
     let limit = if state.correlated < flow.no_slip_holdup {
         FLOOR
@@ -242,17 +241,5 @@ impl Hydraulics for HagedornBrown {
 
     fn pattern(&self, flow: &Flow, pipe: &Pipe) -> &'static str {
         if bubble_margin(flow, pipe) > 0.0 { "bubble" } else { "slug or above" }
-    }
-}
-
-#[cfg(test)]
-mod tests {
-    use super::*;
-
-    #[test]
-    fn the_extension_below_the_chart_joins_with_its_slope() {
-        let slope = |a: f64, b: f64| (fitted_holdup(b).ln() - fitted_holdup(a).ln()) / (b - a);
-        assert!((LEAST_OVER_PSI / fitted_holdup(CORRELATING.low) - 1.0).abs() < 1e-12);
-        assert!((LEAST_POWER - slope(CORRELATING.low - 1e-5, CORRELATING.low + 1e-5)).abs() < 1e-6);
     }
 }
