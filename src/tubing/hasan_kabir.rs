@@ -40,7 +40,7 @@ const WEIGHT: Range = Range { low: 0.6, high: 0.8, shift: 4 };
 
 // The transitions are smooth, yet no power series holds at their onset: steps go by the distance from it. So many relative
 // changes of pressure are allowed per relative distance above it, below it (where nothing happens yet), and at it.
-const COURSE: f64 = 0.2;
+const COURSE: f64 = 0.15;
 const COURSE_BELOW: f64 = 0.5;
 const COURSE_LEAVING: f64 = 5.0;
 const LEAST_COURSE: f64 = 0.01;

@@ -30,7 +30,7 @@ const AIM: f64 = 0.4;
 /// Error below which the next step grows no further, in the same units.
 const LEAST_ERROR: f64 = 0.001;
 /// Tolerance of one step's error estimate relative to the accuracy asked of the whole traverse.
-const STEP_SHARE: f64 = 0.008;
+const STEP_SHARE: f64 = 0.004;
 /// Weight of the third difference of the slopes in the error estimate.
 const BEND_SHARE: f64 = 1e-4;
 /// A branch that ends this soon after its begin lingers on its border, see `slide`. As a change of
