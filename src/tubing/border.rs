@@ -3,9 +3,10 @@
 //! The margin that the model reports is followed along the cubic Hermite interpolant of the step to its sign change; a
 //! new step ends there, and its end is corrected by a secant.
 
-use super::march::{March, Slope, Step};
+use super::march::{March, Step};
 use super::model::{Branch, Hydraulics};
 use super::path::Stretch;
+use super::slope::Slope;
 
 /// A margin no larger than this is on the border.
 const ON_BORDER: f64 = 1e-8;

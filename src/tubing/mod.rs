@@ -24,8 +24,10 @@ pub mod restriction;
 mod border;
 mod march;
 mod path;
+mod path_checks;
 mod range;
 mod slide;
+mod slope;
 mod spec;
 mod traverse;
 

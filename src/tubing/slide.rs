@@ -5,9 +5,10 @@
 //! has one solution in the sense of Filippov (1988): the flow stays on the border, its gradient a mixture of the two, until
 //! one of them lets go. The pressure then follows from the border itself.
 
-use super::march::{March, Progress, Slope};
+use super::march::{March, Progress};
 use super::model::{Branch, Hydraulics};
 use super::path::Stretch;
+use super::slope::Slope;
 
 /// A branch that would end at once and has no border to slide on is left unwatched for a while, as a change of pressure
 /// relative to the pressure; it doubles each time.
