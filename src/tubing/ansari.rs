@@ -20,6 +20,7 @@
 //! acceleration terms are replaced by Ek; the turbulent friction factor, at Re 2,100 or more, serves the dispersed
 //! bubble criterion; in deviated pipe gravity acts by its component along the pipe and long bubbles rise as in the
 //! default model. The gradient jumps between patterns, by up to some 0.1 psi/ft. Coefficients from memory.
+//! Stated range: 1 to 8 in., within 15 degrees of vertical.
 //!
 //! # Source
 //! Ansari, Sylvester, Sarica, Shoham and Brill, SPE Production and Facilities (May 1994) 143.

@@ -11,7 +11,8 @@
 //!
 //! # Limitation
 //! Fitted to air and water in 1 to 1.5 in. acrylic pipe. The holdup jumps at the borders of the map. Segregated flow
-//! is tested first. The factor of horizontal pipe is taken as that of uphill flow.
+//! is tested first. The factor of horizontal pipe is taken as that of uphill flow. Where the liquid vanishes in distributed
+//! flow, e^S has no limit. Stated range: 5,000 scf/STB of liquid, any inclination.
 //!
 //! # Source
 //! Beggs and Brill, J. Pet. Tech. (May 1973) 607, with the revised flow map; Payne et al., J. Pet. Tech. (Sept. 1979)

@@ -25,7 +25,7 @@
 //!
 //! # Limitation
 //! Fitted to water, kerosene and nitrogen in 6 in. pipe, from vertical to 88 degrees from it, at mixture velocities up
-//! to about 10 ft/s; smaller pipe and annular flow are extrapolation. Exactly horizontal pipe has no slip (m = 0). The
+//! to about 12 ft/s; smaller pipe and annular flow are extrapolation. Exactly horizontal pipe has no slip (m = 0). The
 //! gradient is continuous, with corners at a1, a2 and the points of the table of Ku. Parameters and table from memory.
 //!
 //! # Source

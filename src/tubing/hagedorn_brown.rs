@@ -13,8 +13,9 @@
 //!
 //! # Limitation
 //! Fitted to vertical 1 to 1.5 in. tubing of 1,500 ft, 10 to 110 cp. NL is held in 0.002 to 0.4 inside the CNL fit,
-//! H in 3e-6 to 6e-3 (below 1e-7 HL/psi falls with H, so that no liquid leaves gas), B below 0.09; psi is 1 up to where its fit exceeds 1 (B = 0.0123). The holdup jumps where bubble flow
-//! ends. In deviated pipe only the gravity term changes.
+//! H in 3e-6 to 6e-3 (below 1e-7 HL/psi falls with H, so that no liquid leaves gas), B below 0.09; psi is 1 up to where
+//! its fit exceeds 1 (B = 0.0123). The holdup jumps where bubble flow ends. In deviated pipe only the gravity term changes.
+//! Stated range: 1 to 4 in., within 15 degrees of vertical, liquid to 110 cp, NL to 0.4, 5,000 scf/STB of liquid.
 //!
 //! # Source
 //! Hagedorn and Brown, J. Pet. Tech. (April 1965) 475; Griffith and Wallis, J. Heat Transfer 83 (1961) 307; chart

@@ -16,7 +16,7 @@
 //! only: the downhill coefficients serve no producer, and a path that climbs on its way down is refused. HL is held within
 //! lam and 1: the sum in brackets turns positive for viscous liquids (NL above 0.4 in vertical pipe). The holdup is
 //! continuous, the friction jumps where annular flow begins. The two lines of the map hold outside the data too, where
-//! nothing supports them.
+//! nothing supports them. Stated range: NL to 0.4.
 //!
 //! # Source
 //! Mukherjee and Brill, J. Can. Pet. Tech. (July 1983) 85 (holdup) and J. Energy Resour. Technol. 107 (1985) 549

@@ -7,7 +7,7 @@
 //! V  = fg v1 y^(-1/n) + fl/rhoL                                volume of a pound at the pressure ratio y = p3/p1
 //! e  = fg v1 n/(n - 1) (1 - y^((n-1)/n)) + fl/rhoL (1 - y)     work of expansion over p1
 //! G  = Cd [2 gc 144 p1 e/(V^2 - a^2 V1^2)]^1/2                 mass flux in the throat; a: throat over approach
-//! p1 - p4 = (p1 - p3) (1 - beta^1.85)                          what is not recovered below... above the throat
+//! p1 - p4 = (p1 - p3) (1 - beta^1.85)                          what the widening above does not give back
 //! ```
 //!
 //! fg, fl mass shares, v1 and V1 volumes of gas and mixture upstream (p1), p3 in the throat, p4 after recovery, beta throat over pipe
