@@ -126,6 +126,8 @@ fn flowing_pressures_are_those_of_the_correlations() {
                     survey: vec![(0.0, 0.0), (depth_ft, 0.9 * depth_ft)],
                     slip_factor: 1.0,
                     temperatures: Vec::new(),
+                    heat: None,
+                    restrictions: Vec::new(),
                     wellhead_temperature_degf: 45.0 + 75.0 * uniform(i, 2),
                 };
                 let tubing = Tubing::new(&tubing, None, tank_degf, 0.02).unwrap();

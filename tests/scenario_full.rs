@@ -8,7 +8,9 @@ use wane::inflow::{Coefficient, FutureRule, InflowMethod, InflowSpec, InflowTest
 use wane::rock::CoreySpec;
 use wane::scenario::{Document, schema};
 use wane::tank::{ProducedSpec, TankSpec, WaterModel};
-use wane::tubing::{ChokeMethod, ChokeSpec, ChokeTest, Discharge, TubingMethod, TubingSection, TubingSpec};
+use wane::tubing::{
+    ChokeMethod, ChokeSpec, ChokeTest, Discharge, RestrictionSpec, TubingMethod, TubingSection, TubingSpec,
+};
 use wane::units::UnitSystem;
 use wane::well::{FlowingSurvey, LineRate, LineSpec, ScreenSpec, SurveyPoint, WellSpec};
 
@@ -45,7 +47,12 @@ fn the_scenario_states_every_key() {
     }
     for key in schema::KEYS {
         // Keys of the members of a list stand under the list in the reference, beside it in this simple search.
-        let beside = key.path.replace(".test.", ".").replace(".sections.", ".");
+        let beside = key
+            .path
+            .replace(".test.", ".")
+            .replace(".sections.", ".")
+            .replace(".restrictions.", ".")
+            .replace(".heat.", ".");
         assert!(stated.contains(key.path) || stated.contains(&beside), "{} is not stated", key.path);
     }
 }
@@ -213,6 +220,8 @@ fn the_first_well_arrives() {
             slip_factor: 0.9,
             wellhead_temperature_degf: 102.0,
             temperatures: Vec::new(),
+            heat: None,
+            restrictions: Vec::new(),
         },
         flowing_surveys: vec![FlowingSurvey {
             on: date(2026, 6, 11),
@@ -247,7 +256,17 @@ fn the_other_wells_have_their_defaults_and_methods() {
     let degf: Vec<f64> = b.tubing.temperatures.iter().map(|point| point.1).collect();
     assert_eq!((b.tubing.temperatures[0].0, b.tubing.temperatures[1].0), (0.0, 5000.0));
     assert!((degf[0] - 99.0).abs() < 1e-12 && (degf[1] - 158.0).abs() < 1e-12, "{degf:?}");
-    assert!(c.tubing.temperatures.is_empty() && c.tubing.wellhead_temperature_degf == 98.0);
+    assert!(d.tubing.temperatures.is_empty() && d.tubing.wellhead_temperature_degf == 97.0);
+    assert!(d.tubing.heat.is_none() && d.tubing.restrictions.is_empty());
+    let heat = c.tubing.heat.expect("stated");
+    assert!((heat.surface_temperature_degf - 59.0).abs() < 1e-12);
+    assert_eq!((heat.conductivity_btu_h_ft_degf, heat.diffusivity_ft2_h, heat.wellbore_radius_ft), (1.5, 0.05, 0.4));
+    assert_eq!((heat.transfer_btu_h_ft2_degf, heat.producing_time_d), (3.0, 200.0));
+    let restrictions =
+        [(4000.0, 1.875, 0.826), (6000.0, 1.5, 0.9)].map(|(at_md_ft, diameter_in, discharge_coefficient)| {
+            RestrictionSpec { at_md_ft, diameter_in, discharge_coefficient }
+        });
+    assert_eq!(c.tubing.restrictions, restrictions);
     let index = Coefficient::ProductivityIndex { j_stb_d_psi: 1.7, reservoir_psia: 3000.0 };
     let open_flow = Coefficient::OpenFlow { rate_stb_d: 1300.0, reservoir_psia: 3120.0 };
     let c_given = Coefficient::Fetkovich { c: 0.0011, reservoir_psia: 3120.0 };
@@ -310,6 +329,23 @@ fn every_word_of_a_choice_is_understood() {
     assert_eq!(with("well.A.inflow.future=pressure").field.wells[0].inflow.future, FutureRule::Pressure);
     assert_eq!(with("well.A.inflow.basis=liquid").field.wells[0].inflow.basis, RateBasis::Liquid);
     assert_eq!(with("tank.water.model=connate").field.tank.water_model, WaterModel::Connate);
+}
+
+#[test]
+fn heat_replaces_a_stated_temperature_and_the_other_way_round() {
+    let document = Document::parse("full.toml", FULL).unwrap_or_else(|problems| panic!("{problems}"));
+    let with = |set: &str| document.resolve(None, &[set.to_owned()]).unwrap_or_else(|problems| panic!("{problems}"));
+    for set in
+        ["well.A.tubing.heat={ surface_temperature = \"60 degF\" }", "well.A.tubing.heat.surface_temperature=60 degF"]
+    {
+        let tubing = with(set).field.wells.remove(0).tubing;
+        let heat = tubing.heat.expect("set");
+        // The defaults of the reference.
+        assert_eq!((heat.surface_temperature_degf, heat.conductivity_btu_h_ft_degf), (60.0, 1.4));
+        assert_eq!((heat.diffusivity_ft2_h, heat.wellbore_radius_ft), (0.04, 0.354));
+        assert_eq!((heat.transfer_btu_h_ft2_degf, heat.producing_time_d), (f64::INFINITY, 365.2425));
+    }
+    assert!(with("well.C.tubing.wellhead_temperature=98 degF").field.wells[2].tubing.heat.is_none());
 }
 
 #[test]

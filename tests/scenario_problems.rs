@@ -93,7 +93,27 @@ const CASES: &[Case] = &[
     (
         "wellhead_temperature = \"110 degF\"",
         "",
-        &["the flowing temperature is not given", "one of wellhead_temperature, temperature"],
+        &["the flowing temperature is not given", "one of wellhead_temperature, temperature, heat"],
+    ),
+    (
+        "wellhead_temperature = \"110 degF\"",
+        "wellhead_temperature = \"110 degF\"\nheat = «{ surface_temperature = \"60 degF\" }»",
+        &["`wellhead_temperature` and `heat` exclude each other"],
+    ),
+    (
+        "wellhead_temperature = \"110 degF\"",
+        "heat = { surface_temperature = «\"300 degF\"» }",
+        &["the wellhead is hotter than the tank"],
+    ),
+    (
+        "wellhead_temperature = \"110 degF\"",
+        "heat = { surface_temperature = \"60 degF\", transfer = «\"4 Btu/h/ft/degF\"» }",
+        &["`Btu/h/ft/degF`"],
+    ),
+    (
+        "wellhead_temperature = \"110 degF\"",
+        "wellhead_temperature = \"110 degF\"\nrestrictions = [{ at = \"4000 ft\", diameter = «\"2.5 in\"» }]",
+        &["2.5 in does not restrict the tubing there", "below the 2.441 in"],
     ),
     (
         "wellhead_temperature = \"110 degF\"",
@@ -492,8 +512,8 @@ fn every_key_of_the_list_is_really_read() {
             Some(("injector", rest)) => format!("injector.OI-1.{rest}"),
             _ => key.path.to_owned(),
         };
-        let lists =
-            ["inflow.test", "tubing.sections", "choke.test", "flowing_survey"].map(|list| format!("well.OP-1.{list}"));
+        let lists = ["inflow.test", "tubing.sections", "tubing.restrictions", "choke.test", "flowing_survey"]
+            .map(|list| format!("well.OP-1.{list}"));
         let member =
             |list: &String| Some((list.clone(), path.strip_prefix(list.as_str())?.strip_prefix('.')?.to_owned()));
         let (path, value) = match lists.iter().find_map(member) {

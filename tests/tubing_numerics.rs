@@ -75,11 +75,10 @@ fn spread(method: TubingMethod, mut visit: impl FnMut(&BlackOil, f64, &TubingSpe
 
 #[test]
 fn default_accuracy_is_kept_over_a_spread_of_wells() {
-    // The bar is 0.02 psi against the converged value. Where the Reynolds number lingers at 2,100, laminar flow can
-    // push it up and turbulent flow push it down, so that no branch holds: there the correlation itself has no
-    // solution, and the answer depends on the steps. Such cases (heavy cold oil at 8,000 STB/d) are counted.
+    // The bar is 0.02 psi against the converged value, also where the flow lingers on a border: heavy cold oil at 8,000 STB/d
+    // stays at Reynolds number 2,100 for some feet, since laminar flow pushes it up and turbulent flow down.
     for method in TubingMethod::ALL {
-        let (mut count, mut steps, mut lingering) = (0_u32, 0_u32, 0);
+        let (mut count, mut steps) = (0_u32, 0_u32);
         let (mut sum, mut worst, mut at) = (0.0, 0.0_f64, String::new());
         spread(method, |fluid, bottom_degf, spec, stream, wellhead_psia| {
             let usual = tubing(spec, bottom_degf, 0.02);
@@ -90,11 +89,7 @@ fn default_accuracy_is_kept_over_a_spread_of_wells() {
             if converged.pressure_psia > 15_000.0 {
                 return;
             }
-            assert!(error < 0.3, "{}: {error} psi at {spec:?}, {stream:?}, {wellhead_psia} psia", method.name());
-            if error > 0.02 {
-                lingering += 1;
-                return;
-            }
+            assert!(error < 0.02, "{}: {error} psi at {spec:?}, {stream:?}, {wellhead_psia} psia", method.name());
             (count, sum, steps) = (count + 1, sum + error, steps + usual.steps(fluid, &stream, wellhead_psia));
             if error > worst {
                 (worst, at) = (error, format!("{stream:?}, {wellhead_psia} psia"));
@@ -102,12 +97,11 @@ fn default_accuracy_is_kept_over_a_spread_of_wells() {
         });
         let (mean, mean_steps) = (sum / f64::from(count), f64::from(steps) / f64::from(count));
         println!(
-            "{}: {count} cases, worst {worst:.5} psi, mean {mean:.1e}, {mean_steps:.1} steps, {lingering} lingering: {at}",
+            "{}: {count} cases, worst {worst:.5} psi, mean {mean:.1e}, {mean_steps:.1} steps: {at}",
             method.name()
         );
-        assert!(lingering <= 1, "{}: {lingering} cases off by more than 0.02 psi", method.name());
-        // Ten times better than the bar as a rule.
-        assert!(mean < 0.002, "{}: mean {mean} psi", method.name());
+        // Forty times better than the bar as a rule.
+        assert!(mean < 5e-4, "{}: mean {mean} psi", method.name());
         assert!(mean_steps < 30.0, "{}: {mean_steps} steps", method.name());
     }
 }
@@ -220,7 +214,7 @@ fn the_flowing_pressure_is_smooth() {
         println!("{}: worst {worst:.1e} psi, {rough} of {all} sweeps above 1e-4", method.name());
         // The aim is 1e-4 psi. The steps of the default model follow transitions that no polynomial fits, so that a
         // repeated step may stand out a little more; the others are far smoother.
-        let most = if method == TubingMethod::HasanKabir { 5e-4 } else { 1e-4 };
+        let most = if method == TubingMethod::HasanKabir { 3e-4 } else { 1e-4 };
         assert!(worst < most && rough <= 1, "{}: {worst} psi, {rough} of {all} sweeps", method.name());
     }
 }

@@ -22,6 +22,8 @@ fn spec() -> TubingSpec {
         slip_factor: 1.0,
         wellhead_temperature_degf: 110.0,
         temperatures: Vec::new(),
+        heat: None,
+        restrictions: Vec::new(),
     }
 }
 

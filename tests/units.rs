@@ -55,6 +55,8 @@ fn every_factor_is_that_of_the_definition() {
     // 9702 cubic inches.
     let barrel = 9702.0 * inch.powi(3);
     let kilo = 1.0e3;
+    // The Btu of the international steam tables (NIST SP 811).
+    let btu = 1_055.055_852_62;
     let table: Vec<(D, Vec<(&str, f64)>)> = vec![
         (
             D::Pressure,
@@ -162,6 +164,12 @@ fn every_factor_is_that_of_the_definition() {
         (D::LiquidVolumeFactor, vec![("rb/STB", 1.0), ("rm3/Sm3", 1.0)]),
         (D::GasVolumeFactor, vec![("rb/scf", barrel / cubic_foot), ("rm3/Sm3", 1.0)]),
         (D::Angle, vec![("deg", std::f64::consts::PI / 180.0), ("rad", 1.0)]),
+        (D::HeatConductivity, vec![("Btu/h/ft/degF", btu / 3600.0 / foot * 1.8), ("W/m/K", 1.0)]),
+        (D::HeatTransfer, vec![("Btu/h/ft2/degF", btu / 3600.0 / foot.powi(2) * 1.8), ("W/m2/K", 1.0)]),
+        (
+            D::Diffusivity,
+            vec![("ft2/h", foot * foot / 3600.0), ("ft2/d", foot * foot / day), ("m2/s", 1.0), ("mm2/s", 1e-6)],
+        ),
     ];
     let mut checked = 0;
     for (dimension, rows) in table {

@@ -25,7 +25,7 @@ static POWER_OF_COOL_WATER: Power = Power::new(0.349);
 static POWER_OF_HOT_WATER: Power = Power::new(0.637);
 
 /// The least tension, dyn/cm.
-const FLOOR_DYN_CM: f64 = 1.0;
+pub const FLOOR_DYN_CM: f64 = 1.0;
 
 /// Tension of oil without gas against air, dyn/cm.
 #[inline]
@@ -42,13 +42,7 @@ pub fn pressure_factor(pressure_psia: f64) -> f64 {
 /// Tension between oil and gas, dyn/cm.
 #[inline]
 pub fn oil_gas_dyn_cm(oil_gravity_api: f64, temperature_degf: f64, pressure_psia: f64) -> f64 {
-    oil_gas_of_dyn_cm(oil_gravity_api, temperature_degf, pressure_factor(pressure_psia))
-}
-
-/// The same from the factor for the dissolved gas.
-#[inline]
-pub(super) fn oil_gas_of_dyn_cm(oil_gravity_api: f64, temperature_degf: f64, pressure_factor: f64) -> f64 {
-    (dead_oil_dyn_cm(oil_gravity_api, temperature_degf) * pressure_factor).max(FLOOR_DYN_CM)
+    (dead_oil_dyn_cm(oil_gravity_api, temperature_degf) * pressure_factor(pressure_psia)).max(FLOOR_DYN_CM)
 }
 
 /// Tension between water and gas at 74 and at 280 degF, without floor, dyn/cm.

@@ -24,6 +24,15 @@ pub struct CappedOil<'a> {
     grid: Option<&'a Grid>,
 }
 
+/// Where the properties turn a corner along pressure.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Corners {
+    /// Bubble point of the oil at the temperature, psia: of all its gas where it is undersaturated, else the pressure itself.
+    pub bubble_point_psia: f64,
+    /// Tension between oil and gas before it is held at its floor, dyn/cm.
+    pub free_tension_dyn_cm: f64,
+}
+
 impl<'a> CappedOil<'a> {
     pub(super) fn new(fluid: &'a BlackOil, gor_limit_scf_stb: f64, grid: Option<&'a Grid>) -> Self {
         let cap_scf_stb = gor_limit_scf_stb.max(0.0);
@@ -39,13 +48,12 @@ impl<'a> CappedOil<'a> {
     /// Properties at a pressure and temperature; see [`BlackOil::in_situ`].
     #[inline]
     pub fn in_situ(&self, pressure_psia: f64, temperature_degf: f64) -> InSitu {
-        self.in_situ_and_bubble_point(pressure_psia, temperature_degf).0
+        self.in_situ_and_corners(pressure_psia, temperature_degf).0
     }
 
-    /// The properties, and the bubble point of the oil at that temperature, psia: of all its gas where it is undersaturated, else
-    /// the pressure itself.
+    /// The properties, and how far they are from their corners.
     #[inline]
-    pub fn in_situ_and_bubble_point(&self, pressure_psia: f64, temperature_degf: f64) -> (InSitu, f64) {
+    pub fn in_situ_and_corners(&self, pressure_psia: f64, temperature_degf: f64) -> (InSitu, Corners) {
         let fluid = self.fluid;
         let p = fluid.held_pressure(pressure_psia);
         let t = hold(temperature_degf, TEMPERATURE_RANGE_DEGF);
@@ -73,6 +81,7 @@ impl<'a> CappedOil<'a> {
             mu_o = exp(ln_a + b * at.ln_dead_cp);
         }
         let bw = McCainWater::bw_rb_stb(p, t);
+        let free_tension_dyn_cm = baker_swerdloff::dead_oil_dyn_cm(fluid.spec.oil_gravity_api, t) * oil_factor;
         let state = InSitu {
             rs_scf_stb: rs,
             bo_rb_stb: bo,
@@ -84,11 +93,11 @@ impl<'a> CappedOil<'a> {
             bw_rb_stb: bw,
             water_density_lb_ft3: fluid.water.standard_density_lb_ft3() / bw,
             mu_w_cp: at.water_cp * McCainWater::viscosity_ratio(p),
-            sigma_oil_gas_dyn_cm: baker_swerdloff::oil_gas_of_dyn_cm(fluid.spec.oil_gravity_api, t, oil_factor),
+            sigma_oil_gas_dyn_cm: free_tension_dyn_cm.max(baker_swerdloff::FLOOR_DYN_CM),
             sigma_water_gas_dyn_cm: baker_swerdloff::water_gas_of_dyn_cm(t, cool, hot),
             z: gas.z,
         };
-        (state, bubble_point_psia)
+        (state, Corners { bubble_point_psia, free_tension_dyn_cm })
     }
 }
 

@@ -347,8 +347,11 @@ fn tubing(well: &WellSpec, tank: &TankSpec) -> Vec<Fault> {
             .help("leave out `to` in the last section to let it reach the perforations"),
         );
     }
-    let temperature_key =
-        if well.tubing.temperatures.is_empty() { "tubing.wellhead_temperature" } else { "tubing.temperature[0]" };
+    let temperature_key = match (&well.tubing.heat, well.tubing.temperatures.as_slice()) {
+        (Some(_), _) => "tubing.heat.surface_temperature",
+        (None, []) => "tubing.wellhead_temperature",
+        (None, _) => "tubing.temperature[0]",
+    };
     if well.tubing.wellhead_temperature_degf > tank.temperature_degf {
         out.push(Fault::new(temperature_key, "the wellhead is hotter than the tank").help("check the unit"));
     }

@@ -108,21 +108,14 @@ fn put(table: &mut Table, schema_path: &str, path: &[String], one: &Override) ->
             )
             .label(format!("{here}.NAME.key is expected")));
         }
-        for (parent, keys) in EXCLUSIVE {
-            if *parent == schema_path && keys.contains(&key.as_str()) {
-                keys.iter().filter(|other| *other != key).for_each(|other| table.remove(other));
-                // What a stated coefficient needs beside itself does not fit the tests that replace it.
-                if key == "test" {
-                    table.remove("reservoir");
-                }
-            }
-        }
+        remove_excluded(table, schema_path, key);
         table.set(key, &one.path_at, one.node.clone());
         return Ok(());
     }
     if table.get(key).is_none() {
         match kind {
             Some(Kind::Table) => {
+                remove_excluded(table, schema_path, key);
                 table.set(key, &one.path_at, Node { value: Value::Table(Table::default()), at: one.path_at.clone() });
             }
             Some(Kind::Tables) if NAMED.contains(&here.as_str()) => {
@@ -156,6 +149,19 @@ fn put(table: &mut Table, schema_path: &str, path: &[String], one: &Override) ->
         // A list that is none is noted when it is read.
         _ if kind == Some(Kind::Tables) => Ok(()),
         _ => Err(too_deep(&here, one)),
+    }
+}
+
+/// Removes what cannot stand beside a key that is set.
+fn remove_excluded(table: &mut Table, schema_path: &str, key: &str) {
+    for (parent, keys) in EXCLUSIVE {
+        if *parent == schema_path && keys.contains(&key) {
+            keys.iter().filter(|other| **other != key).for_each(|other| table.remove(other));
+            // What a stated coefficient needs beside itself does not fit the tests that replace it.
+            if key == "test" {
+                table.remove("reservoir");
+            }
+        }
     }
 }
 

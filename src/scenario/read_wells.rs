@@ -10,7 +10,7 @@ use super::survey;
 use super::tree::Value;
 use crate::forecast::{InjectedFluid, InjectionControl, InjectorSpec};
 use crate::inflow::{Coefficient, FutureRule, InflowMethod, InflowSpec, InflowTest, Measured, RateBasis};
-use crate::tubing::{TubingMethod, TubingSection, TubingSpec};
+use crate::tubing::{HeatSpec, RestrictionSpec, TubingMethod, TubingSection, TubingSpec};
 use crate::units::parse_flow_coefficient;
 use crate::well::{LineSpec, ScreenSpec, WellSpec};
 
@@ -19,7 +19,7 @@ pub(super) const EXCLUSIVE: &[(&str, &[&str])] = &[
     ("injector", &["rate", "voidage_replacement"]),
     ("well.tubing", &["diameter", "sections"]),
     ("well.inflow", &["test", "productivity_index", "open_flow", "coefficient"]),
-    ("well.tubing", &["wellhead_temperature", "temperature"]),
+    ("well.tubing", &["wellhead_temperature", "temperature", "heat"]),
     ("well", &["line_pressure", "line"]),
     ("well.choke", &["discharge_coefficient", "test"]),
 ];
@@ -257,6 +257,7 @@ fn tubing(reader: &mut Reader, well: &Section<'_>) -> TubingSpec {
     };
     let temperatures = survey::temperatures(reader, &section);
     let wellhead_temperature_degf = reader.optional_quantity(&section, "wellhead_temperature");
+    let heat = section.has("heat").then(|| heat(reader, &section));
     let spec = TubingSpec {
         method: method.unwrap_or(TubingMethod::HasanKabir),
         sections,
@@ -264,11 +265,46 @@ fn tubing(reader: &mut Reader, well: &Section<'_>) -> TubingSpec {
         slip_factor: reader.number(&section, "slip_factor"),
         wellhead_temperature_degf: wellhead_temperature_degf
             .or(temperatures.first().map(|point| point.1))
+            .or(heat.map(|heat| heat.surface_temperature_degf))
             .unwrap_or(f64::NAN),
         temperatures,
+        heat,
+        restrictions: restrictions(reader, &section),
     };
     reader.finish(&section);
     spec
+}
+
+fn heat(reader: &mut Reader, tubing: &Section<'_>) -> HeatSpec {
+    let section = reader.section(tubing, "heat");
+    let spec = HeatSpec {
+        surface_temperature_degf: reader.quantity(&section, "surface_temperature"),
+        conductivity_btu_h_ft_degf: reader.quantity(&section, "conductivity"),
+        diffusivity_ft2_h: reader.quantity(&section, "diffusivity"),
+        wellbore_radius_ft: reader.quantity(&section, "wellbore_radius"),
+        // Without it the completion holds nothing back.
+        transfer_btu_h_ft2_degf: reader.optional_quantity(&section, "transfer").unwrap_or(f64::INFINITY),
+        producing_time_d: reader.quantity(&section, "producing_time"),
+    };
+    reader.finish(&section);
+    spec
+}
+
+fn restrictions(reader: &mut Reader, tubing: &Section<'_>) -> Vec<RestrictionSpec> {
+    if !tubing.has("restrictions") {
+        return Vec::new();
+    }
+    let pieces = reader.sections(tubing, "restrictions");
+    let mut out = Vec::with_capacity(pieces.len());
+    for piece in pieces {
+        out.push(RestrictionSpec {
+            at_md_ft: reader.quantity(&piece, "at"),
+            diameter_in: reader.quantity(&piece, "diameter"),
+            discharge_coefficient: reader.number(&piece, "discharge"),
+        });
+        reader.finish(&piece);
+    }
+    out
 }
 
 fn tubing_sections(

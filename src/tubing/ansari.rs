@@ -20,6 +20,7 @@
 //! acceleration terms are replaced by Ek; the turbulent friction factor, at Re 2,100 or more, serves the dispersed
 //! bubble criterion; in deviated pipe gravity acts by its component along the pipe and long bubbles rise as in the
 //! default model. The gradient jumps between patterns, by up to some 0.1 psi/ft. Coefficients from memory.
+//! Stated range: 1 to 8 in., within 15 degrees of vertical.
 //!
 //! # Source
 //! Ansari, Sylvester, Sarica, Shoham and Brill, SPE Production and Facilities (May 1994) 143.
@@ -28,7 +29,7 @@ use super::ValidRange;
 use super::ansari_annular::{self as annular, Film};
 use super::ansari_slug as slug;
 use super::hasan_kabir::small_bubble_ft_s;
-use super::model::{Branch, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe, laminar_bit, laminar_margin};
+use super::model::{Branch, Course, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe, laminar_bit, laminar_margin};
 use super::no_slip;
 use crate::units::constants::GRAVITY_FT_S2;
 
@@ -49,10 +50,15 @@ pub enum Pattern {
     Annular,
 }
 
-const PATTERN_SHIFT: u16 = 2;
+const PATTERN_SHIFT: u32 = 2;
 /// Branch bit of slug flow whose turbulence would disperse the bubbles, were they not so many. The patch of dispersed flow
 /// between the two borders may be short: so each is located, though one of them changes nothing.
-const TURBULENT: u16 = 128;
+const TURBULENT: u32 = 128;
+/// Branch bit of other patterns where droplets would be carried, so that the film alone decides against annular flow. The
+/// film jumps where it turns laminar and where FE passes 0.9, and annular flow may come back there for a few feet: so
+/// its branch is held too.
+const CARRIED: u32 = 256;
+const FILM_SHIFT: u32 = 9;
 
 /// Beyond this relative distance from a border its margin is not worked out: it is held there.
 const FAR: f64 = 0.2;
@@ -106,16 +112,6 @@ fn dispersion(flow: &Flow, pipe: &Pipe) -> (f64, f64) {
     ((breaking / joining - 1.0).clamp(-FAR, FAR), packed.clamp(-FAR, FAR))
 }
 
-/// How far it is inside annular flow.
-#[inline]
-fn annular_margin(flow: &Flow, pipe: &Pipe) -> f64 {
-    let carried = annular::droplet_margin(flow);
-    if carried <= -FAR {
-        return -FAR;
-    }
-    carried.min(annular::film_margin(flow, pipe, FAR)).clamp(-FAR, FAR)
-}
-
 fn is_annular(flow: &Flow, pipe: &Pipe) -> bool {
     annular::droplet_margin(flow) > 0.0 && Film::new(flow, pipe, annular::bits(flow, pipe)).margin() > 0.0
 }
@@ -124,23 +120,31 @@ fn is_annular(flow: &Flow, pipe: &Pipe) -> bool {
 #[inline]
 fn margin(flow: &Flow, pipe: &Pipe, branch: Branch, film: Option<&Film>) -> f64 {
     let pattern = pattern_of(branch);
-    let annular = match film {
-        Some(film) => annular::droplet_margin(flow).min(film.margin()).clamp(-FAR, FAR),
-        None => annular_margin(flow, pipe),
-    };
-    if pattern == Pattern::Annular {
-        return annular;
+    let carried = annular::droplet_margin(flow);
+    if let Some(film) = film {
+        return carried.min(film.margin()).clamp(-FAR, FAR);
     }
+    let not_annular = if branch.has(CARRIED) {
+        let film = Film::new(flow, pipe, branch.0 >> FILM_SHIFT);
+        carried.min(-film.margin()).min(film.branch_margin)
+    } else {
+        -carried
+    };
     let (turbulent, packed) = dispersion(flow, pipe);
     if pattern == Pattern::DispersedBubble {
-        return turbulent.min(packed).min(-annular);
+        return turbulent.min(packed).min(not_annular);
     }
     let bubble = bubble_margin(flow, pipe, small_bubble_ft_s(flow));
     if pattern == Pattern::Bubble {
-        return bubble.min(-turbulent.min(packed)).min(-annular);
+        return bubble.min(-turbulent.min(packed)).min(not_annular);
     }
     let dispersed = if branch.has(TURBULENT) { turbulent.min(-packed) } else { -turbulent };
-    dispersed.min(-bubble).min(-annular)
+    dispersed.min(-bubble).min(not_annular)
+}
+
+/// The bits of the film that a flow outside annular flow would have.
+fn film_bits(flow: &Flow, pipe: &Pipe) -> u32 {
+    if annular::droplet_margin(flow) > 0.0 { CARRIED | annular::bits(flow, pipe) << FILM_SHIFT } else { 0 }
 }
 
 /// The flow pattern, and whether turbulence would disperse bubbles.
@@ -208,7 +212,7 @@ fn bubbly(flow: &Flow, pipe: &Pipe, holdup: f64, laminar: bool) -> (Gradient, f6
         kinetic: flow.kinetic(density),
         holdup,
         margin: laminar_margin(reynolds, laminar),
-        course: f64::INFINITY,
+        course: Course::FREE,
     };
     (gradient, reynolds)
 }
@@ -222,7 +226,8 @@ impl Hydraulics for Ansari {
             Pattern::Bubble => laminar_bit(bubbly(flow, pipe, bubble_holdup(flow), false).1),
             Pattern::DispersedBubble => laminar_bit(bubbly(flow, pipe, flow.no_slip_holdup, false).1),
         };
-        Branch(bits | ((pattern as u16) << PATTERN_SHIFT))
+        let film = if pattern == Pattern::Annular { 0 } else { film_bits(flow, pipe) };
+        Branch(bits | film | ((pattern as u32) << PATTERN_SHIFT))
     }
 
     #[inline]

@@ -16,7 +16,7 @@
 //! smallest root x is the film. Slug flow where HL > 0.12 (bridging) or where the film is unstable (Barnea 1987):
 //! YM > XM^2 (2 - 1.5 x)/[x^3 (1 - 1.5 x)].
 
-use super::model::{Branch, DYN_CM_PER_LBM_S2, Flow, Gradient, IN2_PER_FT2, Pipe, laminar_bit, laminar_margin};
+use super::model::{Branch, Course, DYN_CM_PER_LBM_S2, Flow, Gradient, IN2_PER_FT2, Pipe, laminar_bit, laminar_margin};
 
 /// lbm/(ft s) in a cp.
 const LBM_FT_S_PER_CP: f64 = 6.719_69e-4;
@@ -29,9 +29,9 @@ const THIN_FILM: f64 = ENTRAINMENT_BEGINS + 8.0 * std::f64::consts::LN_10;
 const THICKEST: f64 = 0.5;
 
 // Branch bits beside the pattern; that of laminar flow is the core's.
-const NO_ENTRAINMENT: u16 = 16;
-const THIN: u16 = 32;
-const LAMINAR_FILM: u16 = 64;
+const NO_ENTRAINMENT: u32 = 16;
+const THIN: u32 = 32;
+const LAMINAR_FILM: u32 = 64;
 
 /// Relative distance of the gas velocity above that which carries droplets (Taitel, Barnea and Dukler 1980).
 #[inline]
@@ -66,13 +66,13 @@ pub struct Film {
     /// Modified parameter YM.
     pub y: f64,
     /// How far the flow is inside its branch of this pattern.
-    branch_margin: f64,
+    pub(super) branch_margin: f64,
     /// Whether a film was found.
     found: bool,
 }
 
 /// The branch bits of a flow that is annular.
-pub fn bits(flow: &Flow, pipe: &Pipe) -> u16 {
+pub fn bits(flow: &Flow, pipe: &Pipe) -> u32 {
     let velocity = critical_velocity(flow);
     let entrainment = if velocity < ENTRAINMENT_BEGINS {
         NO_ENTRAINMENT
@@ -86,26 +86,8 @@ pub fn bits(flow: &Flow, pipe: &Pipe) -> u16 {
     entrainment | film | laminar_bit(Core::new(flow, pipe, entrained).reynolds)
 }
 
-/// How far a flow is inside annular flow as far as its film goes; continuous also where FE passes 0.9 and where the film
-/// turns laminar, at which the film itself jumps: within `far` of such a border what lies behind it counts by its
-/// distance.
-pub(super) fn film_margin(flow: &Flow, pipe: &Pipe, far: f64) -> f64 {
-    let bits = bits(flow, pipe);
-    let here = Film::new(flow, pipe, bits);
-    let velocity = critical_velocity(flow);
-    let thin = (velocity / THIN_FILM - 1.0).abs();
-    let laminar = laminar_margin(film_reynolds(flow, pipe, here.entrained), bits & LAMINAR_FILM != 0).abs();
-    let mut margin = here.margin().min(thin).min(laminar);
-    for (distance, bit) in [(thin, THIN), (laminar, LAMINAR_FILM)] {
-        if distance < far && -distance > margin {
-            margin = margin.max(Film::new(flow, pipe, bits ^ bit).margin().min(-distance));
-        }
-    }
-    margin
-}
-
 #[inline]
-fn entrained(velocity: f64, bits: u16) -> f64 {
+fn entrained(velocity: f64, bits: u32) -> f64 {
     if bits & NO_ENTRAINMENT != 0 { 0.0 } else { 1.0 - (-0.125 * (velocity - ENTRAINMENT_BEGINS)).exp() }
 }
 
@@ -173,7 +155,7 @@ fn film_share(x_squared: f64, y: f64, roughening: f64) -> (f64, bool) {
 impl Film {
     /// The film of a flow on a branch.
     #[inline]
-    pub fn new(flow: &Flow, pipe: &Pipe, bits: u16) -> Self {
+    pub fn new(flow: &Flow, pipe: &Pipe, bits: u32) -> Self {
         let velocity = critical_velocity(flow);
         let entrained = entrained(velocity, bits);
         let core = Core::new(flow, pipe, entrained);
@@ -266,7 +248,7 @@ impl Film {
             kinetic: flow.kinetic(density),
             holdup,
             margin: self.branch_margin,
-            course: f64::INFINITY,
+            course: Course::FREE,
         }
     }
 }

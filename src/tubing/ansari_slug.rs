@@ -12,7 +12,7 @@
 //! shown is the one that weighs.
 
 use super::hasan_kabir::{long_bubble_ft_s, small_bubble_ft_s};
-use super::model::{Flow, Gradient, Pipe, laminar_margin};
+use super::model::{Course, Flow, Gradient, Pipe, laminar_margin};
 use crate::units::constants::GRAVITY_FT_S2;
 
 /// One slug and one Taylor bubble; velocities in ft/s.
@@ -131,7 +131,7 @@ impl Unit {
             kinetic: flow.kinetic(weight),
             holdup,
             margin: laminar_margin(self.reynolds, laminar),
-            course: f64::INFINITY,
+            course: Course::FREE,
         }
     }
 }

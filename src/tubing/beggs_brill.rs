@@ -11,7 +11,8 @@
 //!
 //! # Limitation
 //! Fitted to air and water in 1 to 1.5 in. acrylic pipe. The holdup jumps at the borders of the map. Segregated flow
-//! is tested first. The factor of horizontal pipe is taken as that of uphill flow.
+//! is tested first. The factor of horizontal pipe is taken as that of uphill flow. Where the liquid vanishes in distributed
+//! flow, e^S has no limit. Stated range: 5,000 scf/STB of liquid, any inclination.
 //!
 //! # Source
 //! Beggs and Brill, J. Pet. Tech. (May 1973) 607, with the revised flow map; Payne et al., J. Pet. Tech. (Sept. 1979)
@@ -19,7 +20,7 @@
 
 use super::ValidRange;
 use super::groups::LnGroups;
-use super::model::{Branch, Flow, Gradient, Hydraulics, Pipe, laminar_bit, laminar_margin};
+use super::model::{Branch, Course, Flow, Gradient, Hydraulics, Pipe, laminar_bit, laminar_margin};
 use super::no_slip;
 use crate::units::constants::GRAVITY_FT_S2;
 
@@ -45,20 +46,27 @@ pub struct BeggsBrill {
 
 // Branch bits: the regime in two of them, the branch of S in two more, then four for the limits that act on the
 // holdup of the regime, and four for those of the other regime of transition flow.
-const REGIME_SHIFT: u16 = 2;
-const S_WINDOW: u16 = 16;
-const S_BELOW_ONE: u16 = 32;
-const LIMITS_SHIFT: u16 = 6;
-const OTHER_LIMITS_SHIFT: u16 = 10;
+const REGIME_SHIFT: u32 = 2;
+const S_WINDOW: u32 = 16;
+const S_BELOW_ONE: u32 = 32;
+const LIMITS_SHIFT: u32 = 6;
+const OTHER_LIMITS_SHIFT: u32 = 10;
+/// Above the no-slip holdup at which the border of the regime turns a corner: the flow may pass beyond the tip of it for a
+/// few feet only, so the march stops there.
+const ABOVE_CORNER: u32 = 1 << 14;
 /// HL(0) is the no-slip holdup.
-const HORIZONTAL_FLOOR: u16 = 1;
+const HORIZONTAL_FLOOR: u32 = 1;
 /// C is zero.
-const NO_INCLINATION: u16 = 2;
+const NO_INCLINATION: u32 = 2;
 /// HL is at its lower limit.
-const FLOOR: u16 = 4;
+const FLOOR: u32 = 4;
 /// HL is 1.
-const CEILING: u16 = 8;
+const CEILING: u32 = 8;
 
+/// Relative change of pressure allowed in a step where S rises from y = 1 downwards, within 2 % of y: at the start, and
+/// per ln y.
+const LEAST_COURSE: f64 = 0.02;
+const COURSE: f64 = 0.5;
 /// Keeps logarithms finite.
 const LEAST_HOLDUP: f64 = 1e-6;
 const LN_0_01: f64 = -4.605_170_185_988_091;
@@ -94,22 +102,37 @@ impl Map {
         }
     }
 
-    /// How far the flow is inside a regime: positive inside.
+    /// How far the flow is inside a regime: positive inside. Its border turns a corner at lam = 0.01 (segregated) or 0.4, on
+    /// one side of which the margin is meant.
     #[inline]
-    pub fn margin(&self, regime: Regime) -> f64 {
+    fn margin_on_side(&self, regime: Regime, above: bool) -> f64 {
         let n = self.ln_froude;
         let [l1, l2, l3, l4] = self.ln_limits;
         let above_0_01 = self.ln_no_slip_holdup - LN_0_01;
         let above_0_4 = self.ln_no_slip_holdup - LN_0_4;
-        match regime {
-            Regime::Segregated => (-above_0_01).min(l1 - n).max(above_0_01.min(l2 - n)),
-            Regime::Transition => above_0_01.min(n - l2).min(l3 - n),
-            Regime::Intermittent => {
-                let few = above_0_01.min(-above_0_4).min(n - l3).min(l1 - n);
-                few.max(above_0_4.min(n - l3).min(l4 - n))
-            }
-            Regime::Distributed => (-above_0_4).min(n - l1).max(above_0_4.min(n - l4)),
+        match (regime, above) {
+            (Regime::Segregated, false) => (-above_0_01).min(l1 - n),
+            (Regime::Segregated, true) => above_0_01.min(l2 - n),
+            (Regime::Transition, _) => above_0_01.min(n - l2).min(l3 - n),
+            (Regime::Intermittent, false) => above_0_01.min(-above_0_4).min(n - l3).min(l1 - n),
+            (Regime::Intermittent, true) => above_0_4.min(n - l3).min(l4 - n),
+            (Regime::Distributed, false) => (-above_0_4).min(n - l1),
+            (Regime::Distributed, true) => above_0_4.min(n - l4),
         }
+    }
+
+    /// On which side of the corner of a regime's border the flow is.
+    #[inline]
+    fn side(&self, regime: Regime) -> bool {
+        match regime {
+            Regime::Segregated => self.ln_no_slip_holdup >= LN_0_01,
+            _ => self.ln_no_slip_holdup >= LN_0_4,
+        }
+    }
+
+    /// How far the flow is inside a regime: positive inside.
+    pub fn margin(&self, regime: Regime) -> f64 {
+        self.margin_on_side(regime, false).max(self.margin_on_side(regime, true))
     }
 
     /// The regime; segregated flow is tested first.
@@ -182,7 +205,7 @@ impl BeggsBrill {
     }
 
     /// Which limits act on the holdup of a regime.
-    fn limits(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe) -> u16 {
+    fn limits(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe) -> u32 {
         let mut limits = 0;
         if map.ln_horizontal_holdup(regime) < map.ln_no_slip_holdup {
             limits |= HORIZONTAL_FLOOR;
@@ -207,7 +230,7 @@ impl BeggsBrill {
 
     /// The holdup in one regime other than transition, with a given set of limits.
     #[inline]
-    fn limited(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe, limits: u16) -> Holdup {
+    fn limited(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe, limits: u32) -> Holdup {
         let uphill = pipe.sin_inclination >= 0.0;
         let ln_horizontal = map.ln_horizontal_holdup(regime);
         let above_no_slip = ln_horizontal - map.ln_no_slip_holdup;
@@ -240,7 +263,7 @@ impl BeggsBrill {
     }
 
     /// The bits of the limits of a regime; of both regimes in transition flow.
-    fn limit_bits(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe) -> u16 {
+    fn limit_bits(&self, map: &Map, regime: Regime, flow: &Flow, pipe: &Pipe) -> u32 {
         if regime == Regime::Transition {
             (self.limits(map, Regime::Segregated, flow, pipe) << LIMITS_SHIFT)
                 | (self.limits(map, Regime::Intermittent, flow, pipe) << OTHER_LIMITS_SHIFT)
@@ -306,7 +329,8 @@ impl Hydraulics for BeggsBrill {
             0
         };
         let reynolds = no_slip::reynolds(flow, pipe, flow.no_slip_density_lb_ft3());
-        Branch(limits | ((regime as u16) << REGIME_SHIFT) | exponent | laminar_bit(reynolds))
+        let side = if map.side(regime) { ABOVE_CORNER } else { 0 };
+        Branch(limits | ((regime as u32) << REGIME_SHIFT) | exponent | side | laminar_bit(reynolds))
     }
 
     #[inline]
@@ -326,9 +350,13 @@ impl Hydraulics for BeggsBrill {
             friction_psi_ft: pipe.friction_psi_ft(moody, no_slip_density, flow.mixture_velocity_ft_s()),
             kinetic: flow.kinetic(slip_density),
             holdup,
-            course: f64::INFINITY,
+            course: if branch.has(S_BELOW_ONE) {
+                Course::both(LEAST_COURSE + COURSE * ln_y.abs())
+            } else {
+                Course::FREE
+            },
             margin: laminar_margin(reynolds, laminar)
-                .min(map.margin(regime))
+                .min(map.margin_on_side(regime, branch.has(ABOVE_CORNER)))
                 .min(exponent_margin(ln_y, branch))
                 .min(limits_margin),
         }

@@ -3,9 +3,13 @@
 //! The margin that the model reports is followed along the cubic Hermite interpolant of the step to its sign change; a
 //! new step ends there, and its end is corrected by a secant.
 
-use super::march::{March, Slope, Step};
+use super::march::{March, Step};
 use super::model::{Branch, Hydraulics};
 use super::path::Stretch;
+use super::slope::Slope;
+
+/// A margin no larger than this is on the border.
+const ON_BORDER: f64 = 1e-8;
 
 impl<M: Hydraulics> March<'_, M> {
     /// The part of a step after which its branch ends; `None`: it does not.
@@ -23,12 +27,12 @@ impl<M: Hydraulics> March<'_, M> {
             self.slope(stretch, md + x * h, pressure, branch).margin
         };
         let (mut inside, mut inside_margin) = (0.0, start.margin);
-        if inside_margin <= 0.0 {
-            // A branch begins on its own border, where rounding decides the sign: look a little inside.
-            (inside, inside_margin) = (1.0 / 64.0, margin(1.0 / 64.0));
-            if inside_margin <= 0.0 {
-                return Some(0.0);
-            }
+        if inside_margin <= ON_BORDER {
+            // A branch begins on its own border, where rounding decides the sign: look a little inside. It may be short.
+            let look = |x: f64| (x, margin(x));
+            let found = [1.0 / 64.0, 1.0 / 1024.0, 1.0 / 65_536.0].into_iter().map(look).find(|at| at.1 > ON_BORDER);
+            let Some(found) = found else { return Some(0.0) };
+            (inside, inside_margin) = found;
         }
         let mut beyond = (step.end.margin < 0.0).then_some((1.0, step.end.margin));
         if beyond.is_none() {
@@ -51,7 +55,7 @@ impl<M: Hydraulics> March<'_, M> {
             }
             let x = inside + (beyond - inside) * inside_margin / (inside_margin - beyond_margin);
             let at = margin(x);
-            if at.abs() < 1e-8 {
+            if at.abs() < ON_BORDER {
                 return Some(x);
             }
             if at > 0.0 {

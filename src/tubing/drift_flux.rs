@@ -25,14 +25,16 @@
 //!
 //! # Limitation
 //! Fitted to water, kerosene and nitrogen in 6 in. pipe, from vertical to 88 degrees from it, at mixture velocities up
-//! to about 10 ft/s; smaller pipe and annular flow are extrapolation. Exactly horizontal pipe has no slip (m = 0). The
+//! to about 12 ft/s; smaller pipe and annular flow are extrapolation. Exactly horizontal pipe has no slip (m = 0). The
 //! gradient is continuous, with corners at a1, a2 and the points of the table of Ku. Parameters and table from memory.
 //!
 //! # Source
 //! Shi, Holmes, Durlofsky, Aziz, Diaz, Alkaya and Oddie, SPE Journal 10 (March 2005) 24.
 
 use super::ValidRange;
-use super::model::{Branch, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe, Range, laminar_bit, laminar_margin};
+use super::model::{
+    Branch, Course, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe, Range, laminar_bit, laminar_margin,
+};
 use crate::units::constants::GRAVITY_FT_S2;
 
 /// The model.
@@ -79,17 +81,17 @@ const BUBBLE_K: f64 = 1.53;
 
 /// a1 to a2 of the fitted set; its bits in the branch.
 const RAMP: Range = Range { low: 0.06, high: 0.21, shift: 2 };
-const KU_SHIFT: u16 = 4;
+const KU_SHIFT: u32 = 4;
 
 /// The stretch of the table of Ku: 0 below it, 7 above.
-fn ku_stretch(diameter: f64) -> u16 {
-    KU.iter().filter(|(at, _)| diameter >= *at).count() as u16
+fn ku_stretch(diameter: f64) -> u32 {
+    KU.iter().filter(|(at, _)| diameter >= *at).count() as u32
 }
 
 /// Ku and how far the diameter is inside its stretch, relatively.
 #[inline]
-fn ku_on(diameter: f64, stretch: u16) -> (f64, f64) {
-    let i = usize::from(stretch);
+fn ku_on(diameter: f64, stretch: u32) -> (f64, f64) {
+    let i = stretch as usize;
     match (i.checked_sub(1).and_then(|i| KU.get(i)), KU.get(i)) {
         (Some((low, at_low)), Some((high, at_high))) => {
             let part = (diameter - low) / (high - low);
@@ -283,7 +285,7 @@ impl Hydraulics for DriftFlux {
             kinetic: flow.kinetic(density),
             holdup,
             margin: laminar_margin(reynolds, laminar).min(state.margin),
-            course: f64::INFINITY,
+            course: Course::FREE,
         }
     }
 

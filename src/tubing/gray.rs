@@ -24,7 +24,7 @@
 
 use super::ValidRange;
 use super::friction::Roughness;
-use super::model::{Branch, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe};
+use super::model::{Branch, Course, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe};
 use crate::units::constants::GRAVITY_FT_S2;
 
 /// The model.
@@ -41,9 +41,9 @@ const LEAST_ROUGHNESS_FT: f64 = 2.77e-5;
 const MOST_RELATIVE_ROUGHNESS: f64 = 0.05;
 
 // Branch bits.
-const RICH: u16 = 4;
-const ROUGHNESS_FLOOR: u16 = 8;
-const ROUGHNESS_CEILING: u16 = 16;
+const RICH: u32 = 4;
+const ROUGHNESS_FLOOR: u32 = 8;
+const ROUGHNESS_CEILING: u32 = 16;
 
 /// The numbers of the holdup.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -128,7 +128,7 @@ impl Hydraulics for Gray {
             kinetic: flow.kinetic(density),
             holdup,
             margin: rich_margin.min(limit_margin).min(1.0),
-            course: f64::INFINITY,
+            course: Course::FREE,
         }
     }
 

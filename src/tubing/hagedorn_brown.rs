@@ -13,8 +13,9 @@
 //!
 //! # Limitation
 //! Fitted to vertical 1 to 1.5 in. tubing of 1,500 ft, 10 to 110 cp. NL is held in 0.002 to 0.4 inside the CNL fit,
-//! H in 3e-6 to 6e-3, B below 0.09; psi is 1 up to where its fit exceeds 1 (B = 0.0123). The holdup jumps where bubble flow
-//! ends. In deviated pipe only the gravity term changes.
+//! H in 3e-6 to 6e-3 (below 1e-7 HL/psi falls with H, so that no liquid leaves gas), B below 0.09; psi is 1 up to where
+//! its fit exceeds 1 (B = 0.0123). The holdup jumps where bubble flow ends. In deviated pipe only the gravity term changes.
+//! Stated range: 1 to 4 in., within 15 degrees of vertical, liquid to 110 cp, NL to 0.4, 5,000 scf/STB of liquid.
 //!
 //! # Source
 //! Hagedorn and Brown, J. Pet. Tech. (April 1965) 475; Griffith and Wallis, J. Heat Transfer 83 (1961) 307; chart
@@ -22,7 +23,7 @@
 
 use super::ValidRange;
 use super::groups::LnGroups;
-use super::model::{Branch, Flow, Gradient, Hydraulics, Pipe, Range, laminar_bit, laminar_margin};
+use super::model::{Branch, Course, Flow, Gradient, Hydraulics, Pipe, Range, laminar_bit, laminar_margin};
 use std::f64::consts::LN_10;
 
 /// Slip velocity of bubble flow, ft/s.
@@ -30,13 +31,15 @@ const BUBBLE_SLIP_FT_S: f64 = 0.8;
 const LN_PRESSURE_BASE: f64 = 2.687_847_493_784_690_6; // 14.7 psia
 
 // Branch bits: bubble flow, the sides of three fitted ranges, the floor and the ceiling of the holdup.
-const BUBBLE: u16 = 4;
-const FLOOR: u16 = 8;
-const CEILING: u16 = 16;
+const BUBBLE: u32 = 4;
+const FLOOR: u32 = 8;
+const CEILING: u32 = 16;
 /// ln NL within 0.002 and 0.4, the range of the chart: beyond it the quartic turns over.
 const VISCOSITY: Range = Range { low: -6.214_608_098_422_191, high: -0.916_290_731_874_155, shift: 5 };
 /// ln H within 3e-6 and 6e-3.
 const CORRELATING: Range = Range { low: -12.716_898_269_296_165, high: -5.115_995_809_754_082, shift: 7 };
+/// ln H from 1e-7 up: below it HL/psi falls in proportion to H, since without liquid it has to vanish.
+const VANISHING: Range = Range { low: -16.118_095_650_958_32, high: f64::INFINITY, shift: 11 };
 /// ln B from where the fit of psi rises above 1 (B = 0.0123) to 0.09.
 const SECONDARY: Range = Range { low: -4.398_143_709_447_593, high: -2.407_945_608_651_872, shift: 9 };
 
@@ -56,10 +59,10 @@ fn log10_cnl(ln_viscosity_number: f64) -> f64 {
     -2.698_51 + x * (0.158_41 + x * (-0.551 + x * (0.547_85 - x * 0.121_95)))
 }
 
-/// HL/psi from the natural logarithm of the correlating group H, which is held to its range.
+/// HL/psi from the natural logarithm of the correlating group H, which is held to its range; far below it falls with H.
 #[inline]
 pub fn holdup_over_psi(ln_h: f64) -> f64 {
-    fitted_holdup(ln_h.clamp(CORRELATING.low, CORRELATING.high))
+    fitted_holdup(ln_h.clamp(CORRELATING.low, CORRELATING.high)) * (ln_h - VANISHING.low).min(0.0).exp()
 }
 
 #[inline]
@@ -140,9 +143,11 @@ fn in_bubble_flow(flow: &Flow, pipe: &Pipe) -> State {
 fn above_bubble_flow(flow: &Flow, pipe: &Pipe, branch: Branch) -> State {
     let [nl, h, b] = correlating(flow, pipe);
     let (nl, nl_margin) = VISCOSITY.hold(nl, branch);
-    let (h, h_margin) = CORRELATING.hold(h + LN_10 * log10_cnl(nl), branch);
+    let free_h = h + LN_10 * log10_cnl(nl);
+    let (h, h_margin) = CORRELATING.hold(free_h, branch);
     let (b, b_margin) = SECONDARY.hold(b, branch);
-    let over_psi = fitted_holdup(h);
+    let (_, vanishing_margin) = VANISHING.hold(free_h, branch);
+    let over_psi = fitted_holdup(h) * if VANISHING.is_below(branch) { (free_h - VANISHING.low).exp() } else { 1.0 };
     let correlated = over_psi * fitted_psi(b.exp());
     let above_floor = correlated - flow.no_slip_holdup;
     let (holdup, holdup_margin) = if branch.has(FLOOR) {
@@ -159,7 +164,12 @@ fn above_bubble_flow(flow: &Flow, pipe: &Pipe, branch: Branch) -> State {
         holdup,
         density_lb_ft3: flow.density_at_holdup_lb_ft3(holdup),
         reynolds: pipe.reynolds(flow.no_slip_density_lb_ft3(), flow.mixture_velocity_ft_s(), ln_viscosity.exp()),
-        margin: nl_margin.min(h_margin).min(b_margin).min(holdup_margin).min(-bubble_margin(flow, pipe)),
+        margin: nl_margin
+            .min(h_margin)
+            .min(vanishing_margin)
+            .min(b_margin)
+            .min(holdup_margin)
+            .min(-bubble_margin(flow, pipe)),
     }
 }
 
@@ -173,7 +183,8 @@ fn slug_branch(flow: &Flow, pipe: &Pipe) -> Branch {
     let [nl, h, b] = correlating(flow, pipe);
     let nl_bits = VISCOSITY.bits(nl);
     let (held, _) = VISCOSITY.hold(nl, Branch(nl_bits));
-    let ranges = nl_bits | CORRELATING.bits(h + LN_10 * log10_cnl(held)) | SECONDARY.bits(b);
+    let h = h + LN_10 * log10_cnl(held);
+    let ranges = nl_bits | CORRELATING.bits(h) | VANISHING.bits(h) | SECONDARY.bits(b);
     let state = above_bubble_flow(flow, pipe, Branch(ranges));
     let limit = if state.correlated < flow.no_slip_holdup {
         FLOOR
@@ -213,7 +224,7 @@ impl Hydraulics for HagedornBrown {
             friction_psi_ft,
             kinetic: flow.kinetic(state.density_lb_ft3),
             holdup: state.holdup,
-            course: f64::INFINITY,
+            course: Course::FREE,
             margin: laminar_margin(state.reynolds, laminar).min(state.margin),
         }
     }

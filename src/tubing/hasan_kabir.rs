@@ -26,24 +26,26 @@
 //! and Sayarpour, J. Pet. Sci. Eng. 71 (2010) 114 (blended void fraction). Constants from memory of the papers.
 
 use super::ValidRange;
-use super::model::{Branch, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe, Range, laminar_bit, laminar_margin};
+use super::model::{
+    Branch, Course, DYN_CM_PER_LBM_S2, Flow, Gradient, Hydraulics, Pipe, Range, laminar_bit, laminar_margin,
+};
 use crate::elementary::exp;
 use crate::units::constants::GRAVITY_FT_S2;
 
 /// Distribution coefficient of bubbly and slug flow.
 const C0: f64 = 1.2;
 
-// Branch bits. All transitions are smooth, yet they begin at a point where no power series holds.
-/// Above the end of bubbly flow.
-const SLUG: u16 = 4;
-/// Above the droplet criterion.
-const DROPLETS: u16 = 8;
-/// Void fraction of slug flow between which the droplet criterion gains weight.
+/// Branch bits: void fraction of slug flow between which the droplet criterion gains weight.
 const WEIGHT: Range = Range { low: 0.6, high: 0.8, shift: 4 };
 
-/// Relative change of pressure allowed in a step per relative distance from the onset of a transition, and at it.
-const COURSE: f64 = 0.2;
-const LEAST_COURSE: f64 = 0.02;
+// The transitions are smooth, yet no power series holds at their onset: steps go by the distance from it. So many relative
+// changes of pressure are allowed per relative distance above it, below it (where nothing happens yet), and at it.
+const COURSE: f64 = 0.15;
+const COURSE_BELOW: f64 = 0.5;
+const COURSE_LEAVING: f64 = 5.0;
+const LEAST_COURSE: f64 = 0.01;
+/// Droplets begin more mildly: steps may be so much longer.
+const DROPLETS_COURSE: f64 = 3.0;
 
 /// The default model.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -105,10 +107,9 @@ pub fn void(flow: &Flow, pipe: &Pipe) -> Void {
 struct State {
     void: Void,
     margin: f64,
-    course: f64,
-    /// Bits that the flow itself would choose.
+    course: Course,
+    /// Void fraction of slug flow.
     in_slug: f64,
-    above_bubbly: f64,
 }
 
 #[inline]
@@ -123,48 +124,51 @@ fn state(flow: &Flow, pipe: &Pipe, branch: Branch) -> State {
     let bubbly_end = (C0 * flow.liquid_velocity_ft_s + small) * (1.0 / (4.0 - C0)) * pipe.sin_inclination.max(0.0);
     // In horizontal pipe bubbly flow ends at once.
     let above_bubbly = gas / bubbly_end.max(1e-9) - 1.0;
-    let (mut slug, mut drift, mut margin, mut course) = (0.0, small, -above_bubbly, f64::INFINITY);
-    if branch.has(SLUG) {
+    let (mut slug, mut drift, mut course) = (0.0, small, course_of(above_bubbly, 1.0));
+    if above_bubbly > 0.0 {
         slug = blend(above_bubbly);
         let long = 0.35 * (buoyancy * pipe.diameter_ft).sqrt() * pipe.long_bubble_factor;
         drift = small + (long - small) * slug;
-        (margin, course) = (above_bubbly, course_of(above_bubbly));
     }
     let in_slug = gas / (C0 * mixture + drift);
-    let (held, weight_margin) = WEIGHT.hold(in_slug, branch);
-    margin = margin.min(weight_margin);
+    let (held, margin) = WEIGHT.hold(in_slug, branch);
     let mut void = Void { fraction: in_slug, slug, annular: 0.0 };
     if !WEIGHT.is_below(branch) {
-        let above_droplets = gas / droplet_ft_s(flow) - 1.0;
-        if branch.has(DROPLETS) {
+        let droplet = DROPLETS_OVER_SMALL * small * (liquid / flow.gas_density_lb_ft3).sqrt();
+        let above_droplets = gas / droplet - 1.0;
+        course = course.min(course_of(above_droplets, DROPLETS_COURSE));
+        if above_droplets > 0.0 {
             void.annular = smooth_step((held - WEIGHT.low) / (WEIGHT.high - WEIGHT.low)) * blend(above_droplets);
             void.fraction = gas / ((C0 - (C0 - 1.0) * void.annular) * mixture + drift * (1.0 - void.annular));
-            course = course.min(2.0 * course_of(above_droplets));
-            margin = margin.min(above_droplets);
-        } else {
-            margin = margin.min(-above_droplets);
         }
     }
     // At rest gas/0 cannot occur, since small bubbles rise. Only a fluid without density difference leaves 0/0.
     if void.fraction.is_nan() {
         void.fraction = 0.0;
     }
-    State { void, margin, course, in_slug, above_bubbly }
+    State { void, margin, course, in_slug }
 }
 
-/// Near the onset of a transition steps go by its distance (twice as far where droplets begin, a milder bend).
+/// Near the onset of a transition steps go by its distance. Below it nothing happens yet: only a step towards it, up the
+/// well, must not overlook it.
 #[inline]
-fn course_of(above: f64) -> f64 {
-    COURSE * above.max(0.0) + LEAST_COURSE
+fn course_of(above: f64, times: f64) -> Course {
+    if above > 0.0 {
+        Course::both(times * (LEAST_COURSE + COURSE * above))
+    } else {
+        Course {
+            rise: times * (LEAST_COURSE - COURSE_LEAVING * above),
+            fall: times * (LEAST_COURSE - COURSE_BELOW * above),
+        }
+    }
 }
 
 fn void_branch(flow: &Flow, pipe: &Pipe) -> Branch {
-    let slug = if state(flow, pipe, Branch(0)).above_bubbly > 0.0 { SLUG } else { 0 };
-    let weight = WEIGHT.bits(state(flow, pipe, Branch(slug)).in_slug);
-    let droplets = if flow.gas_velocity_ft_s > droplet_ft_s(flow) { DROPLETS } else { 0 };
-    let branch = Branch(slug | weight);
-    if WEIGHT.is_below(branch) { branch } else { Branch(slug | weight | droplets) }
+    Branch(WEIGHT.bits(state(flow, pipe, Branch(0)).in_slug))
 }
+
+/// Velocity of droplets over that of small bubbles, both being quarter powers of g sig' (rhoL - rhog), over sqrt(rhoL/rhog).
+const DROPLETS_OVER_SMALL: f64 = 3.1 / 1.53;
 
 /// exp(-0.1/x) of the relative distance above an onset: zero with all its derivatives at the onset, one far above.
 #[inline]

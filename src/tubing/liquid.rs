@@ -2,7 +2,7 @@
 //!
 //! Serves every model where all gas is dissolved: the two-phase correlations divide by the gas velocity.
 
-use super::model::{Branch, Flow, Gradient, Pipe, laminar_bit, laminar_margin};
+use super::model::{Branch, Course, Flow, Gradient, Pipe, laminar_bit, laminar_margin};
 
 /// The branch: single phase, laminar or turbulent.
 pub fn branch(flow: &Flow, pipe: &Pipe) -> Branch {
@@ -21,7 +21,7 @@ pub fn gradient(flow: &Flow, pipe: &Pipe, branch: Branch) -> Gradient {
         friction_psi_ft: pipe.friction_psi_ft(moody, flow.liquid_density_lb_ft3, flow.liquid_velocity_ft_s),
         kinetic: 0.0,
         holdup: 1.0,
-        course: f64::INFINITY,
+        course: Course::FREE,
         margin: laminar_margin(reynolds, laminar),
     }
 }

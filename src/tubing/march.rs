@@ -11,12 +11,13 @@
 //! - the branch of the model (flow pattern, laminar or turbulent, gas or no gas) is held within a step, and its end
 //!   is located (see `border`). Stepping over one would cost 0.2 to 10 psi.
 
-use super::liquid;
-use super::model::{Branch, Flow, Gradient, Hydraulics, KINETIC_LIMIT};
+use super::heat;
+use super::model::{Branch, Hydraulics};
 use super::path::Stretch;
+use super::slide::UNWATCHED;
+use super::slope::Slope;
 use super::traverse::Stream;
 use crate::fluid::{BlackOil, CappedOil};
-use crate::units::constants::FT3_PER_BBL;
 
 /// Largest change of pressure in a step, relative to the pressure.
 const STEP_RELATIVE: f64 = 0.35;
@@ -27,14 +28,12 @@ const AIM: f64 = 0.4;
 /// Error below which the next step grows no further, in the same units.
 const LEAST_ERROR: f64 = 0.001;
 /// Tolerance of one step's error estimate relative to the accuracy asked of the whole traverse.
-const STEP_SHARE: f64 = 0.002;
+const STEP_SHARE: f64 = 0.004;
 /// Weight of the third difference of the slopes in the error estimate.
 const BEND_SHARE: f64 = 1e-4;
-/// A branch that ends this soon after its begin is left unwatched for a while: the flow would chatter. As a change of
+/// A branch that ends this soon after its begin lingers on its border, see `slide`. As a change of
 /// pressure relative to the pressure, like the two below.
 const LEAST_BRANCH: f64 = 1e-8;
-/// First stretch to be left unwatched; it doubles each time.
-const UNWATCHED: f64 = 2e-4;
 /// Beyond a border the next branch is chosen this change of pressure ahead, relative to the pressure.
 const LOOK_AHEAD: f64 = 1e-6;
 /// How often a step is repeated, and by how much its bar rises each time.
@@ -44,22 +43,19 @@ const BAR_RISE: f64 = 4.0;
 const MOST_STEPS: u32 = 4000;
 /// The march upwards gives up below this pressure, psia.
 const LEAST_PRESSURE_PSIA: f64 = 1.0;
-/// The kinetic term of a trial that runs beyond the limit.
-const KINETIC_BEYOND: f64 = 0.95;
-/// No fluid property is asked for below this pressure, psia.
-const PROPERTY_FLOOR_PSIA: f64 = 0.5;
 
 /// One model, one fluid, one stream.
 pub(crate) struct March<'a, M> {
-    model: &'a M,
-    fluid: CappedOil<'a>,
-    rate_stb_s: f64,
-    oil_fraction: f64,
-    water_fraction: f64,
-    gor_scf_stb: f64,
-    per_gor_stb_scf: f64,
-    slip_factor: f64,
+    pub(super) model: &'a M,
+    pub(super) fluid: CappedOil<'a>,
+    pub(super) rate_stb_s: f64,
+    pub(super) oil_fraction: f64,
+    pub(super) water_fraction: f64,
+    pub(super) gor_scf_stb: f64,
+    pub(super) per_gor_stb_scf: f64,
+    pub(super) slip_factor: f64,
     tolerance_psi: f64,
+    liquid_btu_lb_degf: f64,
 }
 
 /// Where the march stands.
@@ -70,23 +66,25 @@ pub(crate) struct Progress {
     pub kinetic: f64,
     /// Length wished for the next step, ft; 0: none yet.
     wish_ft: f64,
-    unwatched: f64,
+    pub(super) unwatched: f64,
     pub(crate) steps: u32,
+    /// Whether a restriction was critical.
+    pub choked: bool,
 }
 
 impl Progress {
     pub fn new(md_ft: f64, pressure_psia: f64) -> Self {
-        Self { md_ft, pressure_psia, kinetic: 0.0, wish_ft: 0.0, unwatched: UNWATCHED, steps: 0 }
+        Self { md_ft, pressure_psia, kinetic: 0.0, wish_ft: 0.0, unwatched: UNWATCHED, steps: 0, choked: false }
     }
-}
 
-/// The right-hand side at one point.
-#[derive(Clone, Copy)]
-pub(super) struct Slope {
-    pub psi_ft: f64,
-    pub margin: f64,
-    kinetic: f64,
-    course: f64,
+    /// Through the restriction at the bottom of a stretch; whether there is one.
+    pub fn pass_down<M: Hydraulics>(&mut self, march: &March<'_, M>, stretch: &Stretch) -> bool {
+        let Some(throat) = &stretch.throat else { return false };
+        let (pressure_psia, critical) = throat.down(march, stretch, self.md_ft, self.pressure_psia);
+        self.pressure_psia = pressure_psia;
+        self.choked |= critical;
+        true
+    }
 }
 
 /// One attempted step.
@@ -113,144 +111,37 @@ impl<'a, M: Hydraulics> March<'a, M> {
             per_gor_stb_scf: 1.0 / gor_scf_stb.max(1e-300),
             slip_factor,
             tolerance_psi: accuracy_psi * STEP_SHARE,
+            liquid_btu_lb_degf: heat::liquid_btu_lb_degf(fluid, water_fraction),
         }
     }
 
-    /// The flow at a point, and how far it is above (positive) or below its bubble point, relatively.
-    #[inline]
-    fn flow(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> (Flow, f64) {
-        let pressure_psia = pressure_psia.max(PROPERTY_FLOOR_PSIA);
-        let temperature_degf = stretch.temperature_degf(md_ft);
-        let (fluid, bubble_point_psia) = self.fluid.in_situ_and_bubble_point(pressure_psia, temperature_degf);
-        // Volumes in ft3 per STB of liquid.
-        let oil = FT3_PER_BBL * self.oil_fraction * fluid.bo_rb_stb;
-        let water = FT3_PER_BBL * self.water_fraction * fluid.bw_rb_stb;
-        let gas = self.oil_fraction * (self.gor_scf_stb - fluid.rs_scf_stb).max(0.0) * fluid.bg_ft3_scf;
-        let liquid = oil + water;
-        let oil_share = if self.water_fraction == 0.0 { 1.0 } else { oil / liquid };
-        let water_share = 1.0 - oil_share;
-        let velocity = self.rate_stb_s * stretch.per_area_1_ft2;
-        // Below the bubble point the gas still dissolved tells as much, and costs nothing.
-        let above = if self.oil_fraction == 0.0 {
-            1.0
-        } else if fluid.rs_scf_stb < self.gor_scf_stb {
-            fluid.rs_scf_stb * self.per_gor_stb_scf - 1.0
-        } else {
-            (pressure_psia / bubble_point_psia.max(1e-3) - 1.0).clamp(0.0, 1.0)
-        };
-        let flow = Flow {
-            liquid_velocity_ft_s: velocity * liquid,
-            gas_velocity_ft_s: velocity * gas,
-            no_slip_holdup: liquid / (liquid + gas),
-            liquid_density_lb_ft3: oil_share * fluid.oil_density_lb_ft3 + water_share * fluid.water_density_lb_ft3,
-            gas_density_lb_ft3: fluid.gas_density_lb_ft3,
-            liquid_viscosity_cp: oil_share * fluid.mu_o_cp + water_share * fluid.mu_w_cp,
-            gas_viscosity_cp: fluid.mu_g_cp,
-            tension_dyn_cm: oil_share * fluid.sigma_oil_gas_dyn_cm + water_share * fluid.sigma_water_gas_dyn_cm,
-            pressure_psia,
-        };
-        (flow, above)
+    /// Whether nothing flows.
+    pub fn at_rest(&self) -> bool {
+        self.rate_stb_s == 0.0
     }
 
-    fn choose(&self, flow: &Flow, above: f64, stretch: &Stretch) -> Branch {
-        if above >= 0.0 {
-            return liquid::branch(flow, &stretch.pipe);
-        }
-        let mut branch = self.model.branch(flow, &stretch.pipe);
-        if self.slip_factor > 1.0 {
-            let holdup = self.model.gradient(flow, &stretch.pipe, branch).holdup;
-            branch.0 |= if self.free_holdup(flow, holdup) > 1.0 { Branch::SLIP_CEILING } else { 0 };
-        }
-        let near_sonic = self.on_model(flow, stretch, branch).kinetic > KINETIC_LIMIT;
-        Branch(branch.0 | if near_sonic { Branch::NEAR_SONIC } else { 0 })
+    /// Heat capacity of the liquid.
+    pub fn liquid_btu_lb_degf(&self) -> f64 {
+        self.liquid_btu_lb_degf
     }
 
-    fn branch(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> Branch {
-        let (flow, above) = self.flow(stretch, md_ft, pressure_psia);
-        self.choose(&flow, above, stretch)
-    }
-
-    #[inline]
-    fn gradient(&self, flow: &Flow, above: f64, stretch: &Stretch, branch: Branch) -> Gradient {
-        let (mut gradient, phase_margin) = if branch.has(Branch::SINGLE_PHASE) {
-            (liquid::gradient(flow, &stretch.pipe, branch), above)
-        } else {
-            (self.on_model(flow, stretch, branch), -above)
-        };
-        gradient.margin = gradient.margin.min(phase_margin);
-        gradient
-    }
-
-    /// Holdup with the slip factor, before it is held at 1.
-    #[inline]
-    fn free_holdup(&self, flow: &Flow, holdup: f64) -> f64 {
-        let slip = holdup - flow.no_slip_holdup;
-        // Only Ansari's slugs, whose film does not weigh, can be lighter than no slip: left so.
-        flow.no_slip_holdup + if slip > 0.0 { self.slip_factor * slip } else { slip }
-    }
-
-    /// The model's gradient, its weight and kinetic term brought to the holdup of the slip factor. Friction stays as
-    /// the model has it: the roughness is there to tune it.
-    #[inline]
-    fn on_model(&self, flow: &Flow, stretch: &Stretch, branch: Branch) -> Gradient {
-        let mut gradient = self.model.gradient(flow, &stretch.pipe, branch);
-        if self.slip_factor != 1.0 {
-            let free = self.free_holdup(flow, gradient.holdup);
-            let (holdup, margin) =
-                if branch.has(Branch::SLIP_CEILING) { (1.0, free - 1.0) } else { (free, 1.0 - free) };
-            let difference = flow.liquid_density_lb_ft3 - flow.gas_density_lb_ft3;
-            let heavier_lb_ft3 = difference * (holdup - gradient.holdup);
-            gradient.gravity_psi_ft += stretch.pipe.gravity_psi_ft(heavier_lb_ft3);
-            gradient.kinetic += flow.kinetic(heavier_lb_ft3);
-            gradient.holdup = holdup;
-            if self.slip_factor > 1.0 {
-                gradient.margin = gradient.margin.min(margin);
+    /// Marches to a depth within a stretch, downwards or upwards, by way of the corners of its temperature. False: the
+    /// pressure ran out on the way up.
+    pub fn advance(&self, stretch: &Stretch, progress: &mut Progress, end_md_ft: f64) -> bool {
+        loop {
+            let stop_md_ft = stretch.next_stop_ft(progress.md_ft, end_md_ft);
+            if !self.advance_to(stretch, progress, stop_md_ft) {
+                return false;
+            }
+            if stop_md_ft == end_md_ft {
+                return true;
             }
         }
-        gradient
-    }
-
-    /// The branch at a point and the slope on it.
-    fn begin(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> (Branch, Slope) {
-        let (flow, above) = self.flow(stretch, md_ft, pressure_psia);
-        let branch = self.choose(&flow, above, stretch);
-        (branch, self.slope_of(&flow, above, stretch, branch))
-    }
-
-    #[inline]
-    pub(super) fn slope(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64, branch: Branch) -> Slope {
-        let (flow, above) = self.flow(stretch, md_ft, pressure_psia);
-        self.slope_of(&flow, above, stretch, branch)
-    }
-
-    #[inline]
-    fn slope_of(&self, flow: &Flow, above: f64, stretch: &Stretch, branch: Branch) -> Slope {
-        let gradient = self.gradient(flow, above, stretch, branch);
-        // Where the kinetic term is held begins and ends like any other branch; a stage just beyond stays finite.
-        let (held, kinetic_margin) = if branch.has(Branch::NEAR_SONIC) {
-            (KINETIC_LIMIT, gradient.kinetic - KINETIC_LIMIT)
-        } else {
-            (gradient.kinetic.min(KINETIC_BEYOND), KINETIC_LIMIT - gradient.kinetic)
-        };
-        Slope {
-            psi_ft: (gradient.gravity_psi_ft + gradient.friction_psi_ft) / (1.0 - held),
-            margin: gradient.margin.min(kinetic_margin),
-            kinetic: gradient.kinetic,
-            course: gradient.course,
-        }
-    }
-
-    /// Flow, gradient and name of the pattern at a point.
-    pub fn describe(&self, stretch: &Stretch, md_ft: f64, pressure_psia: f64) -> (Flow, Gradient, &'static str) {
-        let (flow, above) = self.flow(stretch, md_ft, pressure_psia);
-        let branch = self.choose(&flow, above, stretch);
-        let pattern = if above >= 0.0 { "liquid" } else { self.model.pattern(&flow, &stretch.pipe) };
-        (flow, self.gradient(&flow, above, stretch, branch), pattern)
     }
 
     /// One step of Dormand and Prince's pair on one branch; `h` is negative on the way up.
     #[inline]
-    fn step(&self, stretch: &Stretch, md: f64, p: f64, start: Slope, h: f64, branch: Branch) -> Step {
+    pub(super) fn step(&self, stretch: &Stretch, md: f64, p: f64, start: Slope, h: f64, branch: Branch) -> Step {
         let k1 = start.psi_ft;
         let mut least_margin = f64::INFINITY;
         let mut stage = |c: f64, slope: f64| {
@@ -282,15 +173,18 @@ impl<'a, M: Hydraulics> March<'a, M> {
             - end.psi_ft / 40.0;
         // The fourth difference, which `error` measures, may vanish by chance; the third then still tells of a bend.
         let third_difference = -k1 / 0.24 + third.psi_ft / 0.105 - fourth.psi_ft / 0.08 + end.psi_ft / 0.14;
-        let error = error.hypot(BEND_SHARE * third_difference);
+        let bend = BEND_SHARE * third_difference;
+        let error = (error * error + bend * bend).sqrt();
         let valley = third.margin < start.margin && fourth.margin < end.margin;
         Step { pressure_psia: p + h * mean, end, error_psi: (h * error).abs(), least_margin, valley }
     }
 
-    /// Marches to `end_md_ft` within a stretch, downwards or upwards. False: the pressure ran out on the way up.
-    pub fn advance(&self, stretch: &Stretch, progress: &mut Progress, end_md_ft: f64) -> bool {
+    /// As `advance`, where nothing in the temperature is in the way.
+    fn advance_to(&self, stretch: &Stretch, progress: &mut Progress, end_md_ft: f64) -> bool {
         let direction = (end_md_ft - progress.md_ft).signum();
         let (mut branch, mut start) = self.begin(stretch, progress.md_ft, progress.pressure_psia);
+        // The branch left at the last border.
+        let mut before = None;
         loop {
             progress.kinetic = progress.kinetic.max(start.kinetic);
             if progress.pressure_psia < LEAST_PRESSURE_PSIA {
@@ -305,7 +199,8 @@ impl<'a, M: Hydraulics> March<'a, M> {
             if progress.wish_ft == 0.0 {
                 progress.wish_ft = FIRST_STEP_RELATIVE * pressure_length;
             }
-            let mut wish = progress.wish_ft.min(start.course.min(STEP_RELATIVE) * pressure_length);
+            let course = if direction > 0.0 { start.course.rise } else { start.course.fall };
+            let mut wish = progress.wish_ft.min(course.min(STEP_RELATIVE) * pressure_length);
             progress.steps += 1;
             if progress.steps > MOST_STEPS {
                 wish = rest;
@@ -333,7 +228,8 @@ impl<'a, M: Hydraulics> March<'a, M> {
                 }
             }
             if length == 0.0 {
-                self.unwatched(stretch, progress, end_md_ft, &mut branch, &mut start);
+                (branch, start) = self.linger(stretch, progress, end_md_ft, (before, branch), start);
+                before = None;
                 continue;
             }
             // The bar rises with every repetition: where the error does not fall with the step, a chain of repetitions
@@ -360,9 +256,15 @@ impl<'a, M: Hydraulics> March<'a, M> {
             start = step.end;
             if switched {
                 (progress.md_ft, progress.pressure_psia) = at_border;
+                let left = Some(branch);
                 let ahead = direction * (LOOK_AHEAD * pressure_length).min(rest);
                 branch = self.branch(stretch, progress.md_ft + ahead, progress.pressure_psia + start.psi_ft * ahead);
                 start = self.slope(stretch, progress.md_ft, progress.pressure_psia, branch);
+                before = left;
+                if self.ends_at_once(stretch, progress, direction, branch, start) {
+                    (branch, start) = self.linger(stretch, progress, end_md_ft, (before, branch), start);
+                    before = None;
+                }
             }
         }
     }
@@ -371,29 +273,13 @@ impl<'a, M: Hydraulics> March<'a, M> {
     fn next_wish(&self, wish: f64, length: f64, error_psi: f64) -> f64 {
         let relative = error_psi / self.tolerance_psi;
         let error = (relative * relative + LEAST_ERROR * LEAST_ERROR).sqrt();
+        if length == wish {
+            return wish * fifth_root(AIM / error);
+        }
         let weight = length / wish;
         // Geometric mean of the old wish and the best length, by how much of the wish was tried.
         let best = weight * fifth_root(AIM / error);
         if best > 0.0 { wish * best.powf(weight) } else { wish }
-    }
-
-    /// Goes on for a while on the branch that would end at once, then chooses anew.
-    fn unwatched(
-        &self,
-        stretch: &Stretch,
-        progress: &mut Progress,
-        end_md_ft: f64,
-        branch: &mut Branch,
-        start: &mut Slope,
-    ) {
-        let rest = end_md_ft - progress.md_ft;
-        let pressure_length = progress.pressure_psia / start.psi_ft.max(1e-12);
-        let h = rest.signum() * (progress.unwatched * pressure_length).min(rest.abs());
-        progress.unwatched *= 2.0;
-        let step = self.step(stretch, progress.md_ft, progress.pressure_psia, *start, h, *branch);
-        progress.md_ft = if h == rest { end_md_ft } else { progress.md_ft + h };
-        progress.pressure_psia = step.pressure_psia;
-        (*branch, *start) = self.begin(stretch, progress.md_ft, progress.pressure_psia);
     }
 }
 

@@ -14,20 +14,25 @@ pub mod gray;
 pub mod groups;
 pub mod hagedorn_brown;
 pub mod hasan_kabir;
+pub mod heat;
 pub mod liquid;
 pub mod minimum_curvature;
 pub mod model;
 pub mod mukherjee_brill;
 pub mod no_slip;
+pub mod restriction;
 
 mod border;
 mod march;
 mod path;
+mod path_checks;
 mod range;
+mod slide;
+mod slope;
 mod spec;
 mod traverse;
 
 pub use choke::{Choke, ChokeCheck, ChokeFlow, ChokeMethod, ChokeSpec, ChokeTest, Discharge};
 pub use range::{Limited, OutsideRange, ValidRange};
-pub use spec::{TubingMethod, TubingSection, TubingSpec};
+pub use spec::{HeatSpec, RestrictionSpec, TubingMethod, TubingSection, TubingSpec};
 pub use traverse::{Stream, Traverse, TraversePoint, Tubing};

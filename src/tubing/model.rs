@@ -127,24 +127,52 @@ impl Flow {
 }
 
 /// Which branch of its piecewise formulas a model is on: a bit set whose meaning is the model's own, apart from
-/// the two lowest bits and the two highest.
+/// the two lowest bits and those from the seventeenth on.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
-pub struct Branch(pub u16);
+pub struct Branch(pub u32);
 
 impl Branch {
     /// No free gas.
-    pub const SINGLE_PHASE: u16 = 1;
+    pub const SINGLE_PHASE: u32 = 1;
     /// Reynolds number below 2,100.
-    pub const LAMINAR: u16 = 2;
+    pub const LAMINAR: u32 = 2;
     /// Holdup held at 1 by the slip factor; set and used by the march, not by the models.
-    pub const SLIP_CEILING: u16 = 0x4000;
+    pub const SLIP_CEILING: u32 = 0x1_0000;
     /// Kinetic term held at its limit; set and used by the march, not by the models.
-    pub const NEAR_SONIC: u16 = 0x8000;
+    pub const NEAR_SONIC: u32 = 0x2_0000;
+    /// Tension of oil at its floor; set and used by the march, not by the models.
+    pub const TENSION_FLOOR: u32 = 0x4_0000;
 
     /// Whether a bit is set.
     #[inline]
-    pub fn has(self, bit: u16) -> bool {
+    pub fn has(self, bit: u32) -> bool {
         self.0 & bit != 0
+    }
+}
+
+/// Relative changes of pressure that a step may make.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Course {
+    /// Upwards in pressure: on the march down.
+    pub rise: f64,
+    /// Downwards in pressure: on the march up.
+    pub fall: f64,
+}
+
+impl Course {
+    /// No limit.
+    pub const FREE: Self = Self { rise: f64::INFINITY, fall: f64::INFINITY };
+
+    /// The same limit both ways.
+    #[inline]
+    pub fn both(change: f64) -> Self {
+        Self { rise: change, fall: change }
+    }
+
+    /// The smaller of two.
+    #[inline]
+    pub fn min(self, other: Self) -> Self {
+        Self { rise: self.rise.min(other.rise), fall: self.fall.min(other.fall) }
     }
 }
 
@@ -162,9 +190,9 @@ pub struct Gradient {
     /// How far inside its branch the flow is: positive inside, zero on the border, negative beyond it; continuous,
     /// of the order of a relative distance. It is by its sign change that the traverse finds the switches.
     pub margin: f64,
-    /// The relative change of pressure over which the gradient may be expected to change its course; infinite where
+    /// The relative change of pressure over which the gradient may be expected to change its course; free where
     /// nothing but the fluid bends it.
-    pub course: f64,
+    pub course: Course,
 }
 
 /// Ek at which the kinetic term is held (convention 4.8(13)).
@@ -208,7 +236,7 @@ pub(crate) fn laminar_margin(reynolds: f64, laminar: bool) -> f64 {
 
 /// The laminar bit of a Reynolds number.
 #[inline]
-pub(crate) fn laminar_bit(reynolds: f64) -> u16 {
+pub(crate) fn laminar_bit(reynolds: f64) -> u32 {
     if reynolds < LAMINAR_REYNOLDS { Branch::LAMINAR } else { 0 }
 }
 
@@ -219,13 +247,13 @@ pub(crate) struct Range {
     pub low: f64,
     pub high: f64,
     /// Position of its two bits in the branch.
-    pub shift: u16,
+    pub shift: u32,
 }
 
 impl Range {
     /// The two bits of a value: within, below, above.
     #[inline]
-    pub fn bits(self, x: f64) -> u16 {
+    pub fn bits(self, x: f64) -> u32 {
         let code = if x < self.low {
             1
         } else if x > self.high {

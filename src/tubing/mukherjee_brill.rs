@@ -16,7 +16,7 @@
 //! only: the downhill coefficients serve no producer, and a path that climbs on its way down is refused. HL is held within
 //! lam and 1: the sum in brackets turns positive for viscous liquids (NL above 0.4 in vertical pipe). The holdup is
 //! continuous, the friction jumps where annular flow begins. The two lines of the map hold outside the data too, where
-//! nothing supports them.
+//! nothing supports them. Stated range: NL to 0.4.
 //!
 //! # Source
 //! Mukherjee and Brill, J. Can. Pet. Tech. (July 1983) 85 (holdup) and J. Energy Resour. Technol. 107 (1985) 549
@@ -24,7 +24,7 @@
 
 use super::ValidRange;
 use super::groups::LnGroups;
-use super::model::{Branch, Flow, Gradient, Hydraulics, Pipe, laminar_bit, laminar_margin};
+use super::model::{Branch, Course, Flow, Gradient, Hydraulics, Pipe, laminar_bit, laminar_margin};
 use super::no_slip;
 use std::f64::consts::LN_10;
 
@@ -33,10 +33,10 @@ use std::f64::consts::LN_10;
 pub struct MukherjeeBrill;
 
 // Branch bits; the stretch of the table of fR in three more.
-const ANNULAR: u16 = 4;
-const FLOOR: u16 = 8;
-const CEILING: u16 = 16;
-const RATIO_SHIFT: u16 = 5;
+const ANNULAR: u32 = 4;
+const FLOOR: u32 = 8;
+const CEILING: u32 = 16;
+const RATIO_SHIFT: u32 = 5;
 
 /// HR = lam/HL and fR, straight between.
 const RATIO: [(f64, f64); 7] = [(0.01, 1.0), (0.2, 0.98), (0.3, 1.2), (0.4, 1.25), (0.5, 1.3), (0.7, 1.25), (1.0, 1.0)];
@@ -100,14 +100,14 @@ fn holdup(map: &Map, flow: &Flow, pipe: &Pipe, branch: Branch) -> (f64, f64) {
 }
 
 /// The stretch of the table on which a ratio lies: 0 below the table, 7 above it.
-fn stretch(ratio: f64) -> u16 {
-    RATIO.iter().filter(|(at, _)| ratio >= *at).count() as u16
+fn stretch(ratio: f64) -> u32 {
+    RATIO.iter().filter(|(at, _)| ratio >= *at).count() as u32
 }
 
 /// fR and how far the ratio is inside its stretch.
 #[inline]
-fn friction_ratio(ratio: f64, stretch: u16) -> (f64, f64) {
-    let i = usize::from(stretch);
+fn friction_ratio(ratio: f64, stretch: u32) -> (f64, f64) {
+    let i = stretch as usize;
     match (i.checked_sub(1).and_then(|i| RATIO.get(i)), RATIO.get(i)) {
         (Some((low, at_low)), Some((high, at_high))) => {
             let part = (ratio - low) / (high - low);
@@ -137,7 +137,7 @@ impl Hydraulics for MukherjeeBrill {
         let annular = if map.annular_margin() > 0.0 {
             let ratio = flow.no_slip_holdup / holdup(&map, flow, pipe, Branch(limit)).0;
             // On the floor HR is 1 by definition, whatever rounding says.
-            let stretch = if limit == FLOOR { RATIO.len() as u16 } else { stretch(ratio) };
+            let stretch = if limit == FLOOR { RATIO.len() as u32 } else { stretch(ratio) };
             ANNULAR | (stretch << RATIO_SHIFT)
         } else {
             0
@@ -174,7 +174,7 @@ impl Hydraulics for MukherjeeBrill {
             kinetic: flow.kinetic(density),
             holdup,
             margin: margin.min(laminar_margin(reynolds, laminar)),
-            course: f64::INFINITY,
+            course: Course::FREE,
         }
     }
 

@@ -10,7 +10,7 @@
 //! # Source
 //! Textbook; see Brill and Mukherjee, Multiphase Flow in Wells (SPE Monograph 17, 1999), chapter 4.
 
-use super::model::{Branch, Flow, Gradient, Hydraulics, Pipe, laminar_bit, laminar_margin};
+use super::model::{Branch, Course, Flow, Gradient, Hydraulics, Pipe, laminar_bit, laminar_margin};
 
 /// The no-slip model.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -40,7 +40,7 @@ impl Hydraulics for NoSlip {
             friction_psi_ft: pipe.friction_psi_ft(moody, density, flow.mixture_velocity_ft_s()),
             kinetic: flow.kinetic(density),
             holdup: flow.no_slip_holdup,
-            course: f64::INFINITY,
+            course: Course::FREE,
             margin: laminar_margin(reynolds, laminar),
         }
     }

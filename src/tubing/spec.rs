@@ -78,4 +78,38 @@ pub struct TubingSpec {
     /// Flowing temperatures: measured depth, ft, from 0 down, and degF. Empty: straight from the wellhead's to the tank's
     /// against vertical depth.
     pub temperatures: Vec<(f64, f64)>,
+    /// Flowing temperature from the heat that the stream loses to the ground, in place of the two above.
+    pub heat: Option<HeatSpec>,
+    /// Short pieces of smaller inside diameter.
+    pub restrictions: Vec<RestrictionSpec>,
+}
+
+/// A short piece of smaller inside diameter in the string: a nipple, a safety valve, a ported sub.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct RestrictionSpec {
+    /// Measured depth, ft.
+    pub at_md_ft: f64,
+    /// Inside diameter, in.
+    pub diameter_in: f64,
+    /// What flows, over what would flow without friction.
+    pub discharge_coefficient: f64,
+}
+
+/// What the heat loss of a well goes by.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct HeatSpec {
+    /// Undisturbed temperature of the ground at the wellhead, degF; from there straight against vertical depth to the
+    /// tank's at the perforations.
+    pub surface_temperature_degf: f64,
+    /// Heat conductivity of the ground, Btu/h/ft/degF.
+    pub conductivity_btu_h_ft_degf: f64,
+    /// Its diffusivity, ft2/h.
+    pub diffusivity_ft2_h: f64,
+    /// Radius at which the completion meets the ground, ft.
+    pub wellbore_radius_ft: f64,
+    /// Coefficient of heat transfer from the stream to that radius, for the inside circumference of the pipe,
+    /// Btu/h/ft2/degF; infinite: the completion does not hold heat back.
+    pub transfer_btu_h_ft2_degf: f64,
+    /// Time for which the ground has been warmed, days.
+    pub producing_time_d: f64,
 }

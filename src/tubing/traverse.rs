@@ -6,6 +6,7 @@ use super::drift_flux::DriftFlux;
 use super::gray::Gray;
 use super::hagedorn_brown::HagedornBrown;
 use super::hasan_kabir::HasanKabir;
+use super::heat::Warmth;
 use super::march::{March, Progress};
 use super::model::{Flow, Hydraulics, KINETIC_LIMIT};
 use super::mukherjee_brill::MukherjeeBrill;
@@ -35,6 +36,8 @@ pub struct Traverse {
     /// Whether the kinetic term met its limit on the way: the flow comes so near to sonic velocity that no model
     /// here describes it.
     pub near_sonic: bool,
+    /// Whether the flow through a restriction is critical: it goes at the speed of sound there.
+    pub choked: bool,
 }
 
 /// One point of a traverse.
@@ -204,6 +207,24 @@ impl Tubing {
         with_model!(self.method, model => self.march_down(model, fluid, stream, wellhead_psia).steps)
     }
 
+    /// Temperature of the stream at the wellhead, degF.
+    pub fn wellhead_temperature_degf(&self, fluid: &BlackOil, stream: &Stream) -> f64 {
+        self.temperature_degf(fluid, stream, 0.0)
+    }
+
+    /// Temperature of the stream at a measured depth, degF; beyond the ends of the path that of the end.
+    pub fn temperature_degf(&self, fluid: &BlackOil, stream: &Stream, md_ft: f64) -> f64 {
+        let stretches = &self.path.stretches;
+        let i = stretches
+            .iter()
+            .position(|stretch| md_ft <= stretch.bottom_md_ft)
+            .unwrap_or(stretches.len().saturating_sub(1));
+        let Some(stretch) = stretches.get(i) else { return f64::NAN };
+        let warmed = Warmth::new(&self.path, fluid, stream).of(i, stretch);
+        let md_ft = md_ft.clamp(0.0, self.path.perforations_md_ft);
+        warmed.as_ref().unwrap_or(stretch).temperature_degf(md_ft)
+    }
+
     /// Measured depth of the perforations, ft.
     pub fn perforations_md_ft(&self) -> f64 {
         self.path.perforations_md_ft
@@ -262,14 +283,19 @@ impl Tubing {
 
     fn down<M: Hydraulics>(&self, model: &M, fluid: &BlackOil, stream: &Stream, wellhead_psia: f64) -> Traverse {
         let end = self.march_down(model, fluid, stream, wellhead_psia);
-        Traverse { pressure_psia: end.pressure_psia, near_sonic: end.kinetic > KINETIC_LIMIT }
+        let near_sonic = end.kinetic > KINETIC_LIMIT || end.choked;
+        Traverse { pressure_psia: end.pressure_psia, near_sonic, choked: end.choked }
     }
 
     fn march_down<M: Hydraulics>(&self, model: &M, fluid: &BlackOil, stream: &Stream, wellhead_psia: f64) -> Progress {
         let march = self.march(model, fluid, stream);
+        let warmth = Warmth::new(&self.path, fluid, stream);
         let mut progress = Progress::new(0.0, held(wellhead_psia));
-        for stretch in &self.path.stretches {
+        for (i, stretch) in self.path.stretches.iter().enumerate() {
+            let warmed = warmth.of(i, stretch);
+            let stretch = warmed.as_ref().unwrap_or(stretch);
             march.advance(stretch, &mut progress, stretch.bottom_md_ft);
+            progress.pass_down(&march, stretch);
         }
         progress
     }
@@ -277,7 +303,13 @@ impl Tubing {
     fn up<M: Hydraulics>(&self, model: &M, fluid: &BlackOil, stream: &Stream, flowing_psia: f64) -> Option<f64> {
         let march = self.march(model, fluid, stream);
         let mut progress = Progress::new(self.path.perforations_md_ft, held(flowing_psia));
-        for stretch in self.path.stretches.iter().rev() {
+        let warmth = Warmth::new(&self.path, fluid, stream);
+        for (i, stretch) in self.path.stretches.iter().enumerate().rev() {
+            let warmed = warmth.of(i, stretch);
+            let stretch = warmed.as_ref().unwrap_or(stretch);
+            if let Some(throat) = &stretch.throat {
+                progress.pressure_psia = throat.up(&march, stretch, progress.md_ft, progress.pressure_psia)?;
+            }
             if !march.advance(stretch, &mut progress, stretch.top_md_ft) {
                 return None;
             }
@@ -312,10 +344,13 @@ impl Tubing {
         let march = self.march(model, fluid, stream);
         let mut progress = Progress::new(0.0, held(wellhead_psia));
         let spacing_ft = self.path.perforations_md_ft / f64::from(intervals);
-        if let Some(first) = self.path.stretches.first() {
-            visit(&march, first, &progress);
-        }
-        for stretch in &self.path.stretches {
+        let warmth = Warmth::new(&self.path, fluid, stream);
+        for (i, stretch) in self.path.stretches.iter().enumerate() {
+            let warmed = warmth.of(i, stretch);
+            let stretch = warmed.as_ref().unwrap_or(stretch);
+            if i == 0 {
+                visit(&march, stretch, &progress);
+            }
             let steps = ((stretch.bottom_md_ft - stretch.top_md_ft) / spacing_ft).ceil().max(1.0);
             for i in 1..=steps as u32 {
                 let part = f64::from(i) / steps;
@@ -325,6 +360,10 @@ impl Tubing {
                     stretch.top_md_ft + part * (stretch.bottom_md_ft - stretch.top_md_ft)
                 };
                 march.advance(stretch, &mut progress, end_md_ft);
+                visit(&march, stretch, &progress);
+            }
+            // Both sides of a restriction are points of their own.
+            if progress.pass_down(&march, stretch) {
                 visit(&march, stretch, &progress);
             }
         }

@@ -93,6 +93,12 @@ impl UnitSystem {
             (Self::Field, D::GasVolumeFactor) => ("rb/scf", "rb_scf", "rb/scf"),
             (Self::Metric, D::GasVolumeFactor) => ("rm3/Sm3", "rm3_sm3", "rm³/Sm³"),
             (_, D::Angle) => ("deg", "deg", "°"),
+            (Self::Field, D::HeatConductivity) => ("Btu/h/ft/degF", "btu_h_ft_degf", "Btu/h/ft/°F"),
+            (Self::Metric, D::HeatConductivity) => ("W/m/K", "w_m_k", "W/m/K"),
+            (Self::Field, D::HeatTransfer) => ("Btu/h/ft2/degF", "btu_h_ft2_degf", "Btu/h/ft²/°F"),
+            (Self::Metric, D::HeatTransfer) => ("W/m2/K", "w_m2_k", "W/m²/K"),
+            (Self::Field, D::Diffusivity) => ("ft2/h", "ft2_h", "ft²/h"),
+            (Self::Metric, D::Diffusivity) => ("mm2/s", "mm2_s", "mm²/s"),
         };
         let scale = units_of(dimension).find(|row| row.name == unit).map(|row| row.scale);
         let (factor, offset) = match scale {

@@ -59,11 +59,17 @@ pub enum Dimension {
     GasVolumeFactor,
     /// Degrees.
     Angle,
+    /// Btu/h/ft/degF.
+    HeatConductivity,
+    /// Btu/h/ft2/degF.
+    HeatTransfer,
+    /// ft2/h.
+    Diffusivity,
 }
 
 impl Dimension {
     /// All of them.
-    pub const ALL: [Self; 24] = [
+    pub const ALL: [Self; 27] = [
         Self::Pressure,
         Self::PressureDifference,
         Self::Length,
@@ -88,6 +94,9 @@ impl Dimension {
         Self::LiquidVolumeFactor,
         Self::GasVolumeFactor,
         Self::Angle,
+        Self::HeatConductivity,
+        Self::HeatTransfer,
+        Self::Diffusivity,
     ];
 
     /// With its article, for messages: "a pressure".
@@ -117,6 +126,9 @@ impl Dimension {
             Self::LiquidVolumeFactor => "a liquid volume factor",
             Self::GasVolumeFactor => "a gas volume factor",
             Self::Angle => "an angle",
+            Self::HeatConductivity => "a heat conductivity",
+            Self::HeatTransfer => "a heat-transfer coefficient",
+            Self::Diffusivity => "a diffusivity",
         }
     }
 
@@ -147,6 +159,9 @@ impl Dimension {
             Self::LiquidVolumeFactor => "1.3 rb/STB",
             Self::GasVolumeFactor => "0.001 rb/scf",
             Self::Angle => "30 deg",
+            Self::HeatConductivity => "1.4 Btu/h/ft/degF",
+            Self::HeatTransfer => "4 Btu/h/ft2/degF",
+            Self::Diffusivity => "0.04 ft2/h",
         }
     }
 }
@@ -269,6 +284,8 @@ const M3_FT3: f64 = 1.0 / (FT_M * FT_M * FT_M);
 const M3_BBL: f64 = M3_FT3 / FT3_PER_BBL;
 /// lb/ft3 in a kg/m3.
 const KG_M3: f64 = FT_M * FT_M * FT_M / 0.453_592_37;
+/// Btu/h in a watt, by the international table's Btu of 1,055.055 852 62 J.
+const WATT_BTU_H: f64 = 3600.0 / 1_055.055_852_62;
 /// Days in a mean year of the calendar, and in its twelfth.
 const YEAR_D: f64 = 365.2425;
 
@@ -412,5 +429,16 @@ fn build() -> Vec<Unit> {
 
         linear(Angle, "deg", 1.0, &["degree", "degrees", "\u{b0}"]),
         linear(Angle, "rad", 180.0 / std::f64::consts::PI, &["radian", "radians"]),
+
+        linear(HeatConductivity, "Btu/h/ft/degF", 1.0, &["btu/hr/ft/degf", "btu/h/ft/f", "btu/hr/ft/f", "btu/hftdegf", "btu/hrftdegf", "btu/hftf", "btu/hrftf"]),
+        linear(HeatConductivity, "W/m/K", WATT_BTU_H * FT_M / 1.8, &["w/mk", "w/m/degc", "w/mdegc"]),
+
+        linear(HeatTransfer, "Btu/h/ft2/degF", 1.0, &["btu/hr/ft2/degf", "btu/h/ft2/f", "btu/hr/ft2/f", "btu/hft2degf", "btu/hrft2degf", "btu/hft2f", "btu/hrft2f"]),
+        linear(HeatTransfer, "W/m2/K", WATT_BTU_H * FT_M * FT_M / 1.8, &["w/m2k", "w/m2/degc", "w/m2degc"]),
+
+        linear(Diffusivity, "ft2/h", 1.0, &["ft2/hr", "sqft/h", "sqft/hr"]),
+        linear(Diffusivity, "ft2/d", 1.0 / 24.0, &[]),
+        linear(Diffusivity, "m2/s", 3600.0 / (FT_M * FT_M), &[]),
+        linear(Diffusivity, "mm2/s", 3600.0e-6 / (FT_M * FT_M), &[]),
     ]
 }

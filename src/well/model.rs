@@ -86,7 +86,7 @@ impl WellModel {
         let (inflow, fit, points) = fit_inflow(spec, &tubing, depth_below_datum_ft, around)?;
         let mut well = Self {
             spec: spec.clone(),
-            choke: choke(spec, around),
+            choke: choke(spec, &tubing, around),
             tubing,
             inflow,
             fit,
@@ -109,7 +109,7 @@ impl WellModel {
             return Self::new(spec, around);
         }
         let (tubing, depth_below_datum_ft) = completion(spec, around)?;
-        let choke = choke(spec, around);
+        let choke = choke(spec, &tubing, around);
         Ok(Self {
             spec: spec.clone(),
             tubing,
@@ -201,8 +201,9 @@ fn completion(spec: &WellSpec, around: &Surroundings) -> Result<(Tubing, f64), V
     Ok((tubing, depth_below_datum_ft))
 }
 
-fn choke(spec: &WellSpec, around: &Surroundings) -> Option<Choke> {
-    spec.choke.as_ref().map(|choke| Choke::new(choke, around.fluid, |_| spec.tubing.wellhead_temperature_degf))
+fn choke(spec: &WellSpec, tubing: &Tubing, around: &Surroundings) -> Option<Choke> {
+    let temperature = |stream: &Stream| tubing.wellhead_temperature_degf(around.fluid, stream);
+    spec.choke.as_ref().map(|choke| Choke::new(choke, around.fluid, temperature))
 }
 
 /// `(r + s_test)/(r + s)`: pseudo-steady radial flow with and without the present skin.
@@ -388,8 +389,8 @@ impl<'a> WellNow<'a> {
         self.well.choke.as_ref()?.size_for(self.fluid, &stream, wellhead_psia, line, temperature)
     }
 
-    fn wellhead_temperature_degf(&self, _stream: &Stream) -> f64 {
-        self.well.spec.tubing.wellhead_temperature_degf
+    fn wellhead_temperature_degf(&self, stream: &Stream) -> f64 {
+        self.well.tubing.wellhead_temperature_degf(self.fluid, stream)
     }
 
     /// Lowest pressure at the wellhead that passes a stream into the line: the line's, or what the choke asks for, psia.

@@ -27,6 +27,8 @@ fn tubing(method: TubingMethod) -> Tubing {
         slip_factor: 1.0,
         wellhead_temperature_degf: 110.0,
         temperatures: Vec::new(),
+        heat: None,
+        restrictions: Vec::new(),
     };
     Tubing::new(&spec, None, 190.0, 0.02).unwrap_or_else(|faults| panic!("{faults:?}"))
 }

@@ -93,6 +93,8 @@ pub fn well(name: &str) -> WellSpec {
             slip_factor: 1.0,
             wellhead_temperature_degf: 110.0,
             temperatures: Vec::new(),
+            heat: None,
+            restrictions: Vec::new(),
         },
         flowing_surveys: Vec::new(),
     }

@@ -21,6 +21,8 @@ pub fn string(method: TubingMethod, sections: &[(f64, f64)], survey: &[(f64, f64
         slip_factor: 1.0,
         wellhead_temperature_degf: wellhead_degf,
         temperatures: Vec::new(),
+        heat: None,
+        restrictions: Vec::new(),
     }
 }
 
@@ -38,4 +40,14 @@ pub fn flow(vsl: f64, vsg: f64, rhol: f64, rhog: f64, mul: f64, mug: f64, sigma:
         tension_dyn_cm: sigma,
         pressure_psia: p,
     }
+}
+
+/// An expected value of `tests/data/flow.json`, and the absolute tolerance that the file states.
+pub fn expected(id: &str, name: &str) -> (f64, f64) {
+    let file = std::fs::File::open("tests/data/flow.json").expect("test data");
+    let cases: serde_json::Value = serde_json::from_reader(std::io::BufReader::new(file)).expect("valid json");
+    let case = cases.as_array().expect("a list").iter().find(|case| case["id"] == id).expect(id);
+    let item = case["expected"].as_array().expect("values").iter().find(|item| item["name"] == name).expect(name);
+    let value = item["value"].as_f64().expect("a number");
+    (value, item["tol_abs"].as_f64().unwrap_or_else(|| item["tol_rel"].as_f64().expect("one") * value.abs()))
 }

@@ -63,7 +63,8 @@ impl Measurement {
     /// All measurements of a well, surveys first.
     pub fn of(well: &WellModel, field: &Field) -> Vec<Self> {
         let temperature_degf = field.surroundings().temperature_degf;
-        let surveys = well.spec.flowing_surveys.iter().map(|survey| from_survey(well, survey, temperature_degf));
+        let surveys =
+            well.spec.flowing_surveys.iter().map(|survey| from_survey(well, field.fluid(), survey, temperature_degf));
         let tests = match &well.spec.inflow.coefficient {
             Coefficient::Tests(tests) => tests.as_slice(),
             _ => &[],
@@ -142,7 +143,14 @@ impl Tuning {
     }
 }
 
-fn from_survey(well: &WellModel, survey: &FlowingSurvey, bottom_temperature_degf: f64) -> Measurement {
+fn from_survey(
+    well: &WellModel,
+    fluid: &BlackOil,
+    survey: &FlowingSurvey,
+    bottom_temperature_degf: f64,
+) -> Measurement {
+    let stream =
+        Stream { liquid_rate_stb_d: survey.rate_stb_d, water_cut: survey.water_cut, gor_scf_stb: survey.gor_scf_stb };
     let mut tubing = well.spec.tubing.clone();
     let measured: Vec<(f64, f64)> = survey
         .points
@@ -153,9 +161,12 @@ fn from_survey(well: &WellModel, survey: &FlowingSurvey, bottom_temperature_degf
     let top = survey.points.first().filter(|p| p.md_ft < WELLHEAD_FT).and_then(|p| p.temperature_degf);
     let wellhead_degf = survey.wellhead_temperature_degf.or(top);
     if !measured.is_empty() {
-        let wellhead_degf = wellhead_degf.unwrap_or(tubing.wellhead_temperature_degf);
+        let wellhead_degf = wellhead_degf.unwrap_or_else(|| well.tubing.wellhead_temperature_degf(fluid, &stream));
+        // What was measured stands in place of a computed loss of heat.
+        tubing.heat = None;
         tubing.temperatures = std::iter::once((0.0, wellhead_degf)).chain(measured).collect();
-    } else if let (Some(wellhead_degf), true) = (wellhead_degf, tubing.temperatures.is_empty()) {
+    } else if let (Some(wellhead_degf), true) = (wellhead_degf, tubing.temperatures.is_empty() && tubing.heat.is_none())
+    {
         tubing.wellhead_temperature_degf = wellhead_degf;
     }
     let stations = survey.points.iter().filter(|p| p.md_ft >= WELLHEAD_FT).map(|p| Station {
@@ -167,11 +178,7 @@ fn from_survey(well: &WellModel, survey: &FlowingSurvey, bottom_temperature_degf
     Measurement {
         kind: Kind::Survey,
         on: Some(survey.on),
-        stream: Stream {
-            liquid_rate_stb_d: survey.rate_stb_d,
-            water_cut: survey.water_cut,
-            gor_scf_stb: survey.gor_scf_stb,
-        },
+        stream,
         wellhead_psia: survey.wellhead_psia,
         reservoir_psia: survey.reservoir_psia,
         stations: stations.collect(),
