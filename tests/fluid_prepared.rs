@@ -1,7 +1,10 @@
 //! The prepared functions of a fluid against the correlations themselves.
 #![allow(clippy::unwrap_used)]
 
-use wane::fluid::{BlackOil, FluidSpec, InSitu};
+use wane::fluid::{
+    BlackOil, Correlations, DeadOilCorrelation, FluidSpec, InSitu, LiveOilCorrelation, OilCorrelation,
+    UndersaturatedCorrelation, ZCorrelation,
+};
 use wane::tubing::{Stream, Tubing, TubingMethod, TubingSection, TubingSpec};
 
 /// Uniform numbers from 0 to 1 (additive recurrence; no test depends on which).
@@ -29,7 +32,41 @@ fn pairs(a: &InSitu, b: &InSitu) -> [(&'static str, f64, f64); 13] {
     ]
 }
 
+/// The fluids, and the first of them by every other correlation.
 fn fluids() -> Vec<(&'static str, FluidSpec, f64)> {
+    let medium = FluidSpec { bubble_point_psia: Some(2650.0), ..FluidSpec::new(34.0, 0.78, 620.0) };
+    let chosen = |correlations| FluidSpec { correlations, ..medium.clone() };
+    let default = Correlations::default();
+    let mut list = own_fluids();
+    list.extend(
+        OilCorrelation::ALL[1..].iter().map(|&oil| (oil.word(), chosen(Correlations { oil, ..default }), 190.0)),
+    );
+    list.extend(
+        DeadOilCorrelation::ALL[1..]
+            .iter()
+            .map(|&dead_oil| (dead_oil.word(), chosen(Correlations { dead_oil, ..default }), 190.0)),
+    );
+    list.push((
+        "chew-connally, beal",
+        chosen(Correlations {
+            live_oil: LiveOilCorrelation::ChewConnally,
+            undersaturated: UndersaturatedCorrelation::Beal,
+            ..default
+        }),
+        190.0,
+    ));
+    list.push(("hall-yarborough", chosen(Correlations { z: ZCorrelation::HallYarborough, ..default }), 190.0));
+    let tuned = FluidSpec {
+        bubble_point_bo_rb_stb: Some(1.42),
+        bubble_point_mu_o_cp: Some(0.4),
+        dead_oil_mu_cp: Some(1.8),
+        ..medium.clone()
+    };
+    list.push(("tuned", tuned, 190.0));
+    list
+}
+
+fn own_fluids() -> Vec<(&'static str, FluidSpec, f64)> {
     vec![
         (
             "medium",

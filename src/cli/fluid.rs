@@ -132,15 +132,12 @@ fn provenance(scenario: &FluidScenario, name: &str) -> Provenance {
     }
 }
 
-/// Where the properties come from: a table where a laboratory has a say or something is tuned, one line for each.
+/// Where the properties come from, a line for each.
 fn sources(s: &mut Screen, sheet: &FluidSheet) {
-    let header = [("property", Side::Left), ("from", Side::Left), ("detail", Side::Left)];
-    let rows: Vec<Vec<String>> = sheet
-        .sources
-        .iter()
-        .map(|source| vec![source.property.to_owned(), source.from.to_owned(), source.detail.clone()])
-        .collect();
-    s.table(&header, &rows);
+    s.heading("From laboratory or correlation");
+    for source in &sheet.sources {
+        s.paragraph(2, 2, &format!("{}: {}, {}", source.property, source.from, source.detail));
+    }
 }
 
 fn text(sheet: &FluidSheet, provenance: &Provenance, folder: Option<String>) -> String {
@@ -175,7 +172,6 @@ fn text(sheet: &FluidSheet, provenance: &Provenance, folder: Option<String>) -> 
         );
     }
     s.table(&header, &rows);
-    s.line("");
     sources(&mut s, sheet);
     if let Some(folder) = folder {
         s.line("");

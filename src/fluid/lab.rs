@@ -105,7 +105,7 @@ impl LabReport {
 /// A laboratory's table, prepared.
 #[derive(Debug, Clone)]
 pub(super) struct Lab {
-    /// The converted rows.
+    /// The converted rows, with z and the gas volume factor both.
     pub rows: Vec<LabRow>,
     pub bubble_point_psia: f64,
     /// Gas at the bubble point, scf/STB.
@@ -138,7 +138,12 @@ impl Lab {
         correlated: impl Fn(f64) -> (f64, f64),
         z_of_bg: impl Fn(f64, f64) -> f64,
     ) -> Result<Self, Vec<Fault>> {
-        let rows = report.converted()?;
+        let mut rows = report.converted()?;
+        for row in &mut rows {
+            let p = row.pressure_psia;
+            row.z = row.z.or_else(|| row.bg_rb_scf.map(|bg| z_of_bg(bg, p)));
+            row.bg_rb_scf = row.z.map(|z| z / z_of_bg(1.0, p));
+        }
         let rs = |row: &LabRow| row.rs_scf_stb.unwrap_or(0.0);
         let top_scf_stb = rows.iter().map(rs).fold(0.0, f64::max);
         let count = rows.iter().filter(|row| rs(row) < top_scf_stb).count() + 1;
@@ -160,13 +165,8 @@ impl Lab {
         let cannot = || vec![Fault::new("lab", "the table has no two rows at or below the bubble point")];
         let mu_b = bubble.mu_o_cp;
         let beyond = |row: &LabRow| row.pressure_psia - bubble.pressure_psia;
-        let z_points: Vec<(f64, f64)> = rows
-            .iter()
-            .filter_map(|row| {
-                let p = row.pressure_psia;
-                Some((p, row.z.or_else(|| row.bg_rb_scf.map(|bg| z_of_bg(bg, p)))? / correlated(p).0))
-            })
-            .collect();
+        let z_points: Vec<(f64, f64)> =
+            rows.iter().filter_map(|row| Some((row.pressure_psia, row.z? / correlated(row.pressure_psia).0))).collect();
         let mu_g_points: Vec<(f64, f64)> = rows
             .iter()
             .filter_map(|row| Some((row.pressure_psia, row.mu_g_cp? / correlated(row.pressure_psia).1)))

@@ -36,15 +36,14 @@ pub fn fluid_picture(table: &FluidSheet, provenance: &Provenance) -> Drawing {
         let marked = "laboratory, referred to the separator\u{2019}s oil".to_owned();
         entries.push((marked, Look { width: 0.0, ..point }, true));
         let names = table.by_correlation.iter().enumerate();
-        entries.extend(names.map(|(i, (name, _))| ((*name).to_owned(), beside(i), false)));
+        entries.extend(names.map(|(i, (name, _))| (format!("{name} through this bubble point"), beside(i), false)));
     }
     let room = if has_lab { axes::legend_height(WIDTH, &entries) } else { 0.0 };
     let mut d = Drawing::new(WIDTH, (790.0 + room) as u32);
     let pressure = label(provenance.units, Dimension::Pressure);
     let degrees = label(provenance.units, Dimension::Temperature);
-    let correlations = if has_lab { "; correlations through the same bubble point, without the table" } else { "" };
     let subtitle = format!(
-        "At tank temperature, {} {}: saturated below, undersaturated above the bubble point (dashed){correlations}",
+        "At tank temperature, {} {}: saturated below, undersaturated above the bubble point (dashed)",
         crate::report::human::number(degrees.of(table.temperature_degf), 1),
         degrees.text
     );
