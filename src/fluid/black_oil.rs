@@ -259,7 +259,8 @@ impl BlackOil {
             let high_degf = (self.temperature_degf + ABOVE_TANK_DEGF)
                 .min(TEMPERATURE_RANGE_DEGF.1 - RIM_DEGF)
                 .min(degf(MAXIMUM_TPR) - RIM_DEGF);
-            let top_psia = RIM_RATIO * self.maximum_pressure_psia;
+            let smooth_psia = self.oil.smooth_to_psia() * self.inverse_tuning_factor;
+            let top_psia = smooth_psia.min(RIM_RATIO * self.maximum_pressure_psia);
             Grid::new(self, (LOWEST_PSIA, top_psia), (low_degf, high_degf))
         })
     }

@@ -75,6 +75,8 @@ impl<'a> CappedOil<'a> {
             let above = fluid.above_bubble_point(p, ln_p, rs, bubble_point_psia, t, mu_b);
             mu_o = above.viscosity_ratio * mu_b;
             bo = above.volume_ratio * fluid.oil.bo_rb_stb(rs, t);
+        } else if fluid.viscosity.has_corner() {
+            mu_o = fluid.viscosity.live_cp(at.ln_dead_cp, rs);
         } else {
             mu_o = exp(ln_a + b * at.ln_dead_cp);
         }

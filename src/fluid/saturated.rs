@@ -87,6 +87,11 @@ impl SaturatedOil {
         if self.family == OilCorrelation::Glaso { 15_000.0 } else { f64::INFINITY }
     }
 
+    /// Up to where it is smooth enough for the prepared functions, psia.
+    pub fn smooth_to_psia(&self) -> f64 {
+        if self.family == OilCorrelation::Glaso { 7_500.0 } else { f64::INFINITY }
+    }
+
     /// G.
     #[inline]
     pub fn gas_power(&self, rs_scf_stb: f64) -> f64 {

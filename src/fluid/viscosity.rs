@@ -67,6 +67,12 @@ impl OilViscosity {
         ln_dead_cp + self.ln_dead_factor
     }
 
+    /// Whether the live oil's coefficients have a corner, which prepared functions would round off.
+    #[inline]
+    pub fn has_corner(&self) -> bool {
+        self.live == LiveOilCorrelation::ChewConnally
+    }
+
     /// a and b of a mu_dead^b.
     #[inline]
     pub fn live_coefficients(&self, rs_scf_stb: f64) -> (f64, f64) {
