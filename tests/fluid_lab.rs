@@ -67,8 +67,11 @@ fn the_textbook_report_is_converted_to_its_rounding() {
     assert_eq!(at(0.0).rs_scf_stb, Some(0.0));
 }
 
-/// The invented report of scenarios/lab.toml, by hand: psig, rs, bo, mu_o, z, mu_g.
-const INVENTED: [(f64, Option<f64>, f64, f64, Option<f64>, Option<f64>); 12] = [
+/// psig, rs, bo, mu_o, z, mu_g.
+type Row = (f64, Option<f64>, f64, f64, Option<f64>, Option<f64>);
+
+/// The invented report of scenarios/lab.toml.
+const INVENTED: [Row; 12] = [
     (5000.0, None, 1.421, 0.583, None, None),
     (4000.0, None, 1.438, 0.522, None, None),
     (3000.0, None, 1.458, 0.462, None, None),
@@ -254,6 +257,55 @@ fn impossible_rows_are_refused() {
     ] {
         assert!(text.contains(said), "{said}: {text}");
     }
+}
+
+#[test]
+fn a_gas_volume_factor_serves_as_well_as_z() {
+    let by_z = BlackOil::new(&invented(), TANK_DEGF).unwrap();
+    let mut spec = invented();
+    for row in &mut spec.lab.as_mut().unwrap().rows {
+        row.bg_rb_scf = row.z.map(|z| 14.696 / 519.67 * z * (TANK_DEGF + 459.67) / row.pressure_psia / 5.614_583);
+        row.z = None;
+    }
+    let by_bg = BlackOil::new(&spec, TANK_DEGF).unwrap();
+    for p in [100.0, 164.7, 1000.0, 1814.7, 4000.0] {
+        assert!((by_bg.bg(p) / by_z.bg(p) - 1.0).abs() < 1e-9);
+        assert!((by_bg.table_row(p).z / by_z.table_row(p).z - 1.0).abs() < 1e-9);
+    }
+}
+
+#[test]
+fn what_the_table_does_not_hold_comes_from_correlations_and_is_said() {
+    let said = |fluid: &BlackOil| {
+        fluid.sources().iter().map(|s| format!("{}: {}, {}", s.property, s.from, s.detail)).collect::<Vec<_>>()
+    };
+    let full = BlackOil::new(&invented(), TANK_DEGF).unwrap();
+    let list = said(&full);
+    assert_eq!(list.iter().filter(|line| line.contains(": lab, ")).count(), list.len() - 1, "{list:#?}");
+    assert!(list.last().unwrap().contains("water: correlation, McCain"));
+    // Rs and Bo below the bubble point alone, and a measured viscosity.
+    let mut spec = invented();
+    let lab = spec.lab.as_mut().unwrap();
+    lab.rows.drain(..3);
+    for row in &mut lab.rows {
+        (row.mu_o_cp, row.z, row.mu_g_cp) = (None, None, None);
+    }
+    spec.bubble_point_mu_o_cp = Some(0.44);
+    let bare = BlackOil::new(&spec, TANK_DEGF).unwrap();
+    let list = said(&bare);
+    assert_eq!(list.iter().filter(|line| line.contains(": lab, ")).count(), 3, "{list:#?}");
+    assert!(
+        list.iter()
+            .any(|line| line.starts_with("oil viscosity: correlation, Beggs-Robinson") && line.contains("times"))
+    );
+    assert!((bare.mu_o(2514.7, 640.0) / 0.44 - 1.0).abs() < 1e-3);
+    // Above the bubble point Vasquez and Beggs' closed form.
+    let a = 1e-5 * (-1433.0 + 5.0 * 640.0 + 17.2 * TANK_DEGF - 1180.0 * 0.82 + 12.61 * 36.0);
+    let pb = bare.initial_bubble_point_psia();
+    assert!((bare.bo(4000.0, 640.0) / (1.405 * (pb / 4000.0).powf(a)) - 1.0).abs() < 1e-9);
+    let plain =
+        BlackOil::new(&FluidSpec { bubble_point_psia: Some(pb), ..FluidSpec::new(36.0, 0.82, 640.0) }, TANK_DEGF);
+    assert!((bare.bg(1500.0) / plain.unwrap().bg(1500.0) - 1.0).abs() < 1e-12);
 }
 
 proptest! {

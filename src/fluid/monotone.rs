@@ -45,7 +45,7 @@ impl MonotoneCurve {
     #[inline]
     pub fn at(&self, x: f64) -> f64 {
         let last = self.x.len() - 1;
-        if !(x > self.x[0]) {
+        if x.is_nan() || x <= self.x[0] {
             return self.y[0] + self.slope[0] * (x - self.x[0]);
         }
         if x >= self.x[last] {
@@ -68,7 +68,7 @@ impl MonotoneCurve {
     /// The slope at `x`.
     pub fn slope_at(&self, x: f64) -> f64 {
         let last = self.x.len() - 1;
-        if !(x > self.x[0]) {
+        if x.is_nan() || x <= self.x[0] {
             return self.slope[0];
         }
         if x >= self.x[last] {
@@ -90,7 +90,7 @@ impl MonotoneCurve {
     /// The abscissa of a value of a curve that rises strictly.
     pub fn inverse(&self, y: f64) -> f64 {
         let last = self.x.len() - 1;
-        if !(y > self.y[0]) {
+        if y.is_nan() || y <= self.y[0] {
             return if self.slope[0] > 0.0 { self.x[0] + (y - self.y[0]) / self.slope[0] } else { self.x[0] };
         }
         if y >= self.y[last] {

@@ -7,11 +7,14 @@ use crate::fluid::{FluidRow, LabRow};
 use crate::report::labels::{Dimension, label};
 use crate::report::{FluidSheet, Provenance};
 
+type Computed<'a> = Box<dyn Fn(&FluidRow) -> f64 + 'a>;
+type Measured<'a> = Box<dyn Fn(&LabRow) -> Option<f64> + 'a>;
+
 /// One panel: its title, a value of a row, the laboratory's value, whether the scale begins at zero, and whether the correlations differ in it.
 struct Plot<'a> {
     title: String,
-    value: Box<dyn Fn(&FluidRow) -> f64 + 'a>,
-    measured: Box<dyn Fn(&LabRow) -> Option<f64> + 'a>,
+    value: Computed<'a>,
+    measured: Measured<'a>,
     zero: bool,
     of_oil: bool,
 }
