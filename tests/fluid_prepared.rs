@@ -1,7 +1,10 @@
 //! The prepared functions of a fluid against the correlations themselves.
 #![allow(clippy::unwrap_used)]
 
-use wane::fluid::{BlackOil, FluidSpec, InSitu};
+use wane::fluid::{
+    BlackOil, Correlations, DeadOilCorrelation, FluidSpec, InSitu, LabBasis, LabReport, LabRow, LiveOilCorrelation,
+    OilCorrelation, UndersaturatedCorrelation, ZCorrelation,
+};
 use wane::tubing::{Stream, Tubing, TubingMethod, TubingSection, TubingSpec};
 
 /// Uniform numbers from 0 to 1 (additive recurrence; no test depends on which).
@@ -29,7 +32,62 @@ fn pairs(a: &InSitu, b: &InSitu) -> [(&'static str, f64, f64); 13] {
     ]
 }
 
+/// The fluids, and the first of them by every other correlation.
 fn fluids() -> Vec<(&'static str, FluidSpec, f64)> {
+    let medium = FluidSpec { bubble_point_psia: Some(2650.0), ..FluidSpec::new(34.0, 0.78, 620.0) };
+    let chosen = |correlations| FluidSpec { correlations, ..medium.clone() };
+    let default = Correlations::default();
+    let mut list = own_fluids();
+    list.extend(
+        OilCorrelation::ALL[1..].iter().map(|&oil| (oil.word(), chosen(Correlations { oil, ..default }), 190.0)),
+    );
+    list.extend(
+        DeadOilCorrelation::ALL[1..]
+            .iter()
+            .map(|&dead_oil| (dead_oil.word(), chosen(Correlations { dead_oil, ..default }), 190.0)),
+    );
+    list.push((
+        "chew-connally, beal",
+        chosen(Correlations {
+            live_oil: LiveOilCorrelation::ChewConnally,
+            undersaturated: UndersaturatedCorrelation::Beal,
+            ..default
+        }),
+        190.0,
+    ));
+    list.push(("hall-yarborough", chosen(Correlations { z: ZCorrelation::HallYarborough, ..default }), 190.0));
+    let tuned = FluidSpec {
+        bubble_point_bo_rb_stb: Some(1.42),
+        bubble_point_mu_o_cp: Some(0.4),
+        dead_oil_mu_cp: Some(1.8),
+        ..medium.clone()
+    };
+    list.push(("tuned", tuned, 190.0));
+    // An invented laboratory's table: psia, scf/STB, rb/STB, cp, z, gas cp.
+    let rows = [
+        (14.7, Some(0.0), 1.065, 1.7, None, None),
+        (300.0, Some(120.0), 1.152, 1.0, Some(0.955), Some(0.0127)),
+        (900.0, Some(255.0), 1.222, 0.74, Some(0.888), Some(0.0142)),
+        (1600.0, Some(402.0), 1.289, 0.56, Some(0.839), Some(0.0166)),
+        (2100.0, Some(512.0), 1.339, 0.48, Some(0.825), Some(0.0187)),
+        (2580.0, Some(620.0), 1.388, 0.42, None, None),
+        (4000.0, None, 1.359, 0.51, None, None),
+    ];
+    let rows = rows.map(|(pressure_psia, rs_scf_stb, bo_rb_stb, mu_o, z, mu_g_cp)| LabRow {
+        pressure_psia,
+        rs_scf_stb,
+        bo_rb_stb,
+        mu_o_cp: Some(mu_o),
+        z,
+        bg_rb_scf: None,
+        mu_g_cp,
+    });
+    let lab = Some(LabReport { basis: LabBasis::Flash, rows: rows.to_vec() });
+    list.push(("laboratory", FluidSpec { lab, ..FluidSpec::new(34.0, 0.78, 620.0) }, 190.0));
+    list
+}
+
+fn own_fluids() -> Vec<(&'static str, FluidSpec, f64)> {
     vec![
         (
             "medium",

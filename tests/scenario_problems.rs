@@ -49,7 +49,7 @@ const CASES: &[Case] = &[
         "«xyzzy»     =",
         &["`fluid.xyzzy` is not a known key", "keys of [fluid]: oil_gravity, gas_gravity"],
     ),
-    ("salinity     =", "«table»     =", &["a laboratory table in place of correlations comes with a later version"]),
+    ("salinity     =", "lab = «\"a.csv\"»\nsalinity =", &["`fluid.lab` is a text, not a table", "[fluid.lab]"]),
     ("title =", "«odds» = {}\ntitle =", &["`odds`: the uncertainty study comes with a later version"]),
     // Lines and chokes.
     (

@@ -6,7 +6,7 @@ use wane::scenario::{Document, data_doubts};
 
 #[test]
 fn every_shipped_scenario_resolves_in_every_case() {
-    for name in ["depletion", "injection", "two-wells", "midlife", "calibrated"] {
+    for name in ["depletion", "injection", "two-wells", "midlife", "calibrated", "lab"] {
         let path = format!("{}/scenarios/{name}.toml", env!("CARGO_MANIFEST_DIR"));
         let document = Document::load(Path::new(&path)).unwrap_or_else(|error| panic!("{error}"));
         assert!(document.text().starts_with("# "), "{name} begins with its story");

@@ -5,7 +5,7 @@ use super::context::{file_name, quantity, scenario_copy, shown, target};
 use super::failure::Failure;
 use super::screen::{Screen, Side};
 use super::{Done, output};
-use crate::fluid::{BlackOil, ReservoirFluid};
+use crate::fluid::{BlackOil, OilCorrelation, ReservoirFluid};
 use crate::report::folder::ResultFolder;
 use crate::report::human::{number, significant};
 use crate::report::labels::label;
@@ -37,15 +37,12 @@ pub fn run(args: &FluidArgs) -> Result<Done, Failure> {
     if !picked {
         pressures = choice(&fluid, scenario.units, low, top);
     }
-    let sheet = sheet(&fluid, &scenario, &pressures);
+    let sheet = sheet(&fluid, &scenario, &pressures, &[]);
     let provenance = provenance(&scenario, &file_name(file));
     if let Some(target_folder) = &args.output {
         let folder = ResultFolder::prepare(target_folder)?;
         // The picture has its own, closer pressures.
-        let fine: Vec<f64> = (0..=200).map(|i| low + (top - low) * f64::from(i) / 200.0).collect();
-        let mut fine: Vec<f64> = fine.into_iter().chain([fluid.initial_bubble_point_psia()]).collect();
-        fine.sort_by(f64::total_cmp);
-        let drawing = fluid_picture(&self::sheet(&fluid, &scenario, &fine), &provenance);
+        let drawing = fluid_picture(&picture_sheet(&fluid, &scenario, low, top), &provenance);
         let mut files = vec![OutFile::new("fluid.csv", fluid_csv(&sheet, scenario.units)?)];
         files.extend(picture_files("fluid", &drawing)?);
         files.push(scenario_copy(&document, &provenance.scenario_name, &files));
@@ -90,11 +87,31 @@ fn choice(fluid: &BlackOil, units: UnitSystem, low: f64, top: f64) -> Vec<f64> {
     list
 }
 
-fn sheet(fluid: &BlackOil, scenario: &FluidScenario, pressures: &[f64]) -> FluidSheet {
+/// Closer pressures, up to the highest of the laboratory's, and with a laboratory's table the correlations beside it.
+fn picture_sheet(fluid: &BlackOil, scenario: &FluidScenario, low: f64, top: f64) -> FluidSheet {
+    let lab = fluid.lab_rows();
+    let top = lab.iter().map(|row| row.pressure_psia).fold(top, f64::max);
+    let mut fine: Vec<f64> = (0..=200).map(|i| low + (top - low) * f64::from(i) / 200.0).collect();
+    fine.push(fluid.initial_bubble_point_psia());
+    fine.sort_by(f64::total_cmp);
+    let mut choices = if lab.is_empty() { Vec::new() } else { OilCorrelation::ALL.to_vec() };
+    let chosen = scenario.fluid.correlations.oil;
+    choices.sort_by_key(|choice| *choice != chosen);
+    sheet(fluid, scenario, &fine, &choices)
+}
+
+fn sheet(fluid: &BlackOil, scenario: &FluidScenario, pressures: &[f64], choices: &[OilCorrelation]) -> FluidSheet {
+    let rows = |fluid: &BlackOil| pressures.iter().map(|&p| fluid.table_row(p)).collect::<Vec<_>>();
     FluidSheet {
         temperature_degf: scenario.temperature_degf,
         bubble_point_psia: fluid.initial_bubble_point_psia(),
-        rows: pressures.iter().map(|&p| fluid.table_row(p)).collect(),
+        rows: rows(fluid),
+        sources: fluid.sources(),
+        lab: fluid.lab_rows().to_vec(),
+        by_correlation: choices
+            .iter()
+            .filter_map(|choice| Some((choice.authors(), rows(&fluid.by_correlation(*choice)?))))
+            .collect(),
     }
 }
 
@@ -112,6 +129,14 @@ fn provenance(scenario: &FluidScenario, name: &str) -> Provenance {
             .filter_map(|s| s.split_once('='))
             .map(|(k, v)| (format!("set {k}"), v.to_owned()))
             .collect(),
+    }
+}
+
+/// Where the properties come from, a line for each.
+fn sources(s: &mut Screen, sheet: &FluidSheet) {
+    s.heading("From laboratory or correlation");
+    for source in &sheet.sources {
+        s.paragraph(2, 2, &format!("{}: {}, {}", source.property, source.from, source.detail));
     }
 }
 
@@ -147,6 +172,7 @@ fn text(sheet: &FluidSheet, provenance: &Provenance, folder: Option<String>) -> 
         );
     }
     s.table(&header, &rows);
+    sources(&mut s, sheet);
     if let Some(folder) = folder {
         s.line("");
         s.paragraph(0, 2, &format!("Results: {folder} (fluid.csv, fluid.svg, fluid.png)"));

@@ -17,7 +17,7 @@
 use super::oil_specific_gravity;
 
 /// The printed coefficients belong to a scale that starts at 460.
-const DEGF_TO_DEGR_PRINTED: f64 = 460.0;
+pub(super) const DEGF_TO_DEGR_PRINTED: f64 = 460.0;
 
 /// Bubble point, psia.
 pub fn bubble_point_psia(rs_scf_stb: f64, temperature_degf: f64, oil_gravity_api: f64, gas_gravity: f64) -> f64 {

@@ -1,22 +1,24 @@
-//! The fluid of published correlations, tuned through its measured bubble point.
+//! The fluid of published correlations, tuned to what was measured, under a laboratory's table where there is one.
 
-use super::beggs_robinson::BeggsRobinson;
 use super::by_temperature::{AtTemperature, ByTemperature};
 use super::capped::CappedOil;
-use super::dranchuk_abou_kassem::{Isotherm, MAXIMUM_PPR, MAXIMUM_TPR};
-use super::gas::Gas;
+use super::correlations::UndersaturatedCorrelation;
+use super::dranchuk_abou_kassem::MAXIMUM_TPR;
+use super::gas::{Gas, Isotherm};
 use super::grid::Grid;
+use super::lab::Lab;
 use super::lee_gonzalez_eakin::LB_FT3_PER_G_CM3;
 use super::mccain::McCainWater;
-use super::standing::Standing;
-use super::{FluidRow, FluidSpec, InSitu, ReservoirFluid, checks, oil_specific_gravity, osif, vasquez_beggs};
+use super::saturated::SaturatedOil;
+use super::viscosity::OilViscosity;
+use super::{FluidSpec, InSitu, beal_standing, checks, oil_specific_gravity, osif, vasquez_beggs};
 use crate::elementary::ln;
 use crate::fault::Fault;
 use crate::units::constants::{DEGF_TO_DEGR, FRESH_WATER_LB_FT3, FT3_PER_BBL};
 use std::sync::{Arc, OnceLock};
 
 /// The lowest and highest pressures of the model, psia (the upper one falls where z leaves its fit).
-const PRESSURE_RANGE_PSIA: (f64, f64) = (14.696, 15_000.0);
+pub(super) const PRESSURE_RANGE_PSIA: (f64, f64) = (14.696, 15_000.0);
 /// Properties below this pressure, psia, are those at it: a caller's trial step never meets a pole.
 const PRESSURE_FLOOR_PSIA: f64 = 0.5;
 /// Temperatures are held to this range, degF.
@@ -26,42 +28,44 @@ const LEAST_GRID_TPR: f64 = 1.2;
 /// The oil above a bubble point lower than this, psia, is compressed from here: A ln(p/pb) has no limit at zero.
 const LEAST_BUBBLE_POINT_PSIA: f64 = 14.696;
 
-/// Black oil, gas and water by the default correlations (Standing, Vasquez-Beggs above the bubble point, Beggs-Robinson, Sutton,
+/// Black oil, gas and water by the chosen correlations (unless said otherwise Standing, Vasquez-Beggs above the bubble point, Beggs-Robinson, Sutton,
 /// Wichert-Aziz, Dranchuk-Abou-Kassem, Lee-Gonzalez-Eakin, McCain, Baker-Swerdloff).
 ///
 /// As a [`ReservoirFluid`] it answers at tank temperature; [`in_situ`](Self::in_situ) answers at any pressure and temperature.
 #[derive(Debug, Clone)]
 pub struct BlackOil {
     pub(super) spec: FluidSpec,
-    temperature_degf: f64,
+    pub(super) temperature_degf: f64,
     pub(super) tuning_factor: f64,
     inverse_tuning_factor: f64,
-    initial_bubble_point_psia: f64,
-    maximum_pressure_psia: f64,
+    pub(super) initial_bubble_point_psia: f64,
+    pub(super) maximum_pressure_psia: f64,
     oil_specific_gravity: f64,
     /// Gas gravity of the Vasquez-Beggs equations: corrected to a 100 psig separator when its conditions are stated.
     separator_gas_gravity: f64,
-    pub(super) standing: Standing,
+    pub(super) oil: SaturatedOil,
+    pub(super) viscosity: OilViscosity,
     pub(super) gas: Gas,
     pub(super) water: McCainWater,
     /// Density of stock-tank oil, lb/ft3.
     pub(super) oil_standard_density_lb_ft3: f64,
     /// Mass that a scf adds to a stock-tank barrel, lb/ft3 per scf/STB.
     pub(super) gas_mass_lb_ft3: f64,
-    tank: AtTank,
+    pub(super) tank: AtTank,
     pub(super) by_temperature: ByTemperature,
     /// Filled at the first use in situ; copies of the fluid share it.
     grid: Arc<OnceLock<Grid>>,
     /// Whether the grid is used at all.
     prepared: bool,
+    lab: Option<Arc<Lab>>,
 }
 
 /// What depends only on the tank's temperature.
 #[derive(Debug, Clone, Copy)]
-struct AtTank {
-    temperature_degr: f64,
-    isotherm: Isotherm,
-    functions: AtTemperature,
+pub(super) struct AtTank {
+    pub temperature_degr: f64,
+    pub isotherm: Isotherm,
+    pub functions: AtTemperature,
 }
 
 impl BlackOil {
@@ -75,28 +79,49 @@ impl BlackOil {
         if !faults.is_empty() {
             return Err(faults);
         }
-        let standing = Standing::new(spec.oil_gravity_api, spec.gas_gravity);
+        let separator_gas_gravity = match spec.separator {
+            Some((psia, degf)) => {
+                vasquez_beggs::separator_gas_gravity(spec.gas_gravity, spec.oil_gravity_api, psia, degf)
+            }
+            None => spec.gas_gravity,
+        };
         let gas = Gas::new(spec);
-        let maximum_pressure_psia = PRESSURE_RANGE_PSIA.1.min(MAXIMUM_PPR * gas.pseudo_critical.pressure_psia);
-        let correlated_psia = standing.bubble_point_psia(spec.solution_gor_scf_stb, tank_temperature_degf);
-        let initial_bubble_point_psia = spec.bubble_point_psia.unwrap_or(correlated_psia);
+        let temperature_degr = tank_temperature_degf + DEGF_TO_DEGR;
+        let isotherm = gas.isotherm(temperature_degr);
+        let lab = prepared_lab(spec, &gas, &isotherm, temperature_degr)?;
+        let oil =
+            SaturatedOil::new(spec.correlations.oil, spec.oil_gravity_api, spec.gas_gravity, separator_gas_gravity);
+        let correlated_psia = oil.bubble_point_psia(spec.solution_gor_scf_stb, tank_temperature_degf);
+        let measured_psia = lab.as_ref().map(|lab| lab.bubble_point_psia).or(spec.bubble_point_psia);
+        let initial_bubble_point_psia = measured_psia.unwrap_or(correlated_psia);
+        let tuning_factor = correlated_psia / initial_bubble_point_psia;
+        let maximum_pressure_psia = PRESSURE_RANGE_PSIA
+            .1
+            .min(gas.highest_pressure_psia())
+            .min(oil.highest_pressure_psia() / tuning_factor.max(1.0));
         let faults = checks::of_bubble_point(spec, correlated_psia, (PRESSURE_RANGE_PSIA.0, maximum_pressure_psia));
         if !faults.is_empty() {
             return Err(faults);
         }
-        let tuning_factor = correlated_psia / initial_bubble_point_psia;
-        let oil_specific_gravity = oil_specific_gravity(spec.oil_gravity_api);
-        let beggs_robinson = BeggsRobinson::new(spec.oil_gravity_api);
-        let temperature_degr = tank_temperature_degf + DEGF_TO_DEGR;
-        let water = McCainWater::new(spec.salinity_ppm);
-        let functions_at = |temperature_degf: f64| {
-            let ln_temperature = temperature_degf.ln();
-            AtTemperature {
-                ln_dead_cp: beggs_robinson.dead_cp(ln_temperature).ln(),
-                water_cp: water.atmospheric_cp(ln_temperature),
-                bubble_factor: standing.temperature_factor(temperature_degf),
-                dissolved_scf_stb: standing.unit_gas_scf_stb(temperature_degf),
+        let oil = match spec.bubble_point_bo_rb_stb {
+            Some(bo) => {
+                let correlated = oil.bo_rb_stb(spec.solution_gor_scf_stb, tank_temperature_degf);
+                oil.swelling((bo - 1.0) / (correlated - 1.0))
             }
+            None => oil,
+        };
+        let viscosity = OilViscosity::new(spec, tank_temperature_degf);
+        let faults = checks::of_tuning(spec, &oil, &viscosity);
+        if !faults.is_empty() {
+            return Err(faults);
+        }
+        let oil_specific_gravity = oil_specific_gravity(spec.oil_gravity_api);
+        let water = McCainWater::new(spec.salinity_ppm);
+        let functions_at = |temperature_degf: f64| AtTemperature {
+            ln_dead_cp: viscosity.ln_dead_cp(temperature_degf),
+            water_cp: water.atmospheric_cp(temperature_degf.ln()),
+            bubble_factor: oil.bubble_factor(temperature_degf),
+            dissolved_scf_stb: oil.unit_gas_scf_stb(temperature_degf),
         };
         let fluid = Self {
             spec: spec.clone(),
@@ -106,25 +131,18 @@ impl BlackOil {
             initial_bubble_point_psia,
             maximum_pressure_psia,
             oil_specific_gravity,
-            separator_gas_gravity: match spec.separator {
-                Some((psia, degf)) => {
-                    vasquez_beggs::separator_gas_gravity(spec.gas_gravity, spec.oil_gravity_api, psia, degf)
-                }
-                None => spec.gas_gravity,
-            },
-            standing,
+            separator_gas_gravity,
+            oil,
+            viscosity,
             gas,
             water,
             oil_standard_density_lb_ft3: oil_specific_gravity * FRESH_WATER_LB_FT3,
             gas_mass_lb_ft3: gas.standard_density_lb_scf / FT3_PER_BBL,
-            tank: AtTank {
-                temperature_degr,
-                isotherm: Isotherm::new(gas.reduced_temperature(temperature_degr)),
-                functions: functions_at(tank_temperature_degf),
-            },
+            tank: AtTank { temperature_degr, isotherm, functions: functions_at(tank_temperature_degf) },
             by_temperature: ByTemperature::new(functions_at),
             grid: Arc::default(),
             prepared: true,
+            lab: lab.map(Arc::new),
         };
         fluid.closure_is_monotone().map_err(|fault| vec![fault])?;
         Ok(fluid)
@@ -148,11 +166,14 @@ impl BlackOil {
     /// Bubble point of oil that holds `rs_scf_stb` at any temperature, psia.
     #[inline]
     pub fn bubble_point_at_psia(&self, rs_scf_stb: f64, temperature_degf: f64) -> f64 {
-        let t = hold(temperature_degf, TEMPERATURE_RANGE_DEGF);
-        self.tuned_bubble_point_psia(self.standing.gas_power(rs_scf_stb), self.by_temperature.at(t).bubble_factor)
+        let at = self.by_temperature.at(hold(temperature_degf, TEMPERATURE_RANGE_DEGF));
+        match self.lab() {
+            None => self.tuned_bubble_point_psia(self.oil.gas_power(rs_scf_stb), at.bubble_factor),
+            Some(lab) => lab.bubble_point_of_psia(rs_scf_stb / self.dissolved_of_tank(&at)),
+        }
     }
 
-    /// f of Rs_sat(p, T) = Standing's Rs(f p, T): the correlation's bubble point over the measured one.
+    /// f of Rs_sat(p, T) = correlated Rs(f p, T): the correlation's bubble point over the measured one.
     pub fn tuning_factor(&self) -> f64 {
         self.tuning_factor
     }
@@ -179,83 +200,30 @@ impl BlackOil {
         osif::compressibility_1_psi(self.held_pressure(pressure_psia), self.temperature_degf, salt_g_l)
     }
 
+    /// The laboratory's table.
+    #[inline]
+    pub(super) fn lab(&self) -> Option<&Lab> {
+        self.lab.as_deref()
+    }
+
+    /// Dissolved gas at a temperature over that at tank temperature, at equal pressure.
+    #[inline]
+    pub(super) fn dissolved_of_tank(&self, at: &AtTemperature) -> f64 {
+        at.dissolved_scf_stb / self.tank.functions.dissolved_scf_stb
+    }
+
+    /// Vasquez and Beggs' A at a temperature over that at tank temperature, held where their fit has no say.
+    pub(super) fn strain_of_tank(&self, rs_scf_stb: f64, temperature_degf: f64) -> f64 {
+        let group = |degf: f64| {
+            let (api, gravity) = (self.spec.oil_gravity_api, self.separator_gas_gravity);
+            vasquez_beggs::compressibility_group(rs_scf_stb, degf, api, gravity)
+        };
+        let at_tank = group(self.temperature_degf);
+        if at_tank > 0.0 { (group(temperature_degf) / at_tank).clamp(0.5, 1.5) } else { 1.0 }
+    }
+
     pub(super) fn gas(&self) -> &Gas {
         &self.gas
-    }
-
-    /// Is Bg above dBo/dRs everywhere below the initial bubble point?
-    ///
-    /// Where it is not, gas that comes out of solution takes less room than the oil gives up, the volume balance rises with
-    /// pressure and has several roots.
-    ///
-    /// # Errors
-    /// A fault at `bubble_point` that names the pressure.
-    pub fn closure_is_monotone(&self) -> Result<(), Fault> {
-        let limit_psia = self.closure_limit_psia();
-        if limit_psia >= self.initial_bubble_point_psia {
-            return Ok(());
-        }
-        Err(Fault::new(
-            "bubble_point",
-            format!(
-                "the bubble point of {:.0} psia is too high for these correlations: from {limit_psia:.0} psia on, gas that \
-                 comes out of solution takes less room than the oil loses, so that the volume balance has several solutions",
-                self.initial_bubble_point_psia
-            ),
-        )
-        .help("check solution_gor, bubble_point and the gravities; a near-critical fluid needs a lab table"))
-    }
-
-    /// The highest pressure, psia, up to which Bg > dBo/dRs on the saturated line at tank temperature; the top of the model's
-    /// range when it holds throughout.
-    pub fn closure_limit_psia(&self) -> f64 {
-        const STEP_PSIA: f64 = 25.0;
-        let mut pressure_psia = PRESSURE_RANGE_PSIA.0;
-        let mut safe_psia = 0.0;
-        while pressure_psia < self.maximum_pressure_psia {
-            if !self.closure_falls_at(pressure_psia) {
-                return self.closure_limit_between(safe_psia, pressure_psia);
-            }
-            safe_psia = pressure_psia;
-            pressure_psia += STEP_PSIA;
-        }
-        self.maximum_pressure_psia
-    }
-
-    /// Bisects the pressure at which Bg meets dBo/dRs.
-    fn closure_limit_between(&self, mut safe_psia: f64, mut unsafe_psia: f64) -> f64 {
-        for _ in 0..40 {
-            let middle_psia = 0.5 * (safe_psia + unsafe_psia);
-            if self.closure_falls_at(middle_psia) {
-                safe_psia = middle_psia;
-            } else {
-                unsafe_psia = middle_psia;
-            }
-        }
-        safe_psia
-    }
-
-    fn closure_falls_at(&self, pressure_psia: f64) -> bool {
-        let rs_scf_stb = self.rs_saturated(pressure_psia);
-        self.bg(pressure_psia) > self.standing.dbo_drs_rb_scf(rs_scf_stb, self.temperature_degf)
-    }
-
-    /// The property table's row at tank temperature: saturated below and undersaturated above the initial bubble point.
-    pub fn table_row(&self, pressure_psia: f64) -> FluidRow {
-        let rs_scf_stb = self.rs_saturated(pressure_psia).min(self.spec.solution_gor_scf_stb);
-        let pressure_psia = self.held_pressure(pressure_psia);
-        let gas = self.gas.on_isotherm(&self.tank.isotherm, pressure_psia, self.tank.temperature_degr);
-        FluidRow {
-            pressure_psia,
-            rs_scf_stb,
-            bo_rb_stb: self.bo(pressure_psia, rs_scf_stb),
-            mu_o_cp: self.mu_o(pressure_psia, rs_scf_stb),
-            z: gas.z,
-            bg_rb_scf: gas.bg_ft3_scf / FT3_PER_BBL,
-            mu_g_cp: self.gas.viscosity_cp(self.tank.temperature_degr, gas.density_lb_ft3),
-            bw_rb_stb: self.bw(pressure_psia),
-            mu_w_cp: self.mu_w(pressure_psia),
-        }
     }
 
     /// Properties at any pressure and temperature, with the dissolved gas capped by the producing gas-oil ratio.
@@ -291,12 +259,13 @@ impl BlackOil {
             let high_degf = (self.temperature_degf + ABOVE_TANK_DEGF)
                 .min(TEMPERATURE_RANGE_DEGF.1 - RIM_DEGF)
                 .min(degf(MAXIMUM_TPR) - RIM_DEGF);
-            let top_psia = RIM_RATIO * self.maximum_pressure_psia;
+            let smooth_psia = self.oil.smooth_to_psia() * self.inverse_tuning_factor;
+            let top_psia = smooth_psia.min(RIM_RATIO * self.maximum_pressure_psia);
             Grid::new(self, (LOWEST_PSIA, top_psia), (low_degf, high_degf))
         })
     }
 
-    /// What oil that holds `rs_scf_stb` does between its bubble point and `pressure_psia`.
+    /// What oil that holds `rs_scf_stb` does between its bubble point, where its viscosity is `mu_b_cp`, and a pressure by the correlations.
     #[inline]
     pub(super) fn above_bubble_point(
         &self,
@@ -305,6 +274,7 @@ impl BlackOil {
         rs_scf_stb: f64,
         bubble_point_psia: f64,
         temperature_degf: f64,
+        mu_b_cp: f64,
     ) -> AboveBubblePoint {
         let bubble_point_psia = bubble_point_psia.max(LEAST_BUBBLE_POINT_PSIA);
         if p <= bubble_point_psia {
@@ -319,13 +289,20 @@ impl BlackOil {
         );
         AboveBubblePoint {
             volume_ratio: vasquez_beggs::undersaturated_volume_ratio(group, p, bubble_point_psia, ln_ratio),
-            viscosity_ratio: vasquez_beggs::undersaturated_viscosity_ratio(p, ln_p, ln_ratio),
+            viscosity_ratio: match self.spec.correlations.undersaturated {
+                UndersaturatedCorrelation::VasquezBeggs => {
+                    vasquez_beggs::undersaturated_viscosity_ratio(p, ln_p, ln_ratio)
+                }
+                UndersaturatedCorrelation::Beal => {
+                    beal_standing::undersaturated_viscosity_ratio(mu_b_cp, p - bubble_point_psia)
+                }
+            },
         }
     }
 
     #[inline]
     pub(super) fn tuned_bubble_point_psia(&self, gas_power: f64, temperature_factor: f64) -> f64 {
-        (Standing::bubble_point_of_psia(gas_power, temperature_factor) * self.inverse_tuning_factor).max(0.0)
+        (self.oil.bubble_point_of_psia(gas_power, temperature_factor) * self.inverse_tuning_factor).max(0.0)
     }
 
     #[inline]
@@ -345,55 +322,22 @@ pub(super) fn hold(value: f64, (low, high): (f64, f64)) -> f64 {
     value.max(low).min(high)
 }
 
-impl ReservoirFluid for BlackOil {
-    fn closure_limit_psia(&self) -> f64 {
-        Self::closure_limit_psia(self)
-    }
-
-    fn rs_saturated(&self, pressure_psia: f64) -> f64 {
-        Standing::pressure_power(self.tuning_factor * self.held_pressure(pressure_psia))
-            * self.tank.functions.dissolved_scf_stb
-    }
-
-    fn bubble_point_psia(&self, rs_scf_stb: f64) -> f64 {
-        self.tuned_bubble_point_psia(self.standing.gas_power(rs_scf_stb), self.tank.functions.bubble_factor)
-    }
-
-    fn bo(&self, pressure_psia: f64, rs_scf_stb: f64) -> f64 {
-        let p = self.held_pressure(pressure_psia);
-        let saturated = self.standing.bo_rb_stb(rs_scf_stb, self.temperature_degf);
-        let bubble_point_psia = self.bubble_point_psia(rs_scf_stb);
-        saturated * self.above_bubble_point(p, ln(p), rs_scf_stb, bubble_point_psia, self.temperature_degf).volume_ratio
-    }
-
-    fn mu_o(&self, pressure_psia: f64, rs_scf_stb: f64) -> f64 {
-        let p = self.held_pressure(pressure_psia);
-        let saturated = BeggsRobinson::live_cp(self.tank.functions.ln_dead_cp, rs_scf_stb);
-        let bubble_point_psia = self.bubble_point_psia(rs_scf_stb);
-        saturated
-            * self.above_bubble_point(p, ln(p), rs_scf_stb, bubble_point_psia, self.temperature_degf).viscosity_ratio
-    }
-
-    fn bg(&self, pressure_psia: f64) -> f64 {
-        let p = self.held_pressure(pressure_psia);
-        self.gas.on_isotherm(&self.tank.isotherm, p, self.tank.temperature_degr).bg_ft3_scf / FT3_PER_BBL
-    }
-
-    fn mu_g(&self, pressure_psia: f64) -> f64 {
-        let p = self.held_pressure(pressure_psia);
-        let gas = self.gas.on_isotherm(&self.tank.isotherm, p, self.tank.temperature_degr);
-        self.gas.viscosity_cp(self.tank.temperature_degr, gas.density_lb_ft3)
-    }
-
-    fn bw(&self, pressure_psia: f64) -> f64 {
-        McCainWater::bw_rb_stb(self.held_pressure(pressure_psia), self.temperature_degf)
-    }
-
-    fn mu_w(&self, pressure_psia: f64) -> f64 {
-        self.tank.functions.water_cp * McCainWater::viscosity_ratio(self.held_pressure(pressure_psia))
-    }
-
-    fn pressure_range_psia(&self) -> (f64, f64) {
-        (PRESSURE_RANGE_PSIA.0, self.maximum_pressure_psia)
-    }
+/// The laboratory's table, held against the rest of the fluid.
+fn prepared_lab(
+    spec: &FluidSpec,
+    gas: &Gas,
+    isotherm: &Isotherm,
+    temperature_degr: f64,
+) -> Result<Option<Lab>, Vec<Fault>> {
+    let Some(report) = &spec.lab else { return Ok(None) };
+    let correlated = |pressure_psia: f64| {
+        let state = gas.on_isotherm(isotherm, pressure_psia, temperature_degr);
+        (state.z, gas.viscosity_cp(temperature_degr, state.density_lb_ft3))
+    };
+    let z_of_bg = |bg_rb_scf: f64, pressure_psia: f64| {
+        bg_rb_scf * FT3_PER_BBL / gas.of_z(1.0, pressure_psia, temperature_degr).bg_ft3_scf
+    };
+    let lab = Lab::new(report, spec.standard_pressure_psia, correlated, z_of_bg)?;
+    let faults = checks::of_lab(spec, &lab);
+    if faults.is_empty() { Ok(Some(lab)) } else { Err(faults) }
 }

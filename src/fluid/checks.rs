@@ -1,5 +1,9 @@
 //! What a fluid must satisfy before any correlation sees it.
 
+use super::lab::Lab;
+use super::saturated::SaturatedOil;
+use super::spec::agrees;
+use super::viscosity::OilViscosity;
 use super::{FluidSpec, sutton};
 use crate::fault::Fault;
 
@@ -32,6 +36,16 @@ pub(super) fn of_spec(spec: &FluidSpec, tank_temperature_degf: f64) -> Vec<Fault
     }
     between(f, "standard_pressure", spec.standard_pressure_psia, (13.0, 16.0), " psia", "standard pressure");
     between(f, "standard_temperature", spec.standard_temperature_degr, (485.0, 560.0), " degR", "standard temperature");
+    if let Some(bo) = spec.bubble_point_bo_rb_stb {
+        between(f, "bubble_point_bo", bo, (1.01, 10.0), " rb/STB", "oil volume factor at the bubble point");
+    }
+    for (key, cp) in
+        [("bubble_point_viscosity", spec.bubble_point_mu_o_cp), ("dead_oil_viscosity", spec.dead_oil_mu_cp)]
+    {
+        if let Some(cp) = cp {
+            between(f, key, cp, (0.01, 1e5), " cp", "oil viscosity");
+        }
+    }
     between(f, "temperature", tank_temperature_degf, (33.0, 450.0), " degF", "tank temperature");
     if faults.is_empty() {
         composition(&mut faults, spec);
@@ -94,6 +108,69 @@ pub(super) fn of_bubble_point(spec: &FluidSpec, correlated_psia: f64, (low, high
             )
             .help("a factor above 5 cannot be tuned away: check the units of bubble_point and solution_gor"),
         );
+    }
+    faults
+}
+
+/// Measured values so far from the correlation that no factor is credible.
+pub(super) fn of_tuning(spec: &FluidSpec, oil: &SaturatedOil, viscosity: &OilViscosity) -> Vec<Fault> {
+    let mut faults = Vec::new();
+    let mut check = |key: &str, factor: f64, (low, high): (f64, f64), what: &str| {
+        if !(low..=high).contains(&factor) {
+            faults.push(
+                Fault::new(key, format!("the measured {what} is {factor:.3} times what the correlation gives")).help(
+                    format!("a factor outside {low} to {high} cannot be tuned away: check the value and its unit"),
+                ),
+            );
+        }
+    };
+    check("bubble_point_bo", oil.swell_factor(), (0.4, 2.5), "swell Bo - 1 at the bubble point");
+    check("dead_oil_viscosity", viscosity.dead_factor(), (0.05, 20.0), "viscosity without gas");
+    check("bubble_point_viscosity", viscosity.live_factor(), (0.05, 20.0), "viscosity at the bubble point");
+    if let (Some(dead_cp), Some(live_cp)) = (spec.dead_oil_mu_cp, spec.bubble_point_mu_o_cp)
+        && live_cp >= dead_cp
+    {
+        faults.push(
+            Fault::new(
+                "bubble_point_viscosity",
+                format!("{live_cp} cp at the bubble point is not below the {dead_cp} cp without gas"),
+            )
+            .help("dissolved gas thins the oil: check the two values"),
+        );
+    }
+    faults
+}
+
+/// A laboratory's table that does not describe the fluid as stated.
+pub(super) fn of_lab(spec: &FluidSpec, lab: &Lab) -> Vec<Fault> {
+    let mut faults = Vec::new();
+    let mut agree = |key: &str, stated: Option<f64>, measured: f64, unit: &str| {
+        if let Some(stated) = stated
+            && !agrees(stated, measured)
+        {
+            faults.push(
+                Fault::new(
+                    key,
+                    format!("{stated:.0} {unit} differs from the {measured:.0} {unit} of the laboratory's table"),
+                )
+                .help("both describe the same oil: within 1 % the laboratory's value is used"),
+            );
+        }
+    };
+    agree("solution_gor", Some(spec.solution_gor_scf_stb), lab.rs_scf_stb, "scf/STB");
+    agree("bubble_point", spec.bubble_point_psia, lab.bubble_point_psia, "psia");
+    let [mu_o, ..] = lab.holds();
+    for (key, stated) in [
+        ("bubble_point_bo", spec.bubble_point_bo_rb_stb.is_some()),
+        ("bubble_point_viscosity", spec.bubble_point_mu_o_cp.is_some() && mu_o),
+        ("dead_oil_viscosity", spec.dead_oil_mu_cp.is_some() && mu_o),
+    ] {
+        if stated {
+            faults.push(
+                Fault::new(key, "the laboratory's table holds this property already")
+                    .help("leave the key out: the table rules"),
+            );
+        }
     }
     faults
 }

@@ -1,6 +1,8 @@
 //! The gas of one fluid: pseudo-criticals, compressibility factor, volume factor, density, viscosity.
 
-use super::dranchuk_abou_kassem::Isotherm;
+use super::correlations::ZCorrelation;
+use super::dranchuk_abou_kassem::{self, MAXIMUM_PPR, MAXIMUM_TPR, MINIMUM_TPR};
+use super::hall_yarborough;
 use super::lee_gonzalez_eakin::{CoefficientSet, LeeGonzalezEakin};
 use super::sutton::PseudoCritical;
 use super::{FluidSpec, sutton, wichert_aziz};
@@ -9,6 +11,7 @@ use crate::units::constants::{AIR_LB_PER_LBMOL, GAS_CONSTANT};
 /// Constants of the gas that depend only on the fluid as stated.
 #[derive(Debug, Clone, Copy)]
 pub(super) struct Gas {
+    z_correlation: ZCorrelation,
     pub pseudo_critical: PseudoCritical,
     inverse_tpc_1_degr: f64,
     inverse_ppc_1_psi: f64,
@@ -29,6 +32,24 @@ pub(super) struct GasState {
     pub density_lb_ft3: f64,
 }
 
+/// z at one temperature, by the chosen correlation.
+#[derive(Debug, Clone, Copy)]
+pub(super) enum Isotherm {
+    DranchukAbouKassem(dranchuk_abou_kassem::Isotherm),
+    /// The pseudo-reduced temperature.
+    HallYarborough(f64),
+}
+
+impl Isotherm {
+    #[inline]
+    fn z(&self, ppr: f64) -> f64 {
+        match self {
+            Self::DranchukAbouKassem(isotherm) => isotherm.z(ppr),
+            Self::HallYarborough(tpr) => hall_yarborough::z_factor(ppr.min(hall_yarborough::MAXIMUM_PPR), *tpr),
+        }
+    }
+}
+
 impl Gas {
     pub fn new(spec: &FluidSpec) -> Self {
         let mixed = sutton::mixture(spec.gas_gravity, spec.h2s_fraction, spec.co2_fraction);
@@ -37,6 +58,7 @@ impl Gas {
         let standard_ratio = spec.standard_pressure_psia / spec.standard_temperature_degr;
         let density_factor = molar_mass_lb_lbmol / GAS_CONSTANT;
         Self {
+            z_correlation: spec.correlations.z,
             pseudo_critical,
             inverse_tpc_1_degr: 1.0 / pseudo_critical.temperature_degr,
             inverse_ppc_1_psi: 1.0 / pseudo_critical.pressure_psia,
@@ -57,6 +79,25 @@ impl Gas {
         pressure_psia * self.inverse_ppc_1_psi
     }
 
+    /// Up to which pressure z is fitted, psia.
+    pub fn highest_pressure_psia(&self) -> f64 {
+        let ppr = match self.z_correlation {
+            ZCorrelation::DranchukAbouKassem => MAXIMUM_PPR,
+            ZCorrelation::HallYarborough => hall_yarborough::MAXIMUM_PPR,
+        };
+        ppr * self.pseudo_critical.pressure_psia
+    }
+
+    /// z at one temperature.
+    #[inline]
+    pub fn isotherm(&self, temperature_degr: f64) -> Isotherm {
+        let tpr = self.reduced_temperature(temperature_degr);
+        match self.z_correlation {
+            ZCorrelation::DranchukAbouKassem => Isotherm::DranchukAbouKassem(dranchuk_abou_kassem::Isotherm::new(tpr)),
+            ZCorrelation::HallYarborough => Isotherm::HallYarborough(tpr.clamp(MINIMUM_TPR, MAXIMUM_TPR)),
+        }
+    }
+
     /// The gas on a prepared isotherm of its own temperature.
     #[inline]
     pub fn on_isotherm(&self, isotherm: &Isotherm, pressure_psia: f64, temperature_degr: f64) -> GasState {
@@ -73,7 +114,7 @@ impl Gas {
 
     #[inline]
     pub fn at(&self, pressure_psia: f64, temperature_degr: f64) -> GasState {
-        let isotherm = Isotherm::new(self.reduced_temperature(temperature_degr));
+        let isotherm = self.isotherm(temperature_degr);
         self.on_isotherm(&isotherm, pressure_psia, temperature_degr)
     }
 

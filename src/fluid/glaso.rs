@@ -21,8 +21,25 @@ use super::oil_specific_gravity;
 /// Bubble point, psia.
 pub fn bubble_point_psia(rs_scf_stb: f64, temperature_degf: f64, oil_gravity_api: f64, gas_gravity: f64) -> f64 {
     let x = (rs_scf_stb / gas_gravity).powf(0.816) * temperature_degf.powf(0.172) * oil_gravity_api.powf(-0.989);
-    let log_x = x.log10();
+    pressure_of_x_psia(x)
+}
+
+/// log x where the pressure is highest.
+const TURN: f64 = 1.7447 / (2.0 * 0.302_18);
+
+/// Bubble point of a group x, psia; zero without gas, the highest beyond the turn.
+pub(super) fn pressure_of_x_psia(x: f64) -> f64 {
+    if x <= 0.0 {
+        return 0.0;
+    }
+    let log_x = x.log10().min(TURN);
     10f64.powf(1.7669 + 1.7447 * log_x - 0.302_18 * log_x * log_x)
+}
+
+/// The group x of a bubble point: the exact inverse, with the printed 2.8869, 14.1811 and 3.3093 unrounded.
+pub(super) fn x_of_pressure(pressure_psia: f64) -> f64 {
+    let below_turn = (TURN * TURN + (1.7669 - pressure_psia.log10()) / 0.302_18).max(0.0).sqrt();
+    10f64.powf(TURN - below_turn)
 }
 
 /// Solution gas-oil ratio of saturated oil, scf/STB; the curve's end is used above its highest pressure.

@@ -13,7 +13,10 @@
 //! K. R. Hall and L. Yarborough, "A New Equation of State for Z-factor Calculations", Oil and Gas Journal (18 June 1973).
 //!
 //! # Range
-//! Tpr 1.2 to 3, ppr to about 24. Within about 1.5 % of the Standing-Katz chart.
+//! Tpr 1.2 to 3, ppr to about 24. Within about 1.5 % of the Standing-Katz chart. A fluid's Tpr is held to 1.05 to 3.
+
+/// The highest pseudo-reduced pressure of the fit.
+pub const MAXIMUM_PPR: f64 = 24.0;
 
 /// The compressibility factor at a pseudo-reduced pressure and temperature.
 pub fn z_factor(ppr: f64, tpr: f64) -> f64 {
@@ -39,6 +42,7 @@ pub fn z_factor(ppr: f64, tpr: f64) -> f64 {
             low = y;
         }
         let next = y - miss / slope;
+        // Newton converges quadratically: after a step this small the error is below rounding.
         if (next - y).abs() <= 1e-9 * y {
             return target / next;
         }

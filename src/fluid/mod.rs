@@ -1,12 +1,14 @@
 //! Black-oil and water properties: published correlations or a table.
 //!
-//! One file per published method. [`BlackOil`] joins the defaults; [`FluidTable`] takes a laboratory's rows.
+//! One file per published method. [`BlackOil`] joins the chosen ones, tuned to what was measured, and lets a [`LabReport`] rule at
+//! tank temperature; [`FluidTable`] is rows alone, without anything between the tank and the surface.
 
 pub mod abdul_majeed;
 pub mod al_marhoun;
 pub mod baker_swerdloff;
 pub mod beal_standing;
 pub mod beggs_robinson;
+pub mod chew_connally;
 pub mod dranchuk_abou_kassem;
 pub mod glaso;
 pub mod hall_yarborough;
@@ -20,20 +22,35 @@ pub mod sutton;
 pub mod vasquez_beggs;
 pub mod wichert_aziz;
 
+mod at_tank;
 mod black_oil;
 mod by_temperature;
 mod capped;
 mod checks;
+mod correlations;
 mod gas;
 mod grid;
+mod lab;
+mod lab_checks;
+mod monotone;
 mod range_notes;
+mod saturated;
+mod sources;
 mod spec;
 mod state;
 mod table;
+mod viscosity;
 
 pub use black_oil::BlackOil;
 pub use capped::CappedOil;
+pub use correlations::{
+    Correlations, DeadOilCorrelation, LiveOilCorrelation, OilCorrelation, UndersaturatedCorrelation, ZCorrelation,
+};
+pub use lab::{LabBasis, LabReport, LabRow};
+pub use lab_checks::LabNote;
+pub use monotone::MonotoneCurve;
 pub use range_notes::RangeNote;
+pub use sources::Source;
 pub use spec::FluidSpec;
 pub use state::{FluidRow, InSitu};
 pub use table::{FluidTable, FluidTableRow, TableWater};

@@ -17,7 +17,7 @@
 
 use super::oil_specific_gravity;
 
-fn x(oil_gravity_api: f64, temperature_degf: f64) -> f64 {
+pub(super) fn x(oil_gravity_api: f64, temperature_degf: f64) -> f64 {
     7.916e-4 * oil_gravity_api.powf(1.541) - 4.561e-5 * temperature_degf.powf(1.3911)
 }
 

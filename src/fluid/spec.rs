@@ -1,5 +1,7 @@
 //! The fluid as the user states it.
 
+use super::correlations::Correlations;
+use super::lab::{LabReport, LabRow};
 use crate::units::constants::{STANDARD_PRESSURE_PSIA, STANDARD_TEMPERATURE_DEGR};
 
 /// The fluid as the user states it, in oilfield units.
@@ -26,6 +28,16 @@ pub struct FluidSpec {
     pub standard_pressure_psia: f64,
     /// Standard temperature, degR.
     pub standard_temperature_degr: f64,
+    /// Which correlation gives what.
+    pub correlations: Correlations,
+    /// Measured oil volume factor at the bubble point and tank temperature, rb/STB; the correlation is tuned to it.
+    pub bubble_point_bo_rb_stb: Option<f64>,
+    /// Measured oil viscosity at the bubble point and tank temperature, cp; the correlation is tuned to it.
+    pub bubble_point_mu_o_cp: Option<f64>,
+    /// Measured viscosity of the oil without gas at tank temperature, cp; the correlation is tuned to it.
+    pub dead_oil_mu_cp: Option<f64>,
+    /// A laboratory's table, which rules at tank temperature.
+    pub lab: Option<LabReport>,
 }
 
 impl FluidSpec {
@@ -42,6 +54,35 @@ impl FluidSpec {
             separator: None,
             standard_pressure_psia: STANDARD_PRESSURE_PSIA,
             standard_temperature_degr: STANDARD_TEMPERATURE_DEGR,
+            correlations: Correlations::default(),
+            bubble_point_bo_rb_stb: None,
+            bubble_point_mu_o_cp: None,
+            dead_oil_mu_cp: None,
+            lab: None,
         }
     }
+
+    /// Puts the bubble point and the solution gas-oil ratio of the laboratory's table in the place of stated ones that agree
+    /// with them; others are left, and are a fault of [`BlackOil::new`](super::BlackOil::new).
+    pub fn take_lab_values(&mut self) {
+        let Some(Ok(rows)) = self.lab.as_ref().map(LabReport::converted) else { return };
+        let rs = |row: &LabRow| row.rs_scf_stb.unwrap_or(0.0);
+        let Some(bubble) = rows.iter().fold(None::<&LabRow>, |top, row| match top {
+            Some(top) if rs(top) >= rs(row) => Some(top),
+            _ => Some(row),
+        }) else {
+            return;
+        };
+        if agrees(self.solution_gor_scf_stb, rs(bubble)) {
+            self.solution_gor_scf_stb = rs(bubble);
+        }
+        if self.bubble_point_psia.is_none_or(|stated| agrees(stated, bubble.pressure_psia)) {
+            self.bubble_point_psia = Some(bubble.pressure_psia);
+        }
+    }
+}
+
+/// Whether a stated value and the laboratory's are those of one oil: within 1 %.
+pub(super) fn agrees(stated: f64, measured: f64) -> bool {
+    (stated / measured - 1.0).abs() <= 0.01
 }

@@ -13,7 +13,7 @@
 //!
 //! # Source
 //! M. Vasquez and H. D. Beggs, "Correlations for Fluid Physical Property Prediction", Journal of Petroleum Technology (June 1980).
-//! The separate fit for the bubble point is the form printed in T. Ahmed, "Reservoir Engineering Handbook" (2001).
+//! The separate fit for the bubble point, which no fluid here uses, is the form printed in T. Ahmed, "Reservoir Engineering Handbook" (2001).
 //!
 //! # Range
 //! 15.3 to 59.5 API, gas gravity 0.511 to 1.351, 75 to 294 degF, pb 15 to 6,055 psia, Rs 0 to 2,199 scf/STB; undersaturated
@@ -34,9 +34,14 @@ pub fn separator_gas_gravity(gas_gravity: f64, oil_gravity_api: f64, separator_p
     gas_gravity * (1.0 + 5.912e-5 * oil_gravity_api * separator_degf * (separator_psia / 114.7).log10())
 }
 
+/// C1, C2 and C3 of an oil.
+pub(super) fn gas_constants(oil_gravity_api: f64) -> (f64, f64, f64) {
+    if oil_gravity_api <= 30.0 { (0.0362, 1.0937, 25.724) } else { (0.0178, 1.187, 23.931) }
+}
+
 /// Solution gas-oil ratio of saturated oil, scf/STB; `gas_gravity` at a 100 psig separator.
 pub fn rs_scf_stb(pressure_psia: f64, temperature_degf: f64, oil_gravity_api: f64, gas_gravity: f64) -> f64 {
-    let (c1, c2, c3) = if oil_gravity_api <= 30.0 { (0.0362, 1.0937, 25.724) } else { (0.0178, 1.187, 23.931) };
+    let (c1, c2, c3) = gas_constants(oil_gravity_api);
     c1 * gas_gravity * pressure_psia.powf(c2) * (c3 * oil_gravity_api / (temperature_degf + DEGF_TO_DEGR)).exp()
 }
 

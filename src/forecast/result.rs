@@ -456,6 +456,8 @@ pub struct Forecast {
     pub produced_before_stb: f64,
     /// Pressure at the start of the forecast, psia.
     pub start_pressure_psia: f64,
+    /// Where each property of the fluid comes from: laboratory or correlation.
+    pub fluid_sources: Vec<crate::fluid::Source>,
     /// Reporting periods up to the end of the run.
     pub periods: Vec<Period>,
     /// The tank, a row per period.

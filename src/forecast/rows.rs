@@ -82,6 +82,7 @@ pub(super) fn forecast(field: &Field, trace: &Trace) -> Result<Forecast, RunErro
         oil_in_place_stb: spec.tank.oil_in_place_stb,
         produced_before_stb: spec.tank.produced.map_or(0.0, |p| p.oil_stb),
         start_pressure_psia: field.start.pressure_psia,
+        fluid_sources: field.fluid.sources(),
         balance_residual: tank.iter().map(|r| r.balance_residual.abs()).fold(0.0, f64::max),
         work: work(trace),
         periods: list,

@@ -4,7 +4,7 @@ use super::csv_files::{cell, csv_bytes};
 use super::json::Json;
 use super::labels::{Dimension, Label, UnitSystem, label};
 use super::{Provenance, ReportError};
-use crate::fluid::FluidRow;
+use crate::fluid::{FluidRow, LabRow, Source};
 use crate::forecast::WellCurves;
 use crate::tubing::TraversePoint;
 
@@ -20,13 +20,15 @@ pub struct FluidSheet {
     pub bubble_point_psia: f64,
     /// The rows, by pressure.
     pub rows: Vec<FluidRow>,
+    /// Where each property comes from.
+    pub sources: Vec<Source>,
+    /// The laboratory's rows, converted; empty without a table.
+    pub lab: Vec<LabRow>,
+    /// For the picture: the same fluid by each correlation without the table, the chosen one first.
+    pub by_correlation: Vec<(&'static str, Vec<FluidRow>)>,
 }
 
 impl FluidSheet {
-    pub(super) fn line(&self, pick: impl Fn(&FluidRow) -> f64) -> Vec<f64> {
-        self.rows.iter().map(pick).collect()
-    }
-
     /// Name, unit and value of each column.
     pub fn columns(units: UnitSystem) -> [Column<FluidRow>; 9] {
         let unit = |dimension| label(units, dimension);
@@ -141,7 +143,20 @@ pub fn fluid_json(sheet: &FluidSheet, provenance: &Provenance) -> Result<Vec<u8>
         Json::object(columns.iter().map(|(stem, unit, pick)| (unit.column(stem), Json::Number(unit.of(pick(row))))))
     });
     entries.push(("rows".to_owned(), Json::List(rows.collect())));
+    entries.push(("sources".to_owned(), sources_json(&sheet.sources)));
     Ok(Json::Object(entries).to_bytes()?)
+}
+
+/// Where each property of the fluid comes from.
+pub(super) fn sources_json(sources: &[Source]) -> Json {
+    let list = sources.iter().map(|source| {
+        Json::object([
+            ("property", source.property.into()),
+            ("from", source.from.into()),
+            ("detail", Json::text(source.detail.clone())),
+        ])
+    });
+    Json::List(list.collect())
 }
 
 /// Inflow and tubing curves as JSON.

@@ -48,6 +48,7 @@ fn summary(forecast: &Forecast, provenance: &Provenance) -> Json {
         plain("end_days", forecast.end_days),
         plain("end_reason", forecast.end_text),
         plain("tank", tank(forecast, &units)),
+        plain("fluid", super::curve_files::sources_json(&forecast.fluid_sources)),
         plain("wells", Json::List(forecast.wells.iter().map(|w| well(forecast, w, &units)).collect())),
         plain("injectors", Json::List(forecast.injectors.iter().map(|i| injector(i, &units)).collect())),
         plain("doubts", Json::List(forecast.doubts.iter().map(doubt).collect())),

@@ -4,6 +4,7 @@
 //! asks a question; none of them stops a run.
 
 use super::document::Scenario;
+use super::doubts_lab;
 use super::doubts_wells;
 use crate::fluid::FluidSpec;
 use crate::forecast::{Doubt, DoubtKind, FieldSpec, InjectedFluid};
@@ -60,6 +61,7 @@ pub(super) fn doubt(
 pub fn data_doubts(scenario: &Scenario) -> Vec<Doubt> {
     let field = &scenario.field;
     let mut out = fluid(&field.fluid);
+    out.extend(doubts_lab::lab(&field.fluid, field.tank.temperature_degf));
     out.extend(tank(&field.tank, &field.fluid));
     if !scenario.states("tank.relative_permeability") {
         out.push(doubt(

@@ -91,7 +91,7 @@ fn from_file(reader: &mut Reader, path: &str, at: &Location) -> Vec<SurveyPoint>
     let atmospheric_pressure_psia = reader.atmospheric_pressure_psia;
     let help = "a file of a flowing survey has columns that end with their units in the first line: md_ft,pressure_psia or \
                 md_m,pressure_barg,temperature_degC";
-    table_file(reader, path, at, help, |bytes| parse_csv(bytes, atmospheric_pressure_psia))
+    table_file(reader, "survey file", path, at, help, |bytes| parse_csv(bytes, atmospheric_pressure_psia))
 }
 
 const COLUMNS: [(Dimension, &str, Limits); 3] = [

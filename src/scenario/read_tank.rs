@@ -1,6 +1,7 @@
 //! Fluid, tank, calendar: from the tree to plain data.
 
 use super::problem::Problem;
+use super::read_lab;
 use super::read_onsets;
 use super::reader::Reader;
 use super::schema::LATER_WATER_MODELS;
@@ -74,7 +75,8 @@ pub(super) fn fluid(reader: &mut Reader, root: &Section<'_>) -> (FluidSpec, Onse
             );
         }
     }
-    let spec = FluidSpec {
+    let lab = read_lab::lab(reader, &section);
+    let mut spec = FluidSpec {
         oil_gravity_api: reader.quantity(&section, "oil_gravity"),
         gas_gravity: reader.number(&section, "gas_gravity"),
         solution_gor_scf_stb: reader.quantity(&section, "solution_gor"),
@@ -86,7 +88,13 @@ pub(super) fn fluid(reader: &mut Reader, root: &Section<'_>) -> (FluidSpec, Onse
         standard_pressure_psia,
         // Rounded, so that 60 degF gives the constant 519.67 and not its neighbour.
         standard_temperature_degr: ((standard_temperature_degf + DEGF_TO_DEGR) * 1.0e9).round() / 1.0e9,
+        correlations: read_lab::correlations(reader, &section),
+        bubble_point_bo_rb_stb: reader.optional_quantity(&section, "bubble_point_bo"),
+        bubble_point_mu_o_cp: reader.optional_quantity(&section, "bubble_point_viscosity"),
+        dead_oil_mu_cp: reader.optional_quantity(&section, "dead_oil_viscosity"),
+        lab,
     };
+    spec.take_lab_values();
     let onsets = read_onsets::read(reader, &section);
     reader.finish(&section);
     (spec, onsets)

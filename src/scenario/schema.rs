@@ -142,12 +142,8 @@ const fn from(low: f64, high: f64) -> Limits {
 }
 
 /// What comes with a later version: refused with that word, not as unknown.
-pub const LATER: &[(&str, &str)] = &[
-    ("history", "measured history"),
-    ("odds", "the uncertainty study"),
-    ("fluid.table", "a laboratory table in place of correlations"),
-    ("tank.aquifer", "an aquifer"),
-];
+pub const LATER: &[(&str, &str)] =
+    &[("history", "measured history"), ("odds", "the uncertainty study"), ("tank.aquifer", "an aquifer")];
 
 /// Water models that come with a later version.
 pub const LATER_WATER_MODELS: &[&str] = &["displacement", "trend"];
@@ -212,6 +208,19 @@ pub const KEYS: &[Key] = &[
     key("fluid.co2", Fraction(FRACTION), Default("0.0"), "Mole fraction of carbon dioxide in the gas"),
     key("fluid.separator_pressure", Quantity(D::Pressure, above(0.0, 5_000.0)), Optional, "With separator_temperature: corrects the gas gravity in the Vasquez-Beggs correlations"),
     key("fluid.separator_temperature", Quantity(D::Temperature, from(0.0, 400.0)), Optional, "Goes with separator_pressure"),
+    key("fluid.oil_correlation", Choice(&["standing", "vasquez-beggs", "glaso", "al-marhoun", "petrosky-farshad"]), Default("\"standing\""), "Bubble point, dissolved gas and oil volume factor"),
+    key("fluid.dead_oil_correlation", Choice(&["beggs-robinson", "beal", "glaso"]), Default("\"beggs-robinson\""), "Viscosity of oil without gas"),
+    key("fluid.live_oil_correlation", Choice(&["beggs-robinson", "chew-connally"]), Default("\"beggs-robinson\""), "Viscosity of oil with its gas"),
+    key("fluid.undersaturated_correlation", Choice(&["vasquez-beggs", "beal"]), Default("\"vasquez-beggs\""), "Viscosity of oil above its bubble point"),
+    key("fluid.z_correlation", Choice(&["dranchuk-abou-kassem", "hall-yarborough"]), Default("\"dranchuk-abou-kassem\""), "Compressibility factor of the gas"),
+    key("fluid.bubble_point_bo", Quantity(D::LiquidVolumeFactor, from(1.01, 10.0)), Optional, "Measured oil volume factor at the bubble point and tank temperature; the correlation's swell Bo - 1 is multiplied to meet it"),
+    key("fluid.bubble_point_viscosity", Quantity(D::Viscosity, from(0.01, 1.0e5)), Optional, "Measured oil viscosity at the bubble point and tank temperature; the correlation is multiplied to meet it"),
+    key("fluid.dead_oil_viscosity", Quantity(D::Viscosity, from(0.01, 1.0e5)), Optional, "Measured viscosity of the oil without gas at tank temperature; the correlation is multiplied to meet it"),
+    key("fluid.lab", Kind::Table, Optional, "A laboratory's table, which rules at tank temperature"),
+    key("fluid.lab.table", Text, Required, "Path of its CSV file"),
+    key("fluid.lab.basis", Choice(&["flash", "differential"]), Required, "To what oil its rs and bo refer: \"flash\", the separator's oil, or \"differential\", the residual oil of a differential liberation, which is converted"),
+    key("fluid.lab.separator_bo", Quantity(D::LiquidVolumeFactor, from(1.0, 10.0)), Optional, "Of the separator test, for basis \"differential\": volume of oil at the bubble point over stock-tank oil"),
+    key("fluid.lab.separator_gor", Quantity(D::GasOilRatio, above(0.0, 20_000.0)), Optional, "Of the separator test, for basis \"differential\": gas of all stages and the stock tank"),
     key("fluid.asphaltene_onset", Onset, Optional, "Upper onset pressure of asphaltene, at reservoir temperature or as pairs of temperature and pressure; below it asphaltene may come out. A screen: it changes no flow"),
     key("fluid.asphaltene_lower_onset", Onset, Optional, "Lower onset pressure, below which asphaltene is dissolved again; goes with asphaltene_onset"),
     key("fluid.wax_appearance", Quantity(D::Temperature, from(-40.0, 300.0)), Optional, "Wax appearance temperature: below it wax may come out. A screen: it changes no flow"),

@@ -123,12 +123,13 @@ fn depths(reader: &mut Reader, row: &Node, label: &str) -> (f64, f64) {
 fn from_file(reader: &mut Reader, path: &str, at: &Location) -> Vec<(f64, f64)> {
     let help = "a survey file has two columns with their units in the first line: md_ft,tvd_ft or md_m,tvd_m or \
                 md_ft,inclination_deg";
-    table_file(reader, path, at, help, parse_csv)
+    table_file(reader, "survey file", path, at, help, parse_csv)
 }
 
 /// A table in a file beside the scenario, which is noted among the files used.
 pub(super) fn table_file<T>(
     reader: &mut Reader,
+    what: &str,
     path: &str,
     at: &Location,
     help: &str,
@@ -144,8 +145,8 @@ pub(super) fn table_file<T>(
         }
         Err(message) => {
             reader.note(
-                Problem::new(at.clone(), format!("survey file {}: {message}", shorten(path)))
-                    .label("read for this survey, from the scenario's folder")
+                Problem::new(at.clone(), format!("{what} {}: {message}", shorten(path)))
+                    .label(format!("read for this {}, from the scenario's folder", what.trim_end_matches(" file")))
                     .help(help),
             );
             Vec::new()

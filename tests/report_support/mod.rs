@@ -227,6 +227,7 @@ pub fn forecast_of(wells: Vec<WellResult>, periods: Vec<Period>, injected_stb_d:
         oil_in_place_stb: 42e6,
         produced_before_stb: 1e6,
         start_pressure_psia: 3600.0,
+        fluid_sources: Vec::new(),
         periods,
         tank,
         wells,
