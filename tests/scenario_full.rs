@@ -74,6 +74,8 @@ fn calendar_fluid_and_tank_arrive() {
         temperature_degf: 171.0,
         connate_water: 0.19,
         pore_compressibility_1_psi: 5.0e-6,
+        compaction: Vec::new(),
+        aquifer: None,
         gas_cap_ratio: 0.0,
         datum_tvd_ft: Some(7020.0),
         produced: Some(ProducedSpec {
@@ -82,6 +84,7 @@ fn calendar_fluid_and_tank_arrive() {
             water_stb: 12.0e3,
             injected_water_stb: 300.0e3,
             injected_gas_scf: 5.0e6,
+            aquifer_stb: 0.0,
             measured_pressure_psia: Some(2480.0),
         }),
         water_model: WaterModel::Average,
@@ -112,6 +115,7 @@ fn injectors_arrive() {
         effective_fraction: 0.85,
         bottomhole_limit_psia: Some(4400.0),
         injectivity: Some(9.0),
+        to_gas_cap: false,
     };
     let gas = InjectorSpec {
         name: "G".to_owned(),
@@ -123,6 +127,7 @@ fn injectors_arrive() {
         effective_fraction: 1.0,
         bottomhole_limit_psia: None,
         injectivity: None,
+        to_gas_cap: false,
     };
     assert_eq!(resolve().injectors, [water, gas]);
 }
