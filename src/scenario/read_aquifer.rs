@@ -2,9 +2,10 @@
 
 use super::problem::Problem;
 use super::reader::Reader;
-use super::schema::Limits;
+use super::schema::{self, Limits};
 use super::section::Section;
 use super::tree::{Node, Value};
+use crate::forecast::days_between;
 use crate::tank::AquiferSpec;
 use crate::tank::aquifer::{AquiferRock, LinearAquifer, RadialAquifer};
 use crate::units::Dimension;
@@ -16,9 +17,39 @@ const MULTIPLIER: Limits = Limits { low: 0.0, low_allowed: false, high: 10.0 };
 /// Below this ratio of radii `ln reD - 3/4` is no pseudo-steady resistance.
 const LEAST_RADIUS_RATIO: f64 = 2.2;
 
-const RING: &[&str] = &["inner_radius", "radius_ratio", "thickness", "porosity"];
+const RING: &[&str] = &["inner_radius", "radius_ratio", "thickness", "porosity", "angle"];
 const SLAB: &[&str] = &["width", "length", "thickness", "porosity"];
 const FLOW: &[&str] = &["permeability", "viscosity"];
+
+/// What the table states, NaN where it does not.
+struct Stated {
+    strength_rb_d_psi: f64,
+    water_rb: f64,
+    productivity_rb_d_psi: f64,
+    radius_ratio: f64,
+    ring: RadialAquifer,
+    slab: LinearAquifer,
+    since: Option<Date>,
+}
+
+fn stated(reader: &mut Reader, section: &Section<'_>) -> Stated {
+    let mut get = |key: &str| reader.optional_quantity(section, key).unwrap_or(f64::NAN);
+    let (strength_rb_d_psi, water_rb, productivity_rb_d_psi) = (get("strength"), get("water"), get("productivity"));
+    let (inner_radius_ft, width_ft, length_ft) = (get("inner_radius"), get("width"), get("length"));
+    let (thickness_ft, permeability_md, viscosity_cp) = (get("thickness"), get("permeability"), get("viscosity"));
+    let (compressibility_1_psi, angle_deg) = (get("compressibility"), reader.quantity(section, "angle"));
+    let porosity = reader.optional_number(section, "porosity").unwrap_or(f64::NAN);
+    let rock = AquiferRock { porosity, permeability_md, thickness_ft, viscosity_cp, compressibility_1_psi };
+    Stated {
+        strength_rb_d_psi,
+        water_rb,
+        productivity_rb_d_psi,
+        radius_ratio: reader.optional_number(section, "radius_ratio").unwrap_or(f64::NAN),
+        ring: RadialAquifer { rock, inner_radius_ft, angle_deg },
+        slab: LinearAquifer { rock, width_ft, length_ft },
+        since: reader.day(section, "since"),
+    }
+}
 
 /// The aquifer, or `None` where there is none or it is wrong; `start` is the first day of the forecast.
 pub(super) fn aquifer(reader: &mut Reader, tank: &Section<'_>, start: Option<Date>) -> Option<AquiferSpec> {
@@ -27,19 +58,52 @@ pub(super) fn aquifer(reader: &mut Reader, tank: &Section<'_>, start: Option<Dat
     }
     let section = reader.section(tank, "aquifer");
     let method = reader.choice(&section, "method", &[]);
-    let shape = reader.choice(&section, "shape", &[]);
-    let found = method.and_then(|method| read(reader, &section, method, shape == Some("linear"), start));
+    let linear = reader.choice(&section, "shape", &[]) == Some("linear");
+    let stated = stated(reader, &section);
     reader.finish(&section);
-    found
+    let method = method?;
+    let complete = keys_fit(reader, &section, method, linear);
+    let by_size = section.has("water");
+    if method == "fetkovich" && !by_size && !linear && stated.radius_ratio < LEAST_RADIUS_RATIO {
+        reader.note(
+            Problem::new(section.at("radius_ratio"), "this ring is too thin for a pseudo-steady state")
+                .label(format!("at least {LEAST_RADIUS_RATIO} is expected"))
+                .help("so small an aquifer follows the tank's pressure: use the method \"pot\""),
+        );
+    }
+    if let (Some(since), Some(start)) = (stated.since, start)
+        && since > start
+    {
+        reader.note(
+            Problem::new(section.at("since"), "the first production lies after the start of the forecast")
+                .label("a date not after period.start is expected"),
+        );
+    }
+    complete.then(|| spec(method, &stated, by_size, linear, start))
 }
 
-fn read(
-    reader: &mut Reader,
-    section: &Section<'_>,
-    method: &str,
-    linear: bool,
-    start: Option<Date>,
-) -> Option<AquiferSpec> {
+fn spec(method: &str, stated: &Stated, by_size: bool, linear: bool, start: Option<Date>) -> AquiferSpec {
+    let Stated { ring, slab, radius_ratio, .. } = *stated;
+    let (water_rb, productivity_rb_d_psi) = match (by_size, linear) {
+        (true, _) => (stated.water_rb, stated.productivity_rb_d_psi),
+        (false, true) => (slab.water_rb(), slab.productivity_rb_d_psi()),
+        (false, false) => (ring.water_rb(radius_ratio), ring.productivity_rb_d_psi(radius_ratio)),
+    };
+    let compressibility_1_psi = ring.rock.compressibility_1_psi;
+    match method {
+        "pot" => AquiferSpec::Pot { water_rb, compressibility_1_psi },
+        "schilthuis" => AquiferSpec::Schilthuis { strength_rb_d_psi: stated.strength_rb_d_psi },
+        "fetkovich" => AquiferSpec::Fetkovich { water_rb, compressibility_1_psi, productivity_rb_d_psi },
+        _ => AquiferSpec::CarterTracy {
+            constant_rb_psi: ring.constant_rb_psi(),
+            time_per_day: ring.time_per_day(),
+            age_days: stated.since.zip(start).map_or(0.0, |(since, start)| days_between(since, start)),
+        },
+    }
+}
+
+/// Notes keys that the law lacks and keys that it does not go by; whether nothing is lacking.
+fn keys_fit(reader: &mut Reader, section: &Section<'_>, method: &str, linear: bool) -> bool {
     let by_size = section.has("water");
     let used: Vec<&str> = match method {
         "schilthuis" => vec!["strength"],
@@ -49,15 +113,17 @@ fn read(
             [&["inner_radius", "thickness", "porosity", "compressibility", "angle", "shape", "since"], FLOW].concat()
         }
         _ => {
-            let body = if linear { SLAB } else { RING };
             let flow = if method == "fetkovich" { FLOW } else { &[] };
-            let angle: &[&str] = if linear { &[] } else { &["angle"] };
-            [body, flow, angle, &["compressibility", "shape"]].concat()
+            let body = if linear { SLAB } else { RING };
+            [body, flow, &["compressibility", "shape"]].concat()
         }
     };
     let mut complete = true;
     for &key in used.iter().filter(|&&key| !matches!(key, "angle" | "shape" | "since")) {
-        if !section.has(key) && section.misspelt().all(|word| word != key) {
+        let missing = !section.has(key);
+        complete &= !missing;
+        // A slip of the pen is reported as unknown, with its guess: once is enough.
+        if missing && section.misspelt().all(|word| word != key) {
             let or = match method {
                 "pot" if !by_size => " (or state `water`)",
                 "fetkovich" if !by_size => " (or state `water` and `productivity`)",
@@ -68,14 +134,12 @@ fn read(
                     .label(format!("a {method} aquifer needs it{or}")),
             );
         }
-        complete &= section.has(key);
     }
-    let keys = section.table.map_or(&[][..], |table| &table.entries);
-    for entry in keys {
-        let known = super::schema::children(&section.path).any(|(name, _)| name == entry.key);
+    for entry in section.table.map_or(&[][..], |table| &table.entries) {
+        let known = schema::children(&section.path).any(|(name, _)| name == entry.key);
         if known && entry.key != "method" && !used.contains(&entry.key.as_str()) {
             reader.note(
-                Problem::new(entry.key_at.clone(), format!("`{}` is not used here", entry.key))
+                Problem::new(entry.key_at.clone(), format!("`tank.aquifer.{}` is not used here", entry.key))
                     .label(format!("a {method} aquifer stated this way goes by {}", used.join(", "))),
             );
         }
@@ -85,60 +149,7 @@ fn read(
             Problem::new(section.at("shape"), "a carter-tracy aquifer is radial").label("\"radial\" is expected"),
         );
     }
-    let mut get = |key: &str| reader.optional_quantity(section, key).unwrap_or(f64::NAN);
-    let (strength, water, productivity) = (get("strength"), get("water"), get("productivity"));
-    let (inner_radius_ft, width_ft, length_ft) = (get("inner_radius"), get("width"), get("length"));
-    let (thickness_ft, permeability_md, viscosity_cp) = (get("thickness"), get("permeability"), get("viscosity"));
-    let compressibility_1_psi = get("compressibility");
-    let angle_deg = reader.quantity(section, "angle");
-    let porosity = reader.optional_number(section, "porosity").unwrap_or(f64::NAN);
-    let ratio = reader.optional_number(section, "radius_ratio").unwrap_or(f64::NAN);
-    let since = reader.day(section, "since");
-    if method == "fetkovich" && !by_size && !linear && ratio < LEAST_RADIUS_RATIO {
-        reader.note(
-            Problem::new(section.at("radius_ratio"), "this ring is too thin for a pseudo-steady state")
-                .label(format!("at least {LEAST_RADIUS_RATIO} is expected"))
-                .help("so small an aquifer follows the tank's pressure: use the method \"pot\""),
-        );
-    }
-    if let (Some(since), Some(start)) = (since, start)
-        && since > start
-    {
-        reader.note(
-            Problem::new(section.at("since"), "the first production lies after the start of the forecast")
-                .label("a date not after period.start is expected"),
-        );
-    }
-    let rock = AquiferRock { porosity, permeability_md, thickness_ft, viscosity_cp, compressibility_1_psi };
-    let ring = RadialAquifer { rock, inner_radius_ft, angle_deg };
-    let slab = LinearAquifer { rock, width_ft, length_ft };
-    let water_rb = if by_size {
-        water
-    } else if linear {
-        slab.water_rb()
-    } else {
-        ring.water_rb(ratio)
-    };
-    let spec = match method {
-        "pot" => AquiferSpec::Pot { water_rb, compressibility_1_psi },
-        "schilthuis" => AquiferSpec::Schilthuis { strength_rb_d_psi: strength },
-        "fetkovich" => {
-            let productivity_rb_d_psi = if by_size {
-                productivity
-            } else if linear {
-                slab.productivity_rb_d_psi()
-            } else {
-                ring.productivity_rb_d_psi(ratio)
-            };
-            AquiferSpec::Fetkovich { water_rb, compressibility_1_psi, productivity_rb_d_psi }
-        }
-        _ => AquiferSpec::CarterTracy {
-            constant_rb_psi: ring.constant_rb_psi(),
-            time_per_day: ring.time_per_day(),
-            age_days: since.zip(start).map_or(0.0, |(since, start)| crate::forecast::days_between(since, start)),
-        },
-    };
-    complete.then_some(spec)
+    complete
 }
 
 /// The water that had come before the forecast cannot be known from the pressure alone unless the aquifer is a pot.

@@ -7,7 +7,7 @@
 //! # Source
 //! van Everdingen and Hurst (1949). The transform is inverted by Stehfest's algorithm (1970) at points evenly spaced in ln tD and
 //! interpolated by cubics that take the exact slopes, within 2e-5 of the exact function between [`SMALLEST`] and [`LARGEST`]. Below, the
-//! limit of linear flow `2*sqrt(tD/pi)`; above, the line source `(ln(4*tD) - 0.57722)/2`. The Bessel functions are integrals of
+//! first terms of its expansion about linear flow, `2*sqrt(tD/pi) - tD/2 + tD*sqrt(tD/pi)/2`; above, the line source `(ln(4*tD) - 0.57722)/2`. The Bessel functions are integrals of
 //! `exp(-x*cosh u)*cosh(n*u)` (Abramowitz and Stegun 1964, 9.6.24) by the trapezoidal rule, which converges faster than any power here.
 
 use std::f64::consts::{LN_2, PI};
@@ -98,7 +98,10 @@ impl PressureFunction {
     pub fn at(&self, time: f64) -> (f64, f64) {
         if time <= SMALLEST {
             let root = time.sqrt();
-            return (2.0 * root / PI.sqrt(), 1.0 / (PI.sqrt() * root));
+            return (
+                2.0 * root / PI.sqrt() - 0.5 * time + 0.5 * time * root / PI.sqrt(),
+                1.0 / (PI.sqrt() * root) - 0.5 + 0.75 * root / PI.sqrt(),
+            );
         }
         if time >= LARGEST {
             return (0.5 * ((4.0 * time).ln() - EULER), 0.5 / time);
