@@ -527,6 +527,7 @@ fn every_key_of_the_list_is_really_read() {
             "asphaltene_onset" | "asphaltene_lower_onset" => {
                 problem.message == format!("a point of `{}` is a pair", key.path)
             }
+            "compaction" => problem.message == "a point of the compaction table is a pair",
             "survey" => problem.message == "a point of a survey is a pair",
             "points" => problem.message == "a point of a flowing survey is a depth and a pressure",
             "temperature" if path.contains("tubing") => problem.message.contains("a point of a table of temperatures"),

@@ -16,6 +16,8 @@ fn tank_spec(oil_stb: f64, pressure_psia: f64, connate_water: f64) -> TankSpec {
         temperature_degf: 180.0,
         connate_water,
         pore_compressibility_1_psi: 0.0,
+        compaction: Vec::new(),
+        aquifer: None,
         gas_cap_ratio: 0.0,
         datum_tvd_ft: None,
         produced: None,
@@ -102,7 +104,7 @@ fn deplete(tank: &Tank, pressures: &[f64], reinjected: f64, vrr: f64) -> Vec<(Ta
             gas_scf: y[0] * (1.0 - reinjected),
             water_stb: 0.0,
             injected_water_stb: y[1],
-            injected_gas_scf: 0.0,
+            ..Cumulatives::default()
         };
         tank.state(&tank.inventory(&taken), guess)
     };

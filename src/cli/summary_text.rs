@@ -203,6 +203,16 @@ fn tank(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
     if gas_in > 0.0 {
         pairs.push(("gas injected", volume(gas.of(gas_in), gas.text)));
     }
+    if let Some(aquifer) = last.aquifer {
+        let pressure = aquifer.pressure_psia.map_or_else(String::new, |p| {
+            let unit = label(units, Dimension::Pressure);
+            format!("; its pressure {} {}", number(unit.of(p), 0), unit.text)
+        });
+        pairs.push((
+            "water from the aquifer",
+            format!("{}{pressure}", volume(liquid.of(aquifer.influx_cum_stb), liquid.text)),
+        ));
+    }
     if let Some(replaced) = last.voidage_replacement_cum.filter(|_| water > 0.0 || gas_in > 0.0) {
         pairs.push(("voidage replaced", format!("{} of all that the forecast withdraws", number(replaced, 3))));
     }

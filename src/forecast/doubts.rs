@@ -120,6 +120,15 @@ fn fluid_and_tank(field: &Field, forecast: &Forecast, doubts: &mut Vec<Doubt>) {
             "compare the first months' gas-oil ratio with measurements; state a gor_factor where a well makes more",
         ));
     }
+    if tank.aquifer.is_some() && tank.water_model == WaterModel::Connate {
+        doubts.push(doubt(
+            DoubtKind::NotModelled,
+            "tank",
+            "there is an aquifer but the water model \"connate\" lets none of its water reach a well".to_owned(),
+            "the scenario chose it: support without water flatters the wells",
+            "choose the model \"average\" for anything but a bound on the best case",
+        ));
+    }
     let water_injected = field.spec.injectors.iter().any(|i| i.fluid == InjectedFluid::Water);
     if water_injected && tank.water_model == WaterModel::Connate {
         doubts.push(doubt(
@@ -260,7 +269,9 @@ fn sanity(field: &Field, forecast: &Forecast, doubts: &mut Vec<Doubt>) {
         .tank
         .last()
         .map_or(0.0, |t| (forecast.produced_before_stb + t.oil_cum_stb) / forecast.oil_in_place_stb);
-    if field.spec.injectors.is_empty() && field.spec.tank.gas_cap_ratio <= 0.0 && recovery > HIGH_DEPLETION_RECOVERY {
+    let tank = &field.spec.tank;
+    let alone = field.spec.injectors.is_empty() && tank.gas_cap_ratio <= 0.0 && tank.aquifer.is_none();
+    if alone && recovery > HIGH_DEPLETION_RECOVERY {
         doubts.push(doubt(
             DoubtKind::Sanity,
             "tank",

@@ -1,6 +1,6 @@
 //! The right-hand side of one stretch and its watches: state -> tank -> wells -> rates.
 
-use super::field::{Field, Setup, injected_fvf, injection_limit};
+use super::field::{Field, Setup, injected_fvf, injection_limit, to_cap};
 use super::integrate::Problem;
 use super::modes::{Layout, Memory, Mode, Modes, REGAIN_PSI, Spot, Valley, Watch};
 use super::placement::place_on;
@@ -29,6 +29,7 @@ pub(super) struct Dynamics<'a> {
     pub modes: &'a Modes,
     pub memory: &'a Memory,
     pub watches: Vec<Watch>,
+    layout: Layout,
 }
 
 impl<'a> Dynamics<'a> {
@@ -73,11 +74,11 @@ impl<'a> Dynamics<'a> {
                 watches.push(Watch::InjectorShut(i));
             }
         }
-        Self { field, setup, modes, memory, watches }
+        Self { field, setup, modes, memory, watches, layout: field.layout() }
     }
 
     pub fn layout(&self) -> Layout {
-        Layout { wells: self.setup.wells.len(), injectors: self.setup.injectors.len() }
+        self.layout
     }
 
     /// Cumulative volumes of the whole tank since the start, from the scaled state.
@@ -90,6 +91,8 @@ impl<'a> Dynamics<'a> {
             water_stb: sum(Layout::water) * initial.oil_stb,
             injected_water_stb: y[layout.effective_water()] * initial.oil_stb,
             injected_gas_scf: y[layout.effective_gas()] * initial.gas_scf,
+            injected_cap_gas_scf: layout.cap_gas().map_or(0.0, |at| y[at] * initial.gas_scf),
+            aquifer_stb: layout.aquifer().map_or(0.0, |at| y[at] * initial.oil_stb),
         }
     }
 
@@ -425,7 +428,7 @@ impl<'a> Dynamics<'a> {
 impl Problem for Dynamics<'_> {
     type Error = ClosureError;
 
-    fn derivative(&self, _t_days: f64, y: &[f64], dy: &mut [f64]) -> Result<(), ClosureError> {
+    fn derivative(&self, t_days: f64, y: &[f64], dy: &mut [f64]) -> Result<(), ClosureError> {
         let tank = self.tank(y)?;
         let (layout, initial) = (self.layout(), self.setup.tank.initial());
         dy.fill(0.0);
@@ -437,6 +440,7 @@ impl Problem for Dynamics<'_> {
             dy[layout.water(w)] = water / initial.oil_stb;
             withdrawal += tank.voidage_rb(oil, gas, water);
         }
+        let mut net = withdrawal;
         for i in 0..layout.injectors {
             let (asked, rate) = self.injection(i, &tank, withdrawal);
             let (injector, scale) = (&self.setup.injectors[i], self.injected_scale(i));
@@ -444,9 +448,20 @@ impl Problem for Dynamics<'_> {
             dy[layout.asked(i)] = asked / scale;
             let total = match injector.fluid {
                 InjectedFluid::Water => layout.effective_water(),
-                InjectedFluid::Gas => layout.effective_gas(),
+                InjectedFluid::Gas => match layout.cap_gas() {
+                    Some(at) if to_cap(injector) => at,
+                    _ => layout.effective_gas(),
+                },
             };
-            dy[total] += rate * injector.effective_fraction / scale;
+            let supporting = rate * injector.effective_fraction;
+            dy[total] += supporting / scale;
+            net -= supporting * injected_fvf(injector.fluid, &tank);
+        }
+        if let Some(at) = layout.aquifer() {
+            let (p, cumulatives) = (tank.pressure_psia, self.cumulatives(y));
+            let held = &self.setup.tank;
+            let inventory = held.inventory(&cumulatives);
+            dy[at] = held.aquifer_rate_stb_d(t_days, &inventory, cumulatives.aquifer_stb, p, net) / initial.oil_stb;
         }
         Ok(())
     }

@@ -1,5 +1,6 @@
 //! A field, prepared to run: fluid, tank, wells, injectors.
 
+use super::modes::Layout;
 use super::{Change, FieldSpec, InjectedFluid, InjectorSpec, Tolerance};
 use crate::fault::Fault;
 use crate::fluid::BlackOil;
@@ -138,6 +139,20 @@ impl Field {
         &self.setup.tank
     }
 
+    /// What the state vector holds.
+    pub(super) fn layout(&self) -> Layout {
+        let changed = self.spec.changes.iter().filter_map(|c| match &c.change {
+            Change::Injector(_, injector) => Some(injector),
+            _ => None,
+        });
+        Layout {
+            wells: self.setup.wells.len(),
+            injectors: self.setup.injectors.len(),
+            aquifer: self.tank().aquifer().is_some_and(|aquifer| !aquifer.is_pot()),
+            cap_gas: self.spec.injectors.iter().chain(changed).any(to_cap),
+        }
+    }
+
     /// What the wells are prepared against.
     pub fn surroundings(&self) -> Surroundings<'_> {
         surroundings(&self.spec, &self.fluid, &self.setup.tank, &self.start)
@@ -243,6 +258,11 @@ pub(super) fn injection_limit(injector: &InjectorSpec, tank_psia: f64) -> f64 {
         _ => f64::INFINITY,
     };
     injector.rate_limit.unwrap_or(f64::INFINITY).min(pressure)
+}
+
+/// Whether what it injects goes to the gas cap.
+pub(super) fn to_cap(injector: &InjectorSpec) -> bool {
+    injector.to_gas_cap && injector.fluid == InjectedFluid::Gas
 }
 
 /// Reservoir volume of one surface unit, rb/STB or rb/scf.

@@ -192,11 +192,15 @@ pub(super) struct Valley {
 pub(super) struct Layout {
     pub wells: usize,
     pub injectors: usize,
+    /// Whether there is an aquifer whose influx has a history.
+    pub aquifer: bool,
+    /// Whether gas may be injected into the cap.
+    pub cap_gas: bool,
 }
 
 impl Layout {
     pub fn len(self) -> usize {
-        3 * self.wells + 2 * self.injectors + 2
+        3 * self.wells + 2 * self.injectors + 2 + usize::from(self.aquifer) + usize::from(self.cap_gas)
     }
     pub fn oil(self, w: usize) -> usize {
         w
@@ -218,6 +222,12 @@ impl Layout {
     }
     pub fn effective_gas(self) -> usize {
         3 * self.wells + 2 * self.injectors + 1
+    }
+    pub fn aquifer(self) -> Option<usize> {
+        self.aquifer.then_some(3 * self.wells + 2 * self.injectors + 2)
+    }
+    pub fn cap_gas(self) -> Option<usize> {
+        self.cap_gas.then_some(3 * self.wells + 2 * self.injectors + 2 + usize::from(self.aquifer))
     }
 }
 

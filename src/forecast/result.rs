@@ -219,6 +219,17 @@ pub struct DriveIndices {
     pub injection: f64,
 }
 
+/// The aquifer in one period. Water that flows back into it counts negative.
+#[derive(Debug, Clone, Copy, PartialEq, Default)]
+pub struct AquiferRow {
+    /// Water that came into the tank in the period, STB.
+    pub influx_stb: f64,
+    /// Water since the start of the forecast, STB.
+    pub influx_cum_stb: f64,
+    /// Average pressure of the aquifer at the end of the period, psia; `None` where it is without end.
+    pub pressure_psia: Option<f64>,
+}
+
 /// The tank in one period.
 #[derive(Debug, Clone, Copy, PartialEq, Default)]
 pub struct TankRow {
@@ -256,6 +267,8 @@ pub struct TankRow {
     pub voidage_replacement: Option<f64>,
     /// The same since the start of production; `None` when nothing was withdrawn.
     pub voidage_replacement_cum: Option<f64>,
+    /// The aquifer, where there is one.
+    pub aquifer: Option<AquiferRow>,
     /// Relative residual of the Havlena-Odeh balance recomputed from the reported cumulatives.
     pub balance_residual: f64,
     /// Drive indices since the start of production; `None` before any withdrawal.

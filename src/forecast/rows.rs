@@ -8,7 +8,8 @@ use super::modes::Mode;
 use super::run::{Piece, Trace, work};
 use super::screens::{Look, note_heading, slope_margin};
 use super::{
-    DriveIndices, Forecast, InjectedFluid, InjectorResult, InjectorRow, Period, TankRow, Tolerance, WellResult, WellRow,
+    AquiferRow, DriveIndices, Forecast, InjectedFluid, InjectorResult, InjectorRow, Period, TankRow, Tolerance,
+    WellResult, WellRow,
 };
 use crate::tank::{Cumulatives, TankState};
 use crate::tubing::Choke;
@@ -376,6 +377,18 @@ impl<'a> Rows<'a> {
         }
         let before = self.last;
         self.last = total;
+        let held = self.field.tank();
+        let aquifer = held.aquifer().map(|_| {
+            let stb = |since_start_stb, psia| held.aquifer_influx_stb(since_start_stb, psia);
+            let (since_start_stb, p) = (dynamics.cumulatives(y).aquifer_stb, tank.pressure_psia);
+            let influx_cum_stb = stb(since_start_stb, p) - stb(0.0, self.field.start.pressure_psia);
+            let earlier = self.tank.last().and_then(|row| row.aquifer).map_or(0.0, |row| row.influx_cum_stb);
+            AquiferRow {
+                influx_stb: influx_cum_stb - earlier,
+                influx_cum_stb,
+                pressure_psia: held.aquifer_pressure_psia(stb(since_start_stb, p), p),
+            }
+        });
         let (injected_water_stb, injected_gas_scf) = self
             .injectors
             .iter()
@@ -409,12 +422,13 @@ impl<'a> Rows<'a> {
             voidage_replacement: (withdrawn > 0.0).then(|| injected / withdrawn),
             voidage_replacement_cum: (self.voidage_before.0 > 0.0)
                 .then(|| self.voidage_before.1 / self.voidage_before.0),
+            aquifer,
             balance_residual: balance.map_or(0.0, |b| b.residual()),
             drive_indices: balance.map(|b| DriveIndices {
                 depletion: b.depletion,
                 gas_cap: b.gas_cap,
                 rock_and_water: b.rock_and_water,
-                aquifer: 0.0,
+                aquifer: b.aquifer,
                 injection: b.injection,
             }),
         });

@@ -4,7 +4,7 @@ use super::calendar::{date_at, days_between};
 use super::dynamics::Dynamics;
 use super::field::{Field, RunError, Setup, injection_limit};
 use super::integrate::{Effort, End, Settings, State, Stretch, integrate};
-use super::modes::{Layout, Memory, Mode, Modes, Returns, Spot};
+use super::modes::{Memory, Mode, Modes, Returns, Spot};
 use super::switching::GONE_PSI;
 use super::{Change, EventKind, EventRecord, FieldSpec, FlowEnd, Forecast, StopReason, Tolerance, Work};
 use crate::tank::{ClosureError, TankState};
@@ -98,7 +98,7 @@ impl<'a> Run<'a> {
             Tolerance::Normal => 1e-5,
             Tolerance::Tight | Tolerance::Reference => 1e-7,
         });
-        let layout = Layout { wells, injectors };
+        let layout = field.layout();
         let (rtol, atol) = match field.spec.tolerance {
             Tolerance::Normal => (2e-7, 2e-9),
             Tolerance::Tight => (2e-9, 2e-11),

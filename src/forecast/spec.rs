@@ -67,6 +67,8 @@ pub struct InjectorSpec {
     pub bottomhole_limit_psia: Option<f64>,
     /// Surface rate per pressure above the tank's, STB/d/psi or scf/d/psi.
     pub injectivity: Option<f64>,
+    /// Whether its gas goes to the gas cap, apart from the oil zone.
+    pub to_gas_cap: bool,
 }
 
 /// What a dated event changes: the whole new settings of what it names.

@@ -93,6 +93,7 @@ fn tank(forecast: &Forecast, units: &Units) -> Json {
         entry(units.gas, "gas_cum", Some(last.map_or(0.0, |t| t.gas_cum_scf))),
         entry(units.liquid, "injected_water_cum", Some(injected(|r| r.water_cum_stb))),
         entry(units.gas, "injected_gas_cum", Some(injected(|r| r.gas_cum_scf))),
+        entry(units.liquid, "aquifer_influx_cum", last.and_then(|t| t.aquifer).map(|a| a.influx_cum_stb)),
         plain("recovery", recovery(forecast, oil_cum_stb)),
         plain("voidage_replacement_cum", last.and_then(|t| t.voidage_replacement_cum)),
         plain("balance_residual", forecast.balance_residual),

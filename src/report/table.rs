@@ -43,6 +43,9 @@ pub(super) struct Values {
     pub voidage_replacement: Option<f64>,
     pub voidage_replacement_cum: Option<f64>,
     pub recovery: Option<f64>,
+    pub aquifer_influx_stb: Option<f64>,
+    pub aquifer_influx_cum_stb: Option<f64>,
+    pub aquifer_pressure_psia: Option<f64>,
     pub balance_residual: Option<f64>,
     pub drive: Option<DriveIndices>,
 }
@@ -90,6 +93,7 @@ impl Values {
             gas_scf: add(self.gas_scf, next.gas_scf),
             injected_water_stb: add(self.injected_water_stb, next.injected_water_stb),
             injected_gas_scf: add(self.injected_gas_scf, next.injected_gas_scf),
+            aquifer_influx_stb: add(self.aquifer_influx_stb, next.aquifer_influx_stb),
             flowing_days: add(self.flowing_days, next.flowing_days),
             water_shortfall_stb: add(self.water_shortfall_stb, next.water_shortfall_stb),
             gas_shortfall_scf: add(self.gas_shortfall_scf, next.gas_shortfall_scf),
@@ -206,6 +210,9 @@ fn tank_values(forecast: &Forecast, index: usize, tank: &TankRow) -> Values {
         voidage_replacement: tank.voidage_replacement,
         voidage_replacement_cum: tank.voidage_replacement_cum,
         recovery: Some(recovery(forecast, tank.oil_cum_stb)),
+        aquifer_influx_stb: tank.aquifer.map(|a| a.influx_stb),
+        aquifer_influx_cum_stb: tank.aquifer.map(|a| a.influx_cum_stb),
+        aquifer_pressure_psia: tank.aquifer.and_then(|a| a.pressure_psia),
         balance_residual: Some(tank.balance_residual),
         drive: tank.drive_indices,
         ..Values::default()

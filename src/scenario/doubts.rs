@@ -163,7 +163,7 @@ fn tank(tank: &TankSpec, fluid: &FluidSpec) -> Vec<Doubt> {
             },
         ),
         (
-            tank.pore_compressibility_1_psi * 1.0e6,
+            tank_compressibility_1_psi(tank) * 1.0e6,
             Usual {
                 what: "the pore compressibility",
                 unit: "in 1e-6 1/psi",
@@ -181,6 +181,15 @@ fn tank(tank: &TankSpec, fluid: &FluidSpec) -> Vec<Doubt> {
             format!("there is a gas cap of {} oil-zone volumes", short(tank.gas_cap_ratio)),
             "gas coning and cusping towards the perforations are not modelled",
             "hold rates below a coning estimate; expect gas earlier than computed",
+        ));
+    }
+    if let Some(aquifer) = &tank.aquifer {
+        out.push(doubt(
+            DoubtKind::NotModelled,
+            about,
+            format!("there is a {} aquifer", aquifer.name()),
+            "water coning towards the perforations is not modelled",
+            "hold rates below a coning estimate; expect water earlier than computed",
         ));
     }
     if let Some(produced) = &tank.produced {
@@ -209,6 +218,14 @@ fn tank(tank: &TankSpec, fluid: &FluidSpec) -> Vec<Doubt> {
         }
     }
     out
+}
+
+/// The stated compressibility, or the mean of a compaction table.
+fn tank_compressibility_1_psi(tank: &TankSpec) -> f64 {
+    match (tank.compaction.first(), tank.compaction.last()) {
+        (Some(first), Some(last)) => (last.1 / first.1).ln() / (last.0 - first.0),
+        _ => tank.pore_compressibility_1_psi,
+    }
 }
 
 fn injection(field: &FieldSpec) -> Vec<Doubt> {

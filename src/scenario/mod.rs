@@ -16,6 +16,7 @@ mod guess;
 mod load;
 mod overrides;
 mod problem;
+mod read_aquifer;
 mod read_lab;
 mod read_line;
 mod read_onsets;

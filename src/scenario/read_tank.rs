@@ -1,8 +1,10 @@
 //! Fluid, tank, calendar: from the tree to plain data.
 
 use super::problem::Problem;
+use super::read_aquifer;
 use super::read_lab;
 use super::read_onsets;
+use super::read_wells::exactly_one;
 use super::reader::Reader;
 use super::schema::LATER_WATER_MODELS;
 use super::section::Section;
@@ -12,6 +14,7 @@ use crate::rock::CoreySpec;
 use crate::tank::{ProducedSpec, TankSpec, WaterModel};
 use crate::units::constants::DEGF_TO_DEGR;
 use crate::units::{Dimension, UnitSystem, parse};
+use jiff::civil::Date;
 
 /// The pressure that turns gauge into absolute; it is read before everything else.
 pub(super) fn atmospheric_pressure_psia(reader: &mut Reader, root: &Section<'_>) -> f64 {
@@ -101,7 +104,10 @@ pub(super) fn fluid(reader: &mut Reader, root: &Section<'_>) -> (FluidSpec, Onse
 }
 
 /// The tank; `water_injected`: whether the scenario injects water, so that the water model must be stated.
-pub(super) fn tank(reader: &mut Reader, section: &Section<'_>, water_injected: bool) -> TankSpec {
+pub(super) fn tank(reader: &mut Reader, section: &Section<'_>, water_injected: bool, start: Option<Date>) -> TankSpec {
+    exactly_one(reader, section, "the tank's pore volume against pressure", &["pore_compressibility", "compaction"]);
+    let aquifer = read_aquifer::aquifer(reader, section, start);
+    read_aquifer::check_produced(reader, section, aquifer.as_ref());
     let produced = produced(reader, section);
     let water_injected = water_injected || produced.is_some_and(|produced| produced.injected_water_stb > 0.0);
     let spec = TankSpec {
@@ -109,7 +115,9 @@ pub(super) fn tank(reader: &mut Reader, section: &Section<'_>, water_injected: b
         pressure_psia: reader.quantity(section, "pressure"),
         temperature_degf: reader.quantity(section, "temperature"),
         connate_water: reader.number(section, "connate_water"),
-        pore_compressibility_1_psi: reader.quantity(section, "pore_compressibility"),
+        pore_compressibility_1_psi: reader.optional_quantity(section, "pore_compressibility").unwrap_or(0.0),
+        compaction: read_aquifer::compaction(reader, section),
+        aquifer,
         gas_cap_ratio: reader.number(section, "gas_cap_ratio"),
         datum_tvd_ft: reader.optional_quantity(section, "datum"),
         produced,
@@ -131,6 +139,7 @@ fn produced(reader: &mut Reader, tank: &Section<'_>) -> Option<ProducedSpec> {
         water_stb: reader.quantity(&section, "water"),
         injected_water_stb: reader.quantity(&section, "injected_water"),
         injected_gas_scf: reader.quantity(&section, "injected_gas"),
+        aquifer_stb: reader.quantity(&section, "aquifer_influx"),
         measured_pressure_psia: reader.optional_quantity(&section, "measured_pressure"),
     };
     reader.finish(&section);
@@ -141,9 +150,14 @@ fn water_model(reader: &mut Reader, tank: &Section<'_>, water_injected: bool) ->
     let section = reader.section(tank, "water");
     let word = reader.choice(&section, "model", LATER_WATER_MODELS);
     reader.finish(&section);
-    if water_injected && !section.has("model") && tank.is_there() {
+    let comes = match (water_injected, tank.has("aquifer")) {
+        (true, _) => Some("water is injected"),
+        (false, true) => Some("there is an aquifer"),
+        (false, false) => None,
+    };
+    if let Some(comes) = comes.filter(|_| !section.has("model") && tank.is_there()) {
         reader.note(
-            Problem::new(section.at("model"), "water is injected, but `tank.water.model` does not say how it flows")
+            Problem::new(section.at("model"), format!("{comes}, but `tank.water.model` does not say how it flows"))
                 .label("[tank.water] model is expected")
                 .help(
                     "\"average\" lets water flow at the tank's average saturation, \"connate\" keeps it away from the \

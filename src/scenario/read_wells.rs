@@ -22,6 +22,7 @@ pub(super) const EXCLUSIVE: &[(&str, &[&str])] = &[
     ("well.tubing", &["wellhead_temperature", "temperature", "heat"]),
     ("well", &["line_pressure", "line"]),
     ("well.choke", &["discharge_coefficient", "test"]),
+    ("tank", &["pore_compressibility", "compaction"]),
 ];
 
 /// Notes when none or several of the alternatives are there.
@@ -358,7 +359,12 @@ pub(super) fn injector(reader: &mut Reader, section: &Section<'_>) -> InjectorSp
         effective_fraction: reader.number(section, "effective_fraction"),
         bottomhole_limit_psia: reader.optional_quantity(section, "bottomhole_limit"),
         injectivity: reader.injected_quantity(section, "injectivity", gas),
+        to_gas_cap: reader.choice(section, "gas_to", &[]) == Some("gas-cap") && gas,
     };
+    if !gas && section.has("gas_to") {
+        reader
+            .note(Problem::new(section.at("gas_to"), "`gas_to` belongs to a gas injector").label("not used by water"));
+    }
     reader.finish(section);
     spec
 }

@@ -41,7 +41,7 @@ pub(super) fn resolve(root: &Table, case: Option<&Node>, folder: &Path, text: &s
     let (fluid, onsets) = read_tank::fluid(&mut reader, &top);
     let water_injected = injects_water(root);
     let tank_section = reader.section(&top, "tank");
-    let tank = read_tank::tank(&mut reader, &tank_section, water_injected);
+    let tank = read_tank::tank(&mut reader, &tank_section, water_injected, period.as_ref().map(|p| p.start));
     let lines: Vec<_> =
         reader.sections(&top, "line").iter().map(|section| read_line::line(&mut reader, section)).collect();
     let wells: Vec<_> = reader
@@ -169,7 +169,7 @@ fn apply_events(
             }
             _ => {
                 let section = again.section(&top, "tank");
-                let spec = read_tank::tank(&mut again, &section, water_injected);
+                let spec = read_tank::tank(&mut again, &section, water_injected, Some(field.period.start));
                 let faults = checks::tank(&spec, &field.fluid, atmospheric_pressure_psia);
                 (Change::Tank(Box::new(spec)), faults)
             }

@@ -39,7 +39,7 @@ impl Key {
             Kind::Injected(..) => "liquid rate (water) or gas rate (gas)".to_owned(),
             Kind::FlowCoefficient => "rate per pressure^2n".to_owned(),
             Kind::Survey => "list of pairs, or a path".to_owned(),
-            Kind::Temperatures | Kind::LinePressures => "list of pairs".to_owned(),
+            Kind::Temperatures | Kind::LinePressures | Kind::Compaction => "list of pairs".to_owned(),
             Kind::Stations => "list of pairs or triples, or a path".to_owned(),
             Kind::Onset => "pressure, or list of pairs".to_owned(),
             Kind::Table => "table".to_owned(),
@@ -99,6 +99,8 @@ pub enum Kind {
     Onset,
     /// Pairs of a total rate and a pressure.
     LinePressures,
+    /// Pairs of pressure and pore-volume multiplier.
+    Compaction,
     /// A table of further keys.
     Table,
     /// A list of tables of further keys.
@@ -142,8 +144,7 @@ const fn from(low: f64, high: f64) -> Limits {
 }
 
 /// What comes with a later version: refused with that word, not as unknown.
-pub const LATER: &[(&str, &str)] =
-    &[("history", "measured history"), ("odds", "the uncertainty study"), ("tank.aquifer", "an aquifer")];
+pub const LATER: &[(&str, &str)] = &[("history", "measured history"), ("odds", "the uncertainty study")];
 
 /// Water models that come with a later version.
 pub const LATER_WATER_MODELS: &[&str] = &["displacement", "trend"];
@@ -173,8 +174,8 @@ const END: Limits = above(0.0, 1.0);
 
 use Dimension as D;
 use Kind::{
-    Choice, Day, Flag, FlowCoefficient, Fraction, Injected, LinePressures, Name, Number, Onset, Overrides, Quantity,
-    Stations, Survey, Tables, Temperatures, Text,
+    Choice, Compaction, Day, Flag, FlowCoefficient, Fraction, Injected, LinePressures, Name, Number, Onset, Overrides,
+    Quantity, Stations, Survey, Tables, Temperatures, Text,
 };
 use Need::{Default, Optional, Required};
 
@@ -230,7 +231,8 @@ pub const KEYS: &[Key] = &[
     key("tank.pressure", Quantity(D::Pressure, PRESSURE), Required, "Initial pressure at the datum"),
     key("tank.temperature", Quantity(D::Temperature, from(32.0, 600.0)), Required, "Temperature"),
     key("tank.connate_water", Fraction(Limits { low: 0.0, low_allowed: true, high: 0.95 }), Required, "Connate water saturation"),
-    key("tank.pore_compressibility", Quantity(D::Compressibility, from(0.0, 1.0e-3)), Required, "Pore compressibility"),
+    key("tank.pore_compressibility", Quantity(D::Compressibility, from(0.0, 1.0e-3)), Optional, "Pore compressibility; this or compaction"),
+    key("tank.compaction", Compaction, Optional, "Pairs of pressure and pore-volume multiplier, by rising pressure; this or pore_compressibility"),
     key("tank.gas_cap_ratio", Number(from(0.0, 20.0)), Default("0.0"), "Primary gas cap over oil zone, by initial volume"),
     key("tank.datum", Quantity(D::Length, from(0.0, 50_000.0)), Optional, "True vertical depth at which pressures are stated; otherwise each well's perforations"),
 
@@ -240,10 +242,29 @@ pub const KEYS: &[Key] = &[
     key("tank.produced.water", Quantity(D::LiquidVolume, LIQUID_OR_NONE), Default("\"0 STB\""), "Water"),
     key("tank.produced.injected_water", Quantity(D::LiquidVolume, LIQUID_OR_NONE), Default("\"0 STB\""), "Water injected, the part that supports the tank"),
     key("tank.produced.injected_gas", Quantity(D::GasVolume, GAS_OR_NONE), Default("\"0 scf\""), "Gas injected, the part that supports the tank"),
+    key("tank.produced.aquifer_influx", Quantity(D::LiquidVolume, LIQUID_OR_NONE), Default("\"0 STB\""), "Water that had come from the aquifer; must be stated with any aquifer but a pot"),
     key("tank.produced.measured_pressure", Quantity(D::Pressure, PRESSURE), Optional, "Measured at period.start: compared with the computed one, not imposed"),
 
+    key("tank.aquifer", Kind::Table, Optional, "Aquifer"),
+    key("tank.aquifer.method", Choice(&["pot", "schilthuis", "fetkovich", "carter-tracy"]), Required, "Influx law"),
+    key("tank.aquifer.strength", Quantity(D::ProductivityIndex, from(0.0, 1.0e8)), Optional, "schilthuis: influx, in reservoir barrels, per pressure below the initial one"),
+    key("tank.aquifer.water", Quantity(D::LiquidVolume, LIQUID), Optional, "pot, fetkovich: its water, in reservoir barrels; or by shape and rock"),
+    key("tank.aquifer.productivity", Quantity(D::ProductivityIndex, from(0.0, 1.0e8)), Optional, "fetkovich with water: influx, in reservoir barrels, per pressure above the tank's"),
+    key("tank.aquifer.compressibility", Quantity(D::Compressibility, above(0.0, 1.0e-3)), Optional, "Of its water and its pores together; all but schilthuis"),
+    key("tank.aquifer.shape", Choice(&["radial", "linear"]), Default("\"radial\""), "A ring, or part of one, around the tank, or a slab on one side; pot and fetkovich"),
+    key("tank.aquifer.porosity", Fraction(above(0.0, 1.0)), Optional, "Porosity"),
+    key("tank.aquifer.permeability", Quantity(D::Permeability, above(0.0, 1.0e6)), Optional, "Permeability; fetkovich, carter-tracy"),
+    key("tank.aquifer.viscosity", Quantity(D::Viscosity, above(0.0, 10.0)), Optional, "Viscosity of its water; fetkovich, carter-tracy"),
+    key("tank.aquifer.thickness", Quantity(D::Length, above(0.0, 20_000.0)), Optional, "Thickness"),
+    key("tank.aquifer.inner_radius", Quantity(D::Length, above(0.0, 1.0e6)), Optional, "radial: radius of the tank"),
+    key("tank.aquifer.radius_ratio", Number(above(1.0, 1_000.0)), Optional, "radial pot and fetkovich: outer radius over inner radius"),
+    key("tank.aquifer.angle", Quantity(D::Angle, above(0.0, 360.0)), Default("\"360 deg\""), "radial: angle over which it touches the tank"),
+    key("tank.aquifer.width", Quantity(D::Length, above(0.0, 1.0e7)), Optional, "linear: width of the contact"),
+    key("tank.aquifer.length", Quantity(D::Length, above(0.0, 1.0e7)), Optional, "linear: length away from the tank"),
+    key("tank.aquifer.since", Day, Optional, "carter-tracy: day of the first production, from which its time runs; otherwise period.start"),
+
     key("tank.water", Kind::Table, Optional, "Water that flows to the wells"),
-    key("tank.water.model", Choice(&["connate", "average"]), Optional, "connate: none flows; average: fractional flow at the tank's average saturation. Must be stated when water is injected, otherwise connate"),
+    key("tank.water.model", Choice(&["connate", "average"]), Optional, "connate: none flows; average: fractional flow at the tank's average saturation. Must be stated when water is injected or there is an aquifer, otherwise connate"),
 
     key("tank.relative_permeability", Kind::Table, Optional, "Corey curves"),
     key("tank.relative_permeability.critical_gas", Fraction(FRACTION), Default("0.05"), "Gas saturation up to which free gas does not flow"),
@@ -267,6 +288,7 @@ pub const KEYS: &[Key] = &[
     key("injector.effective_fraction", Fraction(above(0.0, 1.0)), Default("1.0"), "Part of the injected volume that supports the tank; the rest is lost"),
     key("injector.bottomhole_limit", Quantity(D::Pressure, PRESSURE), Optional, "Highest bottom-hole pressure, from the fracture figure; acts through injectivity"),
     key("injector.injectivity", Injected(D::ProductivityIndex, D::GasInjectivity, above(0.0, 1.0e8)), Optional, "Surface rate per pressure above the tank's"),
+    key("injector.gas_to", Choice(&["oil-zone", "gas-cap"]), Default("\"oil-zone\""), "Gas: dispersed in the oil zone, or kept apart in the gas cap"),
 
     key("line", Tables, Optional, "Lines whose pressure rises with what all their wells make together"),
     key("line.name", Name, Required, "Unique among lines, wells and injectors"),

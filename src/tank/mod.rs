@@ -4,21 +4,25 @@
 //!
 //! ```text
 //! N*Bo(p,Rs) + (G - N*Rs)*Bg(p) + W*Bw(p) = Vp(p)
-//! Rs = min(Rs_sat(p), G/N),   Vp(p) = Vp_i*exp(cf*(p - p_i))
+//! Rs = min(Rs_sat(p), G/N),   Vp(p) = Vp_i*exp(cf*(p - p_i)) or from a table
 //! Vp_i = (1 + m)*N_i*Bo_i/(1 - Swc),  G_i = N_i*Rs_i + m*N_i*Bo_i/Bg_i,  W_i = Swc*Vp_i/Bw_i
 //! ```
 //!
 //! so that mass is conserved by construction, above, at and below the bubble point, and after injection has pushed
-//! the tank above a new bubble point. The gas of a primary cap stays in the cap: it does not dissolve in the oil.
+//! the tank above a new bubble point. The gas of a primary cap stays in the cap, with what is injected there: it does not dissolve in
+//! the oil. Water from an aquifer is part of W.
 //!
 //! # Source
 //! Material balance: Schilthuis (1936); gas-cap expansion into the oil zone with residual oil left behind as the
 //! handbooks do (Craft and Hawkins 1959).
 
+pub mod aquifer;
 mod balance;
+mod pore;
 mod spec;
 mod state;
 
+pub use aquifer::{Aquifer, AquiferSpec};
 pub use balance::{Balance, Cumulatives};
 pub use spec::{ProducedSpec, TankSpec, WaterModel};
 pub use state::TankState;
@@ -27,6 +31,7 @@ use crate::fault::Fault;
 use crate::fluid::ReservoirFluid;
 use crate::rock::RelativePermeability;
 use crate::roots::brent;
+use pore::PoreVolume;
 use std::sync::Arc;
 
 /// Surface volumes in the tank.
@@ -36,8 +41,10 @@ pub struct Inventory {
     pub oil_stb: f64,
     /// Gas of the oil zone, dissolved and free, scf; without the gas of a primary cap.
     pub gas_scf: f64,
-    /// Water, STB.
+    /// Water, STB; without what a pot aquifer gives, which follows from the pressure.
     pub water_stb: f64,
+    /// Gas of the cap, scf.
+    pub cap_gas_scf: f64,
 }
 
 /// Why the balance gave no pressure.
@@ -79,11 +86,12 @@ pub struct Tank {
     rel_perm: RelativePermeability,
     water_model: WaterModel,
     initial_pressure_psia: f64,
-    pore_compressibility_1_psi: f64,
+    pore: PoreVolume,
+    aquifer: Option<Aquifer>,
+    initial_bw_rb_stb: f64,
     connate_water: f64,
     gas_cap_ratio: f64,
     pore_volume_rb: f64,
-    cap_gas_scf: f64,
     cap_volume_rb: f64,
     initial: Inventory,
     start: Inventory,
@@ -125,16 +133,19 @@ impl Tank {
             oil_stb: n_i,
             gas_scf: n_i * rs_i,
             water_stb: spec.connate_water * pore_volume_rb / fluid.bw(p_i),
-        };
-        let mut tank = Self {
             cap_gas_scf: m * oil_zone_rb / fluid.bg(p_i),
+        };
+        let initial_bw_rb_stb = fluid.bw(p_i);
+        let mut tank = Self {
             cap_volume_rb: m * oil_zone_rb,
             closure_limit_psia: fluid.closure_limit_psia(),
             fluid,
             rel_perm,
             water_model: spec.water_model,
             initial_pressure_psia: p_i,
-            pore_compressibility_1_psi: spec.pore_compressibility_1_psi,
+            pore: PoreVolume::new(spec.pore_compressibility_1_psi, &spec.compaction, p_i)?,
+            aquifer: spec.aquifer.map(|aquifer| Aquifer::new(aquifer, p_i)),
+            initial_bw_rb_stb,
             connate_water: spec.connate_water,
             gas_cap_ratio: m,
             pore_volume_rb,
@@ -150,6 +161,8 @@ impl Tank {
                 water_stb: produced.water_stb,
                 injected_water_stb: produced.injected_water_stb,
                 injected_gas_scf: produced.injected_gas_scf,
+                injected_cap_gas_scf: 0.0,
+                aquifer_stb: produced.aquifer_stb,
             };
             tank.start = tank.inventory_after(&tank.before);
             if tank.start.oil_stb <= 0.0 {
@@ -189,7 +202,12 @@ impl Tank {
 
     /// Gas of the primary cap, scf.
     pub fn cap_gas_scf(&self) -> f64 {
-        self.cap_gas_scf
+        self.initial.cap_gas_scf
+    }
+
+    /// The aquifer.
+    pub fn aquifer(&self) -> Option<&Aquifer> {
+        self.aquifer.as_ref()
     }
 
     /// Pressure before any production, psia.
@@ -207,27 +225,68 @@ impl Tank {
         &self.rel_perm
     }
 
+    /// What is left of `full` after `taken`.
+    fn less(full: &Inventory, taken: &Cumulatives) -> Inventory {
+        Inventory {
+            oil_stb: full.oil_stb - taken.oil_stb,
+            gas_scf: full.gas_scf - taken.gas_scf + taken.injected_gas_scf,
+            water_stb: full.water_stb - taken.water_stb + taken.injected_water_stb + taken.aquifer_stb,
+            cap_gas_scf: full.cap_gas_scf + taken.injected_cap_gas_scf,
+        }
+    }
+
     /// What is left after `taken` (since first production).
     fn inventory_after(&self, taken: &Cumulatives) -> Inventory {
-        Inventory {
-            oil_stb: self.initial.oil_stb - taken.oil_stb,
-            gas_scf: self.initial.gas_scf - taken.gas_scf + taken.injected_gas_scf,
-            water_stb: self.initial.water_stb - taken.water_stb + taken.injected_water_stb,
-        }
+        Self::less(&self.initial, taken)
     }
 
     /// What is left after `taken` since the start of the forecast; injected volumes are those that support the tank.
     pub fn inventory(&self, taken: &Cumulatives) -> Inventory {
-        Inventory {
-            oil_stb: self.start.oil_stb - taken.oil_stb,
-            gas_scf: self.start.gas_scf - taken.gas_scf + taken.injected_gas_scf,
-            water_stb: self.start.water_stb - taken.water_stb + taken.injected_water_stb,
-        }
+        Self::less(&self.start, taken)
+    }
+
+    /// Water that has come from the aquifer since the first production, STB, of which `since_start_stb` since the start of the forecast
+    /// where that is part of the state; a pot's follows from the pressure.
+    pub fn aquifer_influx_stb(&self, since_start_stb: f64, pressure_psia: f64) -> f64 {
+        self.before.aquifer_stb + since_start_stb + self.pot_stb(pressure_psia)
+    }
+
+    /// Influx from the aquifer, STB/d, `days` after the start of the forecast; `withdrawal_rb_d` is net of injection. Zero for a pot,
+    /// which gives its water with the balance.
+    pub fn aquifer_rate_stb_d(
+        &self,
+        days: f64,
+        inventory: &Inventory,
+        since_start_stb: f64,
+        pressure_psia: f64,
+        withdrawal_rb_d: f64,
+    ) -> f64 {
+        let influx_rb = (self.before.aquifer_stb + since_start_stb) * self.initial_bw_rb_stb;
+        let Some(drive) = self.aquifer.as_ref().and_then(|aquifer| aquifer.drive(days, influx_rb)) else { return 0.0 };
+        let store = self.store_rb_psi(inventory, pressure_psia);
+        drive.influx_rb_d(pressure_psia, store, withdrawal_rb_d) / self.initial_bw_rb_stb
+    }
+
+    /// Average pressure of the aquifer, psia, after this influx since the first production.
+    pub fn aquifer_pressure_psia(&self, influx_stb: f64, pressure_psia: f64) -> Option<f64> {
+        self.aquifer.as_ref()?.pressure_psia(influx_stb * self.initial_bw_rb_stb, pressure_psia)
+    }
+
+    fn pot_stb(&self, pressure_psia: f64) -> f64 {
+        self.aquifer.as_ref().map_or(0.0, |aquifer| aquifer.pot_rb(pressure_psia) / self.initial_bw_rb_stb)
+    }
+
+    /// What the tank gives per psi without influx, rb/psi.
+    fn store_rb_psi(&self, inventory: &Inventory, pressure_psia: f64) -> f64 {
+        const HALF_PSI: f64 = 0.5;
+        let fall =
+            self.excess_rb(inventory, pressure_psia - HALF_PSI) - self.excess_rb(inventory, pressure_psia + HALF_PSI);
+        (fall / (2.0 * HALF_PSI)).max(1e-9 * self.pore_volume_rb)
     }
 
     /// Pore volume at a pressure, rb.
     fn pore_volume_rb(&self, pressure_psia: f64) -> f64 {
-        self.pore_volume_rb * (self.pore_compressibility_1_psi * (pressure_psia - self.initial_pressure_psia)).exp()
+        self.pore_volume_rb * self.pore.ln(pressure_psia).exp()
     }
 
     /// Dissolved gas at a pressure, scf/STB.
@@ -238,10 +297,10 @@ impl Tank {
     /// Fluid volume less pore volume, rb: falls with pressure, zero at the tank's.
     fn excess_rb(&self, inventory: &Inventory, pressure_psia: f64) -> f64 {
         let rs = self.rs(inventory, pressure_psia);
-        let free = inventory.gas_scf - inventory.oil_stb * rs + self.cap_gas_scf;
+        let free = inventory.gas_scf - inventory.oil_stb * rs + inventory.cap_gas_scf;
         inventory.oil_stb * self.fluid.bo(pressure_psia, rs)
             + free * self.fluid.bg(pressure_psia)
-            + inventory.water_stb * self.fluid.bw(pressure_psia)
+            + (inventory.water_stb + self.pot_stb(pressure_psia)) * self.fluid.bw(pressure_psia)
             - self.pore_volume_rb(pressure_psia)
     }
 

@@ -1,5 +1,6 @@
 //! The tank as the user states it.
 
+use super::AquiferSpec;
 use crate::rock::CoreySpec;
 
 /// How the water that flows to the wells is computed.
@@ -24,6 +25,8 @@ pub struct ProducedSpec {
     pub injected_water_stb: f64,
     /// Gas injected that supports the tank, scf.
     pub injected_gas_scf: f64,
+    /// Water that had come from the aquifer, STB; a pot's follows from the pressure.
+    pub aquifer_stb: f64,
     /// Measured reservoir pressure at the start of the forecast, psia: compared, not imposed.
     pub measured_pressure_psia: Option<f64>,
 }
@@ -39,8 +42,12 @@ pub struct TankSpec {
     pub temperature_degf: f64,
     /// Connate water saturation, fraction.
     pub connate_water: f64,
-    /// Pore compressibility, 1/psi.
+    /// Pore compressibility, 1/psi; unused where there is a compaction table.
     pub pore_compressibility_1_psi: f64,
+    /// Pressure, psia, and pore volume over that at any one pressure, by rising pressure; empty: the constant compressibility.
+    pub compaction: Vec<(f64, f64)>,
+    /// Aquifer.
+    pub aquifer: Option<AquiferSpec>,
     /// Primary gas-cap volume over oil-zone volume at initial conditions.
     pub gas_cap_ratio: f64,
     /// True vertical depth at which the pressure is stated, ft; `None`: each well's perforations.

@@ -67,8 +67,8 @@ impl Tank {
         let pore = self.pore_volume_rb(p);
         let residual = self.rel_perm.residual_oil_to_gas();
         // The cap grows into the oil zone and leaves residual oil behind.
-        let invaded = if self.gas_cap_ratio > 0.0 {
-            (self.cap_gas_scf * bg - self.cap_volume_rb).max(0.0) / (1.0 - self.connate_water - residual)
+        let invaded = if inventory.cap_gas_scf > 0.0 {
+            (inventory.cap_gas_scf * bg - self.cap_volume_rb).max(0.0) / (1.0 - self.connate_water - residual)
         } else {
             0.0
         };

@@ -27,6 +27,8 @@ pub fn one_well() -> FieldSpec {
             temperature_degf: 190.0,
             connate_water: 0.22,
             pore_compressibility_1_psi: 4e-6,
+            compaction: Vec::new(),
+            aquifer: None,
             gas_cap_ratio: 0.0,
             datum_tvd_ft: None,
             produced: None,
@@ -112,5 +114,6 @@ pub fn injector(name: &str, fluid: InjectedFluid, control: InjectionControl) -> 
         effective_fraction: 1.0,
         bottomhole_limit_psia: None,
         injectivity: None,
+        to_gas_cap: false,
     }
 }
