@@ -80,6 +80,8 @@ pub enum EventKind {
     BubblePointCrossedUp,
     /// Free gas in the oil zone reached its critical saturation and begins to flow.
     FreeGasMobile,
+    /// Injected water reached a well.
+    WaterBreakthrough,
     /// The right-most crossing disappeared while another stayed.
     RateJump,
     /// A flowing well came near to or left of the minimum of its tubing curve, or where its gas hardly lifts the liquid.

@@ -67,6 +67,8 @@ pub struct InjectorSpec {
     pub bottomhole_limit_psia: Option<f64>,
     /// Surface rate per pressure above the tank's, STB/d/psi or scf/d/psi.
     pub injectivity: Option<f64>,
+    /// Mean time from injection to the tank, days: the injected volume reaches it with a first-order lag.
+    pub response_days: f64,
 }
 
 /// What a dated event changes: the whole new settings of what it names.

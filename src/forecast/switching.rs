@@ -157,6 +157,7 @@ impl Run<'_> {
                 self.note_jump(w, before);
             }
             Watch::MinimumRate(w) => self.stop(w, StopReason::RateLimit)?,
+            Watch::Breakthrough(_) => self.break_through()?,
             Watch::WaterCut(w) => self.stop(w, StopReason::WaterCutLimit)?,
             Watch::GasOilRatio(w) => self.stop(w, StopReason::GasOilRatioLimit)?,
             Watch::FlowAgain(w) => {
@@ -172,6 +173,44 @@ impl Run<'_> {
                         if may { "it comes and goes within days: left shut" } else { "flow margin back at 1 psi" };
                     self.well_event(w, EventKind::CouldFlowAgain, note.to_owned());
                 }
+            }
+        }
+        Ok(())
+    }
+
+    /// Marks the wells that the front has reached, which are returned.
+    pub(super) fn note_breakthroughs(&mut self, with_event: bool) -> Result<Vec<usize>, RunError> {
+        // Wells alike are reached at one instant: rounding does not set them apart.
+        const TOGETHER: f64 = 1e-9;
+        let tank = self.tank_now()?;
+        let reached: Vec<usize> = {
+            let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
+            let new = |w: &usize| !self.modes.broken_through[*w];
+            let margin = |w: usize| dynamics.before_breakthrough(w, &tank);
+            (0..self.modes.wells.len()).filter(new).filter(|&w| margin(w).is_some_and(|m| m <= TOGETHER)).collect()
+        };
+        for &w in &reached {
+            self.modes.broken_through[w] = true;
+            if with_event {
+                let cut = {
+                    let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
+                    dynamics.well_now(w, &tank).water_cut
+                };
+                let note = format!("water cut {:.1} %, tank at {:.0} psia", 100.0 * cut, tank.pressure_psia);
+                self.well_event(w, EventKind::WaterBreakthrough, note);
+            }
+        }
+        Ok(reached)
+    }
+
+    /// The front reaches wells: their water cut jumps, so that they, and those on a line with them, are looked at from scratch.
+    fn break_through(&mut self) -> Result<(), RunError> {
+        let reached = self.note_breakthroughs(true)?;
+        let lines: Vec<usize> = reached.iter().filter_map(|&w| self.setup.line_of[w]).collect();
+        for w in 0..self.modes.wells.len() {
+            let concerned = reached.contains(&w) || self.setup.line_of[w].is_some_and(|l| lines.contains(&l));
+            if concerned && self.modes.wells[w].flows() {
+                self.place(w, false)?;
             }
         }
         Ok(())

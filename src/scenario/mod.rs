@@ -18,6 +18,7 @@ mod problem;
 mod read_line;
 mod read_onsets;
 mod read_tank;
+mod read_water;
 mod read_wells;
 mod reader;
 mod reader_words;

@@ -2,13 +2,13 @@
 
 use super::problem::Problem;
 use super::read_onsets;
+use super::read_water;
 use super::reader::Reader;
-use super::schema::LATER_WATER_MODELS;
 use super::section::Section;
 use crate::fluid::FluidSpec;
 use crate::forecast::{Every, OnsetSpec, PeriodSpec, Tolerance};
 use crate::rock::CoreySpec;
-use crate::tank::{ProducedSpec, TankSpec, WaterModel};
+use crate::tank::{ProducedSpec, TankSpec};
 use crate::units::constants::DEGF_TO_DEGR;
 use crate::units::{Dimension, UnitSystem, parse};
 
@@ -92,10 +92,11 @@ pub(super) fn fluid(reader: &mut Reader, root: &Section<'_>) -> (FluidSpec, Onse
     (spec, onsets)
 }
 
-/// The tank; `water_injected`: whether the scenario injects water, so that the water model must be stated.
+/// The tank; `water_injected`: whether the scenario injects water, so that water flows by displacement unless the scenario says otherwise.
 pub(super) fn tank(reader: &mut Reader, section: &Section<'_>, water_injected: bool) -> TankSpec {
     let produced = produced(reader, section);
     let water_injected = water_injected || produced.is_some_and(|produced| produced.injected_water_stb > 0.0);
+    let (water_model, water) = read_water::tank(reader, section, water_injected);
     let spec = TankSpec {
         oil_in_place_stb: reader.quantity(section, "oil_in_place"),
         pressure_psia: reader.quantity(section, "pressure"),
@@ -105,7 +106,8 @@ pub(super) fn tank(reader: &mut Reader, section: &Section<'_>, water_injected: b
         gas_cap_ratio: reader.number(section, "gas_cap_ratio"),
         datum_tvd_ft: reader.optional_quantity(section, "datum"),
         produced,
-        water_model: water_model(reader, section, water_injected),
+        water_model,
+        water,
         relative_permeability: relative_permeability(reader, section),
     };
     reader.finish(section);
@@ -127,23 +129,6 @@ fn produced(reader: &mut Reader, tank: &Section<'_>) -> Option<ProducedSpec> {
     };
     reader.finish(&section);
     Some(spec)
-}
-
-fn water_model(reader: &mut Reader, tank: &Section<'_>, water_injected: bool) -> WaterModel {
-    let section = reader.section(tank, "water");
-    let word = reader.choice(&section, "model", LATER_WATER_MODELS);
-    reader.finish(&section);
-    if water_injected && !section.has("model") && tank.is_there() {
-        reader.note(
-            Problem::new(section.at("model"), "water is injected, but `tank.water.model` does not say how it flows")
-                .label("[tank.water] model is expected")
-                .help(
-                    "\"average\" lets water flow at the tank's average saturation, \"connate\" keeps it away from the \
-                     wells; \"displacement\", which will be the default here, comes with a later version",
-                ),
-        );
-    }
-    if word == Some("average") { WaterModel::Average } else { WaterModel::Connate }
 }
 
 fn relative_permeability(reader: &mut Reader, tank: &Section<'_>) -> CoreySpec {

@@ -39,7 +39,7 @@ impl Key {
             Kind::Injected(..) => "liquid rate (water) or gas rate (gas)".to_owned(),
             Kind::FlowCoefficient => "rate per pressure^2n".to_owned(),
             Kind::Survey => "list of pairs, or a path".to_owned(),
-            Kind::Temperatures | Kind::LinePressures => "list of pairs".to_owned(),
+            Kind::Temperatures | Kind::LinePressures | Kind::WaterTrend | Kind::WellTrend => "list of pairs".to_owned(),
             Kind::Stations => "list of pairs or triples, or a path".to_owned(),
             Kind::Onset => "pressure, or list of pairs".to_owned(),
             Kind::Table => "table".to_owned(),
@@ -99,6 +99,10 @@ pub enum Kind {
     Onset,
     /// Pairs of a total rate and a pressure.
     LinePressures,
+    /// Pairs of cumulative oil or injected pore volumes and water.
+    WaterTrend,
+    /// Pairs of a well's cumulative oil and what it makes.
+    WellTrend,
     /// A table of further keys.
     Table,
     /// A list of tables of further keys.
@@ -150,7 +154,7 @@ pub const LATER: &[(&str, &str)] = &[
 ];
 
 /// Water models that come with a later version.
-pub const LATER_WATER_MODELS: &[&str] = &["displacement", "trend"];
+pub const LATER_WATER_MODELS: &[&str] = &[];
 /// Tubing methods that come with a later version.
 pub const LATER_TUBING_METHODS: &[&str] = &["orkiszewski", "poettmann-carpenter"];
 /// Rules for future inflow that come with a later version.
@@ -234,7 +238,10 @@ pub const KEYS: &[Key] = &[
     key("tank.produced.measured_pressure", Quantity(D::Pressure, PRESSURE), Optional, "Measured at period.start: compared with the computed one, not imposed"),
 
     key("tank.water", Kind::Table, Optional, "Water that flows to the wells"),
-    key("tank.water.model", Choice(&["connate", "average"]), Optional, "connate: none flows; average: fractional flow at the tank's average saturation. Must be stated when water is injected, otherwise connate"),
+    key("tank.water.model", Choice(&["connate", "average", "displacement", "trend"]), Optional, "connate: none flows; average: fractional flow at the tank's average saturation; displacement: a front through the contacted volume; trend: a table. Otherwise displacement where water is injected, connate where none is"),
+    key("tank.water.contacted_fraction", Fraction(above(0.0, 0.95)), Default("0.6"), "Part of the oil zone's pore volume that inflowing water comes to; displacement and trend"),
+    key("tank.water.trend", Kind::WaterTrend, Optional, "Pairs of the tank's cumulative oil since first production, or of injected pore volumes as a bare number, and water cut; trend"),
+    key("tank.water.wor_trend", Kind::WaterTrend, Optional, "As trend with the water-oil ratio in place of the water cut"),
 
     key("tank.relative_permeability", Kind::Table, Optional, "Corey curves"),
     key("tank.relative_permeability.critical_gas", Fraction(FRACTION), Default("0.05"), "Gas saturation up to which free gas does not flow"),
@@ -255,6 +262,7 @@ pub const KEYS: &[Key] = &[
     key("injector.rate", Injected(D::LiquidRate, D::GasRate, from(0.0, 1.0e10)), Optional, "Surface rate; this or voidage_replacement"),
     key("injector.voidage_replacement", Number(from(0.0, 5.0)), Optional, "Share of the tank's current withdrawal; this or rate"),
     key("injector.rate_limit", Injected(D::LiquidRate, D::GasRate, above(0.0, 1.0e10)), Optional, "Highest surface rate; otherwise none"),
+    key("injector.response_days", Number(from(0.0, 3650.0)), Default("0.0"), "Mean time in days until what is injected reaches the tank: a first-order lag"),
     key("injector.effective_fraction", Fraction(above(0.0, 1.0)), Default("1.0"), "Part of the injected volume that supports the tank; the rest is lost"),
     key("injector.bottomhole_limit", Quantity(D::Pressure, PRESSURE), Optional, "Highest bottom-hole pressure, from the fracture figure; acts through injectivity"),
     key("injector.injectivity", Injected(D::ProductivityIndex, D::GasInjectivity, above(0.0, 1.0e8)), Optional, "Surface rate per pressure above the tank's"),
@@ -272,6 +280,9 @@ pub const KEYS: &[Key] = &[
     key("well.perforations", Quantity(D::Length, DEPTH), Optional, "Measured depth; otherwise the end of the survey"),
     key("well.gor_factor", Number(from(0.0, 100.0)), Default("1.0"), "This well's free gas against the tank's"),
     key("well.water_factor", Number(from(0.0, 100.0)), Default("1.0"), "This well's water-oil ratio against the tank's"),
+    key("well.breakthrough_delay", Number(above(0.0, 100.0)), Default("1.0"), "Contacted volume to be swept before this well sees what the tank's average well sees, over the tank's; displacement"),
+    key("well.water_trend", Kind::WellTrend, Optional, "Pairs of the oil this well makes from period.start on and its water cut, in place of the tank's"),
+    key("well.gor_trend", Kind::WellTrend, Optional, "Pairs of that oil and its producing gas-oil ratio, in place of the tank's"),
     key("well.start", Day, Optional, "First day on stream; otherwise the start of the period"),
     key("well.end", Day, Optional, "Day from which it is shut in; otherwise never"),
     key("well.may_flow_again", Flag, Default("false"), "Whether a well that died comes back by itself when it can"),

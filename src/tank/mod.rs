@@ -16,12 +16,16 @@
 //! handbooks do (Craft and Hawkins 1959).
 
 mod balance;
+mod flood;
 mod spec;
 mod state;
+mod trend;
 
 pub use balance::{Balance, Cumulatives};
-pub use spec::{ProducedSpec, TankSpec, WaterModel};
+pub use flood::Flood;
+pub use spec::{ProducedSpec, TankSpec, WaterModel, WaterSpec};
 pub use state::TankState;
+pub use trend::{Trend, TrendOver, WaterTrend, ratio_of_cut};
 
 use crate::fault::Fault;
 use crate::fluid::ReservoirFluid;
@@ -78,6 +82,7 @@ pub struct Tank {
     fluid: Arc<dyn ReservoirFluid>,
     rel_perm: RelativePermeability,
     water_model: WaterModel,
+    water: WaterSpec,
     initial_pressure_psia: f64,
     pore_compressibility_1_psi: f64,
     connate_water: f64,
@@ -133,6 +138,7 @@ impl Tank {
             fluid,
             rel_perm,
             water_model: spec.water_model,
+            water: spec.water.clone(),
             initial_pressure_psia: p_i,
             pore_compressibility_1_psi: spec.pore_compressibility_1_psi,
             connate_water: spec.connate_water,
@@ -172,9 +178,22 @@ impl Tank {
     }
 
     /// Takes other relative permeabilities and another water model; volumes stay as they are.
-    pub fn set_flow(&mut self, rel_perm: RelativePermeability, water_model: WaterModel) {
+    pub fn set_flow(&mut self, rel_perm: RelativePermeability, water_model: WaterModel, water: &WaterSpec) {
         self.rel_perm = rel_perm;
         self.water_model = water_model;
+        self.water = water.clone();
+    }
+
+    /// How water reaches the wells.
+    pub fn water_model(&self) -> WaterModel {
+        self.water_model
+    }
+
+    /// Part of the withdrawal before the forecast that injected water replaced, at the pressure of a state.
+    pub fn replaced_before(&self, state: &TankState) -> f64 {
+        let b = &self.before;
+        let withdrawn = state.voidage_rb(b.oil_stb, b.gas_scf, b.water_stb);
+        if withdrawn > 0.0 { (b.injected_water_stb * state.bw_rb_stb / withdrawn).clamp(0.0, 1.0) } else { 0.0 }
     }
 
     /// Volumes in the tank at the start of the forecast.
