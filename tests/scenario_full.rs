@@ -7,10 +7,10 @@ use wane::forecast::{Change, Every, FieldSpec, InjectedFluid, InjectionControl, 
 use wane::inflow::{Coefficient, FutureRule, InflowMethod, InflowSpec, InflowTest, Measured, RateBasis};
 use wane::rock::CoreySpec;
 use wane::scenario::{Document, schema};
-use wane::tank::{ProducedSpec, TankSpec, WaterModel};
+use wane::tank::{ProducedSpec, TankSpec, Trend, TrendOver, WaterModel, WaterSpec, WaterTrend};
 use wane::tubing::{ChokeMethod, ChokeSpec, ChokeTest, Discharge, TubingMethod, TubingSection, TubingSpec};
 use wane::units::UnitSystem;
-use wane::well::{FlowingSurvey, LineRate, LineSpec, ScreenSpec, SurveyPoint, WellSpec};
+use wane::well::{FlowingSurvey, LineRate, LineSpec, MakesSpec, ScreenSpec, SurveyPoint, WellSpec};
 
 const FULL: &str = include_str!("data/full.toml");
 
@@ -84,7 +84,15 @@ fn calendar_fluid_and_tank_arrive() {
             injected_gas_scf: 5.0e6,
             measured_pressure_psia: Some(2480.0),
         }),
-        water_model: WaterModel::Average,
+        water_model: WaterModel::Trend,
+        water: WaterSpec {
+            contacted_fraction: 0.55,
+            trend: Some(WaterTrend {
+                over: TrendOver::Oil,
+                water_oil_ratio: true,
+                curve: Trend::new(vec![(0.0, 0.0), (1.5e6, 0.02), (4.0e6, 1.2)]).unwrap(),
+            }),
+        },
         relative_permeability: CoreySpec {
             critical_gas: 0.03,
             residual_oil_to_gas: 0.21,
@@ -112,6 +120,7 @@ fn injectors_arrive() {
         effective_fraction: 0.85,
         bottomhole_limit_psia: Some(4400.0),
         injectivity: Some(9.0),
+        response_days: 45.0,
     };
     let gas = InjectorSpec {
         name: "G".to_owned(),
@@ -123,6 +132,7 @@ fn injectors_arrive() {
         effective_fraction: 1.0,
         bottomhole_limit_psia: None,
         injectivity: None,
+        response_days: 0.0,
     };
     assert_eq!(resolve().injectors, [water, gas]);
 }
@@ -176,6 +186,7 @@ fn the_first_well_arrives() {
         minimum_rate_stb_d: Some(45.0),
         maximum_water_cut: Some(0.87),
         maximum_gor_scf_stb: Some(4200.0),
+        makes: MakesSpec { breakthrough_delay: 1.4, ..MakesSpec::default() },
         screens: ScreenSpec {
             heading_margin: 0.25,
             maximum_velocity_ft_s: Some(60.0),

@@ -168,13 +168,29 @@ const CASES: &[Case] = &[
             "hasan-kabir, drift-flux, ansari, hagedorn-brown, beggs-brill, mukherjee-brill, gray, no-slip",
         ],
     ),
-    ("model = \"average\"", "model = «\"displacement\"»", &["`displacement` is not there yet", "connate, average"]),
-    ("[[well]]", "«[well]»", &["`well` is a table, not a list of tables", "two brackets"]),
+    ("model = \"average\"", "model = «\"displacment\"»", &["did you mean \"displacement\"?"]),
+    ("model = \"average\"", "model = «\"trend\"»", &["has no table", "`trend` or `wor_trend` is expected"]),
     (
-        "[tank.water]\nmodel = \"average\"",
-        "",
-        &["`tank.water.model` does not say", "\"average\"", "\"displacement\"", "later version"],
+        "model = \"average\"",
+        "model = \"average\"\ntrend = «[[0.0, 0.0], [0.4, 0.6]]»",
+        &["`trend` belongs to the water model \"trend\" alone"],
     ),
+    (
+        "model = \"average\"",
+        "model = \"trend\"\ntrend = «[[0.4, 0.0], [0.4, 0.6]]»",
+        &["the first members of `tank.water.trend` do not rise"],
+    ),
+    (
+        "model = \"average\"",
+        "model = \"trend\"\ntrend = [[0.0, 0.0], [0.4, «60.0»]]",
+        &["`water cut` is too large", "at most 0.9999"],
+    ),
+    (
+        "model = \"average\"",
+        "model = \"displacement\"\ncontacted_fraction = «1.0»",
+        &["`tank.water.contacted_fraction` is too large", "at most 0.95"],
+    ),
+    ("[[well]]", "«[well]»", &["`well` is a table, not a list of tables", "two brackets"]),
     // Impossible together.
     (
         "bubble_point = \"2650 psia\"",

@@ -7,7 +7,7 @@ use common::{case, near, numbers, rows};
 use std::sync::Arc;
 use wane::fluid::{FluidTable, FluidTableRow, ReservoirFluid, TableWater};
 use wane::rock::{CoreySpec, RelPermTable, RelativePermeability};
-use wane::tank::{Cumulatives, ProducedSpec, Tank, TankSpec, TankState, WaterModel};
+use wane::tank::{Cumulatives, ProducedSpec, Tank, TankSpec, TankState, WaterModel, WaterSpec};
 
 fn tank_spec(oil_stb: f64, pressure_psia: f64, connate_water: f64) -> TankSpec {
     TankSpec {
@@ -20,6 +20,7 @@ fn tank_spec(oil_stb: f64, pressure_psia: f64, connate_water: f64) -> TankSpec {
         datum_tvd_ft: None,
         produced: None,
         water_model: WaterModel::Connate,
+        water: WaterSpec::default(),
         relative_permeability: CoreySpec::default(),
     }
 }

@@ -491,7 +491,7 @@ impl Problem for Dynamics<'_> {
                 InjectedFluid::Gas => layout.effective_gas(),
             };
             let effective = rate * injector.effective_fraction / scale;
-            let arriving = if layout.transit && injector.response_days > 0.0 {
+            let arriving = if layout.transit && injector.lags() {
                 let arriving = y[layout.in_transit(i)] / injector.response_days;
                 dy[layout.in_transit(i)] = effective - arriving;
                 arriving

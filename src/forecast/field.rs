@@ -1,7 +1,7 @@
 //! A field, prepared to run: fluid, tank, wells, injectors.
 
-use super::{Change, FieldSpec, InjectedFluid, InjectorSpec, Tolerance};
 use super::modes::Layout;
+use super::{Change, FieldSpec, InjectedFluid, InjectorSpec, Tolerance};
 use crate::fault::Fault;
 use crate::fluid::BlackOil;
 use crate::rock::RelativePermeability;
@@ -180,7 +180,7 @@ impl Field {
             wells: spec.wells.len(),
             injectors: spec.injectors.len(),
             flood: std::iter::once(&spec.tank).chain(tanks).any(|t| t.water_model == WaterModel::Displacement),
-            transit: spec.injectors.iter().chain(injectors).any(|i| i.response_days > 0.0),
+            transit: spec.injectors.iter().chain(injectors).any(|i| i.lags()),
         }
     }
 

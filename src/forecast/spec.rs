@@ -67,8 +67,15 @@ pub struct InjectorSpec {
     pub bottomhole_limit_psia: Option<f64>,
     /// Surface rate per pressure above the tank's, STB/d/psi or scf/d/psi.
     pub injectivity: Option<f64>,
-    /// Mean time from injection to the tank, days: the injected volume reaches it with a first-order lag.
+    /// Mean time from injection to the tank, days: the injected volume reaches it with a first-order lag. Below one day: at once.
     pub response_days: f64,
+}
+
+impl InjectorSpec {
+    /// Whether the tank feels it later. A lag of less than a day is none: it would only make the equations stiff.
+    pub fn lags(&self) -> bool {
+        self.response_days >= 1.0
+    }
 }
 
 /// What a dated event changes: the whole new settings of what it names.

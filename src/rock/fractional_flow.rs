@@ -92,12 +92,7 @@ impl FractionalFlow {
             return 1.0;
         }
         let short = |s: f64| self.mean_saturation(s) - mean;
-        let outlet = brent(
-            short,
-            (front.saturation, front.movable_volumes - mean),
-            (1.0, 1.0 - mean),
-            1e-14,
-        );
+        let outlet = brent(short, (front.saturation, front.movable_volumes - mean), (1.0, 1.0 - mean), 1e-14);
         self.fraction(outlet)
     }
 }

@@ -38,7 +38,8 @@ pub(super) fn tank(reader: &mut Reader, tank: &Section<'_>, water_flows_in: bool
     let there: Vec<&str> = ["trend", "wor_trend"].into_iter().filter(|key| section.has(key)).collect();
     let mut trend = None;
     for key in ["trend", "wor_trend"] {
-        let found = points(reader, &section, key, if key == "trend" { Second::WaterCut } else { Second::WaterOilRatio });
+        let found =
+            points(reader, &section, key, if key == "trend" { Second::WaterCut } else { Second::WaterOilRatio });
         if let Some((over, curve)) = found {
             trend = Some(WaterTrend { over, water_oil_ratio: key == "wor_trend", curve });
         }

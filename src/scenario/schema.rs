@@ -262,7 +262,7 @@ pub const KEYS: &[Key] = &[
     key("injector.rate", Injected(D::LiquidRate, D::GasRate, from(0.0, 1.0e10)), Optional, "Surface rate; this or voidage_replacement"),
     key("injector.voidage_replacement", Number(from(0.0, 5.0)), Optional, "Share of the tank's current withdrawal; this or rate"),
     key("injector.rate_limit", Injected(D::LiquidRate, D::GasRate, above(0.0, 1.0e10)), Optional, "Highest surface rate; otherwise none"),
-    key("injector.response_days", Number(from(0.0, 3650.0)), Default("0.0"), "Mean time in days until what is injected reaches the tank: a first-order lag"),
+    key("injector.response_days", Number(from(0.0, 3650.0)), Default("0.0"), "Mean time in days until what is injected reaches the tank: a first-order lag; below 1 at once"),
     key("injector.effective_fraction", Fraction(above(0.0, 1.0)), Default("1.0"), "Part of the injected volume that supports the tank; the rest is lost"),
     key("injector.bottomhole_limit", Quantity(D::Pressure, PRESSURE), Optional, "Highest bottom-hole pressure, from the fracture figure; acts through injectivity"),
     key("injector.injectivity", Injected(D::ProductivityIndex, D::GasInjectivity, above(0.0, 1.0e8)), Optional, "Surface rate per pressure above the tank's"),
