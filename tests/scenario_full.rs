@@ -90,7 +90,7 @@ fn calendar_fluid_and_tank_arrive() {
             trend: Some(WaterTrend {
                 over: TrendOver::Oil,
                 water_oil_ratio: true,
-                curve: Trend::new(vec![(0.0, 0.0), (1.5e6, 0.02), (4.0e6, 1.2)]).unwrap(),
+                curve: Trend::new(vec![(0.0, 0.0), (1.5e6, 0.02), (4.0e6, 0.9)]).unwrap(),
             }),
         },
         relative_permeability: CoreySpec {
@@ -255,6 +255,12 @@ fn the_other_wells_have_their_defaults_and_methods() {
     let fall_ft = 6100.0 / (std::f64::consts::PI / 3.0) * 60.0_f64.to_radians().sin();
     assert_eq!(b.tubing.survey[1], (1000.0, 1000.0));
     assert!((b.tubing.survey[2].1 - 1000.0 - fall_ft).abs() < 1e-9, "{:?}", b.tubing.survey);
+    let makes = MakesSpec {
+        breakthrough_delay: 1.0,
+        water_cut: Some(Trend::new(vec![(0.0, 0.02), (3e5, 0.4)]).unwrap()),
+        gor: Some(Trend::new(vec![(0.0, 530.0), (3e5, 800.0)]).unwrap()),
+    };
+    assert_eq!((&b.makes, &c.makes, &d.makes), (&makes, &MakesSpec::default(), &MakesSpec::default()));
     let degf: Vec<f64> = b.tubing.temperatures.iter().map(|point| point.1).collect();
     assert_eq!((b.tubing.temperatures[0].0, b.tubing.temperatures[1].0), (0.0, 5000.0));
     assert!((degf[0] - 99.0).abs() < 1e-12 && (degf[1] - 158.0).abs() < 1e-12, "{degf:?}");
@@ -320,6 +326,8 @@ fn every_word_of_a_choice_is_understood() {
     assert_eq!(with("well.A.tubing.method=hasan-kabir").field.wells[0].tubing.method, TubingMethod::HasanKabir);
     assert_eq!(with("well.A.inflow.future=pressure").field.wells[0].inflow.future, FutureRule::Pressure);
     assert_eq!(with("well.A.inflow.basis=liquid").field.wells[0].inflow.basis, RateBasis::Liquid);
+    assert_eq!(with("tank.water.model=displacement").field.tank.water_model, WaterModel::Displacement);
+    assert!(!with("tank.water.trend_of=water-cut").field.tank.water.trend.unwrap().water_oil_ratio);
     assert_eq!(with("tank.water.model=connate").field.tank.water_model, WaterModel::Connate);
 }
 

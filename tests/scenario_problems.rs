@@ -169,12 +169,7 @@ const CASES: &[Case] = &[
         ],
     ),
     ("model = \"average\"", "model = «\"displacment\"»", &["did you mean \"displacement\"?"]),
-    ("model = \"average\"", "model = «\"trend\"»", &["has no table", "`trend` or `wor_trend` is expected"]),
-    (
-        "model = \"average\"",
-        "model = \"average\"\ntrend = «[[0.0, 0.0], [0.4, 0.6]]»",
-        &["`trend` belongs to the water model \"trend\" alone"],
-    ),
+    ("model = \"average\"", "model = «\"trend\"»", &["has no table", "`trend` is expected beside it"]),
     (
         "model = \"average\"",
         "model = \"trend\"\ntrend = «[[0.4, 0.0], [0.4, 0.6]]»",
@@ -523,6 +518,7 @@ fn every_key_of_the_list_is_really_read() {
             "asphaltene_onset" | "asphaltene_lower_onset" => {
                 problem.message == format!("a point of `{}` is a pair", key.path)
             }
+            "trend" | "water_trend" | "gor_trend" => problem.message == format!("a point of `{}` is a pair", key.path),
             "survey" => problem.message == "a point of a survey is a pair",
             "points" => problem.message == "a point of a flowing survey is a depth and a pressure",
             "temperature" if path.contains("tubing") => problem.message.contains("a point of a table of temperatures"),

@@ -130,14 +130,15 @@ fn no_more_water_comes_out_than_went_in() {
 
 #[test]
 fn a_front_that_ends_a_well_dates_both_and_tells_the_rate_before() {
-    let mut spec = flooded(1.0);
-    spec.wells[0].tubing.survey = one_well().wells[0].tubing.survey.clone();
-    spec.tank.water.contacted_fraction = 0.3;
+    let mut spec = flooded(0.8);
+    spec.wells[0].tubing.survey = vec![(0.0, 0.0), (6500.0, 6500.0)];
+    spec.tank.water.contacted_fraction = 0.4;
     let f = checked(&spec);
     let end = f.wells[0].natural_flow_end.unwrap();
     assert_eq!(end.reason, StopReason::NoCrossing);
     assert_eq!(breakthrough(&f, "OP-1"), Some(end.days));
-    near(end.oil_rate_stb_d, 800.0, 1e-9, "the last rate is the dry one");
+    assert!(end.liquid_rate_stb_d > 300.0, "{end:?}");
+    assert_eq!(end.oil_rate_stb_d, end.liquid_rate_stb_d, "the last rate is the dry one");
     assert!(end.flow_margin_psi < 0.0, "the front leaves no margin");
 }
 
@@ -223,8 +224,10 @@ fn a_trend_gives_the_water_cut_of_its_table() {
             assert!((row.water_cut.unwrap() - cut).abs() < 1e-6, "month {i}: {:?} {cut}", row.water_cut);
         }
         let day = breakthrough(&f, "OP-1").unwrap();
-        let first = f.wells[0].rows.iter().position(|r| r.water_cum_stb > 0.0).unwrap();
-        assert!(f.periods[first].start_days <= day && day <= f.periods[first].run_days, "{day} in month {first}");
+        for (period, row) in f.periods.iter().zip(&f.wells[0].rows) {
+            assert!(period.run_days > day || row.water_cum_stb == 0.0, "{} STB of water", row.water_cum_stb);
+            assert!(period.run_days < day + 31.0 || row.water_cum_stb > 1.0, "{} STB of water", row.water_cum_stb);
+        }
     }
 }
 
@@ -241,7 +244,8 @@ fn measured_trends_of_a_well_hold_for_it_alone_and_the_tank_still_closes() {
     for (own, other) in f.wells[1].rows.iter().zip(&f.wells[0].rows) {
         assert!((own.water_cut.unwrap() - cut.at(own.oil_cum_stb)).abs() < 1e-9);
         near(own.gor_scf_stb.unwrap(), gor.at(own.oil_cum_stb), 1e-9, "gas-oil ratio");
-        near(other.gor_scf_stb.unwrap(), 620.0, 0.02, "the other well stays the tank's");
+        // The other well makes the tank's gas, of which the first takes more than its share.
+        assert!((500.0..=620.0 + 1e-6).contains(&other.gor_scf_stb.unwrap()), "{:?}", other.gor_scf_stb);
     }
     assert_eq!(f.wells[0].rows[0].water_cut, Some(0.0));
 }

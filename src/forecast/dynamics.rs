@@ -145,10 +145,12 @@ impl<'a> Dynamics<'a> {
     /// The tank as one well sees it: the flood's water once it has been reached, or its own measured water.
     pub fn offer(&self, w: usize, tank: &TankState) -> TankState {
         let makes = &self.setup.wells[w].spec.makes;
+        let dry = !self.modes.broken_through[w] && self.before_breakthrough(w, tank).is_some();
         let water_oil_ratio = match (&makes.water_cut, &tank.flood) {
+            // So also in a trial step beyond the first water: the step is smooth.
+            _ if dry => 0.0,
             (Some(trend), _) => ratio_of_cut(trend.at(self.memory.oil_stb.borrow()[w])),
-            (None, Some(flood)) if self.modes.broken_through[w] => flood.water_oil_ratio(makes.breakthrough_delay),
-            (None, Some(_)) => 0.0,
+            (None, Some(flood)) => flood.water_oil_ratio(makes.breakthrough_delay),
             (None, None) => tank.water_oil_ratio,
         };
         TankState { water_oil_ratio, ..*tank }

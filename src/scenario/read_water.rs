@@ -35,32 +35,17 @@ pub(super) fn tank(reader: &mut Reader, tank: &Section<'_>, water_flows_in: bool
         None => WaterModel::Connate,
     };
     let contacted_fraction = reader.number(&section, "contacted_fraction");
-    let there: Vec<&str> = ["trend", "wor_trend"].into_iter().filter(|key| section.has(key)).collect();
-    let mut trend = None;
-    for key in ["trend", "wor_trend"] {
-        let found =
-            points(reader, &section, key, if key == "trend" { Second::WaterCut } else { Second::WaterOilRatio });
-        if let Some((over, curve)) = found {
-            trend = Some(WaterTrend { over, water_oil_ratio: key == "wor_trend", curve });
-        }
-    }
-    if let [_, second] = there[..] {
+    let water_oil_ratio = reader.choice(&section, "trend_of", &[]) == Some("water-oil-ratio");
+    let second = if water_oil_ratio { Second::WaterOilRatio } else { Second::WaterCut };
+    // Kept beside another model too: a case or an event may turn to it.
+    let trend =
+        points(reader, &section, "trend", second).map(|(over, curve)| WaterTrend { over, water_oil_ratio, curve });
+    if model == WaterModel::Trend && !section.has("trend") {
         reader.note(
-            Problem::new(section.at(second), "`trend` and `wor_trend` exclude each other")
-                .label("only one of them is expected"),
-        );
-    }
-    match (model, there.first()) {
-        (WaterModel::Trend, None) => reader.note(
             Problem::new(section.at("model"), "the water model \"trend\" has no table")
-                .label("`trend` or `wor_trend` is expected beside it")
+                .label("`trend` is expected beside it")
                 .help("trend = [[\"0 STB\", 0.0], [\"2 MMSTB\", 0.35], [\"4 MMSTB\", 0.8]]"),
-        ),
-        (WaterModel::Connate | WaterModel::Average | WaterModel::Displacement, Some(key)) => reader.note(
-            Problem::new(section.at(key), format!("`{key}` belongs to the water model \"trend\" alone"))
-                .label("not used by this model"),
-        ),
-        _ => {}
+        );
     }
     reader.finish(&section);
     (model, WaterSpec { contacted_fraction, trend })

@@ -22,7 +22,6 @@ pub(super) const EXCLUSIVE: &[(&str, &[&str])] = &[
     ("well.inflow", &["test", "productivity_index", "open_flow", "coefficient"]),
     ("well.tubing", &["wellhead_temperature", "temperature"]),
     ("well", &["line_pressure", "line"]),
-    ("tank.water", &["trend", "wor_trend"]),
     ("well.choke", &["discharge_coefficient", "test"]),
 ];
 

@@ -240,8 +240,8 @@ pub const KEYS: &[Key] = &[
     key("tank.water", Kind::Table, Optional, "Water that flows to the wells"),
     key("tank.water.model", Choice(&["connate", "average", "displacement", "trend"]), Optional, "connate: none flows; average: fractional flow at the tank's average saturation; displacement: a front through the contacted volume; trend: a table. Otherwise displacement where water is injected, connate where none is"),
     key("tank.water.contacted_fraction", Fraction(above(0.0, 0.95)), Default("0.6"), "Part of the oil zone's pore volume that inflowing water comes to; displacement and trend"),
-    key("tank.water.trend", Kind::WaterTrend, Optional, "Pairs of the tank's cumulative oil since first production, or of injected pore volumes as a bare number, and water cut; trend"),
-    key("tank.water.wor_trend", Kind::WaterTrend, Optional, "As trend with the water-oil ratio in place of the water cut"),
+    key("tank.water.trend", Kind::WaterTrend, Optional, "Pairs of the tank's cumulative oil since first production, or of injected pore volumes as a bare number, and water; used by the model trend alone"),
+    key("tank.water.trend_of", Choice(&["water-cut", "water-oil-ratio"]), Default("\"water-cut\""), "What the second members of trend are"),
 
     key("tank.relative_permeability", Kind::Table, Optional, "Corey curves"),
     key("tank.relative_permeability.critical_gas", Fraction(FRACTION), Default("0.05"), "Gas saturation up to which free gas does not flow"),
@@ -262,8 +262,8 @@ pub const KEYS: &[Key] = &[
     key("injector.rate", Injected(D::LiquidRate, D::GasRate, from(0.0, 1.0e10)), Optional, "Surface rate; this or voidage_replacement"),
     key("injector.voidage_replacement", Number(from(0.0, 5.0)), Optional, "Share of the tank's current withdrawal; this or rate"),
     key("injector.rate_limit", Injected(D::LiquidRate, D::GasRate, above(0.0, 1.0e10)), Optional, "Highest surface rate; otherwise none"),
-    key("injector.response_days", Number(from(0.0, 3650.0)), Default("0.0"), "Mean time in days until what is injected reaches the tank: a first-order lag; below 1 at once"),
     key("injector.effective_fraction", Fraction(above(0.0, 1.0)), Default("1.0"), "Part of the injected volume that supports the tank; the rest is lost"),
+    key("injector.response_days", Number(from(0.0, 3650.0)), Default("0.0"), "Mean time in days until what is injected reaches the tank: a first-order lag; below 1 at once"),
     key("injector.bottomhole_limit", Quantity(D::Pressure, PRESSURE), Optional, "Highest bottom-hole pressure, from the fracture figure; acts through injectivity"),
     key("injector.injectivity", Injected(D::ProductivityIndex, D::GasInjectivity, above(0.0, 1.0e8)), Optional, "Surface rate per pressure above the tank's"),
 

@@ -73,7 +73,8 @@ impl Trend {
     /// How far `x` is from there, in parts of the table's width: positive before, negative beyond.
     pub fn before_water(&self, x: f64) -> f64 {
         let (first, last) = (self.points[0].0, self.points[self.points.len() - 1].0);
-        (self.leaves_zero() - x) / (last - first).max(f64::MIN_POSITIVE)
+        let width = if last > first { last - first } else { 1.0 };
+        ((self.leaves_zero() - x) / width).clamp(-1e3, 1e3)
     }
 
     /// The points.
