@@ -441,6 +441,13 @@ pub struct Work {
     pub segments: u64,
 }
 
+impl Forecast {
+    /// The day on which injected or tabulated water reached a well, as days from the start.
+    pub fn water_breakthrough(&self, well: &str) -> Option<f64> {
+        self.events.iter().find(|e| e.kind == EventKind::WaterBreakthrough && e.name == well).map(|e| e.days)
+    }
+}
+
 /// A finished forecast.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Forecast {

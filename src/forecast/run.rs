@@ -187,7 +187,7 @@ impl<'a> Run<'a> {
 
     fn go(mut self) -> Result<Trace, RunError> {
         let marks = self.marks();
-        self.note_breakthroughs(false)?;
+        self.note_breakthroughs(None, false)?;
         self.scheduled()?;
         let end = marks.last().copied().unwrap_or(0.0);
         for mark in marks {
@@ -323,7 +323,7 @@ impl<'a> Run<'a> {
                 named[w] |= line.is_some() && *of == line && (all || self.modes.wells[w].flows());
             }
         }
-        self.note_breakthroughs(true)?;
+        self.note_breakthroughs(None, true)?;
         for i in 0..self.setup.injectors.len() {
             let spec = &self.setup.injectors[i];
             let on = spec.start.is_none_or(|d| self.day(d) <= self.t) && spec.end.is_none_or(|d| self.t < self.day(d));

@@ -160,7 +160,7 @@ impl Run<'_> {
                 self.note_jump(w, before);
             }
             Watch::MinimumRate(w) => self.stop(w, StopReason::RateLimit)?,
-            Watch::Breakthrough(_) => self.break_through()?,
+            Watch::Breakthrough(w) => self.break_through(w)?,
             Watch::WaterCut(w) => self.stop(w, StopReason::WaterCutLimit)?,
             Watch::GasOilRatio(w) => self.stop(w, StopReason::GasOilRatioLimit)?,
             Watch::FlowAgain(w) => {
@@ -181,8 +181,8 @@ impl Run<'_> {
         Ok(())
     }
 
-    /// Marks the wells that the front has reached, which are returned.
-    pub(super) fn note_breakthroughs(&mut self, with_event: bool) -> Result<Vec<usize>, RunError> {
+    /// Marks the wells that the front has reached, which are returned; `seen` was found by its watch.
+    pub(super) fn note_breakthroughs(&mut self, seen: Option<usize>, with_event: bool) -> Result<Vec<usize>, RunError> {
         // Wells alike are reached at one instant: rounding does not set them apart.
         const TOGETHER: f64 = 1e-9;
         let tank = self.tank_now()?;
@@ -190,7 +190,10 @@ impl Run<'_> {
             let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
             let new = |w: &usize| !self.modes.broken_through[*w];
             let margin = |w: usize| dynamics.before_breakthrough(w, &tank);
-            (0..self.modes.wells.len()).filter(new).filter(|&w| margin(w).is_some_and(|m| m <= TOGETHER)).collect()
+            (0..self.modes.wells.len())
+                .filter(new)
+                .filter(|&w| seen == Some(w) || margin(w).is_some_and(|m| m <= TOGETHER))
+                .collect()
         };
         for &w in &reached {
             self.modes.broken_through[w] = true;
@@ -207,11 +210,11 @@ impl Run<'_> {
     }
 
     /// The front reaches wells: their water cut jumps, so that they, and those on a line with them, are looked at from scratch.
-    fn break_through(&mut self) -> Result<(), RunError> {
+    fn break_through(&mut self, seen: usize) -> Result<(), RunError> {
         let flowing: Vec<Option<FlowEnd>> = (0..self.modes.wells.len())
             .map(|w| self.modes.wells[w].flows().then(|| self.flow_end(w, StopReason::NoCrossing)).transpose())
             .collect::<Result<_, _>>()?;
-        let reached = self.note_breakthroughs(true)?;
+        let reached = self.note_breakthroughs(Some(seen), true)?;
         let lines: Vec<usize> = reached.iter().filter_map(|&w| self.setup.line_of[w]).collect();
         for w in 0..self.modes.wells.len() {
             let concerned = reached.contains(&w) || self.setup.line_of[w].is_some_and(|l| lines.contains(&l));
