@@ -7,12 +7,12 @@ use wane::forecast::{Change, Every, FieldSpec, InjectedFluid, InjectionControl, 
 use wane::inflow::{Coefficient, FutureRule, InflowMethod, InflowSpec, InflowTest, Measured, RateBasis};
 use wane::rock::CoreySpec;
 use wane::scenario::{Document, schema};
-use wane::tank::{ProducedSpec, TankSpec, WaterModel};
+use wane::tank::{ProducedSpec, TankSpec, Trend, TrendOver, WaterModel, WaterSpec, WaterTrend};
 use wane::tubing::{
     ChokeMethod, ChokeSpec, ChokeTest, Discharge, RestrictionSpec, TubingMethod, TubingSection, TubingSpec,
 };
 use wane::units::UnitSystem;
-use wane::well::{FlowingSurvey, LineRate, LineSpec, ScreenSpec, SurveyPoint, WellSpec};
+use wane::well::{FlowingSurvey, LineRate, LineSpec, MakesSpec, ScreenSpec, SurveyPoint, WellSpec};
 
 const FULL: &str = include_str!("data/full.toml");
 
@@ -101,7 +101,15 @@ fn calendar_fluid_and_tank_arrive() {
             aquifer_stb: 0.0,
             measured_pressure_psia: Some(2480.0),
         }),
-        water_model: WaterModel::Average,
+        water_model: WaterModel::Trend,
+        water: WaterSpec {
+            contacted_fraction: 0.55,
+            trend: Some(WaterTrend {
+                over: TrendOver::Oil,
+                water_oil_ratio: true,
+                curve: Trend::new(vec![(0.0, 0.0), (1.5e6, 0.02), (4.0e6, 0.9)]).unwrap(),
+            }),
+        },
         relative_permeability: CoreySpec {
             critical_gas: 0.03,
             residual_oil_to_gas: 0.21,
@@ -130,6 +138,7 @@ fn injectors_arrive() {
         bottomhole_limit_psia: Some(4400.0),
         injectivity: Some(9.0),
         to_gas_cap: false,
+        response_days: 45.0,
     };
     let gas = InjectorSpec {
         name: "G".to_owned(),
@@ -142,6 +151,7 @@ fn injectors_arrive() {
         bottomhole_limit_psia: None,
         injectivity: None,
         to_gas_cap: false,
+        response_days: 0.0,
     };
     assert_eq!(resolve().injectors, [water, gas]);
 }
@@ -195,6 +205,7 @@ fn the_first_well_arrives() {
         minimum_rate_stb_d: Some(45.0),
         maximum_water_cut: Some(0.87),
         maximum_gor_scf_stb: Some(4200.0),
+        makes: MakesSpec { breakthrough_delay: 1.4, ..MakesSpec::default() },
         screens: ScreenSpec {
             heading_margin: 0.25,
             maximum_velocity_ft_s: Some(60.0),
@@ -265,6 +276,12 @@ fn the_other_wells_have_their_defaults_and_methods() {
     let fall_ft = 6100.0 / (std::f64::consts::PI / 3.0) * 60.0_f64.to_radians().sin();
     assert_eq!(b.tubing.survey[1], (1000.0, 1000.0));
     assert!((b.tubing.survey[2].1 - 1000.0 - fall_ft).abs() < 1e-9, "{:?}", b.tubing.survey);
+    let makes = MakesSpec {
+        breakthrough_delay: 1.0,
+        water_cut: Some(Trend::new(vec![(0.0, 0.02), (3e5, 0.4)]).unwrap()),
+        gor: Some(Trend::new(vec![(0.0, 530.0), (3e5, 800.0)]).unwrap()),
+    };
+    assert_eq!((&b.makes, &c.makes, &d.makes), (&makes, &MakesSpec::default(), &MakesSpec::default()));
     let degf: Vec<f64> = b.tubing.temperatures.iter().map(|point| point.1).collect();
     assert_eq!((b.tubing.temperatures[0].0, b.tubing.temperatures[1].0), (0.0, 5000.0));
     assert!((degf[0] - 99.0).abs() < 1e-12 && (degf[1] - 158.0).abs() < 1e-12, "{degf:?}");
@@ -340,6 +357,8 @@ fn every_word_of_a_choice_is_understood() {
     assert_eq!(with("well.A.tubing.method=hasan-kabir").field.wells[0].tubing.method, TubingMethod::HasanKabir);
     assert_eq!(with("well.A.inflow.future=pressure").field.wells[0].inflow.future, FutureRule::Pressure);
     assert_eq!(with("well.A.inflow.basis=liquid").field.wells[0].inflow.basis, RateBasis::Liquid);
+    assert_eq!(with("tank.water.model=displacement").field.tank.water_model, WaterModel::Displacement);
+    assert!(!with("tank.water.trend_of=water-cut").field.tank.water.trend.unwrap().water_oil_ratio);
     assert_eq!(with("tank.water.model=connate").field.tank.water_model, WaterModel::Connate);
 }
 

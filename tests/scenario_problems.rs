@@ -188,13 +188,24 @@ const CASES: &[Case] = &[
             "hasan-kabir, drift-flux, ansari, hagedorn-brown, beggs-brill, mukherjee-brill, gray, no-slip",
         ],
     ),
-    ("model = \"average\"", "model = «\"displacement\"»", &["`displacement` is not there yet", "connate, average"]),
-    ("[[well]]", "«[well]»", &["`well` is a table, not a list of tables", "two brackets"]),
+    ("model = \"average\"", "model = «\"displacment\"»", &["did you mean \"displacement\"?"]),
+    ("model = \"average\"", "model = «\"trend\"»", &["has no table", "`trend` is expected beside it"]),
     (
-        "[tank.water]\nmodel = \"average\"",
-        "",
-        &["`tank.water.model` does not say", "\"average\"", "\"displacement\"", "later version"],
+        "model = \"average\"",
+        "model = \"trend\"\ntrend = «[[0.4, 0.0], [0.4, 0.6]]»",
+        &["the first members of `tank.water.trend` do not rise"],
     ),
+    (
+        "model = \"average\"",
+        "model = \"trend\"\ntrend = [[0.0, 0.0], [0.4, «60.0»]]",
+        &["`water cut` is too large", "at most 0.9999"],
+    ),
+    (
+        "model = \"average\"",
+        "model = \"displacement\"\ncontacted_fraction = «1.0»",
+        &["`tank.water.contacted_fraction` is too large", "at most 0.95"],
+    ),
+    ("[[well]]", "«[well]»", &["`well` is a table, not a list of tables", "two brackets"]),
     // Impossible together.
     (
         "bubble_point = \"2650 psia\"",
@@ -528,6 +539,7 @@ fn every_key_of_the_list_is_really_read() {
                 problem.message == format!("a point of `{}` is a pair", key.path)
             }
             "compaction" => problem.message == "a point of the compaction table is a pair",
+            "trend" | "water_trend" | "gor_trend" => problem.message == format!("a point of `{}` is a pair", key.path),
             "survey" => problem.message == "a point of a survey is a pair",
             "points" => problem.message == "a point of a flowing survey is a depth and a pressure",
             "temperature" if path.contains("tubing") => problem.message.contains("a point of a table of temperatures"),

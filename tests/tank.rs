@@ -7,7 +7,7 @@ use common::{case, near, numbers, rows};
 use std::sync::Arc;
 use wane::fluid::{FluidTable, FluidTableRow, ReservoirFluid, TableWater};
 use wane::rock::{CoreySpec, RelPermTable, RelativePermeability};
-use wane::tank::{Cumulatives, ProducedSpec, Tank, TankSpec, TankState, WaterModel};
+use wane::tank::{Cumulatives, ProducedSpec, Tank, TankSpec, TankState, WaterModel, WaterSpec};
 
 fn tank_spec(oil_stb: f64, pressure_psia: f64, connate_water: f64) -> TankSpec {
     TankSpec {
@@ -22,6 +22,7 @@ fn tank_spec(oil_stb: f64, pressure_psia: f64, connate_water: f64) -> TankSpec {
         datum_tvd_ft: None,
         produced: None,
         water_model: WaterModel::Connate,
+        water: WaterSpec::default(),
         relative_permeability: CoreySpec::default(),
     }
 }
@@ -364,6 +365,8 @@ fn voidage_of_the_water_injection_exercise() {
         free_gor_scf_stb: 0.0,
         water_oil_ratio: 0.0,
         oil_mobility_1_cp: 1.0,
+        flood: None,
+        trend_place: 0.0,
     };
     let q = i("q_oil_stb_d");
     near(

@@ -165,6 +165,15 @@ fn wells(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
         ("peak gas-oil ratio", Side::Right),
     ];
     s.table(&header, &rows);
+    for well in &forecast.wells {
+        if let Some(days) = forecast.water_breakthrough(&well.name) {
+            s.paragraph(
+                2,
+                2,
+                &format!("{}: water breakthrough in {}.", well.name, month(date_at(forecast.start, days))),
+            );
+        }
+    }
 }
 
 fn tank(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {

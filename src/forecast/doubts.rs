@@ -136,7 +136,23 @@ fn fluid_and_tank(field: &Field, forecast: &Forecast, doubts: &mut Vec<Doubt>) {
             "tank",
             "water is injected but the water model \"connate\" returns none of it".to_owned(),
             "the scenario chose it: support without water return flatters the wells",
-            "choose the model \"average\" for anything but a bound on the best case",
+            "choose the model \"displacement\" for anything but a bound on the best case",
+        ));
+    } else if tank.water_model == WaterModel::Displacement {
+        doubts.push(doubt(
+            DoubtKind::NotModelled,
+            "tank",
+            format!("injected water comes as one front through {:.0} % of the oil zone", 100.0 * tank.water.contacted_fraction),
+            "layers and unequal distances spread a front: real water comes earlier and rises more slowly, and no measured water cut has fixed the contacted fraction",
+            "run cases with other contacted fractions; give wells nearer to or farther from the injector a breakthrough_delay",
+        ));
+    } else if tank.water_model == WaterModel::Trend {
+        doubts.push(doubt(
+            DoubtKind::NotModelled,
+            "tank",
+            "the water cut follows the table of the scenario".to_owned(),
+            "a table does not feel how much is injected or withdrawn",
+            "compare a second case with the model \"displacement\"",
         ));
     } else if water_injected {
         doubts.push(doubt(
@@ -264,7 +280,28 @@ fn injector(field: &Field, forecast: &Forecast, seen: &Seen, i: usize, doubts: &
     }
 }
 
+/// Expansion of connate water and rock that may come out as water, over the connate water.
+const CONNATE_EXPANSION: f64 = 0.02;
+
+/// No more water comes out than went in, beside the expansion of what was there.
+fn water_made(field: &Field, forecast: &Forecast, doubts: &mut Vec<Doubt>) {
+    let before = field.spec.tank.produced.unwrap_or_default();
+    let made_stb = before.water_stb + forecast.tank.last().map_or(0.0, |t| t.water_cum_stb);
+    let injected_stb = before.injected_water_stb + forecast.tank.iter().map(|t| t.injected_water_stb).sum::<f64>();
+    let room_stb = CONNATE_EXPANSION * field.tank().initial().water_stb;
+    if made_stb > injected_stb + room_stb {
+        doubts.push(doubt(
+            DoubtKind::Sanity,
+            "tank",
+            format!("the wells make {made_stb:.0} STB of water, but only {injected_stb:.0} STB came in"),
+            "a table of water cuts or a water_factor asks for water that is not there; or an aquifer is not stated",
+            "state what brings the water, or lower the table",
+        ));
+    }
+}
+
 fn sanity(field: &Field, forecast: &Forecast, doubts: &mut Vec<Doubt>) {
+    water_made(field, forecast, doubts);
     let recovery = forecast
         .tank
         .last()

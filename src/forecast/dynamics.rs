@@ -6,7 +6,7 @@ use super::modes::{Layout, Memory, Mode, Modes, REGAIN_PSI, Spot, Valley, Watch}
 use super::placement::place_on;
 use super::{InjectedFluid, InjectionControl};
 use crate::roots::brent;
-use crate::tank::{ClosureError, Cumulatives, TankState};
+use crate::tank::{ClosureError, Cumulatives, TankState, ratio_of_cut};
 use crate::well::{LOOK_TO, WellNow, follow_top, oil_gradient_psi_ft, right_crossing, top_near};
 
 /// Flow margin at which a dead well may flow again, psi.
@@ -19,6 +19,9 @@ const VALLEY_PSI: f64 = 0.1;
 const CLEAR_MARGIN_PSI: f64 = 25.0;
 /// Relative slack of an injection limit.
 const LIMIT_SLACK: f64 = 1e-6;
+/// Time over which the wells feel that more or less of what they take is replaced by water, days. It keeps a well's rate and its water cut
+/// from hanging on each other at one instant.
+const SPLIT_LAG_DAYS: f64 = 30.0;
 /// Slack in psi of an injector shut in by its bottom-hole limit.
 const SHUT_SLACK_PSI: f64 = 1e-3;
 
@@ -49,6 +52,9 @@ impl<'a> Dynamics<'a> {
                 }
                 Mode::Target | Mode::Floor => watches.push(Watch::CapLost(w)),
                 Mode::Line { .. } => watches.extend([Watch::MarginGone(w), Watch::RightHump(w), Watch::Valley(w)]),
+            }
+            if !modes.broken_through[w] {
+                watches.push(Watch::Breakthrough(w));
             }
             if mode.flows() {
                 if spec.target_rate_stb_d.is_some() && *mode != Mode::Target {
@@ -109,8 +115,17 @@ impl<'a> Dynamics<'a> {
     pub fn tank(&self, y: &[f64]) -> Result<TankState, ClosureError> {
         self.memory.closures.set(self.memory.closures.get() + 1);
         let tank = &self.setup.tank;
-        let state = tank.state(&tank.inventory(&self.cumulatives(y)), self.memory.pressure_psia.get())?;
+        let mut state = tank.state_after(&self.cumulatives(y), self.memory.pressure_psia.get())?;
         self.memory.pressure_psia.set(state.pressure_psia);
+        let layout = self.layout;
+        if let (Some(flood), true) = (state.flood, layout.flood) {
+            let flood = flood.replacing(y[layout.replaced()]);
+            state.water_oil_ratio = flood.water_oil_ratio_of_tank();
+            state.flood = Some(flood);
+        }
+        for (w, oil_stb) in self.memory.oil_stb.borrow_mut().iter_mut().enumerate() {
+            *oil_stb = y[layout.oil(w)] * tank.initial().oil_stb;
+        }
         self.settle_lines(&state);
         Ok(state)
     }
@@ -121,7 +136,36 @@ impl<'a> Dynamics<'a> {
         let gradient = spec.tank.datum_tvd_ft.map_or(0.0, |_| {
             oil_gradient_psi_ft(&self.field.fluid, tank.pressure_psia, spec.tank.temperature_degf, tank.rs_scf_stb)
         });
-        self.setup.wells[w].now(&self.field.fluid, tank, gradient, &self.memory.gauge).against(self.line(w))
+        let offer = self.offer(w, tank);
+        let mut now = self.setup.wells[w].now(&self.field.fluid, &offer, gradient, &self.memory.gauge);
+        if let Some(gor) = &self.setup.wells[w].spec.makes.gor {
+            now.gor_scf_stb = gor.at(self.memory.oil_stb.borrow()[w]);
+        }
+        now.against(self.line(w))
+    }
+
+    /// The tank as one well sees it: the flood's water once it has been reached, or its own measured water.
+    pub fn offer(&self, w: usize, tank: &TankState) -> TankState {
+        let makes = &self.setup.wells[w].spec.makes;
+        let dry = !self.modes.broken_through[w] && self.before_breakthrough(w, tank).is_some();
+        let water_oil_ratio = match (&makes.water_cut, &tank.flood) {
+            // So also in a trial step beyond the first water: the step is smooth.
+            _ if dry => 0.0,
+            (Some(trend), _) => ratio_of_cut(trend.at(self.memory.oil_stb.borrow()[w])),
+            (None, Some(flood)) => flood.water_oil_ratio(makes.breakthrough_delay),
+            (None, None) => tank.water_oil_ratio,
+        };
+        TankState { water_oil_ratio, ..*tank }
+    }
+
+    /// How far a well is from its first injected or tabulated water: positive before. `None` where the water model has no such instant.
+    pub fn before_breakthrough(&self, w: usize, tank: &TankState) -> Option<f64> {
+        let makes = &self.setup.wells[w].spec.makes;
+        match (&makes.water_cut, &tank.flood) {
+            (Some(trend), _) => Some(trend.before_water(self.memory.oil_stb.borrow()[w])),
+            (None, Some(flood)) => Some(flood.before_breakthrough(makes.breakthrough_delay)),
+            (None, None) => self.setup.tank.before_trend(tank),
+        }
     }
 
     /// The rate that the flowing-pressure floor allows, STB/d.
@@ -345,6 +389,7 @@ impl<'a> Dynamics<'a> {
                 let now = self.well_now(w, tank);
                 self.rate(w, &now) - spec(w).minimum_rate_stb_d.unwrap_or(0.0)
             }
+            Watch::Breakthrough(w) => self.before_breakthrough(w, tank).unwrap_or(1.0),
             Watch::WaterCut(w) => spec(w).maximum_water_cut.unwrap_or(1.0) - self.well_now(w, tank).water_cut,
             Watch::GasOilRatio(w) => {
                 let limit = spec(w).maximum_gor_scf_stb.unwrap_or(f64::INFINITY);
@@ -430,7 +475,7 @@ impl Problem for Dynamics<'_> {
 
     fn derivative(&self, t_days: f64, y: &[f64], dy: &mut [f64]) -> Result<(), ClosureError> {
         let tank = self.tank(y)?;
-        let (layout, initial) = (self.layout(), self.setup.tank.initial());
+        let (layout, initial) = (self.layout, self.setup.tank.initial());
         dy.fill(0.0);
         let mut withdrawal = 0.0;
         for w in 0..layout.wells {
@@ -454,14 +499,29 @@ impl Problem for Dynamics<'_> {
                 },
             };
             let supporting = rate * injector.effective_fraction;
-            dy[total] += supporting / scale;
-            net -= supporting * injected_fvf(injector.fluid, &tank);
+            let arriving = if layout.transit && injector.lags() {
+                let arriving = y[layout.in_transit(i)] / injector.response_days;
+                dy[layout.in_transit(i)] = supporting / scale - arriving;
+                arriving
+            } else {
+                supporting / scale
+            };
+            dy[total] += arriving;
+            net -= arriving * scale * injected_fvf(injector.fluid, &tank);
         }
         if let Some(at) = layout.aquifer() {
             let (p, cumulatives) = (tank.pressure_psia, self.cumulatives(y));
             let held = &self.setup.tank;
             let inventory = held.inventory(&cumulatives);
             dy[at] = held.aquifer_rate_stb_d(t_days, &inventory, cumulatives.aquifer_stb, p, net) / initial.oil_stb;
+        }
+        if layout.flood && withdrawal > 0.0 {
+            let influx = layout.aquifer().map_or(0.0, |at| dy[at]);
+            let held = &self.setup.tank;
+            let pot_rb_d = net.max(0.0) * held.pot_share(&held.inventory(&self.cumulatives(y)), tank.pressure_psia);
+            let inflow_rb_d = (dy[layout.effective_water()] + influx) * initial.oil_stb * tank.bw_rb_stb + pot_rb_d;
+            let part = (inflow_rb_d / withdrawal).clamp(0.0, 1.0);
+            dy[layout.replaced()] = (part - y[layout.replaced()]) / SPLIT_LAG_DAYS;
         }
         Ok(())
     }

@@ -5,7 +5,7 @@ use super::{Change, FieldSpec, InjectedFluid, InjectorSpec, Tolerance};
 use crate::fault::Fault;
 use crate::fluid::BlackOil;
 use crate::rock::RelativePermeability;
-use crate::tank::{ClosureError, Tank, TankSpec, TankState};
+use crate::tank::{ClosureError, Cumulatives, Tank, TankSpec, TankState, WaterModel};
 use crate::well::{LineSpec, Surroundings, WellModel};
 use std::sync::Arc;
 
@@ -97,7 +97,7 @@ impl Field {
         let rel_perm = RelativePermeability::corey(&spec.tank.relative_permeability, spec.tank.connate_water);
         let tank = Tank::new(&spec.tank, Arc::new(fluid.clone()), rel_perm, spec.fluid.solution_gor_scf_stb)
             .map_err(|f| RunError::Input(under(f, "tank")))?;
-        let start = tank.state(&tank.start(), p_i).map_err(|error| match error {
+        let start = tank.state_after(&Cumulatives::default(), p_i).map_err(|error| match error {
             ClosureError::NoRoot { .. } | ClosureError::AboveRange { .. } if spec.tank.produced.is_some() => {
                 RunError::Input(vec![Fault::new("tank.produced", format!("with these volumes {error}"))])
             }
@@ -139,20 +139,6 @@ impl Field {
         &self.setup.tank
     }
 
-    /// What the state vector holds.
-    pub(super) fn layout(&self) -> Layout {
-        let changed = self.spec.changes.iter().filter_map(|c| match &c.change {
-            Change::Injector(_, injector) => Some(injector),
-            _ => None,
-        });
-        Layout {
-            wells: self.setup.wells.len(),
-            injectors: self.setup.injectors.len(),
-            aquifer: self.tank().aquifer().is_some_and(|aquifer| !aquifer.is_pot()),
-            cap_gas: self.spec.injectors.iter().chain(changed).any(to_cap),
-        }
-    }
-
     /// What the wells are prepared against.
     pub fn surroundings(&self) -> Surroundings<'_> {
         surroundings(&self.spec, &self.fluid, &self.setup.tank, &self.start)
@@ -179,6 +165,27 @@ impl Field {
         self.spec.changes.iter().enumerate().flat_map(check).collect()
     }
 
+    /// Where each quantity stands in the state vector. It holds for the whole run, so that all dated events count.
+    pub(super) fn layout(&self) -> Layout {
+        let spec = &self.spec;
+        let tanks = spec.changes.iter().filter_map(|c| match &c.change {
+            Change::Tank(tank) => Some(tank.as_ref()),
+            _ => None,
+        });
+        let injectors = spec.changes.iter().filter_map(|c| match &c.change {
+            Change::Injector(_, injector) => Some(injector),
+            _ => None,
+        });
+        Layout {
+            wells: spec.wells.len(),
+            injectors: spec.injectors.len(),
+            aquifer: self.tank().aquifer().is_some_and(|aquifer| !aquifer.is_pot()),
+            cap_gas: spec.injectors.iter().chain(injectors.clone()).any(to_cap),
+            flood: std::iter::once(&spec.tank).chain(tanks).any(|t| t.water_model == WaterModel::Displacement),
+            transit: spec.injectors.iter().chain(injectors).any(|i| i.lags()),
+        }
+    }
+
     /// The setup after a dated event.
     pub(super) fn changed(&self, setup: &Setup, change: &Change) -> Result<Setup, RunError> {
         let mut next = setup.clone();
@@ -198,7 +205,7 @@ impl Field {
                 next.lines[*i] = spec.clone();
             }
             Change::Injector(i, spec) => next.injectors[*i] = spec.clone(),
-            Change::Tank(spec) => next.tank.set_flow(flow(spec), spec.water_model),
+            Change::Tank(spec) => next.tank.set_flow(flow(spec), spec.water_model, &spec.water),
         }
         Ok(next)
     }

@@ -42,6 +42,7 @@ impl Modes {
         Self {
             wells: vec![Mode::Waiting; wells],
             watch_return: vec![false; wells],
+            broken_through: vec![false; wells],
             injecting: vec![false; injectors],
             limited: vec![false; injectors],
             saturated,
@@ -77,6 +78,8 @@ pub(super) enum Watch {
     RightHump(usize),
     MinimumRate(usize),
     WaterCut(usize),
+    /// The injected water's front reaches a well: its water cut jumps.
+    Breakthrough(usize),
     GasOilRatio(usize),
     FlowAgain(usize),
     BubblePoint,
@@ -112,6 +115,8 @@ pub(super) struct Modes {
     pub wells: Vec<Mode>,
     /// Dead wells whose return is still to be noted.
     pub watch_return: Vec<bool>,
+    /// Wells that the front has reached.
+    pub broken_through: Vec<bool>,
     pub injecting: Vec<bool>,
     pub limited: Vec<bool>,
     pub saturated: bool,
@@ -196,11 +201,15 @@ pub(super) struct Layout {
     pub aquifer: bool,
     /// Whether gas may be injected into the cap.
     pub cap_gas: bool,
+    /// Whether the part of the withdrawal that water replaces is kept.
+    pub flood: bool,
+    /// Whether volumes on their way from the injectors are kept.
+    pub transit: bool,
 }
 
 impl Layout {
     pub fn len(self) -> usize {
-        3 * self.wells + 2 * self.injectors + 2 + usize::from(self.aquifer) + usize::from(self.cap_gas)
+        self.after() + usize::from(self.aquifer) + usize::from(self.cap_gas)
     }
     pub fn oil(self, w: usize) -> usize {
         w
@@ -223,11 +232,23 @@ impl Layout {
     pub fn effective_gas(self) -> usize {
         3 * self.wells + 2 * self.injectors + 1
     }
+    /// Injected volume that has yet to reach the tank; only where `transit`.
+    pub fn in_transit(self, i: usize) -> usize {
+        3 * self.wells + 2 * self.injectors + 2 + i
+    }
+    /// Part of the withdrawal that water replaces; only where `flood`.
+    pub fn replaced(self) -> usize {
+        3 * self.wells + 2 * self.injectors + 2 + if self.transit { self.injectors } else { 0 }
+    }
+    /// Where the optional parts of the tank begin.
+    fn after(self) -> usize {
+        self.replaced() + usize::from(self.flood)
+    }
     pub fn aquifer(self) -> Option<usize> {
-        self.aquifer.then_some(3 * self.wells + 2 * self.injectors + 2)
+        self.aquifer.then_some(self.after())
     }
     pub fn cap_gas(self) -> Option<usize> {
-        self.cap_gas.then_some(3 * self.wells + 2 * self.injectors + 2 + usize::from(self.aquifer))
+        self.cap_gas.then_some(self.after() + usize::from(self.aquifer))
     }
 }
 
@@ -240,6 +261,8 @@ pub(super) struct Memory {
     pub into_line: RefCell<Vec<f64>>,
     /// How much less each well would bring per psi more in its line.
     pub gives_way: RefCell<Vec<f64>>,
+    /// What each well has made at the state looked at last, STB.
+    pub oil_stb: RefCell<Vec<f64>>,
     pub gauge: Gauge,
     /// Height to which crossings are resolved, psi.
     pub crossing_psi: Cell<f64>,

@@ -80,6 +80,8 @@ pub enum EventKind {
     BubblePointCrossedUp,
     /// Free gas in the oil zone reached its critical saturation and begins to flow.
     FreeGasMobile,
+    /// Injected water reached a well.
+    WaterBreakthrough,
     /// The right-most crossing disappeared while another stayed.
     RateJump,
     /// A flowing well came near to or left of the minimum of its tubing curve, or where its gas hardly lifts the liquid.
@@ -450,6 +452,13 @@ pub struct Work {
     pub closure_solves: u64,
     /// Integrator segments (restarts).
     pub segments: u64,
+}
+
+impl Forecast {
+    /// The day on which injected or tabulated water reached a well, as days from the start.
+    pub fn water_breakthrough(&self, well: &str) -> Option<f64> {
+        self.events.iter().find(|e| e.kind == EventKind::WaterBreakthrough && e.name == well).map(|e| e.days)
+    }
 }
 
 /// A finished forecast.

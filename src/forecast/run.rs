@@ -93,12 +93,17 @@ impl<'a> Run<'a> {
         *memory.spots.borrow_mut() = vec![Spot::default(); wells];
         *memory.into_line.borrow_mut() = vec![0.0; wells];
         *memory.gives_way.borrow_mut() = vec![0.0; wells];
+        *memory.oil_stb.borrow_mut() = vec![0.0; wells];
         // Some hundred times finer than the integrator's tolerance needs.
         memory.crossing_psi.set(match field.spec.tolerance {
             Tolerance::Normal => 1e-5,
             Tolerance::Tight | Tolerance::Reference => 1e-7,
         });
         let layout = field.layout();
+        let mut y = State::zeros(layout.len());
+        if layout.flood {
+            y[layout.replaced()] = field.tank().replaced_before(&field.start);
+        }
         let (rtol, atol) = match field.spec.tolerance {
             Tolerance::Normal => (2e-7, 2e-9),
             Tolerance::Tight => (2e-9, 2e-11),
@@ -117,7 +122,7 @@ impl<'a> Run<'a> {
                 field.start.gas_saturation > field.tank().relative_permeability().critical_gas(),
             ),
             t: 0.0,
-            y: State::zeros(layout.len()),
+            y,
             trace: Trace {
                 pieces: Vec::new(),
                 events: Vec::new(),
@@ -182,6 +187,7 @@ impl<'a> Run<'a> {
 
     fn go(mut self) -> Result<Trace, RunError> {
         let marks = self.marks();
+        self.note_breakthroughs(None, false)?;
         self.scheduled()?;
         let end = marks.last().copied().unwrap_or(0.0);
         for mark in marks {
@@ -317,6 +323,7 @@ impl<'a> Run<'a> {
                 named[w] |= line.is_some() && *of == line && (all || self.modes.wells[w].flows());
             }
         }
+        self.note_breakthroughs(None, true)?;
         for i in 0..self.setup.injectors.len() {
             let spec = &self.setup.injectors[i];
             let on = spec.start.is_none_or(|d| self.day(d) <= self.t) && spec.end.is_none_or(|d| self.t < self.day(d));

@@ -69,6 +69,15 @@ pub struct InjectorSpec {
     pub injectivity: Option<f64>,
     /// Whether its gas goes to the gas cap, apart from the oil zone.
     pub to_gas_cap: bool,
+    /// Mean time from injection to the tank, days: the injected volume reaches it with a first-order lag. Below one day: at once.
+    pub response_days: f64,
+}
+
+impl InjectorSpec {
+    /// Whether the tank feels it later. A lag of less than a day is none: it would only make the equations stiff.
+    pub fn lags(&self) -> bool {
+        self.response_days >= 1.0
+    }
 }
 
 /// What a dated event changes: the whole new settings of what it names.

@@ -6,12 +6,19 @@ use super::field::RunError;
 use super::modes::{Mode, REGAIN_PSI, Spot, Watch};
 use super::placement::{hump_at, placement, stable_below, why_apart};
 use super::run::{MOST_SWITCHES_AT_ONCE, Run};
-use super::{EventKind, FlowEnd, StopReason};
+use super::{EventKind, EventRecord, FlowEnd, StopReason};
 use crate::tank::TankState;
 use crate::well::top_near;
 
 /// Height of a hump that has come down to zero, psi: room for rounding.
 pub(super) const GONE_PSI: f64 = 1e-3;
+
+fn end_note(end: &FlowEnd) -> String {
+    format!(
+        "{:.0} STB/d liquid, {:.0} STB/d oil, tank at {:.0} psia",
+        end.liquid_rate_stb_d, end.oil_rate_stb_d, end.reservoir_pressure_psia
+    )
+}
 
 impl Run<'_> {
     /// Ends a well's natural flow.
@@ -20,11 +27,7 @@ impl Run<'_> {
         if self.modes.wells[w].flows() {
             let end = self.flow_end(w, reason)?;
             self.trace.flow_ends[w] = Some(end);
-            let note = format!(
-                "{:.0} STB/d liquid, {:.0} STB/d oil, tank at {:.0} psia",
-                end.liquid_rate_stb_d, end.oil_rate_stb_d, end.reservoir_pressure_psia
-            );
-            self.well_event(w, EventKind::EndOfNaturalFlow(reason), note);
+            self.well_event(w, EventKind::EndOfNaturalFlow(reason), end_note(&end));
         }
         self.modes.wells[w] = Mode::Stopped(reason);
         self.modes.watch_return[w] = reason.may_pass();
@@ -157,6 +160,7 @@ impl Run<'_> {
                 self.note_jump(w, before);
             }
             Watch::MinimumRate(w) => self.stop(w, StopReason::RateLimit)?,
+            Watch::Breakthrough(w) => self.break_through(w)?,
             Watch::WaterCut(w) => self.stop(w, StopReason::WaterCutLimit)?,
             Watch::GasOilRatio(w) => self.stop(w, StopReason::GasOilRatioLimit)?,
             Watch::FlowAgain(w) => {
@@ -175,6 +179,63 @@ impl Run<'_> {
             }
         }
         Ok(())
+    }
+
+    /// Marks the wells that the front has reached, which are returned; `seen` was found by its watch.
+    pub(super) fn note_breakthroughs(&mut self, seen: Option<usize>, with_event: bool) -> Result<Vec<usize>, RunError> {
+        // Wells alike are reached at one instant: rounding does not set them apart.
+        const TOGETHER: f64 = 1e-9;
+        let tank = self.tank_now()?;
+        let reached: Vec<usize> = {
+            let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
+            let new = |w: &usize| !self.modes.broken_through[*w];
+            let margin = |w: usize| dynamics.before_breakthrough(w, &tank);
+            (0..self.modes.wells.len())
+                .filter(new)
+                .filter(|&w| seen == Some(w) || margin(w).is_some_and(|m| m <= TOGETHER))
+                .collect()
+        };
+        for &w in &reached {
+            self.modes.broken_through[w] = true;
+            if with_event {
+                let cut = {
+                    let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
+                    dynamics.well_now(w, &tank).water_cut
+                };
+                let note = format!("water cut {:.1} %, tank at {:.0} psia", 100.0 * cut, tank.pressure_psia);
+                self.well_event(w, EventKind::WaterBreakthrough, note);
+            }
+        }
+        Ok(reached)
+    }
+
+    /// The front reaches wells: their water cut jumps, so that they, and those on a line with them, are looked at from scratch.
+    fn break_through(&mut self, seen: usize) -> Result<(), RunError> {
+        let flowing: Vec<Option<FlowEnd>> = (0..self.modes.wells.len())
+            .map(|w| self.modes.wells[w].flows().then(|| self.flow_end(w, StopReason::NoCrossing)).transpose())
+            .collect::<Result<_, _>>()?;
+        let reached = self.note_breakthroughs(Some(seen), true)?;
+        let lines: Vec<usize> = reached.iter().filter_map(|&w| self.setup.line_of[w]).collect();
+        for w in 0..self.modes.wells.len() {
+            let concerned = reached.contains(&w) || self.setup.line_of[w].is_some_and(|l| lines.contains(&l));
+            if concerned && self.modes.wells[w].flows() {
+                self.place(w, false)?;
+                self.ended_from(w, flowing[w]);
+            }
+        }
+        Ok(())
+    }
+
+    /// The last rates of a well that a jump ended are those from which it jumped.
+    fn ended_from(&mut self, w: usize, before: Option<FlowEnd>) {
+        let (Some(before), false) = (before, self.modes.wells[w].flows()) else { return };
+        let Some(end) = self.trace.flow_ends[w].as_mut() else { return };
+        (end.liquid_rate_stb_d, end.oil_rate_stb_d) = (before.liquid_rate_stb_d, before.oil_rate_stb_d);
+        let (note, name) = (end_note(end), &self.setup.wells[w].spec.name);
+        let is_end = |e: &&mut EventRecord| matches!(e.kind, EventKind::EndOfNaturalFlow(_)) && e.name == *name;
+        if let Some(event) = self.trace.events.iter_mut().rev().find(is_end) {
+            event.note = note;
+        }
     }
 
     fn note_jump(&mut self, w: usize, before: Mode) {

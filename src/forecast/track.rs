@@ -92,7 +92,8 @@ fn well_track(field: &Field, run: &Trace, w: usize) -> Result<WellTrack, RunErro
         for i in 0..=steps as u32 {
             let days = from + (to - from) * f64::from(i) / steps;
             let y = piece.stretch.at(days);
-            states.push(dynamics.tank(y.as_slice()).map_err(too_much(days))?);
+            let state = dynamics.tank(y.as_slice()).map_err(too_much(days))?;
+            states.push(dynamics.offer(w, &state));
             taken = dynamics.cumulatives(y.as_slice());
         }
     }
@@ -163,7 +164,7 @@ fn depleted(tank: &Tank, mut taken: Cumulatives, last: &TankState) -> Vec<TankSt
         ..*from
     };
     for _ in 0..MOST_STEPS {
-        let state = |taken: &Cumulatives| tank.state(&tank.inventory(taken), now.pressure_psia);
+        let state = |taken: &Cumulatives| tank.state_after(taken, now.pressure_psia);
         let Ok(middle) = state(&add(&taken, &now, 0.5 * step_stb)) else { break };
         let next_taken = add(&taken, &middle, step_stb);
         let Ok(next) = state(&next_taken) else { break };

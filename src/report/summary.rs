@@ -133,6 +133,8 @@ fn well(forecast: &Forecast, well: &WellResult, units: &Units) -> Json {
         plain("name", well.name.as_str()),
         plain("natural_flow_end", end),
         plain("flowing_at_end", Json::Bool(well.flowing_at_end)),
+        plain("water_breakthrough", day_or_null(forecast, forecast.water_breakthrough(&well.name))),
+        plain("water_breakthrough_days", forecast.water_breakthrough(&well.name)),
         plain("plateau_end", plateau_end),
         plain("plateau_end_days", well.plateau_end),
         plain("restart_until", day_or_null(forecast, well.restart_until)),

@@ -11,6 +11,7 @@ pub fn event_text(kind: EventKind) -> &'static str {
         EventKind::BubblePointCrossedDown => "bubble point crossed downwards",
         EventKind::BubblePointCrossedUp => "bubble point crossed upwards",
         EventKind::FreeGasMobile => "free gas begins to flow",
+        EventKind::WaterBreakthrough => "water breakthrough",
         EventKind::RateJump => "rate jump",
         EventKind::MayHead => "may head",
         EventKind::FloorReached => "minimum flowing pressure reached",

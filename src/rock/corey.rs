@@ -10,6 +10,8 @@
 //! # Source
 //! Corey (1954), Producers Monthly; end points and exponents as customary since Brooks and Corey (1964).
 
+use super::FractionalFlow;
+
 /// End points and exponents of Corey's curves; saturations and relative permeabilities are fractions.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct CoreySpec {
@@ -98,6 +100,15 @@ impl Corey {
         } else {
             (water * self.krow(so) + gas * self.krog(so)) / (water + gas)
         }
+    }
+
+    pub(super) fn displacement(&self, mu_o_cp: f64, mu_w_cp: f64) -> FractionalFlow {
+        let ratio = self.spec.water_end * mu_o_cp / (self.spec.oil_end * mu_w_cp);
+        FractionalFlow::new(ratio, self.spec.water_exponent, self.spec.oil_exponent)
+    }
+
+    pub(super) fn movable_to_water(&self) -> f64 {
+        self.oil_water_range
     }
 
     pub(super) fn critical_gas(&self) -> f64 {

@@ -1,9 +1,11 @@
 //! Relative permeability and compressibility of the rock.
 
 mod corey;
+mod fractional_flow;
 mod table;
 
 pub use corey::CoreySpec;
+pub use fractional_flow::{FractionalFlow, Front};
 pub use table::RelPermTable;
 
 /// Relative permeability curves, two-phase gas-oil and water-oil.
@@ -53,6 +55,22 @@ impl RelativePermeability {
         match self {
             Self::Corey(c) => c.kro(so, sg, sw),
             Self::Table(t) => t.krog(so),
+        }
+    }
+
+    /// Water displacing oil at connate water, with these viscosities, cp; `None` without a water curve.
+    pub fn displacement(&self, mu_o_cp: f64, mu_w_cp: f64) -> Option<FractionalFlow> {
+        match self {
+            Self::Corey(c) => Some(c.displacement(mu_o_cp, mu_w_cp)),
+            Self::Table(_) => None,
+        }
+    }
+
+    /// Part of the pore volume in which water takes the place of oil, `1 - Swc - Sorw`; `None` without a water curve.
+    pub fn movable_to_water(&self) -> Option<f64> {
+        match self {
+            Self::Corey(c) => Some(c.movable_to_water()),
+            Self::Table(_) => None,
         }
     }
 

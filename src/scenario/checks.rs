@@ -6,7 +6,7 @@ use crate::fault::Fault;
 use crate::fluid::FluidSpec;
 use crate::forecast::{InjectionControl, InjectorSpec, PeriodSpec};
 use crate::inflow::Coefficient;
-use crate::tank::TankSpec;
+use crate::tank::{TankSpec, WaterModel};
 use crate::well::WellSpec;
 use jiff::civil::Date;
 
@@ -103,6 +103,15 @@ pub(super) fn tank(tank: &TankSpec, fluid: &FluidSpec, atmospheric_pressure_psia
                 "connate water and residual oil to water leave no mobile oil",
             )
             .help(format!("{} + {} must be below 1", tank.connate_water, kr.residual_oil_to_water)),
+        );
+    }
+    if tank.water_model == WaterModel::Displacement && kr.oil_exponent.min(kr.water_exponent) < 1.0 {
+        out.push(
+            Fault::new(
+                "tank.relative_permeability.oil_exponent|tank.relative_permeability.water_exponent|tank.water.model",
+                "the water model \"displacement\" needs Corey exponents of at least 1",
+            )
+            .help("below 1 the fractional flow curve has no single front"),
         );
     }
     if let Some(produced) = &tank.produced {

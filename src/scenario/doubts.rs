@@ -76,6 +76,29 @@ pub fn data_doubts(scenario: &Scenario) -> Vec<Doubt> {
         out.extend(doubts_wells::well(well, field));
     }
     out.extend(injection(field));
+    if field.tank.water_model == WaterModel::Displacement && !scenario.states("tank.water.contacted_fraction") {
+        out.push(doubt(
+            DoubtKind::UnlikelyValue,
+            "tank",
+            format!(
+                "no contacted fraction is given: water is taken to sweep {} of the oil zone",
+                field.tank.water.contacted_fraction
+            ),
+            "no water cut has been matched yet",
+            "the date of breakthrough goes with it: state tank.water.contacted_fraction and run cases of 0.4 and 0.8",
+        ));
+    }
+    for well in &field.wells {
+        if well.makes.breakthrough_delay != 1.0 && field.tank.water_model != WaterModel::Displacement {
+            out.push(doubt(
+                DoubtKind::NotModelled,
+                &well.name,
+                "breakthrough_delay is given, but the water model has no front for it to act on",
+                "the water model is another than \"displacement\"",
+                "set tank.water.model = \"displacement\", or leave the delay out",
+            ));
+        }
+    }
     out
 }
 
@@ -238,7 +261,7 @@ fn injection(field: &FieldSpec) -> Vec<Doubt> {
                 about,
                 "water is injected, but the water model \"connate\" never lets it reach a well",
                 "chosen for an early forecast, before breakthrough",
-                "use the model \"average\" for anything after breakthrough",
+                "use the model \"displacement\" for anything after breakthrough",
             ));
         }
         match (injector.bottomhole_limit_psia, injector.injectivity) {

@@ -175,8 +175,8 @@ fn table_of(node: &mut Node) -> Option<&mut Table> {
 fn not_allowed(list: &str, one: &Override) -> Option<&'static str> {
     let first = one.path.first().map_or("", String::as_str);
     match list {
-        "tank" if first == "relative_permeability" || one.dotted() == "water.model" => None,
-        "tank" => Some("only relative_permeability.* and water.model of the tank can change"),
+        "tank" if first == "relative_permeability" || first == "water" => None,
+        "tank" => Some("only relative_permeability.* and water.* of the tank can change"),
         _ if first == "name" => Some("a name does not change"),
         _ if matches!(first, "start" | "end") => {
             Some("start and end are dates already: state them where it is defined")

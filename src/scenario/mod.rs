@@ -21,6 +21,7 @@ mod read_lab;
 mod read_line;
 mod read_onsets;
 mod read_tank;
+mod read_water;
 mod read_wells;
 mod reader;
 mod reader_words;

@@ -4,14 +4,14 @@ use super::problem::Problem;
 use super::read_aquifer;
 use super::read_lab;
 use super::read_onsets;
+use super::read_water;
 use super::read_wells::exactly_one;
 use super::reader::Reader;
-use super::schema::LATER_WATER_MODELS;
 use super::section::Section;
 use crate::fluid::FluidSpec;
 use crate::forecast::{Every, OnsetSpec, PeriodSpec, Tolerance};
 use crate::rock::CoreySpec;
-use crate::tank::{ProducedSpec, TankSpec, WaterModel};
+use crate::tank::{ProducedSpec, TankSpec};
 use crate::units::constants::DEGF_TO_DEGR;
 use crate::units::{Dimension, UnitSystem, parse};
 use jiff::civil::Date;
@@ -103,13 +103,14 @@ pub(super) fn fluid(reader: &mut Reader, root: &Section<'_>) -> (FluidSpec, Onse
     (spec, onsets)
 }
 
-/// The tank; `water_injected`: whether the scenario injects water, so that the water model must be stated.
+/// The tank; `water_injected`: whether the scenario injects water, so that water flows by displacement unless the scenario says otherwise, as with an aquifer.
 pub(super) fn tank(reader: &mut Reader, section: &Section<'_>, water_injected: bool, start: Option<Date>) -> TankSpec {
     exactly_one(reader, section, "the tank's pore volume against pressure", &["pore_compressibility", "compaction"]);
     let aquifer = read_aquifer::aquifer(reader, section, start);
     read_aquifer::check_produced(reader, section, aquifer.as_ref());
     let produced = produced(reader, section);
     let water_injected = water_injected || produced.is_some_and(|produced| produced.injected_water_stb > 0.0);
+    let (water_model, water) = read_water::tank(reader, section, water_injected || aquifer.is_some());
     let spec = TankSpec {
         oil_in_place_stb: reader.quantity(section, "oil_in_place"),
         pressure_psia: reader.quantity(section, "pressure"),
@@ -121,7 +122,8 @@ pub(super) fn tank(reader: &mut Reader, section: &Section<'_>, water_injected: b
         gas_cap_ratio: reader.number(section, "gas_cap_ratio"),
         datum_tvd_ft: reader.optional_quantity(section, "datum"),
         produced,
-        water_model: water_model(reader, section, water_injected),
+        water_model,
+        water,
         relative_permeability: relative_permeability(reader, section),
     };
     reader.finish(section);
@@ -144,28 +146,6 @@ fn produced(reader: &mut Reader, tank: &Section<'_>) -> Option<ProducedSpec> {
     };
     reader.finish(&section);
     Some(spec)
-}
-
-fn water_model(reader: &mut Reader, tank: &Section<'_>, water_injected: bool) -> WaterModel {
-    let section = reader.section(tank, "water");
-    let word = reader.choice(&section, "model", LATER_WATER_MODELS);
-    reader.finish(&section);
-    let comes = match (water_injected, tank.has("aquifer")) {
-        (true, _) => Some("water is injected"),
-        (false, true) => Some("there is an aquifer"),
-        (false, false) => None,
-    };
-    if let Some(comes) = comes.filter(|_| !section.has("model") && tank.is_there()) {
-        reader.note(
-            Problem::new(section.at("model"), format!("{comes}, but `tank.water.model` does not say how it flows"))
-                .label("[tank.water] model is expected")
-                .help(
-                    "\"average\" lets water flow at the tank's average saturation, \"connate\" keeps it away from the \
-                     wells; \"displacement\", which will be the default here, comes with a later version",
-                ),
-        );
-    }
-    if word == Some("average") { WaterModel::Average } else { WaterModel::Connate }
 }
 
 fn relative_permeability(reader: &mut Reader, tank: &Section<'_>) -> CoreySpec {

@@ -3,6 +3,7 @@
 use super::flowing_survey;
 use super::problem::Problem;
 use super::read_line;
+use super::read_water;
 use super::reader::Reader;
 use super::schema::{LATER_FUTURE_RULES, LATER_TUBING_METHODS};
 use super::section::Section;
@@ -78,6 +79,7 @@ pub(super) fn well(
         perforations_md_ft: reader.optional_quantity(section, "perforations"),
         gor_factor: reader.number(section, "gor_factor"),
         water_factor: reader.number(section, "water_factor"),
+        makes: read_water::makes(reader, section),
         start: reader.day(section, "start"),
         end: reader.day(section, "end"),
         may_flow_again: reader.flag(section, "may_flow_again").unwrap_or(false),
@@ -360,6 +362,7 @@ pub(super) fn injector(reader: &mut Reader, section: &Section<'_>) -> InjectorSp
         bottomhole_limit_psia: reader.optional_quantity(section, "bottomhole_limit"),
         injectivity: reader.injected_quantity(section, "injectivity", gas),
         to_gas_cap: reader.choice(section, "gas_to", &[]) == Some("gas-cap") && gas,
+        response_days: reader.number(section, "response_days"),
     };
     if !gas && section.has("gas_to") {
         reader

@@ -250,6 +250,20 @@ impl Reader {
         f64::NAN
     }
 
+    /// A bare number from its node; NaN when it is wrong.
+    pub fn number_node(&mut self, node: &Node, name: &str, limits: Limits) -> f64 {
+        match &node.value {
+            Value::Number(number) => self.within(node, name, *number, limits, ""),
+            other => {
+                self.note(
+                    Problem::new(node.at.clone(), format!("`{name}` is {}, not a number", other.kind()))
+                        .label("a bare number is expected"),
+                );
+                f64::NAN
+            }
+        }
+    }
+
     /// A number or fraction that is required or has a default; NaN when it is wrong.
     pub fn number(&mut self, section: &Section<'_>, key: &str) -> f64 {
         self.optional_number(section, key).unwrap_or(f64::NAN)

@@ -39,7 +39,9 @@ impl Key {
             Kind::Injected(..) => "liquid rate (water) or gas rate (gas)".to_owned(),
             Kind::FlowCoefficient => "rate per pressure^2n".to_owned(),
             Kind::Survey => "list of pairs, or a path".to_owned(),
-            Kind::Temperatures | Kind::LinePressures | Kind::Compaction => "list of pairs".to_owned(),
+            Kind::Temperatures | Kind::LinePressures | Kind::Compaction | Kind::WaterTrend | Kind::WellTrend => {
+                "list of pairs".to_owned()
+            }
             Kind::Stations => "list of pairs or triples, or a path".to_owned(),
             Kind::Onset => "pressure, or list of pairs".to_owned(),
             Kind::Table => "table".to_owned(),
@@ -101,6 +103,10 @@ pub enum Kind {
     LinePressures,
     /// Pairs of pressure and pore-volume multiplier.
     Compaction,
+    /// Pairs of cumulative oil or injected pore volumes and water.
+    WaterTrend,
+    /// Pairs of a well's cumulative oil and what it makes.
+    WellTrend,
     /// A table of further keys.
     Table,
     /// A list of tables of further keys.
@@ -147,7 +153,7 @@ const fn from(low: f64, high: f64) -> Limits {
 pub const LATER: &[(&str, &str)] = &[("history", "measured history"), ("odds", "the uncertainty study")];
 
 /// Water models that come with a later version.
-pub const LATER_WATER_MODELS: &[&str] = &["displacement", "trend"];
+pub const LATER_WATER_MODELS: &[&str] = &[];
 /// Tubing methods that come with a later version.
 pub const LATER_TUBING_METHODS: &[&str] = &["orkiszewski", "poettmann-carpenter"];
 /// Rules for future inflow that come with a later version.
@@ -264,7 +270,10 @@ pub const KEYS: &[Key] = &[
     key("tank.aquifer.since", Day, Optional, "carter-tracy: day of the first production, from which its time runs; otherwise period.start"),
 
     key("tank.water", Kind::Table, Optional, "Water that flows to the wells"),
-    key("tank.water.model", Choice(&["connate", "average"]), Optional, "connate: none flows; average: fractional flow at the tank's average saturation. Must be stated when water is injected or there is an aquifer, otherwise connate"),
+    key("tank.water.model", Choice(&["connate", "average", "displacement", "trend"]), Optional, "connate: none flows; average: fractional flow at the tank's average saturation; displacement: a front through the contacted volume; trend: a table. Otherwise displacement where water is injected or there is an aquifer, connate where not"),
+    key("tank.water.contacted_fraction", Fraction(above(0.0, 0.95)), Default("0.6"), "Part of the oil zone's pore volume that inflowing water comes to; displacement and trend"),
+    key("tank.water.trend", Kind::WaterTrend, Optional, "Pairs of the tank's cumulative oil since first production, or of injected pore volumes as a bare number, and water; used by the model trend alone"),
+    key("tank.water.trend_of", Choice(&["water-cut", "water-oil-ratio"]), Default("\"water-cut\""), "What the second members of trend are"),
 
     key("tank.relative_permeability", Kind::Table, Optional, "Corey curves"),
     key("tank.relative_permeability.critical_gas", Fraction(FRACTION), Default("0.05"), "Gas saturation up to which free gas does not flow"),
@@ -286,6 +295,7 @@ pub const KEYS: &[Key] = &[
     key("injector.voidage_replacement", Number(from(0.0, 5.0)), Optional, "Share of the tank's current withdrawal; this or rate"),
     key("injector.rate_limit", Injected(D::LiquidRate, D::GasRate, above(0.0, 1.0e10)), Optional, "Highest surface rate; otherwise none"),
     key("injector.effective_fraction", Fraction(above(0.0, 1.0)), Default("1.0"), "Part of the injected volume that supports the tank; the rest is lost"),
+    key("injector.response_days", Number(from(0.0, 3650.0)), Default("0.0"), "Mean time in days until what is injected reaches the tank: a first-order lag; below 1 at once"),
     key("injector.bottomhole_limit", Quantity(D::Pressure, PRESSURE), Optional, "Highest bottom-hole pressure, from the fracture figure; acts through injectivity"),
     key("injector.injectivity", Injected(D::ProductivityIndex, D::GasInjectivity, above(0.0, 1.0e8)), Optional, "Surface rate per pressure above the tank's"),
     key("injector.gas_to", Choice(&["oil-zone", "gas-cap"]), Default("\"oil-zone\""), "Gas: dispersed in the oil zone, or kept apart in the gas cap"),
@@ -303,6 +313,9 @@ pub const KEYS: &[Key] = &[
     key("well.perforations", Quantity(D::Length, DEPTH), Optional, "Measured depth; otherwise the end of the survey"),
     key("well.gor_factor", Number(from(0.0, 100.0)), Default("1.0"), "This well's free gas against the tank's"),
     key("well.water_factor", Number(from(0.0, 100.0)), Default("1.0"), "This well's water-oil ratio against the tank's"),
+    key("well.breakthrough_delay", Number(above(0.0, 100.0)), Default("1.0"), "Contacted volume to be swept before this well sees what the tank's average well sees, over the tank's; displacement"),
+    key("well.water_trend", Kind::WellTrend, Optional, "Pairs of the oil this well makes from period.start on and its water cut, in place of the tank's"),
+    key("well.gor_trend", Kind::WellTrend, Optional, "Pairs of that oil and its producing gas-oil ratio, in place of the tank's"),
     key("well.start", Day, Optional, "First day on stream; otherwise the start of the period"),
     key("well.end", Day, Optional, "Day from which it is shut in; otherwise never"),
     key("well.may_flow_again", Flag, Default("false"), "Whether a well that died comes back by itself when it can"),

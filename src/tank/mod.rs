@@ -18,14 +18,18 @@
 
 pub mod aquifer;
 mod balance;
+mod flood;
 mod pore;
 mod spec;
 mod state;
+mod trend;
 
 pub use aquifer::{Aquifer, AquiferSpec};
 pub use balance::{Balance, Cumulatives};
-pub use spec::{ProducedSpec, TankSpec, WaterModel};
+pub use flood::Flood;
+pub use spec::{ProducedSpec, TankSpec, WaterModel, WaterSpec};
 pub use state::TankState;
+pub use trend::{Trend, TrendOver, WaterTrend, ratio_of_cut};
 
 use crate::fault::Fault;
 use crate::fluid::ReservoirFluid;
@@ -85,6 +89,7 @@ pub struct Tank {
     fluid: Arc<dyn ReservoirFluid>,
     rel_perm: RelativePermeability,
     water_model: WaterModel,
+    water: WaterSpec,
     initial_pressure_psia: f64,
     pore: PoreVolume,
     aquifer: Option<Aquifer>,
@@ -142,6 +147,7 @@ impl Tank {
             fluid,
             rel_perm,
             water_model: spec.water_model,
+            water: spec.water.clone(),
             initial_pressure_psia: p_i,
             pore: PoreVolume::new(spec.pore_compressibility_1_psi, &spec.compaction, p_i)?,
             aquifer: spec.aquifer.map(|aquifer| Aquifer::new(aquifer, p_i)),
@@ -185,9 +191,23 @@ impl Tank {
     }
 
     /// Takes other relative permeabilities and another water model; volumes stay as they are.
-    pub fn set_flow(&mut self, rel_perm: RelativePermeability, water_model: WaterModel) {
+    pub fn set_flow(&mut self, rel_perm: RelativePermeability, water_model: WaterModel, water: &WaterSpec) {
         self.rel_perm = rel_perm;
         self.water_model = water_model;
+        self.water = water.clone();
+    }
+
+    /// How water reaches the wells.
+    pub fn water_model(&self) -> WaterModel {
+        self.water_model
+    }
+
+    /// Part of the withdrawal before the forecast that inflowing water replaced, at the pressure of a state.
+    pub fn replaced_before(&self, state: &TankState) -> f64 {
+        let b = &self.before;
+        let withdrawn = state.voidage_rb(b.oil_stb, b.gas_scf, b.water_stb);
+        let inflow_stb = b.injected_water_stb + self.aquifer_influx_stb(0.0, state.pressure_psia);
+        if withdrawn > 0.0 { (inflow_stb * state.bw_rb_stb / withdrawn).clamp(0.0, 1.0) } else { 0.0 }
     }
 
     /// Volumes in the tank at the start of the forecast.
@@ -267,6 +287,16 @@ impl Tank {
         drive.influx_rb_d(pressure_psia, store, withdrawal_rb_d) / self.initial_bw_rb_stb
     }
 
+    /// Part of the net withdrawal that a pot aquifer gives; zero for every other one.
+    pub fn pot_share(&self, inventory: &Inventory, pressure_psia: f64) -> f64 {
+        if !self.aquifer.as_ref().is_some_and(Aquifer::is_pot) {
+            return 0.0;
+        }
+        let gives_rb_psi =
+            (self.pot_stb(pressure_psia - 0.5) - self.pot_stb(pressure_psia + 0.5)) * self.fluid.bw(pressure_psia);
+        gives_rb_psi / self.store_rb_psi(inventory, pressure_psia)
+    }
+
     /// Average pressure of the aquifer, psia, after this influx since the first production.
     pub fn aquifer_pressure_psia(&self, influx_stb: f64, pressure_psia: f64) -> Option<f64> {
         self.aquifer.as_ref()?.pressure_psia(influx_stb * self.initial_bw_rb_stb, pressure_psia)
@@ -276,7 +306,7 @@ impl Tank {
         self.aquifer.as_ref().map_or(0.0, |aquifer| aquifer.pot_rb(pressure_psia) / self.initial_bw_rb_stb)
     }
 
-    /// What the tank gives per psi without influx, rb/psi.
+    /// What the tank gives per psi without influx (a pot's water counts to the tank), rb/psi.
     fn store_rb_psi(&self, inventory: &Inventory, pressure_psia: f64) -> f64 {
         const HALF_PSI: f64 = 0.5;
         let fall =

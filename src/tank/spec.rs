@@ -1,6 +1,7 @@
 //! The tank as the user states it.
 
 use super::AquiferSpec;
+use super::WaterTrend;
 use crate::rock::CoreySpec;
 
 /// How the water that flows to the wells is computed.
@@ -10,6 +11,26 @@ pub enum WaterModel {
     Connate,
     /// Fractional flow at the tank's average saturation.
     Average,
+    /// A front through the contacted volume, by Buckley, Leverett and Welge.
+    Displacement,
+    /// A table that the user states.
+    Trend,
+}
+
+/// What the water models go by.
+#[derive(Debug, Clone, PartialEq)]
+pub struct WaterSpec {
+    /// Part of the oil zone's pore volume that inflowing water comes to; of the model "displacement".
+    pub contacted_fraction: f64,
+    /// Table of the model "trend".
+    pub trend: Option<WaterTrend>,
+}
+
+impl Default for WaterSpec {
+    /// A volumetric sweep of 0.6, as waterfloods at moderate mobility ratios come to: a common-practice figure, not data.
+    fn default() -> Self {
+        Self { contacted_fraction: 0.6, trend: None }
+    }
 }
 
 /// What the tank had made before the forecast begins; surface volumes.
@@ -56,6 +77,8 @@ pub struct TankSpec {
     pub produced: Option<ProducedSpec>,
     /// How water reaches the wells.
     pub water_model: WaterModel,
+    /// What the water model goes by.
+    pub water: WaterSpec,
     /// Relative permeability.
     pub relative_permeability: CoreySpec,
 }

@@ -1,12 +1,11 @@
 //! What the tank offers its wells at one instant.
 
-use super::{ClosureError, Inventory, Tank, WaterModel};
+use super::flood::{FloodedRock, HIGHEST_WOR};
+use super::{ClosureError, Cumulatives, Flood, Inventory, Tank, TrendOver, WaterModel};
 
 /// Highest ratio of free gas to oil that is handed to the wells, scf/STB. Beyond it hardly any oil moves and no
 /// well of this program's kind flows; the cap keeps the equations finite where kro vanishes.
 const HIGHEST_FREE_GOR_SCF_STB: f64 = 1e6;
-/// Highest water-oil ratio handed to the wells, for the same reason.
-const HIGHEST_WOR: f64 = 1e4;
 
 /// Pressure, saturations and flowing ratios of the tank at one instant.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -37,6 +36,10 @@ pub struct TankState {
     pub water_oil_ratio: f64,
     /// kro/(mu_o*Bo), 1/cp: what Standing's future rule carries the inflow with.
     pub oil_mobility_1_cp: f64,
+    /// The flood of the model "displacement".
+    pub flood: Option<Flood>,
+    /// Where the tank stands in the table of the model "trend": STB or pore volumes.
+    pub trend_place: f64,
 }
 
 impl TankState {
@@ -74,22 +77,26 @@ impl Tank {
         };
         // A cap that has swept all but a sliver of the oil zone leaves nothing to divide by.
         let zone = (pore / (1.0 + self.gas_cap_ratio) - invaded).max(1e-6 * pore);
-        let so = ((inventory.oil_stb * bo - invaded * residual) / zone).clamp(0.0, 1.0 - 0.5 * self.connate_water);
+        let oil = inventory.oil_stb * bo - invaded * residual;
+        let (mu_o, mu_g, mu_w) = (fluid.mu_o(p, rs), fluid.mu_g(p), fluid.mu_w(p));
+        let (flood, swept_rb, swept_oil_rb) =
+            self.flood(inventory.water_stb + self.pot_stb(p), zone, (mu_o, mu_w), (bo, bw));
+        let zone = zone - swept_rb;
+        let so = ((oil - swept_oil_rb) / zone).clamp(0.0, 1.0 - 0.5 * self.connate_water);
         let free_rb = (inventory.gas_scf - inventory.oil_stb * rs).max(0.0) * bg;
         let sg = (free_rb / zone).clamp(0.0, 1.0 - so);
         let sw = 1.0 - so - sg;
-        let (mu_o, mu_g) = (fluid.mu_o(p, rs), fluid.mu_g(p));
         let kro = match self.water_model {
-            WaterModel::Connate => self.rel_perm.krog(so),
+            // The oil zone that the wells draw on holds connate water; what is swept stands apart.
+            WaterModel::Connate | WaterModel::Displacement | WaterModel::Trend => self.rel_perm.krog(so),
             WaterModel::Average => self.rel_perm.kro(so, sg, sw),
         };
         let oil_mobility = kro / (mu_o * bo);
         let free_gor = capped_ratio(self.rel_perm.krg(sg) / (mu_g * bg), oil_mobility, HIGHEST_FREE_GOR_SCF_STB);
         let water_oil_ratio = match self.water_model {
-            WaterModel::Connate => 0.0,
-            WaterModel::Average => {
-                capped_ratio(self.rel_perm.krw(sw) / (fluid.mu_w(p) * bw), oil_mobility, HIGHEST_WOR)
-            }
+            WaterModel::Connate | WaterModel::Trend => 0.0,
+            WaterModel::Average => capped_ratio(self.rel_perm.krw(sw) / (mu_w * bw), oil_mobility, HIGHEST_WOR),
+            WaterModel::Displacement => flood.map_or(0.0, |f| f.water_oil_ratio_of_tank()),
         };
         Ok(TankState {
             pressure_psia: p,
@@ -105,7 +112,64 @@ impl Tank {
             free_gor_scf_stb: free_gor,
             water_oil_ratio,
             oil_mobility_1_cp: oil_mobility,
+            flood,
+            trend_place: 0.0,
         })
+    }
+
+    /// The state after `taken` since the start of the forecast, with the water of the model "trend".
+    ///
+    /// # Errors
+    /// [`ClosureError`] when the balance gives no pressure.
+    pub fn state_after(&self, taken: &Cumulatives, guess_psia: f64) -> Result<TankState, ClosureError> {
+        let inventory = self.inventory(taken);
+        let mut state = self.state(&inventory, guess_psia)?;
+        if let (WaterModel::Trend, Some(trend)) = (self.water_model, &self.water.trend) {
+            state.trend_place = match trend.over {
+                TrendOver::Oil => self.initial.oil_stb - inventory.oil_stb,
+                TrendOver::PoreVolumes => {
+                    let injected_stb = self.before.injected_water_stb + taken.injected_water_stb;
+                    let influx_stb = self.aquifer_influx_stb(taken.aquifer_stb, state.pressure_psia);
+                    (injected_stb + influx_stb).max(0.0) * state.bw_rb_stb * (1.0 + self.gas_cap_ratio)
+                        / self.pore_volume_rb
+                }
+            };
+            state.water_oil_ratio = trend.water_oil_ratio(state.trend_place).min(HIGHEST_WOR);
+        }
+        Ok(state)
+    }
+
+    /// How far the table of the model "trend" is from its first water, over the table's own scale; `None` without such a table.
+    pub fn before_trend(&self, state: &TankState) -> Option<f64> {
+        let trend = self.water.trend.as_ref().filter(|_| self.water_model == WaterModel::Trend)?;
+        Some(trend.curve.before_water(state.trend_place))
+    }
+
+    /// The flood, its swept pore volume and the oil in it, rb.
+    fn flood(
+        &self,
+        water_stb: f64,
+        zone_rb: f64,
+        (mu_o_cp, mu_w_cp): (f64, f64),
+        (bo, bw): (f64, f64),
+    ) -> (Option<Flood>, f64, f64) {
+        let none = (None, 0.0, 0.0);
+        if !matches!(self.water_model, WaterModel::Displacement | WaterModel::Trend) {
+            return none;
+        }
+        let curve = self.rel_perm.displacement(mu_o_cp, mu_w_cp);
+        let (Some(curve), Some(movable)) = (curve, self.rel_perm.movable_to_water()) else { return none };
+        let rock = FloodedRock {
+            zone_rb,
+            contacted_fraction: self.water.contacted_fraction,
+            connate_water: self.connate_water,
+            movable,
+        };
+        let mobile_rb = (water_stb - self.initial.water_stb) * bw;
+        let flood = Flood::new(curve, &rock, mobile_rb, bo / bw);
+        let swept = flood.swept(&rock);
+        let shown = (self.water_model == WaterModel::Displacement).then_some(flood);
+        (shown, swept.volume_rb, swept.oil_rb)
     }
 
     /// kro/(mu_o*Bo) of the undisturbed oil zone at a pressure and its saturated or initial dissolved gas, 1/cp.

@@ -11,4 +11,4 @@ pub use meeting::{
     survey_above, top_near,
 };
 pub use model::{Gauge, Surroundings, TestCheck, WellModel, WellNow, drainage_term, oil_gradient_psi_ft};
-pub use spec::{FlowingSurvey, ScreenSpec, SurveyPoint, WellSpec};
+pub use spec::{FlowingSurvey, MakesSpec, ScreenSpec, SurveyPoint, WellSpec};

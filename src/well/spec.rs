@@ -1,6 +1,7 @@
 //! One producing well as the user states it.
 
 use crate::inflow::InflowSpec;
+use crate::tank::Trend;
 use crate::tubing::{ChokeSpec, TubingSpec};
 use jiff::civil::Date;
 
@@ -47,12 +48,32 @@ pub struct WellSpec {
     pub maximum_gor_scf_stb: Option<f64>,
     /// What the flow is held against at period ends; it ends nothing.
     pub screens: ScreenSpec,
+    /// What it makes otherwise than the tank's factors say.
+    pub makes: MakesSpec,
     /// Inflow.
     pub inflow: InflowSpec,
     /// Tubing.
     pub tubing: TubingSpec,
     /// Flowing pressures measured along depth.
     pub flowing_surveys: Vec<FlowingSurvey>,
+}
+
+/// What a well makes, where it differs from the tank in more than a factor.
+#[derive(Debug, Clone, PartialEq)]
+pub struct MakesSpec {
+    /// Contacted volume that the flood must sweep before this well sees what the tank's average well sees, over the tank's.
+    pub breakthrough_delay: f64,
+    /// Water cut against the well's own oil since the start of the forecast, STB.
+    pub water_cut: Option<Trend>,
+    /// Producing gas-oil ratio, scf/STB, against the same.
+    pub gor: Option<Trend>,
+}
+
+impl Default for MakesSpec {
+    /// As the tank.
+    fn default() -> Self {
+        Self { breakthrough_delay: 1.0, water_cut: None, gor: None }
+    }
 }
 
 /// Flowing pressures measured along depth, with what flowed.

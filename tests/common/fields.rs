@@ -8,9 +8,9 @@ use wane::forecast::{
 };
 use wane::inflow::{Coefficient, FutureRule, InflowMethod, InflowSpec, RateBasis};
 use wane::rock::CoreySpec;
-use wane::tank::{TankSpec, WaterModel};
+use wane::tank::{TankSpec, WaterModel, WaterSpec};
 use wane::tubing::{TubingMethod, TubingSection, TubingSpec};
-use wane::well::{ScreenSpec, WellSpec};
+use wane::well::{MakesSpec, ScreenSpec, WellSpec};
 
 /// One well that drains an undersaturated tank.
 pub fn one_well() -> FieldSpec {
@@ -33,6 +33,7 @@ pub fn one_well() -> FieldSpec {
             datum_tvd_ft: None,
             produced: None,
             water_model: WaterModel::Connate,
+            water: WaterSpec::default(),
             relative_permeability: CoreySpec {
                 critical_gas: 0.04,
                 residual_oil_to_gas: 0.25,
@@ -76,6 +77,7 @@ pub fn well(name: &str) -> WellSpec {
         maximum_water_cut: None,
         maximum_gor_scf_stb: None,
         screens: ScreenSpec::default(),
+        makes: MakesSpec::default(),
         inflow: InflowSpec {
             method: InflowMethod::Fetkovich,
             future: FutureRule::Pressure,
@@ -115,5 +117,6 @@ pub fn injector(name: &str, fluid: InjectedFluid, control: InjectionControl) -> 
         bottomhole_limit_psia: None,
         injectivity: None,
         to_gas_cap: false,
+        response_days: 0.0,
     }
 }
