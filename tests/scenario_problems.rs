@@ -159,7 +159,7 @@ const CASES: &[Case] = &[
     ),
     ("units = \"field\"", "units = «\"feild\"»", &["did you mean \"field\"?"]),
     ("method = \"fetkovich\"", "method = «\"fetkovic\"»", &["did you mean \"fetkovich\"?"]),
-    ("future = \"pressure\"", "future = «\"cubic\"»", &["`cubic` is not there yet", "pressure, mobility"]),
+    ("future = \"pressure\"", "future = «\"cubics\"»", &["did you mean \"cubic\"?", "pressure, mobility, cubic"]),
     (
         "\"hasan-kabir\"",
         "«\"orkiszewski\"»",

@@ -286,7 +286,7 @@ impl<'a> Run<'a> {
 
     pub(super) fn tank_now(&self) -> Result<TankState, RunError> {
         let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
-        dynamics.tank(self.y.as_slice()).map_err(|source| RunError::TooMuchInjected { days: self.t, source })
+        dynamics.tank(self.t, self.y.as_slice()).map_err(|source| RunError::TooMuchInjected { days: self.t, source })
     }
 
     /// Applies everything scheduled for this instant.
@@ -300,7 +300,7 @@ impl<'a> Run<'a> {
             .filter(|c| self.day(c.on) == self.t || (self.t == 0.0 && self.day(c.on) < 0.0))
             .collect();
         for change in changes {
-            self.setup = Arc::new(self.field.changed(&self.setup, &change.change)?);
+            self.setup = Arc::new(self.field.changed(&self.setup, change)?);
             self.event(&change.name, EventKind::Scheduled, change.text.clone());
             if let Change::Well(w, _) = change.change {
                 self.returns[w] = Returns::NONE;

@@ -15,6 +15,7 @@ mod guess;
 mod load;
 mod overrides;
 mod problem;
+mod read_inflow;
 mod read_line;
 mod read_onsets;
 mod read_tank;
