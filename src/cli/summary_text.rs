@@ -118,8 +118,8 @@ fn rules_text(well: &WellResult) -> Option<String> {
     if own.outcome == ModelOutcome::StillFlows && !well.flowing_at_end {
         return None;
     }
-    let list: Vec<String> = others.iter().map(|end| format!("{} with {}", told(&end.outcome), end.rule)).collect();
-    Some(format!("{}, had its inflow another rule for the future than {}: {}.", well.name, own.rule, list.join(", ")))
+    let list: Vec<String> = others.iter().map(|end| format!("{} {}", end.rule, told(&end.outcome))).collect();
+    Some(format!("{}, with another rule for future inflow than {}: {}.", well.name, own.rule, list.join(", ")))
 }
 
 /// When a shutdown becomes final.
