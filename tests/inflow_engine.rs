@@ -7,7 +7,7 @@ use common::fields::{one_well, well};
 use common::near;
 use jiff::civil::{Date, date};
 use wane::forecast::{
-    Change, ChangeSpec, Field, FieldSpec, ModelOutcome, Tolerance, curves_on, natural_flow_ends, run,
+    Change, ChangeSpec, Field, FieldSpec, ModelOutcome, Tolerance, curves_on, natural_flow_ends, run, tracks,
 };
 use wane::inflow::{Coefficient, FutureRule, InflowMethod};
 use wane::study::{rule_ends, store_rule_ends};
@@ -249,4 +249,25 @@ fn wells_on_different_rules() {
     store_rule_ends(&spec, &ends, &mut forecast);
     let names = |w: usize| forecast.wells[w].future_rules.iter().map(|end| end.rule).collect::<Vec<_>>();
     assert_eq!((names(0), names(1)), (vec!["pressure", "mobility", "cubic"], vec!["cubic", "pressure", "mobility"]));
+}
+
+/// Around the end of its natural flow a well is drawn with what is then left of it: at that pressure the curves just meet.
+#[test]
+fn the_edge_knows_what_is_left() {
+    let mut spec = long_lived();
+    spec.wells[0].target_rate_stb_d = Some(500.0);
+    spec.wells[0].loss.yearly = 0.12;
+    let end = end_days(&spec);
+    let track = tracks(&Field::new(&spec).unwrap()).unwrap().remove(0);
+    for days in [0.0, end, 1e4] {
+        near(track.model.productivity_left(days), 0.88_f64.powf(end / 365.25), 1e-12, "left at the end");
+    }
+    let field = Field::new(&spec).unwrap();
+    let gauge = wane::well::Gauge::default();
+    let last = track.tank.iter().min_by(|a, b| {
+        let off = |t: &wane::tank::TankState| (t.pressure_psia - track.end_pressure_psia).abs();
+        off(a).total_cmp(&off(b))
+    });
+    let margin = track.model.now(field.fluid(), last.unwrap(), 0.0, 0.0, &gauge).survey().margin_psi;
+    assert!(margin.abs() < 0.1, "{margin}");
 }

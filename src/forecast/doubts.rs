@@ -172,15 +172,6 @@ fn well(field: &Field, forecast: &Forecast, seen: &Seen, w: usize, doubts: &mut 
             "state exponent = 1.0 (or 0.5) and compare the end of natural flow",
         ));
     }
-    if result.tests.len() == 1 {
-        doubts.push(doubt(
-            DoubtKind::WeakFit,
-            name,
-            "the inflow rests on a single test".to_owned(),
-            "one point fixes the coefficient but not the shape of the curve",
-            "run a test at two or three rates before the result goes into an order",
-        ));
-    }
     about_flow(forecast, name, &seen.screens[w], doubts);
     if let Some(end) = result.natural_flow_end {
         let critical = field.tank().relative_permeability().critical_gas();

@@ -170,6 +170,10 @@ impl WellModel {
             }
             None => "as given".to_owned(),
         };
+        let origin = match 100.0 * self.spec.loss.yearly {
+            0.0 => origin,
+            lost => format!("{origin}, less {lost:.1} % in every year"),
+        };
         let c = self.inflow.coefficient;
         let name = match self.inflow.shape {
             Shape::Fetkovich { n } => {
