@@ -165,6 +165,8 @@ impl<'a> Run<'a> {
         });
         for well in spec.wells.iter().chain(changed_wells) {
             dates.extend(well.start.iter().chain(&well.end));
+            // The loss of productivity begins with a corner.
+            dates.extend(well.loss.since.filter(|_| well.loss.yearly > 0.0));
         }
         let changed_injectors = spec.changes.iter().filter_map(|c| match &c.change {
             Change::Injector(_, i) => Some(i),

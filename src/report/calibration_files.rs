@@ -4,7 +4,7 @@ use super::csv_files::{cell, csv_bytes};
 use super::json::Json;
 use super::labels::{Dimension, Label, UnitSystem, label};
 use super::{Provenance, ReportError};
-use crate::inflow::{RateBasis, Shape};
+use crate::inflow::{FutureRule, RateBasis, Shape};
 use crate::study::calibrate::{
     BackCalculated, Finding, Fitted, Held, Kind, Measurement, Misses, ModelScore, Score, WellCalibration,
 };
@@ -356,6 +356,15 @@ fn inflow_lines(inflow: &BackCalculated, units: UnitSystem) -> String {
     }
     if inflow.basis == RateBasis::Oil {
         text.push_str("basis       = \"oil\"\n");
+    }
+    if inflow.future != FutureRule::Pressure {
+        text.push_str(&format!("future      = \"{}\"\n", inflow.future.name()));
+    }
+    if inflow.loss.yearly > 0.0 {
+        text.push_str(&format!("yearly_loss = {}\n", rounded(inflow.loss.yearly, 6)));
+    }
+    if let Some(since) = inflow.loss.since {
+        text.push_str(&format!("loss_since  = {since}\n"));
     }
     let pressure = label(units, Dimension::Pressure);
     text.push_str(&format!(
