@@ -1,7 +1,7 @@
 //! Inflow of a well: from the tree to plain data.
 
 use super::problem::Problem;
-use super::read_wells::{EXCLUSIVE, both_or_none, exactly_one};
+use super::read_wells::{EXCLUSIVE, exactly_one};
 use super::reader::Reader;
 use super::section::Section;
 use super::tree::Value;
@@ -85,10 +85,19 @@ pub(super) fn inflow(reader: &mut Reader, well: &Section<'_>, tank_pressure_psia
                 .label("belongs to a stated coefficient alone"),
         );
     }
-    both_or_none(reader, &section, ["permeability", "thickness"]);
+    // A thickness may be left behind by an override that sets another coefficient.
+    if section.has("permeability") && !section.has("thickness") {
+        reader.note(
+            Problem::new(section.at("permeability"), "`permeability` stands alone")
+                .label("`thickness` is expected beside it"),
+        );
+    }
     let permeability_md = reader.optional_quantity(&section, "permeability");
     let thickness_ft = reader.optional_quantity(&section, "thickness");
-    if section.has("permeability") && !(well.has("drainage_radius") && well.has("wellbore_radius")) {
+    if section.has("permeability")
+        && !section.has("test")
+        && !(well.has("drainage_radius") && well.has("wellbore_radius"))
+    {
         reader.note(
             Problem::new(section.at("permeability"), "Darcy's productivity index needs the radii of drainage and well")
                 .label("`drainage_radius` and `wellbore_radius` are expected in the well"),

@@ -44,7 +44,7 @@ pub(super) fn exactly_one(reader: &mut Reader, section: &Section<'_>, what: &str
     }
 }
 
-pub(super) fn both_or_none(reader: &mut Reader, section: &Section<'_>, keys: [&str; 2]) {
+fn both_or_none(reader: &mut Reader, section: &Section<'_>, keys: [&str; 2]) {
     for (one, other) in [(keys[0], keys[1]), (keys[1], keys[0])] {
         if section.has(one) && !section.has(other) {
             reader.note(
