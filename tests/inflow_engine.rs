@@ -7,9 +7,9 @@ use common::fields::{one_well, well};
 use common::near;
 use jiff::civil::{Date, date};
 use wane::forecast::{
-    Change, ChangeSpec, Field, FieldSpec, ModelOutcome, Tolerance, curves_on, natural_flow_ends, run, tracks,
+    Change, ChangeSpec, DoubtKind, Field, FieldSpec, ModelOutcome, Tolerance, curves_on, natural_flow_ends, run, tracks,
 };
-use wane::inflow::{Coefficient, FutureRule, InflowMethod};
+use wane::inflow::{Coefficient, FutureRule, InflowMethod, InflowTest, Measured};
 use wane::study::{rule_ends, store_rule_ends};
 use wane::well::{LossSpec, WellSpec};
 
@@ -270,4 +270,27 @@ fn the_edge_knows_what_is_left() {
     });
     let margin = track.model.now(field.fluid(), last.unwrap(), 0.0, 0.0, &gauge).survey().margin_psi;
     assert!(margin.abs() < 0.1, "{margin}");
+}
+
+/// Three tests that scatter leave the open flow wide open, and that is told; three on one curve do not.
+#[test]
+fn scattered_tests_are_doubted() {
+    let with = |rates: [f64; 3]| {
+        let mut spec = one_well();
+        spec.period.end = date(2027, 3, 1);
+        spec.wells[0].inflow.exponent = Some(1.0);
+        let test = |(flowing_psia, rate_stb_d): (f64, f64)| InflowTest {
+            on: None,
+            reservoir_psia: 3800.0,
+            rate_stb_d,
+            water_cut: 0.0,
+            measured: Measured::Gauged { flowing_psia },
+        };
+        let tests = [3600.0, 3300.0, 2900.0].into_iter().zip(rates).map(test).collect();
+        spec.wells[0].inflow.coefficient = Coefficient::Tests(tests);
+        let forecast = run(&spec).unwrap();
+        forecast.doubts.iter().any(|d| d.kind == DoubtKind::WeakFit && d.seen.contains("leave the open flow"))
+    };
+    assert!(with([500.0, 300.0, 1500.0]));
+    assert!(!with([322.0, 797.0, 1441.0]));
 }

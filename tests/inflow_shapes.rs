@@ -7,7 +7,7 @@ use common::{case, near, numbers};
 use proptest::prelude::*;
 use wane::inflow::{
     CIRCLE, Conditions, Figure, Fit, FutureRule, Inflow, InflowCurve, InflowMethod, RateBasis, SHAPE_FACTORS, Shape,
-    TestPoint, darcy_index_stb_d_psi, drainage_term, fit_jones, fit_shape, fit_tests,
+    TestPoint, darcy_index_stb_d_psi, drainage_term, fit_jones, fit_saturated_below_datum, fit_shape, fit_tests,
 };
 
 fn point(pr: f64, pb: f64, pwf: f64, q: f64) -> TestPoint {
@@ -384,6 +384,20 @@ fn intervals_of_jones_cover() {
         fit_jones(None, &points).unwrap()
     });
     near_nominal(&found, "J, b and open flow");
+}
+
+/// Where the perforations are the datum both fits of n are one, intervals and all.
+#[test]
+fn intervals_below_the_datum() {
+    let points = [(2700.0, 300.0), (2300.0, 640.0), (1800.0, 900.0), (1200.0, 1200.0)];
+    let points: Vec<TestPoint> = points.map(|(p, q)| point(3000.0, 1e9, p, q)).into();
+    let (one, other) =
+        (fit_tests(InflowMethod::Fetkovich, None, &points).unwrap(), fit_saturated_below_datum(&points).unwrap());
+    assert_eq!(one.intervals.len(), 3);
+    for (a, b) in one.intervals.iter().zip(&other.intervals) {
+        near(a.low, b.low, 1e-9, "lower limit");
+        near(a.high, b.high, 1e-9, "upper limit");
+    }
 }
 
 /// As many tests as fitted figures say nothing of how good they are.
