@@ -14,6 +14,7 @@ pub mod report;
 pub mod rock;
 pub mod roots;
 pub mod scenario;
+pub mod statistics;
 pub mod study;
 pub mod tank;
 pub mod tubing;

@@ -170,3 +170,37 @@ fn the_forecast_tells_of_the_calibration_and_doubts_wells_without_one() {
     let shown = out(&wane(dir.path(), &["forecast", depletion, "--no-spread"]));
     assert!(shown.contains("its tubing model (hasan-kabir) met no measurement"), "{shown}");
 }
+
+/// Every figure that a shape has, the rule for the future and the loss are in the lines: pasted they give the same forecast.
+#[test]
+fn the_printed_lines_hold_what_the_inflow_has() {
+    for (units, inflow) in [
+        (
+            "field",
+            "method = \"vogel\"\nflow_efficiency = 0.8\nfuture = \"mobility\"\nyearly_loss = 0.05\nloss_since = 2026-10-09",
+        ),
+        ("metric", "method = \"jones\"\nturbulence = \"4e-4 psi/(STB/d)^2\"\nfuture = \"cubic\""),
+        ("metric", "method = \"composite\"\nyearly_loss = 0.1"),
+    ] {
+        let dir = tempfile::tempdir().unwrap();
+        let file = untuned(dir.path(), units);
+        let text = std::fs::read_to_string(dir.path().join(&file)).unwrap();
+        assert!(text.contains("exponent = 1.0"));
+        std::fs::write(dir.path().join(&file), text.replace("exponent = 1.0", inflow)).unwrap();
+        let output = wane(dir.path(), &["calibrate", &file, "-o", "out"]);
+        assert_eq!(output.status.code(), Some(0), "{}", err(&output));
+        let lines = std::fs::read_to_string(dir.path().join("out/lines.toml")).unwrap();
+        let printed = settings(&lines.parse().unwrap());
+        // Pasted lines stand in place of the whole table: nothing of the old one may help.
+        let stripped = text.replace("exponent = 1.0", "");
+        std::fs::write(dir.path().join("bare.toml"), stripped).unwrap();
+        let field = |name: &str, sets: &[String]| {
+            let document = Document::load(&dir.path().join(name)).unwrap();
+            document.resolve(None, sets).unwrap_or_else(|p| panic!("{p}")).field
+        };
+        let tubing: Vec<String> = printed.iter().filter(|s| s.contains(".tubing.")).cloned().collect();
+        let ends = |field| wane::forecast::natural_flow_ends(&field).unwrap()[0].unwrap().days;
+        let (tuned, pasted) = (ends(field(&file, &tubing)), ends(field("bare.toml", &printed)));
+        assert!((tuned - pasted).abs() < 0.5, "{inflow}: {tuned} against {pasted} days\n{lines}");
+    }
+}

@@ -33,6 +33,23 @@ fn starter() -> TempDir {
     dir
 }
 
+/// The ends under the other rules for future inflow come with the spread and go with it.
+#[test]
+fn the_other_rules_come_with_the_spread() {
+    let dir = starter();
+    let rules = |args: &[&str]| {
+        let output = wane(dir.path(), &[&["forecast", "demo/scenario.toml", "--json"], args].concat());
+        assert_eq!(code(&output), 0, "{}", err(&output));
+        let summary: serde_json::Value = serde_json::from_slice(&output.stdout).unwrap();
+        let list = summary["wells"][0]["future_rules"].as_array().unwrap().clone();
+        list.iter().map(|end| end["rule"].as_str().unwrap().to_owned()).collect::<Vec<_>>()
+    };
+    assert_eq!(rules(&[]), ["pressure", "mobility", "cubic"]);
+    assert!(rules(&["--no-spread"]).is_empty());
+    let shown = out(&wane(dir.path(), &["forecast", "demo/scenario.toml"]));
+    assert!(shown.contains("with another rule for future inflow than pressure: mobility "), "{shown}");
+}
+
 /// Runs what must fail with `status`: a message on standard error, nothing on standard output, nothing written.
 fn refused(dir: &Path, args: &[&str], status: i32, words: &str) {
     let before = all(dir);

@@ -14,7 +14,7 @@ fn curve(shape: Shape, j: f64, pr: f64, pb: f64) -> InflowCurve {
 }
 
 fn point(pr: f64, pb: f64, pwf: f64, q: f64) -> TestPoint {
-    TestPoint { reservoir_psia: pr, effective_psia: pr.min(pb), flowing_psia: pwf, rate_stb_d: q }
+    TestPoint { reservoir_psia: pr, effective_psia: pr.min(pb), flowing_psia: pwf, rate_stb_d: q, water_cut: 0.0 }
 }
 
 fn fetkovich(c: f64, n: f64, pr: f64) -> InflowCurve {
@@ -163,6 +163,7 @@ fn saturated_tests_below_the_datum_are_recovered() {
                 effective_psia: pe,
                 flowing_psia: pwf,
                 rate_stb_d: c_per_psi * pe * bracket,
+                water_cut: 0.0,
             }
         })
         .into();

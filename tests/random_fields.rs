@@ -36,6 +36,15 @@ fn ground() -> impl Strategy<Value = Ground> {
     )
 }
 
+const METHODS: [InflowMethod; 6] = [
+    InflowMethod::Straight,
+    InflowMethod::Vogel,
+    InflowMethod::Wiggins,
+    InflowMethod::Fetkovich,
+    InflowMethod::Jones,
+    InflowMethod::Composite,
+];
+
 /// What a well is made of; the depth comes with the tank.
 fn a_well() -> impl Strategy<Value = WellSpec> {
     let limits = (
@@ -45,17 +54,20 @@ fn a_well() -> impl Strategy<Value = WellSpec> {
         prop::option::weighted(0.15, 0.01..0.9),
         prop::option::weighted(0.15, 800.0..6000.0),
     );
-    let inflow = (0..3_usize, any::<bool>(), any::<bool>(), 0.1..8.0_f64, prop::option::weighted(0.3, 0.5..1.0));
+    let inflow = (0..METHODS.len(), 0..3_usize, any::<bool>(), 0.1..8.0_f64, prop::option::weighted(0.3, 0.5..1.0));
+    let more = (prop::option::of(0.2..3.0_f64), 0.0..2e-3_f64, prop_oneof![Just(0.0), 0.0..0.6_f64]);
     let tubing = (prop::sample::select(&TubingMethod::ALL[..]), 1.5..4.5_f64, 2500.0..13_000.0_f64, 0.55..1.0_f64);
     let rest =
         (15.0..300.0, prop_oneof![Just(1.0), 0.3..1.0], 0..400_i64, any::<bool>(), -2.0..20.0, 0.0..3.0, 0.0..3.0);
-    (limits, inflow, tubing, rest).prop_map(|(limits, inflow, tubing, rest)| {
+    (limits, inflow, more, tubing, rest).prop_map(|(limits, inflow, more, tubing, rest)| {
         let mut w = well("W");
         (w.target_rate_stb_d, w.minimum_flowing_pressure_psia) = (limits.0, limits.1);
         (w.minimum_rate_stb_d, w.maximum_water_cut, w.maximum_gor_scf_stb) = (limits.2, limits.3, limits.4);
-        w.inflow.method = [InflowMethod::Straight, InflowMethod::Vogel, InflowMethod::Fetkovich][inflow.0];
-        w.inflow.future = if inflow.1 { FutureRule::Mobility } else { FutureRule::Pressure };
-        w.inflow.basis = if inflow.2 { RateBasis::Oil } else { RateBasis::Liquid };
+        w.inflow.method = METHODS[inflow.0];
+        w.inflow.future = FutureRule::ALL[inflow.1];
+        let of_oil = inflow.2 && w.inflow.method != InflowMethod::Composite;
+        w.inflow.basis = if of_oil { RateBasis::Oil } else { RateBasis::Liquid };
+        (w.inflow.flow_efficiency, w.inflow.turbulence_psi_d2_stb2, w.loss.yearly) = (more.0, Some(more.1), more.2);
         w.inflow.coefficient = Coefficient::ProductivityIndex { j_stb_d_psi: inflow.3, reservoir_psia: 1e3 };
         w.inflow.exponent = inflow.4;
         w.tubing.method = tubing.0;

@@ -406,3 +406,57 @@ fn plain(text: &str) -> String {
     }
     out
 }
+
+/// Ends under the other rules and intervals of the fit, in both systems of units. 1 Sm3 = 35.3147/5.614583 bbl, 1 bar = 14.5038 psi.
+#[test]
+fn the_summary_holds_rules_and_intervals() {
+    use wane::forecast::{FutureEnd, ModelOutcome};
+    use wane::inflow::{Figure, Fit, Interval, Shape};
+    let mut forecast = made::forecast();
+    let well = &mut forecast.wells[0];
+    let end = well.natural_flow_end.unwrap();
+    well.future_rules = vec![
+        FutureEnd { rule: "pressure", outcome: ModelOutcome::Ends(end) },
+        FutureEnd { rule: "cubic", outcome: ModelOutcome::StillFlows },
+    ];
+    let interval = |figure, value: f64| Interval { figure, value, low: 0.5 * value, high: 2.0 * value };
+    well.inflow_fit = Some(Fit {
+        shape: Shape::Fetkovich { n: 1.0 },
+        coefficient: 1e-3,
+        reference_psia: 3000.0,
+        rms_relative: 0.02,
+        n_fitted: true,
+        intervals: vec![
+            interval(Figure::Exponent, 0.8),
+            interval(Figure::Coefficient, 1e-3),
+            interval(Figure::OpenFlow, 1000.0),
+            interval(Figure::Turbulence, 1e-4),
+        ],
+    });
+    let mut provenance = made::provenance();
+    for (units, rate, pressure, suffixes) in [
+        (UnitSystem::Field, 1.0, 1.0, ["stb_d", "stb_d_psi2n", "psi_d2_stb2"]),
+        (UnitSystem::Metric, 0.158_987, 0.068_947_6, ["sm3_d", "sm3_d_bar2n", "bar_d2_sm6"]),
+    ] {
+        provenance.units = units;
+        let found: Value = serde_json::from_slice(&summary_json(&forecast, &provenance).unwrap()).unwrap();
+        let well = &found["wells"][0];
+        assert_eq!(well["future_rules"][0]["natural_flow_end"], end.date.to_string());
+        assert_eq!(
+            (&well["future_rules"][1]["rule"], &well["future_rules"][1]["natural_flow_end"]),
+            (&"cubic".into(), &Value::Null)
+        );
+        let fit = &well["inflow_fit"];
+        assert_eq!(fit["confidence"], 0.95);
+        let list = fit["intervals"].as_array().unwrap();
+        assert_eq!((&list[0]["figure"], &list[0]["low"]), (&"n".into(), &0.4.into()));
+        let value = |i: usize, key: &str| list[i][key].as_f64().unwrap_or_else(|| panic!("{key}: {}", list[i]));
+        near(value(1, &format!("high_{}", suffixes[1])), 2e-3 * rate / (pressure * pressure), 1e-5, "C");
+        near(value(2, &format!("low_{}", suffixes[0])), 500.0 * rate, 1e-5, "open flow");
+        near(value(3, &format!("value_{}", suffixes[2])), 1e-4 * pressure / (rate * rate), 1e-5, "b");
+    }
+    assert_eq!(
+        serde_json::from_slice::<Value>(&summary_json(&forecast, &provenance).unwrap()).unwrap()["wells"][1]["inflow_fit"],
+        Value::Null
+    );
+}

@@ -56,6 +56,17 @@ fn each_slip_raises_its_own_doubt() {
         (vec!["tank.pressure=1000 bar", "fluid.bubble_point=2650 psia"], K::UnlikelyValue, "P-1", "psi/ft"),
         (vec!["well.P-1.tubing.diameter=24.41 in"], K::UnlikelyValue, "P-1", "inside diameter is 24.41 in"),
         (vec!["well.P-1.skin=-5.8"], K::UnlikelyValue, "P-1", "skin is -5.8"),
+        (
+            vec![
+                "well.P-1.inflow.method=vogel",
+                "well.P-1.inflow.flow_efficiency=7",
+                "well.P-1.inflow.open_flow=900 STB/d",
+            ],
+            K::UnlikelyValue,
+            "P-1",
+            "flow efficiency is 7",
+        ),
+        (vec!["well.P-1.inflow.yearly_loss=0.5"], K::UnlikelyValue, "P-1", "yearly loss of productivity is 0.5"),
         (vec!["well.P-1.uptime=1.0"], K::UnlikelyValue, "P-1", "uptime of 1"),
         (vec!["well.P-1.inflow.exponent=0.4"], K::WeakFit, "P-1", "exponent n is 0.4"),
         (

@@ -12,7 +12,7 @@ use wane::tubing::{
     ChokeMethod, ChokeSpec, ChokeTest, Discharge, RestrictionSpec, TubingMethod, TubingSection, TubingSpec,
 };
 use wane::units::UnitSystem;
-use wane::well::{FlowingSurvey, LineRate, LineSpec, MakesSpec, ScreenSpec, SurveyPoint, WellSpec};
+use wane::well::{FlowingSurvey, LineRate, LineSpec, LossSpec, MakesSpec, ScreenSpec, SurveyPoint, WellSpec};
 
 const FULL: &str = include_str!("data/full.toml");
 
@@ -201,6 +201,8 @@ fn the_first_well_arrives() {
         skin: 1.5,
         skin_at_test: 0.5,
         radii_ft: Some((1200.0, 4.25 / 12.0)),
+        shape_factor: 21.8369,
+        loss: LossSpec { yearly: 0.04, since: Some(date(2026, 5, 6)) },
         minimum_flowing_pressure_psia: Some(900.0),
         minimum_rate_stb_d: Some(45.0),
         maximum_water_cut: Some(0.87),
@@ -216,6 +218,8 @@ fn the_first_well_arrives() {
             future: FutureRule::Mobility,
             basis: RateBasis::Oil,
             exponent: Some(0.88),
+            flow_efficiency: None,
+            turbulence_psi_d2_stb2: None,
             coefficient: Coefficient::Tests(vec![
                 InflowTest {
                     on: Some(date(2026, 5, 4)),
@@ -268,7 +272,7 @@ fn the_first_well_arrives() {
 #[test]
 fn the_other_wells_have_their_defaults_and_methods() {
     let wells = resolve().wells;
-    let [_, b, c, d] = wells.as_slice() else { panic!("four wells") };
+    let [_, b, c, d, e] = wells.as_slice() else { panic!("five wells") };
     assert_eq!((b.inflow.method, b.tubing.method), (InflowMethod::Vogel, TubingMethod::HagedornBrown));
     assert_eq!((c.inflow.method, c.tubing.method), (InflowMethod::Straight, TubingMethod::NoSlip));
     assert_eq!((d.inflow.method, d.tubing.method), (InflowMethod::Fetkovich, TubingMethod::HasanKabir));
@@ -300,6 +304,14 @@ fn the_other_wells_have_their_defaults_and_methods() {
     let open_flow = Coefficient::OpenFlow { rate_stb_d: 1300.0, reservoir_psia: 3120.0 };
     let c_given = Coefficient::Fetkovich { c: 0.0011, reservoir_psia: 3120.0 };
     assert_eq!([&b.inflow.coefficient, &c.inflow.coefficient, &d.inflow.coefficient], [&index, &open_flow, &c_given]);
+    assert_eq!(b.inflow.flow_efficiency, Some(0.8));
+    let darcy = Coefficient::Darcy { permeability_md: 45.0, thickness_ft: 60.0, reservoir_psia: 3120.0 };
+    assert_eq!(
+        (e.inflow.method, e.inflow.future, &e.inflow.coefficient),
+        (InflowMethod::Jones, FutureRule::Cubic, &darcy)
+    );
+    assert_eq!((e.inflow.turbulence_psi_d2_stb2, e.shape_factor), (Some(0.0004), 10.8374));
+    assert_eq!((d.shape_factor, d.loss), (31.62, LossSpec::default()));
     for (well, diameter_in) in [(b, 1.995), (c, 2.1), (d, 2.2)] {
         let section = TubingSection { to_md_ft: f64::INFINITY, diameter_in, roughness_in: 0.0006, inner_pipe_in: 0.0 };
         assert_eq!(well.tubing.sections, [section]);
@@ -321,7 +333,7 @@ fn lines_and_chokes_arrive() {
     let line = LineSpec { name: "L".to_owned(), rate: LineRate::Gas, pressures: vec![(0.0, 140.0), (3e6, 190.0)] };
     assert_eq!(field.lines, [line]);
     let lines: Vec<_> = field.wells.iter().map(|well| well.shared_line.as_deref()).collect();
-    assert_eq!(lines, [None, None, Some("L"), None]);
+    assert_eq!(lines, [None, None, Some("L"), None, None]);
     let discharge = Discharge::Given(0.8);
     let choke = ChokeSpec { method: ChokeMethod::Sachdeva, size_in: 0.5, discharge };
     assert_eq!((field.wells[1].choke.as_ref(), field.wells[2].choke.as_ref()), (None, Some(&choke)));

@@ -179,7 +179,7 @@ const CASES: &[Case] = &[
     ),
     ("units = \"field\"", "units = «\"feild\"»", &["did you mean \"field\"?"]),
     ("method = \"fetkovich\"", "method = «\"fetkovic\"»", &["did you mean \"fetkovich\"?"]),
-    ("future = \"pressure\"", "future = «\"cubic\"»", &["`cubic` is not there yet", "pressure, mobility"]),
+    ("future = \"pressure\"", "future = «\"cubics\"»", &["did you mean \"cubic\"?", "pressure, mobility, cubic"]),
     (
         "\"hasan-kabir\"",
         "«\"orkiszewski\"»",
@@ -295,6 +295,12 @@ const CASES: &[Case] = &[
         "rate = «\"2 MMscf/d\"» ",
         &["`MMscf/d` is the unit of a gas rate, a liquid rate is expected"],
     ),
+    (
+        "method = \"fetkovich\"\n",
+        "permeability = \"60 mD\"\nthickness = \"40 ft\"\n",
+        &["`test` and `permeability` exclude each other"],
+    ),
+    ("water_factor  = 1.0\n", "drainage_shape = \"square\"\nshape_factor = «30.0»\n", &["exclude each other"]),
     ("method = \"fetkovich\"\n", "open_flow = \"3000 STB/d\"\n", &["`test` and `open_flow` exclude each other"]),
     // Names.
     ("well = \"OP-1\"", "well = «\"OP-2\"»", &["there is no well named `OP-2`", "did you mean `OP-1`?"]),
@@ -480,6 +486,24 @@ fn clashes_of_several_values_are_found() {
         (
             vec!["well.OP-1.inflow.method=vogel", "well.OP-1.inflow.exponent=0.9"],
             "belongs to the method fetkovich alone",
+        ),
+        (vec!["well.OP-1.inflow.flow_efficiency=0.8"], "`flow_efficiency` belongs to the method vogel alone"),
+        (vec!["well.OP-1.inflow.turbulence=1e-4 psi/(STB/d)^2"], "`turbulence` belongs to the method jones alone"),
+        (
+            vec!["well.OP-1.inflow.method=composite", "well.OP-1.inflow.basis=oil"],
+            "the composite of oil and water belongs to the rate of liquid",
+        ),
+        (
+            vec!["well.OP-1.inflow.permeability=60 mD", "well.OP-1.inflow.thickness=40 ft"],
+            "Darcy's productivity index needs the radii",
+        ),
+        (
+            vec![
+                "well.OP-1.inflow.permeability=60 mD",
+                "well.OP-1.drainage_radius=900 ft",
+                "well.OP-1.wellbore_radius=0.354 ft",
+            ],
+            "`permeability` stands alone",
         ),
         (vec!["well.OP-1.inflow.coefficient=0.001 STB/d/psi^2n"], "depends on the exponent n, which is not given"),
         (vec!["well.OP-1.inflow.exponent=0.9", "well.OP-1.inflow.coefficient=-0.001 STB/d/psi^2n"], "must be above 0"),

@@ -8,8 +8,8 @@ use crate::forecast::{EventKind, Forecast, RunError};
 use crate::report::folder::ResultFolder;
 use crate::report::{forecast_files, sanity, summary_json};
 use crate::scenario::{Document, Scenario, data_doubts};
-use crate::study::add_spread;
 use crate::study::calibrate::tubing_doubts;
+use crate::study::{add_spread, rule_ends, store_rule_ends};
 use crate::units::UnitSystem;
 
 pub fn run(args: &ForecastArgs) -> Result<Done, Failure> {
@@ -20,7 +20,9 @@ pub fn run(args: &ForecastArgs) -> Result<Done, Failure> {
 
     let mut forecast = run_one(&scenario).map_err(|e| Failure::of_run(e, &scenario, None))?;
     if !args.no_spread {
-        add_spread(&scenario.field, &mut forecast).map_err(|e| Failure::of_run(e, &scenario, None))?;
+        let (spread, rules) = rayon::join(|| add_spread(&scenario.field, &mut forecast), || rule_ends(&scenario.field));
+        spread.map_err(|e| Failure::of_run(e, &scenario, None))?;
+        store_rule_ends(&scenario.field, &rules, &mut forecast);
     }
     let provenance = provenance(&scenario, file);
     let mut files = forecast_files(&forecast, &provenance)?;

@@ -2,9 +2,11 @@
 
 use super::screen::{Screen, Side};
 use crate::forecast::{Doubt, EventKind, Forecast, ModelOutcome, WellResult, date_at};
+use crate::inflow::{Figure, Interval};
 use crate::report::human::{month, number, short, span, volume};
 use crate::report::labels::{Dimension, UnitSystem, label};
 use crate::report::{CAUTION, Provenance, doubt_text, recovery, sanity};
+use crate::statistics::CONFIDENCE;
 
 /// The summary of a forecast for people; `folder` is where the files are.
 pub fn forecast_text(forecast: &Forecast, provenance: &Provenance, folder: Option<&str>) -> String {
@@ -73,7 +75,7 @@ fn ends(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
     ];
     s.table(&header, &rows);
     for well in &forecast.wells {
-        for text in spread_text(well).into_iter().chain(restart_text(forecast, well)) {
+        for text in spread_text(well).into_iter().chain(rules_text(well)).chain(restart_text(forecast, well)) {
             s.paragraph(2, 2, &text);
         }
         for text in interruptions(forecast, &well.name) {
@@ -102,6 +104,22 @@ fn spread_text(well: &WellResult) -> Option<String> {
     };
     let tuned = if spread.calibrated { ", each tuned to the measurements" } else { "" };
     Some(format!("{name}, over {count} tubing models{tuned}: {text}{left_out}."))
+}
+
+/// The end of natural flow under the other rules for future inflow.
+fn rules_text(well: &WellResult) -> Option<String> {
+    let (own, others) = well.future_rules.split_first()?;
+    let told = |outcome: &ModelOutcome| match outcome {
+        ModelOutcome::Ends(end) => month(end.date),
+        ModelOutcome::StillFlows => "still flows at the end of the forecast".to_owned(),
+        ModelOutcome::Failed(_) => "cannot be run".to_owned(),
+    };
+    // A well that never flowed has no end under any rule.
+    if own.outcome == ModelOutcome::StillFlows && !well.flowing_at_end {
+        return None;
+    }
+    let list: Vec<String> = others.iter().map(|end| format!("{} {}", end.rule, told(&end.outcome))).collect();
+    Some(format!("{}, with another rule for future inflow than {}: {}.", well.name, own.rule, list.join(", ")))
 }
 
 /// When a shutdown becomes final.
@@ -251,6 +269,11 @@ fn tests(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
         s.paragraph(2, 2, &format!("{}: {}", well.name, well.inflow_text));
     }
     for well in &forecast.wells {
+        if let Some(text) = intervals_text(well, units) {
+            s.paragraph(2, 2, &text);
+        }
+    }
+    for well in &forecast.wells {
         if let Some(choke) = &well.choke_text {
             s.paragraph(2, 2, &format!("{}, choke: {choke}", well.name));
         }
@@ -283,6 +306,30 @@ fn tests(s: &mut Screen, forecast: &Forecast, units: UnitSystem) {
         ];
         s.table(&header, &rows);
     }
+}
+
+/// The intervals of a fit. C has none of its own here: it says nothing without n.
+fn intervals_text(well: &WellResult, units: UnitSystem) -> Option<String> {
+    let fit = well.inflow_fit.as_ref()?;
+    let percent = 100.0 * CONFIDENCE;
+    if fit.intervals.is_empty() {
+        // A single test is a doubt of its own.
+        let told = well.tests.len() > 1;
+        return told.then(|| format!("{}: no intervals, with no more tests than fitted figures", well.name));
+    }
+    let shown = |i: &Interval| {
+        let (name, dimension, digits) = match i.figure {
+            Figure::Coefficient => return None,
+            Figure::Exponent => return Some(format!("n {} to {}", number(i.low, 3), number(i.high, 3))),
+            Figure::ProductivityIndex => ("J", Dimension::ProductivityIndex, 3),
+            Figure::Turbulence => ("b", Dimension::Turbulence, 7),
+            Figure::OpenFlow => ("open flow", Dimension::LiquidRate, 0),
+        };
+        let unit = label(units, dimension);
+        Some(format!("{name} {} to {} {}", number(unit.of(i.low), digits), number(unit.of(i.high), digits), unit.text))
+    };
+    let list: Vec<String> = fit.intervals.iter().filter_map(shown).collect();
+    Some(format!("{}, intervals of {} %: {}", well.name, number(percent, 0), list.join("; ")))
 }
 
 /// "+1.2 %"; what rounds to zero has no sign.

@@ -107,7 +107,7 @@ fn at(
 ) -> Result<WellCurves, RunError> {
     let dynamics = Dynamics::new(field, &piece.setup, &piece.modes, &run.memory);
     let y = piece.stretch.at(days);
-    let tank = dynamics.tank(y.as_slice()).map_err(|source| RunError::TooMuchInjected { days, source })?;
+    let tank = dynamics.tank(days, y.as_slice()).map_err(|source| RunError::TooMuchInjected { days, source })?;
     let own = dynamics.well_now(w, &tank);
     let mut other = piece.setup.wells[w].clone();
     let is_own = method == other.tubing.method();

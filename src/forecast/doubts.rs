@@ -5,12 +5,14 @@ use super::doubts_wellhead;
 use super::field::Field;
 use super::screens::Screens;
 use super::{Doubt, DoubtKind, EventKind, Forecast, InjectedFluid, StopReason};
-use crate::inflow::Shape;
+use crate::inflow::{Figure, Shape};
 use crate::tank::{TankState, WaterModel};
 use jiff::civil::Date;
 
 /// A test that the model misses by more than this is doubted (practice: a test within 10 % of the model).
 const TEST_MISS: f64 = 0.10;
+/// Upper over lower limit of the open flow beyond which the tests count as weak.
+const WIDE_OPEN_FLOW: f64 = 2.0;
 /// Part of the stated bottom-hole limit from which injection is doubted.
 const NEAR_LIMIT: f64 = 0.90;
 /// Recovery by depletion alone above which the case is doubted (solution-gas drive seldom exceeds it; common practice).
@@ -197,13 +199,14 @@ fn well(field: &Field, forecast: &Forecast, seen: &Seen, w: usize, doubts: &mut 
             "state exponent = 1.0 (or 0.5) and compare the end of natural flow",
         ));
     }
-    if result.tests.len() == 1 {
+    let open_flow = model.fit.iter().flat_map(|fit| &fit.intervals).find(|i| i.figure == Figure::OpenFlow);
+    if let Some(i) = open_flow.filter(|i| i.high > WIDE_OPEN_FLOW * i.low) {
         doubts.push(doubt(
             DoubtKind::WeakFit,
             name,
-            "the inflow rests on a single test".to_owned(),
-            "one point fixes the coefficient but not the shape of the curve",
-            "run a test at two or three rates before the result goes into an order",
+            format!("the tests leave the open flow anywhere between {:.0} STB/d and {:.0} STB/d", i.low, i.high),
+            "few tests that scatter, or all far from the open flow",
+            "test again at other rates, nearer to that at the end of natural flow; until then run both ends as cases",
         ));
     }
     about_flow(forecast, name, &seen.screens[w], doubts);

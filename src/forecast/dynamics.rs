@@ -111,8 +111,9 @@ impl<'a> Dynamics<'a> {
         }
     }
 
-    /// The tank at a state.
-    pub fn tank(&self, y: &[f64]) -> Result<TankState, ClosureError> {
+    /// The tank at an instant and its state; wells are looked at then until the next call.
+    pub fn tank(&self, t_days: f64, y: &[f64]) -> Result<TankState, ClosureError> {
+        self.memory.at_days.set(t_days);
         self.memory.closures.set(self.memory.closures.get() + 1);
         let tank = &self.setup.tank;
         let mut state = tank.state_after(&self.cumulatives(y), self.memory.pressure_psia.get())?;
@@ -130,14 +131,15 @@ impl<'a> Dynamics<'a> {
         Ok(state)
     }
 
-    /// A well facing a tank state.
+    /// A well facing the tank state looked at.
     pub fn well_now(&self, w: usize, tank: &TankState) -> WellNow<'_> {
         let spec = &self.field.spec;
         let gradient = spec.tank.datum_tvd_ft.map_or(0.0, |_| {
             oil_gradient_psi_ft(&self.field.fluid, tank.pressure_psia, spec.tank.temperature_degf, tank.rs_scf_stb)
         });
         let offer = self.offer(w, tank);
-        let mut now = self.setup.wells[w].now(&self.field.fluid, &offer, gradient, &self.memory.gauge);
+        let days = self.memory.at_days.get();
+        let mut now = self.setup.wells[w].now(&self.field.fluid, &offer, days, gradient, &self.memory.gauge);
         if let Some(gor) = &self.setup.wells[w].spec.makes.gor {
             now.gor_scf_stb = gor.at(self.memory.oil_stb.borrow()[w]);
         }
@@ -474,7 +476,7 @@ impl Problem for Dynamics<'_> {
     type Error = ClosureError;
 
     fn derivative(&self, t_days: f64, y: &[f64], dy: &mut [f64]) -> Result<(), ClosureError> {
-        let tank = self.tank(y)?;
+        let tank = self.tank(t_days, y)?;
         let (layout, initial) = (self.layout, self.setup.tank.initial());
         dy.fill(0.0);
         let mut withdrawal = 0.0;
@@ -530,15 +532,15 @@ impl Problem for Dynamics<'_> {
         self.watches.len()
     }
 
-    fn watches(&self, _t_days: f64, y: &[f64], out: &mut [f64]) -> Result<(), ClosureError> {
-        let tank = self.tank(y)?;
+    fn watches(&self, t_days: f64, y: &[f64], out: &mut [f64]) -> Result<(), ClosureError> {
+        let tank = self.tank(t_days, y)?;
         for (value, watch) in out.iter_mut().zip(&self.watches) {
             *value = self.margin_of(*watch, &tank);
         }
         Ok(())
     }
 
-    fn watch(&self, index: usize, _t_days: f64, y: &[f64]) -> Result<f64, ClosureError> {
-        Ok(self.margin_of(self.watches[index], &self.tank(y)?))
+    fn watch(&self, index: usize, t_days: f64, y: &[f64]) -> Result<f64, ClosureError> {
+        Ok(self.margin_of(self.watches[index], &self.tank(t_days, y)?))
     }
 }

@@ -1,7 +1,7 @@
 //! A field, prepared to run: fluid, tank, wells, injectors.
 
 use super::modes::Layout;
-use super::{Change, FieldSpec, InjectedFluid, InjectorSpec, Tolerance};
+use super::{Change, ChangeSpec, FieldSpec, InjectedFluid, InjectorSpec, Tolerance};
 use crate::fault::Fault;
 use crate::fluid::BlackOil;
 use crate::rock::RelativePermeability;
@@ -151,7 +151,7 @@ impl Field {
 
     /// Faults of the settings that dated events bring, keys under `change[i]`.
     pub fn change_faults(&self) -> Vec<Fault> {
-        let check = |(i, change): (usize, &super::ChangeSpec)| match self.changed(&self.setup, &change.change) {
+        let check = |(i, change): (usize, &ChangeSpec)| match self.changed(&self.setup, change) {
             Err(RunError::Input(faults)) => faults
                 .into_iter()
                 .map(|f| {
@@ -187,13 +187,13 @@ impl Field {
     }
 
     /// The setup after a dated event.
-    pub(super) fn changed(&self, setup: &Setup, change: &Change) -> Result<Setup, RunError> {
+    pub(super) fn changed(&self, setup: &Setup, event: &ChangeSpec) -> Result<Setup, RunError> {
         let mut next = setup.clone();
-        match change {
+        match &event.change {
             Change::Well(i, spec) => {
                 let around = surroundings(&self.spec, &self.fluid, &self.setup.tank, &self.start);
                 next.wells[*i] = setup.wells[*i]
-                    .changed(spec, &around)
+                    .changed(spec, event.on, &around)
                     .map_err(|f| RunError::Input(under(f, &format!("well[{i}]"))))?;
                 next.line_of = line_of(&next.wells, &next.lines).map_err(RunError::Input)?;
             }
@@ -246,6 +246,7 @@ fn surroundings<'a>(spec: &FieldSpec, fluid: &'a BlackOil, tank: &'a Tank, start
         temperature_degf: spec.tank.temperature_degf,
         datum_tvd_ft: spec.tank.datum_tvd_ft,
         start,
+        first_day: spec.period.start,
         accuracy_psi: match spec.tolerance {
             Tolerance::Normal => 0.02,
             Tolerance::Tight => 2e-4,

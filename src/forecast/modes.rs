@@ -255,6 +255,8 @@ impl Layout {
 /// Counters and warm starts that live through the whole run.
 #[derive(Debug, Default)]
 pub(super) struct Memory {
+    /// The instant of the tank state looked at, days: what a well has left of its productivity depends on it.
+    pub at_days: Cell<f64>,
     pub pressure_psia: Cell<f64>,
     pub spots: RefCell<Vec<Spot>>,
     /// What each well brings into its shared line, STB/d or scf/d.

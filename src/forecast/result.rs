@@ -1,6 +1,7 @@
 //! A finished forecast, as plain data: what the reports read.
 
 use super::InjectedFluid;
+use crate::inflow::Fit;
 pub use crate::well::TestCheck;
 use jiff::civil::Date;
 
@@ -307,6 +308,15 @@ pub enum ModelOutcome {
     Failed(String),
 }
 
+/// The end of natural flow under one rule for future inflow.
+#[derive(Debug, Clone, PartialEq)]
+pub struct FutureEnd {
+    /// Name of the rule, as in the scenario file.
+    pub rule: &'static str,
+    /// What it makes of the well.
+    pub outcome: ModelOutcome,
+}
+
 /// The end of natural flow with one tubing model.
 #[derive(Debug, Clone, PartialEq)]
 pub struct ModelEnd {
@@ -366,10 +376,14 @@ pub struct WellResult {
     pub restart_until: Option<f64>,
     /// The end of natural flow over the applicable tubing models, once computed.
     pub spread: Option<Spread>,
+    /// The end under each rule for future inflow, its own first, once computed.
+    pub future_rules: Vec<FutureEnd>,
     /// Highest producing gas-oil ratio, scf/STB, over period ends.
     pub peak_gor_scf_stb: f64,
     /// Inflow equation in words and figures ("Fetkovich, C = 7.9e-4 STB/d/psi^2n, n = 0.85 fitted to 3 tests").
     pub inflow_text: String,
+    /// How the inflow was fitted, with intervals; `None` for a stated coefficient.
+    pub inflow_fit: Option<Fit>,
     /// The choke at its wellhead in words.
     pub choke_text: Option<String>,
     /// Each test beside the model's rate.

@@ -60,8 +60,10 @@ pub(super) fn forecast(field: &Field, trace: &Trace) -> Result<Forecast, RunErro
                 plateau_end: trace.plateau_ends[w],
                 restart_until: restart_until(&list, &rows),
                 spread: None,
+                future_rules: Vec::new(),
                 peak_gor_scf_stb: rows.iter().filter_map(|r| r.gor_scf_stb).fold(0.0, f64::max),
                 inflow_text: model.inflow_text(),
+                inflow_fit: model.fit.clone(),
                 choke_text: model.choke.as_ref().map(Choke::text),
                 tests: model.tests.clone(),
                 curves: Vec::new(),
@@ -175,7 +177,9 @@ impl<'a> Rows<'a> {
         let y = piece.stretch.at(period.run_days);
         let y = y.as_slice();
         let index = self.tank.len();
-        let tank = dynamics.tank(y).map_err(|source| RunError::TooMuchInjected { days: period.run_days, source })?;
+        let tank = dynamics
+            .tank(period.run_days, y)
+            .map_err(|source| RunError::TooMuchInjected { days: period.run_days, source })?;
         let mut flows = (0.0, 0.0, 0.0);
         for w in 0..self.wells.len() {
             let row = self.well_row(w, period, piece, &dynamics, &tank, y);

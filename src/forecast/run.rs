@@ -170,6 +170,8 @@ impl<'a> Run<'a> {
         });
         for well in spec.wells.iter().chain(changed_wells) {
             dates.extend(well.start.iter().chain(&well.end));
+            // The loss of productivity begins with a corner.
+            dates.extend(well.loss.since.filter(|_| well.loss.yearly > 0.0));
         }
         let changed_injectors = spec.changes.iter().filter_map(|c| match &c.change {
             Change::Injector(_, i) => Some(i),
@@ -292,7 +294,7 @@ impl<'a> Run<'a> {
 
     pub(super) fn tank_now(&self) -> Result<TankState, RunError> {
         let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
-        dynamics.tank(self.y.as_slice()).map_err(|source| RunError::TooMuchInjected { days: self.t, source })
+        dynamics.tank(self.t, self.y.as_slice()).map_err(|source| RunError::TooMuchInjected { days: self.t, source })
     }
 
     /// Applies everything scheduled for this instant.
@@ -306,7 +308,7 @@ impl<'a> Run<'a> {
             .filter(|c| self.day(c.on) == self.t || (self.t == 0.0 && self.day(c.on) < 0.0))
             .collect();
         for change in changes {
-            self.setup = Arc::new(self.field.changed(&self.setup, &change.change)?);
+            self.setup = Arc::new(self.field.changed(&self.setup, change)?);
             self.event(&change.name, EventKind::Scheduled, change.text.clone());
             if let Change::Well(w, _) = change.change {
                 self.returns[w] = Returns::NONE;

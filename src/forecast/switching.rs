@@ -36,7 +36,7 @@ impl Run<'_> {
 
     fn why_apart(&self, w: usize) -> StopReason {
         let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
-        match dynamics.tank(self.y.as_slice()) {
+        match dynamics.tank(self.t, self.y.as_slice()) {
             Ok(tank) => why_apart(&dynamics, w, &dynamics.well_now(w, &tank)),
             Err(_) => StopReason::NoCrossing,
         }
@@ -45,7 +45,7 @@ impl Run<'_> {
     fn flow_end(&self, w: usize, reason: StopReason) -> Result<FlowEnd, RunError> {
         let dynamics = Dynamics::new(self.field, &self.setup, &self.modes, &self.trace.memory);
         // When the balance has run out the state at the start stands in.
-        let tank = dynamics.tank(self.y.as_slice()).unwrap_or(self.field.start);
+        let tank = dynamics.tank(self.t, self.y.as_slice()).unwrap_or(self.field.start);
         let now = dynamics.well_now(w, &tank);
         let rate = dynamics.rate(w, &now);
         let margin = now.survey().margin_psi;

@@ -71,10 +71,10 @@ pub fn wells_after_events(field: &Field) -> Result<Vec<WellModel>, RunError> {
     let mut setup = field.setup.as_ref().clone();
     for change in &field.spec.changes {
         if let Change::Well(..) = change.change {
-            setup = field.changed(&setup, &change.change)?;
+            setup = field.changed(&setup, change)?;
         }
     }
-    Ok(setup.wells)
+    Ok(setup.wells.into_iter().map(|well| well.frozen(0.0)).collect())
 }
 
 fn well_track(field: &Field, run: &Trace, w: usize) -> Result<WellTrack, RunError> {
@@ -92,7 +92,7 @@ fn well_track(field: &Field, run: &Trace, w: usize) -> Result<WellTrack, RunErro
         for i in 0..=steps as u32 {
             let days = from + (to - from) * f64::from(i) / steps;
             let y = piece.stretch.at(days);
-            let state = dynamics.tank(y.as_slice()).map_err(too_much(days))?;
+            let state = dynamics.tank(days, y.as_slice()).map_err(too_much(days))?;
             states.push(dynamics.offer(w, &state));
             taken = dynamics.cumulatives(y.as_slice());
         }
@@ -104,7 +104,7 @@ fn well_track(field: &Field, run: &Trace, w: usize) -> Result<WellTrack, RunErro
         None => None,
         Some(piece) => {
             let dynamics = Dynamics::new(field, &piece.setup, &piece.modes, &run.memory);
-            dynamics.tank(piece.stretch.at(end_days).as_slice()).map_err(too_much(end_days))?;
+            dynamics.tank(end_days, piece.stretch.at(end_days).as_slice()).map_err(too_much(end_days))?;
             KeptLine::of(dynamics.line(w))
         }
     };
@@ -115,7 +115,7 @@ fn well_track(field: &Field, run: &Trace, w: usize) -> Result<WellTrack, RunErro
         moments: moments(field, run, w, end_days)?,
         end,
         flowing_at_end: end.is_none() && run.pieces.last().is_some_and(|p| p.modes.wells[w].flows()),
-        model: setup.wells[w].clone(),
+        model: setup.wells[w].clone().frozen(end_days),
         tank: last_passages(states),
         end_pressure_psia,
         line,
@@ -138,7 +138,7 @@ fn moments(field: &Field, run: &Trace, w: usize, end_days: f64) -> Result<Vec<We
         }
         let dynamics = Dynamics::new(field, &piece.setup, &piece.modes, &run.memory);
         let tank = dynamics
-            .tank(piece.stretch.at(days).as_slice())
+            .tank(days, piece.stretch.at(days).as_slice())
             .map_err(|source| RunError::TooMuchInjected { days, source })?;
         let now = dynamics.well_now(w, &tank);
         list.push(WellMoment {

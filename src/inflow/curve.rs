@@ -1,39 +1,6 @@
 //! One inflow curve: rate against flowing pressure at fixed reservoir conditions.
 
-/// Shape below the bubble point.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub enum Shape {
-    /// Straight at all pressures.
-    Straight,
-    /// Vogel (1968).
-    Vogel,
-    /// Fetkovich (1973) with exponent n.
-    Fetkovich {
-        /// Exponent, 0.5 to 1.
-        n: f64,
-    },
-}
-
-impl Shape {
-    /// Drawdown that J multiplies, psi: see the module's equations. `effective_psia` is min(pr, pb).
-    pub fn drawdown(self, reservoir_psia: f64, effective_psia: f64, flowing_psia: f64) -> f64 {
-        if flowing_psia >= effective_psia || self == Self::Straight {
-            return reservoir_psia - flowing_psia;
-        }
-        let above = reservoir_psia - effective_psia;
-        match self {
-            Self::Straight => reservoir_psia - flowing_psia,
-            Self::Vogel => {
-                let x = flowing_psia / effective_psia;
-                above + effective_psia / 1.8 * (1.0 - x * (0.2 + 0.8 * x))
-            }
-            Self::Fetkovich { n } => {
-                let squares = (effective_psia - flowing_psia) * (effective_psia + flowing_psia);
-                above + squares.powf(n) / (2.0 * effective_psia.powf(2.0 * n - 1.0))
-            }
-        }
-    }
-}
+use super::Shape;
 
 /// Open flow below which a well does not flow at all, STB/d.
 const LEAST_OPEN_FLOW_STB_D: f64 = 1e-3;
@@ -92,24 +59,6 @@ impl InflowCurve {
         if self.open_flow_stb_d <= 0.0 {
             return if rate_stb_d > 0.0 { 0.0 } else { self.reservoir_psia };
         }
-        let drawdown = rate_stb_d / self.j_stb_d_psi;
-        let straight = self.reservoir_psia - drawdown;
-        if straight >= self.effective_psia || self.shape == Shape::Straight {
-            return straight.max(0.0);
-        }
-        let pe = self.effective_psia;
-        let below = drawdown - (self.reservoir_psia - pe);
-        match self.shape {
-            Shape::Straight => straight.max(0.0),
-            Shape::Vogel => {
-                // 0.8 x^2 + 0.2 x - (1 - v) = 0
-                let left = 1.0 - 1.8 * below / pe;
-                if left <= 0.0 { 0.0 } else { pe * ((0.04 + 3.2 * left).sqrt() - 0.2) / 1.6 }
-            }
-            Shape::Fetkovich { n } => {
-                let squares = (2.0 * pe.powf(2.0 * n - 1.0) * below).powf(1.0 / n);
-                (pe * pe - squares).max(0.0).sqrt()
-            }
-        }
+        self.shape.flowing_psia(self.reservoir_psia, self.effective_psia, rate_stb_d / self.j_stb_d_psi)
     }
 }

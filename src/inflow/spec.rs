@@ -9,8 +9,14 @@ pub enum InflowMethod {
     Straight,
     /// Vogel (1968) below the bubble point, straight above it.
     Vogel,
+    /// Wiggins (1994) below the bubble point, straight above it.
+    Wiggins,
     /// Fetkovich (1973) below the bubble point, straight above it.
     Fetkovich,
+    /// Jones, Blount and Glaze (1976) at all pressures.
+    Jones,
+    /// Oil by Vogel and water by a straight line (Brown 1984).
+    Composite,
 }
 
 /// How the coefficient is carried to future reservoir pressures.
@@ -20,6 +26,22 @@ pub enum FutureRule {
     Pressure,
     /// Standing (1971): proportional to kro/(mu_o*Bo).
     Mobility,
+    /// Eickmeier (1968): open flow below the bubble point to the cube of reservoir pressure.
+    Cubic,
+}
+
+impl FutureRule {
+    /// All of them.
+    pub const ALL: [Self; 3] = [Self::Pressure, Self::Mobility, Self::Cubic];
+
+    /// As the scenario names it.
+    pub fn name(self) -> &'static str {
+        match self {
+            Self::Pressure => "pressure",
+            Self::Mobility => "mobility",
+            Self::Cubic => "cubic",
+        }
+    }
 }
 
 /// Which rate the coefficient belongs to.
@@ -104,6 +126,15 @@ pub enum Coefficient {
         /// Reservoir pressure to which it belongs, psia.
         reservoir_psia: f64,
     },
+    /// Darcy's index in pseudo-steady flow from the rock, with the fluid at `reservoir_psia`.
+    Darcy {
+        /// Permeability to oil at connate water over kro there: the absolute one, mD.
+        permeability_md: f64,
+        /// Net thickness open to the well, ft.
+        thickness_ft: f64,
+        /// Reservoir pressure to which it belongs, psia.
+        reservoir_psia: f64,
+    },
     /// Absolute open flow at `reservoir_psia`.
     OpenFlow {
         /// STB/d at zero flowing pressure.
@@ -131,6 +162,10 @@ pub struct InflowSpec {
     pub basis: RateBasis,
     /// Fetkovich's n; `None`: fitted, or 1 where it cannot be.
     pub exponent: Option<f64>,
+    /// Flow efficiency of Vogel's curve; `None`: 1, and no change of it with skin.
+    pub flow_efficiency: Option<f64>,
+    /// b of Jones, Blount and Glaze, psi/(STB/d)^2; `None`: fitted.
+    pub turbulence_psi_d2_stb2: Option<f64>,
     /// Given or fitted.
     pub coefficient: Coefficient,
 }

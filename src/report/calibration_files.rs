@@ -4,7 +4,7 @@ use super::csv_files::{cell, csv_bytes};
 use super::json::Json;
 use super::labels::{Dimension, Label, UnitSystem, label};
 use super::{Provenance, ReportError};
-use crate::inflow::{RateBasis, Shape};
+use crate::inflow::{FutureRule, RateBasis, Shape};
 use crate::study::calibrate::{
     BackCalculated, Finding, Fitted, Held, Kind, Measurement, Misses, ModelScore, Score, WellCalibration,
 };
@@ -328,7 +328,10 @@ fn inflow_lines(inflow: &BackCalculated, units: UnitSystem) -> String {
     let per = units.unit(Dimension::PressureDifference).factor;
     let method = match inflow.shape {
         Shape::Straight => "straight",
-        Shape::Vogel => "vogel",
+        Shape::Vogel | Shape::FlowEfficiency { .. } => "vogel",
+        Shape::Wiggins => "wiggins",
+        Shape::Jones { .. } => "jones",
+        Shape::Composite { .. } => "composite",
         Shape::Fetkovich { .. } => "fetkovich",
     };
     text.push_str(&format!("method      = \"{method}\"\n"));
@@ -339,13 +342,29 @@ fn inflow_lines(inflow: &BackCalculated, units: UnitSystem) -> String {
             let c = inflow.coefficient * rate / per.powf(2.0 * n.parse().unwrap_or(1.0));
             text.push_str(&format!("exponent    = {n}\ncoefficient = \"{c:.6e} {rate_name}/{pressure_name}^2n\"\n"));
         }
-        Shape::Straight | Shape::Vogel => {
+        shape => {
+            if let Shape::FlowEfficiency { efficiency } = shape {
+                text.push_str(&format!("flow_efficiency = {}\n", rounded(efficiency, 6)));
+            }
+            if let Shape::Jones { turbulence_1_psi } = shape {
+                let b = turbulence_1_psi / (inflow.coefficient * inflow.coefficient) * per / (rate * rate);
+                text.push_str(&format!("turbulence  = \"{b:.6e} {pressure_name}/({rate_name})^2\"\n"));
+            }
             let j = inflow.coefficient * rate / per;
             text.push_str(&format!("productivity_index = \"{j:.6e} {rate_name}/{pressure_name}\"\n"));
         }
     }
     if inflow.basis == RateBasis::Oil {
         text.push_str("basis       = \"oil\"\n");
+    }
+    if inflow.future != FutureRule::Pressure {
+        text.push_str(&format!("future      = \"{}\"\n", inflow.future.name()));
+    }
+    if inflow.loss.yearly > 0.0 {
+        text.push_str(&format!("yearly_loss = {}\n", rounded(inflow.loss.yearly, 6)));
+    }
+    if let Some(since) = inflow.loss.since {
+        text.push_str(&format!("loss_since  = {since}\n"));
     }
     let pressure = label(units, Dimension::Pressure);
     text.push_str(&format!(

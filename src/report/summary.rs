@@ -1,10 +1,12 @@
 //! `summary.json`: the answers in one small file.
 
 use super::json::Json;
-use super::labels::{Dimension, Label, label};
+use super::labels::{Dimension, Label, UnitSystem, label};
 use super::table::recovery;
 use super::{Provenance, ReportError, sanity};
-use crate::forecast::{Doubt, FlowEnd, Forecast, InjectorResult, ModelOutcome, Spread, WellResult, date_at};
+use crate::forecast::{Doubt, FlowEnd, Forecast, FutureEnd, InjectorResult, ModelOutcome, Spread, WellResult, date_at};
+use crate::inflow::{Figure, Fit, Shape};
+use crate::statistics::CONFIDENCE;
 
 /// `summary.json`.
 ///
@@ -16,6 +18,7 @@ pub fn summary_json(forecast: &Forecast, provenance: &Provenance) -> Result<Vec<
 
 /// The labels that the summary needs.
 struct Units {
+    system: UnitSystem,
     liquid: Label,
     gas: Label,
     liquid_rate: Label,
@@ -34,6 +37,7 @@ fn plain(key: &str, value: impl Into<Json>) -> (String, Json) {
 
 fn summary(forecast: &Forecast, provenance: &Provenance) -> Json {
     let units = Units {
+        system: provenance.units,
         liquid: label(provenance.units, Dimension::LiquidVolume),
         gas: label(provenance.units, Dimension::GasVolume),
         liquid_rate: label(provenance.units, Dimension::LiquidRate),
@@ -144,7 +148,9 @@ fn well(forecast: &Forecast, well: &WellResult, units: &Units) -> Json {
         entry(units.liquid, "water_cum", Some(last.map_or(0.0, |r| r.water_cum_stb))),
         entry(units.gas, "gas_cum", Some(last.map_or(0.0, |r| r.gas_cum_scf))),
         entry(units.gor, "peak_gor", Some(well.peak_gor_scf_stb)),
+        plain("future_rules", Json::List(well.future_rules.iter().map(future_rule).collect())),
         plain("inflow", well.inflow_text.as_str()),
+        plain("inflow_fit", well.inflow_fit.as_ref().map_or(Json::Null, |fit| inflow_fit(fit, units.system))),
         plain("choke", well.choke_text.as_deref().map_or(Json::Null, Json::text)),
         plain("tests", Json::List(tests)),
     ])
@@ -163,11 +169,7 @@ fn spread(spread: &Spread) -> Json {
         .models
         .iter()
         .map(|m| {
-            let (date, text) = match &m.outcome {
-                ModelOutcome::Ends(end) => (Json::text(end.date.to_string()), end.reason.text().to_owned()),
-                ModelOutcome::StillFlows => (Json::Null, "still flows".to_owned()),
-                ModelOutcome::Failed(why) => (Json::Null, why.clone()),
-            };
+            let (date, text) = outcome(&m.outcome);
             Json::Object(vec![
                 plain("method", m.method),
                 plain("natural_flow_end", date),
@@ -180,6 +182,59 @@ fn spread(spread: &Spread) -> Json {
         plain("latest", date(latest)),
         plain("calibrated", Json::Bool(spread.calibrated)),
         plain("models", Json::List(models)),
+    ])
+}
+
+/// Date of the end, or null, and why.
+fn outcome(outcome: &ModelOutcome) -> (Json, String) {
+    match outcome {
+        ModelOutcome::Ends(end) => (Json::text(end.date.to_string()), end.reason.text().to_owned()),
+        ModelOutcome::StillFlows => (Json::Null, "still flows".to_owned()),
+        ModelOutcome::Failed(why) => (Json::Null, why.clone()),
+    }
+}
+
+fn future_rule(end: &FutureEnd) -> Json {
+    let (date, text) = outcome(&end.outcome);
+    Json::Object(vec![plain("rule", end.rule), plain("natural_flow_end", date), plain("reason", text.as_str())])
+}
+
+/// The fit of the inflow with its intervals.
+fn inflow_fit(fit: &Fit, units: UnitSystem) -> Json {
+    let intervals = fit
+        .intervals
+        .iter()
+        .map(|i| {
+            let plain_number = |name: &'static str| (name, String::new(), 1.0);
+            let of = |name: &'static str, dimension: Dimension| {
+                let label = label(units, dimension);
+                (name, format!("_{}", label.suffix), label.of(1.0))
+            };
+            let (name, suffix, factor) = match (i.figure, fit.shape) {
+                (Figure::Exponent, _) => plain_number("n"),
+                (Figure::Coefficient, Shape::Fetkovich { n }) => {
+                    let rate = label(units, Dimension::LiquidRate);
+                    let pressure = label(units, Dimension::PressureDifference);
+                    let suffix = format!("_{}_{}2n", rate.suffix, pressure.suffix);
+                    ("c", suffix, rate.of(1.0) / pressure.of(1.0).powf(2.0 * n))
+                }
+                (Figure::Coefficient, _) => plain_number("c"),
+                (Figure::ProductivityIndex, _) => of("productivity_index", Dimension::ProductivityIndex),
+                (Figure::Turbulence, _) => of("turbulence", Dimension::Turbulence),
+                (Figure::OpenFlow, _) => of("open_flow", Dimension::LiquidRate),
+            };
+            Json::Object(vec![
+                plain("figure", name),
+                plain(&format!("value{suffix}"), factor * i.value),
+                plain(&format!("low{suffix}"), factor * i.low),
+                plain(&format!("high{suffix}"), factor * i.high),
+            ])
+        })
+        .collect();
+    Json::Object(vec![
+        plain("rms_relative", fit.rms_relative),
+        plain("confidence", CONFIDENCE),
+        plain("intervals", Json::List(intervals)),
     ])
 }
 

@@ -5,15 +5,13 @@
 use crate::fault::Fault;
 use crate::fluid::FluidSpec;
 use crate::forecast::{InjectionControl, InjectorSpec, PeriodSpec};
-use crate::inflow::Coefficient;
+use crate::inflow::{Coefficient, drainage_term};
 use crate::tank::{TankSpec, WaterModel};
 use crate::well::WellSpec;
 use jiff::civil::Date;
 
 /// Rounding that two ways of writing one pressure may differ by, psi.
 pub(super) const SAME_PRESSURE_PSI: f64 = 0.05;
-/// r in the skin equation where no radii are given (design section 4.3).
-const DEFAULT_LOG_RADII: f64 = 7.0;
 /// Rounding that depths in a survey may carry, ft.
 pub(super) const DEPTH_ROUNDING_FT: f64 = 0.01;
 
@@ -189,8 +187,7 @@ pub(super) fn well(
             );
             f64::NAN
         }
-        Some((drainage_ft, wellbore_ft)) => (0.472 * drainage_ft / wellbore_ft).ln(),
-        None => DEFAULT_LOG_RADII,
+        radii => drainage_term(radii, well.shape_factor),
     };
     for (key, skin) in [("skin", well.skin), ("skin_at_test", well.skin_at_test)] {
         if skin <= 1.0 - log_radii {

@@ -25,6 +25,20 @@ const SKIN: Usual = Usual {
     high: 50.0,
     cause: "a slip of the pen, or a fractured well, whose inflow a skin describes badly",
 };
+const FLOW_EFFICIENCY: Usual = Usual {
+    what: "the flow efficiency",
+    unit: "",
+    low: 0.2,
+    high: 2.0,
+    cause: "a percentage, or a skin taken for an efficiency; Standing's charts hold 0.5 to 1.5",
+};
+const YEARLY_LOSS: Usual = Usual {
+    what: "the yearly loss of productivity",
+    unit: "",
+    low: 0.0,
+    high: 0.3,
+    cause: "a slip of the pen, or a well that is treated so often that its average counts",
+};
 /// Pressure over vertical depth.
 const GRADIENT: Usual = Usual {
     what: "the tank's pressure over the vertical depth of the perforations",
@@ -40,6 +54,8 @@ pub(super) fn well(well: &WellSpec, field: &FieldSpec) -> Vec<Doubt> {
     let mut out = Vec::new();
     out.extend(well.tubing.sections.iter().filter_map(|section| DIAMETER.judge(about, section.diameter_in)).take(1));
     out.extend(SKIN.judge(about, well.skin));
+    out.extend(well.inflow.flow_efficiency.and_then(|efficiency| FLOW_EFFICIENCY.judge(about, efficiency)));
+    out.extend(YEARLY_LOSS.judge(about, well.loss.yearly));
     if let Some(depth_ft) = depth_of_pressure(well, field) {
         out.extend(GRADIENT.judge(about, field.tank.pressure_psia / depth_ft));
     }

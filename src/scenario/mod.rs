@@ -17,6 +17,7 @@ mod load;
 mod overrides;
 mod problem;
 mod read_aquifer;
+mod read_inflow;
 mod read_lab;
 mod read_line;
 mod read_onsets;

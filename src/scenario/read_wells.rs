@@ -2,28 +2,27 @@
 
 use super::flowing_survey;
 use super::problem::Problem;
+use super::read_inflow::{inflow, shape_factor};
 use super::read_line;
 use super::read_water;
 use super::reader::Reader;
-use super::schema::{LATER_FUTURE_RULES, LATER_TUBING_METHODS};
+use super::schema::LATER_TUBING_METHODS;
 use super::section::Section;
 use super::survey;
-use super::tree::Value;
 use crate::forecast::{InjectedFluid, InjectionControl, InjectorSpec};
-use crate::inflow::{Coefficient, FutureRule, InflowMethod, InflowSpec, InflowTest, Measured, RateBasis};
 use crate::tubing::{HeatSpec, RestrictionSpec, TubingMethod, TubingSection, TubingSpec};
-use crate::units::parse_flow_coefficient;
 use crate::well::{LineSpec, ScreenSpec, WellSpec};
 
 /// Keys of which exactly one may be there; an override that sets one removes the others.
 pub(super) const EXCLUSIVE: &[(&str, &[&str])] = &[
     ("injector", &["rate", "voidage_replacement"]),
     ("well.tubing", &["diameter", "sections"]),
-    ("well.inflow", &["test", "productivity_index", "open_flow", "coefficient"]),
+    ("well.inflow", &["test", "productivity_index", "permeability", "open_flow", "coefficient"]),
     ("well.tubing", &["wellhead_temperature", "temperature", "heat"]),
     ("well", &["line_pressure", "line"]),
     ("well.choke", &["discharge_coefficient", "test"]),
     ("tank", &["pore_compressibility", "compaction"]),
+    ("well", &["drainage_shape", "shape_factor"]),
 ];
 
 /// Notes when none or several of the alternatives are there.
@@ -69,6 +68,7 @@ pub(super) fn well(
     both_or_none(reader, section, ["drainage_radius", "wellbore_radius"]);
     let drainage_radius_ft = reader.optional_quantity(section, "drainage_radius");
     let wellbore_radius_ft = reader.optional_quantity(section, "wellbore_radius");
+    let (inflow, loss) = inflow(reader, section, tank_pressure_psia);
     let spec = WellSpec {
         name: reader.name(section).unwrap_or_default(),
         line_pressure_psia,
@@ -86,6 +86,8 @@ pub(super) fn well(
         skin: reader.number(section, "skin"),
         skin_at_test: reader.number(section, "skin_at_test"),
         radii_ft: drainage_radius_ft.zip(wellbore_radius_ft),
+        shape_factor: shape_factor(reader, section),
+        loss,
         minimum_flowing_pressure_psia: reader.optional_quantity(section, "minimum_flowing_pressure"),
         minimum_rate_stb_d: reader.optional_quantity(section, "minimum_rate"),
         maximum_water_cut: reader.optional_number(section, "maximum_water_cut"),
@@ -95,154 +97,12 @@ pub(super) fn well(
             maximum_velocity_ft_s: reader.optional_quantity(section, "maximum_velocity"),
             erosional_constant: reader.optional_number(section, "erosional_constant"),
         },
-        inflow: inflow(reader, section, tank_pressure_psia),
+        inflow,
         tubing: tubing(reader, section),
         flowing_surveys: flowing_survey::read(reader, section),
     };
     reader.finish(section);
     spec
-}
-
-fn inflow(reader: &mut Reader, well: &Section<'_>, tank_pressure_psia: f64) -> InflowSpec {
-    let section = reader.section(well, "inflow");
-    let method = match reader.choice(&section, "method", &[]) {
-        Some("straight") => InflowMethod::Straight,
-        Some("vogel") => InflowMethod::Vogel,
-        _ => InflowMethod::Fetkovich,
-    };
-    let future = match reader.choice(&section, "future", LATER_FUTURE_RULES) {
-        Some("mobility") => FutureRule::Mobility,
-        _ => FutureRule::Pressure,
-    };
-    let basis = match reader.choice(&section, "basis", &[]) {
-        Some("oil") => RateBasis::Oil,
-        _ => RateBasis::Liquid,
-    };
-    let exponent = reader.optional_number(&section, "exponent");
-    exactly_one(reader, &section, "the inflow's coefficient", EXCLUSIVE[2].1);
-    if section.has("exponent") && method != InflowMethod::Fetkovich {
-        reader.note(
-            Problem::new(section.at("exponent"), "`exponent` belongs to the method fetkovich alone")
-                .label("not used by this method"),
-        );
-    }
-    let reservoir_psia = reader.optional_quantity(&section, "reservoir").unwrap_or(tank_pressure_psia);
-    let tests: Vec<InflowTest> = if section.has("test") {
-        reader.sections(&section, "test").iter().map(|test| inflow_test(reader, test)).collect()
-    } else {
-        Vec::new()
-    };
-    if section.has("test") && section.has("reservoir") {
-        reader.note(
-            Problem::new(section.at("reservoir"), "each test states its own reservoir pressure")
-                .label("belongs to a stated coefficient alone"),
-        );
-    }
-    let index = reader.optional_quantity(&section, "productivity_index");
-    let open_flow = reader.optional_quantity(&section, "open_flow");
-    let c = flow_coefficient(reader, &section, method, exponent);
-    let coefficient = if let Some(j_stb_d_psi) = index {
-        Coefficient::ProductivityIndex { j_stb_d_psi, reservoir_psia }
-    } else if let Some(rate_stb_d) = open_flow {
-        Coefficient::OpenFlow { rate_stb_d, reservoir_psia }
-    } else if let Some(c) = c {
-        Coefficient::Fetkovich { c, reservoir_psia }
-    } else {
-        Coefficient::Tests(tests)
-    };
-    reader.finish(&section);
-    InflowSpec { method, future, basis, exponent, coefficient }
-}
-
-fn flow_coefficient(
-    reader: &mut Reader,
-    section: &Section<'_>,
-    method: InflowMethod,
-    exponent: Option<f64>,
-) -> Option<f64> {
-    let entry = section.get("coefficient")?;
-    let at = entry.node.at.clone();
-    let example = "0.00079 STB/d/psi^2n";
-    if method != InflowMethod::Fetkovich {
-        reader.note(
-            Problem::new(at, "`coefficient` belongs to the method fetkovich alone")
-                .label("not used by this method")
-                .help("state productivity_index or open_flow"),
-        );
-        return Some(f64::NAN);
-    }
-    let Some(text) = entry.node.text() else {
-        let what = match entry.node.value {
-            Value::Number(_) => "has no unit".to_owned(),
-            ref other => format!("is {}", other.kind()),
-        };
-        reader.note(
-            Problem::new(at, format!("`well.inflow.coefficient` {what}"))
-                .label(format!("a flow coefficient is expected, like \"{example}\"")),
-        );
-        return Some(f64::NAN);
-    };
-    let Some(exponent) = exponent else {
-        reader.note(
-            Problem::new(at, "the unit of `coefficient` depends on the exponent n, which is not given")
-                .label("`exponent` is expected beside it"),
-        );
-        return Some(f64::NAN);
-    };
-    match parse_flow_coefficient(text, exponent) {
-        Ok(c) if c > 0.0 && c.is_finite() => return Some(c),
-        Ok(_) if exponent.is_nan() => {}
-        Ok(_) => reader.note(
-            Problem::new(at, "`well.inflow.coefficient` must be above 0")
-                .label("a positive flow coefficient is expected"),
-        ),
-        Err(error) => {
-            let mut problem = Problem::new(at, format!("`well.inflow.coefficient`: {}", error.message))
-                .label("a flow coefficient is expected");
-            problem.help = error.help;
-            reader.note(problem);
-        }
-    }
-    Some(f64::NAN)
-}
-
-fn inflow_test(reader: &mut Reader, section: &Section<'_>) -> InflowTest {
-    if !section.has("flowing") && !section.has("wellhead") {
-        reader.note(
-            Problem::new(section.at(""), "the test's pressure is not given")
-                .label("flowing, wellhead, or both are expected"),
-        );
-    }
-    let flowing_psia = reader.optional_quantity(section, "flowing");
-    let wellhead_psia = reader.optional_quantity(section, "wellhead");
-    let gor_scf_stb = reader.optional_quantity(section, "gor");
-    if section.has("wellhead") && !section.has("gor") {
-        reader.note(
-            Problem::new(
-                section.at("wellhead"),
-                "a separator test needs its gas-oil ratio to compute the pressure along the tubing",
-            )
-            .label("`gor` is expected beside it"),
-        );
-    }
-    let measured = match (flowing_psia, wellhead_psia) {
-        (None, Some(wellhead_psia)) => {
-            Measured::Separator { wellhead_psia, gor_scf_stb: gor_scf_stb.unwrap_or(f64::NAN) }
-        }
-        (Some(flowing_psia), Some(wellhead_psia)) => {
-            Measured::Both { flowing_psia, wellhead_psia, gor_scf_stb: gor_scf_stb.unwrap_or(f64::NAN) }
-        }
-        (flowing_psia, None) => Measured::Gauged { flowing_psia: flowing_psia.unwrap_or(f64::NAN) },
-    };
-    let test = InflowTest {
-        on: reader.day(section, "on"),
-        reservoir_psia: reader.quantity(section, "reservoir"),
-        rate_stb_d: reader.quantity(section, "rate"),
-        water_cut: reader.number(section, "water_cut"),
-        measured,
-    };
-    reader.finish(section);
-    test
 }
 
 fn tubing(reader: &mut Reader, well: &Section<'_>) -> TubingSpec {

@@ -156,8 +156,6 @@ pub const LATER: &[(&str, &str)] = &[("history", "measured history"), ("odds", "
 pub const LATER_WATER_MODELS: &[&str] = &[];
 /// Tubing methods that come with a later version.
 pub const LATER_TUBING_METHODS: &[&str] = &["orkiszewski", "poettmann-carpenter"];
-/// Rules for future inflow that come with a later version.
-pub const LATER_FUTURE_RULES: &[&str] = &["cubic"];
 
 /// Pressures inside the ground, psia.
 const PRESSURE: Limits = above(0.0, 30_000.0);
@@ -322,6 +320,8 @@ pub const KEYS: &[Key] = &[
     key("well.skin", Number(SKIN), Default("0.0"), "Skin"),
     key("well.skin_at_test", Number(SKIN), Default("0.0"), "Skin to which the inflow coefficient belongs"),
     key("well.drainage_radius", Quantity(D::Length, above(0.0, 50_000.0)), Optional, "With wellbore_radius: r = ln(0.472 re/rw) of the skin equation; otherwise r = 7.0"),
+    key("well.drainage_shape", Choice(&["circle", "hexagon", "square", "triangle", "rhombus", "square-side", "square-corner", "rectangle-2-1", "rectangle-4-1", "rectangle-5-1"]), Optional, "Of the drainage area, whose radius is that of a circle as large; this, shape_factor, or a circle"),
+    key("well.shape_factor", Number(above(0.0, 40.0)), Optional, "Shape factor CA of any other drainage area"),
     key("well.wellbore_radius", Quantity(D::Length, above(0.0, 5.0)), Optional, "Goes with drainage_radius"),
     key("well.minimum_flowing_pressure", Quantity(D::Pressure, PRESSURE), Optional, "Lowest allowed flowing pressure at the perforations"),
     key("well.minimum_rate", Quantity(D::LiquidRate, RATE), Optional, "Producing-day liquid rate below which it is given up"),
@@ -332,15 +332,21 @@ pub const KEYS: &[Key] = &[
     key("well.erosional_constant", Number(above(0.0, 1_000.0)), Optional, "Your own C of the limit C/sqrt(mixture density) on the velocity at the wellhead, in ft/s and lb/ft3; as maximum_velocity"),
 
     key("well.inflow", Kind::Table, Required, "Inflow"),
-    key("well.inflow.method", Choice(&["straight", "vogel", "fetkovich"]), Default("\"fetkovich\""), "Shape of the curve below the bubble point"),
-    key("well.inflow.future", Choice(&["pressure", "mobility"]), Default("\"pressure\""), "How the coefficient is carried to future pressures"),
+    key("well.inflow.method", Choice(&["straight", "vogel", "wiggins", "fetkovich", "jones", "composite"]), Default("\"fetkovich\""), "Shape of the curve, below the bubble point for all but straight and jones"),
+    key("well.inflow.future", Choice(&["pressure", "mobility", "cubic"]), Default("\"pressure\""), "How the coefficient is carried to future pressures"),
     key("well.inflow.basis", Choice(&["liquid", "oil"]), Default("\"liquid\""), "Which rate the coefficient belongs to"),
     key("well.inflow.exponent", Number(from(0.3, 1.5)), Optional, "Fetkovich's n; otherwise fitted, or 1 where it cannot be"),
-    key("well.inflow.test", Tables, Optional, "Measured points: one of test, productivity_index, open_flow, coefficient"),
+    key("well.inflow.flow_efficiency", Number(from(0.05, 10.0)), Optional, "Of vogel: drawdown that would do without skin over the well's own; otherwise the plain curve"),
+    key("well.inflow.turbulence", Quantity(D::Turbulence, from(0.0, 1.0e3)), Optional, "b of jones; otherwise fitted to the tests"),
+    key("well.inflow.test", Tables, Optional, "Measured points: one of test, productivity_index, permeability, open_flow, coefficient"),
     key("well.inflow.productivity_index", Quantity(D::ProductivityIndex, above(0.0, 10_000.0)), Optional, "Above the bubble point (at any pressure for straight)"),
+    key("well.inflow.permeability", Quantity(D::Permeability, above(0.0, 1.0e6)), Optional, "Absolute, for Darcy's productivity index; needs thickness and both radii"),
+    key("well.inflow.thickness", Quantity(D::Length, above(0.0, 10_000.0)), Optional, "Net thickness open to the well; goes with permeability"),
     key("well.inflow.open_flow", Quantity(D::LiquidRate, RATE), Optional, "Absolute open flow"),
     key("well.inflow.coefficient", FlowCoefficient, Optional, "Fetkovich's C; needs exponent"),
     key("well.inflow.reservoir", Quantity(D::Pressure, PRESSURE), Optional, "Reservoir pressure to which the stated coefficient belongs; otherwise the tank's initial pressure"),
+    key("well.inflow.yearly_loss", Fraction(from(0.0, 0.95)), Default("0.0"), "Part of the productivity lost in every year to scale and fines; a stimulation by an event (skin, loss_since, or a new coefficient) brings it back"),
+    key("well.inflow.loss_since", Day, Optional, "Day from which it counts: that of the coefficient or of the last stimulation; otherwise the well's first day in the forecast"),
     key("well.inflow.test.on", Day, Optional, "Date of the test"),
     key("well.inflow.test.reservoir", Quantity(D::Pressure, PRESSURE), Required, "Reservoir pressure at the time, at the tank's datum"),
     key("well.inflow.test.flowing", Quantity(D::Pressure, PRESSURE), Optional, "Gauged flowing pressure at the perforations; this, wellhead, or both"),

@@ -103,7 +103,7 @@ fn applicable(field: &Field) -> Vec<Vec<TubingMethod>> {
         .wells()
         .iter()
         .map(|well| {
-            let now = well.now(field.fluid(), field.start(), 0.0, &gauge);
+            let now = well.now(field.fluid(), field.start(), 0.0, 0.0, &gauge);
             let rate = well.spec.target_rate_stb_d.unwrap_or(0.3 * now.curve.open_flow_stb_d());
             let stream = now.stream(rate);
             TubingMethod::ALL

@@ -80,6 +80,8 @@ impl UnitSystem {
             (Self::Metric, D::ProductivityIndex) => ("Sm3/d/bar", "sm3_d_bar", "Sm³/d/bar"),
             (Self::Field, D::GasInjectivity) => ("scf/d/psi", "scf_d_psi", "scf/d/psi"),
             (Self::Metric, D::GasInjectivity) => ("Sm3/d/bar", "sm3_d_bar", "Sm³/d/bar"),
+            (Self::Field, D::Turbulence) => ("psi/(STB/d)^2", "psi_d2_stb2", "psi/(STB/d)²"),
+            (Self::Metric, D::Turbulence) => ("bar/(Sm3/d)^2", "bar_d2_sm6", "bar/(Sm³/d)²"),
             (_, D::Permeability) => ("mD", "md", "mD"),
             (Self::Field, D::Density) => ("lb/ft3", "lb_ft3", "lb/ft³"),
             (Self::Metric, D::Density) => ("kg/m3", "kg_m3", "kg/m³"),

@@ -41,6 +41,8 @@ pub enum Dimension {
     ProductivityIndex,
     /// scf/d/psi.
     GasInjectivity,
+    /// psi/(STB/d)^2.
+    Turbulence,
     /// mD.
     Permeability,
     /// lb/ft3.
@@ -69,7 +71,7 @@ pub enum Dimension {
 
 impl Dimension {
     /// All of them.
-    pub const ALL: [Self; 27] = [
+    pub const ALL: [Self; 28] = [
         Self::Pressure,
         Self::PressureDifference,
         Self::Length,
@@ -85,6 +87,7 @@ impl Dimension {
         Self::PressureGradient,
         Self::ProductivityIndex,
         Self::GasInjectivity,
+        Self::Turbulence,
         Self::Permeability,
         Self::Density,
         Self::OilGravity,
@@ -117,6 +120,7 @@ impl Dimension {
             Self::PressureGradient => "a pressure gradient",
             Self::ProductivityIndex => "a liquid rate per pressure",
             Self::GasInjectivity => "a gas rate per pressure",
+            Self::Turbulence => "a pressure per rate squared",
             Self::Permeability => "a permeability",
             Self::Density => "a density",
             Self::OilGravity => "an oil gravity",
@@ -150,6 +154,7 @@ impl Dimension {
             Self::PressureGradient => "0.65 psi/ft",
             Self::ProductivityIndex => "12 STB/d/psi",
             Self::GasInjectivity => "20 Mscf/d/psi",
+            Self::Turbulence => "0.0009 psi/(STB/d)^2",
             Self::Permeability => "80 mD",
             Self::Density => "62.4 lb/ft3",
             Self::OilGravity => "34 API",
@@ -397,6 +402,9 @@ fn build() -> Vec<Unit> {
         linear(GasInjectivity, "MMscf/d/psi", 1.0e6, &["mmscf/d/psia"]),
         linear(GasInjectivity, "Sm3/d/bar", M3_FT3 / BAR, &["m3/d/bar", "sm3/d/bara"]),
         linear(GasInjectivity, "thousand Sm3/d/bar", 1.0e3 * M3_FT3 / BAR, &["ksm3/d/bar"]),
+
+        linear(Turbulence, "psi/(STB/d)^2", 1.0, &["psi/bbl/d2", "psi/bpd2", "psi/stb2/d2", "psid2/stb2"]),
+        linear(Turbulence, "bar/(Sm3/d)^2", BAR / (M3_BBL * M3_BBL), &["bar/m3/d2"]),
 
         linear(Permeability, "mD", 1.0, &["millidarcy"]),
         linear(Permeability, "D", 1.0e3, &["darcy"]),

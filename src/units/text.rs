@@ -7,13 +7,14 @@
 use super::{Dimension, UnitSystem};
 
 /// Units in which the physics writes, and what they measure.
-const SPOKEN: [(&str, Dimension); 12] = [
+const SPOKEN: [(&str, Dimension); 13] = [
     ("psia", Dimension::Pressure),
     ("psi", Dimension::PressureDifference),
     ("STB/d", Dimension::LiquidRate),
     ("STB", Dimension::LiquidVolume),
     ("scf/STB", Dimension::GasOilRatio),
     ("STB/d/psi", Dimension::ProductivityIndex),
+    ("psi/(STB/d)^2", Dimension::Turbulence),
     ("scf/d", Dimension::GasRate),
     ("scf", Dimension::GasVolume),
     ("ft", Dimension::Length),

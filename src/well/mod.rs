@@ -1,5 +1,6 @@
 //! Where inflow and tubing meet: stable rate, flow margin.
 
+mod fit;
 mod line;
 mod meeting;
 mod model;
@@ -10,5 +11,5 @@ pub use meeting::{
     Crossing, LOOK_FROM, LOOK_TO, Landscape, crossings, follow_top, follow_top_within, right_crossing, survey,
     survey_above, top_near,
 };
-pub use model::{Gauge, Surroundings, TestCheck, WellModel, WellNow, drainage_term, oil_gradient_psi_ft};
-pub use spec::{FlowingSurvey, MakesSpec, ScreenSpec, SurveyPoint, WellSpec};
+pub use model::{Gauge, Surroundings, TestCheck, WellModel, WellNow, oil_gradient_psi_ft};
+pub use spec::{FlowingSurvey, LossSpec, MakesSpec, ScreenSpec, SurveyPoint, WellSpec};

@@ -1,12 +1,12 @@
 //! A well, prepared: its tubing, its inflow fitted to the tests, and how both look at one instant.
 
+use super::fit::{bubble_point_then, fit_inflow, reference_mobility};
 use super::meeting::{Landscape, survey_above};
 use super::{Line, WellSpec};
 use crate::fault::Fault;
 use crate::fluid::BlackOil;
 use crate::inflow::{
-    Coefficient, Conditions, Fit, Inflow, InflowCurve, InflowMethod, InflowSpec, InflowTest, Measured, RateBasis,
-    Shape, TestPoint, fit_saturated_below_datum, fit_tests,
+    Coefficient, Conditions, Fit, Inflow, InflowCurve, InflowTest, Measured, ProductivityLoss, TestPoint, drainage_term,
 };
 use crate::tank::{Tank, TankState};
 use crate::tubing::{Choke, ChokeFlow, Stream, Traverse, TraversePoint, Tubing, TubingMethod};
@@ -46,6 +46,7 @@ pub struct WellModel {
     /// Its tests beside the model's rates.
     pub tests: Vec<TestCheck>,
     skin_factor: f64,
+    loss: ProductivityLoss,
     depth_below_datum_ft: f64,
 }
 
@@ -64,11 +65,8 @@ pub struct Surroundings<'a> {
     pub start: &'a TankState,
     /// Accuracy of the tubing's pressure, psi.
     pub accuracy_psi: f64,
-}
-
-/// ln(0.472 re/rw), or 7.0 where no radii are given (a common-practice figure).
-pub fn drainage_term(radii_ft: Option<(f64, f64)>) -> f64 {
-    radii_ft.map_or(7.0, |(drainage, wellbore)| (0.472 * drainage / wellbore).ln())
+    /// First day of the forecast.
+    pub first_day: Date,
 }
 
 /// Pressure gradient of the reservoir's oil, psi/ft.
@@ -92,6 +90,7 @@ impl WellModel {
             fit,
             tests: Vec::new(),
             skin_factor: 1.0,
+            loss: ProductivityLoss::new(spec.loss.yearly, days_to(around.first_day, spec.loss.since.or(spec.start))),
             depth_below_datum_ft,
         };
         well.tests = well.check_tests(&points, around);
@@ -99,14 +98,26 @@ impl WellModel {
         Ok(well)
     }
 
-    /// The same well under new settings. Tests are fitted again only where the settings of the inflow changed, so that an
-    /// event that swaps the tubing does not reinterpret old separator tests.
+    /// The same well under new settings from a day on. Tests are fitted again only where the settings of the inflow changed, so that an
+    /// event that swaps the tubing does not reinterpret old separator tests. A new skin, a new coefficient, or a new day
+    /// from which the loss of productivity counts is a stimulation that brings back what was lost.
     ///
     /// # Errors
     /// As [`new`](Self::new).
-    pub fn changed(&self, spec: &WellSpec, around: &Surroundings) -> Result<Self, Vec<Fault>> {
+    pub fn changed(&self, spec: &WellSpec, on: Date, around: &Surroundings) -> Result<Self, Vec<Fault>> {
+        let on_days = days_to(around.first_day, Some(on)).max(0.0);
+        let (old, new) = (&self.spec, spec);
+        let loss = if new.loss.since != old.loss.since {
+            ProductivityLoss::new(new.loss.yearly, days_to(around.first_day, new.loss.since))
+        } else if new.skin != old.skin || new.inflow.coefficient != old.inflow.coefficient {
+            ProductivityLoss::new(new.loss.yearly, on_days)
+        } else if new.loss.yearly != old.loss.yearly {
+            self.loss.at_rate(new.loss.yearly, on_days)
+        } else {
+            self.loss
+        };
         if spec.inflow != self.spec.inflow {
-            return Self::new(spec, around);
+            return Ok(Self { loss, ..Self::new(spec, around)? });
         }
         let (tubing, depth_below_datum_ft) = completion(spec, around)?;
         let choke = choke(spec, &tubing, around);
@@ -116,6 +127,7 @@ impl WellModel {
             choke,
             depth_below_datum_ft,
             skin_factor: skin_factor(spec),
+            loss,
             ..self.clone()
         })
     }
@@ -145,34 +157,22 @@ impl WellModel {
         }
     }
 
-    /// The inflow equation in words and figures.
-    pub fn inflow_text(&self) -> String {
-        let at = self.inflow.reference_psia;
-        let basis = match self.inflow.basis {
-            RateBasis::Liquid => "liquid",
-            RateBasis::Oil => "oil",
-        };
-        let origin = match &self.fit {
-            Some(fit) if fit.n_fitted => format!("fitted to {} tests", self.tests.len()),
-            Some(_) if self.tests.len() == 1 => "from a single test".to_owned(),
-            Some(_) => format!("fitted to {} tests", self.tests.len()),
-            None => "as given".to_owned(),
-        };
-        let c = self.inflow.coefficient;
-        match self.inflow.shape {
-            Shape::Straight => format!("straight line, J = {c:.4} STB/d/psi ({basis}) at {at:.0} psia, {origin}"),
-            Shape::Vogel => format!("Vogel, J = {c:.4} STB/d/psi ({basis}) at {at:.0} psia, {origin}"),
-            Shape::Fetkovich { n } => {
-                format!("Fetkovich, C = {c:.4e} STB/d/psi^2n ({basis}), n = {n:.3} at {at:.0} psia, {origin}")
-            }
-        }
+    /// The same well with the productivity of an instant for ever.
+    pub fn frozen(self, days: f64) -> Self {
+        Self { loss: self.loss.frozen(days), ..self }
     }
 
-    /// The well as it faces the tank's present state. `gradient_psi_ft` is the reservoir oil's.
+    /// Part of the productivity that scale and fines have left since the last stimulation.
+    pub fn productivity_left(&self, days: f64) -> f64 {
+        self.loss.left(days)
+    }
+
+    /// The well as it faces the tank's present state, `days` after the start of the forecast. `gradient_psi_ft` is the reservoir oil's.
     pub fn now<'a>(
         &'a self,
         fluid: &'a BlackOil,
         tank: &TankState,
+        days: f64,
         gradient_psi_ft: f64,
         gauge: &'a Gauge,
     ) -> WellNow<'a> {
@@ -185,7 +185,7 @@ impl WellModel {
             oil_mobility_1_cp: tank.oil_mobility_1_cp,
             water_cut,
         };
-        let curve = self.inflow.curve(&conditions, self.skin_factor);
+        let curve = self.inflow.curve(&conditions, self.skin_factor * self.loss.left(days));
         let line = Line::Fixed(self.spec.line_pressure_psia);
         WellNow { well: self, fluid, curve, gor_scf_stb: gor, water_cut, line, gauge }
     }
@@ -206,125 +206,15 @@ fn choke(spec: &WellSpec, tubing: &Tubing, around: &Surroundings) -> Option<Chok
     spec.choke.as_ref().map(|choke| Choke::new(choke, around.fluid, temperature))
 }
 
+/// Whole days to a date; zero without one.
+fn days_to(first_day: Date, date: Option<Date>) -> f64 {
+    date.and_then(|date| first_day.until((jiff::Unit::Day, date)).ok()).map_or(0.0, |span| f64::from(span.get_days()))
+}
+
 /// `(r + s_test)/(r + s)`: pseudo-steady radial flow with and without the present skin.
 fn skin_factor(spec: &WellSpec) -> f64 {
-    let r = drainage_term(spec.radii_ft);
+    let r = drainage_term(spec.radii_ft, spec.shape_factor);
     (r + spec.skin_at_test) / (r + spec.skin)
-}
-
-/// Bubble point of the oil in the tank when its pressure was this, psia: below the first one the pressure itself, as in the forecast.
-fn bubble_point_then(datum_psia: f64, around: &Surroundings) -> f64 {
-    around.fluid.initial_bubble_point_psia().min(datum_psia)
-}
-
-/// kro/(mu_o*Bo) that goes with a coefficient found at this pressure of the tank: undisturbed oil above the bubble point, the
-/// saturations at the start of the forecast below it (those at the time of the test are not known).
-fn reference_mobility(reservoir_psia: f64, around: &Surroundings) -> f64 {
-    let undisturbed = around.tank.undisturbed_mobility_1_cp(reservoir_psia);
-    if reservoir_psia >= around.fluid.initial_bubble_point_psia() {
-        undisturbed
-    } else {
-        let start = around.start;
-        start.oil_mobility_1_cp * undisturbed / around.tank.undisturbed_mobility_1_cp(start.pressure_psia)
-    }
-}
-
-fn fit_inflow(
-    spec: &WellSpec,
-    tubing: &Tubing,
-    depth_below_datum_ft: f64,
-    around: &Surroundings,
-) -> Result<(Inflow, Option<Fit>, Vec<TestPoint>), Vec<Fault>> {
-    let inflow = &spec.inflow;
-    let bubble_point = around.fluid.initial_bubble_point_psia();
-    let at_perforations = |datum_psia: f64| {
-        let rs = around.fluid.spec().solution_gor_scf_stb;
-        datum_psia + depth_below_datum_ft * oil_gradient_psi_ft(around.fluid, datum_psia, around.temperature_degf, rs)
-    };
-    let n = inflow.exponent.unwrap_or(1.0);
-    let given_shape = match inflow.method {
-        InflowMethod::Straight => Shape::Straight,
-        InflowMethod::Vogel => Shape::Vogel,
-        InflowMethod::Fetkovich => Shape::Fetkovich { n },
-    };
-    let effective = |datum_psia: f64| at_perforations(datum_psia).min(bubble_point_then(datum_psia, around));
-    let carried = |shape: Shape, coefficient: f64, datum_psia: f64| Inflow {
-        shape,
-        future: inflow.future,
-        basis: inflow.basis,
-        coefficient,
-        reference_psia: effective(datum_psia),
-        reference_mobility_1_cp: reference_mobility(datum_psia, around),
-    };
-    // J of the general form to the method's own coefficient.
-    let from_j = |j: f64, pe: f64| match given_shape {
-        Shape::Fetkovich { n } => j / (2.0 * pe.powf(2.0 * n - 1.0)),
-        Shape::Straight | Shape::Vogel => j,
-    };
-    let given = |coefficient: f64, datum_psia: f64| (carried(given_shape, coefficient, datum_psia), None, Vec::new());
-    match &inflow.coefficient {
-        Coefficient::ProductivityIndex { j_stb_d_psi, reservoir_psia } => {
-            Ok(given(from_j(*j_stb_d_psi, effective(*reservoir_psia)), *reservoir_psia))
-        }
-        Coefficient::OpenFlow { rate_stb_d, reservoir_psia } => {
-            let pr = at_perforations(*reservoir_psia);
-            let pe = effective(*reservoir_psia);
-            Ok(given(from_j(rate_stb_d / given_shape.drawdown(pr, pe, 0.0), pe), *reservoir_psia))
-        }
-        Coefficient::Fetkovich { c, reservoir_psia } => Ok(given(*c, *reservoir_psia)),
-        Coefficient::Tests(tests) => {
-            let mut faults = Vec::new();
-            let mut points = Vec::new();
-            for (i, test) in tests.iter().enumerate() {
-                let reservoir_psia = at_perforations(test.reservoir_psia);
-                let flowing_psia = match test.measured {
-                    Measured::Gauged { flowing_psia } | Measured::Both { flowing_psia, .. } => flowing_psia,
-                    Measured::Separator { wellhead_psia, gor_scf_stb } => {
-                        let stream =
-                            Stream { liquid_rate_stb_d: test.rate_stb_d, water_cut: test.water_cut, gor_scf_stb };
-                        tubing.flowing_pressure(around.fluid, &stream, wellhead_psia).pressure_psia
-                    }
-                };
-                if flowing_psia >= reservoir_psia {
-                    faults.push(
-                        Fault::new(
-                            format!("inflow.test[{i}]"),
-                            format!("flowing pressure {flowing_psia:.0} psia at the perforations is not below the reservoir's {reservoir_psia:.0} psia"),
-                        )
-                        .help("check the wellhead pressure, the rate, the gas-oil ratio and the tubing of this test"),
-                    );
-                }
-                let rate_stb_d = match inflow.basis {
-                    RateBasis::Liquid => test.rate_stb_d,
-                    RateBasis::Oil => test.rate_stb_d * (1.0 - test.water_cut),
-                };
-                points.push(TestPoint {
-                    reservoir_psia,
-                    effective_psia: effective(test.reservoir_psia),
-                    flowing_psia,
-                    rate_stb_d,
-                });
-            }
-            if !faults.is_empty() {
-                return Err(faults);
-            }
-            let saturated = tests.iter().all(|t| t.reservoir_psia <= bubble_point * (1.0 + 1e-9));
-            let fit =
-                fit_points(inflow, &points, saturated).map_err(|message| vec![Fault::new("inflow.test", message)])?;
-            Ok((carried(fit.shape, fit.coefficient, tests[0].reservoir_psia), Some(fit), points))
-        }
-    }
-}
-
-/// Fits the points. Perforations below the datum stand above the bubble point of a saturated tank: its tests give n all the same.
-fn fit_points(inflow: &InflowSpec, points: &[TestPoint], saturated: bool) -> Result<Fit, String> {
-    let below_datum = points.iter().any(|p| p.reservoir_psia > p.effective_psia * (1.0 + 1e-9));
-    let free_n = inflow.method == InflowMethod::Fetkovich && inflow.exponent.is_none() && points.len() > 1;
-    if saturated && below_datum && free_n {
-        fit_saturated_below_datum(points)
-    } else {
-        fit_tests(inflow.method, inflow.exponent, points)
-    }
 }
 
 /// Counts the traverses of a run.

@@ -38,6 +38,10 @@ pub struct WellSpec {
     pub skin_at_test: f64,
     /// Drainage radius, ft, and wellbore radius, ft, when stated.
     pub radii_ft: Option<(f64, f64)>,
+    /// Shape factor of the drainage area, Dietz (1965).
+    pub shape_factor: f64,
+    /// Loss of productivity by scale and fines.
+    pub loss: LossSpec,
     /// Lowest allowed flowing pressure at the perforations, psia.
     pub minimum_flowing_pressure_psia: Option<f64>,
     /// Producing-day liquid rate below which the well is given up, STB/d.
@@ -74,6 +78,15 @@ impl Default for MakesSpec {
     fn default() -> Self {
         Self { breakthrough_delay: 1.0, water_cut: None, gor: None }
     }
+}
+
+/// Loss of productivity by scale and fines.
+#[derive(Debug, Clone, Copy, PartialEq, Default)]
+pub struct LossSpec {
+    /// Part of what is left that is lost in a year.
+    pub yearly: f64,
+    /// Day from which it counts, that of the coefficient or of the last stimulation; `None`: the well's first day in the forecast.
+    pub since: Option<Date>,
 }
 
 /// Flowing pressures measured along depth, with what flowed.

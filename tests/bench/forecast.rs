@@ -19,7 +19,7 @@ fn main() {
 fn operating_point_from_scratch(bencher: Bencher) {
     let field = Field::new(&fields::one_well()).unwrap();
     let gauge = Gauge::default();
-    let now = field.wells()[0].now(field.fluid(), field.start(), 0.0, &gauge);
+    let now = field.wells()[0].now(field.fluid(), field.start(), 0.0, 0.0, &gauge);
     bencher.bench_local(|| black_box(now.survey()));
 }
 
@@ -28,7 +28,7 @@ fn operating_point_from_scratch(bencher: Bencher) {
 fn operating_point_followed(bencher: Bencher) {
     let field = Field::new(&fields::one_well()).unwrap();
     let gauge = Gauge::default();
-    let now = field.wells()[0].now(field.fluid(), field.start(), 0.0, &gauge);
+    let now = field.wells()[0].now(field.fluid(), field.start(), 0.0, 0.0, &gauge);
     let rate = now.survey().right_crossing_stb_d.unwrap();
     let slope = (now.height_psi(rate + 0.1) - now.height_psi(rate - 0.1)) / 0.2;
     let open = now.curve.open_flow_stb_d();

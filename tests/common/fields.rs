@@ -6,11 +6,11 @@ use wane::fluid::FluidSpec;
 use wane::forecast::{
     Every, FieldSpec, InjectedFluid, InjectionControl, InjectorSpec, OnsetSpec, PeriodSpec, Tolerance,
 };
-use wane::inflow::{Coefficient, FutureRule, InflowMethod, InflowSpec, RateBasis};
+use wane::inflow::{CIRCLE, Coefficient, FutureRule, InflowMethod, InflowSpec, RateBasis};
 use wane::rock::CoreySpec;
 use wane::tank::{TankSpec, WaterModel, WaterSpec};
 use wane::tubing::{TubingMethod, TubingSection, TubingSpec};
-use wane::well::{MakesSpec, ScreenSpec, WellSpec};
+use wane::well::{LossSpec, MakesSpec, ScreenSpec, WellSpec};
 
 /// One well that drains an undersaturated tank.
 pub fn one_well() -> FieldSpec {
@@ -72,6 +72,8 @@ pub fn well(name: &str) -> WellSpec {
         skin: 0.0,
         skin_at_test: 0.0,
         radii_ft: None,
+        shape_factor: CIRCLE,
+        loss: LossSpec::default(),
         minimum_flowing_pressure_psia: None,
         minimum_rate_stb_d: None,
         maximum_water_cut: None,
@@ -83,6 +85,8 @@ pub fn well(name: &str) -> WellSpec {
             future: FutureRule::Pressure,
             basis: RateBasis::Liquid,
             exponent: Some(1.0),
+            flow_efficiency: None,
+            turbulence_psi_d2_stb2: None,
             coefficient: Coefficient::ProductivityIndex { j_stb_d_psi: 1.6, reservoir_psia: 3800.0 },
         },
         tubing: TubingSpec {

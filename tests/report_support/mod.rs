@@ -103,9 +103,11 @@ pub fn well(name: &str, periods: &[Period], plateau: f64, life: f64, wet: f64) -
         plateau_end: Some(910.25),
         restart_until: Some(0.7 * life),
         spread: None,
+        future_rules: Vec::new(),
         peak_gor_scf_stb: peak,
         choke_text: None,
         inflow_text: "Fetkovich, C = 7.9e-4 STB/d/psi^2n, n = 0.85 fitted to 3 tests".to_owned(),
+        inflow_fit: None,
         tests: vec![TestCheck {
             on: Some(date(2026, 11, 3)),
             reservoir_psia: 3600.0,

@@ -7,12 +7,10 @@
 //! Student's t times the standard error (linear theory, e.g. Draper and Smith 1998). It supposes misses that are independent and of
 //! one size.
 
+pub use crate::statistics::{CONFIDENCE, student_t};
 use levenberg_marquardt::{LeastSquaresProblem, LevenbergMarquardt, TerminationReason};
 use nalgebra::{DMatrix, DVector, Dyn, Owned};
-use special::Beta;
 
-/// Confidence of every interval.
-pub const CONFIDENCE: f64 = 0.95;
 /// Function evaluations allowed are this many times the number of parameters plus one.
 const PATIENCE: usize = 40;
 /// Reciprocal condition of the scaled normal matrix below which parameters cannot be told apart.
@@ -57,18 +55,6 @@ impl Estimates {
         let error = self.standard_errors.as_ref()?.get(parameter)?;
         Some(error * student_t(self.degrees_of_freedom))
     }
-}
-
-/// Two-sided quantile of Student's t at [`CONFIDENCE`]; infinite without degrees of freedom.
-pub fn student_t(degrees_of_freedom: usize) -> f64 {
-    if degrees_of_freedom == 0 {
-        return f64::INFINITY;
-    }
-    // P(|t| > t0) is the incomplete beta function of nu/(nu + t0^2) with nu/2 and 1/2.
-    let nu = degrees_of_freedom as f64;
-    let (p, q) = (0.5 * nu, 0.5);
-    let x = (1.0 - CONFIDENCE).inv_inc_beta(p, q, p.ln_beta(q));
-    (nu * (1.0 - x) / x).sqrt()
 }
 
 struct Problem<F> {

@@ -14,9 +14,9 @@ pub use tuning::{Finding, Fitted, Free, Held, LIKELY_SLIP, ROUGHEST_IN, fit};
 
 use crate::fluid::BlackOil;
 use crate::forecast::{Field, FieldSpec, RunError};
-use crate::inflow::{Coefficient, InflowTest, Measured, RateBasis, Shape};
+use crate::inflow::{Coefficient, FutureRule, InflowTest, Measured, RateBasis, Shape};
 use crate::tubing::{TubingMethod, TubingSpec};
-use crate::well::{TestCheck, WellModel, WellSpec};
+use crate::well::{LossSpec, TestCheck, WellModel, WellSpec};
 use rayon::prelude::*;
 
 /// The well's own model stays unless another leaves less than this part of its misses.
@@ -78,6 +78,10 @@ pub struct BackCalculated {
     pub coefficient: f64,
     /// Whether it belongs to the oil rate alone.
     pub basis: RateBasis,
+    /// How it is carried to future pressures.
+    pub future: FutureRule,
+    /// How fast the well loses it.
+    pub loss: LossSpec,
     /// Reservoir pressure at the tank's datum to which it belongs, psia.
     pub reservoir_psia: f64,
     /// In words.
@@ -246,6 +250,8 @@ fn back_calculated(well: &WellModel, reservoir_psia: f64, from_surveys: bool) ->
         shape: well.inflow.shape,
         coefficient: well.inflow.coefficient,
         basis: well.inflow.basis,
+        future: well.inflow.future,
+        loss: well.spec.loss,
         reservoir_psia,
         text: well.inflow_text(),
         from_surveys,

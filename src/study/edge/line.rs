@@ -112,7 +112,7 @@ impl Subject<'_> {
         let rs = self.offer.at(pressure_psia).rs_scf_stb;
         let gradient =
             self.datum_temperature_degf.map_or(0.0, |t| oil_gradient_psi_ft(self.fluid, pressure_psia, t, rs));
-        let now = self.well.now(self.fluid, &self.tank(pressure_psia, water_cut), gradient, gauge);
+        let now = self.well.now(self.fluid, &self.tank(pressure_psia, water_cut), 0.0, gradient, gauge);
         self.shared.map_or(now, |kept| now.against(kept.line()))
     }
 

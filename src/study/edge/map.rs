@@ -97,6 +97,7 @@ fn well_edge(
 
     let own = all.iter().position(|(_, own)| *own).unwrap_or(0);
     let forecast_ends_psia = way.filter(|_| lines[own].of.gas == Gas::Forecast).map(|w| w.end_pressure_psia);
+    let forecast = way.is_some();
     let way = way.filter(|w| !w.moments.is_empty()).map(|way| followed(way, &subjects[own], &lines[own]));
     let verdicts = seen.into_par_iter().map(|seen| verdict(seen, &subjects[own])).collect();
     Ok(WellEdge {
@@ -104,7 +105,7 @@ fn well_edge(
         method: model.tubing.method().name(),
         top_psia,
         forecast_ends_psia,
-        notes: notes(spec, model, kept.is_some()),
+        notes: notes(spec, model, kept.is_some(), forecast),
         lines,
         way,
         tests,
@@ -273,7 +274,7 @@ fn tests(model: &WellModel) -> Vec<(Option<jiff::civil::Date>, f64, f64)> {
     points
 }
 
-fn notes(spec: &FieldSpec, model: &WellModel, settled: bool) -> Vec<String> {
+fn notes(spec: &FieldSpec, model: &WellModel, settled: bool, forecast: bool) -> Vec<String> {
     let mut list = Vec::new();
     let well = &model.spec;
     if let Some(line) = &well.shared_line {
@@ -303,6 +304,13 @@ fn notes(spec: &FieldSpec, model: &WellModel, settled: bool) -> Vec<String> {
     }
     if well.inflow.basis == RateBasis::Oil {
         list.push("its inflow is that of oil alone: at a higher water cut more liquid comes in".to_owned());
+    }
+    if well.loss.yearly > 0.0 {
+        list.push(if forecast {
+            "drawn with the productivity that is left at its end of natural flow".to_owned()
+        } else {
+            "drawn without the productivity that it loses in a forecast".to_owned()
+        });
     }
     if well.inflow.future == FutureRule::Mobility {
         list.push(
