@@ -16,7 +16,7 @@ use wane::forecast::{
     InjectorSpec, RunError, StopReason, run,
 };
 use wane::inflow::{Coefficient, FutureRule, InflowMethod, RateBasis};
-use wane::tank::{Trend, TrendOver, WaterModel, WaterTrend};
+use wane::tank::{AquiferSpec, Trend, TrendOver, WaterModel, WaterTrend};
 use wane::tubing::{ChokeMethod, ChokeSpec, Discharge, TubingMethod};
 use wane::well::{LineRate, LineSpec, WellSpec};
 
@@ -187,7 +187,14 @@ fn holds(spec: &FieldSpec, f: &Forecast) -> Result<(), TestCaseError> {
         // A table may ask for more: that is doubted.
         let doubted = f.doubts.iter().any(|d| d.kind == DoubtKind::Sanity && d.seen.contains("of water, but only"));
         let table = spec.tank.water.trend.is_some() || spec.wells.iter().any(|w| w.makes.water_cut.is_some());
-        prop_assert!(t.water_cum_stb <= injected + connate || (table && doubted), "more water than there is");
+        let influx = t.aquifer.map_or(0.0, |a| a.influx_cum_stb);
+        let there_stb = injected + connate + influx;
+        prop_assert!(t.water_cum_stb <= there_stb || (table && doubted), "more water than there is");
+        let came: f64 = f.tank.iter().filter_map(|t| t.aquifer).map(|a| a.influx_stb).sum();
+        prop_assert!(
+            (came - influx).abs() <= 1e-9 * influx.abs().max(1.0),
+            "influx does not add up: {came} and {influx}"
+        );
     }
     Ok(())
 }
@@ -381,6 +388,77 @@ proptest! {
                 }
             }
             Err(RunError::Input(_) | RunError::Start(_) | RunError::TooMuchInjected { .. }) => {}
+            Err(error) => prop_assert!(false, "{error}"),
+        }
+    }
+}
+
+/// Aquifers from hardly felt to far stronger and faster than any tank.
+fn an_aquifer() -> impl Strategy<Value = Option<AquiferSpec>> {
+    let volume = || (5.0..11.0_f64).prop_map(|log| 10f64.powf(log));
+    let strength = || (-2.0..6.0_f64).prop_map(|log| 10f64.powf(log));
+    let compressibility_1_psi = 7e-6;
+    prop_oneof![
+        Just(None),
+        volume().prop_map(move |water_rb| Some(AquiferSpec::Pot { water_rb, compressibility_1_psi })),
+        strength().prop_map(|strength_rb_d_psi| Some(AquiferSpec::Schilthuis { strength_rb_d_psi })),
+        (volume(), strength()).prop_map(move |(water_rb, productivity_rb_d_psi)| Some(AquiferSpec::Fetkovich {
+            water_rb,
+            compressibility_1_psi,
+            productivity_rb_d_psi
+        })),
+        (0.0..4.0_f64, -4.0..1.0_f64, 0.0..900.0_f64).prop_map(|(u, time, age_days)| Some(AquiferSpec::CarterTracy {
+            constant_rb_psi: 10f64.powf(u),
+            time_per_day: 10f64.powf(time),
+            age_days
+        })),
+    ]
+}
+
+/// Steps, and steps for each piece of the run, beyond which it counts as stalled.
+const MOST_STEPS: (u64, u64) = (3000, 200);
+
+proptest! {
+    #![proptest_config(ProptestConfig {
+        cases: 80,
+        failure_persistence: None,
+        max_shrink_iters: 64,
+        rng_seed: RngSeed::Fixed(4),
+        ..ProptestConfig::default()
+    })]
+
+    #[test]
+    fn aquifers_compaction_and_cap_gas_hold_together_too(
+        spec in a_field(),
+        aquifer in an_aquifer(),
+        yields in prop::option::weighted(0.4, (0.3..0.9_f64, 3e-6..4e-5_f64)),
+        to_gas_cap in any::<bool>(),
+    ) {
+        let mut spec = spec;
+        spec.tank.aquifer = aquifer;
+        for i in &mut spec.injectors {
+            i.to_gas_cap = to_gas_cap;
+        }
+        if let Some((part, cf)) = yields {
+            // Rock that gives three times as much below some pressure.
+            let p = spec.tank.pressure_psia;
+            let at = part * p;
+            spec.tank.compaction = [(0.1 * p, 3.0 * cf), (at, 3.0 * cf), (p, cf)]
+                .map(|(psia, cf)| (psia, ((psia - at) * cf).exp()))
+                .to_vec();
+        }
+        match run(&spec) {
+            Ok(forecast) => {
+                holds(&spec, &forecast)?;
+                prop_assert!(
+                    forecast.work.steps <= MOST_STEPS.0 + MOST_STEPS.1 * forecast.work.segments,
+                    "{} steps in {} segments",
+                    forecast.work.steps,
+                    forecast.work.segments
+                );
+            }
+            Err(RunError::Input(faults)) => prop_assert!(!faults.is_empty()),
+            Err(RunError::Start(_) | RunError::TooMuchInjected { .. }) => {}
             Err(error) => prop_assert!(false, "{error}"),
         }
     }

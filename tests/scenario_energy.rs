@@ -138,10 +138,6 @@ fn wrong_aquifers_are_told() {
         (with(&format!("{carter}\nshape = \"linear\"")), &["a carter-tracy aquifer is radial"]),
         (with(&carter.replace("2026-01-01", "2036-01-01")), &["after the start of the forecast"]),
         (
-            with("method = \"schilthuis\"\nstrength = \"130 bbl/d/psi\"").replace("model = \"average\"", ""),
-            &["`tank.water.model` does not say"],
-        ),
-        (
             format!(
                 "{}\n[tank.produced]\noil = \"1 MMSTB\"\ngas = \"600 MMscf\"\n",
                 with("method = \"schilthuis\"\nstrength = \"1 bbl/d/psi\"")

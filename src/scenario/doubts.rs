@@ -264,6 +264,15 @@ fn injection(field: &FieldSpec) -> Vec<Doubt> {
                 "use the model \"displacement\" for anything after breakthrough",
             ));
         }
+        if injector.to_gas_cap && field.tank.gas_cap_ratio == 0.0 {
+            out.push(doubt(
+                DoubtKind::NotModelled,
+                about,
+                "gas is injected into a gas cap, but the tank has none at the start",
+                "a new cap forms: its gas is taken not to dissolve, and coning of it into the wells is not modelled",
+                "compare with the gas dispersed (gas_to = \"oil-zone\"); expect gas earlier than computed",
+            ));
+        }
         match (injector.bottomhole_limit_psia, injector.injectivity) {
             (Some(_), None) => out.push(doubt(
                 DoubtKind::NotModelled,

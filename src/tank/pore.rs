@@ -10,7 +10,7 @@
 //! pressure rises again: no hysteresis.
 //!
 //! # Source
-//! Exponential form: design of this program. Monotone cubics: Fritsch and Carlson (1980), slopes by Fritsch and Butland (1984).
+//! Monotone cubics: Fritsch and Carlson (1980), with the harmonic mean of the neighbouring chords as slope (Butland 1980).
 
 use crate::fault::Fault;
 

@@ -1,6 +1,7 @@
 //! Shared by the tests: reads the reference cases copied into `tests/data`.
 #![allow(dead_code, clippy::unwrap_used, missing_docs)]
 
+pub mod aquifer;
 pub mod fields;
 pub mod tubing;
 

@@ -12,7 +12,7 @@
 //! ```
 //!
 //! with ew in rb/d, We its integral, pressures in psi. Carter and Tracy's recursion becomes the third line as its steps shrink: its
-//! constant-rate approximation stays, which puts it up to some 7 % below the exact superposition, and tD runs from the first
+//! constant-rate approximation stays, which puts it some 4 to 8 % below the exact superposition in a steady decline, and tD runs from the first
 //! production. The pot is solved with the balance itself and follows the pressure both ways.
 //!
 //! We counts water at the initial pressure; in the tank it expands with the water's volume factor, which keeps the mass.

@@ -50,7 +50,7 @@ fn stehfest_weights() -> [f64; TERMS] {
                     / (factorial(half - k) * factorial(k) * factorial(k - 1) * factorial(n - k) * factorial(2 * k - n))
             })
             .sum();
-        if (n + half) % 2 == 0 { sum } else { -sum }
+        if (n + half).is_multiple_of(2) { sum } else { -sum }
     })
 }
 
