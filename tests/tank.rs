@@ -363,6 +363,8 @@ fn voidage_of_the_water_injection_exercise() {
         free_gor_scf_stb: 0.0,
         water_oil_ratio: 0.0,
         oil_mobility_1_cp: 1.0,
+        flood: None,
+        trend_place: 0.0,
     };
     let q = i("q_oil_stb_d");
     near(
