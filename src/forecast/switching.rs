@@ -216,11 +216,11 @@ impl Run<'_> {
             .collect::<Result<_, _>>()?;
         let reached = self.note_breakthroughs(Some(seen), true)?;
         let lines: Vec<usize> = reached.iter().filter_map(|&w| self.setup.line_of[w]).collect();
-        for w in 0..self.modes.wells.len() {
+        for (w, before) in flowing.into_iter().enumerate() {
             let concerned = reached.contains(&w) || self.setup.line_of[w].is_some_and(|l| lines.contains(&l));
             if concerned && self.modes.wells[w].flows() {
                 self.place(w, false)?;
-                self.ended_from(w, flowing[w]);
+                self.ended_from(w, before);
             }
         }
         Ok(())
