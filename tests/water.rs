@@ -144,9 +144,11 @@ fn a_front_that_ends_a_well_dates_both_and_tells_the_rate_before() {
 
 #[test]
 fn tolerances_agree_on_a_flood() {
-    for (part, contacted) in [(0.8, 0.4), (1.0, 0.6), (0.5, 0.3)] {
+    // Wells that the front kills, one that outlives it, and one that lives on for a while.
+    for (part, contacted, depth_ft) in [(0.8, 0.4, 6500.0), (1.0, 0.6, 6500.0), (0.5, 0.3, 6500.0), (0.7, 0.3, 5000.0)]
+    {
         let mut spec = flooded(part);
-        spec.wells[0].tubing.survey = vec![(0.0, 0.0), (6500.0, 6500.0)];
+        spec.wells[0].tubing.survey = vec![(0.0, 0.0), (depth_ft, depth_ft)];
         spec.tank.water.contacted_fraction = contacted;
         let runs: Vec<Forecast> = [Tolerance::Normal, Tolerance::Tight, Tolerance::Reference]
             .into_iter()
