@@ -370,7 +370,7 @@ proptest! {
     fn floods_hold_together_too(
         spec in a_field(),
         // Small tanks, so that many a front arrives within the two years.
-        flood in (0.05..0.95_f64, 0.01..0.3_f64, 0.2..1.3_f64, prop_oneof![Just(0.0), 0.5..200.0_f64]),
+        flood in (0.15..0.95_f64, 0.02..0.4_f64, 0.2..1.3_f64, prop_oneof![Just(0.0), 0.5..200.0_f64]),
         delays in [0.3..1.5_f64, 0.3..1.5_f64],
         trend in prop::option::weighted(0.3, 0.005..0.06_f64),
     ) {

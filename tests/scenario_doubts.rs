@@ -83,6 +83,8 @@ fn each_slip_raises_its_own_doubt() {
         (vec![&separator], K::TestMismatch, "P-1", "gas-oil ratio of the test of 2026-10-12 (310 scf/STB)"),
         (vec![&low_wellhead], K::TestMismatch, "P-1", "below the line pressure"),
         (vec!["tank.water.model=connate"], K::NotModelled, "I-1", "never lets it reach a well"),
+        (vec!["tank.water.model=displacement"], K::UnlikelyValue, "tank", "no contacted fraction is given"),
+        (vec!["well.P-1.breakthrough_delay=1.5"], K::NotModelled, "P-1", "no front for it to act on"),
         (vec!["injector.I-1.effective_fraction=1.0"], K::UnlikelyValue, "I-1", "all injected water"),
         (
             vec!["injector.I-1.bottomhole_limit=3000 psia"],
@@ -97,6 +99,14 @@ fn each_slip_raises_its_own_doubt() {
         let hit = hit.unwrap_or_else(|| panic!("{sets:?}: {found:#?}"));
         assert!(!hit.cause.is_empty() && !hit.advice.is_empty(), "{sets:?}");
     }
+}
+
+#[test]
+fn a_stated_front_raises_no_doubt_of_the_data() {
+    let sets =
+        ["tank.water.model=displacement", "tank.water.contacted_fraction=0.5", "well.P-1.breakthrough_delay=1.5"];
+    let found = doubts(&sets);
+    assert!(found.is_empty(), "{found:#?}");
 }
 
 #[test]

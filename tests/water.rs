@@ -144,9 +144,11 @@ fn a_front_that_ends_a_well_dates_both_and_tells_the_rate_before() {
 
 #[test]
 fn tolerances_agree_on_a_flood() {
-    for (part, contacted) in [(0.8, 0.4), (1.0, 0.6), (0.5, 0.3)] {
+    // Wells that the front kills, one that outlives it, and one that lives on for a while.
+    for (part, contacted, depth_ft) in [(0.8, 0.4, 6500.0), (1.0, 0.6, 6500.0), (0.5, 0.3, 6500.0), (0.7, 0.3, 5000.0)]
+    {
         let mut spec = flooded(part);
-        spec.wells[0].tubing.survey = vec![(0.0, 0.0), (6500.0, 6500.0)];
+        spec.wells[0].tubing.survey = vec![(0.0, 0.0), (depth_ft, depth_ft)];
         spec.tank.water.contacted_fraction = contacted;
         let runs: Vec<Forecast> = [Tolerance::Normal, Tolerance::Tight, Tolerance::Reference]
             .into_iter()
@@ -302,6 +304,35 @@ fn a_table_that_asks_for_water_that_is_not_there_is_doubted() {
     spec.wells[0].makes.water_cut = Some(Trend::new(vec![(0.0, 0.6)]).unwrap());
     let f = checked(&spec);
     assert!(f.doubts.iter().any(|d| d.kind == DoubtKind::Sanity && d.seen.contains("of water, but only 0 STB")));
+}
+
+/// Below the bubble point gas is trapped behind the front as it was: the oil zone has the gas and the oil that it has without a flood at the
+/// same pressure, as far as connate water and rock do not move with pressure.
+#[test]
+fn gas_is_trapped_behind_the_front_and_the_oil_zone_keeps_its_saturations() {
+    let mut spec = flooded(1.0);
+    spec.tank.pressure_psia = 2650.0;
+    spec.tank.connate_water = 0.0;
+    spec.tank.pore_compressibility_1_psi = 0.0;
+    let tank = Field::new(&spec).unwrap().tank().clone();
+    let dry = Cumulatives { oil_stb: 2e5, gas_scf: 1.4e8, ..Cumulatives::default() };
+    let before = tank.state_after(&dry, 2500.0).unwrap();
+    assert!(before.gas_saturation > 0.03, "{before:?}");
+    // Water takes the place of oil with its dissolved gas: the pressure stays.
+    for water_rb in [1e4, 2e5, 6e5, 1.1e6] {
+        let oil_stb = water_rb / before.bo_rb_stb;
+        let flood = Cumulatives {
+            oil_stb: dry.oil_stb + oil_stb,
+            gas_scf: dry.gas_scf + oil_stb * before.rs_scf_stb,
+            injected_water_stb: water_rb / before.bw_rb_stb,
+            ..dry
+        };
+        let state = tank.state_after(&flood, before.pressure_psia).unwrap();
+        near(state.pressure_psia, before.pressure_psia, 1e-9, "pressure");
+        near(state.gas_saturation, before.gas_saturation, 1e-9, "gas");
+        near(state.oil_saturation, before.oil_saturation, 1e-9, "oil");
+        near(state.free_gor_scf_stb, before.free_gor_scf_stb, 1e-6, "free gas");
+    }
 }
 
 /// The swept zone holds its residual oil, the oil zone keeps connate water: their volumes add up to the tank's.

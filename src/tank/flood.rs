@@ -5,7 +5,7 @@
 //! Vc  = contacted*Vp/(1 + m)                  contacted pore volume
 //! X   = M/(Vc*(1 - Swc - Sorw))               movable volumes: the mean normalised saturation of the contacted volume
 //! Vs  = Vc*min(1, X/X_b)                      swept; X_b of Welge's tangent. Beyond X = 1 it grows with X
-//! So  = (N*Bo - Vs*(1 - Sw_swept))/(Vp/(1+m) - Vs)
+//! So  = (N*Bo - Vs*(1 - Sw_swept - Sg))/(Vp/(1+m) - Vs),   Sg the same in swept and unswept rock: gas is trapped behind the front
 //! WOR = s*f/(1 - s*f)*Bo/Bw,   s = r + contacted*(1 - r)
 //! ```
 //!
@@ -22,7 +22,7 @@
 use crate::rock::{FractionalFlow, Front};
 
 /// Highest part of the oil zone that counts as swept: something is left to divide by.
-const MOST_SWEPT: f64 = 0.98;
+const MOST_SWEPT: f64 = 0.95;
 /// Highest water-oil ratio handed to the wells. Beyond it hardly any oil moves and no well of this program's kind flows.
 pub(super) const HIGHEST_WOR: f64 = 1e4;
 
@@ -39,12 +39,12 @@ pub struct Flood {
 }
 
 /// What a flood leaves in the rock.
-#[derive(Debug, Clone, Copy, PartialEq)]
+#[derive(Debug, Clone, Copy, Default, PartialEq)]
 pub(super) struct Swept {
     /// Pore volume, rb.
     pub volume_rb: f64,
-    /// Oil in it, rb.
-    pub oil_rb: f64,
+    /// Part of it that holds no water: residual oil, and gas.
+    pub room: f64,
 }
 
 /// The rock as a flood meets it.
@@ -77,7 +77,7 @@ impl Flood {
         let contacted_rb = rock.contacted_fraction * rock.zone_rb;
         let volume_rb = (part * contacted_rb).min(MOST_SWEPT * rock.zone_rb);
         let mean = self.movable_volumes.max(self.front.movable_volumes).min(1.0);
-        Swept { volume_rb, oil_rb: volume_rb * (1.0 - rock.connate_water - mean * rock.movable) }
+        Swept { volume_rb, room: 1.0 - rock.connate_water - mean * rock.movable }
     }
 
     /// Takes the part of the withdrawal that inflowing water replaces.

@@ -1,6 +1,6 @@
 //! What the tank offers its wells at one instant.
 
-use super::flood::{FloodedRock, HIGHEST_WOR};
+use super::flood::{FloodedRock, HIGHEST_WOR, Swept};
 use super::{ClosureError, Cumulatives, Flood, Inventory, Tank, TrendOver, WaterModel};
 
 /// Highest ratio of free gas to oil that is handed to the wells, scf/STB. Beyond it hardly any oil moves and no
@@ -79,12 +79,14 @@ impl Tank {
         let zone = (pore / (1.0 + self.gas_cap_ratio) - invaded).max(1e-6 * pore);
         let oil = inventory.oil_stb * bo - invaded * residual;
         let (mu_o, mu_g, mu_w) = (fluid.mu_o(p, rs), fluid.mu_g(p), fluid.mu_w(p));
-        let (flood, swept_rb, swept_oil_rb) =
-            self.flood(inventory.water_stb + self.pot_stb(p), zone, (mu_o, mu_w), (bo, bw));
-        let zone = zone - swept_rb;
-        let so = ((oil - swept_oil_rb) / zone).clamp(0.0, 1.0 - 0.5 * self.connate_water);
         let free_rb = (inventory.gas_scf - inventory.oil_stb * rs).max(0.0) * bg;
-        let sg = (free_rb / zone).clamp(0.0, 1.0 - so);
+        let (flood, swept) = self.flood(inventory.water_stb + self.pot_stb(p), zone, (mu_o, mu_w), (bo, bw));
+        // Gas behind the front is trapped as it was, in place of residual oil.
+        let trapped_rb = swept.volume_rb * (free_rb / zone).min(swept.room);
+        let swept_oil_rb = swept.volume_rb * swept.room - trapped_rb;
+        let zone = zone - swept.volume_rb;
+        let so = ((oil - swept_oil_rb) / zone).clamp(0.0, 1.0 - 0.5 * self.connate_water);
+        let sg = ((free_rb - trapped_rb) / zone).clamp(0.0, 1.0 - so);
         let sw = 1.0 - so - sg;
         let kro = match self.water_model {
             // The oil zone that the wells draw on holds connate water; what is swept stands apart.
@@ -145,15 +147,15 @@ impl Tank {
         Some(trend.curve.before_water(state.trend_place))
     }
 
-    /// The flood, its swept pore volume and the oil in it, rb.
+    /// The flood, and what it has swept.
     fn flood(
         &self,
         water_stb: f64,
         zone_rb: f64,
         (mu_o_cp, mu_w_cp): (f64, f64),
         (bo, bw): (f64, f64),
-    ) -> (Option<Flood>, f64, f64) {
-        let none = (None, 0.0, 0.0);
+    ) -> (Option<Flood>, Swept) {
+        let none = (None, Swept::default());
         if !matches!(self.water_model, WaterModel::Displacement | WaterModel::Trend) {
             return none;
         }
@@ -169,7 +171,7 @@ impl Tank {
         let flood = Flood::new(curve, &rock, mobile_rb, bo / bw);
         let swept = flood.swept(&rock);
         let shown = (self.water_model == WaterModel::Displacement).then_some(flood);
-        (shown, swept.volume_rb, swept.oil_rb)
+        (shown, swept)
     }
 
     /// kro/(mu_o*Bo) of the undisturbed oil zone at a pressure and its saturated or initial dissolved gas, 1/cp.
