@@ -133,7 +133,7 @@ pub fn fit_jones(given_b: Option<f64>, points: &[TestPoint]) -> Result<Fit, Stri
     }
     if b < 0.0 {
         return Err(format!(
-            "the tests give a turbulence b of {b:.3e}, below zero: their resistance falls with rate; choose the method straight, or check the tests"
+            "the tests give a turbulence b of {b:.3e} psi/(STB/d)^2, below zero: their resistance falls with rate; choose the method straight, or check the tests"
         ));
     }
     let free = points.len() - columns;
