@@ -291,12 +291,14 @@ fn water_made(field: &Field, forecast: &Forecast, doubts: &mut Vec<Doubt>) {
     let before = field.spec.tank.produced.unwrap_or_default();
     let made_stb = before.water_stb + forecast.tank.last().map_or(0.0, |t| t.water_cum_stb);
     let injected_stb = before.injected_water_stb + forecast.tank.iter().map(|t| t.injected_water_stb).sum::<f64>();
+    let influx_stb = forecast.tank.last().and_then(|t| t.aquifer).map_or(0.0, |a| a.influx_cum_stb.max(0.0));
+    let came_stb = injected_stb + influx_stb;
     let room_stb = CONNATE_EXPANSION * field.tank().initial().water_stb;
-    if made_stb > injected_stb + room_stb {
+    if made_stb > came_stb + room_stb {
         doubts.push(doubt(
             DoubtKind::Sanity,
             "tank",
-            format!("the wells make {made_stb:.0} STB of water, but only {injected_stb:.0} STB came in"),
+            format!("the wells make {made_stb:.0} STB of water, but only {came_stb:.0} STB came in"),
             "a table of water cuts or a water_factor asks for water that is not there; or an aquifer is not stated",
             "state what brings the water, or lower the table",
         ));
