@@ -31,7 +31,7 @@ const LEAST_BUBBLE_POINT_PSIA: f64 = 14.696;
 /// Black oil, gas and water by the chosen correlations (unless said otherwise Standing, Vasquez-Beggs above the bubble point, Beggs-Robinson, Sutton,
 /// Wichert-Aziz, Dranchuk-Abou-Kassem, Lee-Gonzalez-Eakin, McCain, Baker-Swerdloff).
 ///
-/// As a [`ReservoirFluid`] it answers at tank temperature; [`in_situ`](Self::in_situ) answers at any pressure and temperature.
+/// As a [`ReservoirFluid`](super::ReservoirFluid) it answers at tank temperature; [`in_situ`](Self::in_situ) answers at any pressure and temperature.
 #[derive(Debug, Clone)]
 pub struct BlackOil {
     pub(super) spec: FluidSpec,
