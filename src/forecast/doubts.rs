@@ -144,7 +144,7 @@ fn fluid_and_tank(field: &Field, forecast: &Forecast, doubts: &mut Vec<Doubt>) {
         doubts.push(doubt(
             DoubtKind::NotModelled,
             "tank",
-            format!("injected water comes as one front through {:.0} % of the oil zone", 100.0 * tank.water.contacted_fraction),
+            format!("inflowing water comes as one front through {:.0} % of the oil zone", 100.0 * tank.water.contacted_fraction),
             "layers and unequal distances spread a front: real water comes earlier and rises more slowly, and no measured water cut has fixed the contacted fraction",
             "run cases with other contacted fractions; give wells nearer to or farther from the injector a breakthrough_delay",
         ));
