@@ -14,6 +14,9 @@ use wane::tubing::choke::critical;
 use wane::tubing::choke::sachdeva::{Upstream, polytropic_exponent};
 use wane::tubing::{Choke, ChokeMethod, ChokeSpec, ChokeTest, Discharge, Stream};
 
+/// Highest pressure of the fluid model, psia.
+const FLUID_ENDS_PSIA: f64 = 10_000.0;
+
 fn oil() -> BlackOil {
     BlackOil::new(&FluidSpec { bubble_point_psia: Some(2650.0), ..FluidSpec::new(34.0, 0.78, 620.0) }, 190.0).unwrap()
 }
@@ -132,6 +135,8 @@ proptest! {
         let (fluid, c, s) = (oil(), choke(method, size, 0.85), stream(rate, gor, cut));
         let here = c.flow(&fluid, &s, line, 110.0);
         prop_assert!(here.upstream_psia.is_finite() && here.upstream_psia >= line);
+        // Beyond the fluid's range its properties are held, and a choke so small is none.
+        prop_assume!(here.upstream_psia < FLUID_ENDS_PSIA);
         // More rate, a smaller opening or a higher line pressure never ask for less.
         let more = c.flow(&fluid, &stream(1.05 * rate, gor, cut), line, 110.0);
         let smaller = c.with_size(0.95 * size).flow(&fluid, &s, line, 110.0);
@@ -143,7 +148,7 @@ proptest! {
             near(against.upstream_psia, here.upstream_psia, 1e-9, "critical");
         }
         // The opening that holds a stream back to a pressure is the one that asks for it.
-        if here.upstream_psia > 1.001 * line && here.upstream_psia < 1e5 {
+        if here.upstream_psia > 1.001 * line {
             near(c.size_for(&fluid, &s, here.upstream_psia, line, 110.0).unwrap(), size, 1e-6, "size");
         }
         prop_assert_eq!(c.flow(&fluid, &stream(0.0, gor, cut), line, 110.0).upstream_psia, line);
@@ -161,6 +166,7 @@ proptest! {
             let middle = 0.5 * (low + high);
             if up(middle).critical { low = middle } else { high = middle }
         }
+        prop_assume!(up(low).upstream_psia < FLUID_ENDS_PSIA);
         prop_assert!((up(low).upstream_psia - up(high).upstream_psia).abs() < 1e-5 * high);
     }
 }
