@@ -9,6 +9,7 @@ mod dynamics;
 mod field;
 pub mod integrate;
 mod lines;
+mod margins;
 mod modes;
 mod onsets;
 mod placement;

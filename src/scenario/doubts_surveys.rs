@@ -1,7 +1,7 @@
 //! Doubts about flowing surveys as they stand in the scenario.
 
 use super::doubts::{doubt, short};
-use super::doubts_wells::{DAYS_IN_MONTH, OLD_MONTHS};
+use super::doubts_wells::age;
 use crate::forecast::{Doubt, DoubtKind, FieldSpec};
 use crate::well::{FlowingSurvey, WellSpec};
 
@@ -19,26 +19,8 @@ fn one(well: &WellSpec, survey: &FlowingSurvey, field: &FieldSpec) -> Vec<Doubt>
     let mut out = Vec::new();
     let about = well.name.as_str();
     let when = format!("the flowing survey of {}", survey.on);
-    if let Ok(span) = survey.on.until(field.period.start) {
-        let months = f64::from(span.get_days()) / DAYS_IN_MONTH;
-        if months > OLD_MONTHS {
-            out.push(doubt(
-                DoubtKind::TestMismatch,
-                about,
-                format!("{when} was {months:.0} months old at the start of the forecast"),
-                "no newer survey",
-                "slip changes little with age, but gas and water do: survey again before lift is ordered",
-            ));
-        } else if months < 0.0 {
-            out.push(doubt(
-                DoubtKind::UnlikelyValue,
-                about,
-                format!("{when} was taken after the start of the forecast"),
-                "a slip in the date, or a start that was never moved",
-                "move period.start to the day of the last data",
-            ));
-        }
-    }
+    let advice = "slip changes little with age, but gas and water do: survey again before lift is ordered";
+    out.extend(age(about, &when, survey.on, field, "no newer survey", advice));
     out.extend(pressures(about, &when, well, survey));
     let solution = field.fluid.solution_gor_scf_stb;
     if survey.gor_scf_stb < 0.8 * solution {

@@ -4,10 +4,11 @@ use super::doubts::{Usual, doubt, short};
 use crate::forecast::{Doubt, DoubtKind, FieldSpec};
 use crate::inflow::{Coefficient, InflowTest};
 use crate::well::WellSpec;
+use jiff::civil::Date;
 
 /// A test that is older says little about today's well.
-pub(super) const OLD_MONTHS: f64 = 24.0;
-pub(super) const DAYS_IN_MONTH: f64 = 365.2425 / 12.0;
+const OLD_MONTHS: f64 = 24.0;
+const DAYS_IN_MONTH: f64 = 365.2425 / 12.0;
 /// Steeper than this from the vertical, a well counts as horizontal.
 const HORIZONTAL_DEG: f64 = 80.0;
 
@@ -141,31 +142,39 @@ fn number_of_tests(about: &str, tests: &[InflowTest]) -> Option<Doubt> {
     })
 }
 
+/// Doubt about a measurement by its day: long before the start of the forecast, or after it.
+pub(super) fn age(
+    about: &str,
+    what: &str,
+    on: Date,
+    field: &FieldSpec,
+    cause_if_old: &str,
+    advice_if_old: &str,
+) -> Option<Doubt> {
+    let months = f64::from(on.until(field.period.start).ok()?.get_days()) / DAYS_IN_MONTH;
+    if months > OLD_MONTHS {
+        let seen = format!("{what} was {months:.0} months old at the start of the forecast");
+        Some(doubt(DoubtKind::TestMismatch, about, seen, cause_if_old, advice_if_old))
+    } else if months < 0.0 {
+        Some(doubt(
+            DoubtKind::UnlikelyValue,
+            about,
+            format!("{what} was taken after the start of the forecast"),
+            "a slip in the date, or a start that was never moved",
+            "move period.start to the day of the last data",
+        ))
+    } else {
+        None
+    }
+}
+
 fn one_test(about: &str, test: &InflowTest, well: &WellSpec, field: &FieldSpec) -> Vec<Doubt> {
     let mut out = Vec::new();
     let when = test.on.map_or_else(|| "an undated test".to_owned(), |on| format!("the test of {on}"));
-    if let Some(on) = test.on
-        && let Ok(span) = on.until(field.period.start)
-    {
-        let months = f64::from(span.get_days()) / DAYS_IN_MONTH;
-        if months > OLD_MONTHS {
-            out.push(doubt(
-                DoubtKind::TestMismatch,
-                about,
-                format!("{when} was {months:.0} months old at the start of the forecast"),
-                "no newer test",
-                "tests older than two years say little about today's skin and gas: test again",
-            ));
-        } else if months < 0.0 {
-            out.push(doubt(
-                DoubtKind::UnlikelyValue,
-                about,
-                format!("{when} was taken after the start of the forecast"),
-                "a slip in the date, or a start that was never moved",
-                "move period.start to the day of the last data",
-            ));
-        }
-    }
+    out.extend(test.on.and_then(|on| {
+        let advice = "tests older than two years say little about today's skin and gas: test again";
+        age(about, &when, on, field, "no newer test", advice)
+    }));
     let today_psia = match &field.tank.produced {
         Some(produced) => produced.measured_pressure_psia,
         None => Some(field.tank.pressure_psia),

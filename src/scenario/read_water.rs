@@ -2,7 +2,7 @@
 
 use super::problem::Problem;
 use super::reader::Reader;
-use super::schema::{LATER_WATER_MODELS, Limits};
+use super::schema::Limits;
 use super::section::Section;
 use super::tree::{Node, Value};
 use crate::tank::{Trend, TrendOver, WaterModel, WaterSpec, WaterTrend};
@@ -26,7 +26,7 @@ enum Second {
 /// The water model and what it goes by; without a word it is displacement where water flows in.
 pub(super) fn tank(reader: &mut Reader, tank: &Section<'_>, water_flows_in: bool) -> (WaterModel, WaterSpec) {
     let section = reader.section(tank, "water");
-    let model = match reader.choice(&section, "model", LATER_WATER_MODELS) {
+    let model = match reader.choice(&section, "model", &[]) {
         Some("average") => WaterModel::Average,
         Some("displacement") => WaterModel::Displacement,
         Some("trend") => WaterModel::Trend,

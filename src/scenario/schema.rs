@@ -152,8 +152,6 @@ const fn from(low: f64, high: f64) -> Limits {
 /// What comes with a later version: refused with that word, not as unknown.
 pub const LATER: &[(&str, &str)] = &[("history", "measured history"), ("odds", "the uncertainty study")];
 
-/// Water models that come with a later version.
-pub const LATER_WATER_MODELS: &[&str] = &[];
 /// Tubing methods that come with a later version.
 pub const LATER_TUBING_METHODS: &[&str] = &["orkiszewski", "poettmann-carpenter"];
 

@@ -17,12 +17,20 @@ pub fn case(file: &str, id: &str) -> Value {
     all.as_array().unwrap().iter().find(|c| c["id"] == id).unwrap_or_else(|| panic!("no case {id}")).clone()
 }
 
-/// Asserts that `found` is the expected value of this name (or one that begins with it) in a case of `flow.json`, within its tolerance.
-pub fn expect_flow(id: &str, name: &str, found: f64) {
+/// The expected value of this name (or the first that begins with it) in a case of `flow.json`.
+pub fn flow_item(id: &str, name: &str) -> Value {
     let case = case("flow.json", id);
     let items = case["expected"].as_array().unwrap();
     let exact = items.iter().find(|item| item["name"] == name);
-    let item = exact.or_else(|| items.iter().find(|i| i["name"].as_str().unwrap().starts_with(name))).expect(name);
+    exact
+        .or_else(|| items.iter().find(|i| i["name"].as_str().is_some_and(|n| n.starts_with(name))))
+        .expect(name)
+        .clone()
+}
+
+/// Asserts that `found` is that value, within the tolerance that the file states.
+pub fn expect_flow(id: &str, name: &str, found: f64) {
+    let item = flow_item(id, name);
     let expected = item["value"].as_f64().unwrap();
     let tolerance =
         item["tol_rel"].as_f64().map(|t| t * expected.abs()).or(item["tol_abs"].as_f64()).expect("a tolerance");
